@@ -1,0 +1,26 @@
+package extract
+
+import (
+	"fmt"
+
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// Options say how a paper is to be read.
+type Options struct {
+	OCR      bool      // read page images without text through tesseract, where it is on PATH
+	Progress func(int) // called after each page with its number, may be nil: the sign of life
+}
+
+// Read turns the content of the file at path into a Document. The format is
+// told by content, not by name. An error says what is wrong with the file and
+// what to do; what could be read in part comes back with Document.Problems.
+func Read(path string, content []byte, opt Options) (*paper.Document, error) {
+	return nil, fmt.Errorf("%s: no reader for this kind of file", path)
+}
+
+// Find gives every result that is printed in the document, in reading order.
+func Find(doc *paper.Document) []result.Result {
+	return nil
+}
