@@ -1,23 +1,10 @@
+// Command halfspan reads a folder of papers, finds the results printed with an
+// interval or a spread, works out the SD behind them where that is legitimate,
+// lets a person check each against the page and exports what was confirmed.
 package main
 
-import (
-	_ "github.com/google/go-cmp/cmp"
-	_ "github.com/klippa-app/go-pdfium"
-	_ "github.com/klippa-app/go-pdfium/webassembly"
-	_ "github.com/ledongthuc/pdf"
-	_ "github.com/olekukonko/tablewriter"
-	_ "github.com/pdfcpu/pdfcpu/pkg/api"
-	_ "github.com/rogpeppe/go-internal/testscript"
-	_ "github.com/schollz/progressbar/v3"
-	_ "github.com/spf13/cobra"
-	_ "github.com/tetratelabs/wazero"
-	_ "github.com/xuri/excelize/v2"
-	_ "github.com/chromedp/chromedp"
-	_ "golang.org/x/term"
-	_ "golang.org/x/text/unicode/norm"
-	_ "golang.org/x/net/html/charset"
-	_ "gonum.org/v1/gonum/stat/distuv"
-	_ "modernc.org/sqlite"
-)
+import "os"
 
-func main() {}
+func main() {
+	os.Exit(run(os.Args[1:], os.Stdin, os.Stdout, os.Stderr))
+}

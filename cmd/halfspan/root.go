@@ -1,0 +1,86 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"strings"
+
+	"github.com/spf13/cobra"
+)
+
+// The exit statuses of the program.
+const (
+	statusDone    = 0
+	statusFailed  = 1 // the command failed
+	statusUsage   = 2 // wrong usage
+	statusPartial = 3 // done, but some papers could not be read whole
+)
+
+// statusError is an error that asks for an exit status of its own. An empty
+// message means that everything has been said already.
+type statusError struct {
+	status  int
+	message string
+}
+
+func (e *statusError) Error() string { return e.message }
+
+func usageError(format string, args ...any) error {
+	return &statusError{statusUsage, fmt.Sprintf(format, args...)}
+}
+
+// streams are where a command reads and writes.
+type streams struct {
+	in       io.Reader
+	out, err io.Writer
+}
+
+// run is the program without the process: arguments and streams in, exit status
+// out.
+func run(args []string, in io.Reader, out, errOut io.Writer) int {
+	s := &streams{in: in, out: out, err: errOut}
+	root := newRoot(s)
+	root.SetArgs(args)
+	root.SetIn(in)
+	root.SetOut(out)
+	root.SetErr(errOut)
+	err := root.Execute()
+	if err == nil {
+		return statusDone
+	}
+	status := statusFailed
+	var se *statusError
+	if errors.As(err, &se) {
+		status = se.status
+	} else if isUsage(err) {
+		status = statusUsage
+	}
+	if message := err.Error(); message != "" {
+		fmt.Fprintf(errOut, "halfspan: %s\n", message)
+	}
+	return status
+}
+
+// isUsage tells cobra's own complaints about the command line, which carry no
+// type, from failures of a command.
+func isUsage(err error) bool {
+	for _, start := range []string{"unknown command", "unknown flag", "unknown shorthand", "flag needs an argument",
+		"invalid argument", "accepts ", "requires at least", "required flag", "bad flag syntax"} {
+		if strings.HasPrefix(err.Error(), start) {
+			return true
+		}
+	}
+	return false
+}
+
+func newRoot(s *streams) *cobra.Command {
+	root := &cobra.Command{
+		Use:           "halfspan",
+		Short:         "mean, SD and n out of published papers, checked by a person against the page",
+		SilenceErrors: true,
+		SilenceUsage:  true,
+	}
+	root.AddCommand(newScan(s), newText(s))
+	return root
+}
