@@ -1,0 +1,115 @@
+package engine
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"sync"
+
+	pdfium "github.com/klippa-app/go-pdfium"
+	"github.com/klippa-app/go-pdfium/webassembly"
+	"github.com/tetratelabs/wazero"
+	"github.com/tetratelabs/wazero/api"
+	"github.com/tetratelabs/wazero/experimental"
+)
+
+// memoryPages is the sandbox's memory limit in pages of 64 KiB: 320 MiB, so
+// that a worker that holds it stays below its own limit.
+const memoryPages = 320 * 16
+
+// Engine is the compiled library; instances of it are cheap. One per process
+// is enough: see [Shared]. It may be used from several goroutines.
+type Engine struct {
+	pool  pdfium.Pool
+	cache wazero.CompilationCache
+}
+
+// Config says how an Engine starts.
+type Config struct {
+	// CacheDir keeps the compiled library between runs; empty: it is compiled
+	// anew each time (about 5 s).
+	CacheDir string
+	// Cold, where not nil, is called before the library is compiled for the
+	// first time, which takes some seconds.
+	Cold func()
+}
+
+// DefaultCacheDir is the folder for the compiled library in the user's cache
+// folder, or "" where there is none.
+func DefaultCacheDir() string {
+	dir, err := os.UserCacheDir()
+	if err != nil {
+		return ""
+	}
+	return filepath.Join(dir, "halfspan")
+}
+
+// New compiles the library, or loads it compiled from the cache.
+func New(cfg Config) (*Engine, error) {
+	run := wazero.NewRuntimeConfig().
+		WithCoreFeatures(api.CoreFeaturesV2 | experimental.CoreFeaturesExceptionHandling).
+		WithMemoryLimitPages(memoryPages)
+	cache, warm := openCache(cfg.CacheDir)
+	if cache != nil {
+		run = run.WithCompilationCache(cache)
+	}
+	if !warm && cfg.Cold != nil {
+		cfg.Cold()
+	}
+	pool, err := webassembly.Init(webassembly.Config{
+		MinIdle: 0, MaxIdle: 1, MaxTotal: 64,
+		FSConfig:      wazero.NewFSConfig(), // no file system at all
+		RuntimeConfig: run,
+		Stdout:        io.Discard, Stderr: io.Discard,
+	})
+	if err != nil {
+		return nil, fmt.Errorf("starting the PDF reader: %w", err)
+	}
+	return &Engine{pool: pool, cache: cache}, nil
+}
+
+// openCache opens the compilation cache; warm says whether it holds anything.
+// A folder that cannot be used costs time, not the run.
+func openCache(dir string) (cache wazero.CompilationCache, warm bool) {
+	if dir == "" {
+		return nil, false
+	}
+	if err := os.MkdirAll(dir, 0o700); err != nil {
+		return nil, false
+	}
+	kept, _ := filepath.Glob(filepath.Join(dir, "wazero-*", "*"))
+	cache, err := wazero.NewCompilationCacheWithDir(dir)
+	if err != nil {
+		return nil, false
+	}
+	return cache, len(kept) > 0
+}
+
+// Close frees the compiled library.
+func (e *Engine) Close() error {
+	err := e.pool.Close()
+	if e.cache != nil {
+		err = errors.Join(err, e.cache.Close(context.Background()))
+	}
+	return err
+}
+
+// Shared gives the process's one engine and starts it at the first call, with
+// the default cache folder. cold is only heard by the call that starts it.
+func Shared(cold func()) (*Engine, error) {
+	shared.once.Do(func() {
+		shared.engine, shared.err = New(Config{CacheDir: DefaultCacheDir(), Cold: cold})
+	})
+	return shared.engine, shared.err
+}
+
+// shared is set once and never changed: compiling the library twice in one
+// process would cost a tenth of a second a paper.
+var shared struct {
+	once   sync.Once
+	engine *Engine
+	err    error
+}
