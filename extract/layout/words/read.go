@@ -1,0 +1,216 @@
+package words
+
+import (
+	"cmp"
+	"slices"
+
+	"halfspan/extract/paper"
+)
+
+const (
+	farthest  = 1 << 28 // coordinates beyond are drawn in to it, so that sums never overflow
+	largest   = 1 << 20 // font sizes beyond are drawn in to it
+	levelDeg  = 8       // degrees by which a direction may miss a right angle
+	obliqueID = 4
+)
+
+// item is one glyph in the upright space of its direction.
+type item struct {
+	x0, x1, y0, y1 int
+	base, size     int
+	glyph          int32 // index into the page's glyphs
+	space          bool  // a space stands before it in the content stream
+	shift          paper.StyleKind
+}
+
+// chunk is a stretch of items that follow one another in the content stream
+// along one baseline.
+type chunk struct {
+	items  []item
+	x0, x1 int
+	base   int
+	size   int
+	row    int
+	shift  paper.StyleKind
+}
+
+// Read gives the frames of a page, the one with the most glyphs first. A page
+// without glyphs has none.
+func Read(p *paper.GlyphPage) []Frame {
+	var byDir [obliqueID + 1][]item
+	var count [obliqueID + 1]int
+	for i := range p.Glyphs {
+		count[direction(p.Glyphs[i].Angle)]++
+	}
+	for d := range byDir {
+		byDir[d] = make([]item, 0, count[d])
+	}
+	var space [obliqueID + 1]bool
+	for i := range p.Glyphs {
+		g := &p.Glyphs[i]
+		d := direction(g.Angle)
+		if blank(g.Text) {
+			space[d] = space[d] || g.Text != ""
+			continue
+		}
+		it := upright(g, d)
+		it.glyph, it.space = int32(i), space[d]
+		space[d] = false
+		byDir[d] = append(byDir[d], it)
+	}
+	var frames []Frame
+	for d, items := range byDir {
+		if len(items) == 0 {
+			continue
+		}
+		f := Frame{Bounds: p.Page.Box, Rules: p.Rules, Images: p.Images, Glyphs: len(items)}
+		if d == obliqueID {
+			f.Oblique = true
+			f.Lines = oblique(p, items)
+		} else {
+			f.Angle = int16(d * 90)
+			f.Lines = lines(p, items)
+			f.turnAll()
+		}
+		frames = append(frames, f)
+	}
+	slices.SortStableFunc(frames, func(a, b Frame) int { return cmp.Compare(b.Glyphs, a.Glyphs) })
+	return frames
+}
+
+// turnAll turns what was taken over from the page.
+func (f *Frame) turnAll() {
+	f.Bounds = f.Upright(f.Bounds)
+	if f.Angle == 0 {
+		return
+	}
+	rules, images := make([]paper.Box, len(f.Rules)), make([]paper.Box, len(f.Images))
+	for i, r := range f.Rules {
+		rules[i] = f.Upright(r)
+	}
+	for i, m := range f.Images {
+		images[i] = f.Upright(m)
+	}
+	f.Rules, f.Images = rules, images
+}
+
+// direction is the number of quarter turns of an angle, or obliqueID.
+func direction(angle int16) int {
+	a := (int(angle)%360 + 360) % 360
+	q := (a + 45) / 90
+	if d := a - q*90; d < -levelDeg || d > levelDeg {
+		return obliqueID
+	}
+	return q % 4
+}
+
+func upright(g *paper.Glyph, dir int) item {
+	b := paper.Box{X0: draw(g.Box.X0), Y0: draw(g.Box.Y0), X1: draw(g.Box.X1), Y1: draw(g.Box.Y1)}
+	o := paper.Point{X: draw(g.Origin.X), Y: draw(g.Origin.Y)}
+	size := min(max(int(g.Size), 1), largest)
+	base := o.Y
+	if dir < obliqueID {
+		b = turn(b, int16(dir*90))
+		base = [4]int32{o.Y, -o.X, -o.Y, o.X}[dir]
+	}
+	x0, x1 := int(min(b.X0, b.X1)), int(max(b.X0, b.X1))
+	y0, y1 := int(min(b.Y0, b.Y1)), int(max(b.Y0, b.Y1))
+	return item{x0: x0, x1: x1, y0: y0, y1: y1, base: int(base), size: size}
+}
+
+func draw(v int32) int32 { return min(max(v, -farthest), farthest) }
+
+// lines turns the items of one direction into line segments.
+func lines(p *paper.GlyphPage, items []item) []Line {
+	chunks := chunked(items)
+	assignRows(chunks)
+	attachShifted(chunks)
+	var out []Line
+	for _, row := range rowsOf(chunks) {
+		out = append(out, segments(p, row)...)
+	}
+	slices.SortStableFunc(out, func(a, b Line) int {
+		return cmp.Or(cmp.Compare(b.Base, a.Base), cmp.Compare(a.Box.X0, b.Box.X0))
+	})
+	return out
+}
+
+// chunked cuts the items where the content stream leaves the baseline or jumps.
+func chunked(items []item) []chunk {
+	if len(items) == 0 {
+		return nil
+	}
+	var out []chunk
+	start := 0
+	for i := 1; i <= len(items); i++ {
+		if i < len(items) && follows(&items[i-1], &items[i]) {
+			continue
+		}
+		c := chunk{items: items[start:i], x0: items[start].x0, base: items[start].base, row: -1}
+		c.x1 = c.items[0].x1
+		for _, it := range c.items {
+			c.x0, c.x1, c.size = min(c.x0, it.x0), max(c.x1, it.x1), max(c.size, it.size)
+		}
+		out = append(out, c)
+		start = i
+	}
+	return out
+}
+
+func follows(a, b *item) bool {
+	size := max(a.size, b.size)
+	d, gap := b.base-a.base, b.x0-a.x1
+	return abs(d)*25 <= size && gap <= size && gap*2 >= -size && b.x0 >= a.x0-size/4
+}
+
+// assignRows numbers the chunks by baseline, from the top.
+func assignRows(chunks []chunk) {
+	order := make([]int, len(chunks))
+	for i := range order {
+		order[i] = i
+	}
+	slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(chunks[b].base, chunks[a].base) })
+	row, rowBase := -1, 0
+	for _, i := range order {
+		c := &chunks[i]
+		if row < 0 || (rowBase-c.base)*10 > c.size {
+			row, rowBase = row+1, c.base
+		}
+		c.row = row
+	}
+}
+
+// rowsOf gathers the items of each row, from left to right. Chunks that were
+// attached to another row come with it.
+func rowsOf(chunks []chunk) [][]item {
+	n := 0
+	for i := range chunks {
+		n = max(n, chunks[i].row+1)
+	}
+	size := make([]int, n)
+	for i := range chunks {
+		size[chunks[i].row] += len(chunks[i].items)
+	}
+	rows := make([][]item, n)
+	for i := range chunks {
+		c := &chunks[i]
+		if rows[c.row] == nil {
+			rows[c.row] = make([]item, 0, size[c.row])
+		}
+		for _, it := range c.items {
+			it.shift = c.shift
+			rows[c.row] = append(rows[c.row], it)
+		}
+	}
+	for _, r := range rows {
+		slices.SortStableFunc(r, func(a, b item) int { return cmp.Compare(a.x0, b.x0) })
+	}
+	return rows
+}
+
+func abs(x int) int {
+	if x < 0 {
+		return -x
+	}
+	return x
+}

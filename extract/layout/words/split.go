@@ -1,0 +1,218 @@
+package words
+
+import (
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"golang.org/x/text/unicode/norm"
+
+	"halfspan/extract/paper"
+)
+
+// segments cuts one row into lines at gaps wider than an em, and those into words.
+func segments(p *paper.GlyphPage, row []item) []Line {
+	row = single(p, row)
+	var out []Line
+	start, right := 0, 0
+	for i := range row {
+		if i > start && row[i].x0-right > max(row[i].size, row[i-1].size) {
+			out = append(out, segment(p, row[start:i]))
+			start = i
+		}
+		if i == start {
+			right = row[i].x1
+		}
+		right = max(right, row[i].x1)
+	}
+	if start < len(row) {
+		out = append(out, segment(p, row[start:]))
+	}
+	return out
+}
+
+// single drops the second of two equal glyphs printed on the same spot.
+func single(p *paper.GlyphPage, row []item) []item {
+	kept := row[:0]
+	for _, it := range row {
+		again := false
+		for k := len(kept) - 1; k >= 0 && k >= len(kept)-3; k-- {
+			o := &kept[k]
+			if (it.x0-o.x0)*8 <= it.size && abs(it.base-o.base)*8 <= it.size && abs(it.size-o.size)*10 <= it.size &&
+				p.Glyphs[it.glyph].Text == p.Glyphs[o.glyph].Text && (it.x0-o.x0)*2 <= it.x1-it.x0 {
+				again = true
+				break
+			}
+		}
+		if !again {
+			kept = append(kept, it)
+		}
+	}
+	return kept
+}
+
+func segment(p *paper.GlyphPage, items []item) Line {
+	var l Line
+	start, right := 0, items[0].x1
+	glued := false
+	flush := func(end int) {
+		l.Words = append(l.Words, word(p, items[start:end], glued))
+		start = end
+	}
+	track := tracking(items)
+	for i := 1; i < len(items); i++ {
+		gap := apart(&items[i-1], &items[i], right, track)
+		if gap || items[i].shift != items[i-1].shift {
+			flush(i)
+			glued = !gap
+		}
+		right = max(right, items[i].x1)
+	}
+	flush(len(items))
+	finish(&l, items)
+	return l
+}
+
+// finish sets the line's box, baseline and size.
+func finish(l *Line, items []item) {
+	for i := range l.Words {
+		l.Box = l.Box.Union(l.Words[i].Box)
+	}
+	best := -1
+	for i := range items {
+		if items[i].shift == 0 && (best < 0 || items[i].size > items[best].size) {
+			best = i
+		}
+	}
+	l.Base, l.Size = int32(items[max(best, 0)].base), int32(items[max(best, 0)].size)
+}
+
+// apart tells whether a space is printed between two neighbours: by the gap
+// against the font size, with a space in the content stream tipping the balance.
+func apart(a, b *item, right, track int) bool {
+	size := min(a.size, b.size)
+	if a.shift == b.shift {
+		size = max(a.size, b.size)
+	}
+	gap := (b.x0-right)*100/size - track
+	if b.space && b.glyph > a.glyph {
+		return gap >= 4
+	}
+	return gap >= 15
+}
+
+// tracking is the letter spacing of a line in hundredths of an em, where it is
+// so wide that gaps between letters would pass for spaces: the upper quartile
+// of the gaps of a line most of whose gaps are wide.
+func tracking(items []item) int {
+	if len(items) < 6 {
+		return 0
+	}
+	var hist [100]int
+	n := 0
+	for i := 1; i < len(items); i++ {
+		g := (items[i].x0 - items[i-1].x1) * 100 / items[i].size
+		hist[min(max(g, 0), 99)]++
+		n++
+	}
+	seen := 0
+	for g, c := range hist {
+		if seen += c; seen*2 >= n { // the median gap: letters outnumber spaces
+			if g < 8 {
+				return 0
+			}
+			return g
+		}
+	}
+	return 0
+}
+
+func word(p *paper.GlyphPage, items []item, glued bool) Word {
+	w := Word{Glued: glued, Shift: items[0].shift, Base: int32(items[0].base), Bold: true, Italic: true, Invisible: true}
+	w.Glyphs = make([]paper.Glyph, len(items))
+	n := 0
+	for i, it := range items {
+		g := &p.Glyphs[it.glyph]
+		w.Glyphs[i] = *g
+		n += len(g.Text)
+		w.Box = w.Box.Union(paper.Box{X0: int32(it.x0), Y0: int32(it.y0), X1: int32(it.x1), Y1: int32(it.y1)})
+		w.Size = max(w.Size, int32(it.size))
+		w.Bold, w.Italic, w.Invisible = w.Bold && g.Bold, w.Italic && g.Italic, w.Invisible && g.Invisible
+	}
+	var b strings.Builder
+	b.Grow(n)
+	for i := range w.Glyphs {
+		w.Glyphs[i].Text = Spell(w.Glyphs[i].Text)
+		b.WriteString(w.Glyphs[i].Text)
+	}
+	w.Text = b.String()
+	return w
+}
+
+// oblique makes one line of each run of text that keeps its odd angle.
+func oblique(p *paper.GlyphPage, items []item) []Line {
+	var out []Line
+	var l Line
+	start := 0
+	for i := 1; i <= len(items); i++ {
+		if i < len(items) && !items[i].space && near(&items[i-1], &items[i]) {
+			continue
+		}
+		l.Words = append(l.Words, word(p, items[start:i], false))
+		start = i
+		if i == len(items) || !near(&items[i-1], &items[i]) {
+			finish(&l, items[i-1:i])
+			out = append(out, l)
+			l = Line{}
+		}
+	}
+	return out
+}
+
+func near(a, b *item) bool {
+	return abs(a.x0-b.x0) <= 2*a.size && abs(a.y0-b.y0) <= 2*a.size
+}
+
+// blank reports whether a glyph's text prints nothing: spaces, and characters
+// of no width that PDF writers put into words.
+func blank(s string) bool {
+	for _, r := range s {
+		if !unicode.IsSpace(r) && !unprinted(r) {
+			return false
+		}
+	}
+	return true
+}
+
+func unprinted(r rune) bool {
+	return r >= 0x200B && r <= 0x200F || r == 0x2060 || r == 0xFEFF || r >= 0x2028 && r <= 0x202E
+}
+
+// Spell writes a glyph's text in the letters a reader would type: ligatures
+// and mathematical letters by their plain ones. Digits, marks and superscript
+// characters stay as they are.
+func Spell(s string) string {
+	if len(s) == 1 && s[0] < utf8.RuneSelf {
+		return s
+	}
+	plain := true
+	for _, r := range s {
+		if r >= 0xFB00 && r <= 0xFB06 || r >= 0x1D400 && r <= 0x1D7FF || unicode.IsSpace(r) || unprinted(r) {
+			plain = false
+		}
+	}
+	if plain {
+		return s
+	}
+	var b strings.Builder
+	for _, r := range s {
+		switch {
+		case r >= 0xFB00 && r <= 0xFB06, r >= 0x1D400 && r <= 0x1D7FF:
+			b.WriteString(norm.NFKC.String(string(r)))
+		case unicode.IsSpace(r), unprinted(r):
+		default:
+			b.WriteRune(r)
+		}
+	}
+	return b.String()
+}
