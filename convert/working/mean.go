@@ -1,0 +1,221 @@
+package working
+
+import (
+	"fmt"
+	"math"
+
+	"halfspan/convert"
+	"halfspan/extract/result"
+)
+
+// sdOf says what the values are whose SD is given.
+func sdOf(r *result.Result) *string {
+	switch r.Statistic {
+	case result.MeanChange:
+		return text("changes")
+	case result.MeanDifference:
+		return text("differences")
+	}
+	return text("values")
+}
+
+func (it *item) takeMean() {
+	if it.est != nil {
+		it.rec().Mean = number(it.est.Value)
+	}
+}
+
+// takeSD takes a printed SD as it stands.
+func takeSD(it *item) {
+	if it.val == nil {
+		it.withhold("an SD is announced, but no single number is printed for it")
+		return
+	}
+	if it.val.Value < 0 {
+		it.raise("spread-not-positive", "SD "+it.res.GivenValue)
+		it.withhold("the printed SD is negative")
+		return
+	}
+	if it.val.Value == 0 {
+		it.raise("spread-not-positive", "SD "+it.res.GivenValue)
+	}
+	rec := it.rec()
+	rec.Use = usePrinted
+	rec.SD = number(it.val.Value)
+	rec.SDLow, rec.SDHigh = down(max(it.val.Low(), 0)), up(it.val.High())
+	rec.SDOf = sdOf(it.res)
+	switch it.res.Statistic {
+	case result.Mean, result.MeanChange, result.MeanDifference, "":
+		it.takeMean()
+	}
+	it.method("printed-sd")
+	it.step("SD = %s as printed", it.res.GivenValue)
+	if n := it.res.N; n >= 2 && it.val.Value > 0 && it.res.Statistic != result.MeanDifference {
+		se := it.val.Value / math.Sqrt(float64(n))
+		rec.SE, rec.Scale = number(se), text("raw")
+		it.step("SE = SD/√n = %s/√%d = %s", it.res.GivenValue, n, short(se))
+	}
+	if it.res.N == 0 {
+		it.raise("n-missing", "no sample size is printed for this result")
+	}
+}
+
+func down(v float64) *Number { n := Down(v); return &n }
+func up(v float64) *Number   { n := Up(v); return &n }
+
+// meanFromSE works out the SD behind the SE of a mean.
+func meanFromSE(it *item) {
+	if it.val == nil || it.val.Value <= 0 {
+		it.raise("spread-not-positive", "SE "+it.res.GivenValue)
+		it.withhold("the printed SE is not above 0")
+		return
+	}
+	it.takeMean()
+	rec := it.rec()
+	rec.SE, rec.Scale = number(it.val.Value), text("raw")
+	it.step("SE = %s as printed", it.res.GivenValue)
+	reason := blocked(it)
+	n := it.res.N
+	if n == 0 {
+		it.raise("n-missing", "no sample size is printed for this result")
+	}
+	switch {
+	case reason != "":
+		it.withhold(reason)
+		return
+	case n == 0:
+		it.withhold("n is not printed: SE only")
+		return
+	case n < 2:
+		it.withhold(fmt.Sprintf("n is %d: no SD from so few values", n))
+		return
+	}
+	sd, err := convert.SDFromSE(it.val.Value, n)
+	if err != nil {
+		it.withhold(err.Error())
+		return
+	}
+	span := convert.Range{Low: math.Max(it.val.Low(), 0), High: it.val.High()}.Times(math.Sqrt(float64(n)))
+	it.step("SD = SE·√n = %s·√%d = %s", it.res.GivenValue, n, short(sd))
+	it.give(sd, span, "sd-from-se")
+	it.assume(fmt.Sprintf("SE = SD/√n of %d independent values", n))
+}
+
+// give records a converted SD with the range of its digits.
+func (it *item) give(sd float64, span convert.Range, method string) {
+	rec := it.rec()
+	rec.Use = useConverted
+	rec.SD = number(sd)
+	rec.SDLow, rec.SDHigh = down(span.Low), up(span.High)
+	rec.SDOf = sdOf(it.res)
+	it.method(method)
+	it.step("the printed digits allow %s to %s: SD %s", short(span.Low), short(span.High), deserved(sd, span))
+}
+
+// meanFromInterval works out SE and SD behind the interval of a mean.
+func meanFromInterval(it *item) {
+	it.takeMean()
+	reason := blocked(it)
+	n, level := it.res.N, it.res.Level
+	if n == 0 {
+		it.raise("n-missing", "no sample size is printed for this result")
+	}
+	if level == 0 {
+		it.raise("level-missing", "the level of the interval is not printed")
+	}
+	width := it.halfWidth()
+	switch {
+	case it.lopside != nil:
+		it.explainLopside()
+		it.withhold(it.lopsideReason())
+		return
+	case width <= 0:
+		it.raise("spread-not-positive", "the interval has no width")
+		it.withhold("the interval has no width")
+		return
+	case level == 0:
+		it.withhold("the level of the interval is not printed")
+		it.offerLevels(width, n)
+		return
+	}
+	it.stepMargin(width)
+	z, err := convert.TwoSided(level, convert.Normal)
+	if err != nil {
+		it.withhold(err.Error())
+		return
+	}
+	if n < 2 {
+		it.rec().SE, it.rec().Scale = number(width/z), text("raw")
+		it.step("SE = margin/z = %s/%s = %s, by the normal value since n is not known", short(width), short(z), short(width/z))
+		switch {
+		case reason != "":
+			it.withhold(reason)
+		case n == 1:
+			it.withhold("n is 1: no SD from a single value")
+		default:
+			it.withhold("n is not printed: SE only, by the normal value")
+		}
+		return
+	}
+	t, err := convert.TwoSided(level, float64(n-1))
+	if err != nil {
+		it.withhold(err.Error())
+		return
+	}
+	it.step("t for %s%% with n − 1 = %d degrees of freedom = %s", short(level), n-1, short(t))
+	it.step("SE = margin/t = %s/%s = %s", short(width), short(t), short(width/t))
+	if reason != "" {
+		// The SE of a model is not known by t with n-1; z is the usual guess and
+		// would be a guess: the interval itself stays in the record.
+		it.w.Trail.Steps = nil
+		it.withhold(reason)
+		return
+	}
+	it.rec().SE, it.rec().Scale = number(width/t), text("raw")
+	root := math.Sqrt(float64(n))
+	it.step("SD = SE·√n = %s·√%d = %s", short(width/t), n, short(root*width/t))
+	it.give(root*width/t, it.margin.Times(root/t), "sd-from-ci")
+	it.rec().SDNormal = number(root * width / z)
+	it.offer(Alternative{Name: "normal value (z) in place of t", Mean: it.rec().Mean, SD: number(root * width / z), SE: number(width / z),
+		Low: down(it.margin.Low * root / z), High: up(it.margin.High * root / z), Note: fmt.Sprintf("larger or smaller by %s%%", short(100*(z/t-1)))})
+	it.assume(fmt.Sprintf("raw mean of %d independent values, interval made as mean ± t·SE", n))
+	if t/z-1 > 0.01 {
+		it.raise("t-or-z", fmt.Sprintf("by z the SD would be %s, by t it is %s", short(root*width/z), short(root*width/t)))
+	}
+}
+
+func (it *item) stepMargin(width float64) {
+	if it.interval() {
+		low, high := it.res.Lower, it.res.Upper
+		if it.swapped {
+			low, high = high, low
+		}
+		it.step("margin = (upper − lower)/2 = (%s − %s)/2 = %s", high, minus(low), short(width))
+		return
+	}
+	it.step("margin = %s as printed", it.res.GivenValue)
+}
+
+// minus puts a negative number that follows a sign into brackets.
+func minus(s string) string {
+	if len(s) > 0 && s[0] == '-' {
+		return "(" + s + ")"
+	}
+	return s
+}
+
+// offerLevels shows what the SD would be at the usual levels.
+func (it *item) offerLevels(width float64, n int) {
+	if n < 2 {
+		return
+	}
+	for _, level := range []float64{95, 90, 99} {
+		t, err := convert.TwoSided(level, float64(n-1))
+		if err != nil {
+			continue
+		}
+		root := math.Sqrt(float64(n))
+		it.offer(Alternative{Name: fmt.Sprintf("if the level is %s%%", short(level)), SD: number(root * width / t), SE: number(width / t),
+			Low: down(it.margin.Low * root / t), High: up(it.margin.High * root / t)})
+	}
+}

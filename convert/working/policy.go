@@ -1,0 +1,133 @@
+package working
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"halfspan/extract/result"
+)
+
+// rule is one line of the policy: what is done with a result it applies to.
+type rule struct {
+	applies func(*item) bool
+	act     func(*item)
+}
+
+// policy is the table of what is converted and what is withheld. The first rule
+// that applies decides; the last one applies to everything.
+func policy() []rule {
+	return []rule{
+		{unreadable, withholdUnreadable},
+		{printedAs(result.SD), takeSD},
+		{printedAs(result.Unstated), weighReadings},
+		{isStatistic(result.Median), proposeFromMedian},
+		{printedAs(result.IQR, result.Range), withholdQuantiles},
+		{isStatistic(result.MeanDifference, result.RiskDifference, result.Coefficient), ownScaleRaw},
+		{isStatistic(result.Ratio, result.GeometricMean), ownScaleLog},
+		{isStatistic(result.Proportion, result.Rate), ownScaleProportion},
+		{not(isStatistic(result.Mean, result.MeanChange)), withholdKind},
+		{printedAs(result.CI), meanFromInterval},
+		{printedAs(result.SE), meanFromSE},
+		{always, withholdKind},
+	}
+}
+
+func applyPolicy(it *item) {
+	for _, r := range policy() {
+		if r.applies(it) {
+			r.act(it)
+			return
+		}
+	}
+}
+
+func always(*item) bool { return true }
+
+func not(f func(*item) bool) func(*item) bool {
+	return func(it *item) bool { return !f(it) }
+}
+
+func printedAs(kinds ...result.GivenAs) func(*item) bool {
+	return func(it *item) bool { return slices.Contains(kinds, it.res.GivenAs) }
+}
+
+func isStatistic(kinds ...result.Statistic) func(*item) bool {
+	return func(it *item) bool { return slices.Contains(kinds, it.res.Statistic) }
+}
+
+func unreadable(it *item) bool {
+	return it.val == nil && !it.interval()
+}
+
+func withholdUnreadable(it *item) {
+	it.withhold("no spread that can be read as a number is printed")
+}
+
+func withholdKind(it *item) {
+	if it.res.Statistic == "" {
+		it.raise("statistic-unclear", "the paper does not say what the estimate is")
+		it.withhold("the paper does not say what the estimate is")
+		return
+	}
+	it.withhold(fmt.Sprintf("an SD cannot be worked out from this kind of result (%s, given as %s)", it.res.Statistic, it.res.GivenAs))
+}
+
+func withholdQuantiles(it *item) {
+	what := "quartiles"
+	if it.res.GivenAs == result.Range {
+		what = "a range"
+	}
+	it.withhold(fmt.Sprintf("%s beside something that is not a median: no published method applies", what))
+}
+
+// obstacle is a condition under which the interval or SE of a mean does not lead
+// to an SD: the flag raised, and the reason given.
+type obstacle struct {
+	flag   string
+	reason string
+	found  func(*item) (detail string, yes bool)
+}
+
+// obstacles are the conditions of the conversion of a mean, in the order in which
+// they are given as the reason; all that apply raise their flag.
+func obstacles() []obstacle {
+	return []obstacle{
+		{"adjusted", "the mean is adjusted: its interval or SE reflects a model, not the spread of the values", func(it *item) (string, bool) {
+			return "the paper says so", it.res.Adjusted == "yes"
+		}},
+		{"model-based", "the mean comes from a model: its interval or SE does not lead to the SD of the values", func(it *item) (string, bool) {
+			return strings.Join(it.res.Evidence.Model, ", "), len(it.res.Evidence.Model) > 0
+		}},
+		{"clustered", "clustered data: SE·√n is not the SD", design("clustered")},
+		{"crossover", "a crossover design: the interval may rest on differences within the same units", design("crossover")},
+		{"bootstrap-interval", "a bootstrap interval: t and z do not apply", design("bootstrap")},
+		{"bayesian-interval", "a credible interval: t and z do not apply", design("bayesian")},
+		{"simultaneous-interval", "a simultaneous interval: wider than t for one mean", design("simultaneous")},
+		{"one-sided", "a one-sided limit: half its distance is not a margin", design("one-sided")},
+		{"back-transformed", "a back-transformed mean: its interval belongs to another scale", design("back-transformed")},
+		{"log-scale", "analysed on the log scale: its interval belongs to that scale", design("log-scale")},
+		{"adjusted-unclear", "the paper leaves open whether the mean is adjusted or comes from a model", func(it *item) (string, bool) {
+			return "neither said nor ruled out", it.res.Adjusted == "unclear"
+		}},
+	}
+}
+
+func design(word string) func(*item) (string, bool) {
+	return func(it *item) (string, bool) {
+		return "the paper speaks of it", slices.Contains(it.res.Evidence.Design, word)
+	}
+}
+
+// blocked raises every obstacle's flag and gives the first one's reason.
+func blocked(it *item) (reason string) {
+	for _, o := range obstacles() {
+		if detail, yes := o.found(it); yes {
+			it.raise(o.flag, detail)
+			if reason == "" {
+				reason = o.reason
+			}
+		}
+	}
+	return reason
+}
