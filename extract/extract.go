@@ -3,6 +3,7 @@ package extract
 import (
 	"fmt"
 
+	"halfspan/extract/jats"
 	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
@@ -17,6 +18,9 @@ type Options struct {
 // told by content, not by name. An error says what is wrong with the file and
 // what to do; what could be read in part comes back with Document.Problems.
 func Read(path string, content []byte, opt Options) (*paper.Document, error) {
+	if jats.Is(content) {
+		return jats.Read(path, content)
+	}
 	return nil, fmt.Errorf("%s: no reader for this kind of file", path)
 }
 

@@ -1,0 +1,269 @@
+package jats
+
+import (
+	"regexp"
+	"sort"
+	"strconv"
+	"strings"
+
+	"halfspan/extract/paper"
+)
+
+// mostHeadRows is how many heading rows are looked for where none are marked.
+const mostHeadRows = 5
+
+var (
+	// dataCell is a cell that prints a value: a number with nothing but marks,
+	// a spread or an interval after it.
+	dataCell = regexp.MustCompile(`^[(\[]?\s*[<>≤≥=~+–−‐-]?\s*[$£€]?[0-9.][0-9.,·\s\x{00A0}\x{2009}]*%?\s*(?:[\*†‡§¶#a-d]{0,3}|(?:±|\+/|\(|\[|–|−|‐|-|/|to\b|,|;|\n).*)$`)
+	// plainWhole is a number that a heading may print too: a week, a dose, a year.
+	plainWhole = regexp.MustCompile(`^\(?[0-9]{1,4}\)?%?$`)
+	// headWord is what a second heading row prints under the first.
+	headWord = regexp.MustCompile(`(?i)^\W*(?:n|no\.?|p|%|sd|se|sem|ci|mean|median|iqr|range|value|\W*p[ -]?values?)\W*$|\bn\s*=|\bmean\b|\bmedian\b|\bSD\b|\bSE\b|\bSEM\b|\bCI\b|%|\bp[ -]values?\b`)
+)
+
+// isData reports whether row r prints values. Whole numbers alone do not tell.
+func isData(cells []*paper.Cell) bool {
+	data, filled, telling := 0, 0, 0
+	for i, c := range cells {
+		if i == 0 && len(cells) > 1 || c.Text.S == "" {
+			continue
+		}
+		filled++
+		if dataCell.MatchString(c.Text.S) {
+			data++
+			if !plainWhole.MatchString(c.Text.S) {
+				telling++
+			}
+		}
+	}
+	return telling > 0 && 2*data > filled
+}
+
+// rowCells gives the cells that begin in each row, by column.
+func rowCells(t *paper.Table) [][]*paper.Cell {
+	rows := make([][]*paper.Cell, t.Rows)
+	for i := range t.Cells {
+		c := &t.Cells[i]
+		rows[c.Row] = append(rows[c.Row], c)
+	}
+	return rows
+}
+
+// labelOnly reports whether a row holds one text only, in its first cell.
+func labelOnly(cells []*paper.Cell) bool {
+	for i, c := range cells {
+		if (i == 0) != (c.Text.S != "") {
+			return false
+		}
+	}
+	return len(cells) > 0
+}
+
+// headRows tells how many rows at the top are column headings: those of the
+// <thead>, as long as they print no values; without one, rows marked as
+// headings, else bold rows, else the rows above the first one with values.
+func headRows(t *paper.Table, rows []rawRow) int {
+	cells := rowCells(t)
+	marked := 0
+	for marked < t.Rows && rows[marked].in == "thead" {
+		marked++
+	}
+	n := marked
+	for i := 1; i < marked; i++ {
+		if isData(cells[i]) {
+			n = i
+			break
+		}
+	}
+	if n == 0 || n == t.Rows && t.Rows > 1 {
+		n = findHeads(t, cells)
+	}
+	for n > 0 && n < t.Rows-1 && n < mostHeadRows && continuesHead(cells[n]) {
+		n++
+	}
+	return n
+}
+
+// findHeads finds the heading rows of a table without a usable <thead>.
+func findHeads(t *paper.Table, cells [][]*paper.Cell) int {
+	for _, is := range []func(*paper.Cell) bool{
+		func(c *paper.Cell) bool { return c.Head },
+		func(c *paper.Cell) bool { return allBold(&c.Text) },
+	} {
+		if n := leading(cells, is); n > 0 && n < t.Rows && n <= mostHeadRows {
+			return n
+		}
+	}
+	for i, row := range cells {
+		if i > mostHeadRows {
+			break
+		}
+		if !isData(row) {
+			continue
+		}
+		for i > 1 && labelOnly(cells[i-1]) { // the first row group, not a heading
+			i--
+		}
+		return i
+	}
+	if t.Rows > 1 && t.Cols > 1 {
+		return 1
+	}
+	return 0
+}
+
+// leading counts the rows at the top whose filled cells are all so.
+func leading(rows [][]*paper.Cell, is func(*paper.Cell) bool) int {
+	for i, row := range rows {
+		filled := 0
+		for _, c := range row {
+			if c.Text.S == "" {
+				continue
+			}
+			filled++
+			if !is(c) {
+				return i
+			}
+		}
+		if i > 0 && filled < 2 {
+			return i
+		}
+	}
+	return len(rows)
+}
+
+func allBold(t *paper.TextRun) bool {
+	covered := 0
+	for _, s := range t.Styles {
+		if s.Kind == paper.Bold {
+			covered += s.End - s.Start
+		}
+	}
+	return covered > 0 && covered >= len(strings.ReplaceAll(t.S, "\n", ""))-1
+}
+
+// continuesHead reports whether a row of the body, right below the headings,
+// is one more heading row: its stub is empty and it names statistics or n's.
+func continuesHead(row []*paper.Cell) bool {
+	if len(row) < 2 || row[0].Col != 0 || row[0].Text.S != "" {
+		return false
+	}
+	filled, words := 0, 0
+	for _, c := range row[1:] {
+		if c.Text.S == "" {
+			continue
+		}
+		filled++
+		if headWord.MatchString(c.Text.S) && !dataCell.MatchString(c.Text.S) {
+			words++
+		}
+	}
+	return filled > 0 && words == filled
+}
+
+// notesFromRows moves rows at the end that hold one text over the whole width
+// to the notes: there is nothing below that they could be the heading of.
+func notesFromRows(t *paper.Table, rows []rawRow) []rawRow {
+	cells := rowCells(t)
+	end := t.Rows
+	for end > 1 && noteRow(cells[end-1], t.Cols, rows[end-1].in) {
+		end--
+	}
+	for i := end; i < t.Rows; i++ {
+		t.Notes = append(t.Notes, splitNotes(cells[i][0].Text)...)
+	}
+	return dropRows(t, rows, func(row int) bool { return row >= end })
+}
+
+func noteRow(row []*paper.Cell, cols int, in string) bool {
+	if in == "thead" || !labelOnly(row) || row[0].Col != 0 {
+		return false
+	}
+	const long = 80 // longer than a row label without values
+	return cols > 1 && row[0].ColSpan == cols || in == "tfoot" || cols > 2 && len(row[0].Text.S) > long
+}
+
+// Indentation of row headings.
+
+// spaceWidth gives the width of spaces that are used to indent.
+var spaceWidth = map[rune]int{
+	'\u00A0': 2, '\u2000': 4, '\u2001': 8, '\u2002': 4, '\u2003': 8, '\u2004': 3, '\u2005': 2,
+	'\u2006': 2, '\u2007': 4, '\u2008': 2, '\u2009': 2, '\u200A': 1, '\u202F': 2, '\u3000': 8,
+}
+
+// leadingWidth adds up the special spaces that s begins with.
+func leadingWidth(s string) int {
+	width := 0
+	for _, r := range s {
+		w, ok := spaceWidth[r]
+		if !ok && r != ' ' && r != '\n' {
+			break
+		}
+		width += w
+	}
+	return width
+}
+
+var paddingStyle = regexp.MustCompile(`(?:padding-left|text-indent|margin-left)\s*:\s*([0-9]+(?:\.[0-9]+)?)\s*(em|pt|px|mm|cm|%)?`)
+
+// styleIndent reads an indentation from a style attribute, in the measure of
+// spaceWidth (8 to the em).
+func styleIndent(style string) int {
+	m := paddingStyle.FindStringSubmatch(style)
+	if m == nil {
+		return 0
+	}
+	v, err := strconv.ParseFloat(m[1], 64)
+	if err != nil || v > 1000 {
+		return 0
+	}
+	unit := map[string]float64{"em": 8, "": 0.6, "pt": 0.7, "px": 0.6, "mm": 2, "cm": 20, "%": 1}[m[2]]
+	return int(v * unit)
+}
+
+// markedIndent is the indentation that an element inside the cell asks for.
+func (r *reader) markedIndent(n *node) int {
+	for _, k := range n.kids {
+		if k.name == "" {
+			if strings.TrimSpace(string(r.src.B[k.start:k.end])) != "" {
+				return 0
+			}
+			continue
+		}
+		width := styleIndent(k.get("style"))
+		if k.name == "list" || strings.Contains(k.get("content-type"), "indent") || strings.Contains(k.get("style-type"), "indent") {
+			width += spaceWidth['\u2003']
+		}
+		if width > 0 {
+			return width
+		}
+		return r.markedIndent(k)
+	}
+	return 0
+}
+
+// rankIndents turns widths of indentation into steps, for the stub alone:
+// numbers are moved by spaces to line up.
+func rankIndents(t *paper.Table) {
+	seen := map[int]bool{}
+	for i := range t.Cells {
+		c := &t.Cells[i]
+		if c.Col == 0 && c.Row >= t.HeadRows && c.Text.S != "" {
+			seen[c.Indent] = true
+		}
+	}
+	var widths []int
+	for w := range seen {
+		widths = append(widths, w)
+	}
+	sort.Ints(widths)
+	for i := range t.Cells {
+		c := &t.Cells[i]
+		if c.Col != 0 || c.Row < t.HeadRows || c.Text.S == "" {
+			c.Indent = 0
+			continue
+		}
+		c.Indent = sort.SearchInts(widths, c.Indent)
+	}
+}
