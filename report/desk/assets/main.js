@@ -1,0 +1,267 @@
+// The desk: holds which row and cell are under check, listens to keys, sends
+// decisions. The ledger on disk is the only truth; this page can be reloaded or
+// opened twice at any moment.
+import { get, post, Refused } from './api.js';
+import { $, el, replace, say } from './dom.js';
+import { Leaf } from './leaf.js';
+import { addForm, amendForm, askQuery, askReason, find, showKeys, typeForm, wordAt, wordsIn } from './forms.js';
+import { fieldsView, flagsView, rowView, workingView } from './row.js';
+import { settleView } from './settle.js';
+import { printed } from './words.js';
+
+const leaf = new Leaf();
+const state = { rows: [], order: [], at: 0, row: null, cell: 0, aside: false, form: null, field: null, flags: {}, version: '', mode: document.body.dataset.mode, shownAt: 0, typed: new Map() };
+
+const visible = () => state.rows.filter((r) => state.aside || !r.aside);
+const cellNow = () => state.row?.cells[state.cell];
+const hidden = (cell) => state.mode === 'type-first' && cell.type_first && !state.typed.has(cell.working.record.id);
+
+async function load(keep) {
+  const data = await get('rows');
+  state.rows = data.rows;
+  state.version = data.version;
+  state.flags = data.flags;
+  const c = data.counts;
+  $('progress').textContent = `${c.decided} of ${c.all} decided · ${c.doubtful} doubtful open`;
+  $('aside-count').textContent = String(c.aside);
+  const rows = visible();
+  const want = keep ?? decodeURIComponent(location.hash.slice(1)).split('|')[0];
+  const found = rows.findIndex((r) => r.key === want);
+  const open = rows.findIndex((r) => r.cells.some((x) => x.state === 'open'));
+  await show(found >= 0 ? found : Math.max(open, 0), found >= 0 && !keep ? decodeURIComponent(location.hash.slice(1)).split('|')[1] : cellNow()?.working.record.id);
+}
+
+async function show(at, id) {
+  const rows = visible();
+  if (!rows.length) { replace($('row'), el('h2', {}, 'Nothing to check here'), el('p', {}, 'No result fits. Show what is set aside with s, or start the desk without filters.')); replace($('cell')); return; }
+  state.at = Math.min(Math.max(at, 0), rows.length - 1);
+  const listed = rows[state.at];
+  const row = await get('row', { key: listed.key });
+  if (visible()[state.at]?.key !== listed.key) return; // moved on meanwhile
+  state.row = row;
+  const byID = row.cells.findIndex((c) => c.working.record.id === id);
+  const firstOpen = row.cells.findIndex((c) => c.state === 'open');
+  state.cell = byID >= 0 ? byID : Math.max(firstOpen, 0);
+  state.form = null;
+  draw();
+}
+
+function draw() {
+  const cell = cellNow(), r = cell.working.record;
+  history.replaceState(null, '', `#${encodeURIComponent(`${state.row.key}|${r.id}`)}`);
+  $('where').textContent = `${state.row.paper_name} — row ${state.at + 1} of ${visible().length}`;
+  replace($('row'), rowView(state.row, state.cell, (i) => { state.cell = i; state.form = null; draw(); }, state.mode === 'type-first' && state.row.cells.some(hidden)));
+  drawCell();
+  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch(fail);
+  state.shownAt = performance.now();
+}
+
+function drawCell() {
+  const cell = cellNow();
+  state.field = null;
+  leaf.onarea = null;
+  $('view').classList.toggle('pick', state.form === 'amend' || hidden(cell));
+  if (state.mode === 'settle') { replace($('cell'), settleView(cell, settle)); return; }
+  if (hidden(cell)) { replace($('cell'), typeForm(cell, compare, (input) => { state.field = input; })); $('cell').querySelector('input')?.focus(); return; }
+  if (state.form === 'amend') {
+    const key = `draft:${cell.working.record.id}`;
+    const draft = { fields: {}, ...JSON.parse(sessionStorage.getItem(key) ?? '{}'), keep: (d) => sessionStorage.setItem(key, JSON.stringify(d)) };
+    replace($('cell'), amendForm(cell, draft, { onsave: (d) => amend(cell, d, key), onleave: () => { state.form = null; sessionStorage.removeItem(key); drawCell(); $('side').focus(); }, onfocus: (i) => { state.field = i; } }));
+    $('cell').querySelector('input')?.focus();
+    return;
+  }
+  const typed = state.typed.get(cell.working.record.id);
+  const d = cell.decision;
+  replace($('cell'),
+    el('h3', {}, 'As read'), fieldsView(cell), typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
+    flagsView(cell.working, state.flags), workingView(cell.working),
+    d && el('p', {}, `${d.decision} by ${d.checker}, ${d.decided_at}${d.reason ? `: ${d.reason}` : ''}${d.note ? ` (${d.note})` : ''}`),
+    el('div', { class: 'choices', role: 'group', 'aria-label': 'Decide' }, [['Enter', 'Confirm row', 'confirm-row'], ['c', 'Confirm cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']]
+      .map(([k, label, what]) => el('button', { type: 'button', 'data-do': what }, label, ' ', el('kbd', {}, k)))));
+}
+
+function fail(error) {
+  say(error.message, true);
+  if (!(error instanceof Refused)) throw error;
+}
+
+async function refresh(advance) {
+  const key = state.row.key, id = cellNow()?.working.record.id;
+  await load(key);
+  if (!advance) return;
+  if (state.row.cells.some((c) => c.state === 'open')) {
+    state.cell = state.row.cells.findIndex((c) => c.state === 'open');
+    draw();
+  } else if (id) next((r) => r.cells.some((c) => c.state === 'open'), 'That was the last open row.');
+}
+
+async function decide(cells, decision, more = {}) {
+  const seen = Math.round(performance.now() - state.shownAt);
+  let done = 0;
+  try {
+    for (const cell of cells) {
+      const r = cell.working.record;
+      await post('decide', { id: r.id, hash: cell.hash, decision, mode: state.typed.has(r.id) ? 'typed first' : 'shown', seen_ms: Math.round(seen / cells.length), ...more });
+      done++;
+    }
+    say(`${decision}: ${cells.map((c) => printed(c.working.record)).join('; ')}`);
+  } catch (e) {
+    if (done) say(`${done} of ${cells.length} cells were ${decision}. ${e.message}`, true); else fail(e);
+    await refresh(false);
+    return;
+  }
+  await refresh(true);
+}
+
+// onScreen are the cells of the row whose cards can be seen whole right now.
+function onScreen() {
+  const side = $('side').getBoundingClientRect();
+  return state.row.cells.filter((c) => {
+    const card = $('row').querySelector(`[data-id="${c.working.record.id}"]`)?.getBoundingClientRect();
+    return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1;
+  });
+}
+
+const act = {
+  'confirm-row': () => {
+    const cells = onScreen().filter((c) => c.state === 'open' && !hidden(c));
+    const held = cells.filter((c) => c.working.record.reading === 'doubtful' && c !== cellNow());
+    const go = cells.filter((c) => !held.includes(c));
+    if (!go.length) { say('Nothing open in this row can be seen. Step into a cell, or go on with ↓.'); return; }
+    if (held.length) say(`${held.length} doubtful cells stay open: step into each.`);
+    return decide(go, 'confirmed');
+  },
+  confirm: () => decide([cellNow()], 'confirmed'),
+  amend: () => { state.form = 'amend'; drawCell(); },
+  drop: async () => { const a = await askReason('Drop this cell: why?'); if (a) await decide([cellNow()], 'dropped', a); },
+  query: async () => { const note = await askQuery(); if (note) await decide([cellNow()], 'queried', { note }); },
+  undo: async () => { const { id, decision } = await post('undo', {}); await load(); say(id ? `Taken back: ${decision}.` : 'There is nothing to take back.'); if (id) jump(id); },
+  find: async () => { const key = await find(state.rows); if (key) { const i = indexOf(key); await show(i); } },
+  aside: async () => { state.aside = !state.aside; document.querySelector('[data-do=aside]').setAttribute('aria-pressed', String(state.aside)); await load(state.row?.key); say(state.aside ? 'What was set aside (baseline rows, results quoted from other studies) is shown.' : 'Baseline rows and quoted results are set aside.'); },
+  star: async () => { await post('star', { outcome: cellNow().working.record.outcome ?? '' }); await load(state.row.key); },
+  keys: showKeys,
+  add: addByHand,
+  close: async () => { await post('close'); document.body.replaceChildren(el('main', { class: 'passage' }, el('h2', {}, 'The desk is closed'), el('p', {}, 'Every decision is in the ledger. This page can be closed.'))); },
+  'zoom-in': () => zoom(1.25), 'zoom-out': () => zoom(0.8), 'zoom-fit': () => zoom(0),
+  next: () => show(state.at + 1), before: () => show(state.at - 1),
+  right: () => step(1), left: () => step(-1),
+  doubtful: () => next((r) => r.cells.some((c) => c.state === 'open' && c.reading === 'doubtful'), 'No doubtful result is open.'),
+  open: () => next((r) => r.cells.some((c) => c.state === 'open'), 'No result is open.'),
+  page: () => (document.activeElement === $('view') ? $('side') : $('view')).focus(),
+};
+
+function indexOf(key) {
+  if (!visible().some((r) => r.key === key)) state.aside = true;
+  return visible().findIndex((r) => r.key === key);
+}
+
+function jump(id) {
+  const row = state.rows.find((r) => r.cells.some((c) => c.id === id));
+  if (row) return show(indexOf(row.key), id);
+}
+
+function next(fits, none) {
+  const rows = visible();
+  for (let k = 1; k <= rows.length; k++) {
+    const i = (state.at + k) % rows.length;
+    if (fits(rows[i])) return show(i);
+  }
+  say(none);
+}
+
+function step(by) {
+  const i = state.cell + by;
+  if (i < 0 || i >= state.row.cells.length) return;
+  state.cell = i;
+  state.form = null;
+  draw();
+}
+
+function zoom(by) { leaf.setZoom(by ? leaf.zoom * by : 1); draw(); }
+
+async function amend(cell, d, key) {
+  if (!Object.keys(d.amended).length && !d.take) { say('Nothing is changed yet.'); return; }
+  if (d.reason === 'other' && !d.note.trim()) { say('"Other" needs a note.', true); return; }
+  await decide([cell], 'amended', d);
+  sessionStorage.removeItem(key);
+}
+
+async function compare(values) {
+  const r = cellNow().working.record;
+  const { same, differs } = await post('compare', { id: r.id, typed: values });
+  state.typed.set(r.id, { same, text: differs.map((d) => `${d.field}: you ${d.typed || 'nothing'}, the program ${d.read || 'nothing'}`).join('; ') });
+  draw();
+  say(same ? 'The same as the program read.' : 'Not the same: look at the page again.', !same);
+}
+
+async function settle(choice) {
+  await post('settle', { id: cellNow().working.record.id, ...choice });
+  await refresh(true);
+}
+
+async function addByHand() {
+  const paper = state.row?.paper;
+  if (!paper) return;
+  const page = leaf.shown?.page ?? '';
+  const open = async (place) => {
+    const answer = await addForm({ page, ...place });
+    if (!answer) return;
+    const { id } = await post('add', { paper, ...answer });
+    await load();
+    await jump(id);
+    say('Added by you, and worked through like the others.');
+  };
+  if (!page) { await open({}); return; }
+  say('Draw a box round the result on the page, or press Enter to type it. Esc leaves.');
+  leaf.onarea = async (a, b) => { leaf.onarea = null; try { await open(await wordsIn(paper, page, a, b)); } catch (e) { fail(e); } };
+  $('view').focus();
+  state.form = 'area';
+  act.type = () => { leaf.onarea = null; state.form = null; return open({}); };
+}
+
+leaf.onpick = async (event) => {
+  const field = state.field;
+  if (!field) return;
+  let text = event.target.closest?.('mark')?.dataset.text ?? '';
+  if (leaf.shown?.page) text = await wordAt(leaf.shown.paper, leaf.shown.page, leaf.point(event).page).catch(() => '');
+  else if (!text) text = String(getSelection());
+  const number = /[-−–]?\d[\d,.·]*\d|[-−–]?\d/.exec(text.replace(/[()[\]]/g, ''));
+  if (!number) { say('No number there.'); return; }
+  field.value = number[0].replace(/[−–]/g, '-').replace('·', '.');
+  field.dispatchEvent(new Event('input'));
+  field.focus();
+};
+
+const BY_KEY = { ArrowDown: 'next', j: 'next', ArrowUp: 'before', k: 'before', ArrowRight: 'right', ArrowLeft: 'left', Enter: 'confirm-row', c: 'confirm', a: 'amend', x: 'drop', q: 'query', u: 'undo', d: 'doubtful', o: 'open', '/': 'find', s: 'aside', w: 'star', m: 'add', '+': 'zoom-in', '=': 'zoom-in', '-': 'zoom-out', 0: 'zoom-fit', p: 'page', '?': 'keys' };
+
+let busy = Promise.resolve();
+function run(name) {
+  busy = busy.then(() => act[name]?.()).catch(fail);
+}
+
+addEventListener('keydown', (e) => {
+  if (e.ctrlKey || e.metaKey || e.altKey || $('dialog').open) return;
+  const typing = e.target.matches?.('input, select, textarea');
+  if (typing) return;
+  if (state.form === 'area') {
+    if (e.key === 'Enter') { e.preventDefault(); run('type'); return; }
+    if (e.key === 'Escape') { leaf.onarea = null; state.form = null; say(''); return; }
+  }
+  if (e.target === $('view') && e.key.startsWith('Arrow')) return;
+  if (e.key === 'Enter' && e.target.matches?.('button:not(.cells button), a')) return;
+  const name = BY_KEY[e.key];
+  if (!name) return;
+  e.preventDefault();
+  run(name);
+});
+document.addEventListener('click', (e) => { const name = e.target.closest?.('[data-do]')?.dataset.do; if (name) run(name); });
+
+// A decision taken elsewhere (another tab, the terminal) shows up here.
+setInterval(async () => {
+  if (document.hidden || state.form || $('dialog').open || document.activeElement?.matches('input, textarea, select')) return;
+  const { version } = await get('version').catch(() => ({}));
+  if (version && version !== state.version) await load(state.row?.key).catch(fail);
+}, 1500);
+addEventListener('resize', () => state.row && state.form !== 'amend' && draw());
+
+load().catch(fail);
