@@ -3,6 +3,7 @@ package words
 import (
 	"cmp"
 	"slices"
+	"strings"
 
 	"halfspan/extract/paper"
 )
@@ -20,6 +21,7 @@ type item struct {
 	base, size     int
 	glyph          int32 // index into the page's glyphs
 	space          bool  // a space stands before it in the content stream
+	hangs          bool  // an f, whose ink may hang over its advance
 	shift          paper.StyleKind
 }
 
@@ -108,14 +110,26 @@ func upright(g *paper.Glyph, dir int) item {
 	b := paper.Box{X0: draw(g.Box.X0), Y0: draw(g.Box.Y0), X1: draw(g.Box.X1), Y1: draw(g.Box.Y1)}
 	o := paper.Point{X: draw(g.Origin.X), Y: draw(g.Origin.Y)}
 	size := min(max(int(g.Size), 1), largest)
-	base := o.Y
+	left, base := o.X, o.Y
 	if dir < obliqueID {
 		b = turn(b, int16(dir*90))
+		left = [4]int32{o.X, o.Y, -o.X, -o.Y}[dir]
 		base = [4]int32{o.Y, -o.X, -o.Y, o.X}[dir]
 	}
 	x0, x1 := int(min(b.X0, b.X1)), int(max(b.X0, b.X1))
 	y0, y1 := int(min(b.Y0, b.Y1)), int(max(b.Y0, b.Y1))
-	return item{x0: x0, x1: x1, y0: y0, y1: y1, base: int(base), size: size}
+	it := item{y0: y0, y1: y1, base: int(base), size: size, hangs: strings.HasSuffix(g.Text, "f")}
+	// Some boxes hold the ink as well as the advance. An f that hangs over on
+	// the left does so on the right: without this the space after an italic f
+	// would vanish.
+	if over := int(left) - x0; over > 0 && over*3 < size && x1-over > int(left) {
+		x0 = int(left)
+		if it.hangs {
+			x1 -= over
+		}
+	}
+	it.x0, it.x1 = x0, x1
+	return it
 }
 
 func draw(v int32) int32 { return min(max(v, -farthest), farthest) }

@@ -98,7 +98,10 @@ func apart(a, b *item, right, track int) bool {
 	if b.space && b.glyph > a.glyph {
 		return gap >= 4
 	}
-	return gap >= 15
+	if a.hangs {
+		gap += 7
+	}
+	return gap >= 10
 }
 
 // tracking is the letter spacing of a line in hundredths of an em, where it is
