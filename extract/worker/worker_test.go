@@ -58,9 +58,9 @@ func testJob(job []byte, alive Alive) ([]byte, error) {
 	case "panic":
 		panic("bees in the hive")
 	case "overflow":
-		var f func(int) int
-		f = func(n int) int { return f(n+1) + 1 }
-		return nil, fmt.Errorf("%d", f(0))
+		var f func([1024]int) int // large frames: the runtime counts them all before it dies
+		f = func(a [1024]int) int { a[a[0]%1024]++; return f(a) + a[1] }
+		return nil, fmt.Errorf("%d", f([1024]int{}))
 	case "leave":
 		os.Exit(5)
 	case "pid":
