@@ -1,0 +1,18 @@
+package grammar
+
+import "strconv"
+
+// value is the number behind a printed value, 0 for none.
+func value(v string) float64 {
+	f, err := strconv.ParseFloat(v, 64)
+	if err != nil {
+		return 0
+	}
+	return f
+}
+
+// Float is the number behind the print; false for a bound that is no number.
+func (n Number) Float() (float64, bool) {
+	f, err := strconv.ParseFloat(n.Value, 64)
+	return f, err == nil
+}
