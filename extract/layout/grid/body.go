@@ -1,0 +1,267 @@
+package grid
+
+import (
+	"strings"
+	"unicode"
+)
+
+// bodyBelow finds the body of a table between height top and limit, within
+// sides. open says that it reaches the foot of the page without an end.
+func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok bool) {
+	area := box{sides.x0 - size/2, top, sides.x1 + size/2, limit}
+	lines := s.linesIn(area)
+	if len(lines) == 0 || lines[0].top-top > 5*size {
+		return box{}, false, false
+	}
+	end := s.lastRule(lines, sides, top, limit, size)
+	last := -1
+	tabular := 0
+	for i := range lines {
+		ln := &lines[i]
+		if ln.base <= end {
+			last = i
+			if s.isTabular(ln) {
+				tabular++
+			}
+			continue
+		}
+		if !s.goesOn(lines, i, last, end, sides) {
+			break
+		}
+		last = i
+		tabular++
+	}
+	if last < 0 || tabular == 0 && end == 0 {
+		return box{}, false, false
+	}
+	body = box{area.x0, top, area.x1, max(lines[last].bot, end)}
+	open = end < lines[last].base && lines[last].bot > s.footTop()-4*size || end > s.footTop()-4*size
+	return body, open, tabular > 0
+}
+
+// footTop is the height of the lowest line that is not a running foot.
+func (s *sheet) footTop() int {
+	n := len(s.segs)
+	if n == 0 {
+		return s.bounds.bot
+	}
+	i := n - 1
+	for ; i > 0 && n-i < 8; i-- {
+		if s.segs[i].base-s.segs[i-1].base > 2*s.bodySize {
+			return s.segs[i-1].bot
+		}
+	}
+	return s.segs[n-1].bot
+}
+
+// lastRule is the height of the last rule that belongs to the table, 0 where
+// there is none: rules of the table's width, with no prose between them.
+func (s *sheet) lastRule(lines []line, sides box, top, limit, size int) int {
+	end, k := 0, 0
+	for _, r := range rulesIn(s.rules, box{sides.x0, top - size, sides.x1, limit}) {
+		full := abs(r.x0-sides.x0) <= 3*size && abs(r.x1-sides.x1) <= 3*size
+		part := r.x0 >= sides.x0-size && r.x1 <= sides.x1+size
+		if !full && !part {
+			continue
+		}
+		prose, plain, bare := 0, 0, 0
+		start := k
+		for ; k < len(lines) && lines[k].base < r.y; k++ {
+			if s.isText(&lines[k]) {
+				prose++
+			} else {
+				plain++
+			}
+			if k > 0 && lines[k].top-lines[k-1].bot > 5*size {
+				bare++
+			}
+		}
+		if prose > 1 && prose*2 > plain || bare > 0 && end != 0 || k == start && r.y-max(end, top) > 4*size {
+			break
+		}
+		if full || k > start {
+			end = r.y
+		}
+	}
+	return end
+}
+
+// isText reports whether most of a line is running text in the page's size.
+func (s *sheet) isText(ln *line) bool {
+	rs := s.runs(ln, 100)
+	words, prose := 0, 0
+	for i := range rs {
+		words += len(rs[i].toks)
+		if s.isProse(&rs[i]) {
+			prose += len(rs[i].toks)
+		}
+	}
+	return prose*3 > words*2
+}
+
+// isTabular reports whether a line has cells: at least two runs, not prose.
+func (s *sheet) isTabular(ln *line) bool {
+	return len(s.runs(ln, 90)) >= 2 && !s.isText(ln)
+}
+
+// goesOn reports whether line i, below the last rule, still belongs to the
+// table whose last line is lines[last].
+func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
+	ln := &lines[i]
+	if s.isText(ln) || s.isNoteStart(ln) && !s.isTabular(ln) {
+		return false
+	}
+	prevBot := end
+	size := ln.size
+	if last >= 0 {
+		prevBot = max(end, lines[last].bot)
+		size = lines[last].size
+		if abs(ln.size-size)*100 > 12*size {
+			return false
+		}
+	}
+	if ln.top-prevBot > 3*size {
+		return false
+	}
+	if s.isTabular(ln) {
+		return true
+	}
+	// A line of its own (a row group, a wrapped label) goes on only where cells follow.
+	for k := i + 1; k < len(lines) && k <= i+4; k++ {
+		if lines[k].top-lines[k-1].bot > 3*size || s.isText(&lines[k]) || abs(lines[k].size-size)*100 > 12*size {
+			return false
+		}
+		if s.isTabular(&lines[k]) {
+			return true
+		}
+	}
+	return false
+}
+
+// noteWords begin a note under a table.
+var noteWords = []string{
+	"note", "abbreviation", "data are", "data is", "data were", "values are", "values were", "value are", "key:", "legend",
+	"source", "all values", "results are", "ci,", "ci:", "ci ", "sd,", "sd:", "sd ", "se ", "sem", "ns,", "ns:", "adjusted",
+	"p value", "p-value", "mean", "plus-minus", "unless", "figures are", "numbers are", "iqr", "bmi", "or,", "or:", "hr,", "hr:",
+	"*", "†", "‡", "§", "¶", "#", "||", "‖",
+}
+
+// isNoteStart reports whether a line begins as a note does: with a mark, or in
+// words that notes begin with.
+func (s *sheet) isNoteStart(ln *line) bool {
+	t := &s.toks[ln.toks[0]]
+	if t.shift != 0 {
+		return true
+	}
+	low := strings.ToLower(s.join(ln.toks))
+	for _, w := range noteWords {
+		if strings.HasPrefix(low, w) {
+			return true
+		}
+	}
+	return false
+}
+
+// notesBelow gives the note lines under a body.
+func (s *sheet) notesBelow(body box, limit int) []line {
+	lines := s.linesIn(box{body.x0, body.bot, body.x1, limit})
+	var out []line
+	for i := range lines {
+		ln := &lines[i]
+		small := ln.size*100 <= 96*s.bodySize
+		start := s.isNoteStart(ln)
+		rs := s.runs(ln, 150)
+		if len(rs) > 1 && s.isText(ln) {
+			break
+		}
+		if len(out) == 0 {
+			if ln.top-body.bot > 3*ln.size || !small && !start {
+				break
+			}
+			out = append(out, *ln)
+			continue
+		}
+		prev := &out[len(out)-1]
+		if abs(ln.size-out[0].size)*100 > 8*out[0].size {
+			break
+		}
+		gap := ln.top - prev.bot
+		if gap > 2*ln.size || gap*10 > 7*ln.size && !start && !(small && gap <= ln.size) {
+			break
+		}
+		if !small && !start && s.endsNote(prev, body) {
+			break
+		}
+		if s.isHeadingLine(ln) && !start && gap*10 > 4*ln.size {
+			break
+		}
+		out = append(out, *ln)
+	}
+	return out
+}
+
+// endsNote reports whether a note line ends so short that a new paragraph
+// follows it.
+func (s *sheet) endsNote(ln *line, body box) bool {
+	last := s.toks[ln.toks[len(ln.toks)-1]].text
+	return strings.HasSuffix(last, ".") && ln.x1 < body.x1-4*ln.size
+}
+
+// isHeadingLine reports whether a line is bold throughout: a heading that
+// follows the table.
+func (s *sheet) isHeadingLine(ln *line) bool {
+	letters := 0
+	for _, i := range ln.toks {
+		t := &s.toks[i]
+		if !t.bold {
+			return false
+		}
+		for _, c := range t.text {
+			if unicode.IsLetter(c) {
+				letters++
+			}
+		}
+	}
+	return letters > 3
+}
+
+// bodyAbove finds the body of a table whose caption stands below it.
+func (s *sheet) bodyAbove(l *label, labels []label, k int, taken []box) (body box, caption []line, ok bool) {
+	top := s.bounds.top
+	for i := range labels {
+		if o := &labels[i]; i != k && o.box.bot < l.box.top && o.box.x0 <= l.box.x1 && l.box.x0 <= o.box.x1 {
+			top = max(top, o.box.bot)
+		}
+	}
+	for _, t := range taken {
+		if t.bot < l.box.top && t.x0 <= l.box.x1 && l.box.x0 <= t.x1 {
+			top = max(top, t.bot)
+		}
+	}
+	left, right := s.barriers(l, labels)
+	sides := box{x0: l.box.x0, x1: l.box.x1}
+	for _, r := range rulesIn(s.rules, box{l.box.x0, l.box.top - 6*l.size, l.box.x1, l.box.top}) {
+		if r.x1-r.x0 >= 6*l.size {
+			sides = box{x0: max(r.x0, left), x1: min(r.x1, right)}
+		}
+	}
+	lines := s.linesIn(box{sides.x0 - l.size/2, top, sides.x1 + l.size/2, l.box.top - 1})
+	first, tabular := len(lines), 0
+	below := l.box.top
+	for i := len(lines) - 1; i >= 0; i-- {
+		ln := &lines[i]
+		if below-ln.bot > 4*l.size || s.isText(ln) {
+			break
+		}
+		if s.isTabular(ln) {
+			tabular++
+		}
+		first, below = i, ln.top
+	}
+	if tabular < 2 {
+		return box{}, nil, false
+	}
+	body = box{sides.x0 - l.size/2, lines[first].top - l.size/2, sides.x1 + l.size/2, lines[len(lines)-1].bot}
+	caption = s.captionLines(l, sides, 0)
+	return body, caption, true
+}

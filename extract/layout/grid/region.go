@@ -1,0 +1,139 @@
+package grid
+
+import (
+	"slices"
+
+	"halfspan/extract/layout/words"
+)
+
+// Ref points to a word of a frame.
+type Ref struct{ Line, Word int32 }
+
+// Region is one table found on a page, or its part on this page.
+type Region struct {
+	Label     string // "Table 2"; empty when none is printed
+	Continued bool   // goes on from an earlier page: said so, or begins without a caption at the page's top
+	Open      bool   // reaches the foot of the page without an end: may go on on the next
+	Picture   bool   // a caption over a picture, no words
+	Caption   []Ref  // label and caption
+	Body      []Ref
+	Notes     []Ref
+
+	sheet            *sheet
+	area             box // caption, body and notes
+	body             box
+	label            label
+	caption, noteLns []line
+}
+
+// Find gives the table regions of one frame from top to bottom. bodySize is the
+// paper's usual font size in 1/100 point, 0 where it is not known.
+func Find(f *words.Frame, bodySize int32) []Region {
+	if f.Oblique {
+		return nil
+	}
+	s := newSheet(f, int(bodySize))
+	labels := s.labels()
+	var out []Region
+	taken := []box{}
+	for i := range labels {
+		if labels[i].figure {
+			continue
+		}
+		r, ok := s.regionOf(labels, i, taken)
+		if !ok {
+			continue
+		}
+		taken = append(taken, r.area)
+		out = append(out, r)
+	}
+	for i := range out {
+		out[i].collect()
+	}
+	slices.SortStableFunc(out, func(a, b Region) int { return a.area.top - b.area.top })
+	return out
+}
+
+// collect lists the words of the region.
+func (r *Region) collect() {
+	refs := func(lines []line) []Ref {
+		var out []Ref
+		for i := range lines {
+			for _, t := range lines[i].toks {
+				out = append(out, Ref{r.sheet.toks[t].line, r.sheet.toks[t].word})
+			}
+		}
+		return out
+	}
+	r.Caption, r.Notes = refs(r.caption), refs(r.noteLns)
+	r.Body = refs(r.sheet.linesIn(r.body))
+}
+
+// regionOf finds what belongs to label k.
+func (s *sheet) regionOf(labels []label, k int, taken []box) (Region, bool) {
+	l := labels[k]
+	r := Region{Label: l.text, Continued: l.continued, sheet: s, label: l}
+	sides, top := s.sidesBelow(&l, labels)
+	caption := s.captionLines(&l, sides, top)
+	bottom := l.box.bot
+	if n := len(caption); n > 0 {
+		bottom = caption[n-1].bot
+	}
+	limit := s.floor(labels, k, sides, bottom)
+	body, open, ok := s.bodyBelow(sides, bottom, limit, l.size)
+	if !ok {
+		body, caption, ok = s.bodyAbove(&l, labels, k, taken)
+		open = false
+		if !ok {
+			return s.pictured(r, caption, sides, bottom)
+		}
+		r.caption, r.body, r.Open = caption, body, false
+		r.area = s.areaOf(&r)
+		return r, true
+	}
+	r.caption, r.body, r.Open = caption, body, open
+	r.noteLns = s.notesBelow(body, limit)
+	if len(r.noteLns) > 0 {
+		r.Open = false
+	}
+	r.area = s.areaOf(&r)
+	return r, true
+}
+
+func (s *sheet) areaOf(r *Region) box {
+	a := r.body
+	for _, ls := range [][]line{r.caption, r.noteLns} {
+		for i := range ls {
+			a = a.union(ls[i].box)
+		}
+	}
+	return a
+}
+
+// pictured makes a Picture region where a caption stands at an image.
+func (s *sheet) pictured(r Region, caption []line, sides box, bottom int) (Region, bool) {
+	for _, m := range s.images {
+		near := m.top-bottom < 6*r.label.size && m.top >= r.label.box.top-6*r.label.size ||
+			r.label.box.top-m.bot < 4*r.label.size && r.label.box.top >= m.bot-r.label.size
+		if near && m.x0 < sides.x1 && sides.x0 < m.x1 && m.width() > 8*r.label.size && m.bot-m.top > 4*r.label.size {
+			r.Picture, r.caption, r.body = true, caption, m
+			r.area = s.areaOf(&r)
+			return r, true
+		}
+	}
+	return r, false
+}
+
+// floor is the height where the next caption that shares the table's sides
+// begins, or the foot of the page.
+func (s *sheet) floor(labels []label, k int, sides box, from int) int {
+	limit := s.bounds.bot
+	for i := range labels {
+		o := &labels[i]
+		if i == k || o.box.top <= from || o.box.x0 > sides.x1 || o.box.x1 < sides.x0 {
+			continue
+		}
+		limit = min(limit, o.box.top-1)
+	}
+	return limit
+}
