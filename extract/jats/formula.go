@@ -4,6 +4,7 @@ import (
 	"regexp"
 	"strings"
 	"unicode"
+	"unicode/utf8"
 
 	"halfspan/extract/paper"
 )
@@ -49,7 +50,7 @@ func (r *reader) mathContent(b *builder, n *node) {
 	case "annotation", "annotation-xml":
 		return
 	case "mspace":
-		b.word()
+		b.Word()
 		return
 	}
 	parts := 0
@@ -62,11 +63,11 @@ func (r *reader) mathContent(b *builder, n *node) {
 		inside := func() { r.mathContent(b, k) }
 		switch {
 		case n.name == "msup" && parts == 2, n.name == "msubsup" && parts == 3:
-			b.styled(paper.Raised, inside)
+			b.Styled(paper.Raised, inside)
 		case n.name == "msub" && parts == 2, n.name == "msubsup" && parts == 2:
-			b.styled(paper.Lowered, inside)
+			b.Styled(paper.Lowered, inside)
 		case n.name == "mfrac" && parts == 2:
-			b.s = append(b.s, '/')
+			b.Insert("/")
 			inside()
 		default:
 			inside()
@@ -77,7 +78,7 @@ func (r *reader) mathContent(b *builder, n *node) {
 // mathChars adds character data without the white space at its ends, save that
 // before the formula.
 func (b *builder) mathChars(start, end int) {
-	raw := b.src.B[start:end]
+	raw := b.Src.B[start:end]
 	for len(raw) > 0 && unicode.IsSpace(rune(raw[0])) {
 		raw, start = raw[1:], start+1
 	}
@@ -146,14 +147,14 @@ func (b *builder) texTokens(raw string, base int) {
 		case tok == "{":
 			depth++
 			if shift != 0 && until < 0 {
-				from, until = len(b.s), depth-1
+				from, until = len(b.S), depth-1
 			}
 			continue
 		case tok == "}":
 			depth--
 			if depth == until {
-				if len(b.s) > from {
-					b.styles = append(b.styles, paper.Style{Start: from, End: len(b.s), Kind: shift})
+				if len(b.S) > from {
+					b.Styles = append(b.Styles, paper.Style{Start: from, End: len(b.S), Kind: shift})
 				}
 				shift, until = 0, -1
 			}
@@ -161,25 +162,29 @@ func (b *builder) texTokens(raw string, base int) {
 		case strings.TrimSpace(tok) == "":
 			continue
 		}
-		b.flushBefore()
-		start := len(b.s)
+		b.Flush()
+		start := len(b.S)
 		if s, ok := texSymbols[tok]; ok {
 			if s == " " {
-				b.word()
+				b.Word()
 			} else {
-				b.flush()
-				b.append([]byte(s), b.src.Offset(base+m[0]))
+				b.PutAs([]byte(s), base+m[0])
 			}
 		} else {
-			b.flush()
-			b.put([]byte(tok), base+m[0])
+			b.Put([]byte(tok), base+m[0])
 		}
 		if shift != 0 && until < 0 {
 			// without braces only the first character is raised
-			if len(b.s) > start {
-				b.styles = append(b.styles, paper.Style{Start: start, End: start + len(string(firstRune(string(b.s[start:])))), Kind: shift})
+			if len(b.S) > start {
+				b.Styles = append(b.Styles, paper.Style{Start: start, End: start + runeLen(b.S[start:]), Kind: shift})
 			}
 			shift = 0
 		}
 	}
+}
+
+// runeLen is the length in bytes of the first character of s.
+func runeLen(s []byte) int {
+	_, n := utf8.DecodeRune(s)
+	return n
 }

@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/source"
 )
 
 // inline is how an element inside a stretch of text is read.
@@ -56,13 +57,13 @@ func (r *reader) element(b *builder, n *node) {
 	case through:
 		inside()
 	case raised:
-		b.styled(paper.Raised, inside)
+		b.Styled(paper.Raised, inside)
 	case lowered:
-		b.styled(paper.Lowered, inside)
+		b.Styled(paper.Lowered, inside)
 	case bold:
-		b.styled(paper.Bold, inside)
+		b.Styled(paper.Bold, inside)
 	case italic:
-		b.styled(paper.Italic, inside)
+		b.Styled(paper.Italic, inside)
 	case newline:
 		b.lineBreak()
 	case paragraph:
@@ -95,14 +96,13 @@ func (r *reader) crossref(b *builder, n *node) {
 	if kind == "bibr" || kind == "" && r.refs[n.get("rid")] {
 		inner := r.text(n)
 		if citationNumber.MatchString(strings.TrimSpace(inner.S)) {
-			b.flush()
-			b.s = append(b.s, citation...)
+			b.Insert(citation)
 			b.cites = true
 			return
 		}
 	}
 	if markRefs[kind] {
-		b.styled(paper.Raised, func() { r.content(b, n) })
+		b.Styled(paper.Raised, func() { r.content(b, n) })
 		return
 	}
 	r.content(b, n)
@@ -112,9 +112,9 @@ func (r *reader) crossref(b *builder, n *node) {
 func (r *reader) alternatives(b *builder, n *node) {
 	for _, name := range []string{"math", "tex-math", "textual-form"} {
 		if k := n.child(name); k != nil {
-			before := len(b.s)
+			before := len(b.S)
 			r.element(b, k)
-			if len(b.s) > before {
+			if len(b.S) > before {
 				return
 			}
 		}
@@ -140,7 +140,7 @@ func cutCitations(t paper.TextRun) paper.TextRun {
 	for _, m := range citeBrackets.FindAllStringIndex(t.S, -1) {
 		cuts = append(cuts, [2]int{m[0], m[1]})
 	}
-	return drop(t, cuts)
+	return source.Drop(t, cuts)
 }
 
 // text reads the content of n as one stretch of running text.
@@ -158,5 +158,5 @@ func (r *reader) textAndFloats(n *node) (paper.TextRun, []*node) {
 }
 
 func (r *reader) builder() *builder {
-	return &builder{src: r.src, known: r.known, space: -1}
+	return &builder{Builder: source.Builder{Src: r.src}, known: r.known}
 }

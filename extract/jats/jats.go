@@ -206,7 +206,7 @@ func (r *reader) sec(n *node) {
 	r.enter(zone, section, func() {
 		for _, k := range n.kids {
 			if k.name == "title" {
-				r.emit(paper.Heading, r.level-1, join(r.text(label), title))
+				r.emit(paper.Heading, r.level-1, source.Join(r.text(label), title))
 				continue
 			}
 			r.block(k)
@@ -283,7 +283,7 @@ func (r *reader) list(n *node) {
 			for _, k := range item.kids {
 				if k.name == "p" && label != nil {
 					t, floats := r.textAndFloats(k)
-					r.emit(paper.Paragraph, 0, join(r.text(label), t))
+					r.emit(paper.Paragraph, 0, source.Join(r.text(label), t))
 					label = nil
 					for _, f := range floats {
 						r.block(f)
@@ -294,7 +294,7 @@ func (r *reader) list(n *node) {
 			}
 		case "def-item":
 			t, floats := r.textAndFloats(item.child("def"))
-			r.emit(paper.Paragraph, 0, join(r.text(item.child("term")), t))
+			r.emit(paper.Paragraph, 0, source.Join(r.text(item.child("term")), t))
 			for _, f := range floats {
 				r.block(f)
 			}
@@ -309,7 +309,7 @@ func (r *reader) figure(n *node) { r.labelled(n, paper.Caption) }
 // labelled reads the label and caption of a figure or an additional file.
 func (r *reader) labelled(n *node, kind paper.BlockKind) {
 	t, floats := r.caption(n)
-	r.emit(kind, 0, join(r.text(n.child("label")), t))
+	r.emit(kind, 0, source.Join(r.text(n.child("label")), t))
 	for _, k := range n.kids {
 		if k.name == "p" || k.name == "media" || k.name == "table-wrap" {
 			r.block(k)
@@ -330,7 +330,7 @@ func (r *reader) caption(n *node) (paper.TextRun, []*node) {
 				continue
 			}
 			t, f := r.textAndFloats(k)
-			all = join(all, t)
+			all = source.Join(all, t)
 			floats = append(floats, f...)
 		}
 	}
@@ -340,7 +340,7 @@ func (r *reader) caption(n *node) (paper.TextRun, []*node) {
 // box reads a text box: its title as a heading, its paragraphs as notes.
 func (r *reader) box(n *node) {
 	title, _ := r.caption(n)
-	r.emit(paper.Heading, r.level, join(r.text(n.child("label")), title))
+	r.emit(paper.Heading, r.level, source.Join(r.text(n.child("label")), title))
 	for _, k := range n.kids {
 		switch k.name {
 		case "p":
@@ -379,7 +379,7 @@ func (r *reader) spaced(n *node) paper.TextRun {
 				continue
 			}
 			if k.name != "italic" && k.name != "bold" && k.name != "sup" && k.name != "sub" {
-				b.word()
+				b.Word()
 			}
 			walk(k)
 		}
@@ -402,25 +402,4 @@ func (r *reader) furniture(n *node) {
 			return true
 		})
 	})
-}
-
-// join puts b after a, one space between.
-func join(a, b paper.TextRun) paper.TextRun {
-	switch {
-	case a.S == "":
-		return b
-	case b.S == "":
-		return a
-	}
-	shift := len(a.S) + 1
-	t := paper.TextRun{S: a.S + " " + b.S}
-	t.Runs = append(t.Runs, a.Runs...)
-	t.Styles = append(t.Styles, a.Styles...)
-	for _, x := range b.Runs {
-		t.Runs = append(t.Runs, paper.Run{Start: x.Start + shift, End: x.End + shift, Place: x.Place})
-	}
-	for _, x := range b.Styles {
-		t.Styles = append(t.Styles, paper.Style{Start: x.Start + shift, End: x.End + shift, Kind: x.Kind})
-	}
-	return t
 }

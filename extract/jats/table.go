@@ -3,12 +3,13 @@ package jats
 import (
 	"fmt"
 	"regexp"
-	"sort"
 	"strconv"
 	"strings"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/source"
+	"halfspan/extract/tidy"
 )
 
 // Limits of one table; the largest printed ones have some thousand cells.
@@ -31,8 +32,8 @@ type rawCell struct {
 // rawRow is a row of cells with the part of the table it stands in.
 type rawRow struct {
 	cells []rawCell
-	part  int    // rows of one part may share cells that span rows
-	in    string // "thead", "tbody", "tfoot"
+	part  int // rows of one part may share cells that span rows
+	in    tidy.Part
 }
 
 // tableWrap reads a table with its caption and notes. A wrap that holds several
@@ -134,15 +135,15 @@ func (r *reader) grid(n *node) *paper.Table {
 	if t.Rows >= maxRows || t.Rows*t.Cols > maxCells {
 		r.problem("cut-short", fmt.Sprintf("a table of %d rows and %d columns is too large; only its beginning was read", t.Rows, t.Cols), true)
 	}
-	parts = dropBlankRows(t, parts)
-	parts = notesFromRows(t, parts)
-	t.HeadRows = headRows(t, parts)
+	parts = tidy.DropBlankRows(t, parts)
+	parts = tidy.NotesFromRows(t, parts)
+	t.HeadRows = tidy.HeadRows(t, parts)
 	for i := range t.Cells {
 		if t.Cells[i].Row < t.HeadRows {
 			t.Cells[i].Head = true
 		}
 	}
-	rankIndents(t)
+	tidy.RankIndents(t)
 	return t
 }
 
@@ -150,7 +151,7 @@ func (r *reader) grid(n *node) *paper.Table {
 func (r *reader) rawRows(n *node) []rawRow {
 	var rows []rawRow
 	part := 0
-	add := func(tr *node, in string) {
+	add := func(tr *node, in tidy.Part) {
 		row := rawRow{part: part, in: in}
 		for _, c := range tr.kids {
 			if c.name == "td" || c.name == "th" {
@@ -163,14 +164,14 @@ func (r *reader) rawRows(n *node) []rawRow {
 	for _, k := range n.kids {
 		switch k.name {
 		case "tr":
-			add(k, "tbody")
+			add(k, tidy.Body)
 		case "tfoot":
 			foot = append(foot, k)
 		case "thead", "tbody":
 			part++
 			for _, tr := range k.kids {
 				if tr.name == "tr" {
-					add(tr, k.name)
+					add(tr, tidy.Part(k.name))
 				}
 			}
 			part++
@@ -180,7 +181,7 @@ func (r *reader) rawRows(n *node) []rawRow {
 		part++
 		for _, tr := range k.kids {
 			if tr.name == "tr" {
-				add(tr, "tfoot")
+				add(tr, tidy.Foot)
 			}
 		}
 	}
@@ -191,7 +192,7 @@ func (r *reader) rawCell(n *node) rawCell {
 	b := r.builder()
 	b.cell = true
 	r.content(b, n)
-	width := leadingWidth(string(b.s)) + styleIndent(n.get("style")) + r.markedIndent(n)
+	width := tidy.LeadingWidth(string(b.S)) + styleIndent(n.get("style")) + r.markedIndent(n)
 	text := tidyLines(b.run())
 	c := rawCell{node: n, head: n.name == "th", text: text, indent: width,
 		rowSpan: span(n.get("rowspan")), colSpan: min(span(n.get("colspan")), maxCols)}
@@ -226,7 +227,7 @@ func tidyLines(t paper.TextRun) paper.TextRun {
 			cuts = append(cuts, [2]int{k + 1, m[1]})
 		}
 	}
-	return drop(t, cuts)
+	return source.Drop(t, cuts)
 }
 
 var lineEnd = regexp.MustCompile(`[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*\n[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*`)
@@ -234,7 +235,7 @@ var lineEnd = regexp.MustCompile(`[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*\n[\s\x{
 // place gives every cell its row and column as a browser does: cells fill the
 // free positions of their row from the left, a spanning cell keeps positions in
 // the rows below of the same part. It returns the part each row stands in.
-func place(t *paper.Table, rows []rawRow) []rawRow {
+func place(t *paper.Table, rows []rawRow) []tidy.Part {
 	if len(rows) > maxRows {
 		rows = rows[:maxRows]
 	}
@@ -269,7 +270,7 @@ func place(t *paper.Table, rows []rawRow) []rawRow {
 			for k := col; k < col+wide; k++ {
 				until[k] = i + tall
 			}
-			t.Cells = append(t.Cells, paper.Cell{Row: i, Col: col, RowSpan: tall, ColSpan: wide, Head: c.head || row.in == "thead", Indent: c.indent, Text: c.text})
+			t.Cells = append(t.Cells, paper.Cell{Row: i, Col: col, RowSpan: tall, ColSpan: wide, Head: c.head || row.in == tidy.Head, Indent: c.indent, Text: c.text})
 			col += wide
 		}
 		if (i+1)*len(until) > maxCells {
@@ -281,48 +282,9 @@ func place(t *paper.Table, rows []rawRow) []rawRow {
 	for i := range t.Cells {
 		t.Cells[i].RowSpan = min(t.Cells[i].RowSpan, t.Rows-t.Cells[i].Row)
 	}
-	return rows
-}
-
-// dropBlankRows takes out rows that print nothing, rules drawn as cells above
-// all; the spans of cells that cross them shrink.
-func dropBlankRows(t *paper.Table, rows []rawRow) []rawRow {
-	filled := make([]bool, t.Rows)
-	for _, c := range t.Cells {
-		if c.Text.S != "" {
-			filled[c.Row] = true
-		}
+	parts := make([]tidy.Part, len(rows))
+	for i, row := range rows {
+		parts[i] = row.in
 	}
-	return dropRows(t, rows, func(row int) bool { return !filled[row] })
-}
-
-// dropRows takes out the rows that gone names, with the cells that begin there
-// and do not reach further.
-func dropRows(t *paper.Table, rows []rawRow, gone func(int) bool) []rawRow {
-	at := make([]int, t.Rows+1) // new number of each row
-	var left []rawRow
-	for i := 0; i < t.Rows; i++ {
-		at[i+1] = at[i]
-		if !gone(i) {
-			at[i+1]++
-			left = append(left, rows[i])
-		}
-	}
-	cells := t.Cells[:0]
-	for _, c := range t.Cells {
-		from, to := at[c.Row], at[c.Row+c.RowSpan]
-		if from == to {
-			continue
-		}
-		c.Row, c.RowSpan = from, to-from
-		cells = append(cells, c)
-	}
-	sort.SliceStable(cells, func(i, j int) bool {
-		if cells[i].Row != cells[j].Row {
-			return cells[i].Row < cells[j].Row
-		}
-		return cells[i].Col < cells[j].Col
-	})
-	t.Cells, t.Rows = cells, len(left)
-	return left
+	return parts
 }

@@ -1,9 +1,7 @@
-package jats
+package tidy
 
 import (
 	"regexp"
-	"sort"
-	"strconv"
 	"strings"
 
 	"halfspan/extract/paper"
@@ -60,13 +58,13 @@ func labelOnly(cells []*paper.Cell) bool {
 	return len(cells) > 0
 }
 
-// headRows tells how many rows at the top are column headings: those of the
+// HeadRows tells how many rows at the top are column headings: those of the
 // <thead>, as long as they print no values; without one, rows marked as
 // headings, else bold rows, else the rows above the first one with values.
-func headRows(t *paper.Table, rows []rawRow) int {
+func HeadRows(t *paper.Table, parts []Part) int {
 	cells := rowCells(t)
 	marked := 0
-	for marked < t.Rows && rows[marked].in == "thead" {
+	for marked < t.Rows && parts[marked] == Head {
 		marked++
 	}
 	n := marked
@@ -160,110 +158,4 @@ func continuesHead(row []*paper.Cell) bool {
 		}
 	}
 	return filled > 0 && words == filled
-}
-
-// notesFromRows moves rows at the end that hold one text over the whole width
-// to the notes: there is nothing below that they could be the heading of.
-func notesFromRows(t *paper.Table, rows []rawRow) []rawRow {
-	cells := rowCells(t)
-	end := t.Rows
-	for end > 1 && noteRow(cells[end-1], t.Cols, rows[end-1].in) {
-		end--
-	}
-	for i := end; i < t.Rows; i++ {
-		t.Notes = append(t.Notes, splitNotes(cells[i][0].Text)...)
-	}
-	return dropRows(t, rows, func(row int) bool { return row >= end })
-}
-
-func noteRow(row []*paper.Cell, cols int, in string) bool {
-	if in == "thead" || !labelOnly(row) || row[0].Col != 0 {
-		return false
-	}
-	const long = 80 // longer than a row label without values
-	return cols > 1 && row[0].ColSpan == cols || in == "tfoot" || cols > 2 && len(row[0].Text.S) > long
-}
-
-// Indentation of row headings.
-
-// spaceWidth gives the width of spaces that are used to indent.
-var spaceWidth = map[rune]int{
-	'\u00A0': 2, '\u2000': 4, '\u2001': 8, '\u2002': 4, '\u2003': 8, '\u2004': 3, '\u2005': 2,
-	'\u2006': 2, '\u2007': 4, '\u2008': 2, '\u2009': 2, '\u200A': 1, '\u202F': 2, '\u3000': 8,
-}
-
-// leadingWidth adds up the special spaces that s begins with.
-func leadingWidth(s string) int {
-	width := 0
-	for _, r := range s {
-		w, ok := spaceWidth[r]
-		if !ok && r != ' ' && r != '\n' {
-			break
-		}
-		width += w
-	}
-	return width
-}
-
-var paddingStyle = regexp.MustCompile(`(?:padding-left|text-indent|margin-left)\s*:\s*([0-9]+(?:\.[0-9]+)?)\s*(em|pt|px|mm|cm|%)?`)
-
-// styleIndent reads an indentation from a style attribute, in the measure of
-// spaceWidth (8 to the em).
-func styleIndent(style string) int {
-	m := paddingStyle.FindStringSubmatch(style)
-	if m == nil {
-		return 0
-	}
-	v, err := strconv.ParseFloat(m[1], 64)
-	if err != nil || v > 1000 {
-		return 0
-	}
-	unit := map[string]float64{"em": 8, "": 0.6, "pt": 0.7, "px": 0.6, "mm": 2, "cm": 20, "%": 1}[m[2]]
-	return int(v * unit)
-}
-
-// markedIndent is the indentation that an element inside the cell asks for.
-func (r *reader) markedIndent(n *node) int {
-	for _, k := range n.kids {
-		if k.name == "" {
-			if strings.TrimSpace(string(r.src.B[k.start:k.end])) != "" {
-				return 0
-			}
-			continue
-		}
-		width := styleIndent(k.get("style"))
-		if k.name == "list" || strings.Contains(k.get("content-type"), "indent") || strings.Contains(k.get("style-type"), "indent") {
-			width += spaceWidth['\u2003']
-		}
-		if width > 0 {
-			return width
-		}
-		return r.markedIndent(k)
-	}
-	return 0
-}
-
-// rankIndents turns widths of indentation into steps, for the stub alone:
-// numbers are moved by spaces to line up.
-func rankIndents(t *paper.Table) {
-	seen := map[int]bool{}
-	for i := range t.Cells {
-		c := &t.Cells[i]
-		if c.Col == 0 && c.Row >= t.HeadRows && c.Text.S != "" {
-			seen[c.Indent] = true
-		}
-	}
-	var widths []int
-	for w := range seen {
-		widths = append(widths, w)
-	}
-	sort.Ints(widths)
-	for i := range t.Cells {
-		c := &t.Cells[i]
-		if c.Col != 0 || c.Row < t.HeadRows || c.Text.S == "" {
-			c.Indent = 0
-			continue
-		}
-		c.Indent = sort.SearchInts(widths, c.Indent)
-	}
 }
