@@ -2,13 +2,12 @@ package working
 
 import (
 	"fmt"
+	"maps"
 	"slices"
-	"sort"
 	"strconv"
 	"strings"
 
 	"halfspan/convert"
-	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
 
@@ -106,93 +105,60 @@ func setLevel(r *result.Result, text string) error {
 
 // Amendable are the fields of a record that a person may amend, in order.
 func Amendable() []string {
-	names := make([]string, 0, len(setters()))
-	for name := range setters() {
-		names = append(names, name)
-	}
-	sort.Strings(names)
-	return names
+	return slices.Sorted(maps.Keys(setters()))
 }
 
 // Amend works a result through again with some of its fields put right by a
-// person: changed maps names of the record's fields (see [Amendable]) to what
-// the paper prints there; the empty text says that it prints nothing. take, if
-// not empty, names one of the working's own proposals (Trail.Alternatives) whose
-// mean and SD the person takes.
+// person. r is what was read, w the working that was made of it; changed maps
+// names of the record's fields (see [Amendable]) to what the paper prints there,
+// where the empty text says that it prints nothing. take, if not empty, names one
+// of the working's own proposals (Trail.Alternatives) whose mean and SD the
+// person takes.
 //
-// The id, the anchor and the places stay. What compares the result with others
-// of its paper is not worked again. An error names the field and says what is
-// wrong; nothing is changed then.
-func Amend(w Working, changed map[string]string, take string) (Working, error) {
-	r := resultOf(w)
+// The id, the anchor, the mates and the places stay; what compares the result
+// with others of its paper is not worked again. An error names the field and says
+// what is wrong with it. Neither r nor w is changed.
+func Amend(r result.Result, w Working, changed map[string]string, take string) (result.Result, Working, error) {
+	r.Flags = slices.Clone(r.Flags)
+	r.Mates = nil
 	table := setters()
-	fields := make([]string, 0, len(changed))
-	for field := range changed {
-		fields = append(fields, field)
-	}
-	sort.Strings(fields)
-	for _, field := range fields {
+	for _, field := range slices.Sorted(maps.Keys(changed)) {
 		set, ok := table[field]
 		if !ok {
-			return Working{}, fmt.Errorf("%s cannot be amended: only %s can", field, strings.Join(Amendable(), ", "))
+			return result.Result{}, Working{}, fmt.Errorf("%s cannot be amended: only %s can", field, strings.Join(Amendable(), ", "))
 		}
 		if err := set(&r, strings.TrimSpace(changed[field])); err != nil {
-			return Working{}, fmt.Errorf("%s: %w", field, err)
+			return result.Result{}, Working{}, fmt.Errorf("%s: %w", field, err)
 		}
 	}
-	doc := Facts{Path: w.Record.Paper, SHA256: w.Record.PaperSHA256, Format: paper.Text}
-	out := Work(doc, []result.Result{r})[0]
+	out := Work(Facts{Path: w.Record.Paper, SHA256: w.Record.PaperSHA256}, []result.Result{r})[0]
 	out.Record.ID, out.Record.Mates, out.Record.Places = w.Record.ID, w.Record.Mates, w.Record.Places
 	out.Row, out.Anchor = w.Row, w.Anchor
-	if take == "" {
-		return out, nil
+	if take != "" {
+		if err := takeProposal(&out, take); err != nil {
+			return result.Result{}, Working{}, err
+		}
 	}
-	for _, a := range out.Trail.Alternatives {
-		if a.Name != take {
+	return r, out, nil
+}
+
+// takeProposal fills mean and SD from the proposal of that name.
+func takeProposal(w *Working, name string) error {
+	for _, a := range w.Trail.Alternatives {
+		if a.Name != name {
 			continue
 		}
 		if a.Struck || a.SD == nil {
-			return Working{}, fmt.Errorf("the proposal %q cannot be taken: %s", take, a.Note)
+			return fmt.Errorf("the proposal %q cannot be taken: %s", name, a.Note)
 		}
-		out.Record.SD, out.Record.SDLow, out.Record.SDHigh = a.SD, a.Low, a.High
+		w.Record.SD, w.Record.SDLow, w.Record.SDHigh = a.SD, a.Low, a.High
 		if a.Mean != nil {
-			out.Record.Mean = a.Mean
+			w.Record.Mean = a.Mean
 		}
-		out.Record.SDOf = text("values")
-		out.Record.Method = text(a.Name)
-		out.Record.Use, out.Record.Reason = useConverted, ""
-		out.Trail.Notes = append(out.Trail.Notes, fmt.Sprintf("A person took the proposal %q.", a.Name))
-		return out, nil
+		w.Record.SDOf, w.Record.Method = text("values"), text(a.Name)
+		w.Record.Use, w.Record.Reason = useConverted, ""
+		w.Trail.Notes = append(w.Trail.Notes, fmt.Sprintf("A person took the proposal %q.", a.Name))
+		return nil
 	}
-	return Working{}, fmt.Errorf("there is no proposal %q for this result", take)
-}
-
-// resultOf is the result that a working was made from.
-func resultOf(w Working) result.Result {
-	rec := w.Record
-	str := func(s *string) string {
-		if s == nil {
-			return ""
-		}
-		return *s
-	}
-	num := func(n *int) int {
-		if n == nil {
-			return 0
-		}
-		return *n
-	}
-	r := result.Result{
-		Anchor: w.Anchor, Page: num(rec.Page), Section: str(rec.Section), Zone: w.Zone, Table: str(rec.Table), Row: w.Row,
-		Snippet: rec.Snippet, Statistic: result.Statistic(str(rec.Statistic)), Measure: str(rec.Measure),
-		GivenAs: result.GivenAs(str(rec.GivenAs)), Estimate: str(rec.Estimate), Lower: str(rec.Lower), Upper: str(rec.Upper),
-		GivenValue: str(rec.GivenValue), N: num(rec.N), N2: num(rec.N2), NFrom: str(rec.NFrom), NKind: str(rec.NKind),
-		Arm: str(rec.Arm), Arm2: str(rec.Arm2), Time: str(rec.Time), Subgroup: str(rec.Subgroup), Outcome: str(rec.Outcome),
-		Unit: str(rec.Unit), Heading: str(rec.Heading), Adjusted: str(rec.Adjusted), P: str(rec.P), T: str(rec.T),
-		F: str(rec.F), DF: str(rec.DF), Evidence: w.Evidence, Flags: slices.Clone(w.Raised),
-	}
-	if rec.Level != nil {
-		r.Level = *rec.Level
-	}
-	return r
+	return fmt.Errorf("there is no proposal %q for this result", name)
 }

@@ -16,32 +16,33 @@ func colonyMass() result.Result {
 }
 
 func TestAmendWorksTheResultThroughAgain(t *testing.T) {
-	w := Work(Facts{Path: "colonies.txt", SHA256: "ab"}, []result.Result{colonyMass()})[0]
+	r := colonyMass()
+	w := Work(Facts{Path: "colonies.txt", SHA256: "ab"}, []result.Result{r})[0]
 	if w.Record.SD == nil {
 		t.Fatalf("no SD to begin with: %s", w.Record.Reason)
 	}
-	same, err := Amend(w, nil, "")
+	_, same, err := Amend(r, w, nil, "")
 	if err != nil {
 		t.Fatal(err)
 	}
 	if *same.Record.SD != *w.Record.SD || same.Record.ID != w.Record.ID || len(same.Flags) != len(w.Flags) {
 		t.Errorf("nothing amended, yet %+v became %+v", w.Record, same.Record)
 	}
-	fewer, err := Amend(w, map[string]string{"n": "21"}, "")
+	_, fewer, err := Amend(r, w, map[string]string{"n": "21"}, "")
 	if err != nil {
 		t.Fatal(err)
 	}
 	if !(*fewer.Record.SD < *w.Record.SD) {
 		t.Errorf("SD with n 21 is %v, with n 42 %v: it must be smaller", *fewer.Record.SD, *w.Record.SD)
 	}
-	none, err := Amend(w, map[string]string{"n": ""}, "")
+	bare, none, err := Amend(r, w, map[string]string{"n": ""}, "")
 	if err != nil {
 		t.Fatal(err)
 	}
 	if none.Record.SD != nil || none.Record.SE == nil {
 		t.Errorf("without n: SD %v, SE %v; want no SD and an SE", none.Record.SD, none.Record.SE)
 	}
-	back, err := Amend(none, map[string]string{"n": "42"}, "")
+	_, back, err := Amend(bare, none, map[string]string{"n": "42"}, "")
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -51,7 +52,8 @@ func TestAmendWorksTheResultThroughAgain(t *testing.T) {
 }
 
 func TestAmendRefuses(t *testing.T) {
-	w := Work(Facts{Path: "colonies.txt"}, []result.Result{colonyMass()})[0]
+	r := colonyMass()
+	w := Work(Facts{Path: "colonies.txt"}, []result.Result{r})[0]
 	for _, c := range []struct{ field, value, want string }{
 		{"n", "many", "not a sample size"},
 		{"n", "0", "not a sample size"},
@@ -62,11 +64,11 @@ func TestAmendRefuses(t *testing.T) {
 		{"given_as", "sem", "none of"},
 		{"snippet", "x", "cannot be amended"},
 	} {
-		if _, err := Amend(w, map[string]string{c.field: c.value}, ""); err == nil || !strings.Contains(err.Error(), c.want) {
+		if _, _, err := Amend(r, w, map[string]string{c.field: c.value}, ""); err == nil || !strings.Contains(err.Error(), c.want) {
 			t.Errorf("%s = %q: error %v, want one with %q", c.field, c.value, err, c.want)
 		}
 	}
-	if _, err := Amend(w, nil, "no such proposal"); err == nil {
+	if _, _, err := Amend(r, w, nil, "no such proposal"); err == nil {
 		t.Error("a proposal that is not there was taken")
 	}
 }
@@ -82,7 +84,7 @@ func TestAmendTakesAProposal(t *testing.T) {
 		if a.Struck || a.SD == nil {
 			continue
 		}
-		got, err := Amend(w, nil, a.Name)
+		_, got, err := Amend(r, w, nil, a.Name)
 		if err != nil {
 			t.Fatal(err)
 		}

@@ -56,9 +56,6 @@ func newItem(doc Facts, r *result.Result) *item {
 		Quoted: r.Evidence.Quoted,
 		Base:   r.Evidence.Baseline,
 		Flags:  append([]result.Flag{}, r.Flags...),
-
-		Evidence: r.Evidence,
-		Raised:   append([]result.Flag{}, r.Flags...),
 	}
 	it.settleMargin()
 	return it

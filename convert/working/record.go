@@ -78,9 +78,6 @@ type Working struct {
 	Base   bool          `json:"baseline,omitempty"` // a baseline value
 	Trail  Trail         `json:"trail"`
 	Flags  []result.Flag `json:"flags"` // Record.Flags with their particulars
-
-	Evidence result.Evidence `json:"evidence"`         // what the paper says around it, kept so that [Amend] can work it again
-	Raised   []result.Flag   `json:"raised,omitempty"` // the flags that reading raised, without the working's own
 }
 
 // Trail is how the values of a record were reached, as a person would write it.
