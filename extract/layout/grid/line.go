@@ -170,3 +170,20 @@ func isHeadFigure(text string) bool {
 	}
 	return false
 }
+
+func firstRune(s string) rune {
+	for _, r := range s {
+		return r
+	}
+	return 0
+}
+
+func lastRune(s string) rune {
+	var last rune
+	for _, r := range s {
+		last = r
+	}
+	return last
+}
+
+func lowerLetter(r rune) bool { return unicode.IsLower(r) }

@@ -55,7 +55,7 @@ type sheet struct {
 	toks     []tok
 	segs     []segment
 	rules    []rule // across, joined where they continue one another; by y, then x0
-	pieces   []rule // across, as drawn
+	drawn    []rule // across, as drawn
 	uprights []box
 	images   []box
 	bounds   box
@@ -135,20 +135,20 @@ func (s *sheet) addRules(rules []paper.Box) {
 		b := flip(r)
 		switch {
 		case b.bot-b.top <= thin && b.x1-b.x0 >= 500:
-			s.pieces = append(s.pieces, rule{b.x0, b.x1, (b.top + b.bot) / 2})
+			s.drawn = append(s.drawn, rule{b.x0, b.x1, (b.top + b.bot) / 2})
 		case b.x1-b.x0 <= thin && b.bot-b.top >= 500:
 			s.uprights = append(s.uprights, b)
 		}
 	}
-	slices.SortStableFunc(s.pieces, func(a, b rule) int {
+	slices.SortStableFunc(s.drawn, func(a, b rule) int {
 		return cmp.Or(cmp.Compare(a.y, b.y), cmp.Compare(a.x0, b.x0))
 	})
-	for i := 0; i < len(s.pieces); {
+	for i := 0; i < len(s.drawn); {
 		j := i + 1
-		for j < len(s.pieces) && s.pieces[j].y-s.pieces[i].y <= sameY {
+		for j < len(s.drawn) && s.drawn[j].y-s.drawn[i].y <= sameY {
 			j++
 		}
-		s.rules = append(s.rules, joinRules(s.pieces[i:j])...)
+		s.rules = append(s.rules, joinRules(s.drawn[i:j])...)
 		i = j
 	}
 }
@@ -178,4 +178,9 @@ func rulesIn(rules []rule, b box) []rule {
 		}
 	}
 	return out
+}
+
+// toPage takes a box of the sheet back to the page.
+func (s *sheet) toPage(b box) paper.Box {
+	return s.frame.ToPage(paper.Box{X0: int32(b.x0), Y0: int32(-b.bot), X1: int32(b.x1), Y1: int32(-b.top)})
 }

@@ -1,0 +1,167 @@
+package grid
+
+import (
+	"halfspan/extract/paper"
+)
+
+// reader holds the state of reading one region.
+type reader struct {
+	s     *sheet
+	em    int
+	area  box
+	lines []line
+	cs    []corridor
+	cells [][]piece // by line
+	rules []rule    // across, inside the body
+	head  int       // lines of the heading
+}
+
+const maxBody = 8000 // words of one region's grid; more is no table
+
+// Read reads the grid of a region. page is the 1-based number for places.
+func (r *Region) Read(page int) paper.Table {
+	t := paper.Table{Label: r.Label, Page: page, Picture: r.Picture}
+	t.Box = r.sheet.toPage(r.area)
+	t.Turned = r.sheet.frame.Angle != 0
+	w := writer{sheet: r.sheet, page: page}
+	t.Caption = w.caption(r)
+	t.Notes = w.notes(r.noteLns)
+	if r.Picture {
+		return t
+	}
+	rd := newReader(r.sheet, r.body)
+	if rd == nil {
+		return t
+	}
+	rd.write(&t, &w)
+	return t
+}
+
+func newReader(s *sheet, body box) *reader {
+	rd := &reader{s: s, area: body, lines: s.linesIn(body)}
+	n := 0
+	sizes := map[int]int{}
+	for i := range rd.lines {
+		n += len(rd.lines[i].toks)
+		sizes[rd.lines[i].size/10] += len(rd.lines[i].toks)
+	}
+	if n == 0 || n > maxBody {
+		return nil
+	}
+	rd.em = max(commonest(sizes)*10, 10)
+	rd.rules = rulesIn(s.rules, box{body.x0, body.top - rd.em, body.x1, body.bot + rd.em})
+	rd.head = rd.headLines()
+	rd.cs = s.findColumns(rd.lines[rd.head:], rd.em)
+	rd.cells = make([][]piece, len(rd.lines))
+	for i := range rd.lines {
+		rd.cells[i] = s.pieces(&rd.lines[i], i, rd.cs, rd.em)
+	}
+	return rd
+}
+
+// full reports whether a rule runs over nearly the whole width of the table.
+func (rd *reader) full(r rule) bool {
+	return (min(r.x1, rd.area.x1)-max(r.x0, rd.area.x0))*10 >= rd.area.width()*8
+}
+
+// ruleBetween gives the rule between lines i-1 and i that covers the most.
+func (rd *reader) ruleBetween(i int) (rule, bool) {
+	var best rule
+	found := false
+	for _, r := range rd.rules {
+		if i > 0 && r.y <= rd.lines[i-1].base-rd.em/4 || r.y > rd.lines[i].base-rd.em/4 {
+			continue
+		}
+		if !found || r.x1-r.x0 > best.x1-best.x0 {
+			best, found = r, true
+		}
+	}
+	return best, found
+}
+
+// fullBetween reports whether the table's lines i-1 and i are parted by a rule
+// of its width.
+func (rd *reader) fullBetween(i int) bool {
+	r, ok := rd.ruleBetween(i)
+	return ok && rd.full(r)
+}
+
+// isData reports whether a line holds figures in cells right of its first run.
+func (rd *reader) isData(i int) bool {
+	rs := rd.s.atoms(&rd.lines[i])
+	for k := range rs {
+		t := rd.s.join(rs[k].toks)
+		if (k > 0 || rs[k].x0 > rd.area.x0+rd.area.width()/4) && isFigure(t) && !isHeadFigure(t) && !isBlankMark(t) {
+			return true
+		}
+	}
+	return false
+}
+
+// stubOnly reports whether a line has only one run, at the left edge.
+func (rd *reader) stubOnly(i int) bool {
+	rs := rd.s.runs(&rd.lines[i], 100)
+	return len(rs) == 1 && rs[0].x0 < rd.area.x0+rd.area.width()/4
+}
+
+// headLines counts the lines of the column headings: down to the last rule of
+// the table's width above the first row of data, or, without rules, to that row.
+func (rd *reader) headLines() int {
+	n := len(rd.lines)
+	data := n
+	for i := 0; i < n; i++ {
+		if rd.isData(i) {
+			data = i
+			break
+		}
+	}
+	full := []int{}
+	for i := 1; i < n; i++ {
+		if rd.fullBetween(i) {
+			full = append(full, i)
+		}
+	}
+	ruled := len(full)*2 > n && len(full) > 3
+	if len(full) > 0 && !ruled && full[0] <= max(data, 0) {
+		// Rules: the head ends at the last rule above the data that has column heads above it.
+		end := full[0]
+		for _, f := range full[1:] {
+			if f <= data && !rd.allStub(end, f) {
+				end = f
+			}
+		}
+		return end
+	}
+	if len(full) > 0 && !ruled && data < full[0] && full[0] <= 4 && full[0] < n {
+		return full[0]
+	}
+	if data == n {
+		if len(full) > 0 {
+			return min(full[0], n-1)
+		}
+		return min(1, n-1)
+	}
+	// Row groups just above the first data belong to the body.
+	end := data
+	for end > 0 && rd.stubOnly(end-1) && (!ruled || rd.fullBetween(end)) && !rd.allStub(0, end) {
+		if ruled || rd.lines[end].top-rd.lines[end-1].bot >= 0 {
+			end--
+			continue
+		}
+		break
+	}
+	if end == 0 {
+		return data
+	}
+	return end
+}
+
+// allStub reports whether lines [i, j) are row groups: single runs at the left.
+func (rd *reader) allStub(i, j int) bool {
+	for ; i < j; i++ {
+		if !rd.stubOnly(i) {
+			return false
+		}
+	}
+	return true
+}

@@ -1,0 +1,301 @@
+package grid
+
+import (
+	"slices"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+)
+
+// rows groups the body lines into rows.
+func (rd *reader) rows() [][]int {
+	var out [][]int
+	pitch := rd.rowPitch()
+	ruled := rd.ruledRows()
+	var cur []int
+	for i := rd.head; i < len(rd.lines); i++ {
+		if len(cur) > 0 && rd.joins(cur, i, pitch, ruled) {
+			cur = append(cur, i)
+			continue
+		}
+		if len(cur) > 0 {
+			out = append(out, cur)
+		}
+		cur = []int{i}
+	}
+	if len(cur) > 0 {
+		out = append(out, cur)
+	}
+	return out
+}
+
+// ruledRows reports whether rules part most rows of the body, so that lines
+// without one between them belong together.
+func (rd *reader) ruledRows() bool {
+	rules, lines := 0, 0
+	for i := rd.head + 1; i < len(rd.lines); i++ {
+		if rd.hasStub(i) && rd.hasData(i) && rd.hasData(i-1) {
+			lines++
+			if rd.fullBetween(i) {
+				rules++
+			}
+		}
+	}
+	return rules >= 2 && rules*10 >= lines*7
+}
+
+func (rd *reader) hasStub(i int) bool {
+	return len(rd.cells[i]) > 0 && rd.cells[i][0].c0 == 0
+}
+
+// hasData reports whether a line has anything right of the stub.
+func (rd *reader) hasData(i int) bool {
+	n := len(rd.cells[i])
+	return n > 0 && rd.cells[i][n-1].c0 > 0
+}
+
+// rowPitch is the usual distance between the baselines of two rows of one line:
+// the lower fifth of the distances between lines that both have a row heading
+// and figures in one column; 0 where there are none.
+func (rd *reader) rowPitch() int {
+	var all []int
+	for i := rd.head + 1; i < len(rd.lines); i++ {
+		if rd.hasStub(i) && rd.hasStub(i-1) && rd.figuresShared(i-1, i) {
+			all = append(all, rd.lines[i].base-rd.lines[i-1].base)
+		}
+	}
+	if len(all) == 0 {
+		return 0
+	}
+	slices.Sort(all)
+	return all[len(all)/5]
+}
+
+// figuresShared reports whether two lines have complete figures in one column.
+func (rd *reader) figuresShared(a, b int) bool {
+	for k := range rd.cells[b] {
+		q := &rd.cells[b][k]
+		if q.c0 == 0 || !q.figure || goesOnFigure(q.text) {
+			continue
+		}
+		for j := range rd.cells[a] {
+			if p := &rd.cells[a][j]; p.c0 == q.c0 && p.figure && !unfinished(p.text) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// joins reports whether line i belongs to the row of the lines cur.
+func (rd *reader) joins(cur []int, i, pitch int, ruled bool) bool {
+	last := cur[len(cur)-1]
+	step := rd.lines[i].base - rd.lines[last].base
+	if rd.fullBetween(i) && step > rd.em/2 {
+		return false
+	}
+	above := rd.gather(cur)
+	if step*10 < rd.em*8 {
+		return !rd.clash(above, i) || step*10 < rd.em*3
+	}
+	if ruled {
+		return step < 3*rd.em && !rd.clash(above, i)
+	}
+	tight := pitch > 0 && step*100 <= pitch*92 && step*10 <= rd.em*16 || pitch == 0 && step*10 <= rd.em*13
+	loose := pitch > 0 && step*10 > pitch*15 && step*10 > rd.em*16
+	if loose {
+		return false
+	}
+	stubUp, stub := above[0], rd.stubPiece(i)
+	dataUp, data := len(above) > 1 || len(above) == 1 && above[0] == nil, rd.hasData(i)
+	switch {
+	case stub == nil && data:
+		return rd.dataGoesOn(above, i, stubUp != nil, dataUp, tight)
+	case stub != nil && !data && dataUp:
+		return stubUp != nil && rd.labelGoesOn(stubUp, stub, tight) && !rd.indentedMore(stub, stubUp) ||
+			stubUp != nil && unfinishedLabel(stubUp.text, stub.text)
+	case stub != nil && !data:
+		return stubUp != nil && (tight && sameWeight(rd.s, stubUp, stub) && !rd.groupAbove(stubUp, stub, i) || unfinishedLabel(stubUp.text, stub.text))
+	case stub != nil && stubUp != nil && !dataUp:
+		if rd.indentedMore(stub, stubUp) && !unfinishedLabel(stubUp.text, stub.text) {
+			return false
+		}
+		return unfinishedLabel(stubUp.text, stub.text) || tight && sameWeight(rd.s, stubUp, stub) && startsLow(stub.text)
+	case stub != nil && stubUp != nil:
+		return !rd.clash(above, i) && (tight && !rd.figuresShared(last, i) || unfinishedLabel(stubUp.text, stub.text))
+	case stub != nil && stubUp == nil:
+		return tight && !rd.clash(above, i)
+	}
+	return false
+}
+
+// gather is the last piece in each column of a row's lines.
+func (rd *reader) gather(cur []int) map[int]*piece {
+	out := map[int]*piece{}
+	for _, i := range cur {
+		for k := range rd.cells[i] {
+			out[rd.cells[i][k].c0] = &rd.cells[i][k]
+		}
+	}
+	return out
+}
+
+func (rd *reader) stubPiece(i int) *piece {
+	if rd.hasStub(i) {
+		return &rd.cells[i][0]
+	}
+	return nil
+}
+
+// clash reports whether line i has a figure that begins anew in a column where
+// the row already has a finished one.
+func (rd *reader) clash(above map[int]*piece, i int) bool {
+	for k := range rd.cells[i] {
+		q := &rd.cells[i][k]
+		p := above[q.c0]
+		if p == nil || q.c0 == 0 {
+			continue
+		}
+		if p.figure && q.figure && !goesOnFigure(q.text) && !unfinished(p.text) {
+			return true
+		}
+	}
+	return false
+}
+
+// dataGoesOn reports whether a line without a row heading goes on the row above.
+func (rd *reader) dataGoesOn(above map[int]*piece, i int, stubUp, dataUp, tight bool) bool {
+	if !dataUp {
+		// A heading whose values stand on the next line.
+		return stubUp
+	}
+	on, anew, beside := 0, 0, 0
+	for k := range rd.cells[i] {
+		q := &rd.cells[i][k]
+		p := above[q.c0]
+		switch {
+		case p == nil:
+			beside++
+		case goesOnFigure(q.text) || unfinished(p.text):
+			on++
+		case p.figure && q.figure:
+			anew++
+		case p.figure && !q.figure && startsP(q.text):
+			on++
+		case tight || startsLow(q.text):
+			on++
+		default:
+			anew++
+		}
+	}
+	if anew > 0 {
+		return false
+	}
+	return on > 0 && beside == 0 || tight
+}
+
+// goesOnFigure reports whether a text is the second part of a figure broken
+// over two lines: "(0.92 to 2.76)", "to 2.76)", "± 1.3".
+func goesOnFigure(t string) bool {
+	r, _ := utf8.DecodeRuneInString(t)
+	switch {
+	case strings.ContainsRune("([±)]", r):
+		return true
+	case strings.HasPrefix(t, "to "), strings.HasPrefix(t, "– "):
+		return true
+	}
+	open := strings.Count(t, "(") - strings.Count(t, ")") + strings.Count(t, "[") - strings.Count(t, "]")
+	return open < 0
+}
+
+// unfinished reports whether a figure must go on: an open bracket, a dash or
+// "to" at its end.
+func unfinished(t string) bool {
+	if strings.Count(t, "(") > strings.Count(t, ")") || strings.Count(t, "[") > strings.Count(t, "]") {
+		return true
+	}
+	for _, end := range []string{" to", "±", ",", "–", "-", "−", ";", " ="} {
+		if strings.HasSuffix(t, end) && t != end {
+			return true
+		}
+	}
+	return false
+}
+
+func startsP(t string) bool {
+	return strings.HasPrefix(t, "P") || strings.HasPrefix(t, "p")
+}
+
+func startsLow(t string) bool {
+	r, _ := utf8.DecodeRuneInString(t)
+	return unicode.IsLower(r) || strings.ContainsRune("(%[/±", r)
+}
+
+// linkWords end a label that is not at its end.
+var linkWords = map[string]bool{
+	"of": true, "and": true, "or": true, "the": true, "for": true, "with": true, "in": true, "to": true, "at": true,
+	"from": true, "by": true, "on": true, "per": true, "than": true, "vs": true, "vs.": true, "a": true, "an": true,
+	"between": true, "versus": true, "&": true, "/": true, "mean": false,
+}
+
+// unfinishedLabel reports whether the row heading a, broken at its end, goes on
+// with b.
+func unfinishedLabel(a, b string) bool {
+	if strings.Count(a, "(") > strings.Count(a, ")") || strings.Count(a, "[") > strings.Count(a, "]") {
+		return true
+	}
+	if strings.HasPrefix(b, "(") && !strings.HasPrefix(b, "(n") {
+		return true
+	}
+	f := strings.Fields(a)
+	if len(f) == 0 {
+		return false
+	}
+	last := strings.ToLower(f[len(f)-1])
+	if linkWords[last] || strings.HasSuffix(last, "-") || strings.HasSuffix(last, "/") {
+		return true
+	}
+	return strings.HasSuffix(last, ",") && startsLow(b)
+}
+
+// labelGoesOn reports whether stub text below a finished row of data is the
+// rest of that row's heading and not a heading of the next rows.
+func (rd *reader) labelGoesOn(up, stub *piece, tight bool) bool {
+	if !sameWeight(rd.s, up, stub) {
+		return false
+	}
+	return tight || startsLow(stub.text) && rd.nearlyFull(up)
+}
+
+// nearlyFull reports whether a stub line ends where no further word had room.
+func (rd *reader) nearlyFull(p *piece) bool {
+	if len(rd.cs) == 0 {
+		return true
+	}
+	return p.x1 > rd.cs[0].x0-5*rd.em
+}
+
+// groupAbove reports whether two label lines in a row are a group and a
+// subgroup rather than one label: both begin with a capital and the next line
+// is set further in.
+func (rd *reader) groupAbove(up, stub *piece, i int) bool {
+	return rd.indentedMore(stub, up) && !startsLow(stub.text)
+}
+
+func (rd *reader) indentedMore(p, than *piece) bool {
+	return p.x0-than.x0 > rd.em*4/10
+}
+
+// sameWeight reports whether both pieces are bold or both not.
+func sameWeight(s *sheet, a, b *piece) bool {
+	return s.boldRun(&a.run) == s.boldRun(&b.run)
+}
+
+func (s *sheet) boldRun(r *run) bool {
+	for _, i := range r.toks {
+		if !s.toks[i].bold && s.toks[i].shift == 0 {
+			return false
+		}
+	}
+	return true
+}
