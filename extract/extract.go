@@ -12,6 +12,8 @@ import (
 type Options struct {
 	OCR      bool      // read page images without text through tesseract, where it is on PATH
 	Progress func(int) // called after each page with its number, may be nil: the sign of life
+
+	Preparing func() // called once if the PDF reader must first be compiled (some seconds), may be nil
 }
 
 // Read turns the content of the file at path into a Document. The format is
