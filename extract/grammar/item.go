@@ -65,6 +65,7 @@ type Item struct {
 	DF       string // KindTest: as printed, "1, 81"
 	Bracket  int    // 1-based index into Reading.Brackets of the innermost bracket; 0 none
 	Alone    bool   // nothing else stands in that bracket
+	Follows  bool   // an interval of a list: it shares the words of the one before
 	OneSided bool   // one-sided limit or interval
 }
 

@@ -23,15 +23,12 @@ func (p *parser) labelled(i int) int {
 		return i
 	}
 	words := k
-	k, opened := p.link(k)
+	k = p.link(k)
 	if b, end, ok := p.bounds(k, afterWord); ok && !p.triple(b, end) {
 		b.Meaning, b.WordAt, b.Level, b.LevelAt, b.OneSided = it.Meaning, it.WordAt, it.Level, it.LevelAt, it.OneSided
 		b.Start = it.Start
 		p.add(b)
-		if opened && p.kind(end) == TokClose {
-			return end // the bracket is kept by the caller
-		}
-		return end
+		return p.more(b, end)
 	}
 	if it.Spread == SpreadIQR || it.Spread == SpreadCI {
 		if half, end, ok := p.halfWidth(it, k); ok {
@@ -50,6 +47,40 @@ func (p *parser) labelled(i int) int {
 	it.Name = fold(p.src[it.Start:p.toks[words-1].End])
 	p.add(it)
 	return words
+}
+
+// more reads further intervals of a list that share the first one's words:
+//
+//	more = { ( "and" | "vs" | ";" | "/" | "," ) bounds }
+//
+// "90% CI −3.1, −1.2 and −2.6, −0.8", "95% CI −1.3, −0.5/−0.7, −0.1".
+func (p *parser) more(first Item, k int) int {
+	for {
+		at := k
+		switch {
+		case p.kind(at) == TokSemicolon && first.Sep != ";", p.kind(at) == TokSlash && first.Sep != "/":
+			at++
+		case p.kind(at) == TokComma && first.Sep != ",":
+			at++
+		case p.kind(at) == TokComma && p.word(at+1) == "and":
+			at++
+		}
+		switch p.word(at) {
+		case "and", "vs", "versus", "to":
+			at++
+		default:
+			if at == k {
+				return k
+			}
+		}
+		it, end, ok := p.bounds(at, afterWord)
+		if !ok || it.Sep != first.Sep {
+			return k
+		}
+		it.Meaning, it.WordAt, it.Level, it.LevelAt, it.Follows = first.Meaning, first.WordAt, first.Level, first.LevelAt, true
+		p.add(it)
+		k = end
+	}
 }
 
 // halfWidth reads "95% CI ±8".
@@ -80,27 +111,28 @@ func (p *parser) triple(b Item, end int) bool {
 }
 
 // link passes over what stands between an announcing phrase and its numbers.
-func (p *parser) link(k int) (next int, opened bool) {
+func (p *parser) link(k int) int {
+	opened := false
 	for steps := 0; steps < 7; steps++ {
 		switch p.kind(k) {
 		case TokColon, TokComma, TokEquals, TokSemicolon, TokPeriod, TokApprox:
 			k++
 		case TokOpen:
 			if opened {
-				return k, opened
+				return k
 			}
 			opened = true
 			k++
 		case TokWord:
 			if !linkWords[p.word(k)] {
-				return k, opened
+				return k
 			}
 			k++
 		default:
-			return k, opened
+			return k
 		}
 	}
-	return k, opened
+	return k
 }
 
 // spreadPhrase reads a term of one of the wanted spreads, and percentiles:

@@ -1,0 +1,168 @@
+package prose
+
+import (
+	"sort"
+
+	"halfspan/extract/bind/convention"
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// Find gives the results printed in the running text of a paper, in reading
+// order. Tables are not its business.
+func Find(doc *paper.Document) []result.Result {
+	f := &finder{doc: doc, conv: convention.Of(doc), comma: decimalComma(doc)}
+	f.learn()
+	for i := range doc.Blocks {
+		b := &doc.Blocks[i]
+		switch b.Kind {
+		case paper.Paragraph, paper.Caption, paper.Note:
+		default:
+			continue
+		}
+		if b.Zone == paper.References || b.Zone == paper.BackMatter {
+			continue
+		}
+		f.block(i)
+	}
+	return f.out
+}
+
+// finder holds what is known of the whole paper while its blocks are read.
+type finder struct {
+	doc   *paper.Document
+	conv  *convention.Conventions
+	comma bool // the paper prints decimal commas
+	cast  cast // its arms and their sizes
+	out   []result.Result
+}
+
+// decimalComma reports whether the paper prints decimal commas: most numbers
+// with one mark have a comma where only a decimal mark can stand.
+func decimalComma(doc *paper.Document) bool {
+	commas, points := 0, 0
+	for i := range doc.Blocks {
+		b := &doc.Blocks[i]
+		if b.Zone == paper.References || b.Kind == paper.Reference || b.Kind == paper.Furniture {
+			continue
+		}
+		c, p := grammar.DecimalMarks(b.Text.S)
+		commas, points = commas+c, points+p
+	}
+	return commas > 20 && commas > 4*points
+}
+
+// para is one block with what the grammar read in it.
+type para struct {
+	f     *finder
+	block *paper.Block
+	run   *paper.TextRun
+	s     string
+	r     grammar.Reading
+	ends  []int  // byte offsets at which sentences end
+	said  []said // words for a spread met so far
+	used  []bool // items that belong to a spread and are no estimate
+	cands []cand // spreads with their estimates
+	group []int  // of every item the run of intervals it belongs to
+}
+
+func (f *finder) block(i int) {
+	b := &f.doc.Blocks[i]
+	if len(b.Text.S) == 0 {
+		return
+	}
+	text := convention.Text(&b.Text)
+	text.DecimalComma = f.comma
+	p := &para{f: f, block: b, run: &b.Text, s: b.Text.S, r: grammar.Read(text)}
+	p.sentences()
+	p.used = make([]bool, len(p.r.Items))
+	for k := range p.r.Items {
+		p.spread(k)
+	}
+	p.lists()
+	first := len(f.out)
+	for k := range p.cands {
+		if r, ok := p.result(&p.cands[k]); ok {
+			f.out = append(f.out, r)
+		}
+	}
+	p.mates(first)
+}
+
+// mates ties together the results of one estimate: its interval and its range.
+func (p *para) mates(first int) {
+	out := p.f.out
+	for i := first; i < len(out); i++ {
+		for j := i + 1; j < len(out) && j < i+4; j++ {
+			a, b := place(&out[i], "estimate"), place(&out[j], "estimate")
+			if out[i].Estimate != "" && a == b && a != (paper.Place{}) {
+				out[i].Mates = append(out[i].Mates, j)
+				out[j].Mates = append(out[j].Mates, i)
+			}
+		}
+	}
+}
+
+func place(r *result.Result, field string) paper.Place {
+	for _, s := range r.Sources {
+		if s.Field == field {
+			return s.Place
+		}
+	}
+	return paper.Place{}
+}
+
+// sentences notes where sentences end: a full stop with space behind it and a
+// capital, a bracket or a number next, abbreviations aside.
+func (p *para) sentences() {
+	toks := p.r.Tokens
+	for i := 0; i+1 < len(toks); i++ {
+		t, next := toks[i], toks[i+1]
+		if t.Kind != grammar.TokPeriod && !(t.Kind == grammar.TokOther && (t.Value == "?" || t.Value == "!")) {
+			continue
+		}
+		for next.Kind == grammar.TokRaised && i+2 < len(toks) { // a citation behind the stop
+			i++
+			next = toks[i+1]
+		}
+		if !next.Spaced || i > 0 && abbreviations[toks[i-1].Value] {
+			continue
+		}
+		if next.Kind == grammar.TokWord && !capital(p.s[next.Start:]) {
+			continue
+		}
+		if next.Kind == grammar.TokComma || next.Kind == grammar.TokSemicolon {
+			continue
+		}
+		p.ends = append(p.ends, next.Start)
+	}
+	p.ends = append(p.ends, len(p.s))
+}
+
+var abbreviations = map[string]bool{
+	"vs": true, "fig": true, "figs": true, "eg": true, "ie": true, "cf": true, "approx": true, "resp": true, "ca": true,
+	"al": true, "no": true, "dr": true, "st": true, "e.g": true, "i.e": true, "p": true, "ref": true, "refs": true, "eq": true,
+}
+
+func capital(s string) bool {
+	for _, r := range s {
+		return r >= 'A' && r <= 'Z' || r >= 'À' && r <= 'Þ'
+	}
+	return false
+}
+
+// sentence gives the byte range of the sentence that holds byte b.
+func (p *para) sentence(b int) (start, end int) {
+	k := sort.SearchInts(p.ends, b+1)
+	if k > 0 {
+		start = p.ends[k-1]
+	}
+	if k < len(p.ends) {
+		return start, p.ends[k]
+	}
+	return start, len(p.s)
+}
+
+// sentenceNo numbers the sentence that holds byte b.
+func (p *para) sentenceNo(b int) int { return sort.SearchInts(p.ends, b+1) }

@@ -1,0 +1,141 @@
+package prose
+
+import (
+	"regexp"
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+var (
+	planning  = regexp.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
+	norms     = regexp.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
+	scaleText = regexp.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
+	climate   = regexp.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
+	margins   = regexp.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
+	central   = regexp.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
+	cited     = regexp.MustCompile(`(?i)\bet al\b|\bmeta-?analys|\bprevious(?:ly)?\b|\b(?:other|earlier|recent|another|similar) (?:study|studies|trial|trials|report|reports)\b|\bsystematic review|\breported (?:by|in)\b|\bpublished\b|\bliterature\b`)
+	bracketed = regexp.MustCompile(`\[[0-9]+(?:[-–,][ 0-9]+)*\]`)
+)
+
+func (p *para) sentenceText(b int) string {
+	from, to := p.sentence(b)
+	return p.s[from:to]
+}
+
+// planned reports that the sentence speaks of assumptions, not of results.
+func (p *para) planned(b int) bool {
+	s := p.sentenceText(b)
+	if !planning.MatchString(s) {
+		return false
+	}
+	return p.block.Zone == paper.Methods || p.block.Zone == paper.Elsewhere || strings.Contains(strings.ToLower(s), "power") || strings.Contains(strings.ToLower(s), "sample size")
+}
+
+// refusedPlusMinus reports visit windows, tolerances and assumptions.
+func (p *para) refusedPlusMinus(k int, c *cand) bool {
+	it := &p.r.Items[k]
+	i := p.token(c.est.Start)
+	if i > 0 {
+		switch p.r.Tokens[i-1].Value {
+		case "day", "days", "week", "weeks", "month", "months", "visit", "hour", "year", "d":
+			if !p.unitBehind(it.End, "kg", "g", "ml") && whole(it.Value.Value) {
+				return true
+			}
+		case ":":
+			if !p.r.Tokens[i-1].Spaced && !p.r.Tokens[i].Spaced {
+				return true // a time of day
+			}
+		}
+	}
+	s := p.sentenceText(it.Start)
+	j := p.token(it.End)
+	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || climate.MatchString(s)) {
+		return true
+	}
+	if climate.MatchString(s) && p.block.Zone == paper.Methods && strings.Contains(s, "humidity") {
+		return true
+	}
+	return p.planned(it.Start)
+}
+
+func (p *para) unitBehind(b int, units ...string) bool {
+	i := p.token(b)
+	if i >= len(p.r.Tokens) {
+		return false
+	}
+	for _, u := range units {
+		if p.r.Tokens[i].Value == u {
+			return true
+		}
+	}
+	return false
+}
+
+// refusedSpread reports norms ("mean 50, SD 10") and assumptions.
+func (p *para) refusedSpread(k int) bool {
+	it := &p.r.Items[k]
+	s := p.sentenceText(it.Start)
+	if norms.MatchString(s) && whole(it.Value.Value) {
+		return true
+	}
+	return p.planned(it.Start)
+}
+
+// refusedInterval reports scale limits, eligibility, margins and plans.
+func (p *para) refusedInterval(k int, given result.GivenAs) bool {
+	it := &p.r.Items[k]
+	if p.planned(it.Start) {
+		return true
+	}
+	s := p.sentenceText(it.Start)
+	switch given {
+	case result.Range:
+		return p.block.Zone == paper.Methods && scaleText.MatchString(s) || scaleText.MatchString(s) && !central.MatchString(s)
+	case result.CI:
+		return margins.MatchString(s) && p.block.Zone == paper.Methods
+	}
+	return false
+}
+
+// refusedBracket reports a bracketed number that is a share or a count.
+func (p *para) refusedBracket(c *cand) bool {
+	e, ok1 := c.est.Float()
+	v, ok2 := c.value.Float()
+	if !ok1 || !ok2 {
+		return true
+	}
+	if c.value.Percent && !c.est.Percent {
+		return true
+	}
+	return e == v && whole(c.est.Value)
+}
+
+// quoted reports that the result is somebody else's, or a repeat: it stands in
+// the introduction or discussion beside a citation or words of other studies.
+func (p *para) quoted(c *cand) bool {
+	at := p.r.Items[c.item].Start
+	s := p.sentenceText(at)
+	switch p.block.Zone {
+	case paper.Introduction:
+		return true
+	case paper.Discussion:
+		return cited.MatchString(s) || bracketed.MatchString(s) || p.citedBy(at)
+	}
+	return false
+}
+
+// citedBy reports a superscript number in the sentence.
+func (p *para) citedBy(b int) bool {
+	from, to := p.sentence(b)
+	for i := p.token(from); i < len(p.r.Tokens) && p.r.Tokens[i].Start < to; i++ {
+		t := p.r.Tokens[i]
+		if t.Kind == grammar.TokRaised && t.Value != "" && t.Value[0] >= '0' && t.Value[0] <= '9' && i > 0 &&
+			(p.r.Tokens[i-1].Kind == grammar.TokWord && len(p.r.Tokens[i-1].Value) > 2 || p.r.Tokens[i-1].Kind == grammar.TokPeriod) {
+			return true
+		}
+	}
+	return false
+}

@@ -1,0 +1,121 @@
+package prose
+
+import (
+	"regexp"
+	"strconv"
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// subjects are the words for what a trial counts.
+const subjects = `(?:participants?|patients?|subjects?|women|men|children|adults?|adolescents?|girls?|boys?|infants?|individuals?|people|persons?|volunteers?|students?|colonies|colony|bees?|animals?|mothers?|workers?|employees|respondents|pupils|cases|newborns?|neonates?|residents?|eyes|teeth|couples|families)`
+
+var counted = regexp.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + numberWords + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + subjects + `\b`)
+
+const numberWords = `(?:(?:one|two|three|four|five|six|seven|eight|nine) hundred(?: and)? )?(?:(?:twenty|thirty|forty|fifty|sixty|seventy|eighty|ninety)(?:[- ](?:one|two|three|four|five|six|seven|eight|nine))?|ten|eleven|twelve|thirteen|fourteen|fifteen|sixteen|seventeen|eighteen|nineteen|two|three|four|five|six|seven|eight|nine)|(?:one|two|three|four|five|six|seven|eight|nine) hundred`
+
+// size is a sample size with the place it was read from.
+type size struct {
+	n    int
+	at   grammar.Span
+	text string
+	from string // where, in words, when it is not beside
+	run  *paper.TextRun
+	kind string
+}
+
+// beside finds the n printed with the result: n = … in its own bracket, right
+// behind the bracket, or the one count of subjects in the sentence where the
+// sentence holds one group only.
+func (p *para) beside(c *cand) (size, bool) {
+	it := &p.r.Items[c.item]
+	var only *grammar.Item
+	count := 0
+	from, to := p.sentence(it.Start)
+	for k := range p.r.Items {
+		e := &p.r.Items[k]
+		if e.Kind != grammar.KindSampleSize || e.Start < from || e.Start >= to {
+			continue
+		}
+		if it.Bracket > 0 && e.Bracket == it.Bracket {
+			return p.sized(e)
+		}
+		if e.Start > it.End && e.Start-it.End < 8 {
+			return p.sized(e)
+		}
+		count++
+		only = e
+	}
+	if p.alone(from, to) && count == 1 && only.Start < it.Start && it.Start-only.End < 80 {
+		return p.sized(only)
+	}
+	if count == 0 && p.alone(from, to) {
+		return p.countedIn(from, it.Start)
+	}
+	return size{}, false
+}
+
+func (p *para) sized(e *grammar.Item) (size, bool) {
+	n, err := strconv.Atoi(e.Value.Value)
+	return size{n: n, at: e.Span, text: p.s[e.Start:e.End]}, err == nil && n > 0
+}
+
+// alone reports that all results of the sentence are about one group: nothing
+// in it contrasts groups.
+func (p *para) alone(from, to int) bool {
+	s := p.s[from:to]
+	return !contrast.MatchString(s) && !groupWord.MatchString(s) && !strings.Contains(s, "respectively")
+}
+
+var groupWord = regexp.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
+
+// countedIn reads "the 61 included subjects", "Forty-two colonies" where it is
+// the only count before the result.
+func (p *para) countedIn(from, to int) (size, bool) {
+	found := counted.FindAllStringSubmatchIndex(p.s[from:to], -1)
+	if len(found) != 1 {
+		return size{}, false
+	}
+	a, b := from+found[0][2], from+found[0][3]
+	n, ok := wholeNumber(p.s[a:b])
+	if !ok || n < 2 {
+		return size{}, false
+	}
+	return size{n: n, at: grammar.Span{Start: a, End: from + found[0][1]}, text: p.s[a : from+found[0][1]]}, true
+}
+
+var units = map[string]int{"one": 1, "two": 2, "three": 3, "four": 4, "five": 5, "six": 6, "seven": 7, "eight": 8, "nine": 9, "ten": 10,
+	"eleven": 11, "twelve": 12, "thirteen": 13, "fourteen": 14, "fifteen": 15, "sixteen": 16, "seventeen": 17, "eighteen": 18, "nineteen": 19,
+	"twenty": 20, "thirty": 30, "forty": 40, "fifty": 50, "sixty": 60, "seventy": 70, "eighty": 80, "ninety": 90}
+
+// wholeNumber reads a count in digits or in words below one thousand.
+func wholeNumber(s string) (int, bool) {
+	s = strings.ToLower(strings.ReplaceAll(s, ",", ""))
+	if n, err := strconv.Atoi(s); err == nil {
+		return n, true
+	}
+	total := 0
+	for _, w := range strings.FieldsFunc(s, func(r rune) bool { return r == ' ' || r == '-' || r == '\u00a0' }) {
+		switch {
+		case w == "and":
+		case w == "hundred":
+			total *= 100
+		case units[w] > 0:
+			total += units[w]
+		default:
+			return 0, false
+		}
+	}
+	return total, total > 0
+}
+
+// setSize fills the result's n.
+func (p *para) setSize(r *result.Result, c *cand) {
+	if s, ok := p.beside(c); ok {
+		r.N, r.NFrom, r.NKind = s.n, result.NBeside, result.NUnclear
+		r.Sources = append(r.Sources, result.Source{Field: "n", Place: p.run.Between(s.at.Start, s.at.End), Text: s.text})
+	}
+}

@@ -1,0 +1,322 @@
+package prose
+
+import (
+	"strconv"
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/result"
+)
+
+// said is a word for a spread that was printed, with or without numbers: later
+// intervals and brackets may share it.
+type said struct {
+	item int // index of the item
+	grammar.Meaning
+	level    string
+	levelAt  grammar.Span
+	at       grammar.Span
+	bracket  bool   // its own interval stood in a bracket with it
+	announce bool   // no numbers of its own: "mean (95% CI)"
+	sep      string // of its own interval
+	oneSided bool
+}
+
+// cand is a spread with the estimate it is about.
+type cand struct {
+	item     int // the spread's item
+	est      grammar.Number
+	estItem  int // -1: none printed
+	given    result.GivenAs
+	level    string
+	levelAt  grammar.Span
+	givenAt  grammar.Span // the word that says what it is; zero where the convention says
+	from     string       // in words where it was read, where not beside
+	conv     *conventionSource
+	meaning  grammar.Meaning
+	value    grammar.Number
+	lower    grammar.Number
+	upper    grammar.Number
+	start    int // of the first digit of the spread
+	flags    []result.Flag
+	oneSided bool
+	quartile bool // the middle of three quartiles is the estimate
+}
+
+// spread looks at item k: if it is a spread that can be a result, its candidate
+// is kept; if it is a word for one, it is remembered.
+func (p *para) spread(k int) {
+	it := &p.r.Items[k]
+	switch it.Kind {
+	case grammar.KindTerm:
+		if it.Spread != "" {
+			p.said = append(p.said, said{item: k, Meaning: it.Meaning, level: it.Level, levelAt: it.LevelAt, at: it.WordAt,
+				announce: true, oneSided: it.OneSided})
+		}
+	case grammar.KindInterval:
+		if it.Spread != "" {
+			p.said = append(p.said, said{item: k, Meaning: it.Meaning, level: it.Level, levelAt: it.LevelAt, at: it.WordAt,
+				bracket: it.Bracket > 0, sep: it.Sep, oneSided: it.OneSided})
+			p.wordInterval(k)
+			return
+		}
+		p.bareInterval(k)
+	case grammar.KindPlusMinus:
+		p.plusMinus(k)
+	case grammar.KindSpread:
+		p.said = append(p.said, said{item: k, Meaning: it.Meaning, at: it.WordAt, bracket: it.Bracket > 0})
+		p.wordSpread(k)
+	case grammar.KindNumber:
+		if it.Bracket > 0 && it.Alone {
+			p.bareBracket(k)
+		}
+	}
+}
+
+func givenAs(spread string) result.GivenAs {
+	switch spread {
+	case grammar.SpreadCI:
+		return result.CI
+	case grammar.SpreadSD:
+		return result.SD
+	case grammar.SpreadSE:
+		return result.SE
+	case grammar.SpreadIQR:
+		return result.IQR
+	case grammar.SpreadRange:
+		return result.Range
+	}
+	return ""
+}
+
+// wordInterval takes an interval whose word stands with it.
+func (p *para) wordInterval(k int) {
+	it := &p.r.Items[k]
+	c := cand{item: k, given: givenAs(it.Spread), level: it.Level, levelAt: it.LevelAt, givenAt: it.WordAt, meaning: it.Meaning,
+		lower: it.Lower, upper: it.Upper, start: it.Lower.Start, oneSided: it.OneSided, estItem: -1}
+	if third, ok := p.thirdQuartile(k); ok {
+		c.est, c.estItem, c.upper, c.quartile = it.Upper, k, third, true
+		p.cands = append(p.cands, c)
+		return
+	}
+	if p.refusedInterval(k, c.given) {
+		return
+	}
+	p.estimate(&c)
+	if c.estItem < 0 && c.given != result.CI {
+		return
+	}
+	p.cands = append(p.cands, c)
+}
+
+// thirdQuartile reads the last of "quartiles 5, 12, 48".
+func (p *para) thirdQuartile(k int) (grammar.Number, bool) {
+	it := &p.r.Items[k]
+	if it.Spread != grammar.SpreadIQR || it.Sep != "," || k+1 >= len(p.r.Items) {
+		return grammar.Number{}, false
+	}
+	next := &p.r.Items[k+1]
+	if next.Kind != grammar.KindNumber || strings.TrimSpace(p.s[it.End:next.Start]) != "," || next.Bracket != it.Bracket {
+		return grammar.Number{}, false
+	}
+	p.used[k+1] = true
+	return next.Value, true
+}
+
+// bareInterval takes an interval without a word: one whose level was said
+// before, or is said behind it in the same bracket, or is announced, or that
+// the paper's conventions explain.
+func (p *para) bareInterval(k int) {
+	it := &p.r.Items[k]
+	c := cand{item: k, lower: it.Lower, upper: it.Upper, start: it.Lower.Start, estItem: -1}
+	if it.Bracket == 0 || !it.Alone && !p.firstInBracket(k) {
+		if !p.commaForm(k, &c) {
+			return
+		}
+	} else if !p.explain(k, &c) {
+		return
+	}
+	if c.estItem < 0 || p.refusedInterval(k, c.given) {
+		return
+	}
+	p.cands = append(p.cands, c)
+}
+
+// firstInBracket reports that only the bracket's opening stands before item k.
+func (p *para) firstInBracket(k int) bool {
+	it := &p.r.Items[k]
+	return it.Bracket > 0 && strings.TrimSpace(p.s[p.r.Brackets[it.Bracket-1].Start+1:it.Start]) == ""
+}
+
+// explain finds what a bracketed bare interval is. Its estimate must stand
+// before the bracket and lie within the bounds.
+func (p *para) explain(k int, c *cand) bool {
+	p.estimate(c)
+	if c.estItem < 0 || len(c.flags) > 0 || !p.nextTo(c) {
+		return false
+	}
+	if w := p.behind(k); w != nil {
+		p.take(c, w)
+		return true
+	}
+	if w := p.shared(k, grammar.SpreadCI, grammar.SpreadIQR, grammar.SpreadRange); w != nil {
+		p.take(c, w)
+		return true
+	}
+	return p.byConvention(k, c)
+}
+
+func (p *para) take(c *cand, w *said) {
+	c.given, c.level, c.levelAt, c.givenAt, c.meaning, c.oneSided = givenAs(w.Spread), w.level, w.levelAt, w.at, w.Meaning, w.oneSided
+}
+
+// behind finds a word for the interval later in its own bracket: "(0.9–2.8, 95% CI)".
+func (p *para) behind(k int) *said {
+	it := &p.r.Items[k]
+	if k+1 < len(p.r.Items) {
+		n := &p.r.Items[k+1]
+		if n.Kind == grammar.KindTerm && n.Spread != "" && n.Bracket == it.Bracket && n.Start-it.End < 12 && givenAs(n.Spread) != result.SD && givenAs(n.Spread) != result.SE {
+			return &said{Meaning: n.Meaning, level: n.Level, levelAt: n.LevelAt, at: n.WordAt}
+		}
+	}
+	return nil
+}
+
+// shareWithin is how many bytes behind a word for a spread a bare form may
+// still share it when a sentence has ended between them.
+const shareWithin = 300
+
+// shared finds the word for a spread that item k shares: the last one said in
+// the same sentence, or in the one before, near enough.
+func (p *para) shared(k int, kinds ...string) *said {
+	it := &p.r.Items[k]
+	no := p.sentenceNo(it.Start)
+	for i := len(p.said) - 1; i >= 0; i-- {
+		w := &p.said[i]
+		if w.at.End > it.Start {
+			continue
+		}
+		d := no - p.sentenceNo(w.at.Start)
+		if d > 1 || d == 1 && it.Start-w.at.End > shareWithin {
+			return nil
+		}
+		for _, kind := range kinds {
+			if w.Spread == kind {
+				return w
+			}
+		}
+	}
+	return nil
+}
+
+// commaForm takes an interval outside any bracket of its own, "0.94, 0.80 to
+// 1.12", whose level was said before in the same sentence.
+func (p *para) commaForm(k int, c *cand) bool {
+	it := &p.r.Items[k]
+	w := p.shared(k, grammar.SpreadCI, grammar.SpreadIQR)
+	if w == nil || p.sentenceNo(w.at.Start) != p.sentenceNo(it.Start) {
+		return false
+	}
+	if w.sep != "" && w.sep != it.Sep {
+		return false
+	}
+	p.estimate(c)
+	if c.estItem < 0 || len(c.flags) > 0 {
+		return false
+	}
+	switch strings.TrimSpace(p.s[c.est.End:it.Start]) {
+	case ",", ";", ":", "(":
+	default:
+		return false
+	}
+	p.take(c, w)
+	return true
+}
+
+// plusMinus takes "12.4 ± 1.3" and "12.4 (±1.3)".
+func (p *para) plusMinus(k int) {
+	it := &p.r.Items[k]
+	c := cand{item: k, value: it.Value, start: it.Value.Start, meaning: it.Meaning, givenAt: it.WordAt, level: it.Level, levelAt: it.LevelAt, estItem: -1}
+	if !it.Of.IsZero() {
+		c.est, c.estItem = it.Of, k
+	} else {
+		p.estimate(&c)
+		if c.estItem < 0 || !p.nextTo(&c) {
+			return
+		}
+	}
+	if p.refusedPlusMinus(k, &c) {
+		return
+	}
+	switch it.Spread {
+	case "":
+		if !p.explainSign(k, &c) {
+			return
+		}
+	default:
+		c.given = givenAs(it.Spread)
+	}
+	p.cands = append(p.cands, c)
+}
+
+// explainSign finds what a ± without a word means: a word behind it in the
+// sentence, one announced or shared before it, the paper's declaration; else it
+// stays unstated.
+func (p *para) explainSign(k int, c *cand) bool {
+	it := &p.r.Items[k]
+	if k+1 < len(p.r.Items) {
+		for j := k + 1; j < len(p.r.Items) && j < k+4; j++ {
+			n := &p.r.Items[j]
+			if n.Kind == grammar.KindTerm && (n.Spread == grammar.SpreadSD || n.Spread == grammar.SpreadSE) && n.Start-it.End < 30 &&
+				p.sentenceNo(n.Start) == p.sentenceNo(it.Start) {
+				c.given, c.givenAt = givenAs(n.Spread), n.WordAt
+				return true
+			}
+		}
+	}
+	if w := p.shared(k, grammar.SpreadSD, grammar.SpreadSE); w != nil && p.sentenceNo(w.at.Start) == p.sentenceNo(it.Start) {
+		c.given, c.givenAt = givenAs(w.Spread), w.at
+		return true
+	}
+	p.signConvention(c)
+	return true
+}
+
+// wordSpread takes "SD 1.3" with the number it is about.
+func (p *para) wordSpread(k int) {
+	it := &p.r.Items[k]
+	c := cand{item: k, given: givenAs(it.Spread), value: it.Value, start: it.Value.Start, meaning: it.Meaning, givenAt: it.WordAt, estItem: -1}
+	if c.given == "" || p.refusedSpread(k) {
+		return
+	}
+	p.estimate(&c)
+	if c.estItem < 0 {
+		return
+	}
+	p.cands = append(p.cands, c)
+}
+
+// bareBracket takes "12.4 (1.3)" where a spread was announced or shared in the
+// same sentence.
+func (p *para) bareBracket(k int) {
+	it := &p.r.Items[k]
+	if it.Value.Value == "" || it.Value.Rel != "" || strings.HasPrefix(it.Value.Value, "-") {
+		return
+	}
+	w := p.shared(k, grammar.SpreadSD, grammar.SpreadSE, grammar.SpreadIQR, grammar.SpreadCI, grammar.SpreadRange)
+	if w == nil || w.Spread != grammar.SpreadSD && w.Spread != grammar.SpreadSE || !w.announce && !w.bracket {
+		return
+	}
+	c := cand{item: k, value: it.Value, start: it.Value.Start, estItem: -1}
+	p.estimate(&c)
+	if c.estItem < 0 || !p.nextTo(&c) || p.refusedBracket(&c) {
+		return
+	}
+	p.take(&c, w)
+	p.cands = append(p.cands, c)
+}
+
+func number(v string) (float64, bool) {
+	f, err := strconv.ParseFloat(v, 64)
+	return f, err == nil
+}
