@@ -1,0 +1,294 @@
+package layout
+
+import (
+	"cmp"
+	"slices"
+
+	"halfspan/extract/layout/grid"
+	"halfspan/extract/layout/words"
+	"halfspan/extract/paper"
+)
+
+// Arrangement is a paper in reading order.
+type Arrangement struct {
+	Title  string // the largest print on the first page; empty where nothing stands out
+	Blocks []paper.Block
+	Pages  []PageLines
+}
+
+// PageLines is what is printed on one page, in reading order. Tables stand row
+// by row; running heads and figure text are included.
+type PageLines struct {
+	Number int
+	Lines  []PrintedLine
+}
+
+// PrintedLine is one printed line of a column, its words from left to right.
+type PrintedLine struct {
+	Words []*words.Word
+	Cells bool // a row of a table: wide gaps between its words part its cells
+}
+
+// Arrange turns the pages of a paper into blocks in reading order.
+func Arrange(pages []paper.GlyphPage) *Arrangement {
+	sheets := make([][]sheet, len(pages))
+	for i := range pages {
+		sheets[i] = sheetsOf(&pages[i])
+	}
+	markFurniture(sheets)
+	a := &arranger{sheets: sheets, body: bodySize(sheets)}
+	for p := range sheets {
+		for i := range sheets[p] {
+			a.takeTables(&sheets[p][i])
+		}
+	}
+	a.findColumns()
+	return a.finish(pages)
+}
+
+// arranger holds the paper while it is arranged.
+type arranger struct {
+	sheets [][]sheet
+	body   int // the paper's usual font size
+	drafts []draft
+	pages  []PageLines
+	dict   map[string]bool
+}
+
+func sheetsOf(p *paper.GlyphPage) []sheet {
+	frames := words.Read(p)
+	out := make([]sheet, len(frames))
+	for i := range frames {
+		s := &out[i]
+		s.page, s.frame = p.Page.Number, frames[i]
+		s.lines = make([]line, len(frames[i].Lines))
+		for k := range frames[i].Lines {
+			s.lines[k] = newLine(s.page, wordsOf(&frames[i].Lines[k]))
+		}
+	}
+	return out
+}
+
+// bodySize is the font size that most glyphs of the paper have.
+func bodySize(sheets [][]sheet) int {
+	count := map[int]int{}
+	for _, page := range sheets {
+		for i := range page {
+			for k := range page[i].lines {
+				l := &page[i].lines[k]
+				count[(l.size+5)/10] += l.glyphs
+			}
+		}
+	}
+	best := 100
+	for size, n := range count {
+		if n > count[best] || n == count[best] && size < best {
+			best = size
+		}
+	}
+	return best * 10
+}
+
+// takeTables finds the tables of a sheet, takes their words out of its lines
+// and puts one line in for each table.
+func (a *arranger) takeTables(s *sheet) {
+	if s.frame.Oblique {
+		return
+	}
+	// Running heads are no part of a table.
+	f := s.frame
+	f.Lines = nil
+	var from []int
+	for i := range s.lines {
+		if !s.lines[i].furniture {
+			f.Lines = append(f.Lines, s.frame.Lines[i])
+			from = append(from, i)
+		}
+	}
+	regions := grid.Find(&f, int32(a.body))
+	if len(regions) == 0 {
+		return
+	}
+	taken := map[grid.Ref]bool{}
+	var tables []line
+	for i := range regions {
+		r := &regions[i]
+		var ws []*words.Word
+		var rows []line
+		for _, part := range [][]grid.Ref{r.Caption, r.Body, r.Notes} {
+			var own []line
+			for _, ref := range part {
+				key := grid.Ref{Line: int32(from[ref.Line]), Word: ref.Word}
+				if taken[key] {
+					continue
+				}
+				taken[key] = true
+				w := &s.frame.Lines[key.Line].Words[key.Word]
+				ws = append(ws, w)
+				own = appendRow(own, s.page, w, -int(s.frame.Lines[key.Line].Base))
+			}
+			rows = append(rows, settleRows(own, s.page)...)
+		}
+		if len(ws) == 0 {
+			continue
+		}
+		l := newLine(s.page, ws)
+		for _, row := range rows {
+			l.top, l.bot = min(l.top, row.top), max(l.bot, row.bot)
+		}
+		l.words = nil
+		l.table = &tableAt{table: r.Read(s.page), rows: rows}
+		tables = append(tables, l)
+	}
+	s.dropWords(taken)
+	s.lines = append(s.lines, tables...)
+}
+
+// appendRow adds a word to the row with its line's baseline, the last one or a
+// new one.
+func appendRow(rows []line, page int, w *words.Word, base int) []line {
+	for i := len(rows) - 1; i >= 0 && i >= len(rows)-3; i-- {
+		if abs(rows[i].base-base)*4 <= int(w.Size) {
+			rows[i].words = append(rows[i].words, w)
+			return rows
+		}
+	}
+	return append(rows, line{words: []*words.Word{w}, base: base, page: page})
+}
+
+func settleRows(rows []line, page int) []line {
+	out := make([]line, len(rows))
+	for i, r := range rows {
+		slices.SortStableFunc(r.words, func(a, b *words.Word) int { return cmp.Compare(a.Box.X0, b.Box.X0) })
+		out[i] = newLine(page, r.words)
+		out[i].base = r.base
+	}
+	slices.SortStableFunc(out, func(a, b line) int { return cmp.Compare(a.base, b.base) })
+	return out
+}
+
+// dropWords takes words out of the lines; what is left of a line on either
+// side of them becomes a line of its own.
+func (s *sheet) dropWords(taken map[grid.Ref]bool) {
+	var out []line
+	for i := range s.lines {
+		start := 0
+		ws := s.lines[i].words
+		for k := 0; k <= len(ws); k++ {
+			if k < len(ws) && !taken[grid.Ref{Line: int32(i), Word: int32(k)}] {
+				continue
+			}
+			if k > start {
+				l := newLine(s.page, ws[start:k])
+				l.furniture = s.lines[i].furniture
+				out = append(out, l)
+			}
+			start = k + 1
+		}
+	}
+	s.lines = out
+}
+
+// findColumns finds the gutters of all sheets, the sure ones first: where they
+// stand on one page they are believed with less text on another.
+func (a *arranger) findColumns() {
+	var prior []int
+	for p := range a.sheets {
+		for i := range a.sheets[p] {
+			if a.sheets[p][i].frame.Oblique {
+				continue
+			}
+			for _, c := range a.sheets[p][i].findGutters(nil, a.body) {
+				if c.left >= 10 && c.right >= 10 {
+					prior = append(prior, (c.g.x0+c.g.x1)/2)
+				}
+			}
+		}
+	}
+	slices.Sort(prior)
+	prior = slices.CompactFunc(prior, func(x, y int) bool { return y-x < cell })
+	for p := range a.sheets {
+		for i := range a.sheets[p] {
+			s := &a.sheets[p][i]
+			if s.frame.Oblique {
+				continue
+			}
+			for _, c := range s.findGutters(prior, a.body) {
+				s.gutters = append(s.gutters, c.g)
+			}
+		}
+	}
+}
+
+// finish puts the sheets in order, numbers the lines and makes the blocks.
+func (a *arranger) finish(pages []paper.GlyphPage) *Arrangement {
+	for p := range a.sheets {
+		out := PageLines{Number: pages[p].Page.Number}
+		for i := range a.sheets[p] {
+			a.arrangeSheet(&a.sheets[p][i], &out)
+		}
+		a.pages = append(a.pages, out)
+	}
+	a.learnWords()
+	return &Arrangement{Title: a.title(), Blocks: a.blocks(), Pages: a.pages}
+}
+
+// arrangeSheet orders one sheet: running heads first, then the columns, then
+// what stands at the foot.
+func (a *arranger) arrangeSheet(s *sheet, out *PageLines) {
+	var head, foot, body []line
+	middle := 0
+	for i := range s.lines {
+		middle += s.lines[i].mid() / max(len(s.lines), 1)
+	}
+	for _, l := range s.lines {
+		switch {
+		case !l.furniture:
+			body = append(body, l)
+		case l.mid() < middle:
+			head = append(head, l)
+		default:
+			foot = append(foot, l)
+		}
+	}
+	number := func(ls []line) {
+		for i := range ls {
+			l := &ls[i]
+			l.no = len(out.Lines) + 1
+			if l.table == nil {
+				out.Lines = append(out.Lines, PrintedLine{Words: l.words})
+				continue
+			}
+			for _, row := range l.table.rows {
+				out.Lines = append(out.Lines, PrintedLine{Words: row.words, Cells: true})
+			}
+		}
+	}
+	margin := func(ls []line) {
+		s.lines = ls
+		s.place()
+		s.joinRows()
+		number(s.lines)
+		for i := range s.lines {
+			a.drafts = append(a.drafts, draft{kind: paper.Furniture, lines: s.lines[i : i+1], page: s.page})
+		}
+	}
+	gutters := s.gutters
+	s.gutters = nil
+	margin(head)
+	s.lines, s.gutters = body, gutters
+	var stacks []stack
+	if s.frame.Oblique {
+		for i := range s.lines {
+			stacks = append(stacks, stack{lines: s.lines[i : i+1]})
+		}
+	} else {
+		stacks = s.columns()
+	}
+	for i := range stacks {
+		number(stacks[i].lines)
+		a.drafts = append(a.drafts, a.split(s, &stacks[i])...)
+	}
+	s.gutters = nil
+	margin(foot)
+}

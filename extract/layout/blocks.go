@@ -1,0 +1,236 @@
+package layout
+
+import (
+	"regexp"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"halfspan/extract/paper"
+)
+
+// blocks classifies the drafts, joins what belongs together and writes the
+// blocks with their zones.
+func (a *arranger) blocks() []paper.Block {
+	a.classify()
+	a.join()
+	z := &zoner{body: a.body, titleSize: a.titleSize(), parts: map[string]bool{}}
+	var out []paper.Block
+	for i := range a.drafts {
+		d := &a.drafts[i]
+		if d.kind == paper.TableBlock {
+			t := d.lines[0].table.table
+			out = append(out, paper.Block{Kind: paper.TableBlock, Page: d.page, Table: &t, Zone: z.floating(), Section: z.section})
+			continue
+		}
+		run := a.run(d)
+		if run.S == "" {
+			continue
+		}
+		out = append(out, z.blocks(d, run)...)
+	}
+	return out
+}
+
+// run writes the text of a draft.
+func (a *arranger) run(d *draft) paper.TextRun {
+	var w writer
+	for i := range d.lines {
+		w.line(&d.lines[i], a.dict)
+	}
+	return w.run()
+}
+
+var (
+	frontMatter = regexp.MustCompile(`(?i)@|^correspond|^\*?\s?correspond|correspondence (?:to|should)|^received:? |^accepted:? |accepted:? [0-9]{1,2} |^copyright|©|creative commons|all rights reserved|^doi:|^https?://|^academic editor|^edited by|^reviewed by|^specialty section|^citation:|^to cite|^how to cite|^e-?mail|^funding:|^data availability|^competing interests|^editor:|^issn|^open access$|^publisher|^key ?words`)
+	affiliation = regexp.MustCompile(`(?i)\b(?:department|university|universit[éà]|hospital|institute|school of|faculty|college|division of|cent(?:er|re) for)\b`)
+	resultLike  = regexp.MustCompile(`±|[0-9]\s?%|\bCI\b|\bSD\b|\bp\s?[<=]`)
+)
+
+// classify gives each draft its kind.
+func (a *arranger) classify() {
+	title := a.titleSize()
+	abstractSeen := false
+	for i := range a.drafts {
+		d := &a.drafts[i]
+		if d.kind != paper.Paragraph {
+			continue
+		}
+		text := d.text()
+		switch {
+		case startsLabel(text):
+			d.kind = paper.Caption
+		case a.isHeading(d):
+			d.kind = paper.Heading
+		case a.isFigureText(d, text):
+			d.kind = paper.Furniture
+		case d.page <= 2 && a.isFrontMatter(d, text, abstractSeen):
+			d.kind = paper.Furniture
+		case d.side, a.isFootNote(d, i):
+			d.kind = paper.Note
+		}
+		if d.kind == paper.Heading && d.size < title {
+			z, _ := paper.ZoneOf(text)
+			abstractSeen = abstractSeen || z != paper.Elsewhere
+		}
+		abstractSeen = abstractSeen || runInHeading(text) != ""
+	}
+}
+
+// isFigureText reports whether a draft is the lettering of a figure: small
+// print in scattered pieces.
+func (a *arranger) isFigureText(d *draft, text string) bool {
+	if len(d.lines) > 0 && d.page > 0 && !d.oblique() && d.size*100 >= a.body*96 {
+		return false
+	}
+	words := len(strings.Fields(text))
+	return d.oblique() || words <= 4*len(d.lines) && !ended(text) && !strings.Contains(text, "±")
+}
+
+func (d *draft) oblique() bool {
+	if len(d.lines[0].words) == 0 {
+		return false
+	}
+	g := d.lines[0].words[0].Glyphs
+	return len(g) > 0 && g[0].Angle%90 != 0
+}
+
+func (a *arranger) isFrontMatter(d *draft, text string, abstractSeen bool) bool {
+	if resultLike.MatchString(text) && len(text) > 300 {
+		return false
+	}
+	if frontMatter.MatchString(text) && (len(text) < 900 || d.size*100 < a.body*95) {
+		return true
+	}
+	return !abstractSeen && d.page == 1 && affiliation.MatchString(text) && len(text) < 1500 && strings.Count(text, ". ")*120 < len(text)
+}
+
+// isFootNote reports whether draft i is small print at the foot of its column
+// that begins with a mark.
+func (a *arranger) isFootNote(d *draft, i int) bool {
+	if d.size*100 >= a.body*94 || len(d.lines[0].words) == 0 {
+		return false
+	}
+	w := d.lines[0].words[0]
+	r, _ := utf8.DecodeRuneInString(w.Text)
+	return w.Shift == paper.Raised || strings.ContainsRune("*†‡§¶∗#", r)
+}
+
+// join puts paragraphs together that go on in the next column, on the next
+// page or after a float: the first does not end a sentence, the second begins
+// inside one.
+func (a *arranger) join() {
+	gone := make([]bool, len(a.drafts))
+	for i := range a.drafts {
+		d := &a.drafts[i]
+		if d.kind != paper.Paragraph || gone[i] {
+			continue
+		}
+		for {
+			k := a.continuation(i, gone)
+			if k < 0 {
+				break
+			}
+			d.lines = append(d.lines[:len(d.lines):len(d.lines)], a.drafts[k].lines...)
+			gone[k] = true
+		}
+	}
+	kept := a.drafts[:0]
+	for i := range a.drafts {
+		if !gone[i] {
+			kept = append(kept, a.drafts[i])
+		}
+	}
+	a.drafts = kept
+}
+
+const maxBetween = 60 // blocks that may stand between the two parts of a paragraph
+
+// continuation is the draft that goes on with the sentence at the end of draft
+// i, or -1.
+func (a *arranger) continuation(i int, gone []bool) int {
+	d := &a.drafts[i]
+	prev := d.last().text()
+	if ended(prev) {
+		return -1
+	}
+	page := d.last().page
+	for k := i + 1; k < len(a.drafts) && k <= i+maxBetween; k++ {
+		e := &a.drafts[k]
+		if gone[k] {
+			continue
+		}
+		if e.page > page+1 {
+			return -1
+		}
+		switch e.kind {
+		case paper.Heading:
+			if k == i+1 && e.page == d.page {
+				return -1
+			}
+			if zone, sure := paper.ZoneOf(e.text()); sure && zone != paper.Elsewhere {
+				return -1
+			}
+			continue
+		case paper.Paragraph:
+		default:
+			continue
+		}
+		if abs(e.size-d.size)*100 > 4*d.size {
+			continue
+		}
+		if goesOn(prev, e.first().text()) {
+			return k
+		}
+		return -1
+	}
+	return -1
+}
+
+// goesOn reports whether a line that begins a block plainly goes on from prev.
+func goesOn(prev, next string) bool {
+	r, _ := utf8.DecodeRuneInString(strings.TrimLeft(next, "([“\"'"))
+	last, n := utf8.DecodeLastRuneInString(prev)
+	before, _ := utf8.DecodeLastRuneInString(prev[:len(prev)-n])
+	switch {
+	case bullet(next), startsLabel(next):
+		return false
+	case unicode.IsLower(r):
+		return true
+	case isHyphen(last) && unicode.IsLetter(before), last == ',', last == '(', last == '=', last == ';', isDash(last):
+		return true
+	case unicode.IsDigit(r), strings.ContainsRune("<>=±−%", r):
+		return !numbered.MatchString(next)
+	}
+	return endsOpen(prev) || strings.Count(prev, "(") > strings.Count(prev, ")")
+}
+
+// titleSize is the font size of the paper's title: the largest print of some
+// words on its first page.
+func (a *arranger) titleSize() int {
+	best := 0
+	for i := range a.drafts {
+		d := &a.drafts[i]
+		if d.page > 1 || d.kind == paper.Furniture || d.kind == paper.TableBlock || d.size <= best {
+			continue
+		}
+		if text := d.text(); len(strings.Fields(text)) >= 4 && letterShare(text) > 70 {
+			best = d.size
+		}
+	}
+	if best*100 < a.body*112 {
+		return 1 << 30
+	}
+	return best
+}
+
+// title is the text in the size of the title.
+func (a *arranger) title() string {
+	size := a.titleSize()
+	for i := range a.drafts {
+		if d := &a.drafts[i]; d.page <= 1 && d.size == size && len(strings.Fields(d.text())) >= 4 {
+			return a.run(d).S
+		}
+	}
+	return ""
+}

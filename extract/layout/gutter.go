@@ -1,0 +1,159 @@
+package layout
+
+import (
+	"cmp"
+	"math/bits"
+	"slices"
+)
+
+const (
+	cell     = 200  // width and height of a raster cell, 1/100 point
+	maxCells = 1024 // of a raster in each direction; a page of 8 metres is cut there
+)
+
+// raster marks what is printed on a sheet, one bit a cell, column by column.
+type raster struct {
+	x, y   int // of its top left corner
+	nx, ny int
+	cols   [][]uint64 // cols[x] has a bit for each cell of the column
+}
+
+func newRaster(x0, top, x1, bot int) *raster {
+	r := &raster{x: x0, y: top}
+	r.nx = min(max((x1-x0)/cell+1, 1), maxCells)
+	r.ny = min(max((bot-top)/cell+1, 1), maxCells)
+	n := (r.ny + 63) / 64
+	flat := make([]uint64, r.nx*n)
+	r.cols = make([][]uint64, r.nx)
+	for i := range r.cols {
+		r.cols[i] = flat[i*n : (i+1)*n]
+	}
+	return r
+}
+
+// fill marks a box, cells touched in part included.
+func (r *raster) fill(x0, top, x1, bot int) {
+	cx0, cx1 := max((x0-r.x)/cell, 0), min((x1-r.x)/cell, r.nx-1)
+	cy0, cy1 := max((top-r.y)/cell, 0), min((bot-r.y)/cell, r.ny-1)
+	for x := cx0; x <= cx1; x++ {
+		for y := cy0; y <= cy1; y++ {
+			r.cols[x][y>>6] |= 1 << (y & 63)
+		}
+	}
+}
+
+// stripe is a run of empty cells in two neighbouring columns of a raster.
+type stripe struct{ col, top, bot int } // cells
+
+// stripes finds the runs of at least least cells that are empty in a column
+// and the one to its right.
+func (r *raster) stripes(least int) []stripe {
+	var out []stripe
+	for x := 0; x+1 < r.nx; x++ {
+		start := 0
+		for w, word := range r.cols[x] {
+			both := word | r.cols[x+1][w]
+			for ; both != 0; both &= both - 1 {
+				y := w*64 + bits.TrailingZeros64(both)
+				if y-start >= least {
+					out = append(out, stripe{x, start, y - 1})
+				}
+				start = y + 1
+			}
+		}
+		if r.ny-start >= least {
+			out = append(out, stripe{x, start, r.ny - 1})
+		}
+	}
+	return out
+}
+
+// candidate is a stripe with the running text beside it counted.
+type candidate struct {
+	g           gutter
+	left, right int // lines of running text close by on each side
+}
+
+// findGutters finds the white stripes between columns of running text. prior
+// are the middles of gutters that other pages of the paper have: there less
+// text is needed.
+func (s *sheet) findGutters(prior []int, bodySize int) []candidate {
+	if len(s.lines) == 0 {
+		return nil
+	}
+	x0, x1, top, bot := s.lines[0].x0, s.lines[0].x1, s.lines[0].top, s.lines[0].bot
+	for i := range s.lines {
+		l := &s.lines[i]
+		x0, x1, top, bot = min(x0, l.x0), max(x1, l.x1), min(top, l.top), max(bot, l.bot)
+	}
+	r := newRaster(x0, top, x1, bot)
+	for i := range s.lines {
+		l := &s.lines[i]
+		if l.furniture {
+			continue
+		}
+		if l.table != nil {
+			r.fill(l.x0, l.top, l.x1, l.bot)
+			continue
+		}
+		for _, w := range l.words {
+			r.fill(int(w.Box.X0), l.top, int(w.Box.X1), l.bot)
+		}
+	}
+	var cands []candidate
+	for _, st := range r.stripes(max(4*bodySize/cell, 2)) {
+		c := candidate{g: gutter{r.x + st.col*cell, r.x + (st.col+2)*cell, r.y + st.top*cell, r.y + (st.bot+1)*cell}}
+		s.weigh(&c, bodySize)
+		known := slices.ContainsFunc(prior, func(x int) bool { return abs(x-(c.g.x0+cell)) <= bodySize })
+		if c.left >= 3 && c.right >= 3 && c.left+c.right >= 8 || known && max(c.left, c.right) >= 2 {
+			cands = append(cands, c)
+		}
+	}
+	slices.SortStableFunc(cands, func(a, b candidate) int {
+		return cmp.Or(cmp.Compare(b.left+b.right, a.left+a.right), cmp.Compare(b.g.bot-b.g.top, a.g.bot-a.g.top))
+	})
+	var out []candidate
+	for _, c := range cands {
+		if !slices.ContainsFunc(out, func(o candidate) bool { return clash(&o.g, &c.g, bodySize) }) {
+			out = append(out, c)
+		}
+	}
+	slices.SortStableFunc(out, func(a, b candidate) int {
+		return cmp.Or(cmp.Compare(a.g.x0, b.g.x0), cmp.Compare(a.g.top, b.g.top))
+	})
+	return out
+}
+
+// clash reports whether two gutters stand so near that no column fits between.
+func clash(a, b *gutter, size int) bool {
+	return a.top < b.bot && b.top < a.bot && abs(a.x0-b.x0) < 8*size
+}
+
+// weigh counts the lines of running text that end or begin close to c.
+func (s *sheet) weigh(c *candidate, bodySize int) {
+	mid := (c.g.x0 + c.g.x1) / 2
+	for i := range s.lines {
+		l := &s.lines[i]
+		if l.furniture || l.table != nil || !c.g.covers(l.mid()) {
+			continue
+		}
+		long, close := 10*l.size, 4*max(bodySize, l.size)
+		switch {
+		case l.x1 <= mid:
+			if mid-l.x1 <= close && l.x1-l.x0 >= long {
+				c.left++
+			}
+		case l.x0 >= mid:
+			if l.x0-mid <= close && l.x1-l.x0 >= long {
+				c.right++
+			}
+		default: // a segment that reaches over a narrow gutter
+			if mid-l.x0 >= long {
+				c.left++
+			}
+			if l.x1-mid >= long {
+				c.right++
+			}
+		}
+	}
+}

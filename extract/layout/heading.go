@@ -1,0 +1,130 @@
+package layout
+
+import (
+	"regexp"
+	"strings"
+	"unicode"
+
+	"halfspan/extract/paper"
+)
+
+var (
+	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]+|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|,–—]|\s)`)
+	tableLabel   = regexp.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]+|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s)`)
+	numbered     = regexp.MustCompile(`^(?:[0-9]{1,2}(?:\.[0-9]{1,2}){0,3}\.?|[IVX]{1,4}\.|[A-H]\.)\s+\p{Lu}`)
+	numberedDeep = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2}){1,3}\.?\s+\p{Lu}`)
+	runIn        = regexp.MustCompile(`^(?i:(?:abstract|summary)[.:]?\s+)?((?i:background|introduction|objectives?|aims?|purpose|context|importance|methods?|methodology|materials? and methods|patients and methods|study design|design|setting|settings|participants|subjects|interventions?|measurements?|main outcome measures?|main outcomes?(?: and measures)?|outcome measures?|results?|findings|main results|conclusions?|interpretation|discussion|trial registration|background/aims?|background and (?:aims?|objectives?|purpose)|methods and results|methods/design|aims? and objectives?|limitations?|significance|rationale|hypothesis|funding))\s?([.:—–]|\s+-)\s*\S`)
+)
+
+// startsLabel reports whether a line begins like the caption of a figure or a
+// table.
+func startsLabel(text string) bool {
+	return figureLabel.MatchString(text) || tableLabel.MatchString(text)
+}
+
+// headingLine reports whether a line looks like (a part of) a heading: by its
+// print, its number or its words.
+func (a *arranger) headingLine(l *line) bool {
+	text := l.text()
+	if len(text) > 160 || !hasLetters(text) || bullet(text) {
+		return false
+	}
+	big := l.size*100 >= a.body*106
+	switch {
+	case knownTitle(text):
+		return true
+	case strings.HasSuffix(text, ",") || strings.HasSuffix(text, ";"):
+		return false
+	case big && letterShare(text) >= 60:
+		return true
+	case l.bold && l.size*100 >= a.body*90 && len(text) <= 120 && letterShare(text) >= 60:
+		return true
+	case allCaps(text) && len(text) >= 6 && len(text) <= 90 && letterShare(text) >= 75:
+		return true
+	case numberedDeep.MatchString(text) && len(text) <= 90 && !ended(text) && letterShare(text) >= 60:
+		return true
+	}
+	return false
+}
+
+// knownTitle reports whether a line is one of the headings that papers have,
+// and nothing else.
+func knownTitle(text string) bool {
+	r := []rune(text)
+	if len(r) > 60 || len(r) == 0 || unicode.IsLower(r[0]) {
+		return false
+	}
+	zone, sure := paper.ZoneOf(text)
+	return sure && zone != paper.Elsewhere && !strings.HasSuffix(text, ",")
+}
+
+// isHeading reports whether a draft as a whole is a heading.
+func (a *arranger) isHeading(d *draft) bool {
+	if len(d.lines) > 4 || d.lines[0].table != nil {
+		return false
+	}
+	text := d.text()
+	words := strings.Fields(text)
+	if len(d.lines) == 1 && knownTitle(text) {
+		return true
+	}
+	if len(words) > 30 || len(words) == 0 || startsLabel(text) {
+		return false
+	}
+	if strings.HasSuffix(text, ".") && len(words) > 12 && !numbered.MatchString(text) {
+		return false
+	}
+	for i := range d.lines {
+		if !a.headingLine(&d.lines[i]) {
+			return false
+		}
+	}
+	return !strings.ContainsAny(text, "@=±") && !strings.Contains(text, "http")
+}
+
+func hasLetters(s string) bool {
+	return strings.IndexFunc(s, unicode.IsLetter) >= 0
+}
+
+// letterShare is how many of a text's printed characters are letters, percent.
+func letterShare(s string) int {
+	letters, all := 0, 0
+	for _, r := range s {
+		if unicode.IsSpace(r) {
+			continue
+		}
+		all++
+		if unicode.IsLetter(r) {
+			letters++
+		}
+	}
+	return letters * 100 / max(all, 1)
+}
+
+func allCaps(s string) bool {
+	upper := false
+	for _, r := range s {
+		if unicode.IsLower(r) {
+			return false
+		}
+		upper = upper || unicode.IsUpper(r)
+	}
+	return upper
+}
+
+// runInHeading is the heading that a paragraph begins with, "Results" of
+// "Results: Colonies gained ...", or "".
+func runInHeading(text string) string {
+	if len(text) > 120 {
+		text = text[:120]
+	}
+	m := runIn.FindStringSubmatchIndex(text)
+	if m == nil {
+		return ""
+	}
+	title := text[m[2]:m[3]]
+	if r := []rune(title); !unicode.IsUpper(r[0]) {
+		return ""
+	}
+	return title
+}

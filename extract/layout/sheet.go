@@ -1,0 +1,109 @@
+package layout
+
+import (
+	"halfspan/extract/layout/words"
+	"halfspan/extract/paper"
+)
+
+// line is a stretch of words on one baseline of one column. Its coordinates are
+// those of its frame with y turned to grow downwards, so that lines sort as
+// they are read.
+type line struct {
+	words          []*words.Word
+	x0, x1         int
+	base           int
+	top, bot       int // from the baseline and the font size
+	size           int // the font size of most of its glyphs
+	glyphs         int
+	bold, italic   bool // most of its glyphs
+	furniture      bool
+	table          *tableAt // the line stands for a table; it has no words
+	left, right    int      // gutters beside it, -1 for none
+	no             int      // 1-based number on the page, in reading order
+	page           int
+	leading, width int // of its column: usual distance of baselines, and from edge to edge
+	edge           int // left edge of its column
+}
+
+// tableAt is a table in the flow of the lines.
+type tableAt struct {
+	table paper.Table
+	rows  []line // as printed: caption, body and notes
+}
+
+// sheet is one direction of one page.
+type sheet struct {
+	page    int
+	frame   words.Frame
+	lines   []line // not yet in reading order
+	gutters []gutter
+}
+
+// newLine makes a line of words, which must not be empty.
+func newLine(page int, ws []*words.Word) line {
+	l := line{words: ws, page: page, left: -1, right: -1, x0: int(ws[0].Box.X0), x1: int(ws[0].Box.X1)}
+	best, bold, italic, plain := 0, 0, 0, 0
+	for _, w := range ws {
+		l.x0, l.x1 = min(l.x0, int(w.Box.X0)), max(l.x1, int(w.Box.X1))
+		n := len(w.Glyphs)
+		l.glyphs += n
+		if w.Shift != 0 {
+			continue
+		}
+		plain += n
+		if w.Bold {
+			bold += n
+		}
+		if w.Italic {
+			italic += n
+		}
+		if n > best {
+			best, l.size, l.base = n, int(w.Size), -int(w.Base)
+		}
+	}
+	if best == 0 {
+		l.size, l.base = int(ws[0].Size), -int(ws[0].Base)
+	}
+	l.bold, l.italic = bold*10 >= plain*8 && bold > 0, italic*10 >= plain*8 && italic > 0
+	l.top, l.bot = l.base-l.size*3/4, l.base+l.size/4
+	return l
+}
+
+// wordsOf are pointers to the words of a segment.
+func wordsOf(seg *words.Line) []*words.Word {
+	out := make([]*words.Word, len(seg.Words))
+	for i := range seg.Words {
+		out[i] = &seg.Words[i]
+	}
+	return out
+}
+
+// text is the line as printed, words joined by single spaces.
+func (l *line) text() string {
+	n := 0
+	for _, w := range l.words {
+		n += len(w.Text) + 1
+	}
+	buf := make([]byte, 0, n)
+	for i, w := range l.words {
+		if i > 0 && !w.Glued {
+			buf = append(buf, ' ')
+		}
+		buf = append(buf, w.Text...)
+	}
+	return string(buf)
+}
+
+func (l *line) mid() int { return (l.top + l.bot) / 2 }
+
+// gutter is a white stripe between two columns; y grows downwards.
+type gutter struct{ x0, x1, top, bot int }
+
+func (g *gutter) covers(y int) bool { return y >= g.top && y <= g.bot }
+
+func abs(x int) int {
+	if x < 0 {
+		return -x
+	}
+	return x
+}
