@@ -1,10 +1,12 @@
 package extract
 
 import (
+	"bytes"
 	"fmt"
 
 	"halfspan/extract/jats"
 	"halfspan/extract/paper"
+	"halfspan/extract/plain"
 	"halfspan/extract/result"
 )
 
@@ -20,10 +22,19 @@ type Options struct {
 // told by content, not by name. An error says what is wrong with the file and
 // what to do; what could be read in part comes back with Document.Problems.
 func Read(path string, content []byte, opt Options) (*paper.Document, error) {
-	if jats.Is(content) {
+	switch {
+	case isPDF(content):
+		return nil, fmt.Errorf("%s: no reader for this kind of file", path)
+	case jats.Is(content):
 		return jats.Read(path, content)
 	}
-	return nil, fmt.Errorf("%s: no reader for this kind of file", path)
+	return plain.Read(path, content)
+}
+
+// isPDF looks for the header of a PDF, which may stand behind other bytes.
+func isPDF(content []byte) bool {
+	const look = 1024
+	return bytes.Contains(content[:min(len(content), look)], []byte("%PDF-"))
 }
 
 // Find gives every result that is printed in the document, in reading order.

@@ -1,0 +1,277 @@
+package plain
+
+import (
+	"regexp"
+	"strings"
+)
+
+// placeHeads finds the spans of the heading rows: a tiling of the columns in
+// which every heading stands over columns that hold what it names, headings
+// over several columns stand over like groups, and the last row has a cell for
+// every column that no heading above reaches down to.
+func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
+	for i := range rows {
+		spots[i] = make([]spot, len(rows[i]))
+	}
+	s := headSearch{rows: rows, cols: cols, body: body, memo: map[headKey][]headWay{}}
+	var start headIndex
+	var best *headWay
+	if len(rows) <= maxHeadRows {
+		for _, w := range s.tile(0, 0, cols, start) {
+			if w.complete(rows) && (best == nil || w.score > best.score) {
+				way := w
+				best = &way
+			}
+		}
+	}
+	if best == nil {
+		leftAlign(spots, rows, cols)
+		return
+	}
+	for p := best.last; p != nil; p = p.before {
+		spots[p.row][p.cell] = p.at
+	}
+}
+
+// leftAlign is the fallback: cells as they come, a single cell over all.
+func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
+	for i, row := range rows {
+		for k := range row {
+			if k < cols {
+				spots[i][k] = spot{k, 1, 1}
+			}
+		}
+		if len(row) == 1 {
+			spots[i][0] = spot{0, cols, 1}
+		}
+	}
+}
+
+const (
+	maxHeadRows = 4
+	headFuel    = 400_000 // steps of the search for one table
+)
+
+// headIndex counts the cells used in each heading row.
+type headIndex [maxHeadRows]uint8
+
+type headKey struct {
+	level, from, to int
+	used            headIndex
+}
+
+// headWay is one way to fill columns with headings: the cells used so far, how
+// well they suit, and their places as a linked list.
+type headWay struct {
+	used  headIndex
+	score int
+	last  *placed
+}
+
+type placed struct {
+	row, cell int
+	at        spot
+	before    *placed
+}
+
+func (w *headWay) complete(rows [][]rowCell) bool {
+	for i, row := range rows {
+		if int(w.used[i]) != len(row) {
+			return false
+		}
+	}
+	return true
+}
+
+type headSearch struct {
+	rows  [][]rowCell
+	cols  int
+	body  []profile
+	memo  map[headKey][]headWay
+	steps int
+}
+
+// tile gives the best way for each count of cells used to fill columns
+// [from, to) with the heading rows from level down.
+func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
+	if from == to || level == len(s.rows) {
+		return []headWay{{used: used}}
+	}
+	key := headKey{level, from, to, used}
+	if ways, ok := s.memo[key]; ok {
+		return ways
+	}
+	if s.steps++; s.steps > headFuel {
+		return nil
+	}
+	var ways []headWay
+	cell := int(used[level])
+	if cell < len(s.rows[level]) {
+		after := used
+		after[level]++
+		for width := 1; from+width <= to; width++ {
+			for height := 1; level+height <= len(s.rows); height++ {
+				score := s.score(level, cell, from, width, height, used)
+				for _, below := range s.tile(level+height, from, from+width, after) {
+					for _, rest := range s.tile(level, from+width, to, below.used) {
+						place := &placed{level, cell, spot{from, width, height}, nil}
+						ways = keepBest(ways, headWay{rest.used, score + below.score + rest.score, chain(place, below.last, rest.last)})
+					}
+				}
+			}
+		}
+	}
+	s.memo[key] = ways
+	return ways
+}
+
+// chain links a place and two lists of places to one list.
+func chain(p, a, b *placed) *placed {
+	out := b
+	for ; a != nil; a = a.before {
+		out = &placed{a.row, a.cell, a.at, out}
+	}
+	return &placed{p.row, p.cell, p.at, out}
+}
+
+func keepBest(ways []headWay, w headWay) []headWay {
+	for i := range ways {
+		if ways[i].used == w.used {
+			if w.score > ways[i].score {
+				ways[i] = w
+			}
+			return ways
+		}
+	}
+	return append(ways, w)
+}
+
+// score says how well a heading suits the columns [from, from+width) and the
+// headings below it. Hundredths of a full likeness.
+func (s *headSearch) score(level, cell, from, width, height int, used headIndex) int {
+	c := &s.rows[level][cell]
+	lowest := level+height == len(s.rows)
+	score := 0
+	switch {
+	case lowest && width == 1:
+		score = suits(c.label, &s.body[from])
+		if height > 1 {
+			score += reachesDown(from, s.cols)
+		}
+	case lowest:
+		for k := from; k < from+width; k++ {
+			score += min(suits(c.label, &s.body[k]), 40)
+		}
+		score -= 40 // a heading over several columns without headings of their own
+		if from == 0 && s.body[1%s.cols].mostly(textual) && s.body[0].mostly(textual) {
+			score += 40 // but a stub of two columns is often named once
+		}
+	case width == 1 && height == 1:
+		if c.kind == empty {
+			score = 10
+		}
+	default:
+		score = s.groupScore(level+height, int(used[min(level+height, maxHeadRows-1)]), width)
+		if c.kind == empty {
+			score -= 50
+		}
+		if height > 1 {
+			score -= 30
+		}
+		if strings.TrimSpace(c.label) != "" && pWord.MatchString(c.label) {
+			score -= 80
+		}
+	}
+	return score
+}
+
+// reachesDown favours headings over several rows at the edges: the stub's and
+// the p value's.
+func reachesDown(col, cols int) int {
+	switch col {
+	case 0:
+		return 30
+	case cols - 1:
+		return 20
+	}
+	return 0
+}
+
+// groupScore looks at the width headings below a wide one, from index first of
+// their row: like those of the neighbour group is good, the same word twice
+// within the group is bad.
+func (s *headSearch) groupScore(level, first, width int) int {
+	if level >= len(s.rows) {
+		return 0
+	}
+	row := s.rows[level]
+	if first+width > len(row) {
+		return 0
+	}
+	score := 0
+	if sameLabels(row, first-width, first, width) || sameLabels(row, first, first+width, width) {
+		score += 100
+	}
+	distinct := map[string]bool{}
+	for _, c := range row[first : first+width] {
+		distinct[c.label] = true
+	}
+	if len(distinct) > 1 && len(distinct) < width {
+		score -= 80
+	}
+	if row[first].kind == empty {
+		score -= 60 // a group does not begin with a nameless column
+	}
+	return score
+}
+
+func sameLabels(row []rowCell, a, b, n int) bool {
+	if a < 0 || b+n > len(row) {
+		return false
+	}
+	for k := 0; k < n; k++ {
+		if !strings.EqualFold(row[a+k].label, row[b+k].label) {
+			return false
+		}
+	}
+	return true
+}
+
+var pWord = regexp.MustCompile(`(?i)^\W*p[a-d]?\W*$|\bp[- ]?values?|^sig(?:nificance|\.)?$|^statistics?$`)
+
+// headWords tie words of a heading to what its column holds.
+var headWords = []struct {
+	word  *regexp.Regexp
+	kinds []kind
+}{
+	{pWord, []kind{pvalue}},
+	{regexp.MustCompile(`±|\+/-`), []kind{spread}},
+	{regexp.MustCompile(`(?i)\([^)]*(?:CI|IQR|range|quartile|confidence)[^)]*\)|\w.*\d\d\s*%\s*CI`), []kind{estimate}},
+	{regexp.MustCompile(`(?i)^\W*(?:\d\d\s*%\s*)?(?:CI|confidence interval|IQR|range)\W*$`), []kind{interval}},
+	{regexp.MustCompile(`(?i)\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|n|no\.|standard)[^)]*\)`), []kind{bracket}},
+	{regexp.MustCompile(`(?i)^\W*(?:n|no\.?|number)\W*$`), []kind{whole}},
+	{regexp.MustCompile(`(?i)^\W*(?:mean|SD|s\.d\.|SEM?|s\.e\.|%|median|B|β|t|F|z|χ2|OR|RR|HR|MD|effect size|cohen.?s d)\W*$`), []kind{decimal, whole, percent, pvalue}},
+}
+
+// suits says how well a heading names what a column holds.
+func suits(label string, p *profile) int {
+	if label == "" {
+		if p.mostly(textual) {
+			return 50
+		}
+		return -30
+	}
+	for _, h := range headWords {
+		if !h.word.MatchString(label) {
+			continue
+		}
+		if p.mostly(h.kinds...) {
+			return 100
+		}
+		if p.mostly(textual) {
+			return -60
+		}
+		return -20
+	}
+	return 0
+}

@@ -1,0 +1,280 @@
+package plain
+
+// Rows of text say which cells follow one another, not which columns they
+// cover: a cell that spans columns is written once, a cell that spans rows is
+// missing in the rows below. layOut finds the spans that make all rows as wide
+// as the widest and put cells where their like stand.
+
+// spot is where a cell of a row stands in the grid.
+type spot struct{ col, width, height int }
+
+// layoutOf is the grid found for a table.
+type layoutOf struct {
+	cols int
+	head int
+	rows [][]spot
+}
+
+// layOut places the cells of all rows. head is the number of heading rows where
+// the form says it, else 0.
+func layOut(rows [][]rowCell, head int) layoutOf {
+	lay := layoutOf{rows: make([][]spot, len(rows)), cols: columns(rows)}
+	if head == 0 {
+		head = headings(rows, lay.cols)
+	}
+	lay.head = head
+	body := profiles(rows[head:], lay.cols)
+	groups := []spot(nil) // the widest heading cells, as units that body cells may span too
+	if head > 0 {
+		placeHeads(lay.rows[:head], rows[:head], lay.cols, body)
+		groups = lay.rows[0]
+	}
+	place := bodyPlacer{cols: lay.cols, body: body, groups: groups}
+	for i := head; i < len(rows); i++ {
+		lay.rows[i] = place.row(rows[i])
+	}
+	return lay
+}
+
+// columns is the width of the table: that of its widest row, trailing empty
+// cells of a single row left aside.
+func columns(rows [][]rowCell) int {
+	widest, times := 0, 0
+	for _, row := range rows {
+		switch n := len(row); {
+		case n > widest:
+			widest, times = n, 1
+		case n == widest:
+			times++
+		}
+	}
+	if times > 1 || len(rows) < 3 {
+		return widest
+	}
+	filled := 0
+	for _, row := range rows {
+		n := len(row)
+		for n > 0 && row[n-1].kind == empty && len(row) == widest {
+			n--
+		}
+		filled = max(filled, n)
+	}
+	return filled
+}
+
+// profiles collects what the full rows hold in each column.
+func profiles(rows [][]rowCell, cols int) []profile {
+	body := make([]profile, cols)
+	for _, row := range rows {
+		if len(row) != cols || labelOnly(row) {
+			continue
+		}
+		for k, c := range row {
+			body[k].add(c.kind)
+		}
+	}
+	return body
+}
+
+// labelOnly reports whether a row holds a text in its first cell alone.
+func labelOnly(row []rowCell) bool {
+	for i, c := range row {
+		if (i == 0) != (c.kind != empty) {
+			return false
+		}
+	}
+	return len(row) > 0
+}
+
+// dataRow reports whether a row prints values: more than half of its filled
+// cells after the first are numbers. telling: one is more than a whole number,
+// which a heading may print too.
+func dataRow(row []rowCell) (data, telling bool) {
+	filled, numbers := 0, 0
+	for i, c := range row {
+		if i == 0 && len(row) > 1 || c.kind == empty || c.kind == wild {
+			continue
+		}
+		filled++
+		if c.kind.numeric() {
+			numbers++
+			telling = telling || c.kind != whole
+		}
+	}
+	return filled > 0 && 2*numbers > filled, telling
+}
+
+// headings tells how many rows at the top are column headings.
+func headings(rows [][]rowCell, cols int) int {
+	const most = 5
+	for i, row := range rows {
+		if i > most {
+			break
+		}
+		data, telling := dataRow(row)
+		if !data || i == 0 && !telling {
+			continue
+		}
+		for i > 1 && labelOnly(rows[i-1]) {
+			i--
+		}
+		return i
+	}
+	// no values: all rows above the first full one, and that one if it is the first
+	for i, row := range rows {
+		if i > most {
+			break
+		}
+		if len(row) == cols {
+			return max(i, 1)
+		}
+	}
+	return 1
+}
+
+// bodyPlacer places the rows below the headings, top to bottom.
+type bodyPlacer struct {
+	cols   int
+	body   []profile
+	groups []spot
+	above  []*spot // the cell that covers each column in the row before
+	filled []bool  // whether that cell has text
+}
+
+func (p *bodyPlacer) row(row []rowCell) []spot {
+	spots := make([]spot, len(row))
+	switch {
+	case len(row) == 1:
+		spots[0] = spot{0, p.cols, 1}
+	case len(row) >= p.cols || labelOnly(row):
+		for k := range row {
+			if k < p.cols {
+				spots[k] = spot{k, 1, 1}
+			}
+		}
+	default:
+		p.short(row, spots)
+	}
+	p.below(row, spots)
+	return spots
+}
+
+// below lets the cells of the row above reach down over the columns that this
+// row leaves free, and keeps what covers each column now.
+func (p *bodyPlacer) below(row []rowCell, spots []spot) {
+	above, filled := make([]*spot, p.cols), make([]bool, p.cols)
+	for k := range spots {
+		for c := spots[k].col; c < spots[k].col+spots[k].width; c++ {
+			above[c], filled[c] = &spots[k], row[k].kind != empty
+		}
+	}
+	if p.above != nil && !labelOnly(row) && len(row) > 1 {
+		for c := 0; c < p.cols; c++ {
+			up := p.above[c]
+			if above[c] != nil || up == nil || !p.filled[c] || c > up.col {
+				continue
+			}
+			free := true
+			for k := c; k < c+up.width; k++ {
+				free = free && above[k] == nil
+			}
+			if !free {
+				continue
+			}
+			up.height++
+			for k := c; k < c+up.width; k++ {
+				above[k], filled[k] = up, true
+			}
+		}
+	}
+	p.above, p.filled = above, filled
+}
+
+// Costs, in hundredths of a full likeness.
+const (
+	costEdgeLeft  = 20  // columns at the left are covered from above: a stub over several rows
+	costEdgeRight = 30  // at the right: a p value for several rows
+	costInner     = 60  // in between
+	costNoAbove   = 150 // nothing there to reach down
+	scoreWide     = 60  // a cell over all columns of one heading
+)
+
+// short places a row with fewer cells than columns: the columns it leaves out
+// are covered from above, or its cells span the columns of a wide heading.
+func (p *bodyPlacer) short(row []rowCell, spots []spot) {
+	type state struct {
+		score int
+		from  int // width of the cell that ends here; 0: the column is left out
+		ok    bool
+	}
+	n, cols := len(row), p.cols
+	at := make([][]state, cols+1) // at[c][k]: k cells fill the columns before c
+	for c := range at {
+		at[c] = make([]state, n+1)
+	}
+	at[0][0].ok = true
+	reach := func(c, k, score, from int) {
+		s := &at[c][k]
+		if !s.ok || score > s.score {
+			*s = state{score, from, true}
+		}
+	}
+	for c := 0; c < cols; c++ {
+		for k := 0; k <= n && k <= c; k++ {
+			s := at[c][k]
+			if !s.ok {
+				continue
+			}
+			reach(c+1, k, s.score-p.gapCost(c, k, n, c > 0 && s.from == 0), 0)
+			if k == n {
+				continue
+			}
+			reach(c+1, k+1, s.score+p.body[c].fit(row[k].kind), 1)
+			if w := p.groupAt(c); w > 1 && row[k].kind != textual {
+				reach(c+w, k+1, s.score+scoreWide, w)
+			}
+		}
+	}
+	for c, k := cols, n; c > 0; {
+		w := at[c][k].from
+		if w == 0 {
+			c--
+			continue
+		}
+		k--
+		c -= w
+		spots[k] = spot{c, w, 1}
+	}
+}
+
+// gapCost is the price of leaving column c out after k of n cells.
+func (p *bodyPlacer) gapCost(c, k, n int, goesOn bool) int {
+	cost := 0
+	if p.above == nil || p.above[c] == nil || !p.filled[c] {
+		cost += costNoAbove
+		if k == n {
+			// a row cut off after its last filled cell is nothing unusual
+			cost = costEdgeRight / 3
+		}
+	}
+	switch {
+	case goesOn:
+	case k == 0:
+		cost += costEdgeLeft
+	case k == n:
+		cost += costEdgeRight
+	default:
+		cost += costInner
+	}
+	return cost
+}
+
+// groupAt is the width of the heading that begins at column c.
+func (p *bodyPlacer) groupAt(c int) int {
+	for _, g := range p.groups {
+		if g.col == c && g.height == 1 {
+			return g.width
+		}
+	}
+	return 1
+}

@@ -1,0 +1,288 @@
+package plain
+
+import (
+	"regexp"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"halfspan/extract/paper"
+	"halfspan/extract/source"
+)
+
+// Notes stand below a table as paragraphs, each like the running text that goes
+// on after them. A paragraph is taken for a note by its first characters (a
+// mark), by what it declares (what values are, what letters stand for), or by
+// being short; the first that is none of these ends the notes.
+
+var (
+	noteWords = regexp.MustCompile(`^(?i:all values|all data|unless|notes?\b|abbreviations?|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
+	// expands is a list of what letters stand for.
+	expands = regexp.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
+	// symbolMark is a mark that is no letter or digit.
+	symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆•µ]{1,3})`)
+	plainMark  = regexp.MustCompile(`^(?:[a-z]|\d{1,2})[).:]?`)
+)
+
+const (
+	longNote  = 1500 // characters
+	shortNote = 100
+	mostNotes = 20
+)
+
+// notes reads the notes below table t, whose rows end before line from, and
+// gives the line after them.
+func (r *reader) notes(t *paper.Table, from int) int {
+	marks := cellMarks(t)
+	i := from
+	for n := 0; n < mostNotes; n++ {
+		k := r.skipBlank(i)
+		if k >= len(r.lines) || isCaption(r.text(r.lines[k])) || r.startsTable(k) {
+			break
+		}
+		end := r.paragraphEnd(k, r.chunk(k))
+		run := r.run(k, end)
+		if !r.isNote(run.S, t, marks) {
+			break
+		}
+		t.Notes = append(t.Notes, r.splitNotes(run, t, marks)...)
+		i = end
+	}
+	r.raiseMarks(t)
+	return i
+}
+
+var (
+	endMarks  = regexp.MustCompile(`(?:[\d)%]|[\s\x{00A0}])[\s\x{00A0}]?((?:[*†‡§¶#]+,?\s?)*(?:[a-z](?:,\s?)?){1,4})$`)
+	oneLetter = regexp.MustCompile(`[a-z]`)
+)
+
+// cellMarks collects the letters that end cells behind a digit, a bracket or a
+// space: they may be marks.
+func cellMarks(t *paper.Table) map[string]bool {
+	marks := map[string]bool{}
+	add := func(s string) {
+		if m := endMarks.FindStringSubmatch(s); m != nil {
+			for _, l := range oneLetter.FindAllString(m[1], -1) {
+				marks[l] = true
+			}
+		}
+	}
+	add(t.Caption.S)
+	for i := range t.Cells {
+		for _, part := range strings.Split(t.Cells[i].Text.S, "\n") {
+			add(part)
+		}
+	}
+	return marks
+}
+
+// isNote reports whether a paragraph below t is one of its notes.
+func (r *reader) isNote(s string, t *paper.Table, marks map[string]bool) bool {
+	if s == "" || utf8.RuneCountInString(s) > longNote || figureStart.MatchString(s) {
+		return false
+	}
+	if _, sure := paper.ZoneOf(s); sure && looksHeading(s) {
+		return false
+	}
+	if r.markAt(s, nextMark(t), marks) > 0 {
+		return true
+	}
+	if numberedHeading.MatchString(s) {
+		return false
+	}
+	if expands.MatchString(s) && (strings.Count(s, ";")+strings.Count(s, ",") > 1 || len(s) < shortNote) && declares(s) {
+		return true
+	}
+	if noteWords.MatchString(s) && !sentences(s) {
+		return true
+	}
+	return false
+}
+
+// declares reports whether s has the look of a list "X, words; Y, words" or
+// "X: words", whose first part is an abbreviation.
+func declares(s string) bool {
+	k := strings.IndexAny(s, ",:=–—")
+	if k <= 0 {
+		return false
+	}
+	first := strings.TrimSpace(s[:k])
+	capitals := 0
+	for _, c := range first {
+		if unicode.IsUpper(c) || unicode.IsDigit(c) {
+			capitals++
+		}
+	}
+	letters := utf8.RuneCountInString(first)
+	return letters <= 25 && (2*capitals >= letters || letters <= 2 || strings.Contains(s, ";") && letters <= 8)
+}
+
+// sentences reports whether s is running text: several sentences, none short.
+func sentences(s string) bool {
+	const long = 350
+	return len(s) > long && strings.Count(s, ". ") >= 2
+}
+
+// nextMark is the letter or number that the next note of t would have.
+func nextMark(t *paper.Table) string {
+	for k := len(t.Notes) - 1; k >= 0; k-- {
+		m := t.Notes[k].Mark
+		if len(m) == 1 && m[0] >= 'a' && m[0] < 'z' || len(m) == 1 && m[0] >= '1' && m[0] < '9' {
+			return string(m[0] + 1)
+		}
+	}
+	return "a"
+}
+
+// markAt gives the length of the note mark that s begins with, 0 without one.
+// expected is the mark that would come next; text has lost what was raised, so
+// that "aRank test" must be told from "a rank test" and "adjusted".
+func (r *reader) markAt(s, expected string, marks map[string]bool) int {
+	if loc := symbolMark.FindStringIndex(s); loc != nil {
+		return loc[1]
+	}
+	loc := plainMark.FindStringIndex(s)
+	if loc == nil || loc[1] >= len(s) {
+		return 0
+	}
+	mark := strings.TrimRight(s[:loc[1]], ").:")
+	rest := s[loc[1]:]
+	next, _ := utf8.DecodeRuneInString(rest)
+	if mark[0] <= '9' { // a number: only where a word is glued to it
+		if len(mark) == 1 && (unicode.IsUpper(next) || loc[1] > len(mark) && next == ' ' && !numberedHeading.MatchString(s)) && (mark == expected || mark == "1") {
+			return loc[1]
+		}
+		return 0
+	}
+	known := mark == expected || marks[mark]
+	switch {
+	case loc[1] > len(mark): // "a)" or "a."
+		return loc[1]
+	case !known:
+		return 0
+	case unicode.IsSpace(next) || next == '\u00A0':
+		return loc[1]
+	case unicode.IsUpper(next), unicode.IsDigit(next), strings.ContainsRune("(<=>≤≥", next):
+		return loc[1]
+	case unicode.IsLower(next):
+		if r.glued(mark+firstWord(rest), firstWord(rest)) {
+			return loc[1]
+		}
+	}
+	return 0
+}
+
+// glued reports whether a word of the text is a mark with another word behind
+// it: the file uses the other word and never the whole.
+func (r *reader) glued(whole, other string) bool {
+	return r.words()[strings.ToLower(whole)] <= 1 && (r.words()[strings.ToLower(other)] > 0 || len(other) == 1)
+}
+
+// words counts the words of the file, in lower case.
+func (r *reader) words() map[string]int {
+	if r.counts == nil {
+		r.counts = map[string]int{}
+		for _, w := range anyWord.FindAll(r.src.B, -1) {
+			r.counts[strings.ToLower(string(w))]++
+		}
+	}
+	return r.counts
+}
+
+var anyWord = regexp.MustCompile(`\pL+`)
+
+// splitNotes parts a paragraph into notes at the marks it holds: at its start
+// and after a full stop, comma or semicolon.
+func (r *reader) splitNotes(run paper.TextRun, t *paper.Table, marks map[string]bool) []paper.FootNote {
+	var notes []paper.FootNote
+	expected := nextMark(t)
+	mark, start := "", 0
+	if n := r.markAt(run.S, expected, marks); n > 0 {
+		mark, start = trimMark(run.S[:n]), n
+		expected = follow(mark, expected)
+	}
+	finish := func(end int) {
+		text := source.Trim(source.Slice(run, start, end))
+		if text.S != "" || mark != "" {
+			notes = append(notes, paper.FootNote{Mark: mark, Text: text})
+		}
+	}
+	for i := start; i+1 < len(run.S); i++ {
+		if run.S[i] != ' ' || i == 0 || !strings.ContainsRune(".;,", rune(run.S[i-1])) {
+			continue
+		}
+		s := run.S[i+1:]
+		n := r.markAt(s, expected, marks)
+		m := trimMark(s[:n])
+		if n == 0 || m[0] >= 'a' && m[0] <= 'z' && m != expected || m[0] <= '9' && m[0] >= '0' && m != expected {
+			continue
+		}
+		finish(i)
+		mark, start = m, i+1+n
+		expected = follow(mark, expected)
+		i += n
+	}
+	finish(len(run.S))
+	return notes
+}
+
+func trimMark(s string) string { return strings.Trim(s, "().: \u00A0\u2009") }
+
+// follow gives the mark that comes after mark.
+func follow(mark, expected string) string {
+	if len(mark) == 1 && (mark[0] >= 'a' && mark[0] < 'z' || mark[0] >= '0' && mark[0] < '9') {
+		return string(mark[0] + 1)
+	}
+	return expected
+}
+
+// raiseMarks gives the letters that end cells, labels and the caption, and that
+// a note of the table explains, the style they had in print: raised.
+func (r *reader) raiseMarks(t *paper.Table) {
+	has := map[string]bool{}
+	for _, n := range t.Notes {
+		if len(n.Mark) == 1 && n.Mark[0] >= 'a' && n.Mark[0] <= 'z' {
+			has[n.Mark] = true
+		}
+	}
+	if len(has) == 0 {
+		return
+	}
+	r.raise(&t.Caption, has)
+	for i := range t.Cells {
+		r.raise(&t.Cells[i].Text, has)
+	}
+}
+
+func (r *reader) raise(run *paper.TextRun, has map[string]bool) {
+	s := run.S
+	at := -1
+	if m := endMarks.FindStringSubmatchIndex(s); m != nil {
+		at = m[2]
+		for _, l := range oneLetter.FindAllString(s[m[2]:], -1) {
+			if !has[l] {
+				return
+			}
+		}
+	} else if n := len(s); n > 2 && has[s[n-1:]] {
+		word := lastWord(s)
+		stem := word[:max(len(word)-1, 0)]
+		if len(stem) > 1 && r.words()[strings.ToLower(word)] <= 2 && r.words()[strings.ToLower(stem)] > 0 || stem == "P" || stem == "p" {
+			at = n - 1
+		}
+	}
+	if at >= 0 {
+		run.Styles = append(run.Styles, paper.Style{Start: at, End: len(s), Kind: paper.Raised})
+	}
+}
+
+// after is the part of run behind offset i, without space and punctuation in
+// front.
+func after(run paper.TextRun, i int) paper.TextRun {
+	rest := source.Slice(run, i, len(run.S))
+	k := len(rest.S) - len(strings.TrimLeftFunc(rest.S, func(c rune) bool {
+		return source.Blank(c) || strings.ContainsRune(".:|–—-", c)
+	}))
+	return source.Trim(source.Slice(rest, k, len(rest.S)))
+}
