@@ -3,8 +3,8 @@ package desk
 import (
 	"context"
 
-	"halfspan/convert/working"
 	"halfspan/extract/paper"
+	"halfspan/report/ledger"
 )
 
 // Paper is one paper that the desk may show.
@@ -14,7 +14,8 @@ type Paper struct {
 	SHA256 string // of the content that was scanned
 }
 
-// Word is one printed word with its box in points of the unrotated page.
+// Word is one printed word with its box (x0, y0, x1, y1) in points of the
+// unrotated page, y upwards.
 type Word struct {
 	Text string     `json:"text"`
 	Box  [4]float64 `json:"box"`
@@ -34,9 +35,6 @@ type Papers interface {
 	Document(ctx context.Context, p Paper) (*paper.Document, error)
 }
 
-// Work works results through again: Change a record with some of its fields
-// amended, Typed a result typed as printed.
-type Work interface {
-	Change(w working.Working, amended map[string]string, take string) (working.Working, error)
-	Typed(text string, fields map[string]string) (working.Working, error)
-}
+// ReadTyped reads one result typed as papers print it and works it through. An
+// error says what could not be read in it.
+type ReadTyped func(text string) (ledger.Item, error)

@@ -96,21 +96,21 @@ async function refresh(advance) {
 }
 
 async function decide(cells, decision, more = {}) {
-  const seen = Math.round(performance.now() - state.shownAt);
-  let done = 0;
+  const seen = Math.round((performance.now() - state.shownAt) / cells.length);
+  const drafts = cells.map((cell) => {
+    const { id } = cell.working.record;
+    return { id, hash: cell.hash, decision, mode: state.typed.has(id) ? 'typed first' : 'shown', seen_ms: seen, ...more };
+  });
   try {
-    for (const cell of cells) {
-      const r = cell.working.record;
-      await post('decide', { id: r.id, hash: cell.hash, decision, mode: state.typed.has(r.id) ? 'typed first' : 'shown', seen_ms: Math.round(seen / cells.length), ...more });
-      done++;
-    }
+    await post('decide', { drafts });
     say(`${decision}: ${cells.map((c) => printed(c.working.record)).join('; ')}`);
   } catch (e) {
-    if (done) say(`${done} of ${cells.length} cells were ${decision}. ${e.message}`, true); else fail(e);
+    say(e.message, true);
     await refresh(false);
-    return;
+    return false;
   }
   await refresh(true);
+  return true;
 }
 
 // onScreen are the cells of the row whose cards can be seen whole right now.
@@ -135,7 +135,7 @@ const act = {
   amend: () => { state.form = 'amend'; drawCell(); },
   drop: async () => { const a = await askReason('Drop this cell: why?'); if (a) await decide([cellNow()], 'dropped', a); },
   query: async () => { const note = await askQuery(); if (note) await decide([cellNow()], 'queried', { note }); },
-  undo: async () => { const { id, decision } = await post('undo', {}); await load(); say(id ? `Taken back: ${decision}.` : 'There is nothing to take back.'); if (id) jump(id); },
+  undo: async () => { const { id, decision, taken } = await post('undo'); await load(); say(id ? `Taken back: ${decision}${taken > 1 ? `, ${taken} cells` : ''}.` : 'There is nothing to take back.'); if (id) jump(id); },
   find: async () => { const key = await find(state.rows); if (key) { const i = indexOf(key); await show(i); } },
   aside: async () => { state.aside = !state.aside; document.querySelector('[data-do=aside]').setAttribute('aria-pressed', String(state.aside)); await load(state.row?.key); say(state.aside ? 'What was set aside (baseline rows, results quoted from other studies) is shown.' : 'Baseline rows and quoted results are set aside.'); },
   star: async () => { await post('star', { outcome: cellNow().working.record.outcome ?? '' }); await load(state.row.key); },
@@ -182,8 +182,7 @@ function zoom(by) { leaf.setZoom(by ? leaf.zoom * by : 1); draw(); }
 async function amend(cell, d, key) {
   if (!Object.keys(d.amended).length && !d.take) { say('Nothing is changed yet.'); return; }
   if (d.reason === 'other' && !d.note.trim()) { say('"Other" needs a note.', true); return; }
-  await decide([cell], 'amended', d);
-  sessionStorage.removeItem(key);
+  if (await decide([cell], 'amended', d)) sessionStorage.removeItem(key);
 }
 
 async function compare(values) {
@@ -195,7 +194,8 @@ async function compare(values) {
 }
 
 async function settle(choice) {
-  await post('settle', { id: cellNow().working.record.id, ...choice });
+  const cell = cellNow();
+  await post('settle', { id: cell.working.record.id, hash: cell.hash, ...choice });
   await refresh(true);
 }
 

@@ -1,0 +1,191 @@
+package desk
+
+import (
+	"net/http"
+
+	"halfspan/extract/paper"
+)
+
+// The widths, in pixels, that a page may be drawn at.
+const (
+	minWidth = 200
+	maxWidth = 3000
+	maxPages = 1 << 20
+)
+
+type pageView struct {
+	Number int     `json:"number"`
+	Rotate int     `json:"rotate"`
+	X0     float64 `json:"x0"`
+	Y0     float64 `json:"y0"`
+	X1     float64 `json:"x1"`
+	Y1     float64 `json:"y1"`
+}
+
+func (d *Desk) paper(r *http.Request) (any, error) {
+	p, err := d.paperOf(r)
+	if err != nil {
+		return nil, err
+	}
+	pages, err := d.opt.Papers.Pages(r.Context(), p)
+	if err != nil {
+		return nil, err
+	}
+	out := make([]pageView, 0, len(pages))
+	for _, page := range pages {
+		b := page.Box
+		out = append(out, pageView{page.Number, page.Rotate, float64(b.X0) / 100, float64(b.Y0) / 100, float64(b.X1) / 100, float64(b.Y1) / 100})
+	}
+	return map[string]any{"name": p.Name, "pages": out}, nil
+}
+
+func (d *Desk) words(r *http.Request) (any, error) {
+	p, err := d.paperOf(r)
+	if err != nil {
+		return nil, err
+	}
+	page, err := numberOf(r, "page", 1, maxPages)
+	if err != nil {
+		return nil, err
+	}
+	words, err := d.opt.Papers.Words(r.Context(), p, page)
+	if err != nil {
+		return nil, err
+	}
+	if words == nil {
+		words = []Word{}
+	}
+	return map[string]any{"words": words}, nil
+}
+
+// picture answers with a page as PNG. Browsers may keep it: a page never
+// changes under one content hash.
+func (d *Desk) picture(w http.ResponseWriter, r *http.Request) {
+	p, err := d.paperOf(r)
+	if err != nil {
+		refuse(w, http.StatusNotFound, err.Error())
+		return
+	}
+	page, err := numberOf(r, "page", 1, maxPages)
+	if err == nil {
+		var width int
+		if width, err = numberOf(r, "width", minWidth, maxWidth); err == nil {
+			var png []byte
+			if png, err = d.pictures.get(r.Context(), pictureKey{paperKey(p.SHA256), page, width}); err == nil {
+				w.Header().Set("Content-Type", "image/png")
+				w.Header().Set("Cache-Control", "private, max-age=3600")
+				_, _ = w.Write(png)
+				return
+			}
+			refuse(w, http.StatusInternalServerError, err.Error())
+			return
+		}
+	}
+	refuse(w, http.StatusBadRequest, err.Error())
+}
+
+// spanView is a stretch of text; Field says what was read there, empty where
+// nothing was.
+type spanView struct {
+	Text  string `json:"text"`
+	Field string `json:"field,omitempty"`
+}
+
+type cellText struct {
+	Head  bool       `json:"head,omitempty"`
+	Rows  int        `json:"rows"`
+	Cols  int        `json:"cols"`
+	Spans []spanView `json:"spans"`
+}
+
+type blockView struct {
+	Note  bool         `json:"note,omitempty"`
+	Spans []spanView   `json:"spans,omitempty"` // of a table: its caption
+	Rows  [][]cellText `json:"rows,omitempty"`
+}
+
+// passage shows where a result stands in a paper without pages: its block as
+// read, with the blocks before and after it.
+func (d *Desk) passage(r *http.Request) (any, error) {
+	p, err := d.paperOf(r)
+	if err != nil {
+		return nil, err
+	}
+	row, err := d.opt.Book.Row(r.URL.Query().Get("id"))
+	if err != nil {
+		return nil, err
+	}
+	doc, err := d.opt.Papers.Document(r.Context(), p)
+	if err != nil {
+		return nil, err
+	}
+	marks := marksOf(row.Current().Working)
+	at := blockAt(doc, row.Working.Anchor.Offset)
+	if at < 0 {
+		return nil, fail(http.StatusNotFound, "this place is not found in the paper any more: scan it again")
+	}
+	blocks := make([]blockView, 0, 3)
+	for i := max(at-1, 0); i <= min(at+1, len(doc.Blocks)-1); i++ {
+		if b := &doc.Blocks[i]; i == at || b.Kind != paper.TableBlock && b.Kind != paper.Reference && b.Kind != paper.Furniture {
+			blocks = append(blocks, viewBlock(b, marks)...)
+		}
+	}
+	return map[string]any{"heading": doc.Blocks[at].Section, "page": doc.Blocks[at].Page, "blocks": blocks}, nil
+}
+
+func blockAt(doc *paper.Document, offset int) int {
+	for i := range doc.Blocks {
+		for _, t := range textsOf(&doc.Blocks[i]) {
+			for _, run := range t.Runs {
+				if start := run.Place.Offset; offset >= start && offset < start+run.End-run.Start {
+					return i
+				}
+			}
+		}
+	}
+	return -1
+}
+
+// textsOf lists the stretches of text of a block.
+func textsOf(b *paper.Block) []*paper.TextRun {
+	out := []*paper.TextRun{&b.Text}
+	if b.Table == nil {
+		return out
+	}
+	out = append(out, &b.Table.Caption)
+	for i := range b.Table.Cells {
+		out = append(out, &b.Table.Cells[i].Text)
+	}
+	for i := range b.Table.Notes {
+		out = append(out, &b.Table.Notes[i].Text)
+	}
+	return out
+}
+
+func viewBlock(b *paper.Block, marks []mark) []blockView {
+	if b.Table == nil {
+		return []blockView{{Spans: spans(&b.Text, marks, "")}}
+	}
+	t := b.Table
+	label := t.Label
+	if label != "" {
+		label += ". "
+	}
+	table := blockView{Spans: spans(&t.Caption, marks, label), Rows: make([][]cellText, t.Rows)}
+	for i := range t.Cells {
+		c := &t.Cells[i]
+		if c.Row >= 0 && c.Row < t.Rows {
+			table.Rows[c.Row] = append(table.Rows[c.Row], cellText{c.Head || c.Row < t.HeadRows, c.RowSpan, c.ColSpan, spans(&c.Text, marks, "")})
+		}
+	}
+	out := []blockView{table}
+	for i := range t.Notes {
+		n := &t.Notes[i]
+		lead := n.Mark
+		if lead != "" {
+			lead += " "
+		}
+		out = append(out, blockView{Note: true, Spans: spans(&n.Text, marks, lead)})
+	}
+	return out
+}
