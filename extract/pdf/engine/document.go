@@ -23,12 +23,7 @@ type Document struct {
 	data    uint64 // the content inside the sandbox, which the library reads from
 	doc     uint64
 	pages   int
-	used    int // pages loaded by this instance
 }
-
-// pagesPerInstance: the sandbox's memory never shrinks, so a long document
-// gets a new instance now and then.
-const pagesPerInstance = 200
 
 // Open loads a PDF from its content. The content must not change while the
 // Document is open.
@@ -41,11 +36,11 @@ func (e *Engine) Open(content []byte) (*Document, error) {
 }
 
 func (d *Document) load() error {
-	r, err := newRaw(d.engine.pool)
+	r, err := d.engine.instance()
 	if err != nil {
 		return err
 	}
-	d.r, d.used = r, 0
+	d.r = r
 	d.data = r.malloc(len(d.content))
 	r.write(d.data, d.content)
 	d.doc = r.call("FPDF_LoadMemDocument64", d.data, uint64(len(d.content)), 0)
@@ -74,7 +69,7 @@ func loadError(code uint64) error {
 	}
 }
 
-// Close frees the document and its instance.
+// Close frees the document.
 func (d *Document) Close() {
 	if d.r == nil {
 		return
@@ -82,8 +77,9 @@ func (d *Document) Close() {
 	if d.doc != 0 {
 		d.r.call("FPDF_CloseDocument", d.doc)
 	}
-	d.r.close()
-	d.r, d.doc = nil, 0
+	d.r.free(d.data)
+	d.engine.release(d.r)
+	d.r, d.doc, d.data = nil, 0, 0
 }
 
 // NumPage is the number of pages.
@@ -119,7 +115,7 @@ func utf16le(b []byte) string {
 // ready makes sure that the instance is sound: after a trap or enough pages a
 // new one is started.
 func (d *Document) ready() error {
-	if d.r != nil && d.r.err == nil && d.used < pagesPerInstance {
+	if d.r != nil && d.r.err == nil && d.r.pages < pagesPerInstance {
 		return nil
 	}
 	d.Close()
@@ -134,7 +130,7 @@ func (d *Document) loadPage(number int) (uint64, error) {
 	if err := d.ready(); err != nil {
 		return 0, err
 	}
-	d.used++
+	d.r.pages++
 	page := d.r.call("FPDF_LoadPage", d.doc, uint64(number-1))
 	if d.r.err != nil {
 		return 0, d.r.err

@@ -25,7 +25,40 @@ const memoryPages = 320 * 16
 type Engine struct {
 	pool  pdfium.Pool
 	cache wazero.CompilationCache
+
+	mu   sync.Mutex
+	idle []*raw // sound instances that wait for another document
 }
+
+// instance gives an instance of the library: a kept one, for a new one costs
+// as much as a page.
+func (e *Engine) instance() (*raw, error) {
+	e.mu.Lock()
+	defer e.mu.Unlock()
+	if n := len(e.idle); n > 0 {
+		r := e.idle[n-1]
+		e.idle = e.idle[:n-1]
+		return r, nil
+	}
+	return newRaw(e.pool)
+}
+
+// release takes an instance back. One that failed, or that has read enough
+// pages, is thrown away: its memory never shrinks.
+func (e *Engine) release(r *raw) {
+	e.mu.Lock()
+	defer e.mu.Unlock()
+	if r.err != nil || r.pages >= pagesPerInstance || len(e.idle) >= maxIdle {
+		r.close()
+		return
+	}
+	e.idle = append(e.idle, r)
+}
+
+const (
+	pagesPerInstance = 200
+	maxIdle          = 2
+)
 
 // Config says how an Engine starts.
 type Config struct {
@@ -90,6 +123,12 @@ func openCache(dir string) (cache wazero.CompilationCache, warm bool) {
 
 // Close frees the compiled library.
 func (e *Engine) Close() error {
+	e.mu.Lock()
+	for _, r := range e.idle {
+		r.close()
+	}
+	e.idle = nil
+	e.mu.Unlock()
 	err := e.pool.Close()
 	if e.cache != nil {
 		err = errors.Join(err, e.cache.Close(context.Background()))

@@ -4,6 +4,7 @@ import (
 	"encoding/binary"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pdf/geom"
 	"halfspan/extract/pdf/lines"
 )
 
@@ -32,11 +33,11 @@ type objectReader struct {
 func (o *objectReader) read(page uint64) {
 	n := o.r.int("FPDFPage_CountObjects", page)
 	for i := 0; i < n; i++ {
-		o.object(o.r.call("FPDFPage_GetObject", page, uint64(i)), identity, 0)
+		o.object(o.r.call("FPDFPage_GetObject", page, uint64(i)), geom.Identity, 0)
 	}
 }
 
-func (o *objectReader) object(obj uint64, m matrix, depth int) {
+func (o *objectReader) object(obj uint64, m geom.Matrix, depth int) {
 	o.seen++
 	if obj == 0 || o.r.err != nil || o.seen > maxObjects || len(o.page.Rules) > maxRules {
 		return
@@ -50,7 +51,7 @@ func (o *objectReader) object(obj uint64, m matrix, depth int) {
 		if depth == maxNesting {
 			return
 		}
-		inner := o.matrix(obj).mul(m)
+		inner := o.matrix(obj).Mul(m)
 		n := o.r.int("FPDFFormObj_CountObjects", obj)
 		for i := 0; i < n && o.seen <= maxObjects; i++ {
 			o.object(o.r.call("FPDFFormObj_GetObject", obj, uint64(i)), inner, depth+1)
@@ -58,19 +59,19 @@ func (o *objectReader) object(obj uint64, m matrix, depth int) {
 	}
 }
 
-func (o *objectReader) bounds(obj uint64, m matrix) paper.Box {
+func (o *objectReader) bounds(obj uint64, m geom.Matrix) paper.Box {
 	s := o.r.scratch
 	o.r.call("FPDFPageObj_GetBounds", obj, s, s+4, s+8, s+12)
 	b := o.r.bytes(s, 16)
-	return m.box(float32At(b, 0), float32At(b, 1), float32At(b, 2), float32At(b, 3))
+	return m.Box(float32At(b, 0), float32At(b, 1), float32At(b, 2), float32At(b, 3))
 }
 
-func (o *objectReader) matrix(obj uint64) matrix {
+func (o *objectReader) matrix(obj uint64) geom.Matrix {
 	if o.r.int("FPDFPageObj_GetMatrix", obj, o.r.scratch) != 1 {
-		return identity
+		return geom.Identity
 	}
 	b := o.r.bytes(o.r.scratch, 24)
-	var m matrix
+	var m geom.Matrix
 	for i := range m {
 		m[i] = float32At(b, i)
 	}
@@ -79,7 +80,7 @@ func (o *objectReader) matrix(obj uint64) matrix {
 
 // path adds the straight lines of one path: a thin shape as a whole, else the
 // axis-parallel strokes and the thin filled rectangles in it.
-func (o *objectReader) path(obj uint64, m matrix) {
+func (o *objectReader) path(obj uint64, m geom.Matrix) {
 	r, s := o.r, o.r.scratch
 	r.call("FPDFPath_GetDrawMode", obj, s, s+4)
 	mode := r.bytes(s, 8)
@@ -96,14 +97,13 @@ func (o *objectReader) path(obj uint64, m matrix) {
 	if n > maxSegments || n > 6 && isDot(whole) {
 		return
 	}
-	l := lines.Finder{Fill: fill, Stroke: stroke}
-	at := o.matrix(obj).mul(m)
+	var l lines.Finder
+	at := o.matrix(obj).Mul(m)
 	for i := 0; i < n && r.err == nil; i++ {
 		seg := r.call("FPDFPath_GetPathSegment", obj, uint64(i))
 		r.call("FPDFPathSegment_GetPoint", seg, s, s+4)
 		b := r.bytes(s, 8)
-		x, y := at.apply(float32At(b, 0), float32At(b, 1))
-		p := paper.Point{X: hundredth(x), Y: hundredth(y)}
+		p := at.Point(float32At(b, 0), float32At(b, 1))
 		switch r.int("FPDFPathSegment_GetType", seg) {
 		case segMove:
 			l.Move(p)
@@ -116,34 +116,7 @@ func (o *objectReader) path(obj uint64, m matrix) {
 			l.Close()
 		}
 	}
-	o.page.Rules = append(o.page.Rules, l.Rules()...)
+	o.page.Rules = append(o.page.Rules, l.Rules(fill, stroke)...)
 }
 
 func isDot(b paper.Box) bool { return b.X1-b.X0 <= lines.Thin && b.Y1-b.Y0 <= lines.Thin }
-
-// matrix is a PDF transformation: x' = a x + c y + e, y' = b x + d y + f.
-type matrix [6]float64
-
-var identity = matrix{1, 0, 0, 1, 0, 0}
-
-// mul is first m, then n.
-func (m matrix) mul(n matrix) matrix {
-	return matrix{
-		m[0]*n[0] + m[1]*n[2], m[0]*n[1] + m[1]*n[3],
-		m[2]*n[0] + m[3]*n[2], m[2]*n[1] + m[3]*n[3],
-		m[4]*n[0] + m[5]*n[2] + n[4], m[4]*n[1] + m[5]*n[3] + n[5],
-	}
-}
-
-func (m matrix) apply(x, y float64) (float64, float64) {
-	return m[0]*x + m[2]*y + m[4], m[1]*x + m[3]*y + m[5]
-}
-
-// box is the axis-parallel box around the transformed rectangle.
-func (m matrix) box(x0, y0, x1, y1 float64) paper.Box {
-	ax, ay := m.apply(x0, y0)
-	bx, by := m.apply(x1, y1)
-	cx, cy := m.apply(x0, y1)
-	dx, dy := m.apply(x1, y0)
-	return boxOf(ax, ay, bx, by).Union(boxOf(cx, cy, dx, dy))
-}

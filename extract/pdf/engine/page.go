@@ -3,8 +3,11 @@ package engine
 import (
 	"math"
 	"strings"
+	"unicode/utf16"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pdf/facename"
+	"halfspan/extract/pdf/geom"
 )
 
 // maxChars is the most characters of one page that are read; printed pages
@@ -43,7 +46,7 @@ func (d *Document) facts(page uint64, number int) paper.Page {
 	p := paper.Page{Number: number, Reader: "pdfium"}
 	r.call("FPDF_GetPageBoundingBox", page, r.scratch)
 	b := r.bytes(r.scratch, 16)
-	p.Box = boxOf(float32At(b, 0), float32At(b, 3), float32At(b, 2), float32At(b, 1))
+	p.Box = geom.Box(float32At(b, 0), float32At(b, 3), float32At(b, 2), float32At(b, 1))
 	p.Rotate = 90 * (r.int("FPDFPage_GetRotation", page) & 3)
 	return p
 }
@@ -57,6 +60,7 @@ type textReader struct {
 
 	object uint64      // the text object of the last character
 	style  paper.Glyph // what all its characters share
+	high   rune        // first half of a character that comes in two
 }
 
 func (t *textReader) read() (cut bool) {
@@ -91,25 +95,73 @@ func (t *textReader) char(i uint64) {
 	if object == 0 {
 		return
 	}
-	if object != t.object {
+	if code, ok := t.whole(code, i); ok {
+		t.add(code, object, i)
+	}
+}
+
+// whole puts the two halves of a character together, and says of what is only
+// a code of the font, not a character, that it is not known.
+func (t *textReader) whole(code rune, i uint64) (rune, bool) {
+	high := t.high
+	t.high = 0
+	switch {
+	case code >= 0xD800 && code < 0xDC00:
+		t.high = code
+		return 0, false
+	case code >= 0xDC00 && code < 0xE000:
+		return utf16.DecodeRune(high, code), true
+	case code == 0 || code > 0x10FFFF:
+		return '\uFFFD', true
+	case code > ' ' && code < 0x100 && t.r.int("FPDFText_HasUnicodeMapError", t.text, i) == 1:
+		return '\uFFFD', true
+	}
+	return code, true
+}
+
+// add keeps one character. Several in the same place are the parts of one
+// glyph: a ligature, or a text given for a whole stretch of glyphs.
+func (t *textReader) add(code rune, object, i uint64) {
+	r := t.r
+	same := object == t.object
+	if !same {
 		t.object = object
 		t.style = t.readStyle(object, i)
 	}
 	g := t.style
-	g.Text = charText(code)
 	r.call("FPDFText_GetLooseCharBox", t.text, i, r.scratch)
 	r.call("FPDFText_GetCharOrigin", t.text, i, r.scratch+16, r.scratch+24)
 	b := r.bytes(r.scratch, 32)
-	g.Box = boxOf(float32At(b, 0), float32At(b, 3), float32At(b, 2), float32At(b, 1))
-	g.Origin = paper.Point{X: hundredth(float64At(b, 2)), Y: hundredth(float64At(b, 3))}
+	g.Box = geom.Box(float32At(b, 0), float32At(b, 3), float32At(b, 2), float32At(b, 1))
+	g.Origin = paper.Point{X: geom.Hundredth(float64At(b, 2)), Y: geom.Hundredth(float64At(b, 3))}
+	g.Box = fontHeight(&g)
+	if n := len(t.page.Glyphs); same && n > 0 {
+		if last := &t.page.Glyphs[n-1]; last.Origin == g.Origin && last.Box == g.Box {
+			last.Text += string(code)
+			return
+		}
+	}
+	g.Text = string(code)
 	t.page.Glyphs = append(t.page.Glyphs, g)
 }
 
-func charText(code rune) string {
-	if code == 0 || code > 0x10FFFF || code >= 0xD800 && code < 0xE000 {
-		return "\uFFFD"
+// fontHeight gives the box of a glyph by its advance and its size. The
+// library's own box is as high as the font says it is, or, where the font says
+// nothing, as the drawn shape.
+func fontHeight(g *paper.Glyph) paper.Box {
+	b, o := g.Box, g.Origin
+	up, down := int32(float64(g.Size)*geom.Ascent), int32(float64(g.Size)*geom.Descent)
+	switch g.Angle {
+	case 0:
+		return paper.Box{X0: o.X, Y0: o.Y + down, X1: max(b.X1, o.X), Y1: o.Y + up}
+	case 90:
+		return paper.Box{X0: o.X - up, Y0: o.Y, X1: o.X - down, Y1: max(b.Y1, o.Y)}
+	case 180:
+		return paper.Box{X0: min(b.X0, o.X), Y0: o.Y - up, X1: o.X, Y1: o.Y - down}
+	case 270:
+		return paper.Box{X0: o.X + down, Y0: min(b.Y0, o.Y), X1: o.X + up, Y1: o.Y}
 	}
-	return string(code)
+	return b
 }
 
 // readStyle reads what the characters of one text object share.
@@ -119,19 +171,18 @@ func (t *textReader) readStyle(object, i uint64) paper.Glyph {
 	var g paper.Glyph
 	if r.int("FPDFText_GetMatrix", t.text, i, r.scratch) == 1 {
 		b := r.bytes(r.scratch, 24)
-		m0, m1, m2, m3 := float32At(b, 0), float32At(b, 1), float32At(b, 2), float32At(b, 3)
-		g.Angle = angleOf(m0, m1)
-		size *= math.Hypot(m2, m3)
+		g.Angle = geom.Angle(float32At(b, 0), float32At(b, 1))
+		size *= math.Hypot(float32At(b, 2), float32At(b, 3))
 	}
-	g.Size = hundredth(math.Abs(size))
+	g.Size = geom.Hundredth(math.Abs(size))
 	n := r.int("FPDFText_GetFontInfo", t.text, i, r.scratch+64, scratchSize-64, r.scratch)
 	name := ""
 	if n > 0 && n <= scratchSize-64 {
-		name = strings.TrimRight(string(r.bytes(r.scratch+64, n)), "\x00")
+		name = facename.Plain(strings.TrimRight(string(r.bytes(r.scratch+64, n)), "\x00"))
 	}
 	flags := r.bytes(r.scratch, 4)
-	g.Bold = flags[2]&4 != 0 || boldName(name) // ForceBold is bit 19
-	g.Italic = flags[0]&64 != 0 || italicName(name)
+	g.Bold = flags[2]&4 != 0 || facename.Bold(name) // ForceBold is bit 19
+	g.Italic = flags[0]&64 != 0 || facename.Italic(name)
 	mode := r.int("FPDFTextObj_GetTextRenderMode", object)
 	g.Invisible = mode == 3 || mode == 7
 	g.Font = t.font(name)
@@ -146,51 +197,4 @@ func (t *textReader) font(name string) int32 {
 		t.page.Fonts = append(t.page.Fonts, name)
 	}
 	return k
-}
-
-func boldName(name string) bool {
-	s := strings.ToLower(name)
-	for _, w := range []string{"bold", "black", "heavy", "-bd", "demi"} {
-		if strings.Contains(s, w) {
-			return true
-		}
-	}
-	return false
-}
-
-func italicName(name string) bool {
-	s := strings.ToLower(name)
-	return strings.Contains(s, "italic") || strings.Contains(s, "oblique") || strings.HasSuffix(s, "-it")
-}
-
-// angleOf gives the direction of the vector (x, y) in whole degrees; those
-// within two degrees of an axis count as along it.
-func angleOf(x, y float64) int16 {
-	if x == 0 && y == 0 {
-		return 0
-	}
-	deg := math.Mod(math.Atan2(y, x)*180/math.Pi+360, 360)
-	if near := math.Round(deg/90) * 90; math.Abs(deg-near) < 2 {
-		deg = near
-	}
-	return int16(math.Round(deg)) % 360
-}
-
-// hundredth turns points into 1/100 point, clamped to what fits.
-func hundredth(v float64) int32 {
-	v = math.Round(v * 100)
-	switch {
-	case v != v:
-		return 0
-	case v > 1e9:
-		return 1e9
-	case v < -1e9:
-		return -1e9
-	}
-	return int32(v)
-}
-
-func boxOf(x0, y0, x1, y1 float64) paper.Box {
-	a, b, c, d := hundredth(x0), hundredth(y0), hundredth(x1), hundredth(y1)
-	return paper.Box{X0: min(a, c), Y0: min(b, d), X1: max(a, c), Y1: max(b, d)}
 }

@@ -33,6 +33,7 @@ type raw struct {
 	mem     memory
 	stack   [16]uint64
 	scratch uint64 // address of scratchSize bytes for values that calls return
+	pages   int    // loaded so far
 	err     error
 }
 

@@ -15,17 +15,22 @@ const Thin = 250
 // letters are none.
 const minLength = 2 * Thin
 
-// Finder takes the segments of one path, in page space and 1/100 point, and
-// gives its lines.
-type Finder struct {
-	Fill, Stroke bool
+// maxFound bounds what one path can give.
+const maxFound = 4_000
 
+// Finder takes the segments of one path, in page space and 1/100 point, and
+// gives its lines. The zero value is ready.
+type Finder struct {
 	start, at paper.Point
 	sub       paper.Box // around the present sub-path
 	curved    bool
 	points    int
-	found     []paper.Box
+	strokes   []paper.Box // lines if the path is stroked
+	fills     []paper.Box // lines if it is filled
 }
+
+// Reset begins a new path.
+func (f *Finder) Reset() { *f = Finder{strokes: f.strokes[:0], fills: f.fills[:0]} }
 
 // Move begins a new sub-path at p.
 func (f *Finder) Move(p paper.Point) {
@@ -41,9 +46,8 @@ func (f *Finder) Line(p paper.Point) {
 		f.Move(p)
 		return
 	}
-	b := span(f.at, p)
-	if f.Stroke && Along(b) {
-		f.found = append(f.found, b)
+	if b := span(f.at, p); Along(b) && len(f.strokes) < maxFound {
+		f.strokes = append(f.strokes, b)
 	}
 	f.grow(p)
 }
@@ -65,10 +69,17 @@ func (f *Finder) Close() {
 	}
 }
 
-// Rules ends the path and gives its lines.
-func (f *Finder) Rules() []paper.Box {
+// Rules ends the path and gives its lines, in the order drawn. A path that is
+// stroked gives its sides, one that is only filled its thin rectangles.
+func (f *Finder) Rules(fill, stroke bool) []paper.Box {
 	f.endSub()
-	return f.found
+	switch {
+	case stroke:
+		return f.strokes
+	case fill:
+		return f.fills
+	}
+	return nil
 }
 
 func (f *Finder) grow(p paper.Point) {
@@ -77,11 +88,9 @@ func (f *Finder) grow(p paper.Point) {
 	f.points++
 }
 
-// endSub takes a thin filled sub-path as one line. One that is stroked as well
-// has given its sides already.
 func (f *Finder) endSub() {
-	if f.Fill && !f.Stroke && !f.curved && f.points >= 2 && Along(f.sub) {
-		f.found = append(f.found, f.sub)
+	if !f.curved && f.points >= 2 && Along(f.sub) && len(f.fills) < maxFound {
+		f.fills = append(f.fills, f.sub)
 	}
 	f.points, f.curved = 0, false
 }
@@ -90,7 +99,8 @@ func span(a, b paper.Point) paper.Box {
 	return paper.Box{X0: min(a.X, b.X), Y0: min(a.Y, b.Y), X1: max(a.X, b.X), Y1: max(a.Y, b.Y)}
 }
 
-// Along reports whether b is long in one direction and thin in the other: a line.
+// Along reports whether b is long in one direction and thin in the other: a
+// line.
 func Along(b paper.Box) bool {
 	w, h := b.X1-b.X0, b.Y1-b.Y0
 	return min(w, h) <= Thin && max(w, h) > minLength

@@ -1,0 +1,145 @@
+package glyphs
+
+import (
+	"unicode"
+	"unicode/utf8"
+
+	lib "github.com/ledongthuc/pdf"
+
+	"halfspan/extract/pdf/facename"
+)
+
+// Font is one font of a paper.
+type Font struct {
+	Name         string // without the tag of a subset
+	Bold, Italic bool
+	// Named lists the codes whose text was taken from the glyph's name because
+	// the font's own map to Unicode says something that cannot be printed.
+	Named []Named
+
+	simple   [256]*glyph
+	comp     map[uint32]*glyph
+	encoding *cmap // of a composite font; nil: two bytes are a glyph number
+	toText   map[uint32]string
+	widths   map[uint32]float64 // of a composite font, in em
+	missing  float64            // width of other glyphs, in em
+	ucs2     bool               // the codes are UTF-16
+	vertical bool
+	scale    float64 // of a Type 3 font: its em, where others have 1
+}
+
+// Named is a code read by its glyph's name, against the font's own map.
+type Named struct {
+	Code      uint32
+	Map, Text string // what the map says, what the name says
+	Glyph     string // the name
+}
+
+// glyph is what one code shows.
+type glyph struct {
+	text  string
+	width float64 // in em
+}
+
+// unknown stands for what cannot be told from the file.
+const unknown = "\uFFFD"
+
+// fontNamed gives a font of the present resources; nil if there is none.
+func (d *Document) fontNamed(fonts *dict, name string) *Font {
+	if fonts == nil {
+		return nil
+	}
+	r, there := fonts.refs[name]
+	if !there {
+		return nil
+	}
+	if f, ok := d.fonts[r]; ok && r != 0 {
+		return f
+	}
+	return d.font(fonts.key(name))
+}
+
+// font gives the font that v describes, read once per paper where v is an
+// object of its own.
+func (d *Document) font(v lib.Value) *Font {
+	if v.Kind() != lib.Dict {
+		return nil
+	}
+	r := refOf(v)
+	f, ok := d.fonts[r]
+	if !ok || r == 0 {
+		f = d.readFont(v)
+		d.fonts[r] = f
+	}
+	return f
+}
+
+func (d *Document) readFont(v lib.Value) *Font {
+	full := d.key(v, "BaseFont").Name()
+	f := &Font{Name: facename.Plain(full), scale: 1}
+	if tu := d.key(v, "ToUnicode"); tu.Kind() == lib.Stream {
+		f.toText = d.toUnicode(tu)
+	}
+	kind := d.key(v, "Subtype").Name()
+	if kind == "Type0" {
+		d.readComposite(f, v)
+		return f
+	}
+	desc := d.key(v, "FontDescriptor")
+	d.describe(f, desc)
+	if kind == "Type3" {
+		d.readType3(f, v)
+		return f
+	}
+	d.readSimple(f, v, desc, kind)
+	return f
+}
+
+func (d *Document) toUnicode(v lib.Value) map[uint32]string {
+	b, _ := d.stream(v)
+	return readCMap(b, &d.fuel).text
+}
+
+// describe takes the style from a font's descriptor.
+func (d *Document) describe(f *Font, desc lib.Value) {
+	flags := d.key(desc, "Flags").Int64()
+	f.Bold = flags&(1<<18) != 0 || facename.Bold(f.Name)
+	f.Italic = flags&(1<<6) != 0 || facename.Italic(f.Name)
+}
+
+// next splits the next code from a string.
+func (f *Font) next(b []byte) (code uint32, n int) {
+	if f.comp == nil {
+		return uint32(b[0]), 1
+	}
+	n = min(2, len(b))
+	if f.encoding != nil {
+		n = f.encoding.length(b)
+	}
+	return codeOf(b[:n]), n
+}
+
+func (f *Font) glyph(code uint32) *glyph {
+	if f.comp == nil {
+		return f.simple[code&0xFF]
+	}
+	g, ok := f.comp[code]
+	if !ok {
+		g = f.readGlyph(code)
+		f.comp[code] = g
+	}
+	return g
+}
+
+// sane reports whether a font's own map gives something that can be printed.
+func sane(text string) bool {
+	if text == "" || !utf8.ValidString(text) {
+		return false
+	}
+	for _, r := range text {
+		if unicode.IsControl(r) && r != '\t' || unicode.Is(unicode.Co, r) || r == utf8.RuneError || r == 0xFFFE || r == 0xFFFF {
+			return false
+		}
+	}
+	return true
+}

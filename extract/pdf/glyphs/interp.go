@@ -1,0 +1,363 @@
+package glyphs
+
+import (
+	"bytes"
+
+	lib "github.com/ledongthuc/pdf"
+
+	"halfspan/extract/pdf/geom"
+	"halfspan/extract/pdf/lines"
+)
+
+// operand is one value before an operator.
+type operand struct {
+	kind  tokKind
+	num   float64
+	b     []byte
+	items []operand // of an array, or of a dictionary: key, value, key, value
+}
+
+// state is the graphics state, as far as text and lines need it.
+type state struct {
+	ctm                          geom.Matrix
+	font                         *Font
+	size, char, word, horiz      float64 // horiz: horizontal scaling, 1 is plain
+	leading, rise                float64
+	mode                         int // text rendering mode
+}
+
+// form is a form XObject, read once per paper.
+type form struct {
+	content   []byte
+	resources *dict // nil: those of the page
+	matrix    geom.Matrix
+	image     bool
+	short     bool
+}
+
+// interpreter runs the content of one page.
+type interpreter struct {
+	doc   *Document
+	page  *Page
+	res   *dict
+	fonts *dict // of res
+	xobj  *dict
+
+	state
+	saved      []state
+	text, line geom.Matrix // text matrix, text line matrix
+
+	operands []operand
+	path     lines.Finder
+	pending  bool // the path has segments
+	fontIdx  map[*Font]int32
+	actual   actualText
+	overlaid map[glyphKey]bool
+	depth    int // of form XObjects
+}
+
+func newInterpreter(d *Document, p *Page) *interpreter {
+	return &interpreter{
+		doc: d, page: p, state: state{ctm: geom.Identity, horiz: 1},
+		text: geom.Identity, line: geom.Identity,
+		fontIdx: map[*Font]int32{}, overlaid: map[glyphKey]bool{},
+	}
+}
+
+// finish ends the page.
+func (in *interpreter) finish() { in.actual.flush(in.page) }
+
+// use makes res the present resources and gives a function that goes back.
+func (in *interpreter) use(res *dict) (back func()) {
+	old, fonts, xobj := in.res, in.fonts, in.xobj
+	in.res = res
+	in.fonts = in.doc.resources(res.key("Font"))
+	in.xobj = in.doc.resources(res.key("XObject"))
+	return func() { in.res, in.fonts, in.xobj = old, fonts, xobj }
+}
+
+// run runs a content stream.
+func (in *interpreter) run(content []byte, res *dict) {
+	defer in.use(res)()
+	l := &lexer{b: content}
+	base := len(in.saved)
+	first := len(in.operands)
+	for {
+		t := l.next()
+		if t.kind == tokEOF {
+			break
+		}
+		if t.kind != tokWord {
+			if v, ok := in.operand(l, t, 0); ok && len(in.operands)-first < maxOperands {
+				in.operands = append(in.operands, v)
+			}
+			continue
+		}
+		burn(&in.doc.fuel.operators, 1, fuelOperators, "operators")
+		if string(t.b) == "BI" {
+			in.inlineImage(l)
+		} else {
+			in.operator(t.b, in.operands[first:], base)
+		}
+		in.operands = in.operands[:first]
+	}
+	in.operands = in.operands[:first]
+	if len(in.saved) > base { // unbalanced q: the state at the start returns
+		in.state = in.saved[base]
+		in.saved = in.saved[:base]
+	}
+}
+
+// operand reads one value that begins with t.
+func (in *interpreter) operand(l *lexer, t token, depth int) (operand, bool) {
+	v := operand{kind: t.kind, num: t.num, b: t.b}
+	var end tokKind
+	switch t.kind {
+	case tokArrayOpen:
+		end = tokArrayClose
+	case tokDictOpen:
+		end = tokDictClose
+	case tokArrayClose, tokDictClose:
+		return v, false
+	default:
+		return v, true
+	}
+	for {
+		t := l.next()
+		if t.kind == end || t.kind == tokEOF {
+			return v, true
+		}
+		burn(&in.doc.fuel.operators, 1, fuelOperators, "operands")
+		if depth >= maxNesting {
+			continue
+		}
+		if item, ok := in.operand(l, t, depth+1); ok {
+			v.items = append(v.items, item)
+		}
+	}
+}
+
+// nums copies the last len(to) operands, which must be numbers.
+func nums(args []operand, to []float64) bool {
+	if len(args) < len(to) {
+		return false
+	}
+	for i, a := range args[len(args)-len(to):] {
+		if a.kind != tokNumber {
+			return false
+		}
+		to[i] = a.num
+	}
+	return true
+}
+
+func (in *interpreter) operator(op []byte, args []operand, base int) {
+	var n [6]float64
+	switch string(op) {
+	case "q":
+		if len(in.saved)-base < maxStack {
+			in.saved = append(in.saved, in.state)
+		}
+	case "Q":
+		if k := len(in.saved); k > base {
+			in.state = in.saved[k-1]
+			in.saved = in.saved[:k-1]
+		}
+	case "cm":
+		if nums(args, n[:6]) {
+			in.ctm = geom.Matrix(n).Mul(in.ctm)
+		}
+	case "Do":
+		if len(args) > 0 && args[len(args)-1].kind == tokName {
+			in.xobject(string(args[len(args)-1].b))
+		}
+	case "BDC":
+		in.beginMarked(args)
+	case "BMC":
+		in.actual.begin(in.page, "", false)
+	case "EMC":
+		in.actual.end(in.page)
+	case "gs":
+		in.extState(args)
+	default:
+		if !in.textOperator(op, args, n[:]) {
+			in.pathOperator(op, args, n[:])
+		}
+	}
+}
+
+// pathOperator runs the operators that build and paint paths.
+func (in *interpreter) pathOperator(op []byte, args []operand, n []float64) {
+	switch string(op) {
+	case "m":
+		if nums(args, n[:2]) {
+			in.path.Move(in.ctm.Point(n[0], n[1]))
+			in.pending = true
+		}
+	case "l":
+		if nums(args, n[:2]) {
+			in.path.Line(in.ctm.Point(n[0], n[1]))
+			in.pending = true
+		}
+	case "c":
+		if nums(args, n[:6]) {
+			in.path.Curve(in.ctm.Point(n[4], n[5]))
+		}
+	case "v", "y":
+		if nums(args, n[:4]) {
+			in.path.Curve(in.ctm.Point(n[2], n[3]))
+		}
+	case "h":
+		in.path.Close()
+	case "re":
+		if nums(args, n[:4]) {
+			x, y, w, h := n[0], n[1], n[2], n[3]
+			in.path.Move(in.ctm.Point(x, y))
+			in.path.Line(in.ctm.Point(x+w, y))
+			in.path.Line(in.ctm.Point(x+w, y+h))
+			in.path.Line(in.ctm.Point(x, y+h))
+			in.path.Close()
+			in.pending = true
+		}
+	case "S":
+		in.paint(false, true)
+	case "s":
+		in.path.Close()
+		in.paint(false, true)
+	case "f", "F", "f*":
+		in.paint(true, false)
+	case "B", "B*":
+		in.paint(true, true)
+	case "b", "b*":
+		in.path.Close()
+		in.paint(true, true)
+	case "n":
+		in.paint(false, false)
+	}
+}
+
+// paint ends the path and keeps its lines.
+func (in *interpreter) paint(fill, stroke bool) {
+	if !in.pending {
+		return
+	}
+	if (fill || stroke) && len(in.page.Rules) < maxRules {
+		in.page.Rules = append(in.page.Rules, in.path.Rules(fill, stroke)...)
+	}
+	in.path.Reset()
+	in.pending = false
+}
+
+// extState takes the font that a graphics state dictionary may set.
+func (in *interpreter) extState(args []operand) {
+	if len(args) == 0 || args[len(args)-1].kind != tokName {
+		return
+	}
+	gs := in.doc.key(in.res.key("ExtGState"), string(args[len(args)-1].b))
+	if gs.Kind() != lib.Dict {
+		return
+	}
+	if f := in.doc.key(gs, "Font"); f.Len() == 2 {
+		in.font = in.doc.font(f.Index(0))
+		in.size = f.Index(1).Float64()
+	}
+}
+
+// xobject shows a form or an image.
+func (in *interpreter) xobject(name string) {
+	f := in.doc.form(in.xobj, name)
+	if f == nil {
+		return
+	}
+	if f.image {
+		in.page.Images = append(in.page.Images, in.ctm.Box(0, 0, 1, 1))
+		return
+	}
+	if in.depth >= maxForms {
+		return
+	}
+	in.page.Short = in.page.Short || f.short
+	outer, text, line, res := in.state, in.text, in.line, in.res
+	in.depth++
+	in.ctm = f.matrix.Mul(in.ctm)
+	if f.resources != nil {
+		res = f.resources
+	}
+	in.run(f.content, res)
+	in.depth--
+	in.state, in.text, in.line = outer, text, line
+}
+
+// form reads a form XObject, or notes that it is an image.
+func (d *Document) form(xobj *dict, name string) *form {
+	r, there := ref(0), false
+	if xobj != nil {
+		r, there = xobj.refs[name]
+	}
+	if !there {
+		return nil
+	}
+	if f, ok := d.forms[r]; ok && r != 0 {
+		return f
+	}
+	v := xobj.key(name)
+	var f *form
+	switch d.key(v, "Subtype").Name() {
+	case "Image":
+		f = &form{image: true}
+	case "Form":
+		f = &form{matrix: geom.Identity, resources: d.resources(d.key(v, "Resources"))}
+		f.content, f.short = d.stream(v)
+		if m := d.key(v, "Matrix"); m.Len() == 6 {
+			for i := range f.matrix {
+				f.matrix[i] = m.Index(i).Float64()
+			}
+		}
+	}
+	d.forms[r] = f
+	return f
+}
+
+// inlineImage passes over an image in the stream and notes its place.
+func (in *interpreter) inlineImage(l *lexer) {
+	in.page.Images = append(in.page.Images, in.ctm.Box(0, 0, 1, 1))
+	for {
+		t := l.next()
+		if t.kind == tokEOF {
+			return
+		}
+		if t.kind == tokWord && string(t.b) == "ID" {
+			break
+		}
+		burn(&in.doc.fuel.operators, 1, fuelOperators, "operands")
+	}
+	l.pos = endOfImage(l.b, min(l.pos+1, len(l.b)))
+}
+
+// endOfImage finds where the data that begin at i end: at an EI between
+// spaces behind which the stream goes on in plain letters.
+func endOfImage(b []byte, i int) int {
+	for {
+		k := bytes.Index(b[i:], []byte("EI"))
+		if k < 0 {
+			return len(b)
+		}
+		end := i + k + 2
+		before := i+k == 0 || classes[b[i+k-1]] == space
+		after := end == len(b) || classes[b[end]] == space
+		if before && after && plain(b[end:min(end+24, len(b))]) {
+			return end
+		}
+		i = end
+	}
+}
+
+func plain(b []byte) bool {
+	for _, c := range b {
+		if c >= 0x7F || c < ' ' && classes[c] != space {
+			return false
+		}
+	}
+	return true
+}
+
