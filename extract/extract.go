@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 
+	"halfspan/extract/bind/prose"
 	"halfspan/extract/jats"
 	"halfspan/extract/paper"
 	"halfspan/extract/plain"
@@ -39,5 +40,5 @@ func isPDF(content []byte) bool {
 
 // Find gives every result that is printed in the document, in reading order.
 func Find(doc *paper.Document) []result.Result {
-	return nil
+	return prose.Find(doc)
 }

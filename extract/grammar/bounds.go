@@ -131,6 +131,9 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 		return it, i, false
 	}
 	k = p.skipMarks(k)
+	if in == afterWord {
+		k = p.brokenPoint(&lower, k)
+	}
 	if in != bare {
 		k = p.skipUnit(k)
 	} else if p.clock(k) {
@@ -139,6 +142,9 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 	sep, k2 := p.separator(k, in)
 	if sep == "" {
 		return it, i, false
+	}
+	if _, _, level := p.levelPhrase(k2); level {
+		return it, i, false // "4.0, 95% CI": the level is no bound
 	}
 	upper, end, ok := p.bound(k2)
 	if !ok && sep == "-" && in == inBracket && p.kind(k2) == TokClose {
@@ -160,6 +166,19 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 	it.Lower, it.Upper, it.Sep = lower, upper, sep
 	it.Span = Span{lower.Start, upper.End}
 	return it, end, true
+}
+
+// brokenPoint mends "14. 6 to 1.9": a space behind the decimal point.
+func (p *parser) brokenPoint(n *Number, k int) int {
+	if !whole(strings.TrimPrefix(n.Value, "-")) || p.kind(k) != TokPeriod || p.toks[k].Spaced || p.kind(k+1) != TokNumber || !whole(p.toks[k+1].Value) {
+		return k
+	}
+	if s, _ := p.separator(k+2, bare); s == "" {
+		return k
+	}
+	n.Value += "." + p.toks[k+1].Value
+	n.End, n.Mended = p.toks[k+1].End, true
+	return k + 2
 }
 
 // fits refuses pairs that only look like bounds.

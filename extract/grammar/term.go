@@ -21,7 +21,7 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 
 // needsValue are one-letter terms that count only with a value or a bracketed
 // spread behind them: "M = 12.4", "B (SE)".
-var needsValue = map[string]bool{"M": true, "B": true, "b": true, "β": true}
+var needsValue = map[string]bool{"No": true, "M": true, "B": true, "b": true, "β": true}
 
 func (p *parser) hasValue(i int) bool {
 	switch p.kind(i) {
@@ -29,7 +29,12 @@ func (p *parser) hasValue(i int) bool {
 		return i == 1
 	case TokEquals, TokColon, TokNumber:
 		return true
+	case TokPeriod:
+		return !p.toks[i].Spaced && p.word(i-1) == "no" && (p.kind(i+1) == TokOpen || p.word(i+1) == "of")
 	case TokDash, TokOpen:
+		if p.word(i-1) == "no" && p.kind(i+1) == TokPercent {
+			return true
+		}
 		_, _, ok := p.levelPhrase(i + 1)
 		if !ok {
 			var m Meaning

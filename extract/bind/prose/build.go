@@ -16,10 +16,8 @@ func (p *para) result(c *cand) (result.Result, bool) {
 	r := result.Result{Section: p.block.Section, Zone: p.block.Zone, GivenAs: c.given}
 	place := p.run.At(c.start)
 	r.Page = place.Page
-	if c.estItem >= 0 {
-		r.Estimate = c.est.Value
-		p.source(&r, "estimate", c.est.Span)
-	}
+	r.Estimate = c.est.Value
+	p.source(&r, "estimate", c.est.Span)
 	if c.value.Value != "" {
 		r.GivenValue = c.value.Value
 		p.source(&r, "given_value", c.value.Span)
@@ -52,15 +50,8 @@ func (p *para) result(c *cand) (result.Result, bool) {
 	p.setEvidence(&r, c, st)
 	r.Flags = append(r.Flags, c.flags...)
 	p.slips(&r, c)
-	r.Snippet = p.snippet(min(it.Start, orStart(c)), max(it.End, c.est.End))
+	r.Snippet = p.snippet(min(it.Start, c.est.Start), max(it.End, c.est.End))
 	return r, true
-}
-
-func orStart(c *cand) int {
-	if c.estItem < 0 {
-		return 1 << 30
-	}
-	return c.est.Start
 }
 
 // printed is a bound as the record keeps it: an open bound by its word.
@@ -123,9 +114,7 @@ func (p *para) setUnit(r *result.Result, c *cand) {
 	if b := p.r.Items[c.item].Bracket; b > 0 {
 		ends = append(ends, p.r.Brackets[b-1].End)
 	}
-	if c.estItem >= 0 {
-		ends = append([]int{c.est.End}, ends...)
-	}
+	ends = append([]int{c.est.End}, ends...)
 	for _, end := range ends {
 		if u, ok := p.unitAt(end); ok {
 			r.Unit = p.s[u.Start:u.End]
@@ -186,10 +175,8 @@ func (p *para) setTests(r *result.Result, c *cand) {
 			break
 		}
 	}
-	if c.estItem >= 0 {
-		for k := c.estItem + 1; k < c.item; k++ {
-			p.test(r, &p.r.Items[k])
-		}
+	for k := c.estItem + 1; k < c.item; k++ {
+		p.test(r, &p.r.Items[k])
 	}
 }
 
@@ -231,9 +218,6 @@ func (p *para) slips(r *result.Result, c *cand) {
 	}
 	if c.value.Value == "" && c.lower.Value+c.upper.Value != "" && (!ok1 || !ok2) {
 		r.Raise("open-bound", "a bound is not a number")
-	}
-	if c.estItem < 0 {
-		r.Raise("estimate-missing", "no estimate is printed with these bounds")
 	}
 }
 

@@ -96,9 +96,9 @@ func (p *para) misfit(c *cand, n grammar.Number) float64 {
 	case scaled:
 		w += 3
 	case outside:
-		w += 7
+		w += 9
 		if p.gap(c, n) {
-			w -= 4
+			w -= 6
 		}
 	}
 	return w

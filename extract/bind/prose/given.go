@@ -64,3 +64,30 @@ func (p *para) byConvention(k int, c *cand) bool {
 	}
 	return false
 }
+
+// repeats settles what an unexplained ± means where the same paper prints the
+// same two numbers elsewhere with a word for the spread: "56 ± 6" in the results
+// is the abstract's "56 (SD 6)".
+func (f *finder) repeats() {
+	for i := range f.out {
+		r := &f.out[i]
+		if r.GivenAs != result.Unstated {
+			continue
+		}
+		for j := range f.out {
+			o := &f.out[j]
+			if o.Estimate != r.Estimate || o.GivenValue != r.GivenValue || o.GivenAs != result.SD && o.GivenAs != result.SE {
+				continue
+			}
+			for _, s := range o.Sources {
+				if s.Field == "given_as" {
+					s.From = "the same numbers elsewhere in the text"
+					r.GivenAs = o.GivenAs
+					r.Sources = append(r.Sources, s)
+					break
+				}
+			}
+			break
+		}
+	}
+}

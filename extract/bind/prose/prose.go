@@ -21,11 +21,12 @@ func Find(doc *paper.Document) []result.Result {
 		default:
 			continue
 		}
-		if b.Zone == paper.References || b.Zone == paper.BackMatter {
+		if b.Zone == paper.References {
 			continue
 		}
 		f.block(i)
 	}
+	f.repeats()
 	return f.out
 }
 

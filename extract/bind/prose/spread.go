@@ -103,8 +103,8 @@ func (p *para) wordInterval(k int) {
 		return
 	}
 	p.estimate(&c)
-	if c.estItem < 0 && c.given != result.CI {
-		return
+	if c.estItem < 0 {
+		return // the interval of a difference that is not printed is no result
 	}
 	p.cands = append(p.cands, c)
 }
@@ -226,6 +226,10 @@ func (p *para) commaForm(k int, c *cand) bool {
 	}
 	switch strings.TrimSpace(p.s[c.est.End:it.Start]) {
 	case ",", ";", ":", "(":
+	case "and":
+		if !w.announce {
+			return false
+		}
 	default:
 		return false
 	}

@@ -28,10 +28,7 @@ var (
 // the words of change or contrast around it and the kind of spread.
 func (p *para) statistic(c *cand) named {
 	it := &p.r.Items[c.item]
-	at := it.Start
-	if c.estItem >= 0 {
-		at = c.est.Start
-	}
+	at := c.est.Start
 	from, to := p.sentence(at)
 	best := named{}
 	for k := range p.r.Items {
