@@ -87,7 +87,7 @@ func (s *sheet) joinRows() {
 			if (b.base-a.base)*5 > min(a.size, b.size) {
 				break
 			}
-			if !gone[k] && b.table == nil && a.left == b.left && a.right == b.right && a.furniture == b.furniture {
+			if !gone[k] && b.table == nil && a.left == b.left && a.right == b.right && a.furniture == b.furniture && s.clear(b, i, parts) {
 				parts = append(parts, k)
 			}
 		}
@@ -110,6 +110,13 @@ func (s *sheet) joinRows() {
 		}
 	}
 	s.lines = kept
+}
+
+// clear reports whether b is printed beside, not over, line i and the parts
+// already joined to it.
+func (s *sheet) clear(b *line, i int, parts []int) bool {
+	over := func(o *line) bool { return min(o.x1, b.x1)-max(o.x0, b.x0) > b.size }
+	return !over(&s.lines[i]) && !slices.ContainsFunc(parts, func(k int) bool { return over(&s.lines[k]) })
 }
 
 // stacks groups the lines by the gutters beside them and cuts a group where

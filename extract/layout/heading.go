@@ -41,10 +41,16 @@ func (a *arranger) headingLine(l *line) bool {
 		return true
 	case allCaps(text) && len(text) >= 6 && len(text) <= 90 && letterShare(text) >= 75:
 		return true
-	case numberedDeep.MatchString(text) && len(text) <= 90 && !ended(text) && letterShare(text) >= 60:
+	case numberedDeep.MatchString(text) && len(text) <= 90 && !ended(text) && !sentenceIn(text) && letterShare(text) >= 60:
 		return true
 	}
 	return false
+}
+
+// sentenceIn reports whether a sentence ends inside a numbered line: the
+// heading is then run in with the text.
+func sentenceIn(text string) bool {
+	return strings.Contains(strings.TrimLeft(text, "0123456789. "), ". ")
 }
 
 // knownTitle reports whether a line is one of the headings that papers have,

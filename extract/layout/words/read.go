@@ -140,7 +140,7 @@ func lines(p *paper.GlyphPage, items []item) []Line {
 	assignRows(chunks)
 	attachShifted(chunks)
 	var out []Line
-	for _, row := range rowsOf(chunks) {
+	for _, row := range rowsOf(p, chunks) {
 		out = append(out, segments(p, row)...)
 	}
 	slices.SortStableFunc(out, func(a, b Line) int {
@@ -195,31 +195,92 @@ func assignRows(chunks []chunk) {
 }
 
 // rowsOf gathers the items of each row, from left to right. Chunks that were
-// attached to another row come with it.
-func rowsOf(chunks []chunk) [][]item {
+// attached to another row come with it. What is printed over other text of its
+// row makes a row of its own, so that the two do not mix; a second copy of the
+// same glyphs on the same spot is dropped.
+func rowsOf(p *paper.GlyphPage, chunks []chunk) [][]item {
 	n := 0
 	for i := range chunks {
 		n = max(n, chunks[i].row+1)
 	}
-	size := make([]int, n)
+	members := make([][]int, n)
 	for i := range chunks {
-		size[chunks[i].row] += len(chunks[i].items)
+		members[chunks[i].row] = append(members[chunks[i].row], i)
 	}
-	rows := make([][]item, n)
-	for i := range chunks {
-		c := &chunks[i]
-		if rows[c.row] == nil {
-			rows[c.row] = make([]item, 0, size[c.row])
+	rows := make([][]item, 0, n)
+	for _, m := range members {
+		for _, layer := range layers(p, chunks, m) {
+			var r []item
+			for _, i := range layer {
+				for _, it := range chunks[i].items {
+					it.shift = chunks[i].shift
+					r = append(r, it)
+				}
+			}
+			slices.SortStableFunc(r, func(a, b item) int { return cmp.Compare(a.x0, b.x0) })
+			if len(r) > 0 {
+				rows = append(rows, r)
+			}
 		}
-		for _, it := range c.items {
-			it.shift = c.shift
-			rows[c.row] = append(rows[c.row], it)
-		}
-	}
-	for _, r := range rows {
-		slices.SortStableFunc(r, func(a, b item) int { return cmp.Compare(a.x0, b.x0) })
 	}
 	return rows
+}
+
+const maxLayers = 8
+
+// layers parts the chunks of a row so that none stands over another of its
+// layer.
+func layers(p *paper.GlyphPage, chunks []chunk, members []int) [][]int {
+	out := [][]int{nil}
+	for _, i := range members {
+		c := &chunks[i]
+		k := 0
+		for ; k < min(len(out), maxLayers) && len(c.items) > 2; k++ {
+			over := slices.IndexFunc(out[k], func(o int) bool { return covers(&chunks[o], c) })
+			if over < 0 {
+				break
+			}
+			c.items = without(p, c.items, chunks[out[k][over]].items)
+			if len(c.items) <= 2 {
+				break
+			}
+		}
+		if k == len(out) && k < maxLayers {
+			out = append(out, nil)
+		}
+		k = min(k, maxLayers-1)
+		out[k] = append(out[k], i)
+	}
+	return out
+}
+
+// covers reports whether two chunks stand over one another for more than half
+// of the shorter one.
+func covers(a, b *chunk) bool {
+	return len(a.items) > 2 && (min(a.x1, b.x1)-max(a.x0, b.x0))*2 > min(a.x1-a.x0, b.x1-b.x0)
+}
+
+// without gives the items that are no copy of one in other on the same spot,
+// provided that nearly all are copies; else all of them.
+func without(p *paper.GlyphPage, items, other []item) []item {
+	var own []item
+	k := 0
+	for _, it := range items {
+		for k < len(other) && other[k].x0 < it.x0-it.size/8 {
+			k++
+		}
+		twin := false
+		for j := k; j < len(other) && other[j].x0 <= it.x0+it.size/8; j++ {
+			twin = twin || p.Glyphs[other[j].glyph].Text == p.Glyphs[it.glyph].Text
+		}
+		if !twin {
+			own = append(own, it)
+		}
+	}
+	if len(own)*10 > len(items) {
+		return items
+	}
+	return own
 }
 
 func abs(x int) int {
