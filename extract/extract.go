@@ -5,6 +5,7 @@ import (
 	"fmt"
 
 	"halfspan/extract/bind/prose"
+	"halfspan/extract/bind/table"
 	"halfspan/extract/jats"
 	"halfspan/extract/paper"
 	"halfspan/extract/plain"
@@ -40,5 +41,5 @@ func isPDF(content []byte) bool {
 
 // Find gives every result that is printed in the document, in reading order.
 func Find(doc *paper.Document) []result.Result {
-	return prose.Find(doc)
+	return merge(prose.Find(doc), table.Find(doc))
 }

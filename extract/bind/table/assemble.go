@@ -1,0 +1,297 @@
+package table
+
+import (
+	"halfspan/extract/grammar"
+	"halfspan/extract/result"
+)
+
+// spot is a position in the grid.
+type spot struct{ r, c int }
+
+// assembly joins the estimates of a table with the spreads that stand in other
+// cells: the next column, the row below.
+type assembly struct {
+	f    *frame
+	at   map[spot][]*estimate
+	list []*estimate
+	lost []spread // spreads that no estimate was found for
+	cols map[int]map[int]role
+	rows []role
+}
+
+// assemble reads all body cells of the frame in order.
+func (f *frame) assemble() *assembly {
+	a := &assembly{f: f, at: map[spot][]*estimate{}, rows: make([]role, f.tab.Rows)}
+	var orphans []spread
+	for r := f.head; r < f.tab.Rows; r++ {
+		k := f.lines[r].kind
+		if k == lineNone || k == lineHead {
+			continue
+		}
+		a.rows[r] = f.rowRole(r)
+		if rk := a.rows[r].kind; rk == roleP || rk == roleTest || rk == roleN {
+			continue
+		}
+		for c := f.stub; c < f.tab.Cols; c++ {
+			orphans = append(orphans, a.read(r, c)...)
+		}
+	}
+	for i := range orphans {
+		a.attach(orphans[i])
+	}
+	return a
+}
+
+// read takes the estimates of one cell; numbers in a column or row that holds
+// only spreads come back as spreads without an estimate.
+func (a *assembly) read(r, c int) []spread {
+	f := a.f
+	if f.cellAt(r, c) == nil {
+		return nil
+	}
+	col := f.columnRole(r, c)
+	switch col.kind {
+	case roleP, roleTest, roleN:
+		return nil
+	}
+	ests, orphans := f.estimatesIn(r, c)
+	own := a.rows[r]
+	if own.kind != roleSpread && own.kind != roleBound {
+		own = role{}
+		if col.kind == roleSpread || col.kind == roleBound {
+			own = col
+		}
+	}
+	for i := range orphans {
+		orphans[i].own = own
+	}
+	for _, e := range ests {
+		if own.kind != roleNone && len(e.spreads) == 0 {
+			orphans = append(orphans, spread{shape: shapePlain, value: e.value, item: grammar.Item{Kind: grammar.KindNumber, Span: e.value.Span, Value: e.value},
+				cell: e.cell, row: r, col: c, own: own})
+			continue
+		}
+		a.at[spot{r, c}] = append(a.at[spot{r, c}], e)
+		a.list = append(a.list, e)
+	}
+	return orphans
+}
+
+// attach finds the estimate of a spread that stands in a cell of its own.
+func (a *assembly) attach(sp spread) {
+	f := a.f
+	inRow := a.rows[sp.row].kind == roleSpread || a.rows[sp.row].kind == roleBound
+	switch {
+	case inRow:
+		if e := a.above(sp); e != nil {
+			a.join(e, sp)
+			return
+		}
+	case f.lines[sp.row].kind == lineContinue:
+		if e := a.left(sp); e != nil && len(e.spreads) == 0 {
+			a.join(e, sp)
+			return
+		}
+		if e := a.under(sp); e != nil {
+			a.join(e, sp)
+			return
+		}
+	default:
+		if e := a.left(sp); e != nil {
+			a.join(e, sp)
+			return
+		}
+	}
+	a.lost = append(a.lost, sp)
+}
+
+// join hangs the spread on the estimate; a lower and an upper bound in columns
+// of their own make one interval.
+func (a *assembly) join(e *estimate, sp spread) {
+	if sp.shape == shapePlain && (sp.own.kind == roleBound || a.pairOfBounds(sp)) {
+		for i := range e.spreads {
+			o := &e.spreads[i]
+			if o.shape == shapeInterval && o.own.label.cell == sp.own.label.cell && o.upper.IsZero() || o.own.kind == roleBound && o.upper.IsZero() && o.shape == shapeInterval {
+				o.upper = sp.value
+				return
+			}
+		}
+		sp.shape, sp.lower = shapeInterval, sp.value
+		e.spreads = append(e.spreads, sp)
+		return
+	}
+	e.spreads = append(e.spreads, sp)
+}
+
+// pairOfBounds reports that one heading of an interval spans the column of the
+// spread and a neighbour with single numbers.
+func (a *assembly) pairOfBounds(sp spread) bool {
+	cell := sp.own.label.cell
+	if cell == nil || cell.ColSpan != 2 || len(sp.own.pairs) == 0 {
+		return false
+	}
+	switch sp.own.pairs[0].Spread {
+	case grammar.SpreadCI, grammar.SpreadIQR, grammar.SpreadRange:
+		return true
+	}
+	return false
+}
+
+// left finds the estimate that a spread in its own column belongs to: the
+// nearest to the left under the same outer headings.
+func (a *assembly) left(sp spread) *estimate {
+	f := a.f
+	path := f.path(sp.row, sp.col)
+	for c := sp.col - 1; c >= f.stub; c-- {
+		r := sp.row
+		if cell := f.grid[r][c]; cell != nil && cell.Row != r {
+			r = cell.Row
+		}
+		ests := a.at[spot{r, c}]
+		if len(ests) == 0 {
+			if k := f.columnRole(r, c).kind; k == roleN || k == roleP || k == roleTest || k == roleSpread || k == roleBound || k == rolePercent || f.blank(r, c) {
+				continue
+			}
+			return nil
+		}
+		e := ests[0]
+		if !sameOuter(path, f.path(r, c)) {
+			return nil
+		}
+		if a.accepts(e, sp) {
+			return e
+		}
+		return nil
+	}
+	return nil
+}
+
+// sameOuter reports that two column paths agree in all but their lowest
+// heading, as far as both have outer headings.
+func sameOuter(a, b []label) bool {
+	n := min(len(a), len(b)) - 1
+	for i := 0; i < n; i++ {
+		if a[i].cell != b[i].cell && a[i].text != b[i].text {
+			return false
+		}
+	}
+	return true
+}
+
+// accepts reports that the estimate may own the spread: its column is headed by
+// a statistic, or it has no spread yet and the bounds hold it.
+func (a *assembly) accepts(e *estimate, sp spread) bool {
+	f := a.f
+	col := f.columnRole(e.row, e.col)
+	path := f.path(e.row, e.col)
+	statistic := (col.kind == roleEstimate || col.kind == roleBoth) && (len(path) == 0 || col.label.cell == path[len(path)-1].cell || len(e.spreads) == 0)
+	row := a.rows[e.row]
+	if row.kind == roleEstimate || row.kind == roleBoth {
+		statistic = statistic || len(e.spreads) == 0
+	}
+	if sp.shape == shapeInterval {
+		if len(e.spreads) > 0 && !statistic {
+			return false
+		}
+		return statistic || holds(sp.lower, sp.upper, e.value)
+	}
+	if sp.shape == shapePlain && sp.own.kind != roleSpread && sp.own.kind != roleBound {
+		return false
+	}
+	return statistic || len(e.spreads) == 0 || sp.own.kind == roleBound
+}
+
+// holds reports that the bounds hold the estimate, whichever stands first.
+func holds(lower, upper, est grammar.Number) bool {
+	l, ok1 := lower.Float()
+	u, ok2 := upper.Float()
+	v, ok3 := est.Float()
+	if !ok3 || !ok1 && !ok2 {
+		return false
+	}
+	if !ok1 {
+		return v <= u
+	}
+	if !ok2 {
+		return v >= l
+	}
+	return min(l, u) <= v && v <= max(l, u)
+}
+
+// above finds the estimate for a spread in a row of its own: in the same column
+// and block, the nearest; quartiles and ranges prefer a median.
+func (a *assembly) above(sp spread) *estimate {
+	f := a.f
+	var near *estimate
+	wantMedian := false
+	if ps := a.rows[sp.row].pairs; len(ps) > 0 {
+		wantMedian = ps[0].Spread == grammar.SpreadRange || ps[0].Spread == grammar.SpreadIQR
+	}
+	for r := sp.row - 1; r >= f.head; r-- {
+		ln := &f.lines[r]
+		if ln.kind == lineNone {
+			continue
+		}
+		if ln.kind == lineHead || !sameGroups(ln, &f.lines[sp.row], r) {
+			break
+		}
+		if ln.kind == lineGroup {
+			break
+		}
+		c := sp.col
+		if cell := f.grid[r][c]; cell != nil {
+			c = cell.Col
+		}
+		for _, e := range a.at[spot{r, c}] {
+			if near == nil {
+				near = e
+			}
+			if wantMedian && a.rowStatistic(r) == string(result.Median) {
+				return e
+			}
+		}
+		if near != nil && (!wantMedian || a.rows[r].kind == roleNone) {
+			break
+		}
+	}
+	return near
+}
+
+func (a *assembly) rowStatistic(r int) string {
+	for _, p := range a.rows[r].pairs {
+		if p.Statistic != "" {
+			return p.Statistic
+		}
+	}
+	return ""
+}
+
+// sameGroups reports that row r stands under the same group labels as the row
+// of x, or is itself the row that x's row is set under.
+func sameGroups(y, x *line, r int) bool {
+	if len(x.groups) > 0 && x.groups[len(x.groups)-1] == r {
+		return true
+	}
+	if len(y.groups) != len(x.groups) {
+		return len(y.groups) < len(x.groups) && len(y.groups) > 0 && y.groups[len(y.groups)-1] == x.groups[len(y.groups)-1] && false
+	}
+	for i := range y.groups {
+		if y.groups[i] != x.groups[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// under finds the estimate in the same column of the row that a row with a
+// blank stub goes on with.
+func (a *assembly) under(sp spread) *estimate {
+	for r := sp.row - 1; r >= a.f.lines[sp.row].above; r-- {
+		for _, e := range a.at[spot{r, sp.col}] {
+			if len(e.spreads) == 0 {
+				return e
+			}
+		}
+	}
+	return nil
+}

@@ -1,0 +1,505 @@
+package table
+
+import (
+	"fmt"
+	"regexp"
+	"strings"
+
+	"halfspan/extract/paper"
+)
+
+// context is whom and what an estimate is about, with the labels it was read
+// from.
+type context struct {
+	arm, arm2, time, subgroup, outcome, unit, heading string
+	armAt, timeAt, outcomeAt, unitAt                  label
+	armFrom, timeFrom, outcomeFrom                    string
+	contrast                                          bool // between arms
+	change                                            bool
+	timeGuess                                         bool // the time rests on the caption
+	armGuess                                          bool
+	outcomeGuess                                      bool
+}
+
+// kind of a part of a heading.
+type partKind uint8
+
+const (
+	partEmpty partKind = iota
+	partTime
+	partArm
+	partContrast
+	partOther
+)
+
+// part is one heading or label with what it is taken for.
+type part struct {
+	l    label
+	name string // without n, statistics and marks
+	kind partKind
+}
+
+var armWord = regexp.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard (?:care|treatment|therapy)|intervention|treatment|experimental|vehicle|wait(?:ing)?[- ]?list|arms?|groups?|comparator|active|exposed|unexposed|treated|untreated|cases)\b`)
+
+// partOf classifies one heading or label.
+func (f *frame) partOf(l label) part {
+	p := part{l: l, name: nameOf(l.text)}
+	low := fold(p.name)
+	switch {
+	case low == "":
+		p.kind = partEmpty
+		if isTimeHeading(fold(l.text)) {
+			p.kind, p.name = partTime, tidyTime(l.text)
+		}
+	case isPHeading(low) || isCountHeading(low):
+		p.kind, p.name = partEmpty, ""
+	case isContrast(low):
+		p.kind = partContrast
+	case isTimeHeading(low):
+		p.kind, p.name = partTime, tidyTime(l.text)
+	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
+		p.kind = partArm
+	default:
+		p.kind = partOther
+	}
+	return p
+}
+
+// hasArmShape keeps "All (n = 57)" apart: names with an n are arms.
+func hasArmShape(s string) bool { return len(s) < 120 }
+
+var (
+	spaceBracket = regexp.MustCompile(`\(\s*\)|\[\s*\]`)
+	edge         = " ,;:-–—/.±"
+)
+
+// nameOf takes n's, statistics and levels out of a heading: what it names.
+func nameOf(s string) string {
+	t := stripTerms(clean(s))
+	t = worded.ReplaceAllString(t, " ")
+	for k := 0; k < 3; k++ {
+		t = spaceBracket.ReplaceAllString(t, " ")
+	}
+	t = clean(t)
+	t = strings.Trim(t, edge)
+	t = unbalanced(t)
+	if !hasLetter(t) && !hasDigit(t) {
+		return ""
+	}
+	ws := words(t)
+	left := 0
+	for _, w := range ws {
+		if !statFiller[w] {
+			left++
+		}
+	}
+	if left == 0 {
+		return ""
+	}
+	return t
+}
+
+var statFiller = map[string]bool{"value": true, "values": true, "adj": true, "adjusted": true, "unadjusted": true, "crude": true, "estimate": true,
+	"estimates": true, "est": true, "of": true, "the": true, "and": true, "or": true, "in": true, "for": true, "as": true, "dif": true, "diff": true,
+	"statistic": true, "statistics": true, "a": true, "b": true, "m": true, "min": true, "max": true, "std": true, "error": true, "score": false, "to": true,
+	"unless": true, "otherwise": true, "stated": true, "data": true, "are": true, "is": true, "estimated": true, "observed": true, "multivariate": true, "univariate": true,
+	"multivariable": true, "univariable": true, "model": true}
+
+// unbalanced drops a bracket that lost its partner when terms were taken out.
+func unbalanced(s string) string {
+	for _, pr := range [][2]string{{"(", ")"}, {"[", "]"}} {
+		o, c := strings.Count(s, pr[0]), strings.Count(s, pr[1])
+		if o > c && strings.HasSuffix(s, pr[0]) {
+			s = strings.TrimSuffix(s, pr[0])
+		}
+		if c > o && strings.HasSuffix(s, pr[1]) {
+			s = strings.TrimSuffix(s, pr[1])
+		} else if o > c {
+			if k := strings.LastIndex(s, pr[0]); k > 0 && len(s)-k < 4 {
+				s = s[:k]
+			}
+		}
+	}
+	return strings.Trim(s, edge)
+}
+
+var contrastWord = regexp.MustCompile(`(?i)\bdifferences?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of effect\b|\beffect estimates?\b|\bminus\b`)
+
+func isContrast(low string) bool { return contrastWord.MatchString(low) }
+
+// isArm reports that the folded name is an arm by its words or because a table
+// of the paper gives it an n.
+func (f *frame) isArm(low string) bool {
+	if f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
+		return true
+	}
+	return armWord.MatchString(low) && len(words(low)) <= 6 && !strings.Contains(low, "(") && !outcomeWord.MatchString(low)
+}
+
+var outcomeWord = regexp.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
+
+// axes settles which of rows and columns name the arms.
+func (f *frame) findAxes() {
+	arms, rows := 0, 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind != lineData || len(ln.labels) == 0 || f.rowRole(r).kind == roleP {
+			continue
+		}
+		rows++
+		if f.partOf(ln.labels[len(ln.labels)-1]).kind == partArm {
+			arms++
+		}
+	}
+	stubArm := false
+	for c := 0; c < f.stub; c++ {
+		for _, l := range f.heads[c] {
+			switch strings.Trim(fold(l.text), " s:") {
+			case "group", "treatment group", "treatment", "arm", "study arm", "study group", "intervention", "allocation", "regimen", "treatment arm":
+				stubArm = true
+			}
+		}
+	}
+	colArm := false
+	for c := f.stub; c < f.tab.Cols; c++ {
+		for _, l := range f.heads[c] {
+			if f.partOf(l).kind == partArm {
+				colArm = true
+			}
+		}
+	}
+	f.armRows = rows > 0 && (2*arms >= rows || stubArm && !colArm)
+	if colArm && f.armRows && 10*arms < 8*rows {
+		f.armRows = false
+	}
+	f.colArms = !f.armRows && (colArm || f.namedColumns() >= 2)
+}
+
+// namedColumns counts the different names over data columns that are neither
+// times nor contrasts.
+func (f *frame) namedColumns() int {
+	seen := map[string]bool{}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if f.pColumn(c) {
+			continue
+		}
+		for _, l := range f.heads[c] {
+			if p := f.partOf(l); p.kind == partOther || p.kind == partArm {
+				seen[fold(p.name)] = true
+			}
+		}
+	}
+	return len(seen)
+}
+
+// armsInColumns reports that column headings name the arms.
+func (f *frame) armsInColumns() bool { return f.colArms }
+
+// otherArms gives the folded names of the table's arms other than arm.
+func (f *frame) otherArms(arm string) []string {
+	var out []string
+	for _, a := range f.armNames() {
+		if w := armWords(a); w != armWords(arm) {
+			out = append(out, w)
+		}
+	}
+	return out
+}
+
+// armNames gives the names of the arms in the order of print.
+func (f *frame) armNames() []string {
+	if f.armList != nil {
+		return f.armList
+	}
+	seen := map[string]bool{}
+	out := []string{}
+	add := func(name string) {
+		k := armWords(name)
+		if k != "" && !seen[k] {
+			seen[k] = true
+			out = append(out, name)
+		}
+	}
+	if f.colArms {
+		for c := f.stub; c < f.tab.Cols; c++ {
+			if name := f.armOfColumn(f.head, c); name != "" && !f.pColumn(c) {
+				add(name)
+			}
+		}
+	}
+	if f.armRows {
+		for r := f.head; r < f.tab.Rows; r++ {
+			if ln := &f.lines[r]; ln.kind == lineData && len(ln.labels) > 0 {
+				if p := f.partOf(ln.labels[len(ln.labels)-1]); p.kind == partArm {
+					add(p.name)
+				}
+			}
+		}
+	}
+	f.armList = out
+	return out
+}
+
+var generic = map[string]bool{"treatment group": true, "treatment groups": true, "study group": true, "study groups": true, "group": true, "groups": true, "treatment": true,
+	"between groups": true, "group assignment": true, "treatment arm": true, "arm": true, "arms": true, "study arm": true, "intervention groups": true, "randomised group": true, "randomized group": true, "allocation": true, "treatment allocation": true, "treatments": true}
+
+// armOfColumn joins the headings over a column that name its arm.
+func (f *frame) armOfColumn(r, c int) string {
+	var names []string
+	for _, l := range f.path(r, c) {
+		p := f.partOf(l)
+		if p.kind == partArm || p.kind == partOther {
+			if generic[fold(p.name)] {
+				continue
+			}
+			names = append(names, p.name)
+		}
+		if p.kind == partContrast {
+			return ""
+		}
+	}
+	return joinPath(names, ", ")
+}
+
+// contextOf finds whom and what an estimate is about.
+func (f *frame) contextOf(e *estimate) *context {
+	x := &context{}
+	f.columnContext(e, x)
+	f.rowContext(e, x)
+	f.captionContext(e, x)
+	if x.contrast {
+		f.contrastArms(e, x)
+	}
+	x.heading = f.headingText(e)
+	f.unitOf(e, x)
+	return x
+}
+
+func (f *frame) columnContext(e *estimate, x *context) {
+	var arms, times []string
+	for _, l := range f.path(e.row, e.col) {
+		p := f.partOf(l)
+		if changeMark.MatchString(fold(l.text)) {
+			x.change = true
+		}
+		switch p.kind {
+		case partTime:
+			times = append(times, p.name)
+			x.timeAt, x.timeFrom = l, f.columnName(e.col)
+		case partContrast:
+			x.contrast = true
+			f.parseContrast(l, x)
+			if t := timeIn(l.text); t != "" {
+				times = append(times, t)
+				x.timeAt, x.timeFrom = l, f.columnName(e.col)
+			}
+		case partArm, partOther:
+			if generic[fold(p.name)] {
+				continue
+			}
+			if f.armRows {
+				x.outcome = joinPath([]string{x.outcome, p.name}, ", ")
+				x.outcomeAt, x.outcomeFrom = l, f.columnName(e.col)
+				continue
+			}
+			name := p.name
+			if t := timeIn(name); t != "" && p.kind == partOther {
+				times = append(times, t)
+				x.timeAt, x.timeFrom = l, f.columnName(e.col)
+			}
+			arms = append(arms, name)
+			x.armAt = l
+		}
+	}
+	if f.colArms || len(arms) > 0 && !f.armRows {
+		if !x.contrast || x.arm == "" {
+			x.arm = joinPath(arms, ", ")
+		}
+		x.armFrom = f.columnName(e.col)
+	}
+	x.time = joinPath(times, ", ")
+}
+
+func (f *frame) rowContext(e *estimate, x *context) {
+	ln := &f.lines[e.row]
+	var outcome, subs []string
+	take := func(l label, own bool) {
+		p := f.partOf(l)
+		if changeMark.MatchString(fold(l.text)) {
+			x.change = true
+		}
+		switch {
+		case p.kind == partTime:
+			x.time = joinPath([]string{x.time, p.name}, ", ")
+			x.timeAt, x.timeFrom = l, "row label"
+		case p.kind == partContrast && parseVs(p.name) != nil:
+			x.contrast = true
+			f.parseContrast(l, x)
+			if rest := strings.Trim(beforeFor(p.name), edge); rest != "" {
+				outcome = append(outcome, rest)
+			}
+		case p.kind == partContrast:
+			x.contrast = x.contrast || !f.colArms || strings.Contains(fold(p.name), "between") || strings.Contains(fold(p.name), "treatment difference")
+			outcome = append(outcome, p.name)
+		case p.kind == partArm && (f.armRows || !f.colArms):
+			x.arm = joinPath([]string{x.arm, p.name}, ", ")
+			x.armAt, x.armFrom = l, "row label"
+		case p.kind == partArm && own && len(ln.groups) > 0 && nPhrase.MatchString(l.text):
+			subs = append(subs, p.name)
+			outcome = append(outcome, p.name)
+		case p.kind == partEmpty:
+		default:
+			if own && f.subgroupLike(p.name) {
+				subs = append(subs, p.name)
+			}
+			outcome = append(outcome, p.name)
+			if t := timeIn(p.name); t != "" && x.time == "" {
+				x.time, x.timeAt, x.timeFrom = t, l, "row label"
+			}
+			x.outcomeAt, x.outcomeFrom = l, "row label"
+		}
+	}
+	for _, g := range ln.groups {
+		for _, l := range f.lines[g].labels {
+			take(l, false)
+		}
+	}
+	for _, l := range ln.labels {
+		take(l, true)
+	}
+	if len(outcome) > 0 {
+		if x.outcome == "" {
+			x.outcome = joinPath(outcome, ", ")
+		} else {
+			x.outcome = joinPath([]string{joinPath(outcome, ", "), x.outcome}, ", ")
+		}
+	}
+	x.subgroup = joinPath(subs, ", ")
+}
+
+var subgroupName = regexp.MustCompile(`(?i)^(?:all|total|overall|males?|females?|men|women|boys?|girls?|yes|no|low|medium|moderate|high|easy|difficult|insufficient|good|poor|normal|overweight|obese|underweight|single|married|present|absent|combined|[<>≤≥]?\s*\d+(?:\.\d+)?\s*(?:[-–]\s*\d+(?:\.\d+)?)?(?:\s*(?:years?|yrs?|y))?(?:\s*or (?:more|less|older|younger))?)$`)
+
+func (f *frame) subgroupLike(name string) bool { return subgroupName.MatchString(name) }
+
+var baselineCaption = regexp.MustCompile(`(?i)\bbaseline\b|\bdemographics?\b|\bcharacteristics of\b|\b(?:patient|participant|subject|clinical|sociodemographic|demographic|general)s?['’]? characteristics\b`)
+
+// captionContext fills in from the caption what rows and columns leave open.
+func (f *frame) captionContext(e *estimate, x *context) {
+	capt := f.tab.Caption.S
+	l := label{text: clean(capt), raw: clean(capt)}
+	if x.time == "" {
+		switch ts := timesIn(capt); {
+		case len(ts) == 1:
+			x.time, x.timeAt, x.timeFrom, x.timeGuess = ts[0], l, "caption", true
+		case baselineCaption.MatchString(capt) && len(ts) == 0:
+			x.time, x.timeAt, x.timeFrom, x.timeGuess = "baseline", l, "caption", true
+		}
+	}
+	if x.arm == "" && !x.contrast {
+		if m := captionArm.FindStringSubmatch(clean(capt)); m != nil {
+			x.arm, x.armAt, x.armFrom, x.armGuess = m[1], l, "caption", true
+		}
+	}
+	if x.outcome == "" {
+		x.outcome, x.outcomeAt, x.outcomeFrom, x.outcomeGuess = shorten(captionOutcome(capt), 160), l, "caption", true
+	}
+	if changeMark.MatchString(fold(capt)) {
+		x.change = x.change || changeCaption.MatchString(fold(capt))
+	}
+}
+
+var (
+	captionArm    = regexp.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
+	changeCaption = regexp.MustCompile(`(?i)\bmean changes?\b|\bchanges? (?:in|from|of|scores?)\b|\bchange scores?\b`)
+)
+
+func captionOutcome(s string) string {
+	s = clean(s)
+	if k := strings.Index(s, ". "); k > 20 {
+		s = s[:k]
+	}
+	return nameOf(s)
+}
+
+// timeIn finds the time point named in a longer text, with a number in it or
+// one of the fixed names.
+func timeIn(s string) string {
+	ts := timesIn(s)
+	if len(ts) == 0 {
+		return ""
+	}
+	return ts[0]
+}
+
+func timesIn(s string) []string {
+	var out []string
+	seen := map[string]bool{}
+	for _, m := range timeMark.FindAllString(clean(s), -1) {
+		low := fold(m)
+		if !hasDigit(low) {
+			switch low {
+			case "baseline", "screening", "follow-up", "followup", "endpoint", "discharge", "admission":
+			default:
+				if !strings.HasPrefix(low, "end of") && !strings.HasPrefix(low, "pre") && !strings.HasPrefix(low, "post") || len(low) < 6 {
+					continue
+				}
+			}
+		} else if !longUnit.MatchString(low) {
+			continue
+		}
+		if !seen[low] {
+			seen[low] = true
+			out = append(out, strings.Trim(tidyTime(m), edge))
+		}
+	}
+	return out
+}
+
+var longUnit = regexp.MustCompile(`week|wk|month|mo\b|day|year|hour|visit|session|cycle|minute|\bmin\b|period|phase|wave|trimester|quarter`)
+
+var leadTime = regexp.MustCompile(`(?i)^(?:at|after|by|from|in|within|until|on|for|to) (?:the )?`)
+
+// tidyTime gives a time heading in one form: without statistics, n's and
+// leading prepositions that vary.
+func tidyTime(s string) string {
+	t := nameOf(s)
+	if t == "" {
+		t = clean(s)
+	}
+	low := fold(t)
+	for _, pre := range []string{"at ", "by "} {
+		if strings.HasPrefix(low, pre) {
+			t = t[len(pre):]
+		}
+	}
+	return strings.Trim(t, edge)
+}
+
+// headingText joins the headings as printed, columns first.
+func (f *frame) headingText(e *estimate) string {
+	var parts []string
+	for _, l := range f.path(e.row, e.col) {
+		parts = append(parts, l.raw)
+	}
+	ln := &f.lines[e.row]
+	for _, g := range ln.groups {
+		for _, l := range f.lines[g].labels {
+			parts = append(parts, l.raw)
+		}
+	}
+	for _, l := range ln.labels {
+		parts = append(parts, l.raw)
+	}
+	return joinPath(parts, " | ")
+}
+
+// columnName names column c for a reader: "heading of column 3".
+func (f *frame) columnName(c int) string { return fmt.Sprintf("heading of column %d", c+1) }
+
+// placeOf gives where a label stands.
+func placeOf(l label) paper.Place {
+	if l.cell == nil {
+		return paper.Place{}
+	}
+	return l.cell.Text.Between(0, len(l.cell.Text.S))
+}

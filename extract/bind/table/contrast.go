@@ -1,0 +1,114 @@
+package table
+
+import (
+	"regexp"
+	"strings"
+)
+
+var vsForm = regexp.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] )\s*(.+)$`)
+
+// parseVs splits "A vs B", "A minus B", "A − B" into its arms.
+func parseVs(s string) []string {
+	m := vsForm.FindStringSubmatch(clean(s))
+	if m == nil {
+		return nil
+	}
+	a, b := strings.Trim(m[1], edge+"()"), strings.Trim(m[2], edge)
+	b = strings.Trim(cutAt(b, " (", " for ", " at ", ", "), edge+"()")
+	if !hasLetter(a) && !hasDigit(a) || !hasLetter(b) && !hasDigit(b) || len(a) > 80 || len(b) > 80 {
+		return nil
+	}
+	return []string{a, b}
+}
+
+// cutAt cuts s at the first of the marks.
+func cutAt(s string, marks ...string) string {
+	for _, m := range marks {
+		if k := strings.Index(s, m); k > 0 {
+			s = s[:k]
+		}
+	}
+	return s
+}
+
+// beforeFor gives what is compared in "Odds ratio of A vs B for recovery".
+func beforeFor(s string) string {
+	if k := strings.LastIndex(fold(s), " for "); k > 0 && k+5 < len(s) {
+		return s[k+5:]
+	}
+	return ""
+}
+
+// parseContrast takes the two arms from a heading of a difference.
+func (f *frame) parseContrast(l label, x *context) {
+	name := nameOf(l.text)
+	if ab := parseVs(name); ab != nil {
+		x.arm, x.arm2 = ab[0], ab[1]
+		x.armAt, x.armFrom = l, "heading"
+	}
+}
+
+var (
+	minusNote = regexp.MustCompile(`(?i)\b(?:differences?|estimates?|effects?)\b[^.;]{0,40}?\b(?:is|are|was|were|=|calculated as|defined as|as)\s+(?:the )?([\w+/ -]{2,40}?)\s+(?:minus|versus|vs\.?|compared with|[-–−])\s+(?:the )?([\w+/ -]{2,40}?)(?:[.,;)]|$)`)
+	controls  = regexp.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard care|vehicle|wait(?:ing)?[- ]?list|no (?:treatment|intervention)|natural course|comparator|saline|water)\b`)
+	overOne   = regexp.MustCompile(`(?i)\b(?:over|versus|vs\.?|minus|compared (?:with|to)|relative to|against)\s+(?:the )?(placebo|controls?|sham|usual care|vehicle|[A-Z][\w-]*)\b`)
+)
+
+// contrastArms fills in the arms of a difference that its heading leaves open:
+// from a note, from "over placebo", from the table's two arms.
+func (f *frame) contrastArms(e *estimate, x *context) {
+	if x.arm2 != "" {
+		x.arm, x.arm2 = f.fullArm(x.arm), f.fullArm(x.arm2)
+		return
+	}
+	for _, n := range f.notes.list {
+		if m := minusNote.FindStringSubmatch(clean(n.run.S)); m != nil {
+			a, b := f.fullArm(m[1]), f.fullArm(m[2])
+			x.arm, x.arm2 = a, b
+			x.armAt, x.armFrom = label{text: clean(n.run.S), raw: clean(n.run.S)}, n.from
+			return
+		}
+	}
+	arms := f.armNames()
+	if x.arm == "" && len(arms) == 2 {
+		a, b := arms[0], arms[1]
+		if controls.MatchString(a) && !controls.MatchString(b) {
+			a, b = b, a
+		}
+		x.arm, x.arm2, x.armFrom = a, b, "the table's two arms"
+		return
+	}
+	ln := &f.lines[e.row]
+	for _, l := range append(append([]label{}, ln.labels...), f.path(e.row, e.col)...) {
+		if m := overOne.FindStringSubmatch(l.text); m != nil {
+			if x.arm != "" {
+				x.arm2 = f.fullArm(m[1])
+				return
+			}
+		}
+	}
+	x.armGuess = true
+}
+
+// fullArm gives the printed name of the arm that a short form means.
+func (f *frame) fullArm(s string) string {
+	w := armWords(s)
+	if w == "" {
+		return s
+	}
+	hit, hits := "", 0
+	for _, a := range f.armNames() {
+		o := armWords(a)
+		if o == w {
+			return a
+		}
+		if strings.Contains(o, w) {
+			hit = a
+			hits++
+		}
+	}
+	if hits == 1 {
+		return hit
+	}
+	return s
+}

@@ -1,0 +1,287 @@
+package table
+
+import (
+	"strconv"
+	"strings"
+
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// armSize is the n that a table's heading gives an arm.
+type armSize struct {
+	name  string // armWords of the arm
+	n     int
+	table int
+	l     label
+}
+
+// findArmSizes gathers the arms with an n in the headings of all tables.
+func (b *binder) findArmSizes() {
+	for i, f := range b.frames {
+		if f == nil {
+			continue
+		}
+		seen := map[string]bool{}
+		for c := f.stub; c < f.tab.Cols; c++ {
+			n, l, ok := f.headingN(f.tab.Rows, c)
+			if !ok {
+				continue
+			}
+			name := armWords(f.armOfColumn(f.head, c))
+			if name == "" {
+				name = armWords(nameOf(l.text))
+			}
+			key := name + strconv.Itoa(n)
+			if name == "" || seen[key] {
+				continue
+			}
+			seen[key] = true
+			b.arms = append(b.arms, armSize{name: name, n: n, table: i, l: l})
+		}
+	}
+}
+
+// size gives a result its n: from its own table, else by the arm's name from
+// another table of the paper.
+func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context) {
+	if x.contrast && x.arm2 != "" {
+		b.contrastSize(r, i, f, e, x)
+		return
+	}
+	s, ok := f.nearSize(e, x)
+	if ok && s.from == result.NHeading && f.baselineN(b) && !atBaseline(x) {
+		return // the paper says that these are the numbers at baseline
+	}
+	if !ok {
+		s, ok = b.otherSize(i, x.arm)
+		if !ok {
+			return
+		}
+	}
+	b.setN(r, s, f, x)
+}
+
+func (b *binder) setN(r *result.Result, s size, f *frame, x *context) {
+	r.N, r.NFrom, r.NKind = s.n, s.from, kindOfN(s.text+" "+f.tab.Caption.S)
+	r.Sources = append(r.Sources, result.Source{Field: "n", Place: s.place, Text: shorten(s.text, 200), From: s.words})
+	if s.from == result.NElsewhere {
+		r.Raise(FlagNElsewhere, "read from "+s.words)
+	}
+	if s.total && x.contrast {
+		r.Raise(FlagNTotal, "the n may be that of both arms together")
+	}
+	if r.NKind == result.NUnclear && (s.from == result.NHeading || s.from == result.NElsewhere) && !atBaseline(x) && x.time != "" {
+		r.Raise(FlagNKind, "the n in the heading may be that at baseline")
+	}
+}
+
+func kindOfN(s string) string {
+	low := fold(s)
+	switch {
+	case strings.Contains(low, "randomi"):
+		return result.NRandomised
+	case strings.Contains(low, "complet"):
+		return result.NCompleters
+	case strings.Contains(low, "analy"):
+		return result.NAnalysed
+	}
+	return result.NUnclear
+}
+
+// atBaseline reports that a result is about the time before treatment.
+func atBaseline(x *context) bool {
+	low := fold(x.time)
+	return low == "" && !x.change || strings.Contains(low, "baseline") && !x.change || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
+}
+
+// baselineN reports that a note says the headings' n's are those at baseline:
+// of this table, or of an earlier one whose caption begins alike.
+func (f *frame) baselineN(b *binder) bool {
+	if f.saysBaselineN() {
+		return true
+	}
+	for _, g := range b.frames {
+		if g == nil || g.num >= f.num {
+			continue
+		}
+		if g.saysBaselineN() && sameOpening(g.tab.Caption.S, f.tab.Caption.S) {
+			return true
+		}
+	}
+	return false
+}
+
+func (f *frame) saysBaselineN() bool {
+	for _, n := range f.notes.list {
+		low := fold(n.run.S)
+		if k := strings.Index(low, "baseline"); k >= 0 {
+			from := max(0, k-60)
+			around := " " + low[from:k]
+			if (strings.Contains(around, " n for ") || strings.Contains(around, " n at ") || strings.Contains(around, " n is ") || strings.Contains(around, " n's ") || strings.Contains(around, " n = ") && strings.Contains(around, "number of")) && !strings.Contains(around, ".") {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// sameOpening reports that two captions begin with the same four words.
+func sameOpening(a, b string) bool {
+	wa, wb := words(a), words(b)
+	if len(wa) < 4 || len(wb) < 4 {
+		return false
+	}
+	for i := 0; i < 4; i++ {
+		if wa[i] != wb[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// contrastSize gives a result between arms the n of each.
+func (b *binder) contrastSize(r *result.Result, i int, f *frame, e *estimate, x *context) {
+	one := func(arm string) (size, bool) {
+		if s, ok := f.armSizeIn(e, arm); ok {
+			return s, true
+		}
+		return b.otherSize(i, arm)
+	}
+	s1, ok1 := one(x.arm)
+	s2, ok2 := one(x.arm2)
+	if total, ok := f.columnSize(e, x); ok {
+		if !ok1 || !ok2 || total.n != s1.n+s2.n {
+			b.setN(r, total, f, x)
+			return
+		}
+	}
+	if f.baselineN(b) && !atBaseline(x) {
+		return
+	}
+	if ok1 {
+		b.setN(r, s1, f, x)
+	}
+	if ok2 {
+		r.N2 = s2.n
+		r.Sources = append(r.Sources, result.Source{Field: "n2", Place: s2.place, Text: shorten(s2.text, 200), From: s2.words})
+	}
+	if ok1 {
+		return
+	}
+	if s, ok := f.nearSize(e, x); ok {
+		b.setN(r, s, f, x)
+	}
+}
+
+// armSizeIn finds the n of a named arm for the row of an estimate: in the
+// column of that arm, in its row of n's, or in caption and notes.
+func (f *frame) armSizeIn(e *estimate, arm string) (size, bool) {
+	want := armWords(arm)
+	if f.colArms {
+		for c := f.stub; c < f.tab.Cols; c++ {
+			name := armWords(f.armOfColumn(e.row, c))
+			if name == "" || name != want || f.pColumn(c) || c == e.col {
+				continue
+			}
+			o := &estimate{row: e.row, col: c, cell: f.grid[e.row][c]}
+			x := &context{arm: arm}
+			if f.columnRole(e.row, c).kind == roleN {
+				if cell := f.grid[e.row][c]; cell != nil {
+					if vs := f.reads[cell].cell.Values; len(vs) == 1 {
+						if n := number(vs[0].Estimate); n > 0 {
+							return size{n: n, from: result.NBeside, words: f.columnName(c) + " of the same row", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
+						}
+					}
+				}
+			}
+			if o.cell != nil {
+				for _, v := range f.reads[o.cell].cell.Values {
+					if !v.Of.IsZero() {
+						if n := number(v.Of); n > 0 {
+							return size{n: n, from: result.NBeside, words: "denominator in the same row", text: clean(o.cell.Text.S), place: o.cell.Text.Between(v.Of.Start, v.Of.End)}, true
+						}
+					}
+				}
+			}
+			for _, find := range []func(*estimate, *context) (size, bool){f.columnSize, f.rowSize, f.markSize, f.headSize} {
+				if s, ok := find(o, x); ok {
+					return s, true
+				}
+			}
+		}
+	}
+	if f.armRows {
+		for r := f.head; r < f.tab.Rows; r++ {
+			ln := &f.lines[r]
+			if ln.kind != lineData || len(ln.labels) == 0 {
+				continue
+			}
+			l := ln.labels[len(ln.labels)-1]
+			if armWords(nameOf(l.text)) != want || !prefix(f.lines[e.row].groups, ln.groups) && len(f.lines[e.row].groups) > 0 {
+				continue
+			}
+			if n, ok := lastN(l); ok {
+				return sizeOfLabel(n, l, result.NBeside, "row label"), true
+			}
+			o := &estimate{row: r, col: e.col, cell: f.grid[r][e.col]}
+			if s, ok := f.columnSize(o, &context{}); ok && (len(ln.labels) < 2 || sameFirst(ln, &f.lines[e.row])) {
+				return s, true
+			}
+		}
+	}
+	x := &context{arm: arm}
+	if s, ok := f.noteSize(e, x); ok {
+		return s, true
+	}
+	return f.captionSize(e, x)
+}
+
+func sameFirst(a, b *line) bool {
+	return len(a.labels) > 0 && len(b.labels) > 0 && a.labels[0].text == b.labels[0].text
+}
+
+// otherSize finds the n of an arm in the headings of the paper's other tables;
+// the nearest table before, then after. Tables that disagree give the first
+// with a flag by the caller.
+func (b *binder) otherSize(i int, arm string) (size, bool) {
+	want := armWords(arm)
+	if want == "" {
+		return size{}, false
+	}
+	best, dist := -1, 1<<30
+	for k, a := range b.arms {
+		if a.table == i || a.name != want && !sameArm(a.name, want) {
+			continue
+		}
+		d := i - a.table
+		if d < 0 {
+			d = -d + 1000
+		}
+		if a.name != want {
+			d += 100
+		}
+		if d < dist {
+			best, dist = k, d
+		}
+	}
+	if best < 0 {
+		return size{}, false
+	}
+	a := b.arms[best]
+	s := sizeOfLabel(a.n, a.l, result.NElsewhere, "heading in "+tableName(b.frames[a.table]))
+	return s, true
+}
+
+// sameArm reports that one name is the other with more words: "placebo" and
+// "placebo group 50 mg" are not the same, "chemotherapy" and "chemotherapy arm"
+// are.
+func sameArm(a, b string) bool {
+	strip := func(s string) string {
+		s = strings.NewReplacer(" group", "", " arm", "", "group ", "", "the ", "", "-", " ", ".", "").Replace(s)
+		return strings.TrimSpace(s)
+	}
+	return strip(a) == strip(b) && strip(a) != ""
+}
+
+var _ = paper.Bold

@@ -1,0 +1,418 @@
+package table
+
+import (
+	"strconv"
+	"strings"
+
+	"halfspan/extract/bind/convention"
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// Find gives every result that is printed in the tables of the document, in
+// their order. Mates are indices in the slice it returns.
+func Find(doc *paper.Document) []result.Result {
+	b := newBinder(doc)
+	var out []result.Result
+	for i, f := range b.frames {
+		if f == nil {
+			continue
+		}
+		base := len(out)
+		rs := b.table(i, f)
+		for k := range rs {
+			for m := range rs[k].Mates {
+				rs[k].Mates[m] += base
+			}
+		}
+		out = append(out, rs...)
+	}
+	return out
+}
+
+// binder reads all tables of one paper together: an n or a convention may stand
+// in another table or in the text.
+type binder struct {
+	doc    *paper.Document
+	conv   *convention.Conventions
+	vocab  *vocabulary
+	frames []*frame
+	blocks []*paper.Block
+	arms   []armSize
+}
+
+func newBinder(doc *paper.Document) *binder {
+	b := &binder{doc: doc, conv: convention.Of(doc), vocab: newVocabulary(doc)}
+	for i := range doc.Blocks {
+		bl := &doc.Blocks[i]
+		if bl.Kind != paper.TableBlock || bl.Table == nil {
+			continue
+		}
+		b.blocks = append(b.blocks, bl)
+		b.frames = append(b.frames, newFrame(bl.Table, len(b.frames)+1, b.vocab))
+	}
+	for _, f := range b.frames {
+		if f != nil {
+			f.nameArms()
+		}
+	}
+	for _, f := range b.frames {
+		if f != nil {
+			f.findAxes()
+		}
+	}
+	b.findArmSizes()
+	return b
+}
+
+// nameArms puts the headings that carry an n into the paper's vocabulary.
+func (f *frame) nameArms() {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		for _, l := range f.heads[c] {
+			if _, ok := lastN(l); !ok {
+				continue
+			}
+			name := nameOf(l.text)
+			if w := armWords(name); w != "" && !isTimeHeading(fold(name)) && len(w) < 60 {
+				f.vocab.arms[w] = true
+				f.vocab.arms[fold(name)] = true
+			}
+		}
+	}
+}
+
+// table reads the results of one table.
+func (b *binder) table(i int, f *frame) []result.Result {
+	a := f.assemble()
+	var out []result.Result
+	for _, e := range a.list {
+		if len(e.spreads) == 0 {
+			continue
+		}
+		x := f.contextOf(e)
+		all := f.statements(e)
+		for k := range e.spreads {
+			if r, ok := b.result(i, f, e, &e.spreads[k], x, all); ok {
+				out = append(out, r)
+			}
+		}
+	}
+	pairMates(out)
+	return out
+}
+
+// result makes the record of one estimate with one of its spreads.
+func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, all []statement) (result.Result, bool) {
+	rd := f.meaningOf(e, sp, all)
+	if rd.count || rd.none || e.value.Value == "" {
+		return result.Result{}, false
+	}
+	r := result.Result{Section: b.blocks[i].Section, Zone: b.blocks[i].Zone, Table: tableName(f), Row: f.rowKey(e), Estimate: e.value.Value}
+	if !b.settleSpread(&r, f, e, sp, &rd, all, x) {
+		return result.Result{}, false
+	}
+	var model string
+	var assumed bool
+	r.Statistic, r.Measure, model, assumed = f.statisticOf(e, &rd, x, all)
+	if assumed {
+		r.Raise(FlagStatistic, "nothing names the statistic; taken from the kind of spread")
+	}
+	_ = model
+	b.fill(&r, f, e, sp, x, &rd)
+	f.adjustedOf(e, &rd, &r, all)
+	b.size(&r, i, f, e, x)
+	f.rowTests(&r, e)
+	b.check(&r, f, e, sp, x)
+	return r, true
+}
+
+func tableName(f *frame) string {
+	if f.tab.Label != "" {
+		return clean(f.tab.Label)
+	}
+	return "Table " + strconv.Itoa(f.num)
+}
+
+func (f *frame) rowKey(e *estimate) string {
+	r := e.row
+	if f.lines[r].kind == lineContinue {
+		r = f.lines[r].above
+	}
+	return strconv.Itoa(f.num) + ":" + strconv.Itoa(r+1)
+}
+
+// settleSpread fills in the spread; false where it is none after all.
+func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *spread, rd *reading, all []statement, x *context) bool {
+	if rd.given == result.Unstated && !rd.contrary {
+		b.fromPaper(r, sp, rd)
+	}
+	r.GivenAs = rd.given
+	r.Level = 0
+	switch sp.shape {
+	case shapeInterval:
+		r.Lower, r.Upper = printed(sp.lower), printed(sp.upper)
+		if r.Lower == "" && r.Upper == "" || sp.own.kind == roleBound && sp.upper.IsZero() {
+			return false
+		}
+		if rd.given == result.Unstated && !holds(sp.lower, sp.upper, e.value) {
+			return false
+		}
+		if sp.own.kind == roleBound && rd.given == result.Unstated {
+			rd.given, r.GivenAs = result.CI, result.CI
+		}
+	default:
+		r.GivenValue = sp.value.Value
+		if r.GivenValue == "" {
+			return false
+		}
+	}
+	if rd.given == result.CI {
+		r.Level = rd.level
+		switch {
+		case rd.level == 0:
+			if lv, ok := b.conv.Level(); ok {
+				r.Level = lv
+				r.Raise(FlagLevelElsewhere, "the level is said elsewhere in the paper")
+				r.Sources = append(r.Sources, result.Source{Field: "level", Text: strconv.FormatFloat(lv, 'g', -1, 64) + "% CI", From: "the paper's other intervals"})
+			} else {
+				r.Raise(FlagLevelMissing, "the paper nowhere says the level")
+			}
+		case rd.levelAt != nil:
+			r.Sources = append(r.Sources, result.Source{Field: "level", Place: rd.levelAt.place, Text: shorten(rd.levelAt.text, 120), From: rd.levelAt.from})
+		}
+	}
+	if rd.given == result.Unstated {
+		r.Raise(FlagSpreadUnstated, "nothing in the table or the methods says what it is")
+	}
+	if rd.contrary {
+		r.Raise(FlagCountConflict, "headed as number and percentage, which the numbers contradict")
+	}
+	if rd.ambiguous {
+		r.Raise(FlagSpreadTwice, "one statement names more than one spread for this form")
+	}
+	if rd.at.from != "" {
+		r.Sources = append(r.Sources, result.Source{Field: "given_as", Place: rd.at.place, Text: shorten(rd.at.text, 200), From: rd.at.from})
+	}
+	return true
+}
+
+// fromPaper asks the paper's declared conventions.
+func (b *binder) fromPaper(r *result.Result, sp *spread, rd *reading) {
+	var a convention.Answer
+	var ok bool
+	switch sp.shape {
+	case shapeSign:
+		a, ok = b.conv.PlusMinus(convention.Tables)
+	case shapeBracket:
+		a, ok = b.conv.Bracket(convention.Tables)
+	case shapeInterval:
+		a, ok = b.conv.Bounds(convention.Tables, result.Mean)
+		if !ok {
+			a, ok = b.conv.Bounds(convention.Tables, result.Median)
+		}
+	}
+	if !ok {
+		return
+	}
+	if a.Conflict {
+		r.Raise(FlagSpreadConflict, "the paper declares more than one meaning")
+	}
+	rd.given, rd.level = a.Spread, a.Level
+	rd.pair.Statistic = string(a.Statistic)
+	rd.at = statement{rank: rankPaper, from: "the methods", text: a.Text, place: a.Place}
+	r.Raise(FlagSpreadMethods, "said in the text of the paper, not in the table")
+}
+
+func printed(n grammar.Number) string {
+	if n.Value != "" {
+		return n.Value
+	}
+	return n.Word
+}
+
+// fill enters context, places and snippet.
+func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *context, rd *reading) {
+	r.Arm, r.Arm2, r.Time, r.Subgroup = x.arm, x.arm2, x.time, x.subgroup
+	r.Outcome, r.Unit, r.Heading = x.outcome, x.unit, x.heading
+	r.Page = e.cell.Text.At(e.value.Start).Page
+	src := func(field string, l label, text, from string) {
+		if text != "" && from != "" {
+			r.Sources = append(r.Sources, result.Source{Field: field, Place: placeOf(l), Text: shorten(l.raw, 200), From: from})
+		}
+	}
+	first := sp.value
+	if sp.shape == shapeInterval {
+		first = sp.lower
+	}
+	at := sp.cell.Text.Between(first.Start, first.End)
+	digits := r.GivenValue
+	if sp.shape == shapeInterval {
+		digits = r.Lower + " " + r.Upper
+	}
+	r.Anchor = result.AnchorAt(firstDigit(&sp.cell.Text, first), digits)
+	r.Sources = append(r.Sources, result.Source{Field: "estimate", Place: e.cell.Text.Between(e.value.Start, e.value.End), Text: e.cell.Text.S[e.value.Start:e.value.End]})
+	if sp.shape == shapeInterval {
+		r.Sources = append(r.Sources, result.Source{Field: "lower", Place: at, Text: sp.cell.Text.S[first.Start:first.End]})
+		if !sp.upper.IsZero() && sp.upper.End <= len(sp.cell.Text.S) {
+			r.Sources = append(r.Sources, result.Source{Field: "upper", Place: sp.cell.Text.Between(sp.upper.Start, sp.upper.End), Text: sp.cell.Text.S[sp.upper.Start:sp.upper.End]})
+		}
+	} else {
+		r.Sources = append(r.Sources, result.Source{Field: "given_value", Place: at, Text: sp.cell.Text.S[first.Start:first.End]})
+	}
+	src("arm", x.armAt, x.arm, x.armFrom)
+	src("time", x.timeAt, x.time, x.timeFrom)
+	src("outcome", x.outcomeAt, x.outcome, x.outcomeFrom)
+	if x.unit != "" {
+		r.Sources = append(r.Sources, result.Source{Field: "unit", Place: placeOf(x.unitAt), Text: shorten(x.unitAt.raw, 120), From: "label"})
+	}
+	r.Snippet = snippet(x, e, sp)
+	r.Evidence.Baseline = strings.Contains(fold(x.time), "baseline") || fold(x.time) == "pre" || strings.HasPrefix(fold(x.time), "before")
+	r.Evidence.Integer = false
+	if e.value.Mended || first.Mended {
+		r.Raise(FlagMended, "printed with a slip; kept as printed")
+	}
+}
+
+// firstDigit gives the place of the first digit of a number.
+func firstDigit(t *paper.TextRun, n grammar.Number) paper.Place {
+	for i := n.Start; i < n.End && i < len(t.S); i++ {
+		if t.S[i] >= '0' && t.S[i] <= '9' {
+			return t.At(i)
+		}
+	}
+	return t.At(n.Start)
+}
+
+// snippet gives the row's labels, the column's heading and the cells.
+func snippet(x *context, e *estimate, sp *spread) string {
+	s := x.heading + ": " + clean(e.cell.Text.S)
+	if sp.cell != e.cell {
+		s += " | " + clean(sp.cell.Text.S)
+	}
+	return shorten(s, 300)
+}
+
+// rowTests keeps p, t, F and df of the row, and p printed in the cell.
+func (f *frame) rowTests(r *result.Result, e *estimate) {
+	for _, it := range e.parts {
+		switch it.Kind {
+		case grammar.KindPValue:
+			r.P = it.Value.Rel + it.Value.Value
+			r.P = strings.TrimPrefix(r.P, "=")
+		case grammar.KindTest:
+			switch it.Name {
+			case "t":
+				r.T, r.DF = it.Value.Value, it.DF
+			case "F":
+				r.F, r.DF = it.Value.Value, it.DF
+			}
+		}
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		cell := f.grid[e.row][c]
+		if cell == nil || isBlankText(cell.Text.S) || cell == e.cell {
+			continue
+		}
+		role := f.columnRole(e.row, c)
+		switch role.kind {
+		case roleP:
+			if p := pText(f.reads[cell], cell); p != "" {
+				if r.Evidence.RowP == "" {
+					r.Evidence.RowP = p
+				}
+				if r.P == "" && c > e.col && f.ownsTest(e, c) {
+					r.P = p
+				}
+			}
+		case roleTest:
+			v := clean(cell.Text.S)
+			if c <= e.col || !f.ownsTest(e, c) || !hasDigit(v) {
+				continue
+			}
+			v, _ = f.notes.split(&cell.Text)
+			switch role.test {
+			case "t":
+				r.T = v
+			case "F":
+				r.F = v
+			case "df":
+				r.DF = v
+			}
+		}
+	}
+}
+
+// ownsTest reports that the test in column c is about this estimate alone: no
+// other estimate stands between them.
+func (f *frame) ownsTest(e *estimate, c int) bool {
+	for k := e.col + 1; k < c; k++ {
+		switch f.columnRole(e.row, k).kind {
+		case roleP, roleTest, roleN, roleSpread, roleBound:
+			continue
+		}
+		if cell := f.grid[e.row][k]; cell != nil && cell != e.cell && f.reads[cell].isData() {
+			return false
+		}
+	}
+	return true
+}
+
+func pText(rd *cellReading, cell *paper.Cell) string {
+	for i := range rd.cell.Values {
+		v := &rd.cell.Values[i]
+		if it := v.Part(grammar.KindPValue); it != nil {
+			return strings.TrimPrefix(it.Value.Rel+it.Value.Value, "=")
+		}
+		if !v.Estimate.IsZero() {
+			return v.Estimate.Rel + v.Estimate.Value
+		}
+	}
+	s := fold(cell.Text.S)
+	if s == "ns" || s == "n.s." || s == "n.s" {
+		return "ns"
+	}
+	return ""
+}
+
+// check raises the flags that the finished record calls for.
+func (b *binder) check(r *result.Result, f *frame, e *estimate, sp *spread, x *context) {
+	if sp.shape == shapeInterval {
+		l, ok1 := sp.lower.Float()
+		u, ok2 := sp.upper.Float()
+		switch {
+		case !ok1 || !ok2:
+			r.Raise(FlagBoundOpen, printed(sp.lower)+" to "+printed(sp.upper))
+		case l > u:
+			r.Raise(FlagReversed, r.Lower+" to "+r.Upper)
+		}
+		if ok1 && ok2 && !holds(sp.lower, sp.upper, e.value) {
+			r.Raise(FlagOutside, r.Estimate+" is not within "+r.Lower+" to "+r.Upper)
+		}
+	}
+	if x.armGuess {
+		r.Raise(FlagArmUnclear, "the arms of the comparison are not named where it stands")
+	}
+	if x.timeGuess && fold(x.time) != "baseline" {
+		r.Raise(FlagTimeUnclear, "the time is taken from the caption")
+	}
+	if x.outcomeGuess {
+		r.Raise(FlagOutcomeUnclear, "what was measured is taken from the caption")
+	}
+	if sp.cell != e.cell && sp.own.kind == roleNone {
+		r.Raise(FlagRowShape, "the spread stands in another cell and is joined by position")
+	}
+}
+
+// pairMates links the results that share estimate, arm, time and outcome.
+func pairMates(rs []result.Result) {
+	for i := range rs {
+		for k := i + 1; k < len(rs); k++ {
+			a, b := &rs[i], &rs[k]
+			if a.Estimate == b.Estimate && a.Arm == b.Arm && a.Arm2 == b.Arm2 && a.Time == b.Time && a.Outcome == b.Outcome && a.Row == b.Row {
+				a.Mates = append(a.Mates, k)
+				b.Mates = append(b.Mates, i)
+			}
+		}
+	}
+}

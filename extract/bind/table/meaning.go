@@ -1,0 +1,408 @@
+package table
+
+import (
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// rank says from how near a statement was taken.
+type rank uint8
+
+const (
+	rankCell rank = iota
+	rankRow
+	rankColumn
+	rankGroup
+	rankCaption
+	rankNote
+	rankPaper
+)
+
+// statement is one text that says how values are printed.
+type statement struct {
+	rank  rank
+	pairs []pair
+	text  string
+	from  string // in words
+	place paper.Place
+	l     label
+}
+
+// statements gives every text that may say what the values of an estimate mean,
+// the nearest first.
+func (f *frame) statements(e *estimate) []statement {
+	var out []statement
+	byMarks := func(marks []string, rk rank) {
+		for _, m := range marks {
+			for _, n := range f.notes.marked(m) {
+				out = append(out, noteStatements(n, rk)...)
+			}
+		}
+	}
+	byLabel := func(l label, rk rank, from string) {
+		out = append(out, labelStatement(l, rk, from))
+		byMarks(l.marks, rk)
+	}
+	byMarks(e.marks, rankCell)
+	ln := &f.lines[e.row]
+	for i := len(ln.labels) - 1; i >= 0; i-- {
+		byLabel(ln.labels[i], rankRow, "row label")
+	}
+	path := f.path(e.row, e.col)
+	for i := len(path) - 1; i >= 0; i-- {
+		byLabel(path[i], rankColumn, f.columnName(e.col))
+	}
+	for i := len(ln.groups) - 1; i >= 0; i-- {
+		for _, l := range f.lines[ln.groups[i]].labels {
+			byLabel(l, rankGroup, "label of the row group")
+		}
+	}
+	for c := 0; c < f.stub; c++ {
+		for i := len(f.heads[c]) - 1; i >= 0; i-- {
+			byLabel(f.heads[c][i], rankGroup, "heading of the row labels")
+		}
+	}
+	out = append(out, f.tableStatements()...)
+	return out
+}
+
+// tableStatements gives what caption and notes say for the whole table.
+func (f *frame) tableStatements() []statement {
+	if f.whole != nil {
+		return f.whole
+	}
+	out := []statement{}
+	capt := note{run: &f.tab.Caption, from: "caption"}
+	out = append(out, noteStatements(capt, rankCaption)...)
+	for _, n := range f.notes.general() {
+		out = append(out, noteStatements(n, rankNote)...)
+	}
+	used := f.usedMarks()
+	for _, n := range f.notes.list {
+		if n.mark != "" && !used[n.mark] {
+			out = append(out, noteStatements(n, rankNote)...)
+		}
+	}
+	f.whole = out
+	return out
+}
+
+// usedMarks gives the marks that headings, labels and values carry.
+func (f *frame) usedMarks() map[string]bool {
+	used := map[string]bool{}
+	for i := range f.tab.Cells {
+		c := &f.tab.Cells[i]
+		_, marks := f.notes.split(&c.Text)
+		for _, m := range marks {
+			used[m] = true
+		}
+		for _, v := range f.reads[c].cell.Values {
+			for _, s := range v.Marks {
+				for _, m := range f.cellMarks(c.Text.S[s.Start:s.End]) {
+					used[m] = true
+				}
+			}
+		}
+	}
+	return used
+}
+
+func labelStatement(l label, rk rank, from string) statement {
+	p := readPhrase(l.text)
+	s := statement{rank: rk, pairs: p.pairs, text: l.text, from: from, l: l}
+	if l.cell != nil {
+		s.place = l.cell.Text.Between(0, len(l.cell.Text.S))
+	}
+	return s
+}
+
+// noteStatements cuts a caption or note into sentences and keeps the pairs that
+// declare something; a sentence that only expands an abbreviation declares
+// nothing.
+func noteStatements(n note, rk rank) []statement {
+	var out []statement
+	for _, seg := range segments(n.run.S) {
+		text := n.run.S[seg.Start:seg.End]
+		p := readPhrase(text)
+		s := statement{rank: rk, text: clean(text), from: n.from, place: n.run.Between(seg.Start, seg.End)}
+		for i, q := range p.pairs {
+			if declares(text, p.pairs, i) {
+				s.pairs = append(s.pairs, q)
+			}
+		}
+		out = append(out, s)
+	}
+	return out
+}
+
+// segments cuts a note at full stops and semicolons that end a statement.
+func segments(s string) []grammar.Span {
+	var out []grammar.Span
+	start := 0
+	for i := 0; i < len(s); i++ {
+		cut := s[i] == ';' || s[i] == '\n' || s[i] == '.' && i+1 < len(s) && s[i+1] == ' ' && i+2 < len(s) && !lowerAt(s, i+2) && !initialAt(s, i)
+		if cut && depth(s[start:i]) <= 0 {
+			out = append(out, grammar.Span{Start: start, End: i + 1})
+			start = i + 1
+		}
+	}
+	if start < len(s) {
+		out = append(out, grammar.Span{Start: start, End: len(s)})
+	}
+	return out
+}
+
+func lowerAt(s string, i int) bool { return i < len(s) && s[i] >= 'a' && s[i] <= 'z' }
+
+// initialAt reports that the point at i ends an abbreviation: s.d., vs., No.
+func initialAt(s string, i int) bool {
+	return i >= 2 && s[i-2] == '.' || strings.HasSuffix(strings.ToLower(s[:i]), " vs") || strings.HasSuffix(strings.ToLower(s[:i]), "no")
+}
+
+func depth(s string) int {
+	return strings.Count(s, "(") + strings.Count(s, "[") - strings.Count(s, ")") - strings.Count(s, "]")
+}
+
+// declaring are words with which a sentence says how values are printed.
+var declaring = []string{"express", "present", "values", "value is", "data", "given", "shown", "report", "parenthes", "bracket", "denote", "represent", "indicat", "display", "numbers are", "figures are", "results are", "describ", "unless", "otherwise", "summar", "mean ±", "means ±", "mean±", "table shows"}
+
+// declares reports whether the i-th pair of a note's sentence declares what is
+// printed, and does not only expand an abbreviation.
+func declares(text string, pairs []pair, i int) bool {
+	q := pairs[i]
+	low := fold(text)
+	if q.Count && q.Percent || q.Sign {
+		return true
+	}
+	said := false
+	for _, w := range declaring {
+		if strings.Contains(low, w) {
+			said = true
+			break
+		}
+	}
+	switch {
+	case q.Spread != "" && q.Statistic != "":
+		if said {
+			return true
+		}
+		// "Mean (SD)", "median (range)": short, in brackets.
+		from, to := q.StatisticAt.End, q.SpreadAt.Start
+		if from == 0 && i > 0 {
+			from = pairs[i-1].End
+		}
+		return to >= from && to-from <= 12 && !strings.ContainsAny(text[from:to], "=:")
+	case q.Spread != "":
+		return said && !expands(text, q)
+	case q.Percent || q.Count:
+		return said
+	case q.Statistic != "":
+		return said
+	}
+	return false
+}
+
+// expands reports "SD, standard deviation" and "SD = standard deviation".
+func expands(text string, q pair) bool {
+	after := strings.TrimLeft(text[min(q.SpreadAt.End, len(text)):], " \u00a0")
+	return strings.HasPrefix(after, "=") || strings.HasPrefix(after, ":") || strings.HasPrefix(after, ", standard") || strings.HasPrefix(after, "- standard")
+}
+
+// reading is what a spread was found to mean.
+type reading struct {
+	given     result.GivenAs
+	pair      pair
+	at        statement
+	level     float64
+	levelAt   *statement
+	count     bool // it is a count with its percentage, no result
+	none      bool // it is no spread for another reason
+	ambiguous bool
+	contrary  bool // declared as a count, and the numbers say otherwise
+}
+
+// meaningOf finds what a spread of an estimate means.
+func (f *frame) meaningOf(e *estimate, sp *spread, all []statement) reading {
+	if v, ok := sp.value.Float(); ok && v < 0 && sp.shape != shapeInterval {
+		return reading{none: true}
+	}
+	if sp.item.Spread != "" && sp.item.Kind != grammar.KindNumber {
+		if g := givenAs(sp.item.Spread); g != "" {
+			return f.withLevel(reading{given: g, level: level(sp.item.Level), at: statement{rank: rankCell, from: "the cell"}}, all)
+		}
+		return reading{none: true}
+	}
+	if sp.own.kind == roleSpread {
+		for _, q := range sp.own.pairs {
+			if g := givenAs(q.Spread); g != "" {
+				s := labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
+				if sp.own.label.cell != nil && sp.own.label.cell.Row == sp.row {
+					s.rank, s.from = rankRow, "row label"
+				}
+				return f.withLevel(reading{given: g, pair: q, level: level(q.Level), at: s}, all)
+			}
+		}
+		return reading{none: true}
+	}
+	rd := f.lookUp(e, sp, all)
+	return f.withLevel(rd, all)
+}
+
+// lookUp goes through the statements, the nearest first, until one fits the
+// shape of the spread.
+func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
+	hint := statisticHint(all)
+	counts := f.countEvidence(e, sp)
+	if counts == countSure {
+		return reading{count: true}
+	}
+	for i := range all {
+		s := &all[i]
+		fits := fitting(s, sp, hint)
+		isCount, strong := countStatement(s)
+		if isCount && sp.shape == shapeBracket {
+			switch {
+			case len(fits) == 0 && strong && counts != countNever:
+				return reading{count: true}
+			case len(fits) == 0 && strong && s.rank <= rankGroup:
+				return reading{given: result.Unstated, contrary: true, at: *s}
+			case len(fits) == 0 && counts >= countLikely:
+				return reading{count: true}
+			case counts == countLikely:
+				return reading{count: true}
+			}
+		}
+		if len(fits) == 0 {
+			continue
+		}
+		if sp.shape == shapeBracket && s.rank >= rankCaption && counts == countLikely {
+			return reading{count: true}
+		}
+		q := fits[0]
+		rd := reading{given: givenAs(q.Spread), pair: q, at: *s, level: level(q.Level)}
+		for _, o := range fits[1:] {
+			if o.Spread != q.Spread {
+				rd.ambiguous = true
+			}
+		}
+		return rd
+	}
+	if sp.shape == shapeBracket && counts != countNever && counts != countUnlikely {
+		return reading{count: true}
+	}
+	return reading{given: result.Unstated}
+}
+
+// fitting gives the pairs of a statement whose kind of spread can be printed in
+// the shape, the best first.
+func fitting(s *statement, sp *spread, hint string) []pair {
+	var out []pair
+	for _, q := range s.pairs {
+		if q.Spread == "" || !fitsShape(q.Spread, sp) {
+			continue
+		}
+		if s.rank >= rankCaption && hint != "" && q.Statistic != "" && (hint == "median") != (q.Statistic == "median") && (hint == "median" || hint == "mean") {
+			continue
+		}
+		out = append(out, q)
+	}
+	if len(out) < 2 {
+		return out
+	}
+	// "mean ± SD; median (IQR)": the sign chooses.
+	var better []pair
+	for _, q := range out {
+		if q.Sign == (sp.shape == shapeSign) {
+			better = append(better, q)
+		}
+	}
+	if len(better) > 0 && len(better) < len(out) && sp.shape != shapeInterval {
+		return append(better, rest(out, better)...)
+	}
+	if hint != "" {
+		better = nil
+		for _, q := range out {
+			if q.Statistic == hint {
+				better = append(better, q)
+			}
+		}
+		if len(better) > 0 {
+			return better
+		}
+	}
+	return out
+}
+
+func rest(all, taken []pair) []pair {
+	var out []pair
+	for _, q := range all {
+		used := false
+		for _, t := range taken {
+			used = used || t.Pair == q.Pair
+		}
+		if !used {
+			out = append(out, q)
+		}
+	}
+	return out
+}
+
+func fitsShape(spreadWord string, sp *spread) bool {
+	switch sp.shape {
+	case shapeInterval:
+		return spreadWord == grammar.SpreadCI || spreadWord == grammar.SpreadIQR || spreadWord == grammar.SpreadRange
+	case shapeSign:
+		return spreadWord == grammar.SpreadSD || spreadWord == grammar.SpreadSE
+	case shapeBracket, shapePlain, shapeWord:
+		return spreadWord == grammar.SpreadSD || spreadWord == grammar.SpreadSE || spreadWord == grammar.SpreadIQR
+	}
+	return false
+}
+
+// statisticHint gives mean or median where a label or heading says one.
+func statisticHint(all []statement) string {
+	for i := range all {
+		if all[i].rank > rankGroup {
+			return ""
+		}
+		for _, q := range all[i].pairs {
+			switch q.Statistic {
+			case "":
+			case "median":
+				return "median"
+			default:
+				return "mean"
+			}
+		}
+	}
+	return ""
+}
+
+// withLevel completes the level of a confidence interval from other statements
+// of the same table.
+func (f *frame) withLevel(rd reading, all []statement) reading {
+	if rd.given != result.CI || rd.level > 0 {
+		return rd
+	}
+	for i := range all {
+		for _, q := range all[i].pairs {
+			if q.Spread == grammar.SpreadCI && level(q.Level) > 0 {
+				rd.level, rd.levelAt = level(q.Level), &all[i]
+				return rd
+			}
+		}
+	}
+	for i := range f.tab.Notes {
+		for _, q := range readPhrase(f.tab.Notes[i].Text.S).pairs {
+			if q.Spread == grammar.SpreadCI && level(q.Level) > 0 {
+				rd.level = level(q.Level)
+				rd.levelAt = &statement{rank: rankNote, from: "note below the table", text: q.Level + "% CI", place: f.tab.Notes[i].Text.At(q.LevelAt.Start)}
+				return rd
+			}
+		}
+	}
+	return rd
+}

@@ -1,0 +1,216 @@
+package table
+
+import (
+	"regexp"
+	"strings"
+
+	"halfspan/extract/grammar"
+)
+
+// roleKind is what the values of a column or row are, by its heading.
+type roleKind uint8
+
+const (
+	roleNone     roleKind = iota
+	roleEstimate          // an estimate alone: "Mean", "Difference", "OR"
+	roleBoth              // an estimate with its spread: "Mean (SD)"
+	roleSpread            // a spread alone: "SD", "95% CI"
+	roleBound             // one end of an interval
+	roleN                 // sample sizes
+	roleP
+	roleTest
+	rolePercent // percentages, or counts with percentages
+)
+
+// role is what a heading makes of the values under it.
+type role struct {
+	kind  roleKind
+	pairs []pair
+	bound int
+	test  string
+	label label // the heading that says so
+}
+
+// roleOf reads a role from one heading; roleNone where it announces none.
+func roleOf(l label, p *phrase) role {
+	r := role{label: l, pairs: p.pairs, bound: p.bound, test: p.test}
+	switch {
+	case p.isP:
+		r.kind = roleP
+	case p.test != "":
+		r.kind = roleTest
+	case p.bound != 0:
+		r.kind = roleBound
+	case p.countHead:
+		r.kind = roleN
+	case p.terms == 0:
+		return role{}
+	default:
+		r.kind = kindOfPairs(p)
+	}
+	return r
+}
+
+func kindOfPairs(p *phrase) roleKind {
+	est, spr, both, count, percent := 0, 0, 0, 0, 0
+	for _, q := range p.pairs {
+		switch {
+		case q.Spread != "" && q.Statistic != "":
+			both++
+		case q.Spread != "":
+			spr++
+		case q.Statistic != "":
+			est++
+		case q.Percent:
+			percent++
+		case q.Count:
+			count++
+		}
+	}
+	switch {
+	case both > 0:
+		return roleBoth
+	case spr > 0 && est == 0:
+		return roleSpread
+	case spr > 0:
+		return roleBoth
+	case percent > 0 && est == 0:
+		return rolePercent
+	case est > 0:
+		return roleEstimate
+	case count > 0 && p.onlyTerms:
+		return roleN
+	case count > 0:
+		return roleNone
+	}
+	return roleNone
+}
+
+// columnRole gives the role of column c at row r, from the lowest heading that
+// announces one.
+func (f *frame) columnRole(r, c int) role {
+	path := f.path(r, c)
+	for k := len(path) - 1; k >= 0; k-- {
+		p := readPhrase(path[k].text)
+		if role := roleOf(path[k], &p); role.kind != roleNone {
+			if k < len(path)-1 && (role.kind == roleP || role.kind == roleN || role.kind == roleTest || role.kind == roleBound) && path[len(path)-1].text != "" && !p.onlyTerms && role.kind != roleP {
+				continue
+			}
+			return role
+		}
+	}
+	return role{}
+}
+
+// pColumn reports a column of p values.
+func (f *frame) pColumn(c int) bool {
+	for _, l := range f.heads[c] {
+		if isPHeading(fold(l.text)) {
+			return true
+		}
+	}
+	return false
+}
+
+// rowRole gives the role of row r from its innermost own label, where that
+// names a statistic and nothing else.
+func (f *frame) rowRole(r int) role {
+	ln := &f.lines[r]
+	if len(ln.labels) == 0 || ln.kind == lineContinue {
+		return role{}
+	}
+	l := ln.labels[len(ln.labels)-1]
+	p := readPhrase(l.text)
+	role := roleOf(l, &p)
+	switch role.kind {
+	case roleP, roleTest, roleN:
+		return role
+	case roleBound:
+		return role
+	case roleSpread:
+		if len(p.rest) <= 1 || len(p.pairs) == 1 && p.pairs[0].Start == 0 {
+			return role
+		}
+	case roleEstimate, roleBoth:
+		if p.onlyTerms {
+			return role
+		}
+	}
+	return roleNoneOf(role)
+}
+
+func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
+
+var (
+	timeUnit   = `(?:weeks?|wks?|w|months?|mos?|mths?|m|days?|d|years?|yrs?|y|hours?|hrs?|h|minutes?|mins?|min|seconds?|secs?|s)`
+	timeNumber = `(?:\d+(?:\.\d+)?(?:st|nd|rd|th)?|one|two|three|four|five|six|seven|eight|nine|ten|twelve|eighteen|twenty-four|first|second|third|fourth|fifth|sixth)`
+	// timeMark is one mention of a time point or period.
+	timeMark = regexp.MustCompile(`(?i)\b(?:` +
+		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:-|to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
+		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?` + timeNumber + `(?:\s?(?:-|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
+		`|[tv]\d{1,2}\b|d\d{1,3}\b|w\d{1,2}\b` +
+		`|baseline|screening|enrol?lment|randomi[sz]ation|admission|discharge|follow-?up|end ?point|endline|midline|study end|washout|run-in|` +
+		`pre-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy)|post-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy|trial)|` +
+		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
+		`start|entry|immediately|delivery|birth)` +
+		`)`)
+	changeMark = regexp.MustCompile(`(?i)\b(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?|Δ|delta|reductions?|decreases?|increases?|declines?|improvements?|variation)\b(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
+)
+
+// isTimeHeading reports that a folded heading names a time or a period and
+// little else.
+func isTimeHeading(low string) bool {
+	if low == "" || len(low) > 80 {
+		return false
+	}
+	rest := stripTerms(low)
+	t := timeMark.FindAllString(rest, -1)
+	if len(t) == 0 {
+		switch strings.TrimSpace(low) {
+		case "time", "time point", "timepoint", "time points", "week", "weeks", "visit", "visits", "day", "days", "month", "months", "stage", "stages", "period", "phase", "assessment", "assessment period", "measurement", "time (h)", "time (min)", "time (weeks)", "time (days)", "time (months)":
+			return true
+		}
+		return false
+	}
+	rest = timeMark.ReplaceAllString(rest, " ")
+	rest = changeMark.ReplaceAllString(rest, " ")
+	left := 0
+	for _, w := range words(rest) {
+		if !timeFiller[w] && hasLetter(w) {
+			left++
+		}
+	}
+	return left == 0 || left == 1 && len(t) > 0 && len(words(low)) >= 3 && strings.ContainsAny(low, "0123456789")
+}
+
+var timeFiller = map[string]bool{"at": true, "after": true, "of": true, "the": true, "from": true, "to": true, "and": true, "in": true, "value": true,
+	"values": true, "score": true, "scores": true, "treatment": true, "intervention": true, "study": true, "week": true, "weeks": true, "month": true, "months": true, "day": true, "days": true, "year": true,
+	"years": true, "visit": true, "measurement": true, "assessment": true, "period": true, "time": true, "point": true, "start": true, "end": true, "h": true, "min": true, "hour": true, "hours": true,
+	"m": true, "w": true, "d": true, "vs": true, "versus": true, "minus": true, "mean": true, "results": true, "test": true, "data": true, "no": true, "only": true, "surgery": true, "operation": true,
+	"therapy": true, "exercise": true, "dose": true, "during": true, "within": true, "between": true, "infusion": true, "training": true, "follow": true, "up": true, "st": true, "nd": true, "rd": true, "th": true, "a": true, "b": true, "since": true, "randomisation": true, "randomization": true, "recruitment": true, "p": true, "for": true, "by": true, "one": true}
+
+var nPhrase = regexp.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
+
+// stripTerms takes n = 42, statistics and levels out of a heading.
+func stripTerms(s string) string {
+	s = nPhrase.ReplaceAllString(s, " ")
+	h := grammar.ParsePhrase(grammar.Text{S: s})
+	b := []byte(s)
+	for _, q := range h.Pairs {
+		for _, sp := range []grammar.Span{q.SpreadAt, q.StatisticAt} {
+			word := strings.ToLower(s[sp.Start:sp.End])
+			if changeMark.MatchString(word) || strings.Contains(word, "change") {
+				continue
+			}
+			for i := sp.Start; i < sp.End; i++ {
+				b[i] = ' '
+			}
+		}
+		if q.Count || q.Percent {
+			for i := q.Start; i < q.End; i++ {
+				b[i] = ' '
+			}
+		}
+	}
+	return strings.ToValidUTF8(string(b), " ")
+}

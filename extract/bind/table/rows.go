@@ -1,0 +1,326 @@
+package table
+
+import (
+	"halfspan/extract/paper"
+)
+
+// lineKind says what a body row of a table is.
+type lineKind uint8
+
+const (
+	lineNone     lineKind = iota // a heading row, a blank row
+	lineData                     // a row with values
+	lineGroup                    // a label over the rows below, with at most a p value or n's beside it
+	lineHead                     // column headings repeated inside the body
+	lineContinue                 // values under a blank stub: they belong to the row above
+)
+
+// line is one body row: what it is and the labels before it.
+type line struct {
+	kind   lineKind
+	labels []label // its own, from the outer to the inner stub column
+	groups []int   // rows of the group labels over it, outermost first
+	above  int     // of a lineContinue: the row that it goes on with
+	level  int     // of its label, for the nesting of groups
+}
+
+// midHead is a row of column headings inside the body.
+type midHead struct {
+	row   int
+	cells []label // by column; empty where the row says nothing new
+}
+
+// findLines classifies every body row and nests the groups.
+func (f *frame) findLines() {
+	f.lines = make([]line, f.tab.Rows)
+	var carried []label
+	lastData := -1
+	for r := f.head; r < f.tab.Rows; r++ {
+		if f.rowBlank(r) {
+			continue
+		}
+		ln := &f.lines[r]
+		own := f.ownLabels(r)
+		ln.kind = f.kindOf(r, own)
+		if ln.kind == lineHead {
+			f.addMidHead(r)
+			if len(own) > 0 {
+				ln.labels = own
+			}
+			lastData = -1
+			continue
+		}
+		switch {
+		case len(own) == 0 && ln.kind == lineData && lastData >= 0:
+			ln.kind, ln.above = lineContinue, lastData
+			ln.labels = f.lines[lastData].labels
+		case f.stub > 1 && len(own) > 0 && f.blank(r, 0) && len(carried) > 0:
+			ln.labels = append(append([]label{}, carried[0]), own...)
+		default:
+			ln.labels = own
+		}
+		if ln.kind == lineData {
+			lastData = r
+		} else if ln.kind == lineGroup {
+			lastData = -1
+		}
+		if len(own) > 0 && !f.blank(r, 0) && (ln.kind == lineData || f.stub > 1) {
+			carried = ln.labels[:1]
+		}
+		if ln.kind == lineGroup && !f.blank(r, 0) {
+			carried = nil
+			if f.stub > 1 && f.grid[r][0] != nil && f.grid[r][0].ColSpan < f.tab.Cols && f.innerLabelsBelow(r) {
+				carried = nil
+			}
+		}
+	}
+	f.nest()
+}
+
+// innerLabelsBelow reports that the next filled row labels only its inner stub.
+func (f *frame) innerLabelsBelow(r int) bool {
+	for r++; r < f.tab.Rows; r++ {
+		if !f.rowBlank(r) {
+			return f.blank(r, 0) && !f.blank(r, 1)
+		}
+	}
+	return false
+}
+
+// ownLabels gives the labels printed in (or spanning into) the stub of row r.
+func (f *frame) ownLabels(r int) []label {
+	var out []label
+	var last *paper.Cell
+	for c := 0; c < f.stub; c++ {
+		cell := f.grid[r][c]
+		if cell == nil || cell == last || isBlankText(cell.Text.S) {
+			continue
+		}
+		last = cell
+		out = append(out, f.label(cell))
+	}
+	return out
+}
+
+// kindOf says what row r is, by what stands in its data columns.
+func (f *frame) kindOf(r int, own []label) lineKind {
+	filled, headings, ns := 0, 0, 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		cell := f.cellAt(r, c)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		if cell.RowSpan > 1 || len(own) > 0 && f.pColumn(c) {
+			continue // it belongs to several rows, or is the p value of a group
+		}
+		filled++
+		rd := f.reads[cell]
+		switch {
+		case rd.phrase.onlyN:
+			ns++
+		case rd.headingLike && !rd.isData():
+			headings++
+		}
+	}
+	switch {
+	case filled == 0 && len(own) > 0:
+		if f.spansOnly(r) && f.allRowSpansData(r) {
+			return lineData
+		}
+		return lineGroup
+	case filled == 0:
+		return lineNone
+	case len(own) > 0 && ns == filled:
+		return lineGroup
+	case headings+ns == filled && (filled >= 2 || f.tab.Cols-f.stub <= 2) && f.realHeading(r, own):
+		return lineHead
+	}
+	return lineData
+}
+
+// spansOnly reports that a filled cell of the row spans several rows.
+func (f *frame) spansOnly(r int) bool {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if cell := f.cellAt(r, c); cell != nil && cell.RowSpan > 1 && !isBlankText(cell.Text.S) && !f.pColumn(c) {
+			return true
+		}
+	}
+	return false
+}
+
+// allRowSpansData reports that the label spans as many rows as its cells, so
+// that the row is one row of data printed high.
+func (f *frame) allRowSpansData(r int) bool {
+	stub := f.grid[r][0]
+	if stub == nil || stub.RowSpan < 2 {
+		return false
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if cell := f.cellAt(r, c); cell != nil && !isBlankText(cell.Text.S) && cell.RowSpan != stub.RowSpan {
+			return false
+		}
+	}
+	return true
+}
+
+// realHeading keeps words in the body (yes, none, ns) from being taken for
+// headings: a heading row announces a statistic, an n or a time.
+func (f *frame) realHeading(r int, own []label) bool {
+	terms, times := 0, 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		cell := f.cellAt(r, c)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		p := f.reads[cell].phrase
+		switch {
+		case p.onlyTerms || p.onlyN || p.terms > 0:
+			terms++
+		case isTimeHeading(fold(cell.Text.S)):
+			times++
+		}
+	}
+	if len(own) == 0 {
+		return terms > 0 || times >= 2
+	}
+	return terms >= 2 || times >= 2 || terms == 1 && f.tab.Cols-f.stub <= 2
+}
+
+func (f *frame) addMidHead(r int) {
+	m := midHead{row: r, cells: make([]label, f.tab.Cols)}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if cell := f.grid[r][c]; cell != nil && cell.Row == r && !isBlankText(cell.Text.S) {
+			m.cells[c] = f.label(cell)
+		}
+	}
+	f.mid = append(f.mid, m)
+}
+
+// path gives the headings over (r, c), the outermost first: those of the
+// table's head, with headings repeated in the body in place of or after them.
+func (f *frame) path(r, c int) []label {
+	path := f.heads[c]
+	for _, m := range f.mid {
+		if m.row > r {
+			break
+		}
+		if m.cells[c].empty() && len(m.cells[c].marks) == 0 {
+			continue
+		}
+		path = overlay(f.heads[c], m.cells[c])
+	}
+	return path
+}
+
+// overlay puts a heading repeated in the body in place of the lowest heading
+// where both announce a statistic, and below it otherwise.
+func overlay(base []label, l label) []label {
+	out := append([]label{}, base...)
+	if k := len(out) - 1; k >= 0 {
+		p := readPhrase(out[k].text)
+		if p.onlyTerms || p.terms > 0 && !p.hasN && !p.armLike {
+			out = out[:k]
+		}
+	}
+	return append(out, l)
+}
+
+// weight gives the nesting level that the print of row r's label shows: its
+// indentation, and bold type where the table mixes bold and plain labels.
+func (f *frame) weight(r int, mixed bool) int {
+	cell := f.grid[r][0]
+	inner := 0
+	if f.stub > 1 && (cell == nil || isBlankText(cell.Text.S)) {
+		cell = f.grid[r][1]
+		inner = 1
+	}
+	if cell == nil {
+		return 0
+	}
+	w := 2 * (cell.Indent + 4*inner)
+	if mixed && !bold(cell) {
+		w++
+	}
+	return w
+}
+
+func bold(cell *paper.Cell) bool {
+	for i, r := range cell.Text.S {
+		if r > ' ' {
+			return cell.Text.Styled(i, paper.Bold)
+		}
+	}
+	return false
+}
+
+// mixedBold reports that some labels of the first column are bold and some not.
+func (f *frame) mixedBold() bool {
+	b, plain := 0, 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		cell := f.cellAt(r, 0)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		if bold(cell) {
+			b++
+		} else {
+			plain++
+		}
+	}
+	return b > 0 && plain > 0
+}
+
+// nest gives every row the group labels over it. Levels come in fours for each
+// step of indentation: a group with groups of the same step right below it
+// (+0), a group with rows of the same step (+1), a row (+2).
+func (f *frame) nest() {
+	mixed := f.mixedBold()
+	var stack []int
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		switch ln.kind {
+		case lineNone:
+			continue
+		case lineHead:
+			if len(ln.labels) == 0 {
+				continue
+			}
+		case lineContinue:
+			ln.groups = f.lines[ln.above].groups
+			continue
+		}
+		w := f.weight(r, mixed)
+		popFrom := 4*w + 2
+		ln.level = 4*w + 2
+		if ln.kind != lineData {
+			next := f.nextLine(r)
+			popFrom = 4*w + 1
+			switch {
+			case next < 0:
+			case f.lines[next].kind == lineGroup && f.weight(next, mixed) == w:
+				ln.level, popFrom = 4*w, 4*w
+			case f.weight(next, mixed) <= w:
+				ln.level = 4*w + 1
+			}
+		}
+		for len(stack) > 0 && f.lines[stack[len(stack)-1]].level >= popFrom {
+			stack = stack[:len(stack)-1]
+		}
+		for _, g := range stack {
+			if f.lines[g].kind == lineData && f.grid[g][0] != nil && f.grid[r][0] != nil && f.grid[g][0].Indent >= f.grid[r][0].Indent {
+				continue
+			}
+			ln.groups = append(ln.groups, g)
+		}
+		stack = append(stack, r)
+	}
+}
+
+func (f *frame) nextLine(r int) int {
+	for r++; r < f.tab.Rows; r++ {
+		if f.lines[r].kind != lineNone {
+			return r
+		}
+	}
+	return -1
+}

@@ -1,0 +1,425 @@
+package table
+
+import (
+	"regexp"
+	"strconv"
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+	"halfspan/extract/result"
+)
+
+// size is a sample size with where it was read.
+type size struct {
+	n     int
+	from  string // the record's n_from
+	words string // in words
+	text  string // as printed
+	place paper.Place
+	total bool // it may be the total of several arms
+	base  bool // said to be the number at baseline
+}
+
+// number reads an n as printed.
+func number(n grammar.Number) int {
+	v, err := strconv.Atoi(strings.ReplaceAll(n.Value, ",", ""))
+	if err != nil || v < 1 {
+		return 0
+	}
+	return v
+}
+
+// lastN gives the last n = 42 of a label.
+func lastN(l label) (int, bool) {
+	p := readPhrase(l.raw)
+	for i := len(p.ns) - 1; i >= 0; i-- {
+		if n := number(p.ns[i].Value); n > 0 {
+			return n, true
+		}
+	}
+	if n, ok := bareN(l.raw); ok {
+		return n, true
+	}
+	return 0, false
+}
+
+var (
+	bareCount = regexp.MustCompile(`(?i)[(\[]\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)?\s*[)\]]\s*$`)
+	worded    = regexp.MustCompile(`(?i)[(\[]\s*(?:n|no\.?)?\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)\s*[)\]]`)
+)
+
+// bareN reads "Syrup (42 colonies)".
+func bareN(s string) (int, bool) {
+	if m := worded.FindStringSubmatch(s); m != nil {
+		v, err := strconv.Atoi(strings.ReplaceAll(m[1], ",", ""))
+		return v, err == nil && v > 0
+	}
+	return 0, false
+}
+
+// headingN gives the n in the headings over (r, c), the lowest first.
+func (f *frame) headingN(r, c int) (int, label, bool) {
+	path := f.path(r, c)
+	for i := len(path) - 1; i >= 0; i-- {
+		if n, ok := lastN(path[i]); ok {
+			return n, path[i], true
+		}
+	}
+	return 0, label{}, false
+}
+
+func sizeOfLabel(n int, l label, from, words string) size {
+	s := size{n: n, from: from, words: words, text: l.raw}
+	if l.cell != nil {
+		s.place = l.cell.Text.Between(0, len(l.cell.Text.S))
+	}
+	return s
+}
+
+// nearSize finds the n of an estimate inside its own table.
+func (f *frame) nearSize(e *estimate, x *context) (size, bool) {
+	for _, find := range []func(*estimate, *context) (size, bool){
+		f.cellSize, f.columnSize, f.labelSize, f.rowSize, f.markSize, f.headSize, f.noteSize, f.captionSize, f.loneSize,
+	} {
+		if s, ok := find(e, x); ok {
+			return s, true
+		}
+	}
+	return size{}, false
+}
+
+// cellSize reads an n printed beside the estimate, or in a note that a mark
+// behind it leads to.
+func (f *frame) cellSize(e *estimate, _ *context) (size, bool) {
+	for _, it := range e.parts {
+		if it.Kind == grammar.KindSampleSize {
+			if n := number(it.Value); n > 0 {
+				return size{n: n, from: result.NBeside, words: "the cell", text: e.cell.Text.S[it.Start:it.End], place: e.cell.Text.Between(it.Start, it.End)}, true
+			}
+		}
+	}
+	for _, it := range e.extra {
+		if f.bracketIsN(e) && it.Value.Value != "" {
+			if n := number(it.Value); n > 0 {
+				return size{n: n, from: result.NBeside, words: "the cell", text: it.Value.Value, place: e.cell.Text.Between(it.Start, it.End)}, true
+			}
+		}
+	}
+	for _, m := range e.marks {
+		for _, nt := range f.notes.marked(m) {
+			p := parsePhrase(textOf(nt.run))
+			if len(p.ns) == 1 {
+				if n := number(p.ns[0].Value); n > 0 {
+					return size{n: n, from: result.NHeading, words: nt.from, text: clean(nt.run.S), place: nt.run.At(0)}, true
+				}
+			}
+		}
+	}
+	return size{}, false
+}
+
+var nInBracket = regexp.MustCompile(`(?i)[(\[]\s*(?:n|no\.?|number)\s*[)\]]`)
+
+// bracketIsN reports that a heading, caption or note says that a bracket holds
+// the n: "mean ± SD (n)".
+func (f *frame) bracketIsN(e *estimate) bool {
+	for _, l := range append(append([]label{}, f.path(e.row, e.col)...), f.lines[e.row].labels...) {
+		if nInBracket.MatchString(l.text) {
+			return true
+		}
+	}
+	if nInBracket.MatchString(f.tab.Caption.S) {
+		return true
+	}
+	for _, n := range f.notes.list {
+		if nInBracket.MatchString(n.run.S) {
+			return true
+		}
+	}
+	return false
+}
+
+// columnSize reads a column of n's in the same row: under the same outer
+// heading, or the only one of the table.
+func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
+	path := f.path(e.row, e.col)
+	var nCols []int
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if f.columnRole(e.row, c).kind == roleN {
+			nCols = append(nCols, c)
+		}
+	}
+	if len(nCols) == 0 {
+		return size{}, false
+	}
+	pick, best := -1, -1
+	for _, c := range nCols {
+		other := f.path(e.row, c)
+		shared := 0
+		for i := 0; i < min(len(path), len(other))-1 && path[i].cell == other[i].cell; i++ {
+			shared++
+		}
+		switch {
+		case len(path) > 1 && len(other) > 1 && shared == 0:
+			continue
+		case shared > best || shared == best && c < e.col:
+			pick, best = c, shared
+		}
+	}
+	if pick < 0 || len(nCols) > 1 && best == 0 && pick > e.col {
+		return size{}, false
+	}
+	if x.contrast && best == 0 && len(nCols) > 1 {
+		return size{}, false
+	}
+	cell := f.grid[e.row][pick]
+	if cell == nil {
+		return size{}, false
+	}
+	vals := f.reads[cell].cell.Values
+	k := 0
+	if e.stacked > 1 && len(vals) == e.stacked {
+		k = e.ordinal
+	}
+	if len(vals) <= k || vals[k].Estimate.IsZero() {
+		return size{}, false
+	}
+	n := number(vals[k].Estimate)
+	if n == 0 {
+		return size{}, false
+	}
+	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast}, true
+}
+
+// labelSize reads an n in the labels of the row.
+func (f *frame) labelSize(e *estimate, x *context) (size, bool) {
+	ln := &f.lines[e.row]
+	for i := len(ln.labels) - 1; i >= 0; i-- {
+		if n, ok := lastN(ln.labels[i]); ok {
+			s := sizeOfLabel(n, ln.labels[i], result.NBeside, "row label")
+			if _, _, inHead := f.headingN(e.row, e.col); inHead && f.armsInColumns() {
+				continue // a total beside arms with n's of their own
+			}
+			s.total = x.contrast || f.armsInColumns()
+			return s, true
+		}
+		if s, ok := f.markedN(ln.labels[i].marks, x); ok {
+			return s, true
+		}
+	}
+	return size{}, false
+}
+
+// markedN reads the n for the arm out of the notes that marks lead to.
+func (f *frame) markedN(marks []string, x *context) (size, bool) {
+	for _, m := range marks {
+		for _, nt := range f.notes.marked(m) {
+			if n, ok := nForArm(nt.run.S, x.arm, f.otherArms(x.arm)); ok {
+				return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(0)}, true
+			}
+		}
+	}
+	return size{}, false
+}
+
+// rowSize reads a row of n's: in the same block, in the label row of its group,
+// or for the whole table.
+func (f *frame) rowSize(e *estimate, _ *context) (size, bool) {
+	ln := &f.lines[e.row]
+	at := func(r int) (size, bool) {
+		cell := f.grid[r][e.col]
+		if cell == nil {
+			return size{}, false
+		}
+		rd := f.reads[cell]
+		if len(rd.phrase.ns) > 0 && rd.phrase.onlyN {
+			if n := number(rd.phrase.ns[0].Value); n > 0 {
+				return size{n: n, from: result.NHeading, words: "row of sample sizes above", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
+			}
+		}
+		if len(rd.cell.Values) == 1 && !rd.cell.Values[0].Estimate.IsZero() {
+			if n := number(rd.cell.Values[0].Estimate); n > 0 && isWhole(rd.cell.Values[0].Estimate.Value) {
+				return size{n: n, from: result.NHeading, words: "row of sample sizes", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
+			}
+		}
+		return size{}, false
+	}
+	// The row of n's that is nearest above, under the same groups or fewer.
+	for r := e.row - 1; r >= f.head; r-- {
+		o := &f.lines[r]
+		if o.kind != lineData || f.rowRole(r).kind != roleN {
+			continue
+		}
+		if prefix(o.groups, ln.groups) {
+			if s, ok := at(r); ok {
+				return s, true
+			}
+		}
+	}
+	for i := len(ln.groups) - 1; i >= 0; i-- {
+		if s, ok := at(ln.groups[i]); ok && f.reads[f.grid[ln.groups[i]][e.col]].phrase.onlyN {
+			return s, true
+		}
+	}
+	for _, m := range f.mid {
+		if m.row < e.row && m.cells[e.col].cell != nil && f.reads[m.cells[e.col].cell].phrase.onlyN {
+			if s, ok := at(m.row); ok {
+				return s, true
+			}
+		}
+	}
+	for r := e.row + 1; r < f.tab.Rows; r++ {
+		o := &f.lines[r]
+		if o.kind == lineData && f.rowRole(r).kind == roleN && len(o.groups) == len(ln.groups) && prefix(o.groups, ln.groups) {
+			if s, ok := at(r); ok {
+				return s, true
+			}
+		}
+	}
+	return size{}, false
+}
+
+// prefix reports that every group of a is also over b.
+func prefix(a, b []int) bool {
+	if len(a) > len(b) {
+		return false
+	}
+	for i := range a {
+		if a[i] != b[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// markSize reads the notes that the marks of the groups and headings lead to.
+func (f *frame) markSize(e *estimate, x *context) (size, bool) {
+	ln := &f.lines[e.row]
+	for i := len(ln.groups) - 1; i >= 0; i-- {
+		for _, l := range f.lines[ln.groups[i]].labels {
+			if s, ok := f.markedN(l.marks, x); ok {
+				return s, true
+			}
+		}
+	}
+	for i := len(ln.groups) - 1; i >= 0; i-- {
+		for _, l := range f.lines[ln.groups[i]].labels {
+			if n, ok := lastN(l); ok && !f.armsInColumns() {
+				return sizeOfLabel(n, l, result.NHeading, "label of the row group"), true
+			}
+		}
+	}
+	return size{}, false
+}
+
+// headSize reads the n in the column's headings.
+func (f *frame) headSize(e *estimate, x *context) (size, bool) {
+	if n, l, ok := f.headingN(e.row, e.col); ok && !x.contrast {
+		return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+	}
+	return size{}, false
+}
+
+// noteSize reads an n in the notes: for this arm, or the only one.
+func (f *frame) noteSize(e *estimate, x *context) (size, bool) {
+	for _, nt := range f.notes.general() {
+		if n, ok := nForArm(nt.run.S, x.arm, f.otherArms(x.arm)); ok {
+			return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(0)}, true
+		}
+	}
+	return size{}, false
+}
+
+// captionSize reads an n in the caption: beside the arm's name, or the only one
+// where the table is about one arm.
+func (f *frame) captionSize(_ *estimate, x *context) (size, bool) {
+	c := &f.tab.Caption
+	if n, ok := nForArm(c.S, x.arm, f.otherArms(x.arm)); ok {
+		return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(0)}, true
+	}
+	return size{}, false
+}
+
+// loneSize reads the only n of caption or notes where the table has one arm.
+func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
+	if x.contrast || f.armsInColumns() || f.armRows || x.subgroup != "" {
+		return size{}, false
+	}
+	c := &f.tab.Caption
+	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
+		if n := number(p.ns[0].Value); n > 0 {
+			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, true
+		}
+	}
+	for _, nt := range f.notes.general() {
+		if p := parsePhrase(textOf(nt.run)); len(p.ns) == 1 {
+			if n := number(p.ns[0].Value); n > 0 {
+				return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(p.ns[0].Start)}, true
+			}
+		}
+	}
+	return size{}, false
+}
+
+var nMention = regexp.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|for|in)\b`)
+
+// nForArm finds in a sentence the n that stands with an arm's name: "(n = 42)"
+// behind it, "42 colonies in the syrup arm", "Syrup (42)".
+func nForArm(s, arm string, others []string) (int, bool) {
+	name := armWords(arm)
+	if len(name) == 0 {
+		return 0, false
+	}
+	low := fold(s)
+	at := strings.Index(low, name)
+	if at < 0 {
+		return 0, false
+	}
+	for _, o := range others {
+		// "placebo" inside "placebo plus syrup": the longer name owns the words.
+		if len(o) > len(name) && strings.Contains(o, name) && strings.Contains(low, o) && strings.Index(low, o) <= at {
+			return 0, false
+		}
+	}
+	end := at + len(name)
+	// Behind: only a few words may stand between.
+	after := low[end:min(len(low), end+30)]
+	if m := nMention.FindStringSubmatchIndex(after); m != nil && m[0] <= 16 && !strings.ContainsAny(after[:m[0]], ".;") && m[6] < 0 {
+		return intAt(after, m)
+	}
+	// Before: "42 colonies in the syrup group".
+	start := max(0, at-40)
+	before := low[start:at]
+	ms := nMention.FindAllStringSubmatchIndex(before, -1)
+	if len(ms) > 0 {
+		m := ms[len(ms)-1]
+		if m[6] >= 0 && !strings.ContainsAny(before[m[1]:], ".;,0123456789") {
+			return intAt(before, m)
+		}
+	}
+	return 0, false
+}
+
+func intAt(s string, m []int) (int, bool) {
+	for k := 2; k+1 < len(m); k += 2 {
+		if m[k] >= 0 {
+			v, err := strconv.Atoi(strings.ReplaceAll(s[m[k]:m[k+1]], ",", ""))
+			return v, err == nil && v > 0
+		}
+	}
+	return 0, false
+}
+
+// armWords is the name of an arm for looking it up in sentences.
+func armWords(arm string) string {
+	low := fold(arm)
+	for _, suffix := range []string{" group", " arm", " groups", " arms"} {
+		low = strings.TrimSuffix(low, suffix)
+	}
+	low = strings.TrimPrefix(low, "the ")
+	if len([]rune(low)) < 2 {
+		return ""
+	}
+	return low
+}

@@ -1,0 +1,230 @@
+package table
+
+import (
+	"regexp"
+	"strings"
+
+	"halfspan/extract/grammar"
+	"halfspan/extract/result"
+)
+
+// statisticOf settles what kind of estimate a result is: what the statement of
+// its spread names, else the nearest label or heading that names one, else what
+// such a spread is usually printed with.
+func (f *frame) statisticOf(e *estimate, rd *reading, x *context, all []statement) (st result.Statistic, measure, model string, assumed bool) {
+	st, measure, model = result.Statistic(rd.pair.Statistic), rd.pair.Measure, rd.pair.Model
+	if s, m, mo := nearStatistic(all, rankGroup); s != "" && outranks(s, st) {
+		st = s
+		if m != "" {
+			measure = m
+		}
+		if mo != "" {
+			model = mo
+		}
+	}
+	if st == "" || st == result.Mean && rd.at.rank >= rankCaption && rd.pair.Statistic == "" {
+		if s, m, mo := nearStatistic(all, rankNote); s != "" && st == "" {
+			st, measure, model = s, m, mo
+		}
+	}
+	if st == "" {
+		st, assumed = usual(rd.given), true
+	}
+	return f.refine(st, measure, e, rd, x, all), measure, model, assumed
+}
+
+// outranks reports that a statistic in a near label replaces the one that came
+// with the spread's statement.
+func outranks(near, have result.Statistic) bool {
+	switch have {
+	case "":
+		return true
+	case result.Mean:
+		return near != result.Proportion && near != result.Rate
+	case result.Median:
+		return false
+	}
+	return false
+}
+
+func nearStatistic(all []statement, limit rank) (result.Statistic, string, string) {
+	for i := range all {
+		if all[i].rank > limit {
+			break
+		}
+		best := pair{}
+		for _, q := range all[i].pairs {
+			if q.Statistic == "" {
+				continue
+			}
+			if best.Statistic == "" || q.Spread != "" && best.Spread == "" || weight(q.Statistic) > weight(best.Statistic) {
+				best = q
+			}
+		}
+		if best.Statistic != "" {
+			return result.Statistic(best.Statistic), best.Measure, best.Model
+		}
+	}
+	return "", "", ""
+}
+
+// weight orders statistics named in one heading by how much they say.
+func weight(s string) int {
+	switch s {
+	case "mean":
+		return 1
+	case "rate", "proportion":
+		return 0
+	}
+	return 2
+}
+
+func usual(g result.GivenAs) result.Statistic {
+	switch g {
+	case result.IQR, result.Range:
+		return result.Median
+	}
+	return result.Mean
+}
+
+var (
+	percentWord = regexp.MustCompile(`(?i)%|\bper ?cent|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\bincidence\b|\bsurvival\b|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission) rates?\b|\brates?\b`)
+	strictShare = regexp.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|\bpatients with\b|\bpatients \(%\)`)
+	coefficient = regexp.MustCompile(`(?i)\bregression\b|\bcoefficients?\b|\bβ\b|\bmodel β\b`)
+)
+
+// refine turns a plain mean into a change, a difference or a proportion where
+// the context says so.
+func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *reading, x *context, all []statement) result.Statistic {
+	if st == result.MeanDifference && !x.contrast && x.arm != "" && f.colArms && rd.given != result.CI {
+		return result.MeanChange // a "difference" inside one arm
+	}
+	switch st {
+	case result.Mean, result.MeanChange:
+		if x.contrast && (x.arm2 != "" || st == result.Mean) {
+			if f.shares(x, all) {
+				return result.RiskDifference
+			}
+			return result.MeanDifference
+		}
+		if st == result.Mean && x.change && !f.namedPoint(x) {
+			return result.MeanChange
+		}
+		if st == result.Mean && rd.given == result.CI && f.shares(x, all) && (x.unit == "%" || x.unit == "") {
+			return result.Proportion
+		}
+	case result.MeanDifference:
+		if f.shares(x, all) && measure == "" {
+			return result.RiskDifference
+		}
+	case result.Rate:
+		if rd.given == result.SD || rd.given == result.SE {
+			return result.Mean
+		}
+		if x.unit == "%" {
+			return result.Proportion
+		}
+	case result.Proportion:
+		if rd.given == result.SD || rd.given == result.SE {
+			return result.Mean
+		}
+	}
+	return st
+}
+
+// namedPoint reports a column or row of plain time points beside others of
+// change: "Baseline" under a caption "Changes in mass".
+func (f *frame) namedPoint(x *context) bool {
+	low := fold(x.time)
+	if low == "" || x.timeGuess || changeMark.MatchString(low) {
+		return false
+	}
+	own := changeMark.MatchString(fold(x.heading))
+	return !own
+}
+
+// shares reports that the outcome is a share of subjects.
+func (f *frame) shares(x *context, all []statement) bool {
+	for _, s := range []string{x.outcome, x.heading} {
+		if strictShare.MatchString(s) && !strings.Contains(fold(s), "heart rate") {
+			return true
+		}
+	}
+	return false
+}
+
+var _ = grammar.SpreadCI
+
+var (
+	adjustedWord   = regexp.MustCompile(`(?i)\badjust(?:ed|ing|ment)\b|\bancova\b|\banalysis of covariance\b|\bcovariates?\b|\bcontroll(?:ed|ing) for\b|\bleast[- ]squares?\b|\bls[- ]?means?\b|\blsmd?\b|\bmarginal means?\b|\bmultivaria(?:te|ble)\b|\bmodel-(?:averaged|based|adjusted)\b|\badj\.?\b|\bmultiple regression\b|\bpropensity\b`)
+	unadjustedWord = regexp.MustCompile(`(?i)\bunadjusted\b|\bcrude\b|\bunivaria(?:te|ble)\b|\bnot adjusted\b|\braw means?\b|\bobserved means?\b`)
+	modelWord      = regexp.MustCompile(`(?i)\bmixed[- ](?:effects? )?models?\b|\bgee\b|\bgeneralized (?:estimating|linear)\b|\bgeneralised (?:estimating|linear)\b|\bglm\b|\brepeated[- ]measures\b|\bimput|\bgeneral linear\b|\bmmrm\b|\bregression\b`)
+	leastWord      = regexp.MustCompile(`(?i)\bleast[- ]squares?\b|\bls[- ]?means?\b`)
+	marginalWord   = regexp.MustCompile(`(?i)\bmarginal means?\b`)
+)
+
+// adjustedOf reads from headings, caption and notes whether an estimate is
+// adjusted.
+func (f *frame) adjustedOf(e *estimate, rd *reading, r *result.Result, all []statement) {
+	switch r.Statistic {
+	case result.Mean, result.MeanChange, result.MeanDifference, result.GeometricMean:
+	default:
+		return
+	}
+	near, wide := f.words(e, all)
+	switch {
+	case unadjustedWord.MatchString(near):
+		r.Adjusted = "no"
+	case adjustedWord.MatchString(near):
+		r.Adjusted = "yes"
+	case rd.given == result.SD:
+		r.Adjusted = "no"
+	case adjustedWord.MatchString(wide):
+		r.Adjusted = "yes"
+		if r.Statistic == result.Mean && !adjustedWord.MatchString(f.tab.Caption.S) {
+			r.Adjusted = "unclear"
+		}
+	case modelWord.MatchString(wide):
+		r.Adjusted = "unclear"
+	default:
+		r.Adjusted = "no"
+	}
+	if leastWord.MatchString(near + " " + wide) {
+		r.Evidence.Model = append(r.Evidence.Model, "least-squares")
+	}
+	if marginalWord.MatchString(near) {
+		r.Evidence.Model = append(r.Evidence.Model, "marginal")
+	}
+	if r.Adjusted == "yes" && len(r.Evidence.Model) == 0 {
+		r.Evidence.Model = append(r.Evidence.Model, "adjusted")
+	}
+}
+
+// words gives the texts near an estimate (labels, headings and the notes their
+// marks lead to, also those of the p values of the row) and those of the whole
+// table.
+func (f *frame) words(e *estimate, all []statement) (near, wide string) {
+	var n, w []string
+	for _, s := range all {
+		if s.rank <= rankGroup {
+			n = append(n, s.text)
+		} else {
+			w = append(w, s.text)
+		}
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if !f.pColumn(c) || f.grid[e.row][c] == nil {
+			continue
+		}
+		for _, v := range f.reads[f.grid[e.row][c]].cell.Values {
+			for _, m := range v.Marks {
+				for _, mk := range f.cellMarks(f.grid[e.row][c].Text.S[m.Start:m.End]) {
+					for _, nt := range f.notes.marked(mk) {
+						n = append(n, nt.run.S)
+					}
+				}
+			}
+		}
+	}
+	return strings.Join(n, " . "), strings.Join(w, " . ")
+}

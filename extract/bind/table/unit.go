@@ -1,0 +1,80 @@
+package table
+
+import (
+	"regexp"
+	"strings"
+)
+
+var (
+	unitBracket = regexp.MustCompile(`[(\[]([^()\[\]]{1,30})[)\]]`)
+	unitComma   = regexp.MustCompile(`,\s*([^,;()]{1,20})$`)
+	unitToken   = regexp.MustCompile(`^(?:[µμm]?(?:g|l|L|mol|M|m|s|V|W|Hz|Pa|J|U|IU|Eq|Osm|Gy|bar)|[kcdn](?:g|m|l|L|J|Pa|mol|cal|Hz|M|W|V|s)|%|°C|°|℃|mmHg|mm ?Hg|cmH2O|cm ?H2O|bpm|years?|yrs?|y|months?|mos?|weeks?|wks?|days?|d|hours?|hrs?|h|minutes?|mins?|min|seconds?|secs?|s|sec|ms|kcal|cal|MET|METs|points?|score|beats?|breaths?|€|\$|£|US\$|USD|EUR|AUD|units?|cells?|copies|IU|U|mIU|µIU|μIU|mEq|mEq|ng|pg|fg|kJ|MJ|torr|Torr|rpm|kPa|inches|in|lb|lbs|colony|colonies|frames?|mm2|mm3|cm2|cm3|m2|kg|cm|mm|nm|ml|mL|dl|dL|fl|fL|times|n|stones?|steps|servings?|portions?|pack-years|person-years|ppm|ppb|AU|a\.u\.|arb|z|SD|1\.73|predicted|log10|log|body|weight|BW|bw|total|energy|protein|creatinine|Hg|O2|CO2|per|night|week|day|year|month|minute|hour|of|serum|plasma|Cr|cr|tissue|×|x|10|103|106|109|ηg|mmol|µmol|μmol|nmol|pmol|fmol|mg|µg|μg|mcg|gm|gms|Kg|Kgs|kgs|litres?|liters?|Meq|meq|mosm|mOsm|dyn|dynes|N|Nm|kN|lux|dB|dioptres?|diopters?|D|mV|kV|mA|mmhg|MmHg)[\d⁻−²³^*-]*$`)
+)
+
+// unitOf reads the unit from the row labels, the headings or the cell.
+func (f *frame) unitOf(e *estimate, x *context) {
+	ln := &f.lines[e.row]
+	var ls []label
+	for i := len(ln.labels) - 1; i >= 0; i-- {
+		ls = append(ls, ln.labels[i])
+	}
+	for i := len(ln.groups) - 1; i >= 0; i-- {
+		ls = append(ls, f.lines[ln.groups[i]].labels...)
+	}
+	path := f.path(e.row, e.col)
+	for i := len(path) - 1; i >= 0; i-- {
+		ls = append(ls, path[i])
+	}
+	if e.unit != "" && isUnit(e.unit) {
+		x.unit, x.unitAt = e.unit, label{text: e.unit, raw: e.unit, cell: e.cell}
+		return
+	}
+	if e.value.Percent {
+		x.unit, x.unitAt = "%", label{text: "%", raw: "%", cell: e.cell}
+		return
+	}
+	for _, l := range ls {
+		if u := unitIn(l.text); u != "" {
+			x.unit, x.unitAt = u, l
+			return
+		}
+	}
+}
+
+// unitIn finds the unit in a label: "Colony mass (kg)", "Flight time, min".
+func unitIn(s string) string {
+	s = nPhrase.ReplaceAllString(s, " ")
+	ms := unitBracket.FindAllStringSubmatch(s, -1)
+	for i := len(ms) - 1; i >= 0; i-- {
+		for _, piece := range strings.FieldsFunc(ms[i][1], func(r rune) bool { return r == ';' || r == ',' }) {
+			if piece = clean(piece); isUnit(piece) {
+				return piece
+			}
+		}
+	}
+	t := clean(stripTerms(s))
+	t = strings.Trim(spaceBracket.ReplaceAllString(t, " "), " ,;")
+	if m := unitComma.FindStringSubmatch(t); m != nil && isUnit(clean(m[1])) {
+		return clean(m[1])
+	}
+	if strings.Contains(t, "%") && !strings.Contains(s, "95%") {
+		return "%"
+	}
+	return ""
+}
+
+// isUnit reports that every part of s is the sign of a unit.
+func isUnit(s string) bool {
+	parts := strings.FieldsFunc(s, func(r rune) bool {
+		return r == '/' || r == ' ' || r == '·' || r == '.' || r == '*' || r == '\u00a0' || r == '∙' || r == '⋅'
+	})
+	if len(parts) == 0 || len(parts) > 6 {
+		return false
+	}
+	for _, p := range parts {
+		if !unitToken.MatchString(p) {
+			return false
+		}
+	}
+	return true
+}
