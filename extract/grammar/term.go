@@ -12,6 +12,9 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 		return Meaning{}, i, false
 	}
 	for _, e := range vocabulary[singular(p.toks[i].Value)] {
+		if p.toks[i].Value == "quartile" {
+			break // "the highest quartile" is a group
+		}
 		if end, ok := p.pattern(i, e); ok && (!needsValue[e.words[0]] || len(e.words) > 1 || p.hasValue(end)) {
 			return e.Meaning, p.definition(end, e.Meaning), true
 		}

@@ -60,6 +60,8 @@ func Of(doc *paper.Document) *Conventions {
 			s.Zone, s.Block = b.Zone, i
 			if b.Kind == paper.Caption {
 				s.Scope = Figures
+			} else if s.Declared && noteLike(b) {
+				s.Scope = Tables
 			} else if !s.Declared && b.Zone != paper.Methods && !s.Sign {
 				continue
 			}
@@ -78,6 +80,13 @@ func Of(doc *paper.Document) *Conventions {
 		}
 	}
 	return c
+}
+
+// noteLike reports a short paragraph outside the methods: a declaration in it is
+// a table's note that lost its table.
+func noteLike(b *paper.Block) bool {
+	const short = 600
+	return b.Kind == paper.Note || b.Zone != paper.Methods && b.Zone != paper.Abstract && len(b.Text.S) < short
 }
 
 // In gives the statements of one caption, note or heading.

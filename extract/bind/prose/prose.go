@@ -139,6 +139,23 @@ func (p *para) sentences() {
 		p.ends = append(p.ends, next.Start)
 	}
 	p.ends = append(p.ends, len(p.s))
+	p.joinItems()
+}
+
+// joinItems takes out the ends that fall into an item: "−14. 6 to −1.9".
+func (p *para) joinItems() {
+	kept := p.ends[:0]
+	k := 0
+	for _, end := range p.ends {
+		for k < len(p.r.Items) && p.r.Items[k].End <= end {
+			k++
+		}
+		if k < len(p.r.Items) && p.r.Items[k].Start < end && end < len(p.s) {
+			continue
+		}
+		kept = append(kept, end)
+	}
+	p.ends = kept
 }
 
 var abbreviations = map[string]bool{

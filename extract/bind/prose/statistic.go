@@ -36,19 +36,38 @@ func (p *para) statistic(c *cand) named {
 		if e.Start >= it.Start || e.Start < from {
 			continue
 		}
-		if e.Statistic == "" || e.Kind != grammar.KindTerm {
-			continue
-		}
-		if e.Start < at && at-e.End > 160 {
+		if e.Statistic == "" || e.Kind != grammar.KindTerm || e.Start < at && at-e.End > 300 {
 			continue
 		}
 		n := named{statistic: result.Statistic(e.Statistic), measure: e.Measure, model: e.Model, at: e.WordAt}
+		if n.statistic == result.MeanDifference && p.noContrastOf(c, n.at) {
+			continue
+		}
 		best = p.combine(best, n)
 	}
 	if best.statistic == "" {
 		best = p.termBehind(c, to)
 	}
 	return p.settle(c, best, from, at, to)
+}
+
+var denied = regexp.MustCompile(`(?i)\b(?:no|not|any|without)\b[^.;]{0,40}$`)
+
+// noContrastOf reports that a word "difference" only speaks about the values
+// of single groups: "no significant differences in mass (12.4 ± 1.3 vs ...)".
+// The spread of a value with a CI may still be a difference's.
+func (p *para) noContrastOf(c *cand, at grammar.Span) bool {
+	switch c.given {
+	case result.SD, result.SE, result.Unstated, result.IQR, result.Range:
+	default:
+		return false
+	}
+	between := ""
+	if at.End <= c.est.Start {
+		between = p.s[at.End:c.est.Start]
+	}
+	return strings.HasSuffix(p.s[at.Start:at.End], "s") || len(between) > 50 || strings.ContainsAny(between, ",;") ||
+		denied.MatchString(p.s[max(0, at.Start-50):at.Start])
 }
 
 // termBehind looks for a term just behind the spread: "12.4 ± 1.3 (mean ± SD)",
@@ -85,17 +104,22 @@ func (p *para) combine(a, b named) named {
 		if b.model == "" {
 			b.model = a.model
 		}
-	case near && a.statistic == result.Ratio && b.statistic != result.Ratio && b.at.Start-a.at.End < 4:
-		return a
+	case a.statistic == result.Ratio && b.statistic != result.Ratio && b.at.Start-a.at.End < 60 && !strings.ContainsAny(p.s[a.at.End:b.at.Start], "0123456789;"):
+		return a // "the odds ratio and its CI for the treatment difference"
 	}
 	return b
 }
+
+var (
+	fromTo  = regexp.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
+	byMuch  = regexp.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
+	moreish = regexp.MustCompile(`(?i)^[^).;]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
+)
 
 // settle decides where no term, or one that is too general, was found.
 func (p *para) settle(c *cand, n named, from, at, to int) named {
 	before := p.s[max(from, at-110):at]
 	around := p.s[from:to]
-	change := changeWords.MatchString(lastClause(before))
 	percent := c.est.Percent || c.lower.Percent
 	switch c.given {
 	case result.IQR:
@@ -112,24 +136,14 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		}
 		return n
 	case result.SD, result.SE, result.Unstated:
-		switch n.statistic {
-		case result.Mean:
-			if change && strings.Contains(lastClause(before), " by ") {
-				n.statistic = result.MeanChange
-			}
-		case result.MeanChange, result.MeanDifference, result.Coefficient, result.GeometricMean, result.Median, result.Ratio:
-		case "", result.Proportion, result.Rate, result.Other, result.RiskDifference:
-			n.statistic, n.measure = result.Mean, ""
-			if change {
-				n.statistic = result.MeanChange
-			}
-		}
-		return n
+		return p.settleSpread(c, n, before, p.s[p.r.Items[c.item].End:to])
 	}
+	change := changeWords.MatchString(lastClause(before))
+	compared := betterThan.MatchString(around) || contrast.MatchString(p.beforeFirst(c, from))
 	switch n.statistic {
 	case "":
 		switch {
-		case betterThan.MatchString(around) && !percent, contrast.MatchString(lastClause(before)):
+		case compared && !percent, contrast.MatchString(lastClause(before)):
 			n.statistic = result.MeanDifference
 		case change:
 			n.statistic = result.MeanChange
@@ -139,27 +153,69 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 			n.statistic = result.Mean
 		}
 	case result.MeanChange:
-		if betterThan.MatchString(around) || contrast.MatchString(before) {
+		if compared {
 			n.statistic = result.MeanDifference
 		}
 	case result.Mean:
-		if percent && sharesOf.MatchString(before) {
+		switch {
+		case at-n.at.End < 4 && at > n.at.End: // "mean: 1768.7"
+		case percent && sharesOf.MatchString(before):
 			n.statistic = result.Proportion
+		case compared:
+			n.statistic = result.MeanDifference
+		case percent && changeWords.MatchString(around):
+			n.statistic = result.MeanChange
 		}
 	case result.Rate:
 		if percent {
 			n.statistic = result.Proportion
 		}
 	case result.MeanDifference:
-		if percent && n.measure == "" {
+		if percent && n.measure == "" && (sharesOf.MatchString(around) || strings.Count(around, "%") > 3) {
 			n.statistic = result.RiskDifference
 		}
 	}
 	return n
 }
 
-// lastClause is what stands behind the last semicolon, full stop or opening
-// bracket.
+// settleSpread decides for a value with SD, SE or a bare ±: a mean, unless a
+// change or difference is said right before it.
+func (p *para) settleSpread(c *cand, n named, before, behind string) named {
+	switch n.statistic {
+	case result.Coefficient, result.GeometricMean, result.Median, result.Ratio:
+		return n
+	}
+	clause := before
+	if i := strings.LastIndexAny(before, ";±"); i >= 0 {
+		clause = before[i:]
+	}
+	switch {
+	case fromTo.MatchString(before):
+		n.statistic, n.measure = result.Mean, ""
+	case moreish.MatchString(behind) && !strings.Contains(behind[:min(len(behind), 45)], " than"):
+		n.statistic = result.MeanDifference
+	case n.statistic == result.MeanDifference:
+	case n.statistic == result.MeanChange && (strings.Contains(strings.ToLower(p.s[n.at.Start:n.at.End]), "mean") || byMuch.MatchString(before)):
+	case changeWords.MatchString(clause) && byMuch.MatchString(before):
+		n.statistic = result.MeanChange
+	default:
+		n.statistic, n.measure = result.Mean, ""
+	}
+	return n
+}
+
+// beforeFirst is the sentence up to its first result.
+func (p *para) beforeFirst(c *cand, from int) string {
+	end := c.est.Start
+	for k := range p.cands {
+		if s := p.cands[k].est.Start; s >= from && s < end {
+			end = s
+		}
+	}
+	return p.s[from:end]
+}
+
+// lastClause is what stands behind the last semicolon.
 func lastClause(s string) string {
 	if i := strings.LastIndexAny(s, ";"); i >= 0 {
 		return s[i+1:]
