@@ -18,8 +18,13 @@ type block struct {
 func (rd *reader) headBlocks() []block {
 	var out []block
 	boxes := rd.columnBoxes()
-	for i := range rd.head {
-		row := rd.spanned(i, boxes)
+	bands := rd.headBands(boxes)
+	for i := range bands {
+		if i+1 < len(bands) {
+			rd.shareColumns(bands[i], bands[i+1], boxes)
+		}
+	}
+	for _, row := range bands {
 		for k := range row {
 			p := row[k]
 			if b := rd.above(out, &p.piece, row); b >= 0 {
@@ -46,7 +51,7 @@ func (rd *reader) columnBoxes() []box {
 	out := make([]box, len(rd.cs)+1)
 	for i := rd.head; i < len(rd.lines); i++ {
 		for k := range rd.cells[i] {
-			if p := &rd.cells[i][k]; p.c0 == p.c1 && (p.c0 > 0 || len(rd.cells[i]) > 1) {
+			if p := &rd.cells[i][k]; p.c0 == p.c1 && len(rd.cells[i]) > 1 {
 				out[p.c0] = out[p.c0].union(p.box)
 			}
 		}
@@ -77,25 +82,34 @@ type headPiece struct {
 	fixed bool
 }
 
-// spanned finds the columns that the pieces of heading line i span: by the
-// upright rules beside them, by the rule under them, by where they stand over
-// the cells of the next line.
-func (rd *reader) spanned(i int, boxes []box) []headPiece {
-	row := make([]headPiece, len(rd.cells[i]))
-	for k := range row {
-		row[k].piece = rd.cells[i][k]
-		p := &row[k]
-		if x0, x1, ok := rd.sidesAt(p.mid(), &rd.lines[i]); ok {
-			p.c0, p.c1, p.fixed = within(boxes, x0, x1, p.c0, p.c1)
-			p.fixed = true
-		} else if r, ok := rd.ruleUnder(i, p.mid()); ok {
-			if c0, c1, ok := within(boxes, r.x0, r.x1, p.c0, p.c1); ok {
+// headBands gives the pieces of the heading by height: lines that overlap, as
+// where one cell is centred beside two lines of another, are one band. The
+// columns of each piece are told by the upright rules beside it or by the rule
+// under it, where they are drawn.
+func (rd *reader) headBands(boxes []box) [][]headPiece {
+	var out [][]headPiece
+	for i := range rd.head {
+		var row []headPiece
+		for _, p := range rd.cells[i] {
+			row = append(row, headPiece{piece: p})
+		}
+		if n := len(out); n > 0 && (rd.lines[i].base-rd.lines[i-1].base)*10 < rd.em*8 {
+			out[n-1] = append(out[n-1], row...)
+			continue
+		}
+		out = append(out, row)
+	}
+	for _, row := range out {
+		for k := range row {
+			p := &row[k]
+			if x0, x1, ok := rd.sidesAt(p.run.mid(), &rd.lines[p.line]); ok {
+				p.c0, p.c1, p.fixed = within(boxes, x0, x1, p.c0, p.c1)
+			} else if c0, c1, ok := rd.ruleUnder(p, row, boxes); ok {
 				p.c0, p.c1, p.fixed = c0, c1, true
 			}
 		}
 	}
-	rd.shareColumns(i, row, boxes)
-	return row
+	return out
 }
 
 func (r *run) mid() int { return (r.x0 + r.x1) / 2 }
@@ -137,40 +151,64 @@ func (rd *reader) sidesAt(x int, ln *line) (x0, x1 int, ok bool) {
 	return x0, x1, n >= 2 && x0 > -1<<30 && x1 < 1<<30
 }
 
-// ruleUnder gives the rule drawn under heading line i at x, if it is not the
-// rule of the whole heading.
-func (rd *reader) ruleUnder(i, x int) (rule, bool) {
-	bot := rd.lines[i].base + rd.lines[i].size*12/10
-	if i+1 < len(rd.lines) {
-		bot = min(bot, rd.lines[i+1].base-rd.lines[i+1].size/3)
-	}
-	var cur rule
-	for _, p := range rulesIn(rd.s.drawn, box{rd.area.x0, rd.lines[i].base, rd.area.x1, bot}) {
-		if cur.x1 > 0 && abs(p.y-cur.y) <= sameY && p.x0 <= cur.x1+100 {
-			cur.x1 = max(cur.x1, p.x1)
-		} else {
-			if cur.x0 <= x && x <= cur.x1 && cur.x1 > cur.x0 {
-				break
-			}
-			cur = p
+// ruleUnder gives the rule drawn under a heading piece and under no other piece
+// of its band.
+func (rd *reader) ruleUnder(p *headPiece, band []headPiece, boxes []box) (c0, c1 int, ok bool) {
+	ln := &rd.lines[p.line]
+	x, bot := p.run.mid(), ln.base+ln.size*14/10
+	for i := p.line + 1; i < len(rd.lines); i++ {
+		if rd.lines[i].base-ln.base >= rd.em*8/10 {
+			bot = min(bot, rd.lines[i].base-rd.lines[i].size/3)
+			break
 		}
 	}
-	if cur.x0 <= x && x <= cur.x1 && !rd.full(cur) {
-		return cur, true
+	var raw, joined rule
+	for _, d := range rulesIn(rd.s.drawn, box{rd.area.x0, ln.base, rd.area.x1, bot}) {
+		if d.x0 <= x && x <= d.x1 && d.x1-d.x0 > raw.x1-raw.x0 {
+			raw = d
+		}
 	}
-	return rule{}, false
+	if raw.x1 == 0 {
+		return 0, 0, false
+	}
+	joined = raw
+	for again := true; again; {
+		again = false
+		for _, d := range rulesIn(rd.s.drawn, box{rd.area.x0, raw.y - sameY, rd.area.x1, raw.y + sameY}) {
+			if d.x0 <= joined.x1+100 && d.x1 >= joined.x0-100 && (d.x0 < joined.x0 || d.x1 > joined.x1) {
+				joined.x0, joined.x1, again = min(joined.x0, d.x0), max(joined.x1, d.x1), true
+			}
+		}
+	}
+	for _, r := range []rule{joined, raw} {
+		if rd.full(r) || coversOthers(r, p, band) {
+			continue
+		}
+		// A rule under one column only may be a part of a longer one.
+		if c0, c1, ok = within(boxes, r.x0, r.x1, p.c0, p.c1); ok && c1 > c0 {
+			return c0, c1, true
+		}
+	}
+	return 0, 0, false
 }
 
-// shareColumns widens the pieces of a heading line that stand over several
-// cells of the next line with nothing drawn between them.
-func (rd *reader) shareColumns(i int, row []headPiece, boxes []box) {
-	if i+1 >= rd.head || len(row) == 0 {
-		return
+// coversOthers reports whether the rule r runs under another piece than p.
+func coversOthers(r rule, p *headPiece, band []headPiece) bool {
+	for i := range band {
+		if q := &band[i]; q.x0 != p.x0 && q.run.mid() > r.x0 && q.run.mid() < r.x1 {
+			return true
+		}
 	}
+	return false
+}
+
+// shareColumns widens the pieces of a heading band that stand over several
+// cells of the next one with nothing drawn between them.
+func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
 	under := make([]bool, len(boxes))
 	n := 0
-	for k := range rd.cells[i+1] {
-		p := &rd.cells[i+1][k]
+	for k := range next {
+		p := &next[k]
 		if p.c0 == p.c1 && p.c0 > 0 {
 			under[p.c0] = true
 			n++
@@ -189,19 +227,35 @@ func (rd *reader) shareColumns(i int, row []headPiece, boxes []box) {
 	if spans == 0 || n <= spans {
 		return
 	}
+	wrapped := len(row) > 0 && (next[0].top-row[0].top)*100 <= 135*rd.em && !repeats(next)
 	for k := range row {
-		p := &row[k]
-		if p.fixed || p.c0 == 0 {
-			continue
+		if p := &row[k]; !p.fixed && p.c0 > 0 {
+			rd.stretch(p, taken, under, boxes, wrapped && !rd.anyRule(row, next))
 		}
-		rd.stretch(p, taken, under, boxes)
 	}
+}
+
+// repeats reports whether a text stands twice in a band, as subheadings do.
+func repeats(row []headPiece) bool {
+	seen := map[string]bool{}
+	for i := range row {
+		if seen[row[i].text] {
+			return true
+		}
+		seen[row[i].text] = true
+	}
+	return false
+}
+
+// anyRule reports whether something is drawn between two bands.
+func (rd *reader) anyRule(row, next []headPiece) bool {
+	return len(rulesIn(rd.rules, box{rd.area.x0, row[0].bot - rd.em/4, rd.area.x1, next[0].bot - rd.em/2})) > 0
 }
 
 // stretch lets one heading piece reach over free neighbouring columns as long
 // as that brings it nearer to the middle of what it spans, or, if it is flush
 // left with its first column, to the next heading.
-func (rd *reader) stretch(p *headPiece, taken, under []bool, boxes []box) {
+func (rd *reader) stretch(p *headPiece, taken, under []bool, boxes []box, wrapped bool) {
 	free := func(c int) bool { return c > 0 && c < len(boxes) && !taken[c] && under[c] }
 	lo, hi := p.c0, p.c1
 	for free(lo - 1) {
@@ -213,22 +267,42 @@ func (rd *reader) stretch(p *headPiece, taken, under []bool, boxes []box) {
 	if lo == hi {
 		return
 	}
-	b0, b1, best := p.c0, p.c1, 1<<30
+	b0, b1, best := p.c0, p.c1, rd.offCentre(p, p.c0, p.c1, boxes)-rd.em/2
+	own := best
 	for a := lo; a <= p.c0; a++ {
 		for b := p.c1; b <= hi; b++ {
-			if d := abs(boxes[a].x0 + boxes[b].x1 - p.x0 - p.x1); d < best {
+			if d := rd.offCentre(p, a, b, boxes); d < best {
 				b0, b1, best = a, b, d
 			}
 		}
 	}
 	left := abs(p.x0 - boxes[p.c0].x0)
-	if left*10 < rd.em*4 && left*2 < best && hi > p.c1 {
+	if left*10 < rd.em*4 && left < best && hi > p.c1 {
 		b0, b1 = p.c0, hi
+	}
+	if wrapped && (left*10 < rd.em*4 || own <= rd.em/2) {
+		return
 	}
 	p.c0, p.c1 = b0, b1
 	for c := b0; c <= b1; c++ {
 		taken[c] = true
 	}
+}
+
+// offCentre tells how far the middle of p is from the middle of columns a to b,
+// by their cells or by the corridors round them, whichever is nearer.
+func (rd *reader) offCentre(p *headPiece, a, b int, boxes []box) int {
+	x0, x1 := boxes[a].x0, boxes[b].x1
+	d := abs(x0+x1-p.x0-p.x1) / 2
+	if a > 0 {
+		x0 = rd.cs[a-1].mid()
+	}
+	if b < len(rd.cs) {
+		x1 = rd.cs[b].mid()
+	} else {
+		x1 = rd.area.x1
+	}
+	return min(d, abs(x0+x1-p.x0-p.x1)/2)
 }
 
 // above gives the block that piece p of a heading line goes on from, or -1.

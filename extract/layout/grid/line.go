@@ -133,14 +133,7 @@ func isFigure(text string) bool {
 	if digits == 0 {
 		return false
 	}
-	first := rune(0)
-	for _, r := range text {
-		if r != '(' && r != '[' {
-			first = r
-			break
-		}
-	}
-	starts := unicode.IsDigit(first) || strings.ContainsRune("-–−+±<>≤≥=~∼.·$£€*†‡§", first)
+	starts := startsFigure(text)
 	low := strings.ToLower(text)
 	if strings.HasPrefix(low, "p ") || strings.HasPrefix(low, "p=") || strings.HasPrefix(low, "p<") || strings.HasPrefix(low, "p=") {
 		starts = true
@@ -152,6 +145,21 @@ func isFigure(text string) bool {
 		}
 	}
 	return starts && letters <= max(1, digits)
+}
+
+// startsFigure reports whether the first thing printed is a number, after signs,
+// brackets and marks.
+func startsFigure(text string) bool {
+	for _, r := range text {
+		switch {
+		case unicode.IsDigit(r):
+			return true
+		case strings.ContainsRune("([-–−+±<>≤≥=~∼.·$£€*†‡§ ", r):
+		default:
+			return false
+		}
+	}
+	return false
 }
 
 // isHeadFigure reports whether a figure is of the kinds that stand in column

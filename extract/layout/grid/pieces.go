@@ -20,14 +20,15 @@ func column(cs []corridor, x int) int {
 }
 
 // pieces cuts a line into cells at the corridors.
-func (s *sheet) pieces(ln *line, at int, cs []corridor, em int) []piece {
-	whole := s.crossesInWord(ln, cs) && len(s.atoms(ln)) == 1
+// In a heading line numbers part no cells: "n = 42" stands in one.
+func (s *sheet) pieces(ln *line, at int, cs []corridor, em int, head bool) []piece {
+	whole := !head && s.crossesInWord(ln, cs) && len(s.atoms(ln)) == 1
 	var out []piece
 	for k, i := range ln.toks {
 		t := &s.toks[i]
 		cut := k == 0
 		if k > 0 && !whole {
-			cut = s.cutBetween(ln.toks[k-1], i, cs, em)
+			cut = s.cutBetween(ln.toks[k-1], i, cs, em, head)
 		}
 		if cut {
 			out = append(out, piece{run: run{box: box{t.x0, ln.top, t.x1, ln.bot}}, line: at})
@@ -39,8 +40,8 @@ func (s *sheet) pieces(ln *line, at int, cs []corridor, em int) []piece {
 		p := &out[k]
 		p.text = s.join(p.toks)
 		p.figure = isFigure(p.text)
-		p.c0 = column(cs, s.toks[p.toks[0]].mid())
-		p.c1 = max(p.c0, column(cs, s.toks[p.toks[len(p.toks)-1]].mid()))
+		p.c0 = column(cs, p.x0)
+		p.c1 = max(p.c0, column(cs, p.x1))
 		for p.c0 < p.c1 && cs[p.c0].x0-p.x0 < em/4 {
 			p.c0++
 		}
@@ -66,7 +67,7 @@ func (s *sheet) crossesInWord(ln *line, cs []corridor) bool {
 }
 
 // cutBetween reports whether a cell ends between the neighbouring words a and b.
-func (s *sheet) cutBetween(a, b int, cs []corridor, em int) bool {
+func (s *sheet) cutBetween(a, b int, cs []corridor, em int, head bool) bool {
 	ta, tb := &s.toks[a], &s.toks[b]
 	gap := (tb.x0 - ta.x1) * 100
 	ca, cb := column(cs, ta.mid()), column(cs, tb.mid())
@@ -79,11 +80,13 @@ func (s *sheet) cutBetween(a, b int, cs []corridor, em int) bool {
 		return true
 	case tb.glued && gap < 5*em:
 		return false
-	case figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em:
+	case head && gap < wordGap*em && !(c.tight && ta.x1 <= c.x0+em/10 && tb.x0 >= c.x1-em/10):
+		return false
+	case !head && figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em:
 		return !clings(ta.text, tb.text)
 	case clings(ta.text, tb.text) && gap < wordGap*em:
 		return false
-	case c.tight:
+	case c.tight && gap < wordGap*em:
 		return ta.x1 <= c.x0+em/10 && tb.x0 >= c.x1-em/10
 	}
 	return gap >= wordGap*em || ta.x1 <= c.x0 && tb.x0 >= c.x1 && gap >= 35*em

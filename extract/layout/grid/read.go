@@ -54,7 +54,7 @@ func newReader(s *sheet, body box) *reader {
 	rd.cs = s.findColumns(rd.lines[rd.head:], rd.em)
 	rd.cells = make([][]piece, len(rd.lines))
 	for i := range rd.lines {
-		rd.cells[i] = s.pieces(&rd.lines[i], i, rd.cs, rd.em)
+		rd.cells[i] = s.pieces(&rd.lines[i], i, rd.cs, rd.em, i < rd.head)
 	}
 	return rd
 }
@@ -122,18 +122,18 @@ func (rd *reader) headLines() int {
 		}
 	}
 	ruled := len(full)*2 > n && len(full) > 3
-	if len(full) > 0 && !ruled && full[0] <= max(data, 0) {
+	if len(full) > 0 && full[0] > data && full[0] <= 8 && rd.fewFigures(full[0]) {
+		return full[0]
+	}
+	if len(full) > 0 && !ruled && full[0] <= data {
 		// Rules: the head ends at the last rule above the data that has column heads above it.
 		end := full[0]
 		for _, f := range full[1:] {
-			if f <= data && !rd.allStub(end, f) {
+			if f <= data && !rd.allSingle(end, f) {
 				end = f
 			}
 		}
 		return end
-	}
-	if len(full) > 0 && !ruled && data < full[0] && full[0] <= 4 && full[0] < n {
-		return full[0]
 	}
 	if data == n {
 		if len(full) > 0 {
@@ -143,12 +143,8 @@ func (rd *reader) headLines() int {
 	}
 	// Row groups just above the first data belong to the body.
 	end := data
-	for end > 0 && rd.stubOnly(end-1) && (!ruled || rd.fullBetween(end)) && !rd.allStub(0, end) {
-		if ruled || rd.lines[end].top-rd.lines[end-1].bot >= 0 {
-			end--
-			continue
-		}
-		break
+	for end > 1 && (rd.stubOnly(end-1) || ruled && rd.allSingle(end-1, end)) && (!ruled || rd.fullBetween(end)) && !rd.allSingle(0, end-1) {
+		end--
 	}
 	if end == 0 {
 		return data
@@ -156,10 +152,28 @@ func (rd *reader) headLines() int {
 	return end
 }
 
-// allStub reports whether lines [i, j) are row groups: single runs at the left.
-func (rd *reader) allStub(i, j int) bool {
+// allSingle reports whether lines [i, j) are row groups: one run each.
+func (rd *reader) allSingle(i, j int) bool {
 	for ; i < j; i++ {
-		if !rd.stubOnly(i) {
+		if len(rd.s.runs(&rd.lines[i], 100)) > 1 {
+			return false
+		}
+	}
+	return true
+}
+
+// fewFigures reports whether the lines above line n read as headings although
+// some of their cells are figures ("10-14" weeks, a year).
+func (rd *reader) fewFigures(n int) bool {
+	for i := range n {
+		figures := 0
+		rs := rd.s.runs(&rd.lines[i], 60)
+		for k := range rs {
+			if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) {
+				figures++
+			}
+		}
+		if figures >= 2 && figures*2 > len(rs) {
 			return false
 		}
 	}

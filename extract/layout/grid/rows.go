@@ -122,7 +122,7 @@ func (rd *reader) joins(cur []int, i, pitch int, ruled bool) bool {
 		}
 		return unfinishedLabel(stubUp.text, stub.text) || tight && sameWeight(rd.s, stubUp, stub) && startsLow(stub.text)
 	case stub != nil && stubUp != nil:
-		return !rd.clash(above, i) && (tight && !rd.figuresShared(last, i) || unfinishedLabel(stubUp.text, stub.text))
+		return !rd.clash(above, i) && (tight && startsLow(stub.text) && sameWeight(rd.s, stubUp, stub) || unfinishedLabel(stubUp.text, stub.text))
 	case stub != nil && stubUp == nil:
 		return tight && !rd.clash(above, i)
 	}
