@@ -58,3 +58,7 @@ require (
 	modernc.org/mathutil v1.7.1 // indirect
 	modernc.org/memory v1.12.1 // indirect
 )
+
+// From v0.0.25 on it fills a table of all code points at every start of the
+// program, which takes 30 to 50 ms.
+replace github.com/mattn/go-runewidth => github.com/mattn/go-runewidth v0.0.24
