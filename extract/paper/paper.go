@@ -19,6 +19,7 @@ type Document struct {
 	Pages    []Page    // one per page; empty where the format has no pages
 	Blocks   []Block   // the whole paper in reading order
 	Problems []Problem // what could not be read, or not surely
+	Doubts   []Doubt   // places whose reading is not beyond doubt, by page
 }
 
 // Page is one page of a paginated paper.
@@ -35,6 +36,15 @@ type Problem struct {
 	Kind string `json:"kind"`           // a flag-like name: "no-text", "readers-differ", "page-unreadable", "cut-short", "picture-table", "repaired", ...
 	Text string `json:"text"`           // one sentence in plain words: what, and what to do
 	Lost bool   `json:"lost,omitempty"` // content may be missing: the scan ends with status 3
+}
+
+// Doubt is a place on a page whose reading is not beyond doubt. Results that
+// stand on it carry Kind as a flag and Text as the explanation.
+type Doubt struct {
+	Page int    `json:"page"`
+	Box  Box    `json:"box"`
+	Kind string `json:"kind"` // "readers-differ", "repaired"
+	Text string `json:"text"` // both readings; what was repaired and why
 }
 
 // Point is a position on a page, in 1/100 point.
@@ -89,6 +99,7 @@ type Glyph struct {
 	Font                    int32 // index into the page's font names
 	Angle                   int16 // direction of the baseline in degrees counter-clockwise in user space: 0, 90, 180, 270; others rounded to a degree
 	Bold, Italic, Invisible bool
+	Repaired                bool // Text is not what the file says: see the page's Doubts
 }
 
 // GlyphPage is what a PDF reader hands to the layout: the glyphs of one page
@@ -99,4 +110,5 @@ type GlyphPage struct {
 	Glyphs []Glyph
 	Rules  []Box // drawn lines, each as a thin box
 	Images []Box // placed pictures
+	Doubts []Doubt
 }
