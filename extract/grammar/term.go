@@ -15,6 +15,9 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 		if p.toks[i].Value == "quartile" {
 			break // "the highest quartile" is a group
 		}
+		if needsValue[e.words[0]] && i > 0 && !p.toks[i].Spaced && p.toks[i-1].Kind == TokNumber {
+			continue // the b of "1b" is no coefficient
+		}
 		if end, ok := p.pattern(i, e); ok && (!needsValue[e.words[0]] || len(e.words) > 1 || p.hasValue(end)) {
 			return e.Meaning, p.definition(end, e.Meaning), true
 		}
@@ -52,8 +55,8 @@ func (p *parser) hasValue(i int) bool {
 func (p *parser) pattern(i int, e entry) (int, bool) {
 	for k, w := range e.words {
 		if k > 0 {
-			if i < len(p.toks) && (p.toks[i].Kind == TokDash && !p.toks[i].Spaced || isApostrophe(p.toks[i])) {
-				i++
+			if i < len(p.toks) && (p.toks[i].Kind == TokDash && !p.toks[i].Spaced || isApostrophe(p.toks[i]) || p.toks[i].Kind == TokPeriod && !p.toks[i].Spaced) {
+				i++ // inter-quartile, Cohen's d, Std. Error
 			}
 		}
 		if i >= len(p.toks) || p.toks[i].Kind != TokWord {
