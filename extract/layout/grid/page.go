@@ -18,6 +18,8 @@ type tok struct {
 	shift            paper.StyleKind
 	glued            bool
 	text             string
+	page             int32
+	w                *words.Word
 }
 
 func (t *tok) mid() int { return (t.x0 + t.x1) / 2 }
@@ -60,6 +62,7 @@ type sheet struct {
 	images   []box
 	bounds   box
 	bodySize int // the font size that most letters have
+	page     int
 }
 
 const (
@@ -82,7 +85,7 @@ func newSheet(f *words.Frame, bodySize int) *sheet {
 			b := flip(w.Box)
 			s.toks = append(s.toks, tok{
 				x0: b.x0, x1: b.x1, top: b.top, bot: b.bot, base: g.base, size: max(int(w.Size), 1),
-				line: int32(li), word: int32(wi), bold: w.Bold, shift: w.Shift, glued: w.Glued, text: w.Text,
+				line: int32(li), word: int32(wi), bold: w.Bold, shift: w.Shift, glued: w.Glued, text: w.Text, w: w,
 			})
 			g.chars += len(w.Glyphs)
 			g.bold = g.bold && (w.Bold || w.Shift != 0)

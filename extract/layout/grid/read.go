@@ -23,17 +23,20 @@ func (r *Region) Read(page int) paper.Table {
 	t := paper.Table{Label: r.Label, Page: page, Picture: r.Picture}
 	t.Box = r.sheet.toPage(r.area)
 	t.Turned = r.sheet.frame.Angle != 0
-	w := writer{sheet: r.sheet, page: page}
-	t.Caption = w.caption(r)
-	t.Notes = w.notes(r.noteLns)
+	own := writer{sheet: r.sheet, page: page}
+	t.Caption = own.caption(r)
+	t.Notes = own.notes(r.noteLns)
+	for _, p := range r.parts {
+		w := writer{sheet: p.sheet, page: page}
+		t.Notes = append(t.Notes, w.notes(p.noteLns)...)
+	}
 	if r.Picture {
 		return t
 	}
-	rd := newReader(r.sheet, r.body)
-	if rd == nil {
-		return t
+	whole, body := r.whole()
+	if rd := newReader(whole, body); rd != nil {
+		rd.write(&t, &writer{sheet: whole, page: page})
 	}
-	rd.write(&t, &w)
 	return t
 }
 

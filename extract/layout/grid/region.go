@@ -15,6 +15,7 @@ type Region struct {
 	Continued bool   // goes on from an earlier page: said so, or begins without a caption at the page's top
 	Open      bool   // reaches the foot of the page without an end: may go on on the next
 	Picture   bool   // a caption over a picture, no words
+	Joined    bool   // a later part of a table: read with its first part, not by itself
 	Caption   []Ref  // label and caption
 	Body      []Ref
 	Notes     []Ref
@@ -22,8 +23,10 @@ type Region struct {
 	sheet            *sheet
 	area             box // caption, body and notes
 	body             box
+	sides            box
 	label            label
 	caption, noteLns []line
+	parts            []*Region
 }
 
 // Find gives the table regions of one frame from top to bottom. bodySize is the
@@ -32,10 +35,21 @@ func Find(f *words.Frame, bodySize int32) []Region {
 	if f.Oblique {
 		return nil
 	}
-	s := newSheet(f, int(bodySize))
+	return newSheet(f, int(bodySize)).find(nil)
+}
+
+// find gives the regions of the sheet; open is a table of the page before that
+// may go on here.
+func (s *sheet) find(open *Region) []Region {
 	labels := s.labels()
 	var out []Region
 	taken := []box{}
+	if open != nil {
+		if r, ok := s.goesOnAt(open, labels); ok {
+			taken = append(taken, r.area)
+			out = append(out, r)
+		}
+	}
 	for i := range labels {
 		if labels[i].figure {
 			continue
@@ -91,7 +105,7 @@ func (s *sheet) regionOf(labels []label, k int, taken []box) (Region, bool) {
 		r.area = s.areaOf(&r)
 		return r, true
 	}
-	r.caption, r.body, r.Open = caption, body, open
+	r.caption, r.body, r.Open, r.sides = caption, body, open, sides
 	r.noteLns = s.notesBelow(body, limit)
 	if len(r.noteLns) > 0 {
 		r.Open = false

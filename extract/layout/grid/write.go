@@ -193,6 +193,14 @@ type writer struct {
 	page  int
 }
 
+// pageOf is the page of a token: its sheet's, where that is known.
+func (w *writer) pageOf(t *tok) int {
+	if t.page != 0 {
+		return int(t.page)
+	}
+	return w.page
+}
+
 // caption is the caption's text without its label.
 func (w *writer) caption(r *Region) paper.TextRun {
 	var toks [][]int
@@ -276,7 +284,7 @@ func (w *writer) text(lines [][]int) paper.TextRun {
 	for li, toks := range lines {
 		for k, i := range toks {
 			t := &w.sheet.toks[i]
-			word := &w.sheet.frame.Lines[t.line].Words[t.word]
+			word := t.w
 			if b.Len() > 0 {
 				switch {
 				case k == 0 && li > 0:
@@ -294,7 +302,7 @@ func (w *writer) text(lines [][]int) paper.TextRun {
 				b.WriteString(g.Text)
 				if b.Len() > from {
 					run.Runs = append(run.Runs, paper.Run{Start: from, End: b.Len(), Place: paper.Place{
-						Page: w.page, Line: int(t.line) + 1, Box: g.Box, Origin: g.Origin,
+						Page: w.pageOf(t), Line: int(t.line) + 1, Box: g.Box, Origin: g.Origin,
 					}})
 				}
 			}
