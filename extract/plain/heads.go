@@ -155,6 +155,9 @@ func (s *headSearch) score(level, cell, from, width, height int, used headIndex)
 	switch {
 	case lowest && width == 1:
 		score = suits(c.label, &s.body[from])
+		if level == 0 && c.kind != empty && score == 0 && s.body[from].mostly(textual) {
+			score = 40 // a column of words has its name at the top
+		}
 		if height > 1 {
 			score += reachesDown(from, s.cols)
 		}
@@ -166,14 +169,27 @@ func (s *headSearch) score(level, cell, from, width, height int, used headIndex)
 		if from == 0 && s.body[1%s.cols].mostly(textual) && s.body[0].mostly(textual) {
 			score += 40 // but a stub of two columns is often named once
 		}
-	case width == 1 && height == 1:
+	case width == 1:
 		if c.kind == empty {
 			score = 10
+		} else if pWord.MatchString(c.label) {
+			score = suits(c.label, &s.body[from]) / 2
+		}
+		if height > 1 {
+			score += reachesDown(from, s.cols) - 10
 		}
 	default:
 		score = s.groupScore(level+height, int(used[min(level+height, maxHeadRows-1)]), width)
 		if c.kind == empty {
-			score -= 50
+			score -= 150
+		} else {
+			score += s.suitsAll(c.label, from, width)
+		}
+		if from == 0 && s.body[0].mostly(textual) && !s.body[width-1].mostly(textual) {
+			score -= 60 // the stub is not grouped with values
+		}
+		if level > 0 {
+			score -= 40
 		}
 		if height > 1 {
 			score -= 30
@@ -209,16 +225,29 @@ func (s *headSearch) groupScore(level, first, width int) int {
 		return 0
 	}
 	score := 0
-	if sameLabels(row, first-width, first, width) || sameLabels(row, first, first+width, width) {
-		score += 100
-	}
 	distinct := map[string]bool{}
 	for _, c := range row[first : first+width] {
-		distinct[c.label] = true
+		distinct[strings.ToLower(c.label)] = true
+	}
+	for other := range row {
+		if len(distinct) > 1 && (other+width <= first || other >= first+width) && sameLabels(row, other, first, width) {
+			score += 100
+			break
+		}
 	}
 	if len(distinct) > 1 && len(distinct) < width {
 		score -= 80
 	}
+	for k, c := range row[first : first+width] {
+		if width > 1 && pWord.MatchString(c.label) {
+			if k == width-1 {
+				score += 30 // a p value closes its group
+			} else {
+				score -= 30
+			}
+		}
+	}
+	score -= 2 * width * width // groups are about as wide as one another
 	if row[first].kind == empty {
 		score -= 60 // a group does not begin with a nameless column
 	}
@@ -226,7 +255,7 @@ func (s *headSearch) groupScore(level, first, width int) int {
 }
 
 func sameLabels(row []rowCell, a, b, n int) bool {
-	if a < 0 || b+n > len(row) {
+	if max(a, b)+n > len(row) {
 		return false
 	}
 	for k := 0; k < n; k++ {
@@ -248,7 +277,8 @@ var headWords = []struct {
 	{regexp.MustCompile(`±|\+/-`), []kind{spread}},
 	{regexp.MustCompile(`(?i)\([^)]*(?:CI|IQR|range|quartile|confidence)[^)]*\)|\w.*\d\d\s*%\s*CI`), []kind{estimate}},
 	{regexp.MustCompile(`(?i)^\W*(?:\d\d\s*%\s*)?(?:CI|confidence interval|IQR|range)\W*$`), []kind{interval}},
-	{regexp.MustCompile(`(?i)\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|n|no\.|standard)[^)]*\)`), []kind{bracket}},
+	{regexp.MustCompile(`(?i)^(?:mean|median|n|no\.?|number).*\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|IQR|standard)[^)]*\)|\w\s*\(\s*(?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.)\s*\)`), []kind{bracket, estimate}},
+	{regexp.MustCompile(`(?i)\((?:n|no\.?)\)$`), []kind{whole}},
 	{regexp.MustCompile(`(?i)^\W*(?:n|no\.?|number)\W*$`), []kind{whole}},
 	{regexp.MustCompile(`(?i)^\W*(?:mean|SD|s\.d\.|SEM?|s\.e\.|%|median|B|β|t|F|z|χ2|OR|RR|HR|MD|effect size|cohen.?s d)\W*$`), []kind{decimal, whole, percent, pvalue}},
 }
@@ -261,6 +291,7 @@ func suits(label string, p *profile) int {
 		}
 		return -30
 	}
+	label = trailingMark.ReplaceAllString(label, "")
 	for _, h := range headWords {
 		if !h.word.MatchString(label) {
 			continue
@@ -275,3 +306,16 @@ func suits(label string, p *profile) int {
 	}
 	return 0
 }
+
+// suitsAll is the mean of suits over several columns; a heading that says
+// nothing of their content counts 0.
+func (s *headSearch) suitsAll(label string, from, width int) int {
+	total := 0
+	for k := from; k < from+width; k++ {
+		total += suits(label, &s.body[k])
+	}
+	return max(total/width, 0)
+}
+
+// trailingMark is a footnote mark behind a heading.
+var trailingMark = regexp.MustCompile(`[\s\x{00A0}]*(?:[*†‡§¶#]+|[\s\x{00A0}][a-e])$`)

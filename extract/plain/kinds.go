@@ -26,9 +26,9 @@ const (
 )
 
 const (
-	number = `[<>≤≥=~]?\s*[-−–+‐]?\s*[$£€]?(?:\d[\d,\x{00A0}\x{2009}]*(?:[.·]\d+)?|[.·]\d+)%?`
+	number = `[<>≤≥=~]?\s*[-−–+‐]?\s*[$£€]?(?:\d[\d,]*(?:[.·]\d+)?|[.·]\d+)%?`
 	sep    = `\s*(?:–|-|−|‐|to|,|;|/|:)\s*`
-	marks  = `[\s\x{00A0}]*[*†‡§¶#a-f,\s\x{00A0}]{0,6}`
+	marks  = `\s*[*†‡§¶#a-f,\s]{0,6}`
 )
 
 // kindForms tells kinds by form; the first that fits decides.
@@ -37,6 +37,7 @@ var kindForms = []struct {
 	kind kind
 }{
 	{regexp.MustCompile(`^[-–—−_.]+$|^(?i:n/?a|nd|nr|ne|ref\.?|reference)$`), wild},
+	{regexp.MustCompile(`^(?:[tTFzZrHQU]|χ2?|X2|df)\s*=\s*[-−–]?[\d.]+` + marks + `$`), decimal}, // a test statistic
 	{regexp.MustCompile(`^(?i:p\s*)?[<>=≤]\s*0?[.·]\d+` + marks + `$|^(?i:ns|n\.s\.)$|^[01]?[.·]\d{2,4}` + marks + `$`), pvalue},
 	{regexp.MustCompile(`^[([]?` + number + `\s*(?:±|\+/?[-−–])\s*` + number), spread},
 	{regexp.MustCompile(`^` + number + marks + `[([]\s*` + number + sep + number + `\s*[)\]]`), estimate},
@@ -45,11 +46,14 @@ var kindForms = []struct {
 	{regexp.MustCompile(`^` + number + `%` + marks + `$|^[0-9.·]+\s*%` + marks + `$`), percent},
 	{regexp.MustCompile(`^[([]?\s*[<>]?\s*[-−–+‐]?\s*\d+\s*[)\]]?` + marks + `$`), whole},
 	{regexp.MustCompile(`^[([]?\s*` + number + `\s*[)\]]?` + marks + `$`), decimal},
-	{regexp.MustCompile(`^` + number + `\s*\pL`), quantity},
+	{regexp.MustCompile(`^` + number + `\s*\pL\S*(?:\s\S+){0,3}$`), quantity},
 }
 
+// specialSpace makes the spaces of print plain ones.
+var specialSpace = strings.NewReplacer("\u00A0", " ", "\u2002", " ", "\u2003", " ", "\u2005", " ", "\u2007", " ", "\u2009", " ", "\u200A", " ", "\u200B", "", "\u202F", " ")
+
 func kindOf(s string) kind {
-	s = strings.TrimFunc(s, func(c rune) bool { return c == ' ' || c == '\u00A0' || c == '\u2009' || c == '\u2003' || c == '\u2002' })
+	s = strings.TrimSpace(specialSpace.Replace(s))
 	if s == "" {
 		return empty
 	}
@@ -96,8 +100,9 @@ type profile [kinds]int
 
 func (p *profile) add(k kind) { p[k]++ }
 
-// fit is the mean likeness of kind k to what the column holds.
-func (p *profile) fit(k kind) int {
+// fit is the mean likeness of kind k to what the column holds; first tells the
+// first column.
+func (p *profile) fit(k kind, first bool) int {
 	total, n := 0, 0
 	for other, count := range p {
 		if count == 0 || kind(other) == empty {
@@ -107,7 +112,10 @@ func (p *profile) fit(k kind) int {
 		n += count
 	}
 	if n == 0 {
-		return 0
+		if first == (k == textual) {
+			return 0
+		}
+		return -50 // unknown: words belong into the first column, values into the others
 	}
 	return total / n
 }

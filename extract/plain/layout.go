@@ -24,16 +24,49 @@ func layOut(rows [][]rowCell, head int) layoutOf {
 	}
 	lay.head = head
 	body := profiles(rows[head:], lay.cols)
-	groups := []spot(nil) // the widest heading cells, as units that body cells may span too
-	if head > 0 {
-		placeHeads(lay.rows[:head], rows[:head], lay.cols, body)
+	first := bodyPlacer{cols: lay.cols, body: body}
+	for i := head; i < len(rows); i++ {
+		lay.rows[i] = first.row(rows[i])
+	}
+	body = lay.profiles(rows)
+	// What the short rows hold is known only once they are placed; it may move
+	// the headings, and these the rows: twice is enough in practice.
+	for range 2 {
+		lay.place(rows, body)
+		body = lay.profiles(rows)
+	}
+	return lay
+}
+
+// place finds the spots of all cells by what the columns hold.
+func (lay *layoutOf) place(rows [][]rowCell, body []profile) {
+	var groups []spot // heading cells over several columns, as units that body cells may span too
+	if lay.head > 0 {
+		placeHeads(lay.rows[:lay.head], rows[:lay.head], lay.cols, body)
+	}
+	if lay.head > 1 {
 		groups = lay.rows[0]
 	}
 	place := bodyPlacer{cols: lay.cols, body: body, groups: groups}
-	for i := head; i < len(rows); i++ {
+	for i := lay.head; i < len(rows); i++ {
 		lay.rows[i] = place.row(rows[i])
 	}
-	return lay
+}
+
+// profiles collects what the placed rows hold in each column.
+func (lay *layoutOf) profiles(rows [][]rowCell) []profile {
+	body := make([]profile, lay.cols)
+	for i := lay.head; i < len(rows); i++ {
+		if labelOnly(rows[i]) {
+			continue
+		}
+		for k, s := range lay.rows[i] {
+			if s.width == 1 {
+				body[s.col].add(rows[i][k].kind)
+			}
+		}
+	}
+	return body
 }
 
 // columns is the width of the table: that of its widest row, trailing empty
@@ -76,14 +109,40 @@ func profiles(rows [][]rowCell, cols int) []profile {
 	return body
 }
 
-// labelOnly reports whether a row holds a text in its first cell alone.
+// labelOnly reports whether a row holds one text alone: the heading of the rows
+// below it. The text may stand in the second cell, where the first is covered.
 func labelOnly(row []rowCell) bool {
+	at := -1
 	for i, c := range row {
-		if (i == 0) != (c.kind != empty) {
+		if c.kind == empty {
+			continue
+		}
+		if at >= 0 {
 			return false
 		}
+		at = i
 	}
-	return len(row) > 0
+	return at == 0 || at == 1 && row[at].kind == textual && len(row) > 2
+}
+
+// labelRow places a row of one text: what the row is short of, the text spans.
+func labelRow(row []rowCell, cols int) []spot {
+	spots := make([]spot, len(row))
+	col := 0
+	for k, c := range row {
+		width := 1
+		if c.kind != empty && len(row) > 1 {
+			width += max(cols-len(row), 0)
+		} else if len(row) == 1 {
+			width = cols
+		}
+		if col+width > cols {
+			break
+		}
+		spots[k] = spot{col, width, 1}
+		col += width
+	}
+	return spots
 }
 
 // dataRow reports whether a row prints values: more than half of its filled
@@ -144,9 +203,9 @@ type bodyPlacer struct {
 func (p *bodyPlacer) row(row []rowCell) []spot {
 	spots := make([]spot, len(row))
 	switch {
-	case len(row) == 1:
-		spots[0] = spot{0, p.cols, 1}
-	case len(row) >= p.cols || labelOnly(row):
+	case labelOnly(row):
+		spots = labelRow(row, p.cols)
+	case len(row) >= p.cols:
 		for k := range row {
 			if k < p.cols {
 				spots[k] = spot{k, 1, 1}
@@ -194,7 +253,7 @@ func (p *bodyPlacer) below(row []rowCell, spots []spot) {
 const (
 	costEdgeLeft  = 20  // columns at the left are covered from above: a stub over several rows
 	costEdgeRight = 30  // at the right: a p value for several rows
-	costInner     = 60  // in between
+	costInner     = 150 // in between
 	costNoAbove   = 150 // nothing there to reach down
 	scoreWide     = 60  // a cell over all columns of one heading
 )
@@ -229,7 +288,7 @@ func (p *bodyPlacer) short(row []rowCell, spots []spot) {
 			if k == n {
 				continue
 			}
-			reach(c+1, k+1, s.score+p.body[c].fit(row[k].kind), 1)
+			reach(c+1, k+1, s.score+p.body[c].fit(row[k].kind, c == 0), 1)
 			if w := p.groupAt(c); w > 1 && row[k].kind != textual {
 				reach(c+w, k+1, s.score+scoreWide, w)
 			}

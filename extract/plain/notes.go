@@ -16,7 +16,9 @@ import (
 // being short; the first that is none of these ends the notes.
 
 var (
-	noteWords = regexp.MustCompile(`^(?i:all values|all data|unless|notes?\b|abbreviations?|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
+	// noteOpens begins nothing but a note, however long it is.
+	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|is|represent|given|shown|in|presented|expressed|reported|denote|indicate)\b|values,|mean(?:s)? ?(?:±|\(|\+)|median(?:s)? ?\(|n \(%\)|n, number|numbers? (?:in|are)\b|(?:the )?table (?:shows|presents|gives))`)
+	noteWords = regexp.MustCompile(`^(?i:notes?\b|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
 	// expands is a list of what letters stand for.
 	expands = regexp.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
 	// symbolMark is a mark that is no letter or digit.
@@ -42,7 +44,7 @@ func (r *reader) notes(t *paper.Table, from int) int {
 		}
 		end := r.paragraphEnd(k, r.chunk(k))
 		run := r.run(k, end)
-		if !r.isNote(run.S, t, marks) {
+		if !r.isNote(run.S, t, marks) && !r.betweenNotes(run.S, end, t, marks) {
 			break
 		}
 		t.Notes = append(t.Notes, r.splitNotes(run, t, marks)...)
@@ -94,10 +96,21 @@ func (r *reader) isNote(s string, t *paper.Table, marks map[string]bool) bool {
 	if expands.MatchString(s) && (strings.Count(s, ";")+strings.Count(s, ",") > 1 || len(s) < shortNote) && declares(s) {
 		return true
 	}
-	if noteWords.MatchString(s) && !sentences(s) {
-		return true
+	return noteOpens.MatchString(s) || noteWords.MatchString(s) && !sentences(s)
+}
+
+// betweenNotes reports whether s, no note by its look, stands right above one:
+// then it is one too, if it is short and no heading.
+func (r *reader) betweenNotes(s string, next int, t *paper.Table, marks map[string]bool) bool {
+	k := r.skipBlank(next)
+	if k >= len(r.lines) || utf8.RuneCountInString(s) > longNote/2 || figureStart.MatchString(s) || isCaption(r.text(r.lines[k])) || r.startsTable(k) {
+		return false
 	}
-	return false
+	if _, sure := paper.ZoneOf(s); sure || numberedHeading.MatchString(s) {
+		return false
+	}
+	below := r.run(k, r.paragraphEnd(k, r.chunk(k))).S
+	return r.isNote(below, t, marks) && !(looksHeading(s) && sentences(below))
 }
 
 // declares reports whether s has the look of a list "X, words; Y, words" or

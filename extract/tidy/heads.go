@@ -13,7 +13,7 @@ const mostHeadRows = 5
 var (
 	// dataCell is a cell that prints a value: a number with nothing but marks,
 	// a spread or an interval after it.
-	dataCell = regexp.MustCompile(`^[(\[]?\s*[<>≤≥=~+–−‐-]?\s*[$£€]?[0-9.][0-9.,·\s\x{00A0}\x{2009}]*%?\s*(?:[\*†‡§¶#a-d]{0,3}|(?:±|\+/|\(|\[|–|−|‐|-|/|to\b|,|;|\n).*)$`)
+	dataCell = regexp.MustCompile(`^[(\[]?\s*[<>≤≥=~+–−‐-]?\s*[$£€]?[0-9.][0-9.,·\s\x{00A0}\x{2009}]*%?\s*(?:[\*†‡§¶#a-d]{0,3}|(?:±|\+/|\(|\[|–|−|‐|-|/|to\b|,|;|\n\s*[(\[±0-9−–-]).*)$`)
 	// plainWhole is a number that a heading may print too: a week, a dose, a year.
 	plainWhole = regexp.MustCompile(`^\(?[0-9]{1,4}\)?%?$`)
 	// headWord is what a second heading row prints under the first.
