@@ -62,6 +62,11 @@ func (a *assembly) read(r, c int) []spread {
 			own = col
 		}
 	}
+	if own.kind == roleSpread && len(ests) == 2 && len(ests[0].spreads)+len(ests[1].spreads) == 0 && own.wantsInterval() {
+		orphans = append(orphans, spread{shape: shapeInterval, lower: ests[0].value, upper: ests[1].value,
+			item: grammar.Item{Kind: grammar.KindInterval}, cell: ests[0].cell, row: r, col: c})
+		ests = nil
+	}
 	for i := range orphans {
 		orphans[i].own = own
 	}
@@ -75,6 +80,17 @@ func (a *assembly) read(r, c int) []spread {
 		a.list = append(a.list, e)
 	}
 	return orphans
+}
+
+// wantsInterval reports that a column or row holds intervals.
+func (r *role) wantsInterval() bool {
+	for _, q := range r.pairs {
+		switch q.Spread {
+		case grammar.SpreadCI, grammar.SpreadIQR, grammar.SpreadRange:
+			return true
+		}
+	}
+	return false
 }
 
 // attach finds the estimate of a spread that stands in a cell of its own.

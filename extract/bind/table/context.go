@@ -16,6 +16,7 @@ type context struct {
 	armFrom, timeFrom, outcomeFrom                    string
 	contrast                                          bool // between arms
 	change                                            bool
+	changeAll                                         bool // the caption says that the table prints changes
 	timeGuess                                         bool // the time rests on the caption
 	armGuess                                          bool
 	outcomeGuess                                      bool
@@ -277,10 +278,17 @@ func (f *frame) contextOf(e *estimate) *context {
 
 func (f *frame) columnContext(e *estimate, x *context) {
 	var arms, times []string
-	for _, l := range f.path(e.row, e.col) {
+	path := f.path(e.row, e.col)
+	for i, l := range path {
 		p := f.partOf(l)
 		if changeMark.MatchString(fold(l.text)) {
 			x.change = true
+		}
+		if p.kind == partContrast && parseVs(p.name) == nil && f.armBelow(path[i+1:]) {
+			continue // "Between groups" over the arms themselves
+		}
+		if compares(l.text) && !f.armBelow(path[i+1:]) {
+			x.contrast = true
 		}
 		switch p.kind {
 		case partTime:
@@ -320,11 +328,35 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	x.time = joinPath(times, ", ")
 }
 
+// armBelow reports that one of the headings names an arm.
+func (f *frame) armBelow(path []label) bool {
+	for _, l := range path {
+		if k := f.partOf(l).kind; k == partArm || k == partOther {
+			return true
+		}
+	}
+	return false
+}
+
+// compares reports that a heading announces a statistic between arms.
+func compares(s string) bool {
+	for _, q := range readPhrase(s).pairs {
+		switch q.Statistic {
+		case "ratio", "mean difference", "risk difference":
+			return true
+		}
+	}
+	return false
+}
+
 func (f *frame) rowContext(e *estimate, x *context) {
 	ln := &f.lines[e.row]
 	var outcome, subs []string
 	take := func(l label, own bool) {
 		p := f.partOf(l)
+		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && compares(l.text) {
+			x.contrast = true
+		}
 		if changeMark.MatchString(fold(l.text)) {
 			x.change = true
 		}
@@ -403,14 +435,18 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	if x.outcome == "" {
 		x.outcome, x.outcomeAt, x.outcomeFrom, x.outcomeGuess = shorten(captionOutcome(capt), 160), l, "caption", true
 	}
-	if changeMark.MatchString(fold(capt)) {
-		x.change = x.change || changeCaption.MatchString(fold(capt))
+	switch low := fold(capt); {
+	case scoreCaption.MatchString(low):
+		x.change, x.changeAll = true, true
+	case changeCaption.MatchString(low):
+		x.change = true
 	}
 }
 
 var (
 	captionArm    = regexp.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
-	changeCaption = regexp.MustCompile(`(?i)\bmean changes?\b|\bchanges? (?:in|from|of|scores?)\b|\bchange scores?\b`)
+	changeCaption = regexp.MustCompile(`(?i)\bchanges? (?:in|of)\b`)
+	scoreCaption  = regexp.MustCompile(`(?i)\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
 )
 
 func captionOutcome(s string) string {

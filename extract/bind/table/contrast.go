@@ -78,6 +78,9 @@ func (f *frame) contrastArms(e *estimate, x *context) {
 		x.arm, x.arm2, x.armFrom = a, b, "the table's two arms"
 		return
 	}
+	if x.arm == "" {
+		x.arm = f.armOfColumn(e.row, e.col)
+	}
 	ln := &f.lines[e.row]
 	for _, l := range append(append([]label{}, ln.labels...), f.path(e.row, e.col)...) {
 		if m := overOne.FindStringSubmatch(l.text); m != nil {

@@ -69,9 +69,6 @@ func (f *frame) rowEvidence(r int) countGrade {
 	if len(cells) == 0 {
 		return countOpen
 	}
-	if !whole {
-		return countNever
-	}
 	sum := 0.0
 	fit, miss, known := 0, 0, 0
 	for _, p := range cells {
@@ -92,7 +89,10 @@ func (f *frame) rowEvidence(r int) countGrade {
 	if known > 0 && fit > 0 && miss <= (known-1)/3 {
 		return countLikely
 	}
-	if len(cells) > 1 && sum > 0 && rowPercents(cells, sum) {
+	if !whole {
+		return countNever
+	}
+	if len(cells) > 1 && sum > 0 && (rowPercents(cells, sum) || oneTotal(cells)) {
 		return countLikely
 	}
 	if known > 0 && miss == known {
@@ -135,9 +135,7 @@ func (f *frame) pairsOf(r int) (cells []pairCell, whole bool) {
 				whole = false
 			}
 			p := pairCell{a: a, b: b}
-			if n, _, ok := f.headingN(r, c); ok {
-				p.n = n
-			}
+			p.n = f.denominator(e)
 			if _, frac, ok := strings.Cut(e.spreads[0].value.Value, "."); ok {
 				p.bDec = len(frac)
 			}
@@ -145,6 +143,18 @@ func (f *frame) pairsOf(r int) (cells []pairCell, whole bool) {
 		}
 	}
 	return cells, whole
+}
+
+// denominator gives the n that a percentage in the cell would be of; 0 unknown.
+func (f *frame) denominator(e *estimate) int {
+	x := &context{}
+	for _, find := range []func(*estimate, *context) (size, bool){f.columnSize, f.rowSize} {
+		if s, ok := find(e, x); ok {
+			return s.n
+		}
+	}
+	n, _, _ := f.headingN(e.row, e.col)
+	return n
 }
 
 // rowPercents reports that the b's are the shares of the row's total.
@@ -155,6 +165,21 @@ func rowPercents(cells []pairCell, sum float64) bool {
 		}
 	}
 	return true
+}
+
+// oneTotal reports that all cells are shares of one and the same whole number,
+// as percentages across the row are.
+func oneTotal(cells []pairCell) bool {
+	lo, hi, seen := 0.0, math.Inf(1), 0
+	for _, p := range cells {
+		if p.a == 0 || p.b == 0 {
+			continue
+		}
+		l, h := impliedN(p)
+		lo, hi = math.Max(lo, l), math.Min(hi, h)
+		seen++
+	}
+	return seen > 1 && lo <= hi && math.Floor(hi) >= math.Ceil(lo)
 }
 
 // sameDenominator reports that each a and b imply a whole denominator no larger

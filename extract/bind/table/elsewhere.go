@@ -251,15 +251,21 @@ func (b *binder) otherSize(i int, arm string) (size, bool) {
 	}
 	best, dist := -1, 1<<30
 	for k, a := range b.arms {
-		if a.table == i || a.name != want && !sameArm(a.name, want) {
+		if a.table == i {
 			continue
 		}
 		d := i - a.table
 		if d < 0 {
 			d = -d + 1000
 		}
-		if a.name != want {
-			d += 100
+		switch {
+		case a.name == want:
+		case sameArm(a.name, want):
+			d += 10
+		case within(want, a.name) && b.only(a.table, want):
+			d += 2000
+		default:
+			continue
 		}
 		if d < dist {
 			best, dist = k, d
@@ -269,8 +275,33 @@ func (b *binder) otherSize(i int, arm string) (size, bool) {
 		return size{}, false
 	}
 	a := b.arms[best]
-	s := sizeOfLabel(a.n, a.l, result.NElsewhere, "heading in "+tableName(b.frames[a.table]))
-	return s, true
+	return sizeOfLabel(a.n, a.l, result.NElsewhere, "heading in "+tableName(b.frames[a.table])), true
+}
+
+// within reports that all words of the short name stand in the long one.
+func within(short, long string) bool {
+	have := map[string]bool{}
+	for _, w := range words(long) {
+		have[w] = true
+	}
+	ws := words(short)
+	for _, w := range ws {
+		if !have[w] {
+			return false
+		}
+	}
+	return len(ws) > 0
+}
+
+// only reports that one arm alone of the table has all words of the name.
+func (b *binder) only(table int, name string) bool {
+	n := 0
+	for _, a := range b.arms {
+		if a.table == table && within(name, a.name) {
+			n++
+		}
+	}
+	return n == 1
 }
 
 // sameArm reports that one name is the other with more words: "placebo" and

@@ -158,6 +158,11 @@ func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *sprea
 		if rd.given == result.Unstated && !holds(sp.lower, sp.upper, e.value) {
 			return false
 		}
+		if l, ok := sp.lower.Float(); ok {
+			if u, ok := sp.upper.Float(); ok && l > u {
+				r.Lower, r.Upper = r.Upper, r.Lower // flagged in check
+			}
+		}
 		if sp.own.kind == roleBound && rd.given == result.Unstated {
 			rd.given, r.GivenAs = result.CI, result.CI
 		}
@@ -384,7 +389,7 @@ func (b *binder) check(r *result.Result, f *frame, e *estimate, sp *spread, x *c
 		case !ok1 || !ok2:
 			r.Raise(FlagBoundOpen, printed(sp.lower)+" to "+printed(sp.upper))
 		case l > u:
-			r.Raise(FlagReversed, r.Lower+" to "+r.Upper)
+			r.Raise(FlagReversed, "printed as "+printed(sp.lower)+" to "+printed(sp.upper))
 		}
 		if ok1 && ok2 && !holds(sp.lower, sp.upper, e.value) {
 			r.Raise(FlagOutside, r.Estimate+" is not within "+r.Lower+" to "+r.Upper)

@@ -265,10 +265,10 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		isCount, strong := countStatement(s)
 		if isCount && sp.shape == shapeBracket {
 			switch {
-			case len(fits) == 0 && strong && counts != countNever:
-				return reading{count: true}
-			case len(fits) == 0 && strong && s.rank <= rankGroup:
+			case len(fits) == 0 && strong && counts == countUnlikely && s.rank <= rankGroup:
 				return reading{given: result.Unstated, contrary: true, at: *s}
+			case len(fits) == 0 && strong:
+				return reading{count: true}
 			case len(fits) == 0 && counts >= countLikely:
 				return reading{count: true}
 			case counts == countLikely:

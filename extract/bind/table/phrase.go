@@ -126,7 +126,7 @@ func isPHeading(low string) bool {
 			return pre != "p " || len(low) < 14
 		}
 	}
-	return strings.HasSuffix(low, " p value") || strings.HasSuffix(low, " p-value") || strings.HasSuffix(low, "p-values") || low == "p*" || len(low) == 2 && low[0] == 'p'
+	return strings.HasSuffix(low, " p value") || strings.HasSuffix(low, " p-value") || strings.HasSuffix(low, "p-values") || len(low) == 2 && low[0] == 'p' && strings.IndexByte("0123456789*#", low[1]) >= 0
 }
 
 // testHeading names the test statistic that a heading announces.
@@ -151,9 +151,9 @@ func boundHeading(low string) int {
 	switch {
 	case strings.Contains(low, "lower and upper") || strings.Contains(low, "upper and lower") || strings.Contains(low, "lower, upper"):
 		return 0
-	case strings.HasPrefix(low, "lower") && len(low) < 30 || low == "ll" || low == "lcl" || low == "lci" || low == "low" || strings.HasSuffix(low, " lower") || strings.HasSuffix(low, "lower limit") || strings.HasSuffix(low, "lower bound") || strings.HasSuffix(low, "ci lower"):
+	case strings.HasPrefix(low, "lower") && len(low) < 30 || low == "ll" || low == "lcl" || low == "lci" || strings.HasSuffix(low, " lower") || strings.HasSuffix(low, "lower limit") || strings.HasSuffix(low, "lower bound") || strings.HasSuffix(low, "ci lower"):
 		return -1
-	case strings.HasPrefix(low, "upper") && len(low) < 30 || low == "ul" || low == "ucl" || low == "uci" || low == "high" || strings.HasSuffix(low, " upper") || strings.HasSuffix(low, "upper limit") || strings.HasSuffix(low, "upper bound") || strings.HasSuffix(low, "ci upper"):
+	case strings.HasPrefix(low, "upper") && len(low) < 30 || low == "ul" || low == "ucl" || low == "uci" || strings.HasSuffix(low, " upper") || strings.HasSuffix(low, "upper limit") || strings.HasSuffix(low, "upper bound") || strings.HasSuffix(low, "ci upper"):
 		return 1
 	}
 	return 0

@@ -123,7 +123,15 @@ func (f *frame) rowRole(r int) role {
 	p := readPhrase(l.text)
 	role := roleOf(l, &p)
 	switch role.kind {
-	case roleP, roleTest, roleN:
+	case roleN:
+		switch strings.Trim(fold(l.text), " *.:") {
+		case "no", "number", "nr", "total", "count":
+			if !strings.HasSuffix(clean(l.text), ".") {
+				return roleNoneOf(role) // "no" answers a question
+			}
+		}
+		return role
+	case roleP, roleTest:
 		return role
 	case roleBound:
 		return role

@@ -200,6 +200,9 @@ func (f *frame) addMidHead(r int) {
 // table's head, with headings repeated in the body in place of or after them.
 func (f *frame) path(r, c int) []label {
 	path := f.heads[c]
+	if cell := f.grid[r%f.tab.Rows][c]; r < f.tab.Rows && cell != nil && cell.ColSpan > 1 && cell.Row == r && cell.Col >= f.stub {
+		path = covering(path, cell)
+	}
 	for _, m := range f.mid {
 		if m.row > r {
 			break
@@ -210,6 +213,20 @@ func (f *frame) path(r, c int) []label {
 		path = overlay(f.heads[c], m.cells[c])
 	}
 	return path
+}
+
+// covering keeps the headings that stand over all columns of a wide cell.
+func covering(path []label, cell *paper.Cell) []label {
+	var out []label
+	for _, l := range path {
+		if l.cell == nil || l.cell.Col <= cell.Col && l.cell.Col+l.cell.ColSpan >= cell.Col+cell.ColSpan {
+			out = append(out, l)
+		}
+	}
+	if len(out) == 0 {
+		return path
+	}
+	return out
 }
 
 // overlay puts a heading repeated in the body in place of the lowest heading

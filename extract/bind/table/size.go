@@ -80,7 +80,7 @@ func sizeOfLabel(n int, l label, from, words string) size {
 // nearSize finds the n of an estimate inside its own table.
 func (f *frame) nearSize(e *estimate, x *context) (size, bool) {
 	for _, find := range []func(*estimate, *context) (size, bool){
-		f.cellSize, f.columnSize, f.labelSize, f.rowSize, f.markSize, f.headSize, f.noteSize, f.captionSize, f.loneSize,
+		f.cellSize, f.columnSize, f.labelSize, f.rowNote, f.rowSize, f.markSize, f.headSize, f.noteSize, f.captionSize, f.loneSize,
 	} {
 		if s, ok := find(e, x); ok {
 			return s, true
@@ -223,58 +223,98 @@ func (f *frame) markedN(marks []string, x *context) (size, bool) {
 	return size{}, false
 }
 
-// rowSize reads a row of n's: in the same block, in the label row of its group,
-// or for the whole table.
-func (f *frame) rowSize(e *estimate, _ *context) (size, bool) {
+// rowSize reads a row of n's or a note on n's: in the same block, at the label
+// of its group, then of the groups around it, then for the whole table.
+func (f *frame) rowSize(e *estimate, x *context) (size, bool) {
 	ln := &f.lines[e.row]
-	at := func(r int) (size, bool) {
-		cell := f.grid[r][e.col]
-		if cell == nil {
-			return size{}, false
+	for d := len(ln.groups); d >= 0; d-- {
+		if s, ok := f.nRow(e, ln.groups[:d]); ok {
+			return s, true
 		}
-		rd := f.reads[cell]
-		if len(rd.phrase.ns) > 0 && rd.phrase.onlyN {
-			if n := number(rd.phrase.ns[0].Value); n > 0 {
-				return size{n: n, from: result.NHeading, words: "row of sample sizes above", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
+		if d == 0 {
+			break
+		}
+		g := ln.groups[d-1]
+		for _, l := range f.lines[g].labels {
+			if s, ok := f.markedN(l.marks, x); ok {
+				return s, true
 			}
 		}
-		if len(rd.cell.Values) == 1 && !rd.cell.Values[0].Estimate.IsZero() {
-			if n := number(rd.cell.Values[0].Estimate); n > 0 && isWhole(rd.cell.Values[0].Estimate.Value) {
-				return size{n: n, from: result.NHeading, words: "row of sample sizes", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
-			}
-		}
-		return size{}, false
-	}
-	// The row of n's that is nearest above, under the same groups or fewer.
-	for r := e.row - 1; r >= f.head; r-- {
-		o := &f.lines[r]
-		if o.kind != lineData || f.rowRole(r).kind != roleN {
-			continue
-		}
-		if prefix(o.groups, ln.groups) {
-			if s, ok := at(r); ok {
+		if cell := f.grid[g][e.col]; cell != nil && f.reads[cell].phrase.onlyN {
+			if s, ok := f.nCell(g, e.col); ok {
 				return s, true
 			}
 		}
 	}
-	for i := len(ln.groups) - 1; i >= 0; i-- {
-		if s, ok := at(ln.groups[i]); ok && f.reads[f.grid[ln.groups[i]][e.col]].phrase.onlyN {
-			return s, true
+	for i := len(f.mid) - 1; i >= 0; i-- {
+		m := f.mid[i]
+		if m.row < e.row && m.cells[e.col].cell != nil && f.reads[m.cells[e.col].cell].phrase.onlyN {
+			if s, ok := f.nCell(m.row, e.col); ok {
+				return s, true
+			}
 		}
 	}
-	for _, m := range f.mid {
-		if m.row < e.row && m.cells[e.col].cell != nil && f.reads[m.cells[e.col].cell].phrase.onlyN {
-			if s, ok := at(m.row); ok {
+	return f.keptN(e)
+}
+
+// nRow finds the row of n's under exactly these groups: the nearest above, or,
+// inside a block, below.
+func (f *frame) nRow(e *estimate, groups []int) (size, bool) {
+	fit := func(r int) bool {
+		o := &f.lines[r]
+		return o.kind == lineData && len(o.groups) == len(groups) && prefix(o.groups, groups) && f.rowRole(r).kind == roleN
+	}
+	for r := e.row - 1; r >= f.head; r-- {
+		if fit(r) {
+			if s, ok := f.nCell(r, e.col); ok {
 				return s, true
 			}
 		}
 	}
 	for r := e.row + 1; r < f.tab.Rows; r++ {
-		o := &f.lines[r]
-		if o.kind == lineData && f.rowRole(r).kind == roleN && len(o.groups) == len(ln.groups) && prefix(o.groups, ln.groups) {
-			if s, ok := at(r); ok {
+		if fit(r) {
+			if s, ok := f.nCell(r, e.col); ok {
 				return s, true
 			}
+		}
+	}
+	return size{}, false
+}
+
+// keptN goes on with the n's printed at an earlier group label of the same
+// depth or less, where no heading gives any.
+func (f *frame) keptN(e *estimate) (size, bool) {
+	if _, _, ok := f.headingN(e.row, e.col); ok {
+		return size{}, false
+	}
+	ln := &f.lines[e.row]
+	for r := e.row - 1; r >= f.head; r-- {
+		o := &f.lines[r]
+		if o.kind != lineGroup || len(o.groups) > len(ln.groups) || !prefix(o.groups, ln.groups) {
+			continue
+		}
+		if cell := f.grid[r][e.col]; cell != nil && f.reads[cell].phrase.onlyN {
+			return f.nCell(r, e.col)
+		}
+	}
+	return size{}, false
+}
+
+// nCell reads an n out of a cell of a row of n's.
+func (f *frame) nCell(r, c int) (size, bool) {
+	cell := f.grid[r][c]
+	if cell == nil {
+		return size{}, false
+	}
+	rd := f.reads[cell]
+	if len(rd.phrase.ns) > 0 && rd.phrase.onlyN {
+		if n := number(rd.phrase.ns[0].Value); n > 0 {
+			return size{n: n, from: result.NHeading, words: "row of sample sizes above", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
+		}
+	}
+	if len(rd.cell.Values) == 1 && !rd.cell.Values[0].Estimate.IsZero() {
+		if n := number(rd.cell.Values[0].Estimate); n > 0 && isWhole(rd.cell.Values[0].Estimate.Value) {
+			return size{n: n, from: result.NHeading, words: "row of sample sizes", text: clean(cell.Text.S), place: cell.Text.At(0)}, true
 		}
 	}
 	return size{}, false
@@ -331,6 +371,63 @@ func (f *frame) noteSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
+var nFor = regexp.MustCompile(`(?i)\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in|at)\s+(?:the )?([^.;,]{2,60})`)
+
+// rowNote reads "n = 38 for protein" and "n = 38 at week 12" out of the notes,
+// for the rows or times that they name.
+func (f *frame) rowNote(e *estimate, x *context) (size, bool) {
+	marked := map[string]bool{}
+	for _, l := range f.path(e.row, e.col) {
+		for _, m := range l.marks {
+			marked[m] = true
+		}
+	}
+	for _, n := range f.notes.list {
+		if n.mark != "" && !marked[n.mark] {
+			continue
+		}
+		for _, m := range nFor.FindAllStringSubmatch(clean(n.run.S), -1) {
+			if !f.about(m[2], x) {
+				continue
+			}
+			v, err := strconv.Atoi(strings.ReplaceAll(m[1], ",", ""))
+			if err == nil && v > 0 {
+				return size{n: v, from: result.NElsewhere, words: n.from, text: shorten(clean(n.run.S), 200), place: n.run.At(0)}, true
+			}
+		}
+	}
+	return size{}, false
+}
+
+// about reports that the words name the outcome or time of the result.
+func (f *frame) about(s string, x *context) bool {
+	have := map[string]bool{}
+	for _, w := range words(x.outcome + " " + x.time + " " + x.subgroup) {
+		have[singularWord(w)] = true
+	}
+	some := false
+	for _, w := range words(s) {
+		w = singularWord(w)
+		if noteFiller[w] {
+			continue
+		}
+		if !have[w] {
+			return false
+		}
+		some = true
+	}
+	return some
+}
+
+func singularWord(w string) string {
+	if len(w) > 3 && strings.HasSuffix(w, "s") {
+		return w[:len(w)-1]
+	}
+	return w
+}
+
+var noteFiller = map[string]bool{"score": true, "the": true, "value": true, "measure": true, "data": true, "all": true, "of": true, "analysi": true, "and": true}
+
 // captionSize reads an n in the caption: beside the arm's name, or the only one
 // where the table is about one arm.
 func (f *frame) captionSize(_ *estimate, x *context) (size, bool) {
@@ -372,7 +469,13 @@ func nForArm(s, arm string, others []string) (int, bool) {
 		return 0, false
 	}
 	low := fold(s)
-	at := strings.Index(low, name)
+	at := wordIndex(low, name)
+	if at < 0 && totals[name] {
+		if m := totalMention.FindStringSubmatch(low); m != nil {
+			v, err := strconv.Atoi(strings.ReplaceAll(m[1], ",", ""))
+			return v, err == nil && v > 0
+		}
+	}
 	if at < 0 {
 		return 0, false
 	}
@@ -399,6 +502,32 @@ func nForArm(s, arm string, others []string) (int, bool) {
 		}
 	}
 	return 0, false
+}
+
+// wordIndex finds name in low as whole words.
+func wordIndex(low, name string) int {
+	for from := 0; from < len(low); {
+		k := strings.Index(low[from:], name)
+		if k < 0 {
+			return -1
+		}
+		k += from
+		end := k + len(name)
+		if (k == 0 || !letterAt(low, k-1)) && (end >= len(low) || !letterAt(low, end)) {
+			return k
+		}
+		from = k + 1
+	}
+	return -1
+}
+
+// totals are names of a column for all arms together.
+var totals = map[string]bool{"total": true, "all": true, "overall": true, "all patients": true, "all participants": true, "all subjects": true, "entire cohort": true, "whole group": true, "total sample": true}
+
+var totalMention = regexp.MustCompile(`\b(\d[\d,]*) (?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|cases)\b`)
+
+func letterAt(s string, i int) bool {
+	return s[i] >= 'a' && s[i] <= 'z' || s[i] >= '0' && s[i] <= '9' || s[i] >= 0x80
 }
 
 func intAt(s string, m []int) (int, bool) {

@@ -40,7 +40,7 @@ func outranks(near, have result.Statistic) bool {
 	case "":
 		return true
 	case result.Mean:
-		return near != result.Proportion && near != result.Rate
+		return near != result.Proportion && near != result.Rate && near != result.Other
 	case result.Median:
 		return false
 	}
@@ -75,6 +75,8 @@ func weight(s string) int {
 		return 1
 	case "rate", "proportion":
 		return 0
+	case "other":
+		return -1
 	}
 	return 2
 }
@@ -136,6 +138,9 @@ func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *rea
 // change: "Baseline" under a caption "Changes in mass".
 func (f *frame) namedPoint(x *context) bool {
 	low := fold(x.time)
+	if x.changeAll {
+		return atBaseline(&context{time: x.time}) && low != ""
+	}
 	if low == "" || x.timeGuess || changeMark.MatchString(low) {
 		return false
 	}
