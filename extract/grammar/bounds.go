@@ -321,6 +321,16 @@ func (p *parser) onlyUnits(from, to int) bool {
 	return true
 }
 
+// onlyMarks reports whether nothing but marks stands between two bytes.
+func (p *parser) onlyMarks(from, to int) bool {
+	for i := p.tokenAt(from); i < len(p.toks) && p.toks[i].Start < to; i++ {
+		if p.kind(i) != TokMark && p.kind(i) != TokRaised {
+			return false
+		}
+	}
+	return true
+}
+
 // tokenAt gives the index of the first token that starts at or behind a byte.
 func (p *parser) tokenAt(b int) int {
 	lo, hi := 0, len(p.toks)

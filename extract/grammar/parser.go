@@ -91,7 +91,7 @@ func (p *parser) lone() {
 		}
 		if it.Bracket > 0 {
 			br := p.out.Brackets[it.Bracket-1]
-			it.Alone = p.onlyUnits(br.Start+1, it.Start) && p.onlyUnits(it.End, br.End-1)
+			it.Alone = p.onlyMarks(br.Start+1, it.Start) && p.onlyUnits(it.End, br.End-1)
 		}
 	}
 }

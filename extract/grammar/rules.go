@@ -226,7 +226,7 @@ func (p *parser) spreadWord(i int) int {
 		}
 		break
 	}
-	if n, end, ok := p.signed(k); ok && n.Value != "" && n.Value[0] != '-' {
+	if n, end, ok := p.signed(k); ok && n.Value != "" && n.Value[0] != '-' && n.Rel == "" && p.toPlusMinus(end) == 0 {
 		if _, _, pair := p.bounds(k, bare); !pair || p.kind(k+1) == TokDash && p.toks[k+1].Spaced {
 			it.Kind, it.Value, it.Span = KindSpread, n, Span{it.Start, n.End}
 			p.add(it)
@@ -255,8 +255,8 @@ func (p *parser) plusMinus(i int, of Number, start int) int {
 		}
 	}
 	n, end, ok := p.signed(k)
-	if !ok || n.Value == "" || n.Value[0] == '-' {
-		return i
+	if !ok || n.Value == "" || n.Value[0] == '-' || it.Spread != "" && p.toPlusMinus(end) > 0 {
+		return i // "mean ± SD 32.7 ± 4.3": the first ± only announces
 	}
 	it.Value, it.Span = n, Span{start, n.End}
 	if it.Spread == "" {

@@ -1,54 +1,236 @@
 package prose
 
-import "halfspan/extract/result"
+import (
+	"regexp"
+	"strings"
 
-// cast is who takes part in the paper: its arms with their sizes.
-type cast struct{}
+	"halfspan/extract/grammar"
+	"halfspan/extract/result"
+)
 
-// learn collects the arms and their sizes from the whole paper.
-func (f *finder) learn() {}
-
-// lists pairs the intervals of a list with the estimates of the list before it:
-// "81% and 64% (95% CI 70–89 and 52–75, respectively)".
-func (p *para) lists() {
-	for i := 0; i < len(p.cands); i++ {
-		j := i + 1
-		for j < len(p.cands) && p.r.Items[p.cands[j].item].Follows {
-			j++
-		}
-		if j-i > 1 {
-			p.pair(p.cands[i:j])
-		}
-		i = j - 1
-	}
+// setContext fills arm, time and outcome from the sentence where they are
+// plain.
+func (p *para) setContext(r *result.Result, c *cand) {
+	p.setArms(r, c)
+	p.setTime(r, c)
+	p.setOutcome(r, c)
 }
 
-// pair gives the last numbers before the list to its intervals, in order, where
-// each then lies in its bounds.
-func (p *para) pair(list []cand) {
-	from, _ := p.sentence(p.r.Items[list[0].item].Start)
-	at := len(list) - 1
-	picked := make([]int, len(list))
-	for k := list[0].item - 1; k >= 0 && at >= 0 && p.r.Items[k].Start >= from; k-- {
-		if _, ok := p.estimable(k); ok {
-			picked[at] = k
-			at--
-		}
+// between reports that the result compares two arms.
+func between(r *result.Result) bool {
+	switch r.Statistic {
+	case result.MeanDifference, result.RiskDifference, result.Ratio:
+		return true
 	}
-	if at >= 0 {
+	return false
+}
+
+// setArms names the arm, or the two arms of a comparison.
+func (p *para) setArms(r *result.Result, c *cand) {
+	it := &p.r.Items[c.item]
+	from, to := p.sentence(it.Start)
+	all := p.mentions(from, to)
+	if len(all) == 0 {
 		return
 	}
-	for i := range list {
-		n, _ := p.estimable(picked[i])
-		f, ok := n.Float()
-		if !ok || p.within(&list[i], f) != inside {
-			return
+	if between(r) {
+		a, b, ok := twoArms(all)
+		if ok {
+			p.setArm(r, "arm", a)
+			p.setArm(r, "arm2", b)
 		}
+		return
 	}
-	for i := range list {
-		list[i].est, _ = p.estimable(picked[i])
-		list[i].estItem, list[i].flags = picked[i], nil
+	if m, ok := p.armOf(c, all, from, to); ok {
+		p.setArm(r, "arm", m)
 	}
 }
 
-func (p *para) setContext(r *result.Result, c *cand) {}
+func (p *para) setArm(r *result.Result, field string, m mention) {
+	text := p.s[m.start:m.end]
+	if s, ok := p.f.cast.arms[m.arm].sizeOf(); ok {
+		if field == "arm" && r.N == 0 {
+			p.elsewhere(r, "n", &r.N, s)
+		} else if field == "arm2" && r.N2 == 0 {
+			p.elsewhere(r, "n2", &r.N2, s)
+		}
+	}
+	if field == "arm" {
+		r.Arm = text
+	} else {
+		r.Arm2 = text
+	}
+	p.source(r, field, grammar.Span{Start: m.start, End: m.end})
+}
+
+// twoArms gives the two arms of a sentence that names exactly two.
+func twoArms(all []mention) (a, b mention, ok bool) {
+	a = all[0]
+	for _, m := range all[1:] {
+		switch {
+		case m.arm == a.arm || ok && m.arm == b.arm:
+		case ok:
+			return a, b, false
+		default:
+			b, ok = m, true
+		}
+	}
+	return a, b, ok
+}
+
+// armOf chooses the arm of a single group's result: by order where the sentence
+// says "respectively", else the one named right behind it, else the last one
+// named before it and behind the result before, else the only one.
+func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
+	if m, ok := p.byOrder(c, all, from, to); ok {
+		return m, true
+	}
+	it := &p.r.Items[c.item]
+	end := it.End
+	if it.Bracket > 0 {
+		end = max(end, p.r.Brackets[it.Bracket-1].End)
+	}
+	previous := from
+	for k := range p.cands {
+		if o := &p.cands[k]; o.est.Start < c.est.Start && o.est.Start >= from {
+			previous = max(previous, min(p.r.Items[o.item].End, c.est.Start))
+		}
+	}
+	for _, m := range all {
+		if m.start >= end && m.start-end < 60 && linked.MatchString(p.s[end:m.start]) && !contrast.MatchString(p.s[end:m.start]) {
+			return m, true
+		}
+	}
+	best, ok := mention{}, false
+	for _, m := range all {
+		if m.end <= c.est.Start && m.start >= previous {
+			best, ok = m, true
+		}
+	}
+	if ok {
+		return best, true
+	}
+	for _, m := range all[1:] {
+		if m.arm != all[0].arm {
+			return mention{}, false
+		}
+	}
+	return all[0], all[0].start < c.est.Start
+}
+
+// linked is what may stand between a result and its arm's name behind it.
+var linked = regexp.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+
+// byOrder pairs the results of a sentence with its arms where there are as many
+// of either and all arms stand before all results or behind them: "lower with
+// syrup than with water (12.4 ± 1.3 vs 11.1 ± 1.2)", "12.4 ± 1.3 and 11.1 ± 1.2
+// with syrup and water, respectively".
+func (p *para) byOrder(c *cand, all []mention, from, to int) (mention, bool) {
+	var mine []int
+	for k := range p.cands {
+		if s := p.cands[k].est.Start; s >= from && s < to && (len(mine) == 0 || p.cands[mine[len(mine)-1]].est.Start != s) {
+			mine = append(mine, k)
+		}
+	}
+	at := -1
+	for i, k := range mine {
+		if p.cands[k].est.Start == c.est.Start {
+			at = i
+		}
+	}
+	var distinct []mention
+	for _, m := range all {
+		known := false
+		for _, d := range distinct {
+			known = known || d.arm == m.arm
+		}
+		if !known {
+			distinct = append(distinct, m)
+		}
+	}
+	if at < 0 || len(distinct) != len(mine) || len(mine) < 2 {
+		return mention{}, false
+	}
+	first, last := p.cands[mine[0]].est.Start, p.r.Items[p.cands[mine[len(mine)-1]].item].End
+	if distinct[len(distinct)-1].end > first && all[0].start < last {
+		return mention{}, false
+	}
+	return distinct[at], true
+}
+
+var (
+	timeWords = regexp.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until|from)\s+(?:the\s+)?)?(?:` +
+		`(?:week|month|day|year|hour|visit|cycle|session)s?\s+[0-9]+(?:\s*(?:-|–|to|and)\s*[0-9]+)?` +
+		`|(?:[0-9]+(?:\.[0-9]+)?|one|two|three|four|five|six|eight|nine|ten|twelve)[ -](?:weeks?|months?|days?|years?|hours?|h|min|minutes)(?:\s+(?:follow-?up|post\w*|after \w+))?` +
+		`|baseline|follow-?up|pre-?test|post-?test|(?:pre|post)-?(?:treatment|intervention|operative(?:ly)?)|end of (?:the )?(?:study|trial|treatment|intervention)|week [0-9]+)\b`)
+	timeAfter = regexp.MustCompile(`(?i)^[^.;,()0-9]{0,50}$`)
+)
+
+// setTime names the time point: the one right behind the result, else the last
+// before it in the sentence.
+func (p *para) setTime(r *result.Result, c *cand) {
+	it := &p.r.Items[c.item]
+	from, to := p.sentence(it.Start)
+	end := it.End
+	if it.Bracket > 0 {
+		end = min(to, max(end, p.r.Brackets[it.Bracket-1].End))
+	}
+	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) {
+		r.Time = p.s[end+m[0] : end+m[1]]
+		p.source(r, "time", grammar.Span{Start: end + m[0], End: end + m[1]})
+		return
+	}
+	before := timeWords.FindAllStringIndex(p.s[from:c.est.Start], -1)
+	if len(before) == 0 {
+		return
+	}
+	m := before[len(before)-1]
+	r.Time = p.s[from+m[0] : from+m[1]]
+	p.source(r, "time", grammar.Span{Start: from + m[0], End: from + m[1]})
+}
+
+var (
+	leadWords  = regexp.MustCompile(`(?i)^(?:the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
+	trailWords = regexp.MustCompile(`(?i)\s+(?:was|were|is|are|of|by|to|from|averaged|approximately|about|had|has|have|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|significantly|statistically|only|=|:|OR|HR|RR|M|MD|score of)$`)
+	// what is no outcome by itself
+	emptyWords = regexp.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range)[\s=:,.]*)+$`)
+)
+
+// setOutcome takes the words before the estimate, back to a mark, as what was
+// measured.
+func (p *para) setOutcome(r *result.Result, c *cand) {
+	from, _ := p.sentence(c.est.Start)
+	stretch := p.s[from:c.est.Start]
+	end := len(stretch)
+	for end > 0 {
+		i := strings.LastIndexAny(stretch[:end], ",;:()[]")
+		part := stretch[i+1 : end]
+		lead := len(part) - len(strings.TrimLeft(part, " \u00a0"))
+		start := i + 1 + lead
+		part = strings.TrimSpace(part)
+		for {
+			short := leadWords.ReplaceAllString(part, "")
+			start += len(part) - len(short)
+			short = trailWords.ReplaceAllString(short, "")
+			short = strings.TrimRight(short, " =:\u00a0")
+			if short == part {
+				break
+			}
+			part = short
+		}
+		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<>=") {
+			const most = 90
+			for len(part) > most {
+				cut := strings.IndexByte(part, ' ')
+				if cut < 0 {
+					break
+				}
+				part, start = part[cut+1:], start+cut+1
+			}
+			r.Outcome = part
+			p.source(r, "outcome", grammar.Span{Start: from + start, End: from + start + len(part)})
+			return
+		}
+		end = max(i, 0)
+	}
+}

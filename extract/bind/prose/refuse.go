@@ -10,12 +10,13 @@ import (
 )
 
 var (
-	planning  = regexp.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
+	planning  = regexp.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bprojected\b|\bhypothesi[sz]|\bprior studies\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
 	norms     = regexp.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
 	scaleText = regexp.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
 	climate   = regexp.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
 	margins   = regexp.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
 	central   = regexp.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
+	limits    = regexp.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits)\s*$`)
 	cited     = regexp.MustCompile(`(?i)\bet al\b|\bmeta-?analys|\bprevious(?:ly)?\b|\b(?:other|earlier|recent|another|similar) (?:study|studies|trial|trials|report|reports)\b|\bsystematic review|\breported (?:by|in)\b|\bpublished\b|\bliterature\b`)
 	bracketed = regexp.MustCompile(`\[[0-9]+(?:[-–,][ 0-9]+)*\]`)
 )
@@ -44,11 +45,16 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 			if !p.unitBehind(it.End, "kg", "g", "ml") && whole(it.Value.Value) {
 				return true
 			}
+		case "ci", "interval":
+			return true
 		case ":":
 			if !p.r.Tokens[i-1].Spaced && !p.r.Tokens[i].Spaced {
 				return true // a time of day
 			}
 		}
+	}
+	if whole(c.est.Value) && whole(it.Value.Value) && (c.est.Value == "0" || p.window(it.End)) {
+		return true // "0 ± 3°" is a class, "10 ± 5 min after" a window
 	}
 	s := p.sentenceText(it.Start)
 	j := p.token(it.End)
@@ -59,6 +65,14 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 		return true
 	}
 	return p.planned(it.Start)
+}
+
+var windowWords = map[string]bool{"after": true, "before": true, "prior": true, "post": true, "following": true, "postoperatively": true, "from": true}
+
+// window reports that a unit of time and a word like "after" follow byte b.
+func (p *para) window(b int) bool {
+	i := p.token(b)
+	return i+1 < len(p.r.Tokens) && timeUnits[p.r.Tokens[i].Value] && windowWords[p.r.Tokens[i+1].Value]
 }
 
 func (p *para) unitBehind(b int, units ...string) bool {
@@ -93,6 +107,9 @@ func (p *para) refusedInterval(k int, given result.GivenAs) bool {
 	s := p.sentenceText(it.Start)
 	switch given {
 	case result.Range:
+		if limits.MatchString(p.s[max(0, it.Start-30):it.Start]) || strings.HasSuffix(p.s[:it.Start], "in the ") || climate.MatchString(s) && p.block.Zone == paper.Methods {
+			return true
+		}
 		return p.block.Zone == paper.Methods && scaleText.MatchString(s) || scaleText.MatchString(s) && !central.MatchString(s)
 	case result.CI:
 		return margins.MatchString(s) && p.block.Zone == paper.Methods
@@ -109,6 +126,9 @@ func (p *para) refusedBracket(c *cand) bool {
 	}
 	if c.value.Percent && !c.est.Percent {
 		return true
+	}
+	if i := p.token(c.value.End); i < len(p.r.Tokens) && p.r.Tokens[i].Kind == grammar.TokWord && !unitWords[p.r.Tokens[i].Value] && p.r.Tokens[i].Start < c.value.End+3 {
+		return true // "80 colonies (40 per arm)"
 	}
 	return e == v && whole(c.est.Value)
 }

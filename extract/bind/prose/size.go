@@ -80,11 +80,26 @@ func (p *para) countedIn(from, to int) (size, bool) {
 		return size{}, false
 	}
 	a, b := from+found[0][2], from+found[0][3]
+	if !p.wholeCount(from, a, from+found[0][1]) {
+		return size{}, false
+	}
 	n, ok := wholeNumber(p.s[a:b])
 	if !ok || n < 2 {
 		return size{}, false
 	}
 	return size{n: n, at: grammar.Span{Start: a, End: from + found[0][1]}, text: p.s[a : from+found[0][1]]}, true
+}
+
+var (
+	otherCount = regexp.MustCompile(`(?i)(?:\band\s+|[-–/]|[0-9]\s+)$|\b(?:male|female|men|women|boys|girls)s?\b[^.;]*\band\s*$`)
+	loose      = regexp.MustCompile(`(?i)\s(?:of|in|to|at|among|for|with|by|from|and|or|mo|months?|weeks?|wk|days?|years?|hours?|h|min|mg|ml|g|kg|percent|the|were|was|had|per)\s`)
+)
+
+// wholeCount refuses counts that are only part of a group ("35 male and 19
+// female subjects"), part of a word ("under-five children") or joined to their
+// noun by other words ("12 mo among infants").
+func (p *para) wholeCount(from, a, end int) bool {
+	return !otherCount.MatchString(p.s[from:a]) && !loose.MatchString(p.s[a:end])
 }
 
 var units = map[string]int{"one": 1, "two": 2, "three": 3, "four": 4, "five": 5, "six": 6, "seven": 7, "eight": 8, "nine": 9, "ten": 10,
@@ -118,4 +133,14 @@ func (p *para) setSize(r *result.Result, c *cand) {
 		r.N, r.NFrom, r.NKind = s.n, result.NBeside, result.NUnclear
 		r.Sources = append(r.Sources, result.Source{Field: "n", Place: p.run.Between(s.at.Start, s.at.End), Text: s.text})
 	}
+}
+
+// elsewhere fills an n that is stated away from the result.
+func (p *para) elsewhere(r *result.Result, field string, n *int, s size) {
+	*n = s.n
+	if field == "n" {
+		r.NFrom, r.NKind = result.NElsewhere, result.NUnclear
+		r.Raise("n-elsewhere", "the sample size is stated "+s.from+", not beside the result")
+	}
+	r.Sources = append(r.Sources, result.Source{Field: field, Place: s.run.Between(s.at.Start, s.at.End), Text: s.text, From: s.from})
 }

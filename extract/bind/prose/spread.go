@@ -103,10 +103,25 @@ func (p *para) wordInterval(k int) {
 		return
 	}
 	p.estimate(&c)
-	if c.estItem < 0 {
+	if c.estItem < 0 || c.given == result.Range && p.rangeMisfit(&c) {
 		return // the interval of a difference that is not printed is no result
 	}
 	p.cands = append(p.cands, c)
+}
+
+// rangeMisfit reports that a range and its number hardly belong together: the
+// number lies outside, stands far off, or names a time.
+func (p *para) rangeMisfit(c *cand) bool {
+	e, ok := c.est.Float()
+	if !ok || c.est.Rel != "" || timeLike(p, c.estItem) >= 3 && p.r.Items[c.estItem].Kind == grammar.KindNumber {
+		return true
+	}
+	lo, ok1 := c.lower.Float()
+	hi, ok2 := c.upper.Float()
+	if ok1 && ok2 && lo > hi && hi >= 0 {
+		return true
+	}
+	return p.within(c, e) != inside && !p.gap(c, c.est)
 }
 
 // thirdQuartile reads the last of "quartiles 5, 12, 48".
@@ -199,6 +214,10 @@ func (p *para) shared(k int, kinds ...string) *said {
 		d := no - p.sentenceNo(w.at.Start)
 		if d > 1 || d == 1 && it.Start-w.at.End > shareWithin {
 			return nil
+		}
+		if d == 1 && !w.announce && p.r.Items[w.item].Kind == grammar.KindInterval && it.Kind == grammar.KindInterval &&
+			(p.r.Items[w.item].Lower.Percent || p.r.Items[w.item].Upper.Percent) != (it.Lower.Percent || it.Upper.Percent) {
+			continue // another kind of value
 		}
 		for _, kind := range kinds {
 			if w.Spread == kind {

@@ -36,11 +36,11 @@ func (p *para) statistic(c *cand) named {
 		if e.Start >= it.Start || e.Start < from {
 			continue
 		}
-		if e.Statistic == "" || e.Kind != grammar.KindTerm || e.Start < at && at-e.End > 300 {
+		if e.Statistic == "" || e.Kind != grammar.KindTerm || e.Start < at && at-e.End > 600 {
 			continue
 		}
 		n := named{statistic: result.Statistic(e.Statistic), measure: e.Measure, model: e.Model, at: e.WordAt}
-		if n.statistic == result.MeanDifference && p.noContrastOf(c, n.at) {
+		if n.statistic == result.MeanDifference && p.noContrastOf(c, n.at) || n.statistic == result.Ratio && p.heartRate(c, n.at) {
 			continue
 		}
 		best = p.combine(best, n)
@@ -49,6 +49,16 @@ func (p *para) statistic(c *cand) named {
 		best = p.termBehind(c, to)
 	}
 	return p.settle(c, best, from, at, to)
+}
+
+// heartRate reports an abbreviation that cannot name a ratio: what has an SD or
+// a ± behind it is a heart rate, not a hazard ratio.
+func (p *para) heartRate(c *cand, at grammar.Span) bool {
+	switch c.given {
+	case result.SD, result.SE, result.Unstated:
+		return !strings.Contains(strings.ToLower(p.s[at.Start:at.End]), "ratio")
+	}
+	return false
 }
 
 var denied = regexp.MustCompile(`(?i)\b(?:no|not|any|without)\b[^.;]{0,40}$`)
@@ -76,7 +86,7 @@ func (p *para) termBehind(c *cand, to int) named {
 	it := &p.r.Items[c.item]
 	for k := c.item + 1; k < len(p.r.Items) && k < c.item+3; k++ {
 		e := &p.r.Items[k]
-		if e.Start < to && e.Start-it.End < 25 && e.Kind == grammar.KindTerm && e.Statistic != "" {
+		if e.Start < to && e.Start-it.End < 25 && e.Bracket > 0 && (e.Bracket == it.Bracket || e.Start-it.End < 14) && e.Kind == grammar.KindTerm && e.Statistic != "" {
 			return named{statistic: result.Statistic(e.Statistic), measure: e.Measure, model: e.Model, at: e.WordAt}
 		}
 	}
@@ -97,6 +107,10 @@ func (p *para) combine(a, b named) named {
 		near && b.statistic == result.MeanChange && a.statistic == result.MeanDifference:
 		a.statistic = result.MeanDifference
 		return a
+	case near && (a.statistic == result.Mean || a.statistic == result.Median || a.statistic == result.GeometricMean) &&
+		(b.statistic == result.Coefficient || b.statistic == result.Rate || b.statistic == result.Other || b.statistic == result.Proportion) &&
+		!strings.ContainsAny(p.s[a.at.End:b.at.Start], "0123456789,;"):
+		return a // "the median slope"
 	case near && a.statistic == b.statistic:
 		if b.measure == "" {
 			b.measure = a.measure

@@ -1,0 +1,238 @@
+package prose
+
+import (
+	"regexp"
+	"sort"
+	"strconv"
+	"strings"
+
+	"halfspan/extract/bind/convention"
+	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
+)
+
+// arm is one group of the paper, by the words that name it.
+type arm struct {
+	name  string   // as first printed
+	key   []string // its content words, lower case, in order
+	seen  int      // how often it was named
+	sizes []size   // every n printed right behind its name
+}
+
+// cast is who takes part in the paper: its arms with their sizes, and the
+// number of all subjects.
+type cast struct {
+	arms  []arm
+	index map[string]int
+	total []size // sizes of the whole sample, each time it is stated
+}
+
+// learn collects the arms and their sizes from running text and the column
+// headings of tables.
+func (f *finder) learn() {
+	f.cast.index = map[string]int{}
+	for i := range f.doc.Blocks {
+		b := &f.doc.Blocks[i]
+		switch {
+		case b.Table != nil:
+			f.learnTable(b.Table)
+		case b.Zone == paper.References || b.Zone == paper.Introduction || b.Kind != paper.Paragraph && b.Kind != paper.Note && b.Kind != paper.Caption:
+		default:
+			f.learnText(b)
+		}
+	}
+}
+
+func (f *finder) learnTable(t *paper.Table) {
+	for k := range t.Cells {
+		c := &t.Cells[k]
+		if c.Row >= max(t.HeadRows, 1) {
+			break
+		}
+		h := grammar.ParsePhrase(convention.Text(&c.Text))
+		if len(h.N) != 1 {
+			continue
+		}
+		it := h.N[0]
+		name := strings.TrimRight(strings.TrimSpace(c.Text.S[:it.Start]), " (,;:[\n")
+		f.addArm(name, &it, &c.Text, "a column heading")
+	}
+}
+
+// learnText reads "syrup (n = 42)" and "the syrup group".
+func (f *finder) learnText(b *paper.Block) {
+	s := b.Text.S
+	if strings.Contains(s, "n") || strings.Contains(s, "N") {
+		r := grammar.Read(convention.Text(&b.Text))
+		for k := range r.Items {
+			it := &r.Items[k]
+			if it.Kind != grammar.KindSampleSize || it.Bracket == 0 || !it.Alone {
+				continue
+			}
+			start := r.Brackets[it.Bracket-1].Start
+			f.addArm(nameBefore(s[:start]), it, &b.Text, "elsewhere in the text")
+		}
+	}
+	for _, m := range groupNamed.FindAllStringSubmatch(s, -1) {
+		f.addArm(nameBefore(m[1]), nil, nil, "")
+	}
+	for _, m := range wholeSample.FindAllStringSubmatchIndex(s, -1) {
+		n, ok := wholeNumber(s[m[2]:m[3]])
+		if ok && n > 9 && !strings.HasSuffix(s[:m[2]], "of the ") && (b.Zone == paper.Abstract || b.Zone == paper.Results || b.Zone == paper.Methods) {
+			f.cast.total = append(f.cast.total, size{n: n, at: grammar.Span{Start: m[2], End: m[1]}, text: s[m[2]:m[1]], run: &b.Text, from: "elsewhere in the text"})
+		}
+	}
+}
+
+var (
+	groupNamed  = regexp.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
+	wholeSample = regexp.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+|randomly\s+)?(?:randomi[sz]ed|enrolled|included|assigned|recruited|allocated)\b`)
+	stopName    = map[string]bool{}
+	weakName    = map[string]bool{}
+)
+
+func init() {
+	for _, w := range strings.Fields(`the a an and or of in to for with from by at on was were is are be been had has have than vs versus between both each all either
+		either two three four other same this that these those which while whereas but as receiving received receive given taking took assigned allocated
+		randomized randomised randomly into within among per respective respectively compared only no-one our their its one another study age treated using without
+		including included completed analysed analyzed patients participants subjects women men children followed not also those who either control's remaining
+		mean median value values difference differences change total number score scores showed in between-group within-group between-groups i.e e.g after before during`) {
+		stopName[w] = true
+	}
+	for _, w := range strings.Fields(`group groups arm arms patients participants subjects women men children treatment the individuals cohort users`) {
+		weakName[w] = true
+	}
+	delete(stopName, "patients")
+	delete(stopName, "participants")
+	delete(stopName, "treatment")
+}
+
+// nameBefore is the name that ends the text: its last words, back to a
+// preposition, a verb or a mark.
+func nameBefore(s string) string {
+	const most = 4
+	s = strings.TrimRight(s, " \u00a0")
+	end, start := len(s), len(s)
+	for n := 0; n < most && start > 0; n++ {
+		i := strings.LastIndexAny(s[:start], " \u00a0\n")
+		w := s[i+1 : start]
+		if w == "" || strings.ContainsAny(w, ",;:.()[]=<>%") || stopName[strings.ToLower(w)] {
+			break
+		}
+		start = max(i, 0)
+	}
+	return strings.TrimSpace(s[start:end])
+}
+
+// nameKey is the content words of a name.
+func nameKey(name string) []string {
+	var out []string
+	for _, w := range strings.FieldsFunc(strings.ToLower(name), func(r rune) bool { return strings.ContainsRune(" \u00a0\n-/,()", r) }) {
+		if !weakName[w] && !stopName[w] {
+			out = append(out, w)
+		}
+	}
+	return out
+}
+
+func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from string) {
+	key := nameKey(name)
+	if len(key) == 0 || len(key) > 4 || len(key) == 1 && len(key[0]) < 2 {
+		return
+	}
+	for _, w := range key {
+		if timeUnits[w] || w == "baseline" || w == "week" || w == "follow" {
+			return
+		}
+	}
+	if _, err := strconv.Atoi(key[0]); err == nil && len(key) == 1 {
+		return
+	}
+	k := strings.Join(key, " ")
+	i, ok := f.cast.index[k]
+	if !ok {
+		i = len(f.cast.arms)
+		f.cast.index[k] = i
+		f.cast.arms = append(f.cast.arms, arm{name: name, key: key})
+	}
+	a := &f.cast.arms[i]
+	a.seen++
+	if n == nil {
+		return
+	}
+	if v, err := strconv.Atoi(n.Value.Value); err == nil && v > 1 {
+		a.sizes = append(a.sizes, size{n: v, at: n.Span, text: run.S[n.Start:n.End], run: run, from: from})
+	}
+}
+
+// sizeOf gives the arm's size where all statements of it agree.
+func (a *arm) sizeOf() (size, bool) {
+	if len(a.sizes) == 0 {
+		return size{}, false
+	}
+	for _, s := range a.sizes[1:] {
+		if s.n != a.sizes[0].n {
+			return size{}, false
+		}
+	}
+	return a.sizes[0], true
+}
+
+// mention is an arm named in a sentence.
+type mention struct {
+	arm        int
+	start, end int
+}
+
+// mentions finds the arms named between two bytes, the longest name first, in
+// order of place.
+func (p *para) mentions(from, to int) []mention {
+	toks := p.r.Tokens
+	var out []mention
+	for i := p.token(from); i < len(toks) && toks[i].Start < to; i++ {
+		if toks[i].Kind != grammar.TokWord && toks[i].Kind != grammar.TokNumber {
+			continue
+		}
+		best, bestEnd, bestLen := -1, i, 0
+		for a := range p.f.cast.arms {
+			arm := &p.f.cast.arms[a]
+			if arm.seen < 2 && len(arm.sizes) == 0 || len(arm.key) <= bestLen {
+				continue
+			}
+			if end, ok := p.named(i, arm); ok {
+				best, bestEnd, bestLen = a, end, len(arm.key)
+			}
+		}
+		if best >= 0 {
+			out = append(out, mention{best, toks[i].Start, toks[bestEnd-1].End})
+			i = bestEnd - 1
+		}
+	}
+	sort.SliceStable(out, func(a, b int) bool { return out[a].start < out[b].start })
+	return out
+}
+
+// named reports whether the arm's words begin at token i. A single word must be
+// followed by "group" or "arm", or be a name that is printed with its size or
+// in capitals.
+func (p *para) named(i int, a *arm) (int, bool) {
+	toks := p.r.Tokens
+	k := i
+	for _, w := range a.key {
+		for k < len(toks) && k > i && (toks[k].Kind == grammar.TokDash || toks[k].Kind == grammar.TokSlash || weakName[toks[k].Value] || toks[k].Value == "and" || toks[k].Kind == grammar.TokPlus) {
+			k++
+		}
+		if k >= len(toks) || toks[k].Value != w {
+			return i, false
+		}
+		k++
+	}
+	if k < len(toks) && (weakName[toks[k].Value]) {
+		return k + 1, true
+	}
+	if len(a.key) > 1 || len(a.sizes) > 0 {
+		return k, true
+	}
+	printed := p.s[toks[i].Start:toks[i].End]
+	return k, strings.ToUpper(printed) == printed && len(printed) > 1
+}
