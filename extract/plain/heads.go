@@ -165,9 +165,9 @@ func (s *headSearch) score(level, cell, from, width, height int, used headIndex)
 		for k := from; k < from+width; k++ {
 			score += min(suits(c.label, &s.body[k]), 40)
 		}
-		score -= 40 // a heading over several columns without headings of their own
+		score -= 100 // a heading over several columns without headings of their own
 		if from == 0 && s.body[1%s.cols].mostly(textual) && s.body[0].mostly(textual) {
-			score += 40 // but a stub of two columns is often named once
+			score += 100 // but a stub of two columns is often named once
 		}
 	case width == 1:
 		if c.kind == empty {

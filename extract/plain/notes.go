@@ -17,10 +17,12 @@ import (
 
 var (
 	// noteOpens begins nothing but a note, however long it is.
-	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|is|represent|given|shown|in|presented|expressed|reported|denote|indicate)\b|values,|mean(?:s)? ?(?:±|\(|\+)|median(?:s)? ?\(|n \(%\)|n, number|numbers? (?:in|are)\b|(?:the )?table (?:shows|presents|gives))`)
+	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|is|represent|given|shown|in|presented|expressed|reported|denote|indicate)\b|values,|mean(?:s)? ?(?:±|\(|\+)|median(?:s)? ?\(|n \(%\)|n, number|numbers? (?:in|are)\b|(?:the )?table (?:shows|presents|gives)|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=))`)
 	noteWords = regexp.MustCompile(`^(?i:notes?\b|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
 	// expands is a list of what letters stand for.
 	expands = regexp.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
+	// abbreviated is the same without a sign between letters and words.
+	abbreviated = regexp.MustCompile(`^[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL[^.;]+;\s[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL`)
 	// symbolMark is a mark that is no letter or digit.
 	symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆•µ]{1,3})`)
 	plainMark  = regexp.MustCompile(`^(?:[a-z]|\d{1,2})[).:]?`)
@@ -93,7 +95,7 @@ func (r *reader) isNote(s string, t *paper.Table, marks map[string]bool) bool {
 	if numberedHeading.MatchString(s) {
 		return false
 	}
-	if expands.MatchString(s) && (strings.Count(s, ";")+strings.Count(s, ",") > 1 || len(s) < shortNote) && declares(s) {
+	if (expands.MatchString(s) || abbreviated.MatchString(s)) && (strings.Count(s, ";")+strings.Count(s, ",") > 1 || len(s) < shortNote) && declares(s) {
 		return true
 	}
 	return noteOpens.MatchString(s) || noteWords.MatchString(s) && !sentences(s)
@@ -118,6 +120,9 @@ func (r *reader) betweenNotes(s string, next int, t *paper.Table, marks map[stri
 func declares(s string) bool {
 	k := strings.IndexAny(s, ",:=–—")
 	if k <= 0 {
+		k = strings.IndexByte(s, ' ')
+	}
+	if k <= 0 {
 		return false
 	}
 	first := strings.TrimSpace(s[:k])
@@ -128,6 +133,9 @@ func declares(s string) bool {
 		}
 	}
 	letters := utf8.RuneCountInString(first)
+	if parts := strings.Split(s, ";"); len(parts) > 2 && capitals > 1 {
+		return true
+	}
 	return letters <= 25 && (2*capitals >= letters || letters <= 2 || strings.Contains(s, ";") && letters <= 8)
 }
 
@@ -179,28 +187,34 @@ func (r *reader) markAt(s, expected string, marks map[string]bool) int {
 	case unicode.IsUpper(next), unicode.IsDigit(next), strings.ContainsRune("(<=>≤≥", next):
 		return loc[1]
 	case unicode.IsLower(next):
-		if r.glued(mark+firstWord(rest), firstWord(rest)) {
+		if r.glued(mark+firstWord(rest), firstWord(rest), 1) || mark != "a" && mark == expected && marks[mark] && r.prose[strings.ToLower(mark+firstWord(rest))] <= 1 {
 			return loc[1]
 		}
 	}
 	return 0
 }
 
-// glued reports whether a word of the text is a mark with another word behind
-// it: the file uses the other word and never the whole.
-func (r *reader) glued(whole, other string) bool {
-	return r.words()[strings.ToLower(whole)] <= 1 && (r.words()[strings.ToLower(other)] > 0 || len(other) == 1)
+// glued reports whether a word is a mark with another word before or behind it:
+// the file uses the other word, and the whole not more often than times in its
+// running text.
+func (r *reader) glued(whole, other string, times int) bool {
+	if len(other) == 1 && !strings.Contains("np", strings.ToLower(other)) {
+		return false
+	}
+	return r.prose[strings.ToLower(whole)] <= times && r.prose[strings.ToLower(other)] > 0
 }
 
-// words counts the words of the file, in lower case.
-func (r *reader) words() map[string]int {
-	if r.counts == nil {
-		r.counts = map[string]int{}
-		for _, w := range anyWord.FindAll(r.src.B, -1) {
-			r.counts[strings.ToLower(string(w))]++
+// countWords counts the words of the running text, in lower case.
+func (r *reader) countWords() {
+	r.prose = map[string]int{}
+	for i, l := range r.lines {
+		if l.blank || r.tabbed(i) {
+			continue
+		}
+		for _, w := range anyWord.FindAll(r.src.B[l.start:l.end], -1) {
+			r.prose[strings.ToLower(string(w))]++
 		}
 	}
-	return r.counts
 }
 
 var anyWord = regexp.MustCompile(`\pL+`)
@@ -262,13 +276,13 @@ func (r *reader) raiseMarks(t *paper.Table) {
 	if len(has) == 0 {
 		return
 	}
-	r.raise(&t.Caption, has)
+	r.raise(&t.Caption, has, 1)
 	for i := range t.Cells {
-		r.raise(&t.Cells[i].Text, has)
+		r.raise(&t.Cells[i].Text, has, 0)
 	}
 }
 
-func (r *reader) raise(run *paper.TextRun, has map[string]bool) {
+func (r *reader) raise(run *paper.TextRun, has map[string]bool, times int) {
 	s := run.S
 	at := -1
 	if m := endMarks.FindStringSubmatchIndex(s); m != nil {
@@ -281,7 +295,7 @@ func (r *reader) raise(run *paper.TextRun, has map[string]bool) {
 	} else if n := len(s); n > 2 && has[s[n-1:]] {
 		word := lastWord(s)
 		stem := word[:max(len(word)-1, 0)]
-		if len(stem) > 1 && r.words()[strings.ToLower(word)] <= 2 && r.words()[strings.ToLower(stem)] > 0 || stem == "P" || stem == "p" {
+		if len(stem) > 0 && r.glued(word, stem, times) {
 			at = n - 1
 		}
 	}

@@ -27,7 +27,7 @@ type reader struct {
 	paged bool // the file has form feeds
 
 	hyphened map[string]bool // words printed with a hyphen inside a line
-	counts   map[string]int  // words of the file, made when first asked for
+	prose    map[string]int  // how often each word stands in running text
 	sections sections
 }
 
@@ -55,6 +55,7 @@ func Read(path string, content []byte) (*paper.Document, error) {
 		r.lines = r.lines[:maxLines]
 	}
 	r.findHyphens()
+	r.countWords()
 	r.furniture()
 	r.read()
 	if src.Guessed {
