@@ -32,11 +32,13 @@ type PrintedLine struct {
 // Arrange turns the pages of a paper into blocks in reading order.
 func Arrange(pages []paper.GlyphPage) *Arrangement {
 	sheets := make([][]sheet, len(pages))
+	fonts := map[string]int32{}
 	for i := range pages {
-		sheets[i] = sheetsOf(&pages[i])
+		sheets[i] = sheetsOf(&pages[i], fonts)
 	}
 	markFurniture(sheets)
-	a := &arranger{sheets: sheets, body: bodySize(sheets)}
+	a := &arranger{sheets: sheets}
+	a.body, a.font = bodyPrint(sheets)
 	for p := range sheets {
 		for i := range sheets[p] {
 			a.takeTables(&sheets[p][i])
@@ -49,44 +51,62 @@ func Arrange(pages []paper.GlyphPage) *Arrangement {
 // arranger holds the paper while it is arranged.
 type arranger struct {
 	sheets [][]sheet
-	body   int // the paper's usual font size
+	body   int   // the paper's usual font size
+	font   int32 // and font
 	drafts []draft
 	pages  []PageLines
 	dict   map[string]bool
 }
 
-func sheetsOf(p *paper.GlyphPage) []sheet {
+// sheetsOf makes the sheets of a page. fonts numbers the paper's fonts by name
+// and grows.
+func sheetsOf(p *paper.GlyphPage, fonts map[string]int32) []sheet {
+	own := make(map[int32]int32, len(p.Fonts))
+	for i, name := range p.Fonts {
+		if _, ok := fonts[name]; !ok {
+			fonts[name] = int32(len(fonts))
+		}
+		own[int32(i)] = fonts[name]
+	}
 	frames := words.Read(p)
 	out := make([]sheet, len(frames))
 	for i := range frames {
 		s := &out[i]
-		s.page, s.frame = p.Page.Number, frames[i]
+		s.page, s.frame, s.fonts = p.Page.Number, frames[i], own
 		s.lines = make([]line, len(frames[i].Lines))
 		for k := range frames[i].Lines {
-			s.lines[k] = newLine(s.page, wordsOf(&frames[i].Lines[k]))
+			s.lines[k] = s.line(wordsOf(&frames[i].Lines[k]))
 		}
 	}
 	return out
 }
 
-// bodySize is the font size that most glyphs of the paper have.
-func bodySize(sheets [][]sheet) int {
-	count := map[int]int{}
+// bodyPrint is the font size and the font that most glyphs of the paper have.
+func bodyPrint(sheets [][]sheet) (size int, font int32) {
+	sizes, fonts := map[int]int{}, map[int32]int{}
 	for _, page := range sheets {
 		for i := range page {
 			for k := range page[i].lines {
 				l := &page[i].lines[k]
-				count[(l.size+5)/10] += l.glyphs
+				sizes[(l.size+5)/10] += l.glyphs
+				fonts[l.font] += l.glyphs
 			}
 		}
 	}
-	best := 100
-	for size, n := range count {
-		if n > count[best] || n == count[best] && size < best {
-			best = size
+	delete(fonts, -1)
+	return max(commonest(sizes), 10) * 10, commonest(fonts)
+}
+
+// commonest is the key with the highest count, the lower one of equals.
+func commonest[K int | int32](count map[K]int) K {
+	var best K
+	most := 0
+	for k, n := range count {
+		if n > most || n == most && k < best {
+			best, most = k, n
 		}
 	}
-	return best * 10
+	return best
 }
 
 // takeTables finds the tables of a sheet, takes their words out of its lines
@@ -125,14 +145,14 @@ func (a *arranger) takeTables(s *sheet) {
 				taken[key] = true
 				w := &s.frame.Lines[key.Line].Words[key.Word]
 				ws = append(ws, w)
-				own = appendRow(own, s.page, w, -int(s.frame.Lines[key.Line].Base))
+				own = appendRow(own, w, -int(s.frame.Lines[key.Line].Base))
 			}
-			rows = append(rows, settleRows(own, s.page)...)
+			rows = append(rows, s.settleRows(own)...)
 		}
 		if len(ws) == 0 {
 			continue
 		}
-		l := newLine(s.page, ws)
+		l := s.line(ws)
 		for _, row := range rows {
 			l.top, l.bot = min(l.top, row.top), max(l.bot, row.bot)
 		}
@@ -146,21 +166,21 @@ func (a *arranger) takeTables(s *sheet) {
 
 // appendRow adds a word to the row with its line's baseline, the last one or a
 // new one.
-func appendRow(rows []line, page int, w *words.Word, base int) []line {
+func appendRow(rows []line, w *words.Word, base int) []line {
 	for i := len(rows) - 1; i >= 0 && i >= len(rows)-3; i-- {
 		if abs(rows[i].base-base)*4 <= int(w.Size) {
 			rows[i].words = append(rows[i].words, w)
 			return rows
 		}
 	}
-	return append(rows, line{words: []*words.Word{w}, base: base, page: page})
+	return append(rows, line{words: []*words.Word{w}, base: base})
 }
 
-func settleRows(rows []line, page int) []line {
+func (s *sheet) settleRows(rows []line) []line {
 	out := make([]line, len(rows))
 	for i, r := range rows {
 		slices.SortStableFunc(r.words, func(a, b *words.Word) int { return cmp.Compare(a.Box.X0, b.Box.X0) })
-		out[i] = newLine(page, r.words)
+		out[i] = s.line(r.words)
 		out[i].base = r.base
 	}
 	slices.SortStableFunc(out, func(a, b line) int { return cmp.Compare(a.base, b.base) })
@@ -179,7 +199,7 @@ func (s *sheet) dropWords(taken map[grid.Ref]bool) {
 				continue
 			}
 			if k > start {
-				l := newLine(s.page, ws[start:k])
+				l := s.line(ws[start:k])
 				l.furniture = s.lines[i].furniture
 				out = append(out, l)
 			}
@@ -206,14 +226,15 @@ func (a *arranger) findColumns() {
 		}
 	}
 	slices.Sort(prior)
-	prior = slices.CompactFunc(prior, func(x, y int) bool { return y-x < cell })
+	prior = slices.CompactFunc(prior, func(x, y int) bool { return abs(y-x) < cell })
 	for p := range a.sheets {
 		for i := range a.sheets[p] {
 			s := &a.sheets[p][i]
 			if s.frame.Oblique {
 				continue
 			}
-			for _, c := range s.findGutters(prior, a.body) {
+			cs := s.findGutters(prior, a.body)
+			for _, c := range cs {
 				s.gutters = append(s.gutters, c.g)
 			}
 		}

@@ -40,7 +40,7 @@ func (s *sheet) cutAtGutters() {
 			if k <= 0 || int(rest.words[k-1].Box.X1) > g.x1 {
 				continue
 			}
-			a, b := newLine(l.page, rest.words[:k]), newLine(l.page, rest.words[k:])
+			a, b := s.line(rest.words[:k]), s.line(rest.words[k:])
 			a.furniture, b.furniture = l.furniture, l.furniture
 			out = append(out, a)
 			rest = b
@@ -99,7 +99,7 @@ func (s *sheet) joinRows() {
 			ws, gone[k] = append(ws, s.lines[k].words...), true
 		}
 		slices.SortStableFunc(ws, func(a, b *words.Word) int { return cmp.Compare(a.Box.X0, b.Box.X0) })
-		n := newLine(a.page, ws)
+		n := s.line(ws)
 		n.furniture, n.left, n.right = a.furniture, a.left, a.right
 		s.lines[i] = n
 	}

@@ -4,6 +4,8 @@ import (
 	"cmp"
 	"math/bits"
 	"slices"
+
+	"halfspan/extract/layout/words"
 )
 
 const (
@@ -72,6 +74,7 @@ func (r *raster) stripes(least int) []stripe {
 type candidate struct {
 	g           gutter
 	left, right int // lines of running text close by on each side
+	crossed     int // lines that run on over it with no more than a word space
 }
 
 // findGutters finds the white stripes between columns of running text. prior
@@ -105,7 +108,10 @@ func (s *sheet) findGutters(prior []int, bodySize int) []candidate {
 		c := candidate{g: gutter{r.x + st.col*cell, r.x + (st.col+2)*cell, r.y + st.top*cell, r.y + (st.bot+1)*cell}}
 		s.weigh(&c, bodySize)
 		known := slices.ContainsFunc(prior, func(x int) bool { return abs(x-(c.g.x0+cell)) <= bodySize })
-		if c.left >= 3 && c.right >= 3 && c.left+c.right >= 8 || known && max(c.left, c.right) >= 2 {
+		if c.crossed*4 > c.left+c.right {
+			continue
+		}
+		if c.left >= 3 && c.right >= 3 && c.left+c.right >= 8 || known && max(c.left, c.right) >= 2 && c.left+c.right >= 4 {
 			cands = append(cands, c)
 		}
 	}
@@ -148,6 +154,10 @@ func (s *sheet) weigh(c *candidate, bodySize int) {
 				c.right++
 			}
 		default: // a segment that reaches over a narrow gutter
+			if k := l.wordAfter(mid); k > 0 && int(l.words[k].Box.X0-l.words[k-1].Box.X1)*2 < l.size {
+				c.crossed++
+				continue
+			}
 			if mid-l.x0 >= long {
 				c.left++
 			}
@@ -156,4 +166,9 @@ func (s *sheet) weigh(c *candidate, bodySize int) {
 			}
 		}
 	}
+}
+
+// wordAfter is the first word that begins right of x, or -1.
+func (l *line) wordAfter(x int) int {
+	return slices.IndexFunc(l.words, func(w *words.Word) bool { return int(w.Box.X0) >= x })
 }

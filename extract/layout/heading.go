@@ -9,7 +9,7 @@ import (
 )
 
 var (
-	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]+|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|,–—]|\s)`)
+	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s)`)
 	tableLabel   = regexp.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]+|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s)`)
 	numbered     = regexp.MustCompile(`^(?:[0-9]{1,2}(?:\.[0-9]{1,2}){0,3}\.?|[IVX]{1,4}\.|[A-H]\.)\s+\p{Lu}`)
 	numberedDeep = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2}){1,3}\.?\s+\p{Lu}`)
@@ -66,7 +66,7 @@ func knownTitle(text string) bool {
 
 // isHeading reports whether a draft as a whole is a heading.
 func (a *arranger) isHeading(d *draft) bool {
-	if len(d.lines) > 4 || d.lines[0].table != nil {
+	if len(d.lines) > 6 || d.lines[0].table != nil {
 		return false
 	}
 	text := d.text()
@@ -81,7 +81,10 @@ func (a *arranger) isHeading(d *draft) bool {
 		return false
 	}
 	for i := range d.lines {
-		if !a.headingLine(&d.lines[i]) {
+		l := &d.lines[i]
+		inFont := a.apart(l) && len(words) <= 14 && !strings.HasSuffix(text, ".") && letterShare(text) >= 60 &&
+			unicode.IsUpper([]rune(text)[0]) && d.size*100 >= a.body*94 && (len(d.lines) > 1 || l.short())
+		if !inFont && !a.headingLine(l) {
 			return false
 		}
 	}

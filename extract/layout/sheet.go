@@ -15,7 +15,8 @@ type line struct {
 	top, bot       int // from the baseline and the font size
 	size           int // the font size of most of its glyphs
 	glyphs         int
-	bold, italic   bool // most of its glyphs
+	bold, italic   bool  // most of its glyphs
+	font           int32 // of nearly all its glyphs, by the paper's list; -1 where it is mixed
 	furniture      bool
 	table          *tableAt // the line stands for a table; it has no words
 	left, right    int      // gutters beside it, -1 for none
@@ -35,14 +36,16 @@ type tableAt struct {
 type sheet struct {
 	page    int
 	frame   words.Frame
-	lines   []line // not yet in reading order
+	fonts   map[int32]int32 // the page's font numbers to the paper's
+	lines   []line          // not yet in reading order
 	gutters []gutter
 }
 
-// newLine makes a line of words, which must not be empty.
-func newLine(page int, ws []*words.Word) line {
-	l := line{words: ws, page: page, left: -1, right: -1, x0: int(ws[0].Box.X0), x1: int(ws[0].Box.X1)}
+// line makes a line of words, which must not be empty.
+func (s *sheet) line(ws []*words.Word) line {
+	l := line{words: ws, page: s.page, font: -1, left: -1, right: -1, x0: int(ws[0].Box.X0), x1: int(ws[0].Box.X1)}
 	best, bold, italic, plain := 0, 0, 0, 0
+	font, same := int32(-1), 0
 	for _, w := range ws {
 		l.x0, l.x1 = min(l.x0, int(w.Box.X0)), max(l.x1, int(w.Box.X1))
 		n := len(w.Glyphs)
@@ -57,6 +60,13 @@ func newLine(page int, ws []*words.Word) line {
 		if w.Italic {
 			italic += n
 		}
+		f := s.fonts[w.Glyphs[0].Font]
+		if font < 0 {
+			font = f
+		}
+		if f == font {
+			same += n
+		}
 		if n > best {
 			best, l.size, l.base = n, int(w.Size), -int(w.Base)
 		}
@@ -65,6 +75,9 @@ func newLine(page int, ws []*words.Word) line {
 		l.size, l.base = int(ws[0].Size), -int(ws[0].Base)
 	}
 	l.bold, l.italic = bold*10 >= plain*8 && bold > 0, italic*10 >= plain*8 && italic > 0
+	if font >= 0 && same*10 >= plain*9 {
+		l.font = font
+	}
 	l.top, l.bot = l.base-l.size*3/4, l.base+l.size/4
 	return l
 }

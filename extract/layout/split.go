@@ -46,11 +46,7 @@ func (a *arranger) split(s *sheet, st *stack) []draft {
 			for i := range d.lines {
 				sizes[d.lines[i].size] += d.lines[i].glyphs
 			}
-			for size, n := range sizes {
-				if n > sizes[d.size] || n == sizes[d.size] && size < d.size {
-					d.size = size
-				}
-			}
+			d.size = commonest(sizes)
 			if d.lines[0].table != nil {
 				d.kind = paper.TableBlock
 			}
@@ -131,6 +127,9 @@ func (a *arranger) breaks(b []line, l *line) bool {
 	case len(b) >= 2 && step*100 > (p.base-b[len(b)-2].base)*125 && step*100 > 125*size:
 		return true
 	}
+	if a.apart(p) != a.apart(l) && p.font != l.font && (p.short() || l.short()) {
+		return true
+	}
 	text := l.text()
 	prev := p.text()
 	switch {
@@ -154,6 +153,13 @@ func (a *arranger) breaks(b []line, l *line) bool {
 	short := p.x1 < p.edge+p.width*3/4
 	return short && ended(prev) && (unicode.IsUpper(first) || unicode.IsDigit(first))
 }
+
+// apart reports whether a line is printed in another font than the running
+// text.
+func (a *arranger) apart(l *line) bool { return l.font >= 0 && l.font != a.font }
+
+// short reports whether a line ends well before its column does.
+func (l *line) short() bool { return l.x1 < l.edge+l.width*85/100 }
 
 // ended reports whether a text ends as a sentence does; a mark or citation
 // number may follow the stop.

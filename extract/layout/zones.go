@@ -52,7 +52,7 @@ func (z *zoner) blocks(d *draft, run paper.TextRun) []paper.Block {
 	if z.zone == paper.References {
 		return []paper.Block{{Kind: paper.Reference, Zone: z.zone, Section: z.section, Page: d.page, Text: run}}
 	}
-	if z.zone == paper.Elsewhere && !z.done && d.page <= 2 && (runInHeading(run.S) != "" || strings.Count(run.S, " ") >= 60) {
+	if z.zone == paper.Elsewhere && !z.done && d.page <= 2 && (runInHeading(run.S) != "" || isProse(run.S)) {
 		z.zone, z.section = paper.Abstract, "Abstract"
 	}
 	if z.zone == paper.Abstract && d.page <= 2 {
@@ -169,6 +169,7 @@ func (z *zoner) abstract(d *draft, run paper.TextRun) []paper.Block {
 		add(start, p.at)
 		start = p.at
 		z.section = p.title
+		z.parts[paper.PlainTitle(p.title)] = true
 	}
 	add(start, len(run.S))
 	return out
@@ -218,6 +219,19 @@ func styledStart(run *paper.TextRun) string {
 		}
 	}
 	return ""
+}
+
+// isProse reports whether a text is a paragraph of sentences, not a list of
+// names and places.
+func isProse(s string) bool {
+	words := strings.Fields(s)
+	lower := 0
+	for _, w := range words {
+		if w[0] >= 'a' && w[0] <= 'z' {
+			lower++
+		}
+	}
+	return len(words) >= 50 && lower*2 > len(words) && ended(s)
 }
 
 // sliceRun is the part [from, to) of a run, without spaces at its ends.

@@ -271,7 +271,7 @@ func without(p *paper.GlyphPage, items, other []item) []item {
 		}
 		twin := false
 		for j := k; j < len(other) && other[j].x0 <= it.x0+it.size/8; j++ {
-			twin = twin || p.Glyphs[other[j].glyph].Text == p.Glyphs[it.glyph].Text
+			twin = twin || twins(p, &other[j], &it)
 		}
 		if !twin {
 			own = append(own, it)

@@ -36,19 +36,27 @@ func single(p *paper.GlyphPage, row []item) []item {
 	kept := row[:0]
 	for _, it := range row {
 		again := false
-		for k := len(kept) - 1; k >= 0 && k >= len(kept)-3; k-- {
+		for k := len(kept) - 1; k >= 0 && k >= len(kept)-3 && !again; k-- {
 			o := &kept[k]
-			if (it.x0-o.x0)*8 <= it.size && abs(it.base-o.base)*8 <= it.size && abs(it.size-o.size)*10 <= it.size &&
-				p.Glyphs[it.glyph].Text == p.Glyphs[o.glyph].Text && (it.x0-o.x0)*2 <= it.x1-it.x0 {
-				again = true
-				break
-			}
+			again = (it.x0-o.x0)*8 <= it.size && abs(it.base-o.base)*8 <= it.size && abs(it.size-o.size)*10 <= it.size &&
+				(it.x0-o.x0)*2 <= it.x1-it.x0 && twins(p, o, &it)
 		}
 		if !again {
 			kept = append(kept, it)
 		}
 	}
 	return kept
+}
+
+// twins reports whether two items on one spot are the same glyph printed
+// twice. The two letters of a ligature (ff) share a spot, too, but follow one
+// another in the content.
+func twins(p *paper.GlyphPage, a, b *item) bool {
+	if p.Glyphs[a.glyph].Text != p.Glyphs[b.glyph].Text {
+		return false
+	}
+	r, _ := utf8.DecodeRuneInString(p.Glyphs[a.glyph].Text)
+	return b.glyph != a.glyph+1 || a.x0 != b.x0 || !unicode.IsLetter(r)
 }
 
 func segment(p *paper.GlyphPage, items []item) Line {
