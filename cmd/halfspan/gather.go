@@ -57,6 +57,25 @@ func gather(paths []string) (*gathered, error) {
 	return g, nil
 }
 
+// rebase makes the names relative to a folder above the root.
+func (g *gathered) rebase(root string) {
+	rel, err := filepath.Rel(root, g.root)
+	if err != nil {
+		return // within says that there is such a path
+	}
+	prefix := filepath.ToSlash(rel) + "/"
+	for i := range g.papers {
+		g.papers[i].name = prefix + g.papers[i].name
+	}
+	for i := range g.passed {
+		g.passed[i] = prefix + g.passed[i]
+	}
+	for i := range g.failed {
+		g.failed[i].name = prefix + g.failed[i].name
+	}
+	g.root = root
+}
+
 type namedPath struct {
 	path   string
 	folder bool

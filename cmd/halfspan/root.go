@@ -1,10 +1,14 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io"
+	"os"
+	"os/signal"
 	"strings"
+	"syscall"
 
 	"github.com/spf13/cobra"
 )
@@ -45,7 +49,9 @@ func run(args []string, in io.Reader, out, errOut io.Writer) int {
 	root.SetIn(in)
 	root.SetOut(out)
 	root.SetErr(errOut)
-	err := root.Execute()
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	err := root.ExecuteContext(ctx)
 	if err == nil {
 		return statusDone
 	}
@@ -76,11 +82,22 @@ func isUsage(err error) bool {
 
 func newRoot(s *streams) *cobra.Command {
 	root := &cobra.Command{
-		Use:           "halfspan",
-		Short:         "mean, SD and n out of published papers, checked by a person against the page",
+		Use:   "halfspan",
+		Short: "mean, SD and n out of published papers, checked by a person against the page",
+		Long: `Read a folder of papers, find every result that is printed with an interval or a
+spread, work out the SD behind it where that is legitimate, and say how sure the
+reading is and why. A person checks each result against the page; only what was
+confirmed is exported, with the evidence.
+
+` + cautionsHelp,
+		Example: `  halfspan scan papers     read them and print the review table
+  halfspan check papers    decide result by result
+  halfspan export papers   the confirmed values as CSV, with a codebook`,
+		Version:       version,
 		SilenceErrors: true,
 		SilenceUsage:  true,
 	}
-	root.AddCommand(newScan(s), newText(s))
+	root.SetVersionTemplate(versionText())
+	root.AddCommand(newScan(s), newList(s), newText(s))
 	return root
 }

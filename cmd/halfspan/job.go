@@ -1,0 +1,126 @@
+package main
+
+import (
+	"encoding/json"
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+	"strings"
+	"time"
+
+	"halfspan/convert/working"
+	"halfspan/extract"
+	"halfspan/extract/paper"
+	"halfspan/extract/worker"
+	"halfspan/report/ledger"
+)
+
+// A job is what a worker process is asked to do with one paper.
+type job struct {
+	Task string `json:"task"` // one of tasks
+	Path string `json:"path"` // to open it
+	Name string `json:"name"` // as it is to stand in the records
+	OCR  bool   `json:"ocr,omitempty"`
+	Page int    `json:"page,omitempty"` // only this page, for the tasks that show a paper; 0 all
+	Form string `json:"form,omitempty"` // of the output, for the tasks that have several
+}
+
+// A task makes something of a document, in the worker process.
+type task func(j *job, doc *paper.Document) (any, error)
+
+// tasks lists what a worker can be asked for. Each gives the type that the
+// command which asks for it expects.
+func tasks() map[string]task {
+	return map[string]task{
+		"results": findResults, // outcome
+		"text":    showText,    // shown
+	}
+}
+
+// outcome is a paper read, with the results found in it.
+type outcome struct {
+	Paper ledger.Paper
+	Items []ledger.Item
+}
+
+// maxFile bounds the size of a file that is read at all. The largest of some
+// hundred published papers has 30 MB.
+const maxFile = 200 << 20
+
+// preparing is how long the PDF reader may take to be compiled, once for a user.
+const preparing = 3 * time.Minute
+
+// work is the handler of the worker processes.
+func work(request []byte, alive worker.Alive) ([]byte, error) {
+	var j job
+	if err := json.Unmarshal(request, &j); err != nil {
+		return nil, fmt.Errorf("reading the job: %w", err)
+	}
+	do, ok := tasks()[j.Task]
+	if !ok {
+		return nil, fmt.Errorf("no such task: %q", j.Task)
+	}
+	content, err := readFile(j.Path)
+	if err != nil {
+		return nil, err
+	}
+	doc, err := extract.Read(j.Path, content, extract.Options{
+		OCR:       j.OCR,
+		Progress:  func(page int) { alive(fmt.Sprintf("page %d", page), 0) },
+		Preparing: func() { alive("preparing the PDF reader, once", preparing) },
+	})
+	if err != nil {
+		return nil, errors.New(strings.TrimPrefix(err.Error(), j.Path+": "))
+	}
+	doc.Path = j.Name
+	alive("finding results", 0)
+	made, err := do(&j, doc)
+	if err != nil {
+		return nil, err
+	}
+	return json.Marshal(made)
+}
+
+// readFile reads a paper's file, or says in plain words why not.
+func readFile(path string) ([]byte, error) {
+	info, err := os.Stat(path)
+	switch {
+	case errors.Is(err, fs.ErrPermission):
+		return nil, errors.New("no permission to read it")
+	case err != nil:
+		return nil, fmt.Errorf("opening it: %w", bare(err))
+	case info.Size() > maxFile:
+		return nil, fmt.Errorf("it has %d MB, and no paper has more than %d: split it, or leave it out", info.Size()>>20, maxFile>>20)
+	}
+	content, err := os.ReadFile(path)
+	if errors.Is(err, fs.ErrPermission) {
+		return nil, errors.New("no permission to read it")
+	}
+	if err != nil {
+		return nil, fmt.Errorf("opening it: %w", bare(err))
+	}
+	return content, nil
+}
+
+// bare is an error of the file system without the path, which is said already.
+func bare(err error) error {
+	var pe *fs.PathError
+	if errors.As(err, &pe) {
+		return pe.Err
+	}
+	return err
+}
+
+// findResults finds and works out the results of a paper.
+func findResults(_ *job, doc *paper.Document) (any, error) {
+	results := extract.Find(doc)
+	workings := working.Work(working.FactsOf(doc), results)
+	out := outcome{Paper: ledger.Paper{
+		Name: doc.Path, SHA256: doc.SHA256, Format: doc.Format, Title: doc.Title, Pages: len(doc.Pages), Problems: doc.Problems,
+	}}
+	for i := range results {
+		out.Items = append(out.Items, ledger.Item{Result: results[i], Working: workings[i]})
+	}
+	return out, nil
+}
