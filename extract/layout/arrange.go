@@ -39,11 +39,7 @@ func Arrange(pages []paper.GlyphPage) *Arrangement {
 	markFurniture(sheets)
 	a := &arranger{sheets: sheets}
 	a.body, a.font = bodyPrint(sheets)
-	for p := range sheets {
-		for i := range sheets[p] {
-			a.takeTables(&sheets[p][i])
-		}
-	}
+	a.takeTables()
 	a.findColumns()
 	return a.finish(pages)
 }
@@ -109,23 +105,34 @@ func commonest[K int | int32](count map[K]int) K {
 	return best
 }
 
-// takeTables finds the tables of a sheet, takes their words out of its lines
+// takeTables finds the tables of the paper, takes their words out of the lines
 // and puts one line in for each table.
-func (a *arranger) takeTables(s *sheet) {
-	if s.frame.Oblique {
-		return
-	}
-	// Running heads are no part of a table.
-	f := s.frame
-	f.Lines = nil
-	var from []int
-	for i := range s.lines {
-		if !s.lines[i].furniture {
-			f.Lines = append(f.Lines, s.frame.Lines[i])
-			from = append(from, i)
+func (a *arranger) takeTables() {
+	var in []grid.Sheet
+	var at []*sheet
+	var from [][]int // of each sheet: the frame's line for each line that the search sees
+	for p := range a.sheets {
+		for i := range a.sheets[p] {
+			s := &a.sheets[p][i]
+			// Running heads are no part of a table.
+			f := s.frame
+			f.Lines = nil
+			var kept []int
+			for k := range s.lines {
+				if !s.lines[k].furniture {
+					f.Lines, kept = append(f.Lines, s.frame.Lines[k]), append(kept, k)
+				}
+			}
+			in, at, from = append(in, grid.Sheet{Page: s.page, Frame: &f}), append(at, s), append(from, kept)
 		}
 	}
-	regions := grid.Find(&f, int32(a.body))
+	for i, regions := range grid.FindAll(in, int32(a.body)) {
+		at[i].takeRegions(regions, from[i])
+	}
+}
+
+// takeRegions takes the words of the regions out of the lines.
+func (s *sheet) takeRegions(regions []grid.Region, from []int) {
 	if len(regions) == 0 {
 		return
 	}
@@ -157,7 +164,10 @@ func (a *arranger) takeTables(s *sheet) {
 			l.top, l.bot = min(l.top, row.top), max(l.bot, row.bot)
 		}
 		l.words = nil
-		l.table = &tableAt{table: r.Read(s.page), rows: rows}
+		l.table = &tableAt{rows: rows, joined: r.Joined}
+		if !r.Joined {
+			l.table.table = r.Read(s.page)
+		}
 		tables = append(tables, l)
 	}
 	s.dropWords(taken)

@@ -19,6 +19,9 @@ func (a *arranger) blocks() []paper.Block {
 	for i := range a.drafts {
 		d := &a.drafts[i]
 		if d.kind == paper.TableBlock {
+			if d.lines[0].table.joined {
+				continue
+			}
 			t := d.lines[0].table.table
 			out = append(out, paper.Block{Kind: paper.TableBlock, Page: d.page, Table: &t, Zone: z.floating(), Section: z.section})
 			continue

@@ -28,8 +28,9 @@ type line struct {
 
 // tableAt is a table in the flow of the lines.
 type tableAt struct {
-	table paper.Table
-	rows  []line // as printed: caption, body and notes
+	table  paper.Table
+	rows   []line // as printed: caption, body and notes
+	joined bool   // the rest of a table that began on an earlier page, which holds it all
 }
 
 // sheet is one direction of one page.
