@@ -108,7 +108,7 @@ func (s *sheet) isTabular(ln *line) bool {
 // table whose last line is lines[last].
 func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 	ln := &lines[i]
-	if s.isText(ln) || s.isNoteStart(ln) && !s.isTabular(ln) {
+	if s.isText(ln) || s.isNoteStart(ln) && !s.isTabular(ln) && !s.cellsFollow(lines, i) {
 		return false
 	}
 	prevBot := end
@@ -126,7 +126,13 @@ func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 	if s.isTabular(ln) {
 		return true
 	}
-	// A line of its own (a row group, a wrapped label) goes on only where cells follow.
+	return s.cellsFollow(lines, i)
+}
+
+// cellsFollow reports whether after line i, which stands by itself (a row group,
+// a wrapped label), come lines with cells.
+func (s *sheet) cellsFollow(lines []line, i int) bool {
+	size := lines[i].size
 	for k := i + 1; k < len(lines) && k <= i+4; k++ {
 		if lines[k].top-lines[k-1].bot > 3*size || s.isText(&lines[k]) || abs(lines[k].size-size)*100 > 12*size {
 			return false
@@ -141,8 +147,7 @@ func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 // noteWords begin a note under a table.
 var noteWords = []string{
 	"note", "abbreviation", "data are", "data is", "data were", "values are", "values were", "value are", "key:", "legend",
-	"source", "all values", "results are", "ci,", "ci:", "ci ", "sd,", "sd:", "sd ", "se ", "sem", "ns,", "ns:", "adjusted",
-	"p value", "p-value", "mean", "plus-minus", "unless", "figures are", "numbers are", "iqr", "bmi", "or,", "or:", "hr,", "hr:",
+	"source:", "all values", "results are", "plus-minus", "unless", "figures are", "numbers are",
 	"*", "†", "‡", "§", "¶", "#", "||", "‖",
 }
 
@@ -159,7 +164,23 @@ func (s *sheet) isNoteStart(ln *line) bool {
 			return true
 		}
 	}
-	return false
+	// "CI, confidence interval", "BMI: body mass index", "SD = standard deviation".
+	first := s.toks[ln.toks[0]].text
+	if len(ln.toks) < 3 || !strings.ContainsAny(low, ",:=") {
+		return false
+	}
+	short := strings.TrimRight(first, ",:=")
+	return len(short) >= 2 && len(short) <= 8 && strings.ToUpper(short) == short && isLetters(short) &&
+		(short != first || s.toks[ln.toks[1]].text == "=")
+}
+
+func isLetters(t string) bool {
+	for _, r := range t {
+		if !unicode.IsLetter(r) && r != '-' {
+			return false
+		}
+	}
+	return true
 }
 
 // notesBelow gives the note lines under a body.

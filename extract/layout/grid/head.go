@@ -2,6 +2,7 @@ package grid
 
 import (
 	"slices"
+	"strings"
 )
 
 // block is one heading cell: pieces below one another.
@@ -205,44 +206,127 @@ func coversOthers(r rule, p *headPiece, band []headPiece) bool {
 // shareColumns widens the pieces of a heading band that stand over several
 // cells of the next one with nothing drawn between them.
 func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
-	under := make([]bool, len(boxes))
+	under := make([]*headPiece, len(boxes))
 	n := 0
 	for k := range next {
-		p := &next[k]
-		if p.c0 == p.c1 && p.c0 > 0 {
-			under[p.c0] = true
+		if p := &next[k]; p.c0 == p.c1 && p.c0 > 0 {
+			under[p.c0] = p
 			n++
 		}
 	}
-	taken := make([]bool, len(boxes))
-	spans := 0
-	for k := range row {
-		if row[k].c0 > 0 {
-			spans++
+	st := stretcher{rd: rd, boxes: slices.Clone(boxes), under: under, taken: make([]bool, len(boxes)), next: next}
+	for c, p := range under {
+		if p != nil {
+			st.boxes[c] = st.boxes[c].union(p.box)
 		}
-		for c := row[k].c0; c <= row[k].c1; c++ {
-			taken[c] = true
+	}
+	spans, left, centred := 0, 0, 0
+	for k := range row {
+		p := &row[k]
+		for c := p.c0; c <= p.c1; c++ {
+			st.taken[c] = true
+		}
+		if p.c0 == 0 {
+			continue
+		}
+		spans++
+		if q := under[p.c0]; q != nil && !p.fixed {
+			if abs(p.x0-q.x0)*10 < rd.em*4 {
+				left++
+			}
+			if abs(p.run.mid()-q.run.mid())*10 < rd.em*4 {
+				centred++
+			}
 		}
 	}
 	if spans == 0 || n <= spans {
 		return
 	}
-	wrapped := len(row) > 0 && (next[0].top-row[0].top)*100 <= 135*rd.em && !repeats(next)
+	st.left = left*2 > spans && left >= centred
+	tight := (next[0].top-row[0].top)*100 <= 135*rd.em && !rd.anyRule(row, next)
+	st.wrapped = tight && (left > 0 || centred > 0)
 	for k := range row {
 		if p := &row[k]; !p.fixed && p.c0 > 0 {
-			rd.stretch(p, taken, under, boxes, wrapped && !rd.anyRule(row, next))
+			st.stretch(p)
 		}
 	}
 }
 
-// repeats reports whether a text stands twice in a band, as subheadings do.
-func repeats(row []headPiece) bool {
-	seen := map[string]bool{}
-	for i := range row {
-		if seen[row[i].text] {
-			return true
+// stretcher lets heading pieces reach over free neighbouring columns.
+type stretcher struct {
+	rd            *reader
+	boxes         []box
+	under         []*headPiece // the piece of the next band in each column
+	next          []headPiece
+	taken         []bool
+	left, wrapped bool // headings flush left with their first column; lines of one cell rather than levels
+}
+
+// free reports whether column c may come under the heading p.
+func (st *stretcher) free(p *headPiece, c int) bool {
+	if c <= 0 || c >= len(st.boxes) || st.taken[c] || st.under[c] == nil {
+		return false
+	}
+	q, own := st.under[c], st.under[p.c0]
+	again := repeated(st.next, q.text)
+	if isTestHead(q.text) && !again || st.wrapped && !again {
+		return false
+	}
+	return own == nil || isHeadFigure(own.text) == isHeadFigure(q.text)
+}
+
+// stretch widens p: flush left, up to the next heading; else to the columns
+// whose middle is nearest to its own.
+func (st *stretcher) stretch(p *headPiece) {
+	lo, hi := p.c0, p.c1
+	for st.free(p, lo-1) {
+		lo--
+	}
+	for st.free(p, hi+1) {
+		hi++
+	}
+	if st.left {
+		lo = p.c0
+	}
+	if lo == hi {
+		return
+	}
+	b0, b1 := p.c0, hi
+	if !st.left {
+		b1 = p.c1
+		best := st.rd.offCentre(p, b0, b1, st.boxes) - st.rd.em/2
+		for a := lo; a <= p.c0; a++ {
+			for b := p.c1; b <= hi; b++ {
+				if d := st.rd.offCentre(p, a, b, st.boxes); d < best {
+					b0, b1, best = a, b, d
+				}
+			}
 		}
-		seen[row[i].text] = true
+	}
+	p.c0, p.c1 = b0, b1
+	for c := b0; c <= b1; c++ {
+		st.taken[c] = true
+	}
+}
+
+// repeated reports whether a text stands twice in a band, as subheadings do.
+func repeated(row []headPiece, text string) bool {
+	n := 0
+	for i := range row {
+		if row[i].text == text {
+			n++
+		}
+	}
+	return n > 1
+}
+
+// isTestHead reports whether a heading names a test, not a group's statistic.
+func isTestHead(t string) bool {
+	low := strings.ToLower(strings.Trim(t, "*†‡ ."))
+	low = strings.NewReplacer("-", "", " ", "", "value", "", "values", "").Replace(low)
+	switch strings.TrimRight(low, "*†‡§abcs") {
+	case "p", "t", "f", "z", "u", "χ2", "x2", "statistic", "difference", "test", "ptrend":
+		return true
 	}
 	return false
 }
@@ -250,43 +334,6 @@ func repeats(row []headPiece) bool {
 // anyRule reports whether something is drawn between two bands.
 func (rd *reader) anyRule(row, next []headPiece) bool {
 	return len(rulesIn(rd.rules, box{rd.area.x0, row[0].bot - rd.em/4, rd.area.x1, next[0].bot - rd.em/2})) > 0
-}
-
-// stretch lets one heading piece reach over free neighbouring columns as long
-// as that brings it nearer to the middle of what it spans, or, if it is flush
-// left with its first column, to the next heading.
-func (rd *reader) stretch(p *headPiece, taken, under []bool, boxes []box, wrapped bool) {
-	free := func(c int) bool { return c > 0 && c < len(boxes) && !taken[c] && under[c] }
-	lo, hi := p.c0, p.c1
-	for free(lo - 1) {
-		lo--
-	}
-	for free(hi + 1) {
-		hi++
-	}
-	if lo == hi {
-		return
-	}
-	b0, b1, best := p.c0, p.c1, rd.offCentre(p, p.c0, p.c1, boxes)-rd.em/2
-	own := best
-	for a := lo; a <= p.c0; a++ {
-		for b := p.c1; b <= hi; b++ {
-			if d := rd.offCentre(p, a, b, boxes); d < best {
-				b0, b1, best = a, b, d
-			}
-		}
-	}
-	left := abs(p.x0 - boxes[p.c0].x0)
-	if left*10 < rd.em*4 && left < best && hi > p.c1 {
-		b0, b1 = p.c0, hi
-	}
-	if wrapped && (left*10 < rd.em*4 || own <= rd.em/2) {
-		return
-	}
-	p.c0, p.c1 = b0, b1
-	for c := b0; c <= b1; c++ {
-		taken[c] = true
-	}
 }
 
 // offCentre tells how far the middle of p is from the middle of columns a to b,

@@ -40,14 +40,7 @@ func (s *sheet) pieces(ln *line, at int, cs []corridor, em int, head bool) []pie
 		p := &out[k]
 		p.text = s.join(p.toks)
 		p.figure = isFigure(p.text)
-		p.c0 = column(cs, p.x0)
-		p.c1 = max(p.c0, column(cs, p.x1))
-		for p.c0 < p.c1 && cs[p.c0].x0-p.x0 < em/4 {
-			p.c0++
-		}
-		for p.c1 > p.c0 && p.x1-cs[p.c1-1].x1 < em/4 {
-			p.c1--
-		}
+		p.c0, p.c1 = columnsOf(cs, p.x0, p.x1, em)
 	}
 	return out
 }
@@ -66,28 +59,61 @@ func (s *sheet) crossesInWord(ln *line, cs []corridor) bool {
 	return false
 }
 
+// columnsOf gives the first and last column that x0..x1 stands in: those whose
+// cells it overlaps, or the nearest one.
+func columnsOf(cs []corridor, x0, x1, em int) (c0, c1 int) {
+	c0, c1 = -1, -1
+	for c := 0; c <= len(cs); c++ {
+		lo, hi := -1<<30, 1<<30
+		if c > 0 {
+			lo = cs[c-1].x1
+		}
+		if c < len(cs) {
+			hi = cs[c].x0
+		}
+		if min(x1, hi)-max(x0, lo) > min(em/4, (x1-x0)/3) {
+			if c0 < 0 {
+				c0 = c
+			}
+			c1 = c
+		}
+	}
+	if c0 < 0 {
+		c0 = column(cs, (x0+x1)/2)
+		c1 = c0
+	}
+	return c0, c1
+}
+
 // cutBetween reports whether a cell ends between the neighbouring words a and b.
 func (s *sheet) cutBetween(a, b int, cs []corridor, em int, head bool) bool {
 	ta, tb := &s.toks[a], &s.toks[b]
 	gap := (tb.x0 - ta.x1) * 100
-	ca, cb := column(cs, ta.mid()), column(cs, tb.mid())
-	if ca == cb {
+	k := -1
+	for i := range cs {
+		if max(ta.x1, cs[i].x0)-em/10 <= min(tb.x0, cs[i].x1) && ta.mid() < cs[i].x1 && tb.mid() > cs[i].x0 {
+			k = i
+			break
+		}
+	}
+	if k < 0 {
 		return false
 	}
-	c := cs[ca]
+	c := cs[k]
+	inside := ta.x1 <= c.x0+em/10 && tb.x0 >= c.x1-em/10
 	switch {
 	case gap >= wideGap*em:
 		return true
 	case tb.glued && gap < 5*em:
 		return false
-	case head && gap < wordGap*em && !(c.tight && ta.x1 <= c.x0+em/10 && tb.x0 >= c.x1-em/10):
-		return false
-	case !head && figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em:
+	case head && gap < wordGap*em:
+		return c.tight && inside
+	case !head && (figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em):
 		return !clings(ta.text, tb.text)
 	case clings(ta.text, tb.text) && gap < wordGap*em:
 		return false
 	case c.tight && gap < wordGap*em:
-		return ta.x1 <= c.x0+em/10 && tb.x0 >= c.x1-em/10
+		return inside
 	}
-	return gap >= wordGap*em || ta.x1 <= c.x0 && tb.x0 >= c.x1 && gap >= 35*em
+	return gap >= wordGap*em || inside && gap >= 35*em
 }

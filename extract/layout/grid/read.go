@@ -1,6 +1,8 @@
 package grid
 
 import (
+	"strings"
+
 	"halfspan/extract/paper"
 )
 
@@ -82,20 +84,77 @@ func (rd *reader) ruleBetween(i int) (rule, bool) {
 	return best, found
 }
 
-// fullBetween reports whether the table's lines i-1 and i are parted by a rule
-// of its width.
+// fullBetween reports whether the table's lines i-1 and i are parted by rules
+// that together run over its width.
 func (rd *reader) fullBetween(i int) bool {
-	r, ok := rd.ruleBetween(i)
-	return ok && rd.full(r)
+	lo := rd.area.top - rd.em
+	if i > 0 {
+		lo = rd.lines[i-1].base - rd.em/4
+	}
+	hi := rd.lines[i].base - rd.em/4
+	var spans []rule
+	for _, r := range rd.rules {
+		if r.y > lo && r.y <= hi {
+			spans = append(spans, r)
+		}
+	}
+	if len(spans) == 0 {
+		return false
+	}
+	sum := 0
+	for _, r := range joinRules(spans) {
+		sum += max(0, min(r.x1, rd.area.x1)-max(r.x0, rd.area.x0))
+	}
+	return sum*10 >= rd.area.width()*8
+}
+
+// boldLines counts the lines at the top that are bold throughout, if others
+// follow that are not.
+func (rd *reader) boldLines() int {
+	for i := range rd.lines {
+		l := &rd.lines[i]
+		if rd.s.boldRun(&run{toks: l.toks}) {
+			continue
+		}
+		for i > 1 && rd.stubOnly(i-1) && !rd.allSingle(0, i-1) {
+			i--
+		}
+		if i > 8 {
+			return 0
+		}
+		return i
+	}
+	return 0
 }
 
 // isData reports whether a line holds figures in cells right of its first run.
 func (rd *reader) isData(i int) bool {
 	rs := rd.s.atoms(&rd.lines[i])
+	figures, others := 0, 0
 	for k := range rs {
 		t := rd.s.join(rs[k].toks)
-		if (k > 0 || rs[k].x0 > rd.area.x0+rd.area.width()/4) && isFigure(t) && !isHeadFigure(t) && !isBlankMark(t) {
-			return true
+		switch {
+		case k == 0 && rs[k].x0 <= rd.area.x0+rd.area.width()/4:
+		case isFigure(t) && !isHeadFigure(t) && !isBlankMark(t) && !rd.goesOnAbove(i, &rs[k]):
+			figures++
+		default:
+			others++
+		}
+	}
+	return figures > 0 && figures*2 >= others
+}
+
+// goesOnAbove reports whether run r of line i finishes what the line above
+// begins over it: "n =" over "42".
+func (rd *reader) goesOnAbove(i int, r *run) bool {
+	if i == 0 {
+		return false
+	}
+	up := rd.s.runs(&rd.lines[i-1], 60)
+	for k := range up {
+		if up[k].x0 < r.x1 && r.x0 < up[k].x1 {
+			t := rd.s.join(up[k].toks)
+			return strings.HasSuffix(t, "=") || strings.HasSuffix(t, "(") || strings.HasSuffix(t, "-") || strings.HasSuffix(t, "–")
 		}
 	}
 	return false
@@ -132,11 +191,14 @@ func (rd *reader) headLines() int {
 		// Rules: the head ends at the last rule above the data that has column heads above it.
 		end := full[0]
 		for _, f := range full[1:] {
-			if f <= data && !rd.allSingle(end, f) {
+			if f <= data && f-end <= 4 && data < n && !rd.allSingle(end, f) {
 				end = f
 			}
 		}
 		return end
+	}
+	if b := rd.boldLines(); b > 0 && len(full) == 0 {
+		return b
 	}
 	if data == n {
 		if len(full) > 0 {
@@ -172,7 +234,7 @@ func (rd *reader) fewFigures(n int) bool {
 		figures := 0
 		rs := rd.s.runs(&rd.lines[i], 60)
 		for k := range rs {
-			if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) {
+			if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) && !rd.goesOnAbove(i, &rs[k]) {
 				figures++
 			}
 		}
