@@ -63,7 +63,7 @@ func (a *arranger) classify() {
 		switch {
 		case startsLabel(text):
 			d.kind = paper.Caption
-		case a.isHeading(d):
+		case d.page <= 1 && d.size == title && len(d.lines) <= 8, a.isHeading(d):
 			d.kind = paper.Heading
 		case a.isFigureText(d, text):
 			d.kind = paper.Furniture

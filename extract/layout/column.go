@@ -23,7 +23,54 @@ func (s *sheet) columns() []stack {
 	s.cutAtGutters()
 	s.place()
 	s.joinRows()
-	return order(s.stacks())
+	stacks := s.stacks()
+	markSides(stacks)
+	ordered := order(stacks)
+	// Side notes are read after the page's text.
+	slices.SortStableFunc(ordered, func(a, b stack) int {
+		switch {
+		case a.side == b.side:
+			return 0
+		case a.side:
+			return 1
+		}
+		return -1
+	})
+	return ordered
+}
+
+// markSides marks the narrow columns in smaller print beside the text: notes
+// on how to cite a paper, its dates and editors.
+func markSides(stacks []stack) {
+	for i := range stacks {
+		a := &stacks[i]
+		width, size, table := a.extent()
+		if a.left >= 0 && a.right >= 0 || a.left < 0 && a.right < 0 || len(a.lines) < 3 || table {
+			continue
+		}
+		for k := range stacks {
+			b := &stacks[k]
+			w, z, _ := b.extent()
+			if i != k && a.top < b.bot && b.top < a.bot && w*10 >= width*15 && size*100 <= z*94 && len(b.lines) >= len(a.lines)/2 {
+				a.side = true
+				break
+			}
+		}
+	}
+}
+
+// extent is the printed width of a stack and its usual font size; table says
+// that a table stands in it.
+func (st *stack) extent() (width, size int, table bool) {
+	x0, x1 := st.lines[0].x0, st.lines[0].x1
+	sizes := map[int]int{}
+	for i := range st.lines {
+		l := &st.lines[i]
+		x0, x1 = min(x0, l.x0), max(x1, l.x1)
+		sizes[l.size] += l.glyphs
+		table = table || l.table != nil
+	}
+	return x1 - x0, commonest(sizes), table
 }
 
 // cutAtGutters splits lines that reach over a gutter.

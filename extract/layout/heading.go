@@ -9,8 +9,8 @@ import (
 )
 
 var (
-	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s)`)
-	tableLabel   = regexp.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]+|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s)`)
+	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
+	tableLabel   = regexp.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
 	numbered     = regexp.MustCompile(`^(?:[0-9]{1,2}(?:\.[0-9]{1,2}){0,3}\.?|[IVX]{1,4}\.|[A-H]\.)\s+\p{Lu}`)
 	numberedDeep = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2}){1,3}\.?\s+\p{Lu}`)
 	runIn        = regexp.MustCompile(`^(?i:(?:abstract|summary)[.:]?\s+)?((?i:background|introduction|objectives?|aims?|purpose|context|importance|methods?|methodology|materials? and methods|patients and methods|study design|design|setting|settings|participants|subjects|interventions?|measurements?|main outcome measures?|main outcomes?(?: and measures)?|outcome measures?|results?|findings|main results|conclusions?|interpretation|discussion|trial registration|background/aims?|background and (?:aims?|objectives?|purpose)|methods and results|methods/design|aims? and objectives?|limitations?|significance|rationale|hypothesis|funding))\s?([.:—–]|\s+-)\s*\S`)
@@ -41,7 +41,7 @@ func (a *arranger) headingLine(l *line) bool {
 		return true
 	case allCaps(text) && len(text) >= 6 && len(text) <= 90 && letterShare(text) >= 75:
 		return true
-	case numberedDeep.MatchString(text) && len(text) <= 90 && !ended(text) && !sentenceIn(text) && letterShare(text) >= 60:
+	case l.short() && numberedDeep.MatchString(text) && len(text) <= 90 && !ended(text) && !sentenceIn(text) && letterShare(text) >= 60:
 		return true
 	}
 	return false
