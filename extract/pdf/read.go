@@ -6,6 +6,7 @@ import (
 
 	"halfspan/extract/paper"
 	"halfspan/extract/pdf/engine"
+	"halfspan/extract/pdf/glyphs"
 )
 
 // What a file may turn out to be instead of a readable PDF; test with
@@ -23,6 +24,12 @@ type Options struct {
 	OCR       bool      // read page images without text through tesseract, where it is on PATH
 	Progress  func(int) // called after each page with its number, may be nil
 	Preparing func()    // called once if the PDF reader must first be compiled (some seconds), may be nil
+	// OneReader reads by the sandboxed engine alone. It is for a paper that
+	// made a process hang or burst once: our reader's library may be why.
+	OneReader bool
+	// BothAlways reads every page by both readers, proof or not: for tests and
+	// for measuring.
+	BothAlways bool
 }
 
 // Glyphs is what a PDF says, page by page.
@@ -42,32 +49,25 @@ func Read(content []byte, opt Options) (*Glyphs, error) {
 	if err != nil {
 		return nil, err
 	}
-	doc, err := eng.Open(content)
+	r := &reading{opt: opt, out: &Glyphs{}, proof: newProof(), repairs: map[repairKey]*repaired{}}
+	r.doc, err = eng.Open(content)
 	if err != nil {
 		return nil, fileError(err)
 	}
-	defer doc.Close()
-	if doc.NumPage() == 0 {
+	defer r.doc.Close()
+	if r.doc.NumPage() == 0 {
 		return nil, ErrNoPages
 	}
-	out := &Glyphs{Title: doc.Title()}
-	for n := 1; n <= doc.NumPage(); n++ {
-		page, cut, err := doc.Page(n)
-		if err != nil {
-			page = paper.GlyphPage{Page: paper.Page{Number: n}}
-			out.Problems = append(out.Problems, paper.Problem{Page: n, Kind: "page-unreadable", Lost: true,
-				Text: fmt.Sprintf("Page %d could not be read (%v): look at it in a PDF viewer.", n, err)})
-		}
-		if cut {
-			out.Problems = append(out.Problems, paper.Problem{Page: n, Kind: "cut-short", Lost: true,
-				Text: fmt.Sprintf("Page %d holds more characters than a printed page can; the rest was not read.", n)})
-		}
-		out.Pages = append(out.Pages, page)
+	r.out.Title = r.doc.Title()
+	r.openOwn(content)
+	for n := 1; n <= r.doc.NumPage(); n++ {
+		r.page(n)
 		if opt.Progress != nil {
 			opt.Progress(n)
 		}
 	}
-	return out, nil
+	r.finish()
+	return r.out, nil
 }
 
 func fileError(err error) error {
@@ -78,4 +78,124 @@ func fileError(err error) error {
 		return ErrDamaged
 	}
 	return err
+}
+
+// reading is one paper while it is read.
+type reading struct {
+	opt     Options
+	out     *Glyphs
+	doc     *engine.Document
+	own     *glyphs.Document // nil: our reader cannot read this paper
+	proof   *proof
+	repairs map[repairKey]*repaired
+	order   []repairKey
+}
+
+// openOwn opens the paper for our reader. That it cannot is no problem of the
+// paper, but it must be said: no digit of it is read twice.
+func (r *reading) openOwn(content []byte) {
+	if r.opt.OneReader {
+		r.problem(0, "one-reader", false, "Only one of the two PDF readers was used for this paper, since reading it failed before: no digit of it was read twice.")
+		return
+	}
+	own, err := glyphs.Open(content)
+	switch {
+	case err != nil:
+		r.problem(0, "one-reader", false, "Only one of the two PDF readers can read this paper ("+err.Error()+"): no digit of it was read twice.")
+	case own.NumPage() != r.doc.NumPage():
+		r.problem(0, "one-reader", false, fmt.Sprintf("The two PDF readers see %d and %d pages in this paper: no digit of it was read twice.", r.doc.NumPage(), own.NumPage()))
+	default:
+		r.own = own
+	}
+}
+
+func (r *reading) problem(page int, kind string, lost bool, text string) {
+	r.out.Problems = append(r.out.Problems, paper.Problem{Page: page, Kind: kind, Text: text, Lost: lost})
+}
+
+// page reads one page: by our reader alone where all its fonts are proved,
+// else by both.
+func (r *reading) page(n int) {
+	var ours *glyphs.Page
+	var ownErr error
+	if r.own != nil {
+		if ours, ownErr = r.own.Page(n); ownErr == nil {
+			ours.Marks = clean(&ours.GlyphPage, ours.Marks)
+			if !r.opt.BothAlways && r.proof.holds(ours) {
+				r.keep(ours.GlyphPage, ours.Marks)
+				return
+			}
+		}
+	}
+	theirs, cut, err := r.doc.Page(n)
+	if err != nil {
+		r.withoutEngine(n, ours, err)
+		return
+	}
+	if cut {
+		r.problem(n, "cut-short", true, fmt.Sprintf("Page %d holds more characters than a printed page can; the rest was not read.", n))
+	}
+	clean(&theirs, nil)
+	if ours == nil {
+		if ownErr != nil {
+			r.problem(n, "one-reader", false, fmt.Sprintf("Only one of the two PDF readers can read page %d (%v): its digits were not read twice.", n, ownErr))
+		}
+		r.keep(theirs, nil)
+		return
+	}
+	r.compare(ours, theirs)
+}
+
+// withoutEngine keeps what our reader read of a page that the other cannot
+// read.
+func (r *reading) withoutEngine(n int, ours *glyphs.Page, err error) {
+	if ours != nil && len(ours.Glyphs) > 0 {
+		r.problem(n, "one-reader", false, fmt.Sprintf("Only one of the two PDF readers can read page %d (%v): its digits were not read twice.", n, err))
+		r.keep(ours.GlyphPage, ours.Marks)
+		return
+	}
+	r.problem(n, "page-unreadable", true, fmt.Sprintf("Page %d could not be read (%v): look at it in a PDF viewer.", n, err))
+	r.out.Pages = append(r.out.Pages, paper.GlyphPage{Page: paper.Page{Number: n}})
+}
+
+// compare sets the two readings of a page against each other. Where they
+// differ in a number the engine's stands, and every such number is a doubt.
+func (r *reading) compare(ours *glyphs.Page, theirs paper.GlyphPage) {
+	m := match(ours.Glyphs, theirs.Glyphs)
+	repairedPart(m)
+	r.proof.learn(m, ours.Marks)
+	differ := m.disputes()
+	n := theirs.Page.Number
+	if len(differ) == 0 {
+		// The readings are one. Ours is kept: it knows the codes.
+		ours.Page.Reader = "both"
+		r.keep(ours.GlyphPage, ours.Marks)
+		return
+	}
+	for _, d := range differ {
+		text := fmt.Sprintf("One reader of the PDF reads %s here, the other %s.", orNothing(d.engine), orNothing(d.ours))
+		theirs.Doubts = append(theirs.Doubts, paper.Doubt{Page: n, Box: d.box, Kind: "readers-differ", Text: text})
+	}
+	first := differ[0]
+	r.problem(n, "readers-differ", false, fmt.Sprintf("The two PDF readers differ in %d numbers or signs of page %d, first in %s against %s: look at the page.",
+		len(differ), n, orNothing(first.engine), orNothing(first.ours)))
+	r.keep(theirs, nil)
+}
+
+func orNothing(s string) string {
+	if s == "" {
+		return "nothing"
+	}
+	return fmt.Sprintf("%q", s)
+}
+
+// keep takes a page that is read.
+func (r *reading) keep(p paper.GlyphPage, marks []glyphs.Mark) {
+	r.noteRepairs(&p, marks)
+	r.out.Pages = append(r.out.Pages, p)
+}
+
+// finish looks at the paper as a whole.
+func (r *reading) finish() {
+	r.reportRepairs()
 }

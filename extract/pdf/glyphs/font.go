@@ -13,9 +13,8 @@ import (
 type Font struct {
 	Name         string // without the tag of a subset
 	Bold, Italic bool
-	// Named lists the codes whose text was taken from the glyph's name because
-	// the font's own map to Unicode says something that cannot be printed.
-	Named []Named
+	// Repairs lists the codes that are read against what the file says of them.
+	Repairs []Repair
 
 	simple   [256]*glyph
 	comp     map[uint32]*glyph
@@ -28,17 +27,18 @@ type Font struct {
 	scale    float64 // of a Type 3 font: its em, where others have 1
 }
 
-// Named is a code read by its glyph's name, against the font's own map.
-type Named struct {
-	Code      uint32
-	Map, Text string // what the map says, what the name says
-	Glyph     string // the name
+// Repair is a code that is read against what the file says of it.
+type Repair struct {
+	Code       uint32
+	From, Text string // what the file says, what is read
+	Why        string // the evidence, as the end of a sentence
 }
 
 // glyph is what one code shows.
 type glyph struct {
-	text  string
-	width float64 // in em
+	text     string
+	width    float64 // in em
+	repaired bool
 }
 
 // unknown stands for what cannot be told from the file.

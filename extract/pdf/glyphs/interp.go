@@ -19,11 +19,11 @@ type operand struct {
 
 // state is the graphics state, as far as text and lines need it.
 type state struct {
-	ctm                          geom.Matrix
-	font                         *Font
-	size, char, word, horiz      float64 // horiz: horizontal scaling, 1 is plain
-	leading, rise                float64
-	mode                         int // text rendering mode
+	ctm                     geom.Matrix
+	font                    *Font
+	size, char, word, horiz float64 // horiz: horizontal scaling, 1 is plain
+	leading, rise           float64
+	mode                    int // text rendering mode
 }
 
 // form is a form XObject, read once per paper.
@@ -360,4 +360,3 @@ func plain(b []byte) bool {
 	}
 	return true
 }
-

@@ -69,6 +69,9 @@ func nameText(name string) string {
 }
 
 func partText(name string) string {
+	if t := alias(name); t != "" {
+		return t
+	}
 	if hex, ok := lookUp(nameSection(), name); ok {
 		v, _ := strconv.ParseUint(hex, 16, 32)
 		if v < 0xE000 || v > 0xF8FF {
@@ -83,6 +86,29 @@ func partText(name string) string {
 		}
 	}
 	return hexName(name)
+}
+
+// alias gives names that the list lacks and fonts use.
+func alias(name string) string {
+	switch name {
+	case "prime":
+		return "′"
+	case "equals":
+		return "="
+	case "times":
+		return "×"
+	case "plusorminus":
+		return "±"
+	case "lessequalslant", "lessorequalslant":
+		return "⩽"
+	case "greaterequalslant", "greaterorequalslant":
+		return "⩾"
+	case "asteriskcentered":
+		return "∗"
+	case "similarequal":
+		return "≃"
+	}
+	return ""
 }
 
 func hexName(name string) string {

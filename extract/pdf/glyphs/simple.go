@@ -20,11 +20,14 @@ func (d *Document) readSimple(f *Font, v, desc lib.Value, kind string) {
 	widths := d.key(v, "Widths")
 	missing := d.key(desc, "MissingWidth").Float64()
 	standard := standardFont(f.Name, f.Bold, f.Italic)
+	var names [256]string
+	var given [256]float64
 	for c := range 256 {
-		name := enc.name(byte(c))
-		g := &glyph{text: f.text(uint32(c), name, enc.baseText(byte(c))), width: missing / 1000}
+		names[c] = enc.name(byte(c))
+		g := &glyph{width: missing / 1000}
 		if i := c - first; i >= 0 && i < widths.Len() {
-			g.width = d.number(widths, i) / 1000
+			given[c] = d.number(widths, i)
+			g.width = given[c] / 1000
 		} else if widths.Len() == 0 {
 			if w, ok := standardWidth(standard, enc.widthName(byte(c))); ok {
 				g.width = w / 1000
@@ -33,6 +36,14 @@ func (d *Document) readSimple(f *Font, v, desc lib.Value, kind string) {
 			}
 		}
 		f.simple[c] = g
+	}
+	math, why := mathLayout(&names, &given)
+	for c, g := range f.simple {
+		g.text, g.repaired = f.text(uint32(c), names[c], enc.baseText(byte(c)))
+		if t, ok := math[uint32(c)]; ok && t != g.text {
+			f.Repairs = append(f.Repairs, Repair{uint32(c), g.text, t, why})
+			g.text, g.repaired = t, true
+		}
 	}
 }
 
@@ -44,27 +55,29 @@ func (d *Document) number(array lib.Value, i int) float64 {
 
 // text chooses what a code stands for: the font's own map where it can be
 // printed, else the glyph's name, else the encoding, else the code itself if
-// it is a control code (so that its use can be studied), else unknown.
-func (f *Font) text(code uint32, name, base string) string {
-	mapped, ok := f.toText[code]
-	if ok && sane(mapped) {
-		return mapped
+// it is a control code (so that its use can be studied), else unknown. It is a
+// repair where the map says something that cannot be printed.
+func (f *Font) text(code uint32, name, base string) (text string, repaired bool) {
+	mapped := f.toText[code]
+	if sane(mapped) {
+		return mapped, false
 	}
 	if t := nameText(name); t != "" {
-		if ok && mapped != "" {
-			f.Named = append(f.Named, Named{Code: code, Map: mapped, Text: t, Glyph: name})
+		if mapped == "" || mapped == t || t == " " || !sane(t) {
+			return t, false
 		}
-		return t
+		f.Repairs = append(f.Repairs, Repair{code, mapped, t, "its glyph is named " + name})
+		return t, true
 	}
 	switch {
 	case mapped != "":
-		return mapped
+		return mapped, false
 	case name == "" && base != "":
-		return base
+		return base, false
 	case code < ' ':
-		return string(rune(code))
+		return string(rune(code)), false
 	}
-	return unknown
+	return unknown, false
 }
 
 func (d *Document) simpleEncoding(f *Font, v, desc lib.Value, kind string) *simpleEncoding {
@@ -194,7 +207,8 @@ func (d *Document) readType3(f *Font, v lib.Value) {
 	first := int(d.key(v, "FirstChar").Int64())
 	widths := d.key(v, "Widths")
 	for c := range 256 {
-		g := &glyph{text: f.text(uint32(c), enc.name(byte(c)), "")}
+		g := &glyph{}
+		g.text, g.repaired = f.text(uint32(c), enc.name(byte(c)), "")
 		if i := c - first; i >= 0 && i < widths.Len() {
 			g.width = d.number(widths, i) * sx
 		}

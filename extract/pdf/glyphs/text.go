@@ -152,7 +152,7 @@ func (in *interpreter) show(b []byte) {
 		g := f.glyph(code)
 		if !hidden && len(p.Glyphs) < maxPageGlyphs {
 			out := style
-			out.Text = g.text
+			out.Text, out.Repaired = g.text, g.repaired
 			out.Origin = paper.Point{X: geom.Hundredth(m[4]), Y: geom.Hundredth(m[5])}
 			out.Box = m.Box(0, geom.Descent*f.scale, g.width, geom.Ascent*f.scale)
 			p.Glyphs = append(p.Glyphs, out)

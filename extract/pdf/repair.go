@@ -1,0 +1,83 @@
+package pdf
+
+import (
+	"fmt"
+
+	"halfspan/extract/paper"
+	"halfspan/extract/pdf/glyphs"
+)
+
+// repairKey is a sign that one font of the paper prints and the file calls by
+// another name.
+type repairKey struct {
+	font       string
+	from, text string
+}
+
+// repaired is how often and on what evidence a sign was read against the file.
+type repaired struct {
+	why   string
+	uses  int
+	page  int // the first
+	pages int
+	last  int
+}
+
+// noteRepairs counts the glyphs of a page that are read against the file and
+// gives each a doubt.
+func (r *reading) noteRepairs(p *paper.GlyphPage, marks []glyphs.Mark) {
+	for i, g := range p.Glyphs {
+		if !g.Repaired {
+			continue
+		}
+		key, why := repairKey{font: p.Fonts[g.Font], text: g.Text}, ""
+		if marks != nil {
+			for _, rep := range marks[i].Font.Repairs {
+				if rep.Code == marks[i].Code {
+					key.from, why = rep.From, rep.Why
+				}
+			}
+		}
+		r.count(key, why, p.Page.Number)
+		p.Doubts = append(p.Doubts, paper.Doubt{Page: p.Page.Number, Box: g.Box, Kind: "repaired",
+			Text: fmt.Sprintf("The font %s says %s here; read as %s, since %s.", key.font, sign(key.from), sign(g.Text), why)})
+	}
+}
+
+func (r *reading) count(key repairKey, why string, page int) {
+	c := r.repairs[key]
+	if c == nil {
+		c = &repaired{why: why, page: page}
+		r.repairs[key] = c
+		r.order = append(r.order, key)
+	}
+	c.uses++
+	if c.last != page {
+		c.last = page
+		c.pages++
+	}
+}
+
+// reportRepairs says which signs of the paper were read against the file.
+func (r *reading) reportRepairs() {
+	for _, key := range r.order {
+		c := r.repairs[key]
+		r.problem(c.page, "repaired", false, fmt.Sprintf("The font %s says %s where %s is printed (%d times on %d pages); read so, since %s.",
+			key.font, sign(key.from), sign(key.text), c.uses, c.pages, c.why))
+	}
+}
+
+// sign shows a character in a message.
+func sign(s string) string {
+	if printable(s) && s != "" {
+		return "'" + s + "'"
+	}
+	out := ""
+	for _, r := range s {
+		out += fmt.Sprintf("U+%04X", r)
+	}
+	if out == "" {
+		return "nothing"
+	}
+	return out
+}
