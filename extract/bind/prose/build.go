@@ -45,9 +45,10 @@ func (p *para) result(c *cand) (result.Result, bool) {
 	}
 	p.setUnit(&r, c)
 	p.setTests(&r, c)
+	p.setEvidence(&r, c, st)
 	p.setSize(&r, c)
 	p.setContext(&r, c)
-	p.setEvidence(&r, c, st)
+	p.wholeSample(&r, c)
 	r.Flags = append(r.Flags, c.flags...)
 	p.slips(&r, c)
 	r.Snippet = p.snippet(min(it.Start, c.est.Start), max(it.End, c.est.End))

@@ -11,6 +11,9 @@ import (
 	"halfspan/extract/paper"
 )
 
+// fromHeading says that a size stands in a table's column heading.
+const fromHeading = "in a column heading"
+
 // arm is one group of the paper, by the words that name it.
 type arm struct {
 	name  string   // as first printed
@@ -55,7 +58,7 @@ func (f *finder) learnTable(t *paper.Table) {
 		}
 		it := h.N[0]
 		name := strings.TrimRight(strings.TrimSpace(c.Text.S[:it.Start]), " (,;:[\n")
-		f.addArm(name, &it, &c.Text, "a column heading")
+		f.addArm(name, &it, &c.Text, fromHeading)
 	}
 }
 
@@ -63,15 +66,7 @@ func (f *finder) learnTable(t *paper.Table) {
 func (f *finder) learnText(b *paper.Block) {
 	s := b.Text.S
 	if strings.Contains(s, "n") || strings.Contains(s, "N") {
-		r := grammar.Read(convention.Text(&b.Text))
-		for k := range r.Items {
-			it := &r.Items[k]
-			if it.Kind != grammar.KindSampleSize || it.Bracket == 0 || !it.Alone {
-				continue
-			}
-			start := r.Brackets[it.Bracket-1].Start
-			f.addArm(nameBefore(s[:start]), it, &b.Text, "elsewhere in the text")
-		}
+		f.learnSizes(b)
 	}
 	for _, m := range groupNamed.FindAllStringSubmatch(s, -1) {
 		f.addArm(nameBefore(m[1]), nil, nil, "")
@@ -84,9 +79,31 @@ func (f *finder) learnText(b *paper.Block) {
 	}
 }
 
+// pairedWithin is how many bytes apart two sizes may stand to name the arms of
+// one comparison: "syrup (n = 42) or water (n = 44)".
+const pairedWithin = 160
+
+// learnSizes takes the sizes that stand in pairs behind their arms' names.
+func (f *finder) learnSizes(b *paper.Block) {
+	r := grammar.Read(convention.Text(&b.Text))
+	var at []int
+	for k := range r.Items {
+		if it := &r.Items[k]; it.Kind == grammar.KindSampleSize && it.Bracket > 0 && it.Alone {
+			at = append(at, k)
+		}
+	}
+	for i, k := range at {
+		it := &r.Items[k]
+		paired := i > 0 && it.Start-r.Items[at[i-1]].End < pairedWithin || i+1 < len(at) && r.Items[at[i+1]].Start-it.End < pairedWithin
+		if paired {
+			f.addArm(nameBefore(b.Text.S[:r.Brackets[it.Bracket-1].Start]), it, &b.Text, "elsewhere in the text")
+		}
+	}
+}
+
 var (
 	groupNamed  = regexp.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
-	wholeSample = regexp.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+|randomly\s+)?(?:randomi[sz]ed|enrolled|included|assigned|recruited|allocated)\b`)
+	wholeSample = regexp.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+)?(?:randomi[sz]ed|enrolled|included|recruited)\b`)
 	stopName    = map[string]bool{}
 	weakName    = map[string]bool{}
 )
@@ -127,7 +144,7 @@ func nameBefore(s string) string {
 // nameKey is the content words of a name.
 func nameKey(name string) []string {
 	var out []string
-	for _, w := range strings.FieldsFunc(strings.ToLower(name), func(r rune) bool { return strings.ContainsRune(" \u00a0\n-/,()", r) }) {
+	for _, w := range strings.FieldsFunc(strings.ToLower(name), func(r rune) bool { return strings.ContainsRune(" \u00a0\n-/,()*†‡§¶#:", r) }) {
 		if !weakName[w] && !stopName[w] {
 			out = append(out, w)
 		}
@@ -141,7 +158,7 @@ func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from s
 		return
 	}
 	for _, w := range key {
-		if timeUnits[w] || w == "baseline" || w == "week" || w == "follow" {
+		if timeUnits[w] || w == "baseline" || w == "week" || w == "follow" || w == "percent" || w == "total" || w == "post" {
 			return
 		}
 	}
@@ -165,17 +182,105 @@ func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from s
 	}
 }
 
-// sizeOf gives the arm's size where all statements of it agree.
-func (a *arm) sizeOf() (size, bool) {
-	if len(a.sizes) == 0 {
+// sizeOf gives the arm's size: that of the column headings where those agree
+// (of the text for a baseline value), else that of the text where it agrees.
+func (a *arm) sizeOf(baseline bool) (size, bool) {
+	heads, okHeads := agreed(a.sizes, true)
+	text, okText := agreed(a.sizes, false)
+	switch {
+	case okHeads && okText && baseline:
+		return text, true
+	case okHeads:
+		return heads, true
+	case okText && !hasHeads(a.sizes):
+		return text, true
+	}
+	return size{}, false
+}
+
+func hasHeads(sizes []size) bool {
+	for _, s := range sizes {
+		if s.from == fromHeading {
+			return true
+		}
+	}
+	return false
+}
+
+// agreed gives the size that all statements of one sort name.
+func agreed(sizes []size, heads bool) (size, bool) {
+	found, ok := size{}, false
+	for _, s := range sizes {
+		if (s.from == fromHeading) != heads {
+			continue
+		}
+		if ok && s.n != found.n {
+			return size{}, false
+		}
+		if !ok {
+			found, ok = s, true
+		}
+	}
+	return found, ok
+}
+
+// sized gives the arm whose size counts for arm i: itself, or, where it was
+// never printed with one, the only arm with a size whose name holds all its
+// words. A paper that gives a size for one arm only is not trusted with it.
+func (c *cast) sized(i int, baseline bool) (size, bool) {
+	with, found := 0, i
+	for k := range c.arms {
+		if _, ok := c.arms[k].sizeOf(baseline); ok {
+			with++
+		}
+	}
+	if with < 2 {
 		return size{}, false
 	}
-	for _, s := range a.sizes[1:] {
-		if s.n != a.sizes[0].n {
+	if len(c.arms[i].sizes) == 0 {
+		found = -1
+		for k := range c.arms {
+			if len(c.arms[k].sizes) == 0 || !holds(c.arms[k].key, c.arms[i].key) {
+				continue
+			}
+			if found >= 0 {
+				return size{}, false
+			}
+			found = k
+		}
+		if found < 0 {
 			return size{}, false
 		}
 	}
-	return a.sizes[0], true
+	return c.arms[found].sizeOf(baseline)
+}
+
+// holds reports whether all words of b stand in a.
+func holds(a, b []string) bool {
+	for _, w := range b {
+		ok := false
+		for _, v := range a {
+			ok = ok || v == w
+		}
+		if !ok {
+			return false
+		}
+	}
+	return true
+}
+
+// allSubjects gives the size of the whole sample where the paper states one
+// only.
+func (c *cast) allSubjects() (size, bool) {
+	for _, s := range c.total {
+		if s.n != c.total[0].n {
+			return size{}, false
+		}
+	}
+	if len(c.total) == 0 {
+		return size{}, false
+	}
+	return c.total[0], true
 }
 
 // mention is an arm named in a sentence.

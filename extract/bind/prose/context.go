@@ -48,11 +48,18 @@ func (p *para) setArms(r *result.Result, c *cand) {
 
 func (p *para) setArm(r *result.Result, field string, m mention) {
 	text := p.s[m.start:m.end]
-	if s, ok := p.f.cast.arms[m.arm].sizeOf(); ok {
-		if field == "arm" && r.N == 0 {
-			p.elsewhere(r, "n", &r.N, s)
-		} else if field == "arm2" && r.N2 == 0 {
-			p.elsewhere(r, "n2", &r.N2, s)
+	if n, name := &r.N, "n"; field == "arm" && r.N == 0 || field == "arm2" && r.N2 == 0 {
+		if field == "arm2" {
+			n, name = &r.N2, "n2"
+		}
+		if s, ok := p.behindName(m); ok {
+			*n = s.n
+			if name == "n" {
+				r.NFrom, r.NKind = result.NBeside, result.NUnclear
+			}
+			p.source(r, name, s.at)
+		} else if s, ok := p.f.cast.sized(m.arm, r.Evidence.Baseline); ok && sizeTold(r) {
+			p.elsewhere(r, name, n, s)
 		}
 	}
 	if field == "arm" {
@@ -61,6 +68,27 @@ func (p *para) setArm(r *result.Result, field string, m mention) {
 		r.Arm2 = text
 	}
 	p.source(r, field, grammar.Span{Start: m.start, End: m.end})
+}
+
+// sizeTold reports whether an arm's size, stated elsewhere, is the n behind the
+// result: of a mean or a difference of means; events and doses have their own.
+func sizeTold(r *result.Result) bool {
+	switch r.Statistic {
+	case result.Mean, result.MeanChange, result.MeanDifference, result.GeometricMean:
+		return !r.Evidence.Quoted
+	}
+	return false
+}
+
+// behindName reads the n printed right behind an arm's name: "Syrup (n = 42)".
+func (p *para) behindName(m mention) (size, bool) {
+	for k := range p.r.Items {
+		e := &p.r.Items[k]
+		if e.Start >= m.end && e.Start-m.end < 4 && e.Kind == grammar.KindSampleSize {
+			return p.sized(e)
+		}
+	}
+	return size{}, false
 }
 
 // twoArms gives the two arms of a sentence that names exactly two.
@@ -103,7 +131,7 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 	}
 	best, ok := mention{}, false
 	for _, m := range all {
-		if m.end <= c.est.Start && m.start >= previous {
+		if m.end <= c.est.Start && m.start >= previous && !(previous > from && p.claimed(m, previous)) {
 			best, ok = m, true
 		}
 	}
@@ -115,7 +143,16 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 			return mention{}, false
 		}
 	}
+	if previous > from && contrast.MatchString(p.s[previous:c.est.Start]) {
+		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
+	}
 	return all[0], all[0].start < c.est.Start
+}
+
+// claimed reports that arm m belongs to the result that ends at byte end: it
+// follows it at once, "12.4 kg (SD 1.3) in the syrup arm vs".
+func (p *para) claimed(m mention, end int) bool {
+	return m.start >= end && m.start-end < 60 && linked.MatchString(strings.TrimLeft(p.s[end:m.start], ")]")) && !contrast.MatchString(p.s[end:m.start])
 }
 
 // linked is what may stand between a result and its arm's name behind it.
@@ -127,16 +164,21 @@ var linked = regexp.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|u
 // with syrup and water, respectively".
 func (p *para) byOrder(c *cand, all []mention, from, to int) (mention, bool) {
 	var mine []int
+	at := -1
 	for k := range p.cands {
-		if s := p.cands[k].est.Start; s >= from && s < to && (len(mine) == 0 || p.cands[mine[len(mine)-1]].est.Start != s) {
+		o := &p.cands[k]
+		if o.est.Start < from || o.est.Start >= to {
+			continue
+		}
+		if n := len(mine); n == 0 || !o.quartile && p.cands[mine[n-1]].est.Start != o.est.Start {
 			mine = append(mine, k)
 		}
-	}
-	at := -1
-	for i, k := range mine {
-		if p.cands[k].est.Start == c.est.Start {
-			at = i
+		if o.item == c.item {
+			at = len(mine) - 1
 		}
+	}
+	if !inOrder.MatchString(p.s[from:to]) && !p.joined(mine) {
+		return mention{}, false
 	}
 	var distinct []mention
 	for _, m := range all {
@@ -158,7 +200,21 @@ func (p *para) byOrder(c *cand, all []mention, from, to int) (mention, bool) {
 	return distinct[at], true
 }
 
+// joined reports that the results follow one another with only a joining word
+// between: "12.4 ± 1.3 vs 11.1 ± 1.2".
+func (p *para) joined(list []int) bool {
+	for i := 1; i < len(list); i++ {
+		a, b := p.r.Items[p.cands[list[i-1]].item].End, p.cands[list[i]].est.Start
+		if a > b || !joining.MatchString(p.s[a:b]) {
+			return false
+		}
+	}
+	return true
+}
+
 var (
+	inOrder   = regexp.MustCompile(`(?i)\brespectively\b|\bresp\.`)
+	joining   = regexp.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
 	timeWords = regexp.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until|from)\s+(?:the\s+)?)?(?:` +
 		`(?:week|month|day|year|hour|visit|cycle|session)s?\s+[0-9]+(?:\s*(?:-|–|to|and)\s*[0-9]+)?` +
 		`|(?:[0-9]+(?:\.[0-9]+)?|one|two|three|four|five|six|eight|nine|ten|twelve)[ -](?:weeks?|months?|days?|years?|hours?|h|min|minutes)(?:\s+(?:follow-?up|post\w*|after \w+))?` +

@@ -31,6 +31,9 @@ type size struct {
 // behind the bracket, or the one count of subjects in the sentence where the
 // sentence holds one group only.
 func (p *para) beside(c *cand) (size, bool) {
+	if s, ok := p.wholeGroup(c); ok {
+		return s, true
+	}
 	it := &p.r.Items[c.item]
 	var only *grammar.Item
 	count := 0
@@ -56,6 +59,21 @@ func (p *para) beside(c *cand) (size, bool) {
 		return p.countedIn(from, it.Start)
 	}
 	return size{}, false
+}
+
+// wholeGroup reads a count of subjects that leads straight to the result: "the
+// 61 colonies had a mass of 12.4 ± 1.3 kg", "Forty-two colonies (mean mass ...".
+func (p *para) wholeGroup(c *cand) (size, bool) {
+	const near = 120
+	from, _ := p.sentence(c.est.Start)
+	if groupWord.MatchString(p.s[from:c.est.Start]) || contrast.MatchString(p.s[from:c.est.Start]) {
+		return size{}, false
+	}
+	s, ok := p.countedIn(from, c.est.Start)
+	if !ok || c.est.Start-s.at.End > near || strings.ContainsAny(p.s[s.at.End:c.est.Start], ";") {
+		return size{}, false
+	}
+	return s, true
 }
 
 func (p *para) sized(e *grammar.Item) (size, bool) {
@@ -134,6 +152,29 @@ func (p *para) setSize(r *result.Result, c *cand) {
 		r.Sources = append(r.Sources, result.Source{Field: "n", Place: p.run.Between(s.at.Start, s.at.End), Text: s.text})
 	}
 }
+
+var sampleOf = regexp.MustCompile(`(?i)\b(?:participants|patients|subjects|sample|women|men|children|colonies|respondents|all|overall|age|aged|BMI)\b`)
+
+// wholeSample gives the number of all subjects to a baseline mean that names no
+// arm.
+func (p *para) wholeSample(r *result.Result, c *cand) {
+	if r.N > 0 || r.Arm != "" || !sizeTold(r) && r.GivenAs != result.Range || between(r) || r.Statistic == result.MeanChange {
+		return
+	}
+	from, to := p.sentence(c.est.Start)
+	s := p.s[from:to]
+	if groupWord.MatchString(s) || contrast.MatchString(s) || !sampleOf.MatchString(p.s[from:c.est.Start]) || p.block.Zone == paper.Discussion || len(p.mentions(from, to)) > 0 {
+		return
+	}
+	if counted.MatchString(s) || !ageLike.MatchString(p.s[from:c.est.Start]) {
+		return
+	}
+	if t, ok := p.f.cast.allSubjects(); ok {
+		p.elsewhere(r, "n", &r.N, t)
+	}
+}
+
+var ageLike = regexp.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline)\b`)
 
 // elsewhere fills an n that is stated away from the result.
 func (p *para) elsewhere(r *result.Result, field string, n *int, s size) {

@@ -172,7 +172,7 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		}
 	case result.Mean:
 		switch {
-		case at-n.at.End < 4 && at > n.at.End: // "mean: 1768.7"
+		case p.introduced(n.at, c): // "mean: 1768.7"
 		case percent && sharesOf.MatchString(before):
 			n.statistic = result.Proportion
 		case compared:
@@ -216,6 +216,17 @@ func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 		n.statistic, n.measure = result.Mean, ""
 	}
 	return n
+}
+
+// introduced reports that a term stands right before the candidate's estimate,
+// or right before an earlier result of the sentence.
+func (p *para) introduced(at grammar.Span, c *cand) bool {
+	for k := range p.cands {
+		if d := p.cands[k].est.Start - at.End; d >= 0 && d < 4 && p.cands[k].est.Start <= c.est.Start {
+			return true
+		}
+	}
+	return false
 }
 
 // beforeFirst is the sentence up to its first result.
