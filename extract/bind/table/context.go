@@ -16,8 +16,9 @@ type context struct {
 	armFrom, timeFrom, outcomeFrom                    string
 	contrast                                          bool // between arms
 	change                                            bool
-	changeAll                                         bool // the caption says that the table prints changes
-	timeGuess                                         bool // the time rests on the caption
+	aside                                             string // what headings beside the arm's say
+	changeAll                                         bool   // the caption says that the table prints changes
+	timeGuess                                         bool   // the time rests on the caption
 	armGuess                                          bool
 	outcomeGuess                                      bool
 }
@@ -47,6 +48,8 @@ func (f *frame) partOf(l label) part {
 	p := part{l: l, name: nameOf(l.text)}
 	low := fold(p.name)
 	switch {
+	case low == "" && isContrast(fold(l.text)):
+		p.kind = partContrast
 	case low == "":
 		p.kind = partEmpty
 		if isTimeHeading(fold(l.text)) {
@@ -62,6 +65,22 @@ func (f *frame) partOf(l label) part {
 		p.kind = partArm
 	default:
 		p.kind = partOther
+	}
+	return p
+}
+
+// rowPart classifies a label before a row: there an n does not make an arm, and
+// a time stands without other words.
+func (f *frame) rowPart(l label) part {
+	p := f.partOf(l)
+	low := fold(p.name)
+	switch {
+	case p.kind == partArm && !f.isArm(low):
+		if !f.armRows {
+			p.kind = partOther
+		}
+	case p.kind == partTime && !bareTime(low):
+		p.kind, p.name = partOther, nameOf(l.text)
 	}
 	return p
 }
@@ -104,7 +123,7 @@ var statFiller = map[string]bool{"value": true, "values": true, "adj": true, "ad
 	"estimates": true, "est": true, "of": true, "the": true, "and": true, "or": true, "in": true, "for": true, "as": true, "dif": true, "diff": true,
 	"statistic": true, "statistics": true, "a": true, "b": true, "m": true, "min": true, "max": true, "std": true, "error": true, "score": false, "to": true,
 	"unless": true, "otherwise": true, "stated": true, "data": true, "are": true, "is": true, "estimated": true, "observed": true, "multivariate": true, "univariate": true,
-	"multivariable": true, "univariable": true, "model": true}
+	"multivariable": true, "univariable": true, "model": true, "mean": true, "means": true, "median": true, "medians": true}
 
 // unbalanced drops a bracket that lost its partner when terms were taken out.
 func unbalanced(s string) string {
@@ -148,7 +167,7 @@ func (f *frame) findAxes() {
 			continue
 		}
 		rows++
-		if f.partOf(ln.labels[len(ln.labels)-1]).kind == partArm {
+		if f.namesArm(r) {
 			arms++
 		}
 	}
@@ -174,6 +193,27 @@ func (f *frame) findAxes() {
 		f.armRows = false
 	}
 	f.colArms = !f.armRows && (colArm || f.namedColumns() >= 2)
+}
+
+// namesArm reports that the innermost label of row r names an arm: by its words,
+// or by an n where no row beside it is for all arms together.
+func (f *frame) namesArm(r int) bool {
+	ln := &f.lines[r]
+	l := ln.labels[len(ln.labels)-1]
+	p := f.partOf(l)
+	if p.kind != partArm {
+		return false
+	}
+	if f.isArm(fold(p.name)) {
+		return true
+	}
+	for q := f.head; q < f.tab.Rows; q++ {
+		o := &f.lines[q]
+		if o.kind == lineData && len(o.labels) > 0 && len(o.groups) == len(ln.groups) && prefix(o.groups, ln.groups) && totals[fold(nameOf(o.labels[len(o.labels)-1].text))] {
+			return false
+		}
+	}
+	return len(ln.groups) > 0 || len(ln.labels) > 1
 }
 
 // namedColumns counts the different names over data columns that are neither
@@ -246,7 +286,7 @@ var generic = map[string]bool{"treatment group": true, "treatment groups": true,
 
 // armOfColumn joins the headings over a column that name its arm.
 func (f *frame) armOfColumn(r, c int) string {
-	var names []string
+	var names, known []string
 	for _, l := range f.path(r, c) {
 		p := f.partOf(l)
 		if p.kind == partArm || p.kind == partOther {
@@ -254,10 +294,16 @@ func (f *frame) armOfColumn(r, c int) string {
 				continue
 			}
 			names = append(names, p.name)
+			if p.kind == partArm {
+				known = append(known, p.name)
+			}
 		}
 		if p.kind == partContrast {
 			return ""
 		}
+	}
+	if len(known) > 0 {
+		names = known
 	}
 	return joinPath(names, ", ")
 }
@@ -277,7 +323,7 @@ func (f *frame) contextOf(e *estimate) *context {
 }
 
 func (f *frame) columnContext(e *estimate, x *context) {
-	var arms, times []string
+	var arms, others, times []string
 	path := f.path(e.row, e.col)
 	for i, l := range path {
 		p := f.partOf(l)
@@ -315,9 +361,17 @@ func (f *frame) columnContext(e *estimate, x *context) {
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
 			}
+			if p.kind == partOther {
+				others = append(others, name)
+			}
 			arms = append(arms, name)
 			x.armAt = l
 		}
+	}
+	if len(others) > 0 && len(others) < len(arms) {
+		// One heading is an arm by name: the others say what it is about.
+		arms = without(arms, others)
+		x.aside = joinPath(others, ", ")
 	}
 	if f.colArms || len(arms) > 0 && !f.armRows {
 		if !x.contrast || x.arm == "" {
@@ -326,6 +380,20 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		x.armFrom = f.columnName(e.col)
 	}
 	x.time = joinPath(times, ", ")
+}
+
+func without(all, taken []string) []string {
+	drop := map[string]bool{}
+	for _, t := range taken {
+		drop[t] = true
+	}
+	var out []string
+	for _, a := range all {
+		if !drop[a] {
+			out = append(out, a)
+		}
+	}
+	return out
 }
 
 // armBelow reports that one of the headings names an arm.
@@ -353,7 +421,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	ln := &f.lines[e.row]
 	var outcome, subs []string
 	take := func(l label, own bool) {
-		p := f.partOf(l)
+		p := f.rowPart(l)
 		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && compares(l.text) {
 			x.contrast = true
 		}
@@ -405,6 +473,11 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		} else {
 			x.outcome = joinPath([]string{joinPath(outcome, ", "), x.outcome}, ", ")
 		}
+	}
+	if x.aside != "" && x.outcome == "" {
+		x.outcome = x.aside
+	} else if x.aside != "" {
+		subs = append([]string{x.aside}, subs...)
 	}
 	x.subgroup = joinPath(subs, ", ")
 }

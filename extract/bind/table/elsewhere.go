@@ -285,13 +285,17 @@ func within(short, long string) bool {
 		have[w] = true
 	}
 	ws := words(short)
+	some := false
 	for _, w := range ws {
-		if !have[w] {
+		if !have[w] && !generalWord[w] {
 			return false
 		}
+		some = some || have[w]
 	}
-	return len(ws) > 0
+	return some
 }
+
+var generalWord = map[string]bool{"dose": true, "group": true, "arm": true, "treatment": true, "regimen": true, "groups": true, "therapy": true, "the": true}
 
 // only reports that one arm alone of the table has all words of the name.
 func (b *binder) only(table int, name string) bool {

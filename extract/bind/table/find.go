@@ -190,6 +190,9 @@ func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *sprea
 	if rd.given == result.Unstated {
 		r.Raise(FlagSpreadUnstated, "nothing in the table or the methods says what it is")
 	}
+	if rd.habit {
+		r.Raise(FlagSpreadHabit, "said of other rows of the table only")
+	}
 	if rd.contrary {
 		r.Raise(FlagCountConflict, "headed as number and percentage, which the numbers contradict")
 	}

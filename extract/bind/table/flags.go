@@ -5,6 +5,7 @@ package table
 const (
 	FlagSpreadUnstated = "spread-unstated"     // nothing says what the ± or the bracket is
 	FlagSpreadMethods  = "spread-from-methods" // only the paper's methods say what the ± or the bracket is
+	FlagSpreadHabit    = "spread-from-rows"    // only other rows of the same table say what this form is
 	FlagSpreadTwice    = "spread-ambiguous"    // two statements of equal right name different spreads for this form
 	FlagSpreadConflict = "spread-conflict"     // the table and the methods name different spreads
 	FlagCountConflict  = "count-or-spread"     // headed as a count with its percentage, which the numbers contradict

@@ -240,12 +240,33 @@ func (f *frame) headCell(r, c int) *paper.Cell {
 		if left == nil || isBlankText(left.Text.S) {
 			continue
 		}
+		if left.ColSpan > 1 && f.aloneInRow(r, left) {
+			return left
+		}
 		if left.ColSpan > 1 || left.RowSpan > 1 || f.soleHead(r, k) {
 			return cell
 		}
 		return left
 	}
 	return cell
+}
+
+// aloneInRow reports that a heading is the only one over the data columns in
+// its row and begins with the first of them: it heads them all, whatever its
+// marked span.
+func (f *frame) aloneInRow(r int, cell *paper.Cell) bool {
+	if cell.Col != f.stub {
+		return false
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if o := f.grid[r][c]; o != nil && o != cell && !isBlankText(o.Text.S) {
+			return false
+		}
+		if !f.headBelow(r+1, c) {
+			return false
+		}
+	}
+	return true
 }
 
 // headBelow reports a filled heading cell in column c at row r or below.

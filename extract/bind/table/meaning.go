@@ -221,6 +221,7 @@ type reading struct {
 	count     bool // it is a count with its percentage, no result
 	none      bool // it is no spread for another reason
 	ambiguous bool
+	habit     bool // only other rows of the table say so
 	contrary  bool // declared as a count, and the numbers say otherwise
 }
 
@@ -292,6 +293,9 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 	}
 	if sp.shape == shapeBracket && counts != countNever && counts != countUnlikely {
 		return reading{count: true}
+	}
+	if rd, ok := f.habit(sp, hint); ok {
+		return rd
 	}
 	return reading{given: result.Unstated}
 }
@@ -405,4 +409,36 @@ func (f *frame) withLevel(rd reading, all []statement) reading {
 		}
 	}
 	return rd
+}
+
+// habit takes what the other rows of the table say of the same form, where all
+// that say anything agree: a table that labels some rows "mean ± SD" means SD in
+// the rest.
+func (f *frame) habit(sp *spread, hint string) (reading, bool) {
+	var found pair
+	var from label
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind != lineData && ln.kind != lineGroup || len(ln.labels) == 0 {
+			continue
+		}
+		l := ln.labels[len(ln.labels)-1]
+		for _, q := range readPhrase(l.text).pairs {
+			if q.Spread == "" || q.Statistic == "" || !fitsShape(q.Spread, sp) || sp.shape == shapeSign != q.Sign {
+				continue
+			}
+			if hint != "" && q.Statistic != hint {
+				continue
+			}
+			if found.Spread != "" && found.Spread != q.Spread {
+				return reading{}, false
+			}
+			found, from = q, l
+		}
+	}
+	if found.Spread == "" || sp.shape == shapeBracket {
+		return reading{}, false
+	}
+	s := labelStatement(from, rankNote, "label of another row")
+	return reading{given: givenAs(found.Spread), pair: found, at: s, level: level(found.Level), habit: true}, true
 }

@@ -138,6 +138,9 @@ func (n *notes) split(t *paper.TextRun) (string, []string) {
 			i = end
 			continue
 		}
+		if i > 0 && t.Styled(i-1, paper.Lowered) && !t.Styled(i, paper.Lowered) && lettersAhead(s[i:]) {
+			b.WriteByte(' ') // AUC with its subscript runs into the next word
+		}
 		b.WriteString(s[i : i+size])
 		i += size
 	}
@@ -147,6 +150,20 @@ func (n *notes) split(t *paper.TextRun) (string, []string) {
 		text = strings.TrimSpace(text[:len(text)-len(m)])
 	}
 	return text, marks
+}
+
+// lettersAhead reports that a word of two or more letters begins here.
+func lettersAhead(s string) bool {
+	k := 0
+	for _, r := range s {
+		if !unicode.IsLetter(r) {
+			break
+		}
+		if k++; k >= 2 {
+			return true
+		}
+	}
+	return false
 }
 
 func nextDigit(s string) bool { return s != "" && s[0] >= '0' && s[0] <= '9' }

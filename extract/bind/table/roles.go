@@ -168,8 +168,11 @@ var (
 // isTimeHeading reports that a folded heading names a time or a period and
 // little else.
 func isTimeHeading(low string) bool {
-	if low == "" || len(low) > 80 {
+	if len(words(low)) == 0 || len(low) > 80 {
 		return false
+	}
+	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" {
+		return true
 	}
 	rest := stripTerms(low)
 	t := timeMark.FindAllString(rest, -1)
@@ -191,6 +194,20 @@ func isTimeHeading(low string) bool {
 	return left == 0 || left == 1 && len(t) > 0 && len(words(low)) >= 3 && strings.ContainsAny(low, "0123456789")
 }
 
+// phaseWord begins headings of the time before, during or after something.
+var phaseWord = map[string]bool{"pre": true, "post": true, "before": true, "after": true, "during": true, "preoperative": true, "postoperative": true, "pretreatment": true, "posttreatment": true, "pretest": true, "posttest": true}
+
+// bareTime reports that nothing but a time stands in a folded label.
+func bareTime(low string) bool {
+	rest := changeMark.ReplaceAllString(timeMark.ReplaceAllString(stripTerms(low), " "), " ")
+	for _, w := range words(rest) {
+		if !timeFiller[w] && hasLetter(w) {
+			return false
+		}
+	}
+	return true
+}
+
 var timeFiller = map[string]bool{"at": true, "after": true, "of": true, "the": true, "from": true, "to": true, "and": true, "in": true, "value": true,
 	"values": true, "score": true, "scores": true, "treatment": true, "intervention": true, "study": true, "week": true, "weeks": true, "month": true, "months": true, "day": true, "days": true, "year": true,
 	"years": true, "visit": true, "measurement": true, "assessment": true, "period": true, "time": true, "point": true, "start": true, "end": true, "h": true, "min": true, "hour": true, "hours": true,
@@ -199,15 +216,31 @@ var timeFiller = map[string]bool{"at": true, "after": true, "of": true, "the": t
 
 var nPhrase = regexp.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
 
+// onlyTerms reports that nothing but terms stands in a heading.
+func onlyTerms(s string, h grammar.Heading) bool { return len(restWords(s, h)) == 0 }
+
+// partOfName reports a term that, beside other words, belongs to the name of
+// what was measured: heart rate, E/A ratio, interferon beta.
+func partOfName(q grammar.Pair) bool {
+	switch q.Statistic {
+	case "rate", "proportion", "coefficient", "other":
+		return true
+	case "ratio":
+		return q.Measure == ""
+	}
+	return false
+}
+
 // stripTerms takes n = 42, statistics and levels out of a heading.
 func stripTerms(s string) string {
 	s = nPhrase.ReplaceAllString(s, " ")
 	h := grammar.ParsePhrase(grammar.Text{S: s})
 	b := []byte(s)
+	all := onlyTerms(s, h)
 	for _, q := range h.Pairs {
 		for _, sp := range []grammar.Span{q.SpreadAt, q.StatisticAt} {
 			word := strings.ToLower(s[sp.Start:sp.End])
-			if changeMark.MatchString(word) || strings.Contains(word, "change") {
+			if changeMark.MatchString(word) || strings.Contains(word, "change") || sp == q.StatisticAt && !all && partOfName(q) {
 				continue
 			}
 			for i := sp.Start; i < sp.End; i++ {
