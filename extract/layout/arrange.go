@@ -59,6 +59,9 @@ type arranger struct {
 func sheetsOf(p *paper.GlyphPage, fonts map[string]int32) []sheet {
 	own := make(map[int32]int32, len(p.Fonts))
 	for i, name := range p.Fonts {
+		if len(name) > 7 && name[6] == '+' { // the mark of a font cut down to what is used
+			name = name[7:]
+		}
 		if _, ok := fonts[name]; !ok {
 			fonts[name] = int32(len(fonts))
 		}
@@ -77,16 +80,26 @@ func sheetsOf(p *paper.GlyphPage, fonts map[string]int32) []sheet {
 	return out
 }
 
-// bodyPrint is the font size and the font that most glyphs of the paper have.
+// bodyPrint is the font size and the font of the paper's running text: of most
+// glyphs of its longer lines before the references.
 func bodyPrint(sheets [][]sheet) (size int, font int32) {
 	sizes, fonts := map[int]int{}, map[int32]int{}
 	for _, page := range sheets {
+		end := false
 		for i := range page {
 			for k := range page[i].lines {
 				l := &page[i].lines[k]
-				sizes[(l.size+5)/10] += l.glyphs
-				fonts[l.font] += l.glyphs
+				end = end || len(l.words) <= 3 && paper.PlainTitle(l.text()) == "references"
+				n := l.glyphs
+				if len(l.words) < 6 {
+					n = (n + 9) / 10
+				}
+				sizes[(l.size+5)/10] += n
+				fonts[l.font] += n
 			}
+		}
+		if end {
+			break
 		}
 	}
 	delete(fonts, -1)

@@ -13,6 +13,7 @@ import (
 // blocks with their zones.
 func (a *arranger) blocks() []paper.Block {
 	a.classify()
+	a.clearFigures()
 	a.join()
 	z := &zoner{body: a.body, titleSize: a.titleSize(), parts: map[string]bool{}}
 	var out []paper.Block
@@ -63,13 +64,15 @@ func (a *arranger) classify() {
 		switch {
 		case startsLabel(text):
 			d.kind = paper.Caption
+		case d.side:
+			d.kind = paper.Note
 		case d.page <= 1 && d.size == title && len(d.lines) <= 8, a.isHeading(d):
 			d.kind = paper.Heading
 		case a.isFigureText(d, text):
 			d.kind = paper.Furniture
 		case d.page <= 2 && a.isFrontMatter(d, text, abstractSeen):
 			d.kind = paper.Furniture
-		case d.side, a.isFootNote(d, i):
+		case a.isFootNote(d, text):
 			d.kind = paper.Note
 		}
 		if d.kind == paper.Heading && d.size < title {
@@ -77,6 +80,28 @@ func (a *arranger) classify() {
 			abstractSeen = abstractSeen || z != paper.Elsewhere
 		}
 		abstractSeen = abstractSeen || runInHeading(text) != ""
+	}
+}
+
+// clearFigures takes the lettering of a figure, printed above its caption, out
+// of the text: short pieces that are neither sentences nor known headings.
+func (a *arranger) clearFigures() {
+	for i := range a.drafts {
+		if c := &a.drafts[i]; c.kind != paper.Caption || !figureLabel.MatchString(c.text()) {
+			continue
+		}
+		for k := i - 1; k >= 0 && a.drafts[k].page == a.drafts[i].page; k-- {
+			d := &a.drafts[k]
+			if d.kind != paper.Heading && d.kind != paper.Paragraph {
+				break
+			}
+			text := d.text()
+			if ended(text) || knownTitle(text) || numbered.MatchString(text) || strings.ContainsRune(text, '±') ||
+				len(strings.Fields(text)) > 8*len(d.lines) || d.kind == paper.Paragraph && d.size*100 >= a.body*97 {
+				break
+			}
+			d.kind = paper.Furniture
+		}
 	}
 }
 
@@ -108,10 +133,10 @@ func (a *arranger) isFrontMatter(d *draft, text string, abstractSeen bool) bool 
 	return !abstractSeen && d.page == 1 && affiliation.MatchString(text) && len(text) < 1500 && strings.Count(text, ". ")*120 < len(text)
 }
 
-// isFootNote reports whether draft i is small print at the foot of its column
-// that begins with a mark.
-func (a *arranger) isFootNote(d *draft, i int) bool {
-	if d.size*100 >= a.body*94 || len(d.lines[0].words) == 0 {
+// isFootNote reports whether a draft is a note in small print that begins with
+// a mark.
+func (a *arranger) isFootNote(d *draft, text string) bool {
+	if len(text) > 500 || d.size*100 >= a.body*94 || len(d.lines[0].words) == 0 {
 		return false
 	}
 	w := d.lines[0].words[0]

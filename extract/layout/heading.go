@@ -4,6 +4,7 @@ import (
 	"regexp"
 	"strings"
 	"unicode"
+	"unicode/utf8"
 
 	"halfspan/extract/paper"
 )
@@ -33,7 +34,7 @@ func (a *arranger) headingLine(l *line) bool {
 	switch {
 	case knownTitle(text):
 		return true
-	case strings.HasSuffix(text, ",") || strings.HasSuffix(text, ";"):
+	case strings.HasSuffix(text, ",") || strings.HasSuffix(text, ";") || !letterEnd(text) && !l.bold && l.size*100 < a.body*115:
 		return false
 	case big && letterShare(text) >= 60:
 		return true
@@ -80,15 +81,21 @@ func (a *arranger) isHeading(d *draft) bool {
 	if strings.HasSuffix(text, ".") && len(words) > 12 && !numbered.MatchString(text) {
 		return false
 	}
+	inFont := len(words) <= 12 && !ended(text) && !sentenceIn(text) && letterShare(text) >= 60 &&
+		startsUpper(text) && d.size*100 >= a.body*94 && d.last().short() && letterEnd(text)
 	for i := range d.lines {
 		l := &d.lines[i]
-		inFont := a.apart(l) && len(words) <= 14 && !strings.HasSuffix(text, ".") && letterShare(text) >= 60 &&
-			unicode.IsUpper([]rune(text)[0]) && d.size*100 >= a.body*94 && (len(d.lines) > 1 || l.short())
-		if !inFont && !a.headingLine(l) {
+		if !(inFont && a.apart(l)) && !a.headingLine(l) {
 			return false
 		}
 	}
 	return !strings.ContainsAny(text, "@=±") && !strings.Contains(text, "http")
+}
+
+// letterEnd reports whether a text does not end in a hyphen.
+func letterEnd(text string) bool {
+	r, _ := utf8.DecodeLastRuneInString(text)
+	return !isHyphen(r)
 }
 
 func hasLetters(s string) bool {

@@ -137,7 +137,7 @@ func (a *arranger) breaks(b []line, l *line) bool {
 		return true
 	case a.headingLine(p) != a.headingLine(l) && !(l.bold == p.bold && len(b) > 1):
 		return true
-	case bullet(text):
+	case bullet(text), p.short() && knownTitle(prev) && startsUpper(text):
 		return true
 	}
 	indent, before := l.x0-l.edge, p.x0-p.edge
@@ -149,9 +149,13 @@ func (a *arranger) breaks(b []line, l *line) bool {
 	if before >= size*7/10 && indent < size/2 && len(b) > 1 && b[len(b)-2].x0-p.edge >= size*7/10 && (ended(prev) || !full) {
 		return true
 	}
-	first, _ := utf8.DecodeRuneInString(text)
-	short := p.x1 < p.edge+p.width*3/4
-	return short && ended(prev) && (unicode.IsUpper(first) || unicode.IsDigit(first))
+	return p.x1 < p.edge+p.width*3/4 && ended(prev) && startsUpper(text)
+}
+
+// startsUpper reports whether a text begins with a capital or a digit.
+func startsUpper(text string) bool {
+	r, _ := utf8.DecodeRuneInString(text)
+	return unicode.IsUpper(r) || unicode.IsDigit(r)
 }
 
 // apart reports whether a line is printed in another font than the running

@@ -16,6 +16,7 @@ type zoner struct {
 	abstractSize    int             // font size of the heading that opened the abstract
 	parts           map[string]bool // headings met inside the abstract
 	done            bool            // the abstract is behind
+	numbered        bool            // the main headings carry numbers
 }
 
 var keywords = regexp.MustCompile(`(?i)^(?:key ?words?|index terms|keywords and phrases|mesh)\b`)
@@ -32,6 +33,9 @@ func (z *zoner) floating() paper.Zone {
 func (z *zoner) blocks(d *draft, run paper.TextRun) []paper.Block {
 	switch d.kind {
 	case paper.Heading:
+		if keywords.MatchString(run.S) {
+			z.endAbstract()
+		}
 		return []paper.Block{z.heading(d, run)}
 	case paper.Caption:
 		return []paper.Block{{Kind: d.kind, Page: d.page, Text: run, Zone: z.floating(), Section: z.section}}
@@ -101,6 +105,8 @@ func (z *zoner) heading(d *draft, run paper.TextRun) paper.Block {
 	case sure:
 		z.take(d, title, zone)
 	case z.zone == paper.References:
+	case topNumber.MatchString(title) && z.numbered && zone != paper.Elsewhere:
+		z.take(d, title, zone)
 	case z.zone == paper.BackMatter:
 		z.section = title
 	case z.mayTake(zone):
@@ -135,6 +141,7 @@ func (z *zoner) take(d *draft, title string, zone paper.Zone) {
 		return
 	}
 	z.done = true
+	z.numbered = z.numbered || topNumber.MatchString(title)
 }
 
 // level of a heading: by its number, else by its print.
@@ -154,7 +161,10 @@ func level(d *draft, text string, body int) int {
 	return 3
 }
 
-var headNumber = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2})*\.?\s`)
+var (
+	topNumber  = regexp.MustCompile(`^(?:[0-9]{1,2}|[IVX]{1,4})\.?\s+\p{Lu}`)
+	headNumber = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2})*\.?\s`)
+)
 
 // abstract cuts a paragraph of the abstract where its parts begin.
 func (z *zoner) abstract(d *draft, run paper.TextRun) []paper.Block {

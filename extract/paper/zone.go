@@ -40,7 +40,7 @@ var titleWords = []struct {
 	{regexp.MustCompile(`^(?:acknowledge?ments?|competing interests?|conflicts? of interests?|declarations?|disclosures?|funding|financial (?:support|disclosure)|authors?['’]? ?contributions?|author contributions?|contributors|abbreviations?(?: used)?|supplementa(?:ry|l) .*|supporting information|additional files?|appendi(?:x|ces)\b.*|data availability.*|availability of .*|pre-?publication history|consent for publication|ethics approval.*|provenance.*|notes|authors?['’] information|endnotes|trial registration)$`), BackMatter},
 	{regexp.MustCompile(`\bmethods?\b|\bstatistical\b|\bstudy (?:design|population)\b|\bparticipants\b|\bsample size\b|\brandomi[sz]ation\b|\boutcome measures?\b|\beligibility\b|\bprocedures?\b`), Methods},
 	{regexp.MustCompile(`\bresults?\b|\bfindings\b`), Results},
-	{regexp.MustCompile(`\bdiscussion\b|\bconclusions?\b|\blimitations\b`), Discussion},
+	{regexp.MustCompile(`\bdiscussions?\b|\bconclusions?\b|\blimitations\b`), Discussion},
 	{regexp.MustCompile(`\bintroduction\b|\bbackground\b|\brationale\b|\bobjectives?\b|\baims?\b`), Introduction},
 }
 
