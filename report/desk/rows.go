@@ -200,6 +200,7 @@ type cellView struct {
 	Hash      string          `json:"hash"` // the row's token: what the person saw
 	State     string          `json:"state"`
 	Decision  *decisionView   `json:"decision"`
+	Changed   []string        `json:"changed,omitempty"` // fields that the person amended
 	Differs   []string        `json:"differs,omitempty"`
 	Gone      string          `json:"gone,omitempty"`
 	ByHand    string          `json:"by_hand,omitempty"`
@@ -223,8 +224,11 @@ func (d *Desk) row(r *http.Request) (any, error) {
 	for _, row := range g.rows {
 		c := cellView{Working: row.Current().Working, Hash: row.Token(), State: string(row.State), Differs: row.Differs, Gone: row.Gone, ByHand: row.ByHand,
 			TypeFirst: d.typeFirst(row.ID()) && row.ByHand == ""}
-		if row.State == ledger.StateDiffering {
+		switch row.State {
+		case ledger.StateDiffering:
 			c.Working = row.Working
+		case ledger.State(ledger.Amended):
+			c.Changed = ledger.Differs(row.Working.Record, c.Working.Record)
 		}
 		if row.Decision != nil {
 			c.Decision = viewOf(*row.Decision)

@@ -92,7 +92,7 @@ async function refresh(advance) {
   if (state.row.cells.some((c) => c.state === 'open')) {
     state.cell = state.row.cells.findIndex((c) => c.state === 'open');
     draw();
-  } else if (id) next((r) => r.cells.some((c) => c.state === 'open'), 'That was the last open row.');
+  } else if (id) await next((r) => r.cells.some((c) => c.state === 'open'), 'That was the last open row.');
 }
 
 async function decide(cells, decision, more = {}) {

@@ -53,7 +53,7 @@ function cellCard(cell, current, choose, hidden) {
 export function fieldsView(cell) {
   const r = cell.working.record;
   return el('dl', { class: 'fields' }, FIELDS.filter(([f]) => r[f] !== null && r[f] !== undefined && r[f] !== '').map(([f, label]) => [
-    el('dt', {}, label), el('dd', {}, String(r[f]), ' ', el('span', { class: 'from' }, fromWords(cell.working, f)))]));
+    el('dt', {}, label), el('dd', {}, String(r[f]), ' ', el('span', { class: 'from' }, cell.changed?.includes(f) ? 'amended by hand' : fromWords(cell.working, f)))]));
 }
 
 export function workingView(w) {
@@ -63,7 +63,7 @@ export function workingView(w) {
     el('p', {}, r.use === 'withheld' ? `SD withheld: ${r.reason}` : `${spread(r)}${r.sd_of ? ` of ${r.sd_of}` : ''}${r.use === 'printed' ? ', as printed' : ''}`),
     t.steps?.length > 0 && el('pre', { class: 'steps' }, t.steps.join('\n')),
     t.assumptions?.length > 0 && el('p', {}, 'Assumes: ', t.assumptions.join('; '), '.'),
-    t.notes?.length > 0 && el('p', {}, t.notes.join(' ')),
+    t.notes?.length > 0 && el('ul', { class: 'notes' }, t.notes.map((n) => el('li', {}, n))),
     t.alternatives?.length > 0 && [el('h3', {}, 'Beside it'), altTable(t.alternatives)],
   ];
 }
