@@ -108,6 +108,9 @@ func (s *sheet) isTabular(ln *line) bool {
 // table whose last line is lines[last].
 func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 	ln := &lines[i]
+	if last >= 0 && end > lines[last].base && s.closed(sides, lines[0].top, end) && !s.figuresIn(ln) {
+		return false
+	}
 	if s.isText(ln) || s.isNoteStart(ln) && !s.isTabular(ln) && !s.cellsFollow(lines, i) {
 		return false
 	}
@@ -127,6 +130,29 @@ func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 		return true
 	}
 	return s.cellsFollow(lines, i)
+}
+
+// closed reports whether three or more rules of the table's width end at height
+// end, the last of them under its body.
+func (s *sheet) closed(sides box, top, end int) bool {
+	n := 0
+	for _, r := range rulesIn(s.rules, box{sides.x0, top - 2*s.bodySize, sides.x1, end}) {
+		if abs(r.x0-sides.x0) <= 3*s.bodySize && abs(r.x1-sides.x1) <= 3*s.bodySize {
+			n++
+		}
+	}
+	return n >= 3
+}
+
+// figuresIn reports whether a line has a figure in a cell other than its first.
+func (s *sheet) figuresIn(ln *line) bool {
+	rs := s.runs(ln, 90)
+	for k := 1; k < len(rs); k++ {
+		if isFigure(s.join(rs[k].toks)) {
+			return true
+		}
+	}
+	return false
 }
 
 // cellsFollow reports whether after line i, which stands by itself (a row group,

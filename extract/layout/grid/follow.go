@@ -46,10 +46,10 @@ func openBefore(sheets []Sheet, out [][]Region, i int) *Region {
 	return nil
 }
 
-// goesOnAt finds the rest of an open table at the top of the sheet.
-func (s *sheet) goesOnAt(open *Region, labels []label) (Region, bool) {
+// goesOnAt finds the rest of an open table at the top of the sheet, between the
+// given sides.
+func (s *sheet) goesOnAt(open *Region, labels []label, sides box) (Region, bool) {
 	limit := s.bounds.bot
-	sides := open.sides
 	if len(s.segs) == 0 {
 		return Region{}, false
 	}
@@ -98,6 +98,40 @@ func (s *sheet) goesOnAt(open *Region, labels []label) (Region, bool) {
 	return r, true
 }
 
+// continues finds the rest of a table of the page before: in the same place, or in
+// the first column of the page.
+func (s *sheet) continues(open *Region, labels []label) (Region, bool) {
+	if r, ok := s.goesOnAt(open, labels, open.sides); ok {
+		return r, true
+	}
+	left := s.bounds.x1
+	for i := range s.segs {
+		if s.segs[i].chars >= 20 {
+			left = min(left, s.segs[i].x0)
+		}
+	}
+	if left >= open.sides.x0-open.label.size {
+		return Region{}, false
+	}
+	return s.goesOnAt(open, labels, box{x0: left, x1: left + open.sides.width()})
+}
+
+// nextColumn finds the rest of a table that reaches the foot of one column of
+// the page at the top of the next column.
+func (s *sheet) nextColumn(open *Region, labels []label) (Region, bool) {
+	left := s.bounds.x1
+	for i := range s.segs {
+		g := &s.segs[i]
+		if g.x0 > open.sides.x1 && g.top < open.body.top && g.n > 1 {
+			left = min(left, g.x0)
+		}
+	}
+	if left+open.sides.width()*9/10 > s.bounds.x1 {
+		return Region{}, false
+	}
+	return s.goesOnAt(open, labels, box{x0: left, x1: left + open.sides.width()})
+}
+
 // joinAll ties the regions that go on from an earlier page to the first one.
 func joinAll(sheets []Sheet, out [][]Region) {
 	for i := range out {
@@ -107,12 +141,12 @@ func joinAll(sheets []Sheet, out [][]Region) {
 				continue
 			}
 			last := r
-			for j := i + 1; j < len(out); j++ {
+			for j := i; j < len(out); j++ {
 				if sheets[j].Page > last.sheet.page+1 {
 					break
 				}
 				for n := range out[j] {
-					if o := &out[j][n]; !o.Joined && follows(r, last, o) {
+					if o := &out[j][n]; o != r && !o.Joined && follows(r, last, o) {
 						o.Joined = true
 						r.parts = append(r.parts, o)
 						last = o

@@ -37,6 +37,7 @@ func (rd *reader) headBlocks() []block {
 			out = append(out, block{box: p.box, pieces: []piece{p.piece}, c0: p.c0, c1: p.c1, fixed: p.fixed})
 		}
 	}
+	rd.headStubs(out)
 	for i := range out {
 		for k := range i {
 			if out[k].c0 <= out[i].c1 && out[i].c0 <= out[k].c1 {
@@ -45,6 +46,45 @@ func (rd *reader) headBlocks() []block {
 		}
 	}
 	return out
+}
+
+// headStubs lets the heading of the stub reach over further columns of row
+// headings that have none of their own.
+func (rd *reader) headStubs(blocks []block) {
+	reach := 0
+	for c := 1; c < len(rd.cs) && rd.labels(c); c++ {
+		for i := range blocks {
+			if blocks[i].c0 <= c && c <= blocks[i].c1 {
+				c = len(rd.cs)
+				break
+			}
+		}
+		if c < len(rd.cs) {
+			reach = c
+		}
+	}
+	for i := range blocks {
+		if b := &blocks[i]; b.c0 == 0 && b.c1 == 0 {
+			b.c1 = reach
+		}
+	}
+}
+
+// labels reports whether column c holds row headings rather than data: most of
+// its cells are words.
+func (rd *reader) labels(c int) bool {
+	words, all := 0, 0
+	for i := rd.head; i < len(rd.lines); i++ {
+		for k := range rd.cells[i] {
+			if p := &rd.cells[i][k]; p.c0 == c {
+				all++
+				if !p.figure {
+					words++
+				}
+			}
+		}
+	}
+	return all > 0 && words*10 >= all*4
 }
 
 // columnBoxes gives the sides of what stands in each column of the body.
@@ -242,6 +282,9 @@ func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
 	if spans == 0 || n <= spans {
 		return
 	}
+	if rd.byPattern(row, next) {
+		return
+	}
 	st.left = left*2 > spans && left >= centred
 	tight := (next[0].top-row[0].top)*100 <= 135*rd.em && !rd.anyRule(row, next)
 	st.wrapped = tight && (left > 0 || centred > 0)
@@ -250,6 +293,50 @@ func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
 			st.stretch(p)
 		}
 	}
+}
+
+// byPattern shares the columns of the next band where its texts repeat as often
+// as there are headings above: "mean, SD" under each of two arms.
+func (rd *reader) byPattern(row, next []headPiece) bool {
+	var heads []*headPiece
+	for k := range row {
+		if row[k].c0 > 0 {
+			heads = append(heads, &row[k])
+		}
+	}
+	subs := slices.Clone(next)
+	slices.SortStableFunc(subs, func(a, b headPiece) int { return a.c0 - b.c0 })
+	for len(subs) > 0 && subs[0].c0 < heads[0].c0-1 || len(subs) > 0 && subs[0].c0 == 0 {
+		subs = subs[1:]
+	}
+	for skip := 0; skip < 2 && skip < len(subs); skip++ {
+		var starts []int
+		for k := skip; k < len(subs); k++ {
+			if subs[k].text == subs[skip].text {
+				starts = append(starts, k)
+			}
+		}
+		if len(starts) != len(heads) || len(starts) < 2 || starts[1]-starts[0] < 2 {
+			continue
+		}
+		period := starts[1] - starts[0]
+		ok := starts[len(starts)-1]+period <= len(subs)
+		for k := range starts {
+			ok = ok && starts[k] == starts[0]+k*period
+			if ok {
+				first, last := &subs[starts[k]], &subs[starts[k]+period-1]
+				ok = heads[k].run.mid() > first.x0-rd.em && heads[k].run.mid() < last.x1+rd.em
+			}
+		}
+		if !ok {
+			continue
+		}
+		for k := range starts {
+			heads[k].c0, heads[k].c1 = subs[starts[k]].c0, subs[starts[k]+period-1].c1
+		}
+		return true
+	}
+	return false
 }
 
 // stretcher lets heading pieces reach over free neighbouring columns.
@@ -272,7 +359,7 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 	if isTestHead(q.text) && !again || st.wrapped && !again {
 		return false
 	}
-	return own == nil || isHeadFigure(own.text) == isHeadFigure(q.text)
+	return own == nil || isSize(own.text) == isSize(q.text)
 }
 
 // stretch widens p: flush left, up to the next heading; else to the columns

@@ -162,6 +162,12 @@ func startsFigure(text string) bool {
 	return false
 }
 
+// isSize reports whether a heading is only a sample size: "(n = 42)".
+func isSize(text string) bool {
+	low := strings.ToLower(strings.Trim(strings.TrimSpace(text), "()[] "))
+	return strings.HasPrefix(low, "n =") || strings.HasPrefix(low, "n=")
+}
+
 // isHeadFigure reports whether a figure is of the kinds that stand in column
 // headings: sample sizes, percent levels, years, doses are told by isFigure
 // already; what is left are bare years and small counts in brackets.
@@ -169,7 +175,7 @@ func isHeadFigure(text string) bool {
 	t := strings.Trim(strings.TrimSpace(text), "()[] ")
 	low := strings.ToLower(t)
 	switch {
-	case strings.HasPrefix(low, "n =") || strings.HasPrefix(low, "n="):
+	case isSize(text):
 		return true
 	case strings.HasPrefix(low, "95") && strings.Contains(low, "%") && len(low) <= 8:
 		return true

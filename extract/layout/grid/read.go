@@ -94,7 +94,8 @@ func (rd *reader) fullBetween(i int) bool {
 	hi := rd.lines[i].base - rd.em/4
 	var spans []rule
 	for _, r := range rd.rules {
-		if r.y > lo && r.y <= hi {
+		// The lower border of a cell beside the line may run just above its baseline.
+		if r.y > lo && r.y <= hi || r.y <= lo && r.y > lo-rd.em/2 && i > 0 && rd.clear(i-1, r) {
 			spans = append(spans, r)
 		}
 	}
@@ -125,6 +126,16 @@ func (rd *reader) boldLines() int {
 		return i
 	}
 	return 0
+}
+
+// clear reports whether rule r runs under no word of line i.
+func (rd *reader) clear(i int, r rule) bool {
+	for _, t := range rd.lines[i].toks {
+		if w := &rd.s.toks[t]; w.x0 < r.x1 && r.x0 < w.x1 {
+			return false
+		}
+	}
+	return true
 }
 
 // isData reports whether a line holds figures in cells right of its first run.
@@ -234,7 +245,7 @@ func (rd *reader) fewFigures(n int) bool {
 		figures := 0
 		rs := rd.s.runs(&rd.lines[i], 60)
 		for k := range rs {
-			if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) && !rd.goesOnAbove(i, &rs[k]) {
+			if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) && !rd.goesOnAbove(i, &rs[k]) && !rd.wordsBelow(i, n, &rs[k]) {
 				figures++
 			}
 		}
@@ -243,4 +254,18 @@ func (rd *reader) fewFigures(n int) bool {
 		}
 	}
 	return true
+}
+
+// wordsBelow reports whether words stand under run r of line i, above line n:
+// then it is a number in a heading.
+func (rd *reader) wordsBelow(i, n int, r *run) bool {
+	for k := i + 1; k < n; k++ {
+		down := rd.s.runs(&rd.lines[k], 60)
+		for j := range down {
+			if down[j].x0 < r.x1 && r.x0 < down[j].x1 && !isFigure(rd.s.join(down[j].toks)) {
+				return true
+			}
+		}
+	}
+	return false
 }

@@ -45,7 +45,7 @@ func (s *sheet) find(open *Region) []Region {
 	var out []Region
 	taken := []box{}
 	if open != nil {
-		if r, ok := s.goesOnAt(open, labels); ok {
+		if r, ok := s.continues(open, labels); ok {
 			taken = append(taken, r.area)
 			out = append(out, r)
 		}
@@ -62,10 +62,28 @@ func (s *sheet) find(open *Region) []Region {
 		out = append(out, r)
 	}
 	for i := range out {
+		if !out[i].Open {
+			continue
+		}
+		if r, ok := s.nextColumn(&out[i], labels); ok && !overlapsAny(r.area, out) {
+			out = append(out, r)
+		}
+	}
+	for i := range out {
 		out[i].collect()
 	}
 	slices.SortStableFunc(out, func(a, b Region) int { return a.area.top - b.area.top })
 	return out
+}
+
+func overlapsAny(a box, regions []Region) bool {
+	for i := range regions {
+		b := regions[i].area
+		if a.x0 < b.x1 && b.x0 < a.x1 && a.top < b.bot && b.top < a.bot {
+			return true
+		}
+	}
+	return false
 }
 
 // collect lists the words of the region.

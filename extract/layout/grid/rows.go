@@ -13,18 +13,36 @@ func (rd *reader) rows() [][]int {
 	pitch := rd.rowPitch()
 	ruled := rd.ruledRows()
 	var cur []int
-	for i := rd.head; i < len(rd.lines); i++ {
-		if len(cur) > 0 && rd.joins(cur, i, pitch, ruled) {
-			cur = append(cur, i)
+	for _, unit := range rd.units() {
+		if len(cur) > 0 && rd.joins(cur, unit, pitch, ruled) {
+			cur = append(cur, unit...)
 			continue
 		}
 		if len(cur) > 0 {
 			out = append(out, cur)
 		}
-		cur = []int{i}
+		cur = slices.Clone(unit)
 	}
 	if len(cur) > 0 {
 		out = append(out, cur)
+	}
+	return out
+}
+
+// units groups body lines that overlap in height, as where one cell is centred
+// beside two lines of another.
+func (rd *reader) units() [][]int {
+	var out [][]int
+	for i := rd.head; i < len(rd.lines); i++ {
+		n := len(out) - 1
+		if n >= 0 && !rd.fullBetween(i) {
+			step := rd.lines[i].base - rd.lines[i-1].base
+			if step*10 < rd.em*8 && (!rd.clash(rd.gather(out[n]), []int{i}) || step*10 < rd.em*3) {
+				out[n] = append(out[n], i)
+				continue
+			}
+		}
+		out = append(out, []int{i})
 	}
 	return out
 }
@@ -87,44 +105,49 @@ func (rd *reader) figuresShared(a, b int) bool {
 	return false
 }
 
-// joins reports whether line i belongs to the row of the lines cur.
-func (rd *reader) joins(cur []int, i, pitch int, ruled bool) bool {
-	last := cur[len(cur)-1]
+// joins reports whether the lines of unit belong to the row of the lines cur.
+func (rd *reader) joins(cur, unit []int, pitch int, ruled bool) bool {
+	i, last := unit[0], cur[len(cur)-1]
 	step := rd.lines[i].base - rd.lines[last].base
-	if rd.fullBetween(i) && step > rd.em/2 {
+	if rd.fullBetween(i) {
 		return false
 	}
 	above := rd.gather(cur)
-	if step*10 < rd.em*8 {
-		return !rd.clash(above, i) || step*10 < rd.em*3
-	}
 	if ruled {
-		return step < 3*rd.em && !rd.clash(above, i)
+		return step < 3*rd.em && !rd.clash(above, unit)
 	}
 	tight := pitch > 0 && step*100 <= pitch*92 && step*10 <= rd.em*16 || pitch == 0 && step*10 <= rd.em*13
-	loose := pitch > 0 && step*10 > pitch*15 && step*10 > rd.em*16
-	if loose {
+	if pitch > 0 && step*10 > pitch*15 && step*10 > rd.em*16 {
 		return false
 	}
-	stubUp, stub := above[0], rd.stubPiece(i)
-	dataUp, data := len(above) > 1 || len(above) == 1 && above[0] == nil, rd.hasData(i)
+	stubUp, stub := above[0], rd.stubPiece(unit)
+	dataUp, data := rd.anyData(cur), rd.anyData(unit)
+	if stub == nil {
+		return data && rd.dataGoesOn(above, unit, stubUp != nil, dataUp, tight)
+	}
+	if stubUp == nil {
+		return data && tight && !rd.clash(above, unit)
+	}
+	unfinished := unfinishedLabel(stubUp.text, stub.text)
+	same := sameWeight(rd.s, stubUp, stub)
+	deeper := rd.indentedMore(stub, stubUp)
 	switch {
-	case stub == nil && data:
-		return rd.dataGoesOn(above, i, stubUp != nil, dataUp, tight)
-	case stub != nil && !data && dataUp:
-		return stubUp != nil && rd.labelGoesOn(stubUp, stub, tight) && !rd.indentedMore(stub, stubUp) ||
-			stubUp != nil && unfinishedLabel(stubUp.text, stub.text)
-	case stub != nil && !data:
-		return stubUp != nil && (tight && sameWeight(rd.s, stubUp, stub) && !rd.groupAbove(stubUp, stub, i) || unfinishedLabel(stubUp.text, stub.text))
-	case stub != nil && stubUp != nil && !dataUp:
-		if rd.indentedMore(stub, stubUp) && !unfinishedLabel(stubUp.text, stub.text) {
-			return false
+	case !data && dataUp:
+		return unfinished || !deeper && rd.labelGoesOn(stubUp, stub, tight)
+	case !data:
+		return unfinished || tight && same && !(deeper && !startsLow(stub.text))
+	case !dataUp:
+		return unfinished || !deeper && tight && same && startsLow(stub.text)
+	}
+	return !rd.clash(above, unit) && (unfinished || tight && same && startsLow(stub.text))
+}
+
+// anyData reports whether one of the lines has anything right of the stub.
+func (rd *reader) anyData(lines []int) bool {
+	for _, i := range lines {
+		if rd.hasData(i) {
+			return true
 		}
-		return unfinishedLabel(stubUp.text, stub.text) || tight && sameWeight(rd.s, stubUp, stub) && startsLow(stub.text)
-	case stub != nil && stubUp != nil:
-		return !rd.clash(above, i) && (tight && startsLow(stub.text) && sameWeight(rd.s, stubUp, stub) || unfinishedLabel(stubUp.text, stub.text))
-	case stub != nil && stubUp == nil:
-		return tight && !rd.clash(above, i)
 	}
 	return false
 }
@@ -140,58 +163,64 @@ func (rd *reader) gather(cur []int) map[int]*piece {
 	return out
 }
 
-func (rd *reader) stubPiece(i int) *piece {
-	if rd.hasStub(i) {
-		return &rd.cells[i][0]
+// stubPiece is the first piece of the stub in the lines, nil where there is none.
+func (rd *reader) stubPiece(lines []int) *piece {
+	for _, i := range lines {
+		if rd.hasStub(i) {
+			return &rd.cells[i][0]
+		}
 	}
 	return nil
 }
 
-// clash reports whether line i has a figure that begins anew in a column where
-// the row already has a finished one.
-func (rd *reader) clash(above map[int]*piece, i int) bool {
-	for k := range rd.cells[i] {
-		q := &rd.cells[i][k]
-		p := above[q.c0]
-		if p == nil || q.c0 == 0 {
-			continue
-		}
-		if p.figure && q.figure && !goesOnFigure(q.text) && !unfinished(p.text) {
-			return true
+// clash reports whether the lines have a figure that begins anew in a column
+// where the row above already has a finished one.
+func (rd *reader) clash(above map[int]*piece, lines []int) bool {
+	seen := map[int]bool{}
+	for _, i := range lines {
+		for k := range rd.cells[i] {
+			q := &rd.cells[i][k]
+			p := above[q.c0]
+			if p == nil || q.c0 == 0 || seen[q.c0] {
+				continue
+			}
+			seen[q.c0] = true
+			if p.figure && q.figure && !goesOnFigure(q.text) && !unfinished(p.text) {
+				return true
+			}
 		}
 	}
 	return false
 }
 
-// dataGoesOn reports whether a line without a row heading goes on the row above.
-func (rd *reader) dataGoesOn(above map[int]*piece, i int, stubUp, dataUp, tight bool) bool {
+// dataGoesOn reports whether lines without a row heading go on the row above.
+func (rd *reader) dataGoesOn(above map[int]*piece, unit []int, stubUp, dataUp, tight bool) bool {
 	if !dataUp {
 		// A heading whose values stand on the next line.
 		return stubUp
 	}
 	on, anew, beside := 0, 0, 0
-	for k := range rd.cells[i] {
-		q := &rd.cells[i][k]
-		p := above[q.c0]
-		switch {
-		case p == nil:
-			beside++
-		case goesOnFigure(q.text) || unfinished(p.text):
-			on++
-		case p.figure && q.figure:
-			anew++
-		case p.figure && !q.figure && startsP(q.text):
-			on++
-		case tight || startsLow(q.text):
-			on++
-		default:
-			anew++
+	for _, i := range unit {
+		for k := range rd.cells[i] {
+			q := &rd.cells[i][k]
+			p := above[q.c0]
+			switch {
+			case p == nil:
+				beside++
+			case goesOnFigure(q.text) || unfinished(p.text):
+				on++
+			case p.figure && q.figure:
+				anew++
+			case p.figure && startsP(q.text):
+				on++
+			case tight || startsLow(q.text):
+				on++
+			default:
+				anew++
+			}
 		}
 	}
-	if anew > 0 {
-		return false
-	}
-	return on > 0 && beside == 0 || tight
+	return anew == 0 && (on > 0 && beside == 0 || tight)
 }
 
 // goesOnFigure reports whether a text is the second part of a figure broken
@@ -214,7 +243,7 @@ func unfinished(t string) bool {
 	if strings.Count(t, "(") > strings.Count(t, ")") || strings.Count(t, "[") > strings.Count(t, "]") {
 		return true
 	}
-	for _, end := range []string{" to", "±", ",", "–", "-", "−", ";", " ="} {
+	for _, end := range []string{" to", "±", ",", "–", "-", "−", ";", "=", "+", "<", ">"} {
 		if strings.HasSuffix(t, end) && t != end {
 			return true
 		}
@@ -273,13 +302,6 @@ func (rd *reader) nearlyFull(p *piece) bool {
 		return true
 	}
 	return p.x1 > rd.cs[0].x0-5*rd.em
-}
-
-// groupAbove reports whether two label lines in a row are a group and a
-// subgroup rather than one label: both begin with a capital and the next line
-// is set further in.
-func (rd *reader) groupAbove(up, stub *piece, i int) bool {
-	return rd.indentedMore(stub, up) && !startsLow(stub.text)
 }
 
 func (rd *reader) indentedMore(p, than *piece) bool {

@@ -28,6 +28,7 @@ func (rd *reader) write(t *paper.Table, w *writer) {
 		rd.writeRow(&g, t.HeadRows+k, lines)
 	}
 	t.Rows = t.HeadRows + len(rows)
+	rd.spanStubs(&g, t.HeadRows, t.Rows)
 	slices.SortStableFunc(g.cells, func(a, b gridCell) int {
 		if a.Row != b.Row {
 			return a.Row - b.Row
@@ -125,6 +126,31 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 			c.ColSpan = 1
 		}
 		g.put(c, p.toks)
+	}
+}
+
+// spanStubs lets a row heading reach down over the rows that have none, where
+// the next column holds row headings too.
+func (rd *reader) spanStubs(g *cellGrid, from, to int) {
+	if len(rd.cs) < 2 || !rd.labels(1) {
+		return
+	}
+	cur := -1
+	for row := from; row < to; row++ {
+		if k, ok := g.at[[2]int{row, 0}]; ok {
+			cur = k
+			if _, beside := g.at[[2]int{row, 1}]; !beside {
+				cur = -1 // a row group of its own
+			}
+			continue
+		}
+		if _, beside := g.at[[2]int{row, 1}]; !beside {
+			cur = -1
+		}
+		if cur >= 0 {
+			g.cells[cur].RowSpan = row - g.cells[cur].Row + 1
+			g.at[[2]int{row, 0}] = cur
+		}
 	}
 }
 
