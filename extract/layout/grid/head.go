@@ -177,8 +177,8 @@ func (rd *reader) sidesAt(x int, ln *line) (x0, x1 int, ok bool) {
 	x0, x1 = -1<<30, 1<<30
 	y := ln.base - ln.size/3
 	n := 0
-	for _, u := range rd.s.uprights {
-		if u.top > y || u.bot < y || u.x1 < rd.area.x0-rd.em || u.x0 > rd.area.x1+rd.em {
+	for _, u := range rd.uprights {
+		if u.top > y || u.bot < y {
 			continue
 		}
 		n++
@@ -356,7 +356,7 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 	}
 	q, own := st.under[c], st.under[p.c0]
 	again := repeated(st.next, q.text)
-	if isTestHead(q.text) && !again || st.wrapped && !again {
+	if st.left && isTestHead(q.text) && !again || st.wrapped && !again {
 		return false
 	}
 	return own == nil || isSize(own.text) == isSize(q.text)

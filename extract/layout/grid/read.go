@@ -16,9 +16,14 @@ type reader struct {
 	cells [][]piece // by line
 	rules []rule    // across, inside the body
 	head  int       // lines of the heading
+
+	uprights []box // inside the body
 }
 
-const maxBody = 8000 // words of one region's grid; more is no table
+const (
+	maxBody     = 8000 // words of one region's grid; more is no table
+	maxUprights = 2000 // upright rules of one table looked at
+)
 
 // Read reads the grid of a region. page is the 1-based number for places.
 func (r *Region) Read(page int) paper.Table {
@@ -55,12 +60,18 @@ func newReader(s *sheet, body box) *reader {
 	}
 	rd.em = max(commonest(sizes)*10, 10)
 	rd.rules = rulesIn(s.rules, box{body.x0, body.top - rd.em, body.x1, body.bot + rd.em})
+	for _, u := range s.uprights {
+		if u.top < body.bot && body.top < u.bot && u.x1 > body.x0-rd.em && u.x0 < body.x1+rd.em && len(rd.uprights) < maxUprights {
+			rd.uprights = append(rd.uprights, u)
+		}
+	}
 	rd.head = rd.headLines()
 	rd.cs = s.findColumns(rd.lines[rd.head:], rd.em)
 	rd.cells = make([][]piece, len(rd.lines))
 	for i := range rd.lines {
 		rd.cells[i] = s.pieces(&rd.lines[i], i, rd.cs, rd.em, i < rd.head)
 	}
+	rd.boxed()
 	return rd
 }
 
@@ -195,16 +206,14 @@ func (rd *reader) headLines() int {
 		}
 	}
 	ruled := len(full)*2 > n && len(full) > 3
-	if len(full) > 0 && full[0] > data && full[0] <= 8 && rd.fewFigures(full[0]) {
-		return full[0]
-	}
-	if len(full) > 0 && !ruled && full[0] <= data {
+	if len(full) > 0 && (full[0] > data && full[0] <= 8 && rd.fewFigures(full[0]) || !ruled && full[0] <= data) {
 		// Rules: the head ends at the last rule above the data that has column heads above it.
 		end := full[0]
 		for _, f := range full[1:] {
-			if f <= data && f-end <= 4 && data < n && !rd.allSingle(end, f) {
-				end = f
+			if f-end > 4 || data == n || rd.anyDataIn(end, f) || rd.allSingle(end, f) {
+				break
 			}
+			end = f
 		}
 		return end
 	}
@@ -226,6 +235,16 @@ func (rd *reader) headLines() int {
 		return data
 	}
 	return end
+}
+
+// anyDataIn reports whether one of the lines [i, j) holds data.
+func (rd *reader) anyDataIn(i, j int) bool {
+	for ; i < j; i++ {
+		if rd.isData(i) {
+			return true
+		}
+	}
+	return false
 }
 
 // allSingle reports whether lines [i, j) are row groups: one run each.
@@ -268,4 +287,26 @@ func (rd *reader) wordsBelow(i, n int, r *run) bool {
 		}
 	}
 	return false
+}
+
+// boxed gives the cells of the body that stand between upright rules all the
+// columns between these.
+func (rd *reader) boxed() {
+	if len(rd.uprights) == 0 {
+		return
+	}
+	boxes := rd.columnBoxes()
+	for i := rd.head; i < len(rd.lines); i++ {
+		for k := range rd.cells[i] {
+			p := &rd.cells[i][k]
+			x0, x1, ok := rd.sidesAt(p.run.mid(), &rd.lines[i])
+			if !ok {
+				continue
+			}
+			c0, c1, ok := within(boxes, x0, x1, p.c0, p.c1)
+			if ok && c0 <= p.c0 && p.c1 <= c1 && (k == 0 || rd.cells[i][k-1].c1 < c0) && (k+1 >= len(rd.cells[i]) || rd.cells[i][k+1].c0 > c1) {
+				p.c0, p.c1 = c0, c1
+			}
+		}
+	}
 }

@@ -28,7 +28,7 @@ func (rd *reader) write(t *paper.Table, w *writer) {
 		rd.writeRow(&g, t.HeadRows+k, lines)
 	}
 	t.Rows = t.HeadRows + len(rows)
-	rd.spanStubs(&g, t.HeadRows, t.Rows)
+	rd.spanStubs(&g, rows, t.HeadRows)
 	slices.SortStableFunc(g.cells, func(a, b gridCell) int {
 		if a.Row != b.Row {
 			return a.Row - b.Row
@@ -129,28 +129,79 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 	}
 }
 
-// spanStubs lets a row heading reach down over the rows that have none, where
-// the next column holds row headings too.
-func (rd *reader) spanStubs(g *cellGrid, from, to int) {
+// spanStubs lets a row heading reach over the rows that have none, where the
+// next column holds row headings too: down from its row or, where headings are
+// set in the middle of their rows, both ways.
+func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 	if len(rd.cs) < 2 || !rd.labels(1) {
 		return
 	}
-	cur := -1
-	for row := from; row < to; row++ {
-		if k, ok := g.at[[2]int{row, 0}]; ok {
-			cur = k
-			if _, beside := g.at[[2]int{row, 1}]; !beside {
-				cur = -1 // a row group of its own
-			}
+	var stubs, open []int // cells of the stub; rows without one
+	flush := func() {
+		if len(open) > 0 && len(stubs) > 0 {
+			rd.spanMiddle(g, stubs, open, rows, head)
+		}
+		stubs, open = nil, nil
+	}
+	for k := range rows {
+		_, beside := g.at[[2]int{head + k, 1}]
+		if !beside {
+			flush() // a row group of its own
 			continue
 		}
-		if _, beside := g.at[[2]int{row, 1}]; !beside {
-			cur = -1
+		if c, ok := g.at[[2]int{head + k, 0}]; ok {
+			stubs = append(stubs, c)
 		}
-		if cur >= 0 {
-			g.cells[cur].RowSpan = row - g.cells[cur].Row + 1
-			g.at[[2]int{row, 0}] = cur
+		open = append(open, k)
+	}
+	flush()
+}
+
+// spanMiddle shares the rows of one stretch among its row headings.
+func (rd *reader) spanMiddle(g *cellGrid, stubs, stretch []int, rows [][]int, head int) {
+	height := func(k int) int { // of the middle of a row, by its second column
+		for _, i := range rows[k] {
+			for _, p := range rd.cells[i] {
+				if p.c0 == 1 {
+					return rd.lines[i].base
+				}
+			}
 		}
+		return rd.lines[rows[k][0]].base
+	}
+	middle := g.cells[stubs[0]].Row > head+stretch[0]
+	from := stretch[0]
+	last := stretch[len(stretch)-1]
+	for n, c := range stubs {
+		cell := &g.cells[c]
+		own, next := cell.Row-head, last+1
+		if n+1 < len(stubs) {
+			next = g.cells[stubs[n+1]].Row - head
+		}
+		to := next - 1
+		if middle {
+			y := 0
+			for _, toks := range cell.toks {
+				y += rd.s.toks[toks[0]].base
+			}
+			y /= len(cell.toks)
+			best := 1 << 30
+			for e := own; e < next; e++ {
+				if d := abs((height(from)+height(e))/2 - y); d < best {
+					best, to = d, e
+				}
+			}
+			if n == len(stubs)-1 {
+				to = last
+			}
+		} else {
+			from = own
+		}
+		for k := from; k <= to; k++ {
+			g.at[[2]int{head + k, 0}] = c
+		}
+		cell.Row, cell.RowSpan = head+from, to-from+1
+		from = to + 1
 	}
 }
 
