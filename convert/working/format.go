@@ -32,3 +32,8 @@ func deserved(v float64, r convert.Range) string {
 	}
 	return strconv.FormatFloat(v, 'f', d, 64)
 }
+
+// percent writes a share in percent with two significant digits.
+func percent(share float64) string {
+	return strconv.FormatFloat(100*share, 'g', 2, 64)
+}

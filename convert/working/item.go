@@ -21,6 +21,7 @@ type item struct {
 	swapped bool          // the bounds are printed in descending order
 	flipped bool          // the interval holds the estimate with the other sign
 	margin  convert.Range // half-widths that the printed digits allow, raw scale
+	tied    bool          // symmetric only if all three numbers are rounded from the middle
 	lopside error         // why no symmetric interval prints like this, nil when one does
 }
 
@@ -109,9 +110,11 @@ func (it *item) settleMargin() {
 	}
 	// Where all three numbers would have to sit on rounding ties, the estimate
 	// says nothing about the width: the set would shrink to a point.
-	if narrow.High-narrow.Low > 1e-6*est.Half {
-		it.margin = narrow
+	if narrow.High-narrow.Low <= 1e-6*est.Half {
+		it.tied = true
+		return
 	}
+	it.margin = narrow
 }
 
 func outside(est, low, high convert.Printed) bool {
@@ -171,8 +174,8 @@ func (it *item) method(name string) {
 
 // finish rates the reading and writes out the flags and where each number that
 // went in was read.
-func (it *item) finish() {
-	it.rec().Reading = rate(it)
+func (it *item) finish(effects map[string]Effect) {
+	it.rec().Reading = rate(it, effects)
 	it.rec().Flags = make([]string, 0, len(it.w.Flags))
 	for _, f := range it.w.Flags {
 		it.rec().Flags = append(it.rec().Flags, f.Name)

@@ -128,59 +128,66 @@ func meanFromInterval(it *item) {
 	case it.lopside != nil:
 		it.explainLopside()
 		it.withhold(it.lopsideReason())
-		return
 	case width <= 0:
 		it.raise("spread-not-positive", "the interval has no width")
 		it.withhold("the interval has no width")
-		return
+	case reason != "":
+		// By t with n-1 the interval of a model would give neither SE nor SD: the
+		// interval itself stays in the record.
+		it.withhold(reason)
 	case level == 0:
 		it.withhold("the level of the interval is not printed")
 		it.offerLevels(width, n)
-		return
+	case n == 1:
+		it.withhold("n is 1: no SD from a single value")
+	case n == 0:
+		it.seByNormal(width)
+	default:
+		it.sdByT(width)
 	}
-	it.stepMargin(width)
-	z, err := convert.TwoSided(level, convert.Normal)
+}
+
+// seByNormal gives the SE where n is not known.
+func (it *item) seByNormal(width float64) {
+	it.withhold("n is not printed: SE only, by the normal value")
+	z, err := convert.TwoSided(it.res.Level, convert.Normal)
 	if err != nil {
 		it.withhold(err.Error())
 		return
 	}
-	if n < 2 {
-		it.rec().SE, it.rec().Scale = number(width/z), text("raw")
-		it.step("SE = margin/z = %s/%s = %s, by the normal value since n is not known", short(width), short(z), short(width/z))
-		switch {
-		case reason != "":
-			it.withhold(reason)
-		case n == 1:
-			it.withhold("n is 1: no SD from a single value")
-		default:
-			it.withhold("n is not printed: SE only, by the normal value")
-		}
-		return
-	}
+	it.stepMargin(width)
+	it.step("SE = margin/z = %s/%s = %s, by the normal value since n is not known", short(width), short(z), short(width/z))
+	it.rec().SE, it.rec().Scale = number(width/z), text("raw")
+	it.method("se-from-ci")
+}
+
+// sdByT gives SE and SD by t with n-1 degrees of freedom, the value by z beside.
+func (it *item) sdByT(width float64) {
+	n, level := it.res.N, it.res.Level
 	t, err := convert.TwoSided(level, float64(n-1))
 	if err != nil {
 		it.withhold(err.Error())
 		return
 	}
-	it.step("t for %s%% with n − 1 = %d degrees of freedom = %s", short(level), n-1, short(t))
-	it.step("SE = margin/t = %s/%s = %s", short(width), short(t), short(width/t))
-	if reason != "" {
-		// The SE of a model is not known by t with n-1; z is the usual guess and
-		// would be a guess: the interval itself stays in the record.
-		it.w.Trail.Steps = nil
-		it.withhold(reason)
+	z, err := convert.TwoSided(level, convert.Normal)
+	if err != nil {
+		it.withhold(err.Error())
 		return
 	}
-	it.rec().SE, it.rec().Scale = number(width/t), text("raw")
 	root := math.Sqrt(float64(n))
-	it.step("SD = SE·√n = %s·√%d = %s", short(width/t), n, short(root*width/t))
-	it.give(root*width/t, it.margin.Times(root/t), "sd-from-ci")
-	it.rec().SDNormal = number(root * width / z)
-	it.offer(Alternative{Name: "normal value (z) in place of t", Mean: it.rec().Mean, SD: number(root * width / z), SE: number(width / z),
-		Low: down(it.margin.Low * root / z), High: up(it.margin.High * root / z), Note: fmt.Sprintf("larger or smaller by %s%%", short(100*(z/t-1)))})
+	sd, byZ := root*width/t, root*width/z
+	it.stepMargin(width)
+	it.step("t for %s%% with n − 1 = %d degrees of freedom = %s", short(level), n-1, short(t))
+	it.step("SE = margin/t = %s/%s = %s", short(width), short(t), short(width/t))
+	it.step("SD = SE·√n = %s·√%d = %s", short(width/t), n, short(sd))
+	it.rec().SE, it.rec().Scale = number(width/t), text("raw")
+	it.give(sd, it.margin.Times(root/t), "sd-from-ci")
+	it.rec().SDNormal = number(byZ)
+	it.offer(Alternative{Name: "normal value (z) in place of t", Mean: it.rec().Mean, SD: number(byZ), SE: number(width / z),
+		Low: down(it.margin.Low * root / z), High: up(it.margin.High * root / z), Note: fmt.Sprintf("larger by %s%%", percent(t/z-1))})
 	it.assume(fmt.Sprintf("raw mean of %d independent values, interval made as mean ± t·SE", n))
 	if t/z-1 > 0.01 {
-		it.raise("t-or-z", fmt.Sprintf("by z the SD would be %s, by t it is %s", short(root*width/z), short(root*width/t)))
+		it.raise("t-or-z", fmt.Sprintf("by z the SD would be %s, by t it is %s", short(byZ), short(sd)))
 	}
 }
 

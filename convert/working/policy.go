@@ -107,6 +107,26 @@ func obstacles() []obstacle {
 		{"one-sided", "a one-sided limit: half its distance is not a margin", design("one-sided")},
 		{"back-transformed", "a back-transformed mean: its interval belongs to another scale", design("back-transformed")},
 		{"log-scale", "analysed on the log scale: its interval belongs to that scale", design("log-scale")},
+		{"model-stated", "an analysis by a model is stated with the result", func(it *item) (string, bool) {
+			for _, t := range it.res.Evidence.Tests {
+				if t == "ancova" || t == "mixed model" {
+					return t, true
+				}
+			}
+			return "", false
+		}},
+		{"statistic-assumed", "that the estimate is a mean is not said", func(it *item) (string, bool) {
+			return "taken from the kind of spread", it.res.GivenAs == result.CI && it.has("statistic-assumed")
+		}},
+		{"n-total", "the n may be that of several arms together", func(it *item) (string, bool) {
+			return "", it.has("n-total")
+		}},
+		{"spread-conflict", "table and methods name different spreads", func(it *item) (string, bool) {
+			return "", it.has("spread-conflict")
+		}},
+		{"spread-ambiguous", "one statement names more than one spread for this form", func(it *item) (string, bool) {
+			return "", it.has("spread-ambiguous")
+		}},
 		{"adjusted-unclear", "the paper leaves open whether the mean is adjusted or comes from a model", func(it *item) (string, bool) {
 			return "neither said nor ruled out", it.res.Adjusted == "unclear"
 		}},

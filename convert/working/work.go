@@ -37,13 +37,15 @@ func Work(doc Facts, results []result.Result) []Working {
 		}
 	}
 	for _, it := range items {
-		examine(it)
+		run(checksOfReading(), it)
 		applyPolicy(it)
 	}
 	compare(items)
+	effects := effectOf(Flags())
 	out := make([]Working, len(items))
 	for i, it := range items {
-		it.finish()
+		run(checksOfWorking(), it)
+		it.finish(effects)
 		out[i] = *it.w
 	}
 	return out

@@ -1,0 +1,227 @@
+package working
+
+import (
+	"fmt"
+	"math"
+
+	"halfspan/convert"
+	"halfspan/extract/result"
+)
+
+// compare raises the flags that results of one paper give cause for together.
+func compare(items []*item) {
+	for _, it := range items {
+		for _, m := range it.mates {
+			compareMates(it, m)
+		}
+		testedLevel(it)
+		testedDF(it)
+	}
+	for _, row := range rowsOf(items) {
+		supportReading(row)
+		for i, a := range row {
+			for _, b := range row[i+1:] {
+				compareSpreads(a, b)
+			}
+		}
+	}
+	repeats(items)
+}
+
+// rowsOf gathers the results of one table row, in order.
+func rowsOf(items []*item) [][]*item {
+	var rows [][]*item
+	at := map[string]int{}
+	for _, it := range items {
+		if it.res.Row == "" {
+			continue
+		}
+		i, ok := at[it.res.Row]
+		if !ok {
+			i = len(rows)
+			at[it.res.Row] = i
+			rows = append(rows, nil)
+		}
+		rows[i] = append(rows[i], it)
+	}
+	return rows
+}
+
+// compareMates compares two spreads of one estimate: it settles t or z where it
+// can, and flags what does not agree.
+func compareMates(it, m *item) {
+	if it.val == nil && !it.interval() || m.val == nil || m.val.Low() <= 0 {
+		return
+	}
+	switch {
+	case it.res.GivenAs == result.CI && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SE:
+		settleTorZ(it, convert.Range{Low: m.val.Low(), High: m.val.High()}, "SE "+m.res.GivenValue)
+	case it.res.GivenAs == result.CI && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SD && it.res.N > 1 && isMean(it):
+		root := math.Sqrt(float64(it.res.N))
+		settleTorZ(it, convert.Range{Low: m.val.Low() / root, High: m.val.High() / root}, "SD "+m.res.GivenValue)
+	case it.res.GivenAs == result.SE && m.res.GivenAs == result.SD && it.val != nil && it.val.Low() > 0 && it.res.N > 1 && isMean(it):
+		n, err := convert.NFromSDAndSE(*m.val, *it.val)
+		if err == nil && !n.Meets(convert.Range{Low: float64(it.res.N), High: float64(it.res.N)}) {
+			detail := fmt.Sprintf("SD %s and SE %s belong to n from %.0f to %.0f, not to %d", m.res.GivenValue, it.res.GivenValue, math.Ceil(n.Low), math.Floor(n.High), it.res.N)
+			it.raise("mates-disagree", detail)
+			m.raise("mates-disagree", detail)
+		}
+	}
+}
+
+func isMean(it *item) bool {
+	return it.res.Statistic == result.Mean || it.res.Statistic == result.MeanChange
+}
+
+// settleTorZ compares margin/SE with t and with z. Where only z fits, the SD is
+// the one by z; where neither fits, the two spreads disagree.
+func settleTorZ(it *item, se convert.Range, printed string) {
+	z, err := convert.TwoSided(it.res.Level, convert.Normal)
+	if err != nil {
+		return
+	}
+	factor := convert.Range{Low: it.margin.Low / se.High, High: it.margin.High / se.Low}
+	t := z
+	if it.res.N > 1 && isMean(it) {
+		if t, err = convert.TwoSided(it.res.Level, float64(it.res.N-1)); err != nil {
+			return
+		}
+	}
+	byT, byZ := factor.Holds(t), factor.Holds(z)
+	switch {
+	case byT && !byZ:
+		it.settled(false, printed)
+	case byZ && !byT:
+		it.settled(true, printed)
+	case !byT && !byZ && (it.res.N > 1 || factor.High < z):
+		it.raise("mates-disagree", fmt.Sprintf("the interval and %s would need a factor from %s to %s; t is %s, z is %s", printed, short(factor.Low), short(factor.High), short(t), short(z)))
+	}
+}
+
+// settled records that a spread printed beside shows how the interval was made.
+func (it *item) settled(byZ bool, printed string) {
+	for i, f := range it.w.Flags {
+		if f.Name == "t-or-z" {
+			it.w.Flags = append(it.w.Flags[:i:i], it.w.Flags[i+1:]...)
+			break
+		}
+	}
+	if !byZ {
+		it.note("%s beside it shows that the interval was made with t", printed)
+		return
+	}
+	it.note("%s beside it shows that the interval was made with z: the SD by z is taken", printed)
+	rec := it.rec()
+	if rec.Use != useConverted || rec.SDNormal == nil || *it.rec().Method != "sd-from-ci" {
+		return
+	}
+	t, z := *rec.SD, *rec.SDNormal
+	ratio := float64(z) / float64(t)
+	rec.SD, rec.SDNormal = number(float64(z)), nil
+	rec.SDLow, rec.SDHigh = down(float64(*rec.SDLow)*ratio), up(float64(*rec.SDHigh)*ratio)
+	rec.SE = number(float64(z) / math.Sqrt(float64(it.res.N)))
+	it.method("sd-from-ci-normal")
+	it.step("by z in place of t: SD = %s", short(float64(z)))
+}
+
+// compareSpreads looks at two arms or times of one table row: a ratio of their
+// spreads near √n says that one of them is an SE printed as an SD, or the reverse.
+func compareSpreads(a, b *item) {
+	kind := a.res.GivenAs
+	if kind != b.res.GivenAs || kind != result.SD && kind != result.SE || !isMean(a) || !isMean(b) || a.res.Statistic != b.res.Statistic ||
+		a.res.Outcome != b.res.Outcome || a.val == nil || b.val == nil || a.val.Value <= 0 || b.val.Value <= 0 || a.res.N < 2 || b.res.N < 2 {
+		return
+	}
+	ratio, err := convert.SEAsSD(a.val.Value, a.res.N, b.val.Value, b.res.N)
+	if err != nil || ratio <= 3 {
+		return
+	}
+	small, large := a, b
+	if a.val.Value > b.val.Value {
+		small, large = b, a
+	}
+	detail := fmt.Sprintf("%s beside %s in one row differ by about √n", small.res.GivenValue, large.res.GivenValue)
+	if kind == result.SD {
+		small.raise("se-as-sd", detail)
+		return
+	}
+	large.raise("sd-as-se", detail)
+}
+
+// testedLevel compares the interval of a difference with its p value.
+func testedLevel(it *item) {
+	if it.res.GivenAs != result.CI || it.res.Statistic != result.MeanDifference || it.res.Level == 0 || it.lopside != nil ||
+		it.est == nil || it.flipped || it.res.P == "" || it.margin.High <= 0 {
+		return
+	}
+	p, err := convert.ReadP(it.res.P)
+	if err != nil || !p.Exact {
+		return
+	}
+	df := convert.Normal
+	if it.res.N > 1 && it.res.N2 > 1 {
+		df = float64(it.res.N + it.res.N2 - 2)
+	}
+	levels, err := convert.ImpliedLevel(*it.est, it.margin, p, df)
+	if err != nil {
+		return
+	}
+	// Welch's degrees of freedom, a covariate or a rank test move the p value a
+	// little: only a gross difference says that something was misread.
+	if it.res.Level < levels.Low-3 || it.res.Level > levels.High+3 {
+		it.raise("p-disagrees", fmt.Sprintf("p %s with this interval belongs to a level of %.0f to %.0f%%, not %s%%", it.res.P, levels.Low, levels.High, short(it.res.Level)))
+	}
+}
+
+// testedDF compares a printed t with its p value and degrees of freedom.
+func testedDF(it *item) {
+	t, df := read(it.res.T), read(it.res.DF)
+	if t == nil || df == nil || it.res.P == "" || df.Value < 1 {
+		return
+	}
+	p, err := convert.ReadP(it.res.P)
+	if err != nil || !p.Exact {
+		return
+	}
+	size := math.Abs(t.Value)
+	least, err1 := convert.TTail(size+t.Half, df.High())
+	greatest, err2 := convert.TTail(math.Max(size-t.Half, 0), math.Max(df.Low(), 0.5))
+	if err1 != nil || err2 != nil || p.Range.Meets(convert.Range{Low: 2 * least, High: 2 * greatest}) || p.Range.Meets(convert.Range{Low: least, High: greatest}) {
+		return
+	}
+	it.raise("t-and-p-disagree", fmt.Sprintf("t %s with %s degrees of freedom gives p from %s to %s, printed is %s", it.res.T, it.res.DF, short(2*least), short(2*greatest), it.res.P))
+}
+
+// repeats flags results of one table that print the same estimate and spread, to
+// at least five digits together, for different arms, times or outcomes.
+func repeats(items []*item) {
+	type key struct{ table, estimate, lower, upper, value string }
+	first := map[key]*item{}
+	for _, it := range items {
+		if it.res.Table == "" || digits(it.res.Estimate)+digits(it.res.Lower)+digits(it.res.GivenValue) < 5 {
+			continue
+		}
+		k := key{it.res.Table, it.res.Estimate, it.res.Lower, it.res.Upper, it.res.GivenValue}
+		before, ok := first[k]
+		if !ok {
+			first[k] = it
+			continue
+		}
+		if before.res.Arm == it.res.Arm && before.res.Time == it.res.Time && before.res.Outcome == it.res.Outcome {
+			continue
+		}
+		detail := fmt.Sprintf("%s with the same spread stands twice in %s", it.res.Estimate, it.res.Table)
+		it.raise("repeated-values", detail)
+		before.raise("repeated-values", detail)
+	}
+}
+
+func digits(s string) int {
+	n := 0
+	for i := 0; i < len(s); i++ {
+		if s[i] >= '0' && s[i] <= '9' {
+			n++
+		}
+	}
+	return n
+}
