@@ -1,13 +1,17 @@
 package extract
 
 import (
-	"bytes"
+	"cmp"
+	"crypto/sha256"
+	"encoding/hex"
 	"fmt"
 
 	"halfspan/extract/bind/prose"
 	"halfspan/extract/bind/table"
 	"halfspan/extract/jats"
+	"halfspan/extract/layout"
 	"halfspan/extract/paper"
+	"halfspan/extract/pdf"
 	"halfspan/extract/plain"
 	"halfspan/extract/result"
 )
@@ -25,18 +29,33 @@ type Options struct {
 // what to do; what could be read in part comes back with Document.Problems.
 func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 	switch {
-	case isPDF(content):
-		return nil, fmt.Errorf("%s: no reader for this kind of file", path)
+	case pdf.IsPDF(content):
+		return readPDF(path, content, opt)
 	case jats.Is(content):
 		return jats.Read(path, content)
 	}
 	return plain.Read(path, content)
 }
 
-// isPDF looks for the header of a PDF, which may stand behind other bytes.
-func isPDF(content []byte) bool {
-	const look = 1024
-	return bytes.Contains(content[:min(len(content), look)], []byte("%PDF-"))
+// readPDF reads the glyphs of a PDF and lays them out.
+func readPDF(path string, content []byte, opt Options) (*paper.Document, error) {
+	glyphs, err := pdf.Read(content, pdf.Options{OCR: opt.OCR, Progress: opt.Progress, Preparing: opt.Preparing})
+	if err != nil {
+		return nil, fmt.Errorf("%s: %w", path, err)
+	}
+	arranged := layout.Arrange(glyphs.Pages)
+	sum := sha256.Sum256(content)
+	doc := &paper.Document{
+		Path: path, SHA256: hex.EncodeToString(sum[:]), Format: paper.PDF, Title: cmp.Or(arranged.Title, glyphs.Title),
+		Blocks: arranged.Blocks, Problems: glyphs.Problems,
+	}
+	for i := range glyphs.Pages {
+		doc.Pages = append(doc.Pages, glyphs.Pages[i].Page)
+	}
+	for i := range arranged.Pages {
+		doc.Printed = append(doc.Printed, arranged.Pages[i].Text())
+	}
+	return doc, nil
 }
 
 // Find gives every result that is printed in the document, in reading order.

@@ -157,9 +157,16 @@ func showText(j *job, doc *paper.Document) (any, error) {
 	return made, err
 }
 
-// blockText writes the blocks of a document one below the other, a table as
+// blockText writes the pages as they are printed or, for a paper without pages,
+// the blocks of a document one below the other, a table as
 // lines of cells with tabs between them, and a form feed where a page begins.
 func blockText(doc *paper.Document, only int) string {
+	if len(doc.Printed) > 0 {
+		if only > 0 {
+			return doc.Printed[only-1]
+		}
+		return strings.Join(doc.Printed, "\f")
+	}
 	var b strings.Builder
 	page := 1
 	for i := range doc.Blocks {

@@ -20,6 +20,7 @@ type Document struct {
 	Blocks   []Block   // the whole paper in reading order
 	Problems []Problem // what could not be read, or not surely
 	Doubts   []Doubt   // places whose reading is not beyond doubt, by page
+	Printed  []string  // the text of each page, one line for each printed line, running heads and all; empty where there are no pages
 }
 
 // Page is one page of a paginated paper.
