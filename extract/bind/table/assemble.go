@@ -206,7 +206,7 @@ func (a *assembly) accepts(e *estimate, sp spread) bool {
 		statistic = statistic || len(e.spreads) == 0
 	}
 	if sp.shape == shapeInterval {
-		if len(e.spreads) > 0 && !statistic {
+		if len(e.spreads) > 0 && !statistic || sp.own.kind == roleNone && !a.announced(sp) {
 			return false
 		}
 		return statistic || holds(sp.lower, sp.upper, e.value)
@@ -215,6 +215,24 @@ func (a *assembly) accepts(e *estimate, sp spread) bool {
 		return false
 	}
 	return statistic || len(e.spreads) == 0 || sp.own.kind == roleBound
+}
+
+// announced reports that a heading over the interval, or its row label, speaks
+// of intervals: position alone joins nothing.
+func (a *assembly) announced(sp spread) bool {
+	if sp.item.Spread != "" {
+		return true
+	}
+	f := a.f
+	ls := append(append([]label{}, f.path(sp.row, sp.col)...), f.lines[sp.row].labels...)
+	for _, l := range ls {
+		p := readPhrase(l.text)
+		r := role{pairs: p.pairs}
+		if r.wantsInterval() {
+			return true
+		}
+	}
+	return false
 }
 
 // holds reports that the bounds hold the estimate, whichever stands first.

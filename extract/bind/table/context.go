@@ -3,6 +3,7 @@ package table
 import (
 	"fmt"
 	"regexp"
+	"strconv"
 	"strings"
 
 	"halfspan/extract/paper"
@@ -150,7 +151,7 @@ func isContrast(low string) bool { return contrastWord.MatchString(low) }
 // isArm reports that the folded name is an arm by its words or because a table
 // of the paper gives it an n.
 func (f *frame) isArm(low string) bool {
-	if f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
+	if f.rowArms[low] || f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
 		return true
 	}
 	return armWord.MatchString(low) && len(words(low)) <= 6 && !strings.Contains(low, "(") && !outcomeWord.MatchString(low)
@@ -188,11 +189,80 @@ func (f *frame) findAxes() {
 			}
 		}
 	}
+	if !colArm && 2*arms < rows {
+		arms = f.repeatedLabels()
+	}
 	f.armRows = rows > 0 && (2*arms >= rows || stubArm && !colArm)
 	if colArm && f.armRows && 10*arms < 8*rows {
 		f.armRows = false
 	}
 	f.colArms = !f.armRows && (colArm || f.namedColumns() >= 2)
+}
+
+// repeatedLabels finds arms by repetition: the same few names in every block,
+// that are no times, statistics or categories. It returns the rows they label.
+func (f *frame) repeatedLabels() int {
+	blocks := map[string]map[string]bool{}
+	rows := map[string]int{}
+	var order []string
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind != lineData || len(ln.labels) == 0 {
+			continue
+		}
+		outer := ""
+		if len(ln.labels) > 1 {
+			outer = ln.labels[0].text
+		} else if len(ln.groups) > 0 {
+			outer = strconv.Itoa(ln.groups[len(ln.groups)-1])
+		} else {
+			continue
+		}
+		l := ln.labels[len(ln.labels)-1]
+		p := f.partOf(l)
+		low := fold(p.name)
+		if p.kind == partTime || p.kind == partEmpty || p.kind == partContrast || subgroupName.MatchString(low) || f.rowRole(r).kind != roleNone || unitIn(l.text) != "" {
+			continue
+		}
+		if blocks[low] == nil {
+			blocks[low] = map[string]bool{}
+			order = append(order, low)
+		}
+		blocks[low][outer] = true
+		rows[low]++
+	}
+	n := 0
+	var names []string
+	for _, name := range order {
+		if len(blocks[name]) >= 2 {
+			n += rows[name]
+			names = append(names, name)
+		}
+	}
+	if len(names) < 2 || len(names) > 8 || f.outerArms() {
+		return 0
+	}
+	f.rowArms = map[string]bool{}
+	for _, name := range names {
+		f.rowArms[name] = true
+	}
+	return n
+}
+
+// outerArms reports that the group labels name arms, so that the rows under
+// them do not.
+func (f *frame) outerArms() bool {
+	arms, all := 0, 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind == lineGroup && len(ln.labels) > 0 {
+			all++
+			if f.isArm(fold(nameOf(ln.labels[0].text))) {
+				arms++
+			}
+		}
+	}
+	return all > 0 && 2*arms >= all
 }
 
 // namesArm reports that the innermost label of row r names an arm: by its words,

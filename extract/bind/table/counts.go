@@ -2,6 +2,7 @@ package table
 
 import (
 	"math"
+	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
@@ -11,17 +12,21 @@ import (
 type countGrade uint8
 
 const (
-	countNever    countGrade = iota // a is no whole number, or b no percentage
-	countUnlikely                   // whole, but 100·a/n is not b where n is known
-	countOpen                       // nothing speaks for or against
-	countLikely                     // b = 100·a/n within 1 in the whole row
-	countSure                       // printed with a percent sign or a denominator
+	countNever      countGrade = iota // a is no whole number, or b no percentage
+	countImpossible                   // a is a larger share of n than b says
+	countUnlikely                     // whole, but 100·a/n is not b where n is known
+	countOpen                         // nothing speaks for or against
+	countLikely                       // b = 100·a/n within 1 in the whole row
+	countSure                         // printed with a percent sign or a denominator
 )
 
 // countEvidence weighs by arithmetic whether the row of an "a (b)" cell holds
 // counts with percentages: b = 100·a/n within 1 (measured: holds for 88% of
 // them where n stands in the heading, and hardly ever for a mean and its SD).
 func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
+	if sp.shape == shapeInterval && sp.lower.Value != "" && !strings.ContainsAny(sp.lower.Value+sp.upper.Value, ".") && sp.item.Sep == "," && f.percentWithCount(e) {
+		return countSure // a thousands comma: 39.4 (10,369)
+	}
 	if sp.shape != shapeBracket {
 		return countNever
 	}
@@ -34,12 +39,36 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	if e.value.Percent && !sp.value.Percent && isWhole(sp.value.Value) && f.headsCount(e) {
 		return countSure // 27% (12)
 	}
+	if f.percentWithCount(e) {
+		return countSure
+	}
 	if g, ok := f.counts[e.row]; ok {
 		return g
 	}
 	g := f.rowEvidence(e.row)
 	f.counts[e.row] = g
 	return g
+}
+
+var percentThenN = regexp.MustCompile(`(?i)(?:%|\bper ?cent(?:age)?)[^(\[]{0,20}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|\bn\s*[(\[]\s*rate\b`)
+
+// percentWithCount reports a heading, label, caption or note that announces a
+// percentage with its count in brackets: "% (n)".
+func (f *frame) percentWithCount(e *estimate) bool {
+	for _, l := range append(append([]label{}, f.path(e.row, e.col)...), f.lines[e.row].labels...) {
+		if percentThenN.MatchString(l.text) {
+			return true
+		}
+	}
+	ln := &f.lines[e.row]
+	for _, g := range ln.groups {
+		for _, l := range f.lines[g].labels {
+			if percentThenN.MatchString(l.text) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // headsCount reports a heading or label that announces numbers of subjects.
@@ -100,7 +129,7 @@ func (f *frame) rowEvidence(r int) countGrade {
 		// a smaller one.
 		for _, p := range cells {
 			if p.n > 0 && p.b < 100*p.a/float64(p.n)-1 {
-				return countUnlikely
+				return countImpossible
 			}
 		}
 		if f.sameDenominator(cells) {

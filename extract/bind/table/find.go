@@ -145,7 +145,8 @@ func (f *frame) rowKey(e *estimate) string {
 // settleSpread fills in the spread; false where it is none after all.
 func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *spread, rd *reading, all []statement, x *context) bool {
 	if rd.given == result.Unstated && !rd.contrary {
-		b.fromPaper(r, sp, rd)
+		st, _, _ := nearStatistic(all, rankNote)
+		b.fromPaper(r, sp, rd, string(st))
 	}
 	r.GivenAs = rd.given
 	r.Level = 0
@@ -206,7 +207,7 @@ func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *sprea
 }
 
 // fromPaper asks the paper's declared conventions.
-func (b *binder) fromPaper(r *result.Result, sp *spread, rd *reading) {
+func (b *binder) fromPaper(r *result.Result, sp *spread, rd *reading, near string) {
 	var a convention.Answer
 	var ok bool
 	switch sp.shape {
@@ -218,6 +219,14 @@ func (b *binder) fromPaper(r *result.Result, sp *spread, rd *reading) {
 		a, ok = b.conv.Bounds(convention.Tables, result.Mean)
 		if !ok {
 			a, ok = b.conv.Bounds(convention.Tables, result.Median)
+		}
+		if st := result.Statistic(near); st == result.Ratio || st == result.Coefficient || st == result.MeanDifference {
+			if a, ok = b.conv.Bounds(convention.Tables, st); !ok {
+				var lv float64
+				if lv, ok = b.conv.Level(); ok {
+					a = convention.Answer{Statement: convention.Statement{Spread: result.CI, Level: lv, Text: "intervals of the paper"}}
+				}
+			}
 		}
 	}
 	if !ok {

@@ -23,6 +23,7 @@ type frame struct {
 	counts  map[int]countGrade // by row, once weighed
 	armRows bool               // row labels name the arms
 	colArms bool               // column headings name the arms
+	rowArms map[string]bool    // row labels found to be arms by repetition
 	armList []string
 }
 

@@ -266,7 +266,7 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		isCount, strong := countStatement(s)
 		if isCount && sp.shape == shapeBracket {
 			switch {
-			case len(fits) == 0 && strong && counts == countUnlikely && s.rank <= rankGroup:
+			case len(fits) == 0 && strong && counts == countImpossible && s.rank <= rankGroup:
 				return reading{given: result.Unstated, contrary: true, at: *s}
 			case len(fits) == 0 && strong:
 				return reading{count: true}
@@ -291,7 +291,7 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		}
 		return rd
 	}
-	if sp.shape == shapeBracket && counts != countNever && counts != countUnlikely {
+	if sp.shape == shapeBracket && counts > countUnlikely {
 		return reading{count: true}
 	}
 	if rd, ok := f.habit(sp, hint); ok {

@@ -1,6 +1,7 @@
 package table
 
 import (
+	"regexp"
 	"strconv"
 	"strings"
 	"unicode"
@@ -49,7 +50,34 @@ func textOf(t *paper.TextRun) grammar.Text {
 // readPhrase reads a heading without marks.
 func readPhrase(s string) phrase { return parsePhrase(grammar.Text{S: s}) }
 
+// variants are spellings of the range and the quartiles that the grammar does
+// not know as one term; each is put in with spaces to the same length, so that
+// places stay right.
+var variants = []struct {
+	form *regexp.Regexp
+	as   string
+}{
+	{regexp.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
+	{regexp.MustCompile(`(?i)\bq1\s*(?:[-–—:;,/~]|to|and)\s*q3\b`), "IQR"},
+	{regexp.MustCompile(`(?i)\b(?:p|c)?25(?:th)?(?: ?%| percentile)?\s*(?:[-–—:;,/~]|to|and)\s*(?:p|c)?75(?:th)?(?: ?%| ?percentiles?| ?centiles?)`), "IQR"},
+	{regexp.MustCompile(`(?i)\b(?:lower|first|1st)\s*(?:[-–—:;,/~]|to|and)\s*(?:upper|third|3rd) quartiles?\b`), "IQR"},
+	{regexp.MustCompile(`(?i)\bquartile [1I]\s*(?:[-–—:;,/~]|to|and)\s*(?:quartile )?(?:3|III)\b`), "IQR"},
+}
+
+func normalise(s string) string {
+	for _, v := range variants {
+		s = v.form.ReplaceAllStringFunc(s, func(m string) string {
+			if len(m) < len(v.as) {
+				return m
+			}
+			return v.as + strings.Repeat(" ", len(m)-len(v.as))
+		})
+	}
+	return s
+}
+
 func parsePhrase(in grammar.Text) phrase {
+	in.S = normalise(in.S)
 	h := grammar.ParsePhrase(in)
 	p := phrase{ns: h.N, hasN: len(h.N) > 0}
 	last := ""

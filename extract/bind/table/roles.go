@@ -68,6 +68,8 @@ func kindOfPairs(p *phrase) roleKind {
 		}
 	}
 	switch {
+	case spr > 0 && p.pairs[0].Spread != "" && p.pairs[0].Statistic == "" && !p.pairs[0].Sign:
+		return roleSpread // "95% CI of the hazard ratio"
 	case both > 0:
 		return roleBoth
 	case spr > 0 && est == 0:
@@ -233,6 +235,7 @@ func partOfName(q grammar.Pair) bool {
 
 // stripTerms takes n = 42, statistics and levels out of a heading.
 func stripTerms(s string) string {
+	s = normalise(s)
 	s = nPhrase.ReplaceAllString(s, " ")
 	h := grammar.ParsePhrase(grammar.Text{S: s})
 	b := []byte(s)
