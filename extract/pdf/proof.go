@@ -112,12 +112,16 @@ func printable(s string) bool {
 	return true
 }
 
-// repairedPart puts our reader's repairs into the other reading of the same
-// page, and gives the doubts that go with them.
-func repairedPart(m *matching) {
+// lend gives the other reading of a page what only ours can know: signs read
+// against a lying font, and what is clipped away.
+func lend(m *matching) {
 	for i, j := range m.toB {
-		if j >= 0 && m.a[i].Repaired {
+		if j < 0 {
+			continue
+		}
+		if m.a[i].Repaired {
 			m.b[j].Text, m.b[j].Repaired = m.a[i].Text, true
 		}
+		m.b[j].Invisible = m.b[j].Invisible || m.a[i].Invisible
 	}
 }

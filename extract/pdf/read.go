@@ -162,7 +162,7 @@ func (r *reading) withoutEngine(n int, ours *glyphs.Page, err error) {
 // differ in a number the engine's stands, and every such number is a doubt.
 func (r *reading) compare(ours *glyphs.Page, theirs paper.GlyphPage) {
 	m := match(ours.Glyphs, theirs.Glyphs)
-	repairedPart(m)
+	lend(m)
 	r.proof.learn(m, ours.Marks)
 	differ := m.disputes()
 	n := theirs.Page.Number

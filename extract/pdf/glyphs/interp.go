@@ -5,6 +5,7 @@ import (
 
 	lib "github.com/ledongthuc/pdf"
 
+	"halfspan/extract/paper"
 	"halfspan/extract/pdf/geom"
 	"halfspan/extract/pdf/lines"
 )
@@ -23,7 +24,8 @@ type state struct {
 	font                    *Font
 	size, char, word, horiz float64 // horiz: horizontal scaling, 1 is plain
 	leading, rise           float64
-	mode                    int // text rendering mode
+	mode                    int       // text rendering mode
+	clip                    paper.Box // nothing shows outside it
 }
 
 // form is a form XObject, read once per paper.
@@ -31,6 +33,7 @@ type form struct {
 	content   []byte
 	resources *dict // nil: those of the page
 	matrix    geom.Matrix
+	box       *[4]float64 // what it shows, in its own space; nil: all
 	image     bool
 	short     bool
 }
@@ -49,7 +52,9 @@ type interpreter struct {
 
 	operands []operand
 	path     lines.Finder
-	pending  bool // the path has segments
+	pending  bool      // the path has segments
+	outline  paper.Box // around the path
+	clipping bool      // the path will narrow the clip
 	fontIdx  map[*Font]int32
 	actual   actualText
 	overlaid map[glyphKey]bool
@@ -58,7 +63,7 @@ type interpreter struct {
 
 func newInterpreter(d *Document, p *Page) *interpreter {
 	return &interpreter{
-		doc: d, page: p, state: state{ctm: geom.Identity, horiz: 1},
+		doc: d, page: p, state: state{ctm: geom.Identity, horiz: 1, clip: p.Page.Box},
 		text: geom.Identity, line: geom.Identity,
 		fontIdx: map[*Font]int32{}, overlaid: map[glyphKey]bool{},
 	}
@@ -191,34 +196,36 @@ func (in *interpreter) pathOperator(op []byte, args []operand, n []float64) {
 	switch string(op) {
 	case "m":
 		if nums(args, n[:2]) {
-			in.path.Move(in.ctm.Point(n[0], n[1]))
-			in.pending = true
+			in.path.Move(in.reach(n[0], n[1]))
 		}
 	case "l":
 		if nums(args, n[:2]) {
-			in.path.Line(in.ctm.Point(n[0], n[1]))
-			in.pending = true
+			in.path.Line(in.reach(n[0], n[1]))
 		}
 	case "c":
 		if nums(args, n[:6]) {
-			in.path.Curve(in.ctm.Point(n[4], n[5]))
+			in.reach(n[0], n[1])
+			in.reach(n[2], n[3])
+			in.path.Curve(in.reach(n[4], n[5]))
 		}
 	case "v", "y":
 		if nums(args, n[:4]) {
-			in.path.Curve(in.ctm.Point(n[2], n[3]))
+			in.reach(n[0], n[1])
+			in.path.Curve(in.reach(n[2], n[3]))
 		}
 	case "h":
 		in.path.Close()
 	case "re":
 		if nums(args, n[:4]) {
 			x, y, w, h := n[0], n[1], n[2], n[3]
-			in.path.Move(in.ctm.Point(x, y))
-			in.path.Line(in.ctm.Point(x+w, y))
-			in.path.Line(in.ctm.Point(x+w, y+h))
-			in.path.Line(in.ctm.Point(x, y+h))
+			in.path.Move(in.reach(x, y))
+			in.path.Line(in.reach(x+w, y))
+			in.path.Line(in.reach(x+w, y+h))
+			in.path.Line(in.reach(x, y+h))
 			in.path.Close()
-			in.pending = true
 		}
+	case "W", "W*":
+		in.clipping = true
 	case "S":
 		in.paint(false, true)
 	case "s":
@@ -236,16 +243,51 @@ func (in *interpreter) pathOperator(op []byte, args []operand, n []float64) {
 	}
 }
 
-// paint ends the path and keeps its lines.
-func (in *interpreter) paint(fill, stroke bool) {
+// reach transforms a point of the path and notes how far the path reaches.
+func (in *interpreter) reach(x, y float64) paper.Point {
+	p := in.ctm.Point(x, y)
 	if !in.pending {
-		return
+		in.outline = paper.Box{X0: p.X, Y0: p.Y, X1: p.X, Y1: p.Y}
 	}
-	if (fill || stroke) && len(in.page.Rules) < maxRules {
-		in.page.Rules = append(in.page.Rules, in.path.Rules(fill, stroke)...)
+	o := &in.outline
+	o.X0, o.Y0, o.X1, o.Y1 = min(o.X0, p.X), min(o.Y0, p.Y), max(o.X1, p.X), max(o.Y1, p.Y)
+	in.pending = true
+	return p
+}
+
+// paint ends the path and keeps its lines. A path that clips narrows the clip
+// to the box around it, which is never too narrow.
+func (in *interpreter) paint(fill, stroke bool) {
+	if in.clipping {
+		if !in.pending {
+			in.outline = paper.Box{}
+		}
+		in.clip = intersect(in.clip, in.outline)
+	}
+	if in.pending && (fill || stroke) && len(in.page.Rules) < maxRules {
+		for _, r := range in.path.Rules(fill, stroke) {
+			if in.shows(r) {
+				in.page.Rules = append(in.page.Rules, r)
+			}
+		}
 	}
 	in.path.Reset()
-	in.pending = false
+	in.pending, in.clipping = false, false
+}
+
+// intersect gives the common part of two boxes; where there is none a box
+// without area.
+func intersect(a, b paper.Box) paper.Box {
+	x0, y0 := max(a.X0, b.X0), max(a.Y0, b.Y0)
+	return paper.Box{X0: x0, Y0: y0, X1: max(x0, min(a.X1, b.X1)), Y1: max(y0, min(a.Y1, b.Y1))}
+}
+
+// shows reports whether the middle of b lies inside the clip, give or take a
+// point.
+func (in *interpreter) shows(b paper.Box) bool {
+	const slack = 100
+	x, y, c := b.X0+(b.X1-b.X0)/2, b.Y0+(b.Y1-b.Y0)/2, &in.clip
+	return x >= c.X0-slack && x <= c.X1+slack && y >= c.Y0-slack && y <= c.Y1+slack
 }
 
 // extState takes the font that a graphics state dictionary may set.
@@ -270,7 +312,9 @@ func (in *interpreter) xobject(name string) {
 		return
 	}
 	if f.image {
-		in.page.Images = append(in.page.Images, in.ctm.Box(0, 0, 1, 1))
+		if box := in.ctm.Box(0, 0, 1, 1); in.shows(box) {
+			in.page.Images = append(in.page.Images, box)
+		}
 		return
 	}
 	if in.depth >= maxForms {
@@ -280,6 +324,9 @@ func (in *interpreter) xobject(name string) {
 	outer, text, line, res := in.state, in.text, in.line, in.res
 	in.depth++
 	in.ctm = f.matrix.Mul(in.ctm)
+	if b := f.box; b != nil {
+		in.clip = intersect(in.clip, in.ctm.Box(b[0], b[1], b[2], b[3]))
+	}
 	if f.resources != nil {
 		res = f.resources
 	}
@@ -312,6 +359,9 @@ func (d *Document) form(xobj *dict, name string) *form {
 			for i := range f.matrix {
 				f.matrix[i] = m.Index(i).Float64()
 			}
+		}
+		if b := d.key(v, "BBox"); b.Len() == 4 {
+			f.box = &[4]float64{b.Index(0).Float64(), b.Index(1).Float64(), b.Index(2).Float64(), b.Index(3).Float64()}
 		}
 	}
 	d.forms[r] = f

@@ -155,6 +155,7 @@ func (in *interpreter) show(b []byte) {
 			out.Text, out.Repaired = g.text, g.repaired
 			out.Origin = paper.Point{X: geom.Hundredth(m[4]), Y: geom.Hundredth(m[5])}
 			out.Box = m.Box(0, geom.Descent*f.scale, g.width, geom.Ascent*f.scale)
+			out.Invisible = out.Invisible || !in.shows(out.Box)
 			p.Glyphs = append(p.Glyphs, out)
 			p.Marks = append(p.Marks, Mark{Font: f, Code: code})
 		}
