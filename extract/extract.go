@@ -51,6 +51,7 @@ func readPDF(path string, content []byte, opt Options) (*paper.Document, error) 
 	}
 	for i := range glyphs.Pages {
 		doc.Pages = append(doc.Pages, glyphs.Pages[i].Page)
+		doc.Doubts = append(doc.Doubts, glyphs.Pages[i].Doubts...)
 	}
 	for i := range arranged.Pages {
 		doc.Printed = append(doc.Printed, arranged.Pages[i].Text())
@@ -60,5 +61,7 @@ func readPDF(path string, content []byte, opt Options) (*paper.Document, error) 
 
 // Find gives every result that is printed in the document, in reading order.
 func Find(doc *paper.Document) []result.Result {
-	return merge(prose.Find(doc), table.Find(doc))
+	found := merge(prose.Find(doc), table.Find(doc))
+	raiseDoubts(doc, found)
+	return found
 }
