@@ -34,9 +34,30 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 	if last < 0 || tabular == 0 && end == 0 {
 		return box{}, false, false
 	}
+	if n := s.notesInside(lines[:last+1], sides); n > 0 && n <= last {
+		last = n - 1
+		end = min(end, lines[last].bot)
+	}
 	body = box{area.x0, top, area.x1, max(lines[last].bot, end)}
 	open = end < lines[last].base && lines[last].bot > s.footTop()-4*size || end > s.footTop()-4*size
 	return body, open, tabular > 0
+}
+
+// notesInside gives the index of the first of the lines at a body's end that are
+// notes although a rule is drawn below them, or len(lines).
+func (s *sheet) notesInside(lines []line, sides box) int {
+	n := len(lines)
+	for n > 1 {
+		ln := &lines[n-1]
+		text := s.join(ln.toks)
+		wide := ln.x1-ln.x0 >= sides.width()/2 && len(ln.toks) >= 7
+		if len(s.runs(ln, 90)) > 1 || !wide && !s.isNoteStart(ln) && !strings.HasPrefix(text, "http") && !strings.HasPrefix(text, "doi") {
+			break
+		}
+		n--
+	}
+	// The last short line of such a note was passed over where it stands above a wide one only.
+	return n
 }
 
 // footTop is the height of the lowest line that is not a running foot.

@@ -69,7 +69,7 @@ func figuresMeet(a, b string, near bool) bool {
 	for k < len(rb) && strings.ContainsRune("-–−<>≤≥=", rb[k]) {
 		k++
 	}
-	if isBlankMark(b) && len(rb) > 1 {
+	if isBlankMark(b) && (len(rb) > 1 || isBlankMark(a)) {
 		return true
 	}
 	if k >= len(rb) || !unicode.IsDigit(rb[k]) && !(rb[k] == '.' && k+1 < len(rb) && unicode.IsDigit(rb[k+1])) {
@@ -121,6 +121,11 @@ func (s *sheet) findColumns(lines []line, em int) []corridor {
 			kept = append(kept, toks)
 		}
 	}
+	for _, toks := range s.besides(lines, atoms, em) {
+		for _, t := range toks {
+			spans = append(spans, span{s.toks[t].x0, s.toks[t].x1})
+		}
+	}
 	slices.SortFunc(spans, func(a, b span) int { return cmp.Compare(a.x0, b.x0) })
 	var cs []corridor
 	right := 0
@@ -134,6 +139,27 @@ func (s *sheet) findColumns(lines []line, em int) []corridor {
 		right = max(right, sp.x1)
 	}
 	return s.votes(s.hidden(s.votes(cs, kept, em), kept, em), kept, em)
+}
+
+// besides gives the tokens of the lines of one run that stand between two lines
+// in height and left of both, as a row heading set in the middle of its rows.
+func (s *sheet) besides(lines []line, atoms [][]run, em int) [][]int {
+	var out [][]int
+	for i := range lines {
+		if len(atoms[i]) != 1 || isFigure(s.join(lines[i].toks)) {
+			continue
+		}
+		for _, k := range []int{i - 1, i + 1} {
+			if k < 0 || k >= len(lines) || len(atoms[k]) < 2 {
+				continue
+			}
+			if abs(lines[k].base-lines[i].base)*10 < em*8 && lines[i].x1 <= lines[k].x0 {
+				out = append(out, lines[i].toks)
+				break
+			}
+		}
+	}
+	return out
 }
 
 // figureColumns clusters the figures of all lines by the width they share.
@@ -232,7 +258,7 @@ func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bo
 		if figuresMeet(ta.text, tb.text, gap < 35*em) {
 			meet++
 		}
-		if clings(ta.text, tb.text) {
+		if clings(ta.text, tb.text) && !(isBlankMark(tb.text) && gap >= 60*em) {
 			glue++
 		}
 	}
@@ -253,6 +279,9 @@ func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bo
 // clings reports whether two words belong to one cell: a bracket or ± after a
 // number, a word after ±, "to" or a dash.
 func clings(a, b string) bool {
+	if isBlankMark(a) && isBlankMark(b) {
+		return false
+	}
 	switch b[0] {
 	case '(', '[':
 		return true

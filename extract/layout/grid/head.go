@@ -84,7 +84,7 @@ func (rd *reader) labels(c int) bool {
 			}
 		}
 	}
-	return all > 0 && words*10 >= all*4
+	return all > 0 && words*10 >= all*3
 }
 
 // columnBoxes gives the sides of what stands in each column of the body.

@@ -162,6 +162,14 @@ func startsFigure(text string) bool {
 	return false
 }
 
+// hasUnit reports whether a figure is one number followed by a word, as doses
+// and times in headings are: "78 mg/ml", "6 weeks".
+func hasUnit(text string) bool {
+	f := strings.Fields(text)
+	return len(f) == 2 && strings.IndexFunc(f[1], unicode.IsDigit) < 0 && strings.IndexFunc(f[1], unicode.IsLetter) >= 0 &&
+		f[1][0] != '(' && strings.Trim(f[0], "0123456789.,·") == ""
+}
+
 // isSize reports whether a heading is only a sample size: "(n = 42)".
 func isSize(text string) bool {
 	low := strings.ToLower(strings.Trim(strings.TrimSpace(text), "()[] "))

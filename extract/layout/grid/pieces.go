@@ -108,7 +108,7 @@ func (s *sheet) cutBetween(a, b int, cs []corridor, em int, head bool) bool {
 		return false
 	case head && gap < wordGap*em:
 		return c.tight && inside
-	case !head && (figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em):
+	case !head && (figuresMeet(ta.text, tb.text, false) || isFigure(tb.text) && !isFigure(ta.text) && gap >= atomGap*em && tb.x0 >= c.x1-em/2):
 		return !clings(ta.text, tb.text)
 	case clings(ta.text, tb.text) && gap < wordGap*em:
 		return false

@@ -157,7 +157,7 @@ func (rd *reader) isData(i int) bool {
 		t := rd.s.join(rs[k].toks)
 		switch {
 		case k == 0 && rs[k].x0 <= rd.area.x0+rd.area.width()/4:
-		case isFigure(t) && !isHeadFigure(t) && !isBlankMark(t) && !rd.goesOnAbove(i, &rs[k]):
+		case isFigure(t) && !isHeadFigure(t) && !isBlankMark(t) && !hasUnit(t) && !rd.goesOnAbove(i, &rs[k]):
 			figures++
 		default:
 			others++
@@ -206,6 +206,9 @@ func (rd *reader) headLines() int {
 		}
 	}
 	ruled := len(full)*2 > n && len(full) > 3
+	if len(full) > 0 && len(full) <= 4 && full[0] <= min(6, n/2) && data == 0 && full[0] < n && len(full)*4 <= n {
+		data = full[0] // numbers above the one rule under the heading: times, doses, years
+	}
 	if len(full) > 0 && (full[0] > data && full[0] <= 8 && rd.fewFigures(full[0]) || !ruled && full[0] <= data) {
 		// Rules: the head ends at the last rule above the data that has column heads above it.
 		end := full[0]

@@ -37,7 +37,7 @@ func (rd *reader) units() [][]int {
 		n := len(out) - 1
 		if n >= 0 && !rd.fullBetween(i) {
 			step := rd.lines[i].base - rd.lines[i-1].base
-			if step*10 < rd.em*8 && (!rd.clash(rd.gather(out[n]), []int{i}) || step*10 < rd.em*3) {
+			if step*10 < rd.em*8 && !rd.clash(rd.gather(out[n]), []int{i}) {
 				out[n] = append(out[n], i)
 				continue
 			}
@@ -293,15 +293,20 @@ func (rd *reader) labelGoesOn(up, stub *piece, tight bool) bool {
 	if !sameWeight(rd.s, up, stub) {
 		return false
 	}
-	return tight || startsLow(stub.text) && rd.nearlyFull(up)
+	return tight || startsLow(stub.text) && rd.noRoom(up, stub)
 }
 
-// nearlyFull reports whether a stub line ends where no further word had room.
-func (rd *reader) nearlyFull(p *piece) bool {
-	if len(rd.cs) == 0 {
-		return true
+// noRoom reports whether the stub line up ends where the first word of the next
+// line had no room.
+func (rd *reader) noRoom(up, next *piece) bool {
+	limit := 0
+	for i := rd.head; i < len(rd.lines); i++ {
+		if rd.hasStub(i) && rd.hasData(i) {
+			limit = max(limit, rd.cells[i][0].x1)
+		}
 	}
-	return p.x1 > rd.cs[0].x0-5*rd.em
+	first := &rd.s.toks[next.toks[0]]
+	return up.x1+first.x1-first.x0+rd.em/4 > limit
 }
 
 func (rd *reader) indentedMore(p, than *piece) bool {

@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/tidy"
 )
 
 // write fills the table's grid from the reader's pieces.
@@ -29,6 +30,7 @@ func (rd *reader) write(t *paper.Table, w *writer) {
 	}
 	t.Rows = t.HeadRows + len(rows)
 	rd.spanStubs(&g, rows, t.HeadRows)
+	g.cells = slices.DeleteFunc(g.cells, func(c gridCell) bool { return len(c.toks) == 0 })
 	slices.SortStableFunc(g.cells, func(a, b gridCell) int {
 		if a.Row != b.Row {
 			return a.Row - b.Row
@@ -150,11 +152,26 @@ func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 			continue
 		}
 		if c, ok := g.at[[2]int{head + k, 0}]; ok {
-			stubs = append(stubs, c)
+			n := len(stubs)
+			if n > 0 && g.cells[stubs[n-1]].Row == head+k-1 && rd.sameStub(&g.cells[stubs[n-1]], &g.cells[c]) {
+				up := &g.cells[stubs[n-1]]
+				up.toks = append(up.toks, g.cells[c].toks...)
+				g.cells[c].toks = nil
+				delete(g.at, [2]int{head + k, 0})
+			} else {
+				stubs = append(stubs, c)
+			}
 		}
 		open = append(open, k)
 	}
 	flush()
+}
+
+// sameStub reports whether two row headings below one another are one that is
+// set beside several rows.
+func (rd *reader) sameStub(up, down *gridCell) bool {
+	a, b := rd.s.join(up.toks[len(up.toks)-1]), rd.s.join(down.toks[0])
+	return unfinishedLabel(a, b) || startsLow(b) && b[0] != '%'
 }
 
 // spanMiddle shares the rows of one stretch among its row headings.
@@ -303,54 +320,21 @@ func (w *writer) caption(r *Region) paper.TextRun {
 func (w *writer) notes(lines []line) []paper.FootNote {
 	var out []paper.FootNote
 	var cur [][]int
-	mark := ""
 	flush := func() {
 		if len(cur) > 0 {
-			out = append(out, paper.FootNote{Mark: mark, Text: w.text(cur)})
+			out = append(out, tidy.SplitNotes(w.text(cur))...)
 		}
-		cur, mark = nil, ""
+		cur = nil
 	}
 	for i := range lines {
-		start := 0
-		ts := lines[i].toks
-		for k := range ts {
-			m, rest := w.sheet.noteMark(ts, k, k == 0)
-			if m == "" {
-				continue
-			}
-			if k > start {
-				cur = append(cur, ts[start:k])
-			}
+		first := &w.sheet.toks[lines[i].toks[0]]
+		if first.shift == paper.Raised || strings.Trim(first.text, "*†‡§¶#‖|∗") == "" {
 			flush()
-			mark, start = m, k+rest
 		}
-		if start < len(ts) {
-			cur = append(cur, ts[start:])
-		}
+		cur = append(cur, lines[i].toks)
 	}
 	flush()
 	return out
-}
-
-// noteMark reads a note's mark at token k of a line: a raised letter or sign
-// that is followed by text and follows the end of a sentence or the line's
-// start. rest is how many tokens the mark takes.
-func (s *sheet) noteMark(ts []int, k int, first bool) (string, int) {
-	t := &s.toks[ts[k]]
-	if k+1 >= len(ts) || len([]rune(t.text)) > 3 {
-		return "", 0
-	}
-	if !first {
-		p := &s.toks[ts[k-1]]
-		if !strings.HasSuffix(p.text, ".") && !strings.HasSuffix(p.text, ";") && !strings.HasSuffix(p.text, ",") || t.glued {
-			return "", 0
-		}
-	}
-	sign := strings.Trim(t.text, "*†‡§¶#‖|") == ""
-	if t.shift == paper.Raised || sign {
-		return strings.TrimRight(t.text, ".,:)"), 1
-	}
-	return "", 0
 }
 
 // text makes a TextRun of tokens by line: words joined by one space where they
