@@ -58,7 +58,7 @@ func (f *frame) partOf(l label) part {
 		}
 	case isPHeading(low) || isCountHeading(low):
 		p.kind, p.name = partEmpty, ""
-	case isContrast(low):
+	case isContrast(low) || compares(l.text) && !f.isArm(low):
 		p.kind = partContrast
 	case isTimeHeading(low):
 		p.kind, p.name = partTime, tidyTime(l.text)
@@ -189,8 +189,10 @@ func (f *frame) findAxes() {
 			}
 		}
 	}
-	if !colArm && 2*arms < rows {
-		arms = f.repeatedLabels()
+	if 2*arms < rows {
+		if n := f.repeatedLabels(); !colArm {
+			arms = n
+		}
 	}
 	f.armRows = rows > 0 && (2*arms >= rows || stubArm && !colArm)
 	if colArm && f.armRows && 10*arms < 8*rows {
@@ -239,7 +241,20 @@ func (f *frame) repeatedLabels() int {
 			names = append(names, name)
 		}
 	}
-	if len(names) < 2 || len(names) > 8 || f.outerArms() {
+	if len(names) < 2 || f.outerArms() {
+		return 0
+	}
+	outers := map[string]bool{}
+	for _, name := range names {
+		for o := range blocks[name] {
+			outers[o] = true // only counted
+		}
+	}
+	if len(outers) <= 4 && len(outers) < len(names) {
+		f.outerSub = true // the blocks are analyses or subgroups of the same outcomes
+		return 0
+	}
+	if len(names) > 5 || f.comparing() {
 		return 0
 	}
 	f.rowArms = map[string]bool{}
@@ -247,6 +262,18 @@ func (f *frame) repeatedLabels() int {
 		f.rowArms[name] = true
 	}
 	return n
+}
+
+// comparing reports that a column holds comparisons between arms.
+func (f *frame) comparing() bool {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		for _, l := range f.heads[c] {
+			if compares(l.text) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // outerArms reports that the group labels name arms, so that the rows under
@@ -519,11 +546,25 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			outcome = append(outcome, p.name)
 		case p.kind == partEmpty:
 		default:
-			if own && f.subgroupLike(p.name) {
+			switch {
+			case own && f.subgroupLike(p.name):
+				if n := len(ln.groups); n > 0 && len(ln.labels) == 1 {
+					for _, g := range f.lines[ln.groups[n-1]].labels {
+						if unitIn(g.text) == "" {
+							subs = append(subs, nameOf(g.text))
+						}
+					}
+				} else if len(ln.labels) > 1 && unitIn(ln.labels[0].text) == "" {
+					subs = append(subs, nameOf(ln.labels[0].text))
+				}
+				subs = append(subs, p.name)
+			case own && len(ln.groups) > 0 && nPhrase.MatchString(l.text):
+				subs = append(subs, p.name)
+			case !own && f.outerSub:
 				subs = append(subs, p.name)
 			}
 			outcome = append(outcome, p.name)
-			if t := timeIn(p.name); t != "" && x.time == "" {
+			if t := rowTime(p.name); t != "" && x.time == "" {
 				x.time, x.timeAt, x.timeFrom = t, l, "row label"
 			}
 			x.outcomeAt, x.outcomeFrom = l, "row label"
@@ -564,6 +605,7 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	l := label{text: clean(capt), raw: clean(capt)}
 	if x.time == "" {
 		switch ts := timesIn(capt); {
+		case len(ts) == 1 && strings.Contains(fold(ts[0]), " and "):
 		case len(ts) == 1:
 			x.time, x.timeAt, x.timeFrom, x.timeGuess = ts[0], l, "caption", true
 		case baselineCaption.MatchString(capt) && len(ts) == 0:
@@ -609,6 +651,27 @@ func timeIn(s string) string {
 	}
 	return ts[0]
 }
+
+var pointInTime = regexp.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
+
+// rowTime finds a time point in a row label that also names an outcome. A
+// period that belongs to the outcome ("pain in the previous 7 days", "costs in
+// 12 months") is none.
+func rowTime(s string) string {
+	if len(s) > 90 || !pointInTime.MatchString(s) {
+		return ""
+	}
+	for _, t := range timesIn(s) {
+		k := strings.Index(fold(s), fold(t))
+		if k < 0 || recall.MatchString(fold(s)[:k]) || fold(t) == "endpoint" {
+			continue
+		}
+		return t
+	}
+	return ""
+}
+
+var recall = regexp.MustCompile(`(?:previous|last|past|prior|preceding|within|during the|per|in|first|every|over)\s*$`)
 
 func timesIn(s string) []string {
 	var out []string
