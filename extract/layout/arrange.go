@@ -242,7 +242,7 @@ func (a *arranger) findColumns() {
 				continue
 			}
 			for _, c := range a.sheets[p][i].findGutters(nil, a.body) {
-				if c.left >= 10 && c.right >= 10 {
+				if c.left >= 6 && c.right >= 6 && c.left+c.right >= 16 {
 					prior = append(prior, (c.g.x0+c.g.x1)/2)
 				}
 			}
@@ -289,7 +289,7 @@ func (a *arranger) arrangeSheet(s *sheet, out *PageLines) {
 		switch {
 		case !l.furniture:
 			body = append(body, l)
-		case l.mid() < middle:
+		case l.mid() < middle && !l.lineNumber:
 			head = append(head, l)
 		default:
 			foot = append(foot, l)

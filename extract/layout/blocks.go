@@ -27,11 +27,33 @@ func (a *arranger) blocks() []paper.Block {
 			out = append(out, paper.Block{Kind: paper.TableBlock, Page: d.page, Table: &t, Zone: z.floating(), Section: z.section})
 			continue
 		}
-		run := a.run(d)
-		if run.S == "" {
-			continue
+		parts := []draft{*d}
+		if z.zone == paper.References && d.kind == paper.Paragraph {
+			parts = entries(d)
 		}
-		out = append(out, z.blocks(d, run)...)
+		for k := range parts {
+			if run := a.run(&parts[k]); run.S != "" {
+				out = append(out, z.blocks(&parts[k], run)...)
+			}
+		}
+	}
+	return out
+}
+
+var entryStart = regexp.MustCompile(`^(?:\[[0-9]{1,3}\]|[0-9]{1,3}[.)]?)\s+[\p{L}“"]`)
+
+// entries cuts a stretch of the reference list where a numbered entry begins.
+func entries(d *draft) []draft {
+	var out []draft
+	start := 0
+	for i := 1; i <= len(d.lines); i++ {
+		if i == len(d.lines) || entryStart.MatchString(d.lines[i].text()) {
+			e := *d
+			e.lines = d.lines[start:i]
+			e.page = e.lines[0].page
+			out = append(out, e)
+			start = i
+		}
 	}
 	return out
 }

@@ -203,7 +203,7 @@ func (s *sheet) markLineNumbers() {
 			continue
 		}
 		for _, n := range nums {
-			s.lines[n.line].furniture = true
+			s.lines[n.line].furniture, s.lines[n.line].lineNumber = true, true
 		}
 	}
 }

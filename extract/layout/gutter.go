@@ -143,7 +143,7 @@ func (s *sheet) weigh(c *candidate, bodySize int) {
 		if l.furniture || l.table != nil || !c.g.covers(l.mid()) {
 			continue
 		}
-		long, close := 10*l.size, 4*max(bodySize, l.size)
+		long, close := 10*l.size, 6*max(bodySize, l.size)
 		switch {
 		case l.x1 <= mid:
 			if mid-l.x1 <= close && l.x1-l.x0 >= long {

@@ -4,7 +4,8 @@ import "strings"
 
 // Text is the plain text of the paper in reading order: one line for each
 // printed line of a column, a form feed between pages, everything that is
-// printed included. In a table's rows the cells are parted by tabs.
+// printed included. Where a wide gap is printed, as between the cells of a
+// table, stands a tab.
 func (a *Arrangement) Text() string {
 	var b strings.Builder
 	for i := range a.Pages {
@@ -30,7 +31,7 @@ func (p *PageLines) write(b *strings.Builder) {
 		for k, w := range l.Words {
 			switch {
 			case k == 0 || w.Glued:
-			case l.Cells && w.Box.X0-right > w.Size:
+			case w.Box.X0-right > w.Size && (l.Cells || w.Box.X0-right > 2*w.Size):
 				b.WriteByte('\t')
 			default:
 				b.WriteByte(' ')

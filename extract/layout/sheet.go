@@ -18,6 +18,7 @@ type line struct {
 	bold, italic   bool  // most of its glyphs
 	font           int32 // of nearly all its glyphs, by the paper's list; -1 where it is mixed
 	furniture      bool
+	lineNumber     bool     // a kind of furniture
 	table          *tableAt // the line stands for a table; it has no words
 	left, right    int      // gutters beside it, -1 for none
 	no             int      // 1-based number on the page, in reading order

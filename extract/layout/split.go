@@ -1,6 +1,7 @@
 package layout
 
 import (
+	"regexp"
 	"slices"
 	"strings"
 	"unicode"
@@ -165,11 +166,17 @@ func (a *arranger) apart(l *line) bool { return l.font >= 0 && l.font != a.font 
 // short reports whether a line ends well before its column does.
 func (l *line) short() bool { return l.x1 < l.edge+l.width*85/100 }
 
-// ended reports whether a text ends as a sentence does; a mark or citation
-// number may follow the stop.
+// sentenceEnd is how a sentence ends: a stop, what closes after it, and a mark
+// or citation numbers. Digits right after a stop that follows a digit are
+// decimals.
+var sentenceEnd = regexp.MustCompile(`(?:[.?!:][)\]"”’'*†‡§¶]*|[^0-9\s][.?!][)\]"”’']*[0-9][0-9,–\-]*|[.?!]\s*\[[0-9][0-9, –\-]*\])$`)
+
+// ended reports whether a text ends as a sentence does.
 func ended(text string) bool {
-	text = strings.TrimRight(text, "0123456789,–-] )\"”’'*†‡§¶[")
-	return strings.HasSuffix(text, ".") || strings.HasSuffix(text, "?") || strings.HasSuffix(text, "!") || strings.HasSuffix(text, ":")
+	if len(text) > 40 {
+		text = text[len(text)-40:]
+	}
+	return sentenceEnd.MatchString(text)
 }
 
 // endsOpen reports whether a text ends where a sentence cannot.

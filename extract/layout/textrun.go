@@ -130,6 +130,7 @@ func lineEnd(text []byte, next string, dict map[string]bool) int {
 		return keep
 	}
 	head := lastWord(text[:len(text)-n])
+	next, _, _ = strings.Cut(next, " ")
 	tail := plainWord(next)
 	switch {
 	case dict[head+tail]:

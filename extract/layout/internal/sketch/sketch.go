@@ -69,6 +69,11 @@ func (p *Page) Rule(x0, x1, y int) {
 	p.Rules = append(p.Rules, paper.Box{X0: int32(x0) * 100, Y0: int32(y)*100 - 25, X1: int32(x1) * 100, Y1: int32(y)*100 + 25})
 }
 
+// UprightRule draws a vertical line half a point thick.
+func (p *Page) UprightRule(y0, y1, x int) {
+	p.Rules = append(p.Rules, paper.Box{X0: int32(x)*100 - 25, Y0: int32(y0) * 100, X1: int32(x)*100 + 25, Y1: int32(y1) * 100})
+}
+
 // Measure is the length of a line of text in points, shifts not counted.
 func (p *Page) Measure(text string) int {
 	n := 0
