@@ -89,6 +89,7 @@ type reading struct {
 	proof   *proof
 	repairs map[repairKey]*repaired
 	order   []repairKey
+	marks   [][]glyphs.Mark // by page; nil where the engine's reading stands
 }
 
 // openOwn opens the paper for our reader. That it cannot is no problem of the
@@ -155,7 +156,7 @@ func (r *reading) withoutEngine(n int, ours *glyphs.Page, err error) {
 		return
 	}
 	r.problem(n, "page-unreadable", true, fmt.Sprintf("Page %d could not be read (%v): look at it in a PDF viewer.", n, err))
-	r.out.Pages = append(r.out.Pages, paper.GlyphPage{Page: paper.Page{Number: n}})
+	r.keep(paper.GlyphPage{Page: paper.Page{Number: n}}, nil)
 }
 
 // compare sets the two readings of a page against each other. Where they
@@ -193,9 +194,12 @@ func orNothing(s string) string {
 func (r *reading) keep(p paper.GlyphPage, marks []glyphs.Mark) {
 	r.noteRepairs(&p, marks)
 	r.out.Pages = append(r.out.Pages, p)
+	r.marks = append(r.marks, marks)
 }
 
 // finish looks at the paper as a whole.
 func (r *reading) finish() {
+	r.learn()
 	r.reportRepairs()
+	r.unknownSigns()
 }

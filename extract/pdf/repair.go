@@ -38,10 +38,15 @@ func (r *reading) noteRepairs(p *paper.GlyphPage, marks []glyphs.Mark) {
 				}
 			}
 		}
-		r.count(key, why, p.Page.Number)
-		p.Doubts = append(p.Doubts, paper.Doubt{Page: p.Page.Number, Box: g.Box, Kind: "repaired",
-			Text: fmt.Sprintf("The font %s says %s here; read as %s, since %s.", key.font, sign(key.from), sign(g.Text), why)})
+		r.doubtRepair(p, &p.Glyphs[i], key, why)
 	}
+}
+
+// doubtRepair counts a repaired glyph and gives it a doubt.
+func (r *reading) doubtRepair(p *paper.GlyphPage, g *paper.Glyph, key repairKey, why string) {
+	r.count(key, why, p.Page.Number)
+	p.Doubts = append(p.Doubts, paper.Doubt{Page: p.Page.Number, Box: g.Box, Kind: "repaired",
+		Text: fmt.Sprintf("The font %s says %s here; read as %s, since %s.", key.font, sign(key.from), sign(g.Text), why)})
 }
 
 func (r *reading) count(key repairKey, why string, page int) {
@@ -80,4 +85,35 @@ func sign(s string) string {
 		return "nothing"
 	}
 	return out
+}
+
+// unknownSigns points to the signs beside numbers of which nobody could tell
+// what they are: one may be a minus.
+func (r *reading) unknownSigns() {
+	for p := range r.out.Pages {
+		page := &r.out.Pages[p]
+		var box paper.Box
+		n := 0
+		for i := range page.Glyphs {
+			g := &page.Glyphs[i]
+			if g.Invisible || printable(g.Text) || !besideNumber(page.Glyphs, i) {
+				continue
+			}
+			if n++; n == 1 {
+				box = g.Box
+			}
+			page.Doubts = append(page.Doubts, paper.Doubt{Page: page.Page.Number, Box: g.Box, Kind: "unknown-sign",
+				Text: "The file does not say which sign is printed here, and its use does not show it."})
+		}
+		if n > 0 {
+			r.problem(page.Page.Number, "unknown-sign", false, fmt.Sprintf("Page %d prints %d signs beside numbers that the file does not name, the first at %.0f, %.0f pt: look at them, one may be a minus.",
+				page.Page.Number, n, float64(box.X0)/100, float64(box.Y0)/100))
+		}
+	}
+}
+
+// besideNumber reports whether glyph i directly precedes or follows a digit.
+func besideNumber(all []paper.Glyph, i int) bool {
+	left, right := context(all, i, func(k int) string { return all[k].Text })
+	return startsNumber(right) || endsNumber(left)
 }

@@ -56,3 +56,6 @@ func dingbat(name string) string {
 	}
 	return "\u2022"
 }
+
+// SymbolText gives what a code stands for in the Symbol font; "" if nothing.
+func SymbolText(c byte) string { return nameText(symbolNames()[c]) }
