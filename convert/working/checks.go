@@ -47,9 +47,6 @@ func checksOfReading() []check {
 		{"n-elsewhere", func(it *item) (string, bool) {
 			return "n was read away from the result", it.res.N > 0 && it.res.NFrom == result.NElsewhere
 		}},
-		{"n-kind-unclear", func(it *item) (string, bool) {
-			return "whether n counts those analysed is not said", it.res.N > 0 && it.res.NKind == result.NUnclear
-		}},
 		{"n-randomised", func(it *item) (string, bool) {
 			return "n counts those randomised; fewer may have been analysed", it.res.N > 0 && it.res.NKind == result.NRandomised
 		}},
