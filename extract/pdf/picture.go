@@ -35,6 +35,9 @@ func (p *Pictures) Close() { p.doc.Close() }
 // NumPage is the number of pages.
 func (p *Pictures) NumPage() int { return p.doc.NumPage() }
 
+// Facts gives the visible box and the rotation of a page, 1-based.
+func (p *Pictures) Facts(number int) (paper.Page, error) { return p.doc.Facts(number) }
+
 // Page draws a page, 1-based, as a viewer shows it, with scale pixels a point
 // (2 is 144 dots an inch). A picture of more than 16 million pixels is refused.
 func (p *Pictures) Page(number int, scale float64) (*image.RGBA, error) {

@@ -41,6 +41,18 @@ func (d *Document) Page(number int) (g paper.GlyphPage, cut bool, err error) {
 }
 
 // facts reads the page's visible box and its turn.
+// Facts gives the visible box and the rotation of a page, 1-based, without
+// reading what stands on it.
+func (d *Document) Facts(number int) (paper.Page, error) {
+	page, err := d.loadPage(number)
+	if err != nil {
+		return paper.Page{}, err
+	}
+	defer d.r.call("FPDF_ClosePage", page)
+	facts := d.facts(page, number)
+	return facts, d.r.err
+}
+
 func (d *Document) facts(page uint64, number int) paper.Page {
 	r := d.r
 	p := paper.Page{Number: number, Reader: "pdfium"}
