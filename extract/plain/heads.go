@@ -13,16 +13,9 @@ func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
 	for i := range rows {
 		spots[i] = make([]spot, len(rows[i]))
 	}
-	s := headSearch{rows: rows, cols: cols, body: body, memo: map[headKey][]headWay{}}
-	var start headIndex
-	var best *headWay
-	if len(rows) <= maxHeadRows {
-		for _, w := range s.tile(0, 0, cols, start) {
-			if w.complete(rows) && (best == nil || w.score > best.score) {
-				way := w
-				best = &way
-			}
-		}
+	best := searchHeads(rows, cols, body, len(rows) == 1)
+	if best == nil {
+		best = searchHeads(rows, cols, body, true)
 	}
 	if best == nil {
 		leftAlign(spots, rows, cols)
@@ -31,6 +24,24 @@ func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
 	for p := best.last; p != nil; p = p.before {
 		spots[p.row][p.cell] = p.at
 	}
+}
+
+// searchHeads finds the best tiling, nil if there is none. Cells of the last
+// row are over one column each unless wide says otherwise: that is rare, and
+// costs a long search.
+func searchHeads(rows [][]rowCell, cols int, body []profile, wide bool) *headWay {
+	if len(rows) > maxHeadRows {
+		return nil
+	}
+	s := headSearch{rows: rows, cols: cols, body: body, wide: wide, memo: map[headKey][]headWay{}}
+	var start headIndex
+	var best *headWay
+	for _, w := range s.tile(0, 0, cols, start) {
+		if w.complete(rows) && (best == nil || w.score > best.score) {
+			best = &w
+		}
+	}
+	return best
 }
 
 // leftAlign is the fallback: cells as they come, a single cell over all.
@@ -49,7 +60,7 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
-	headFuel    = 400_000 // steps of the search for one table
+	headFuel    = 50_000 // steps of the search for one table
 )
 
 // headIndex counts the cells used in each heading row.
@@ -87,6 +98,7 @@ type headSearch struct {
 	rows  [][]rowCell
 	cols  int
 	body  []profile
+	wide  bool // cells of the last row may be over several columns
 	memo  map[headKey][]headWay
 	steps int
 }
@@ -94,6 +106,11 @@ type headSearch struct {
 // tile gives the best way for each count of cells used to fill columns
 // [from, to) with the heading rows from level down.
 func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
+	for i, row := range s.rows {
+		if len(row)-int(used[i]) > s.cols-from {
+			return nil // more cells left than columns
+		}
+	}
 	if from == to || level == len(s.rows) {
 		return []headWay{{used: used}}
 	}
@@ -101,21 +118,31 @@ func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
 	if ways, ok := s.memo[key]; ok {
 		return ways
 	}
-	if s.steps++; s.steps > headFuel {
-		return nil
-	}
 	var ways []headWay
 	cell := int(used[level])
-	if cell < len(s.rows[level]) {
+	if left := len(s.rows[level]) - cell; left > 0 && (level > 0 || left <= to-from) {
 		after := used
 		after[level]++
-		for width := 1; from+width <= to; width++ {
+		last := to
+		if level == 0 { // the first row has a cell for every column left
+			last = to - left + 1
+		}
+		for width := 1; from+width <= last; width++ {
 			for height := 1; level+height <= len(s.rows); height++ {
+				if level+height == len(s.rows) && width > 1 && !s.wide && level > 0 {
+					continue
+				}
+				if s.steps++; s.steps > headFuel {
+					return nil
+				}
 				score := s.score(level, cell, from, width, height, used)
 				for _, below := range s.tile(level+height, from, from+width, after) {
 					for _, rest := range s.tile(level, from+width, to, below.used) {
-						place := &placed{level, cell, spot{from, width, height}, nil}
-						ways = keepBest(ways, headWay{rest.used, score + below.score + rest.score, chain(place, below.last, rest.last)})
+						s.steps++
+						total := score + below.score + rest.score
+						if w := better(&ways, rest.used, total); w != nil {
+							w.last = chain(&placed{level, cell, spot{from, width, height}, nil}, below.last, rest.last)
+						}
 					}
 				}
 			}
@@ -134,16 +161,22 @@ func chain(p, a, b *placed) *placed {
 	return &placed{p.row, p.cell, p.at, out}
 }
 
-func keepBest(ways []headWay, w headWay) []headWay {
-	for i := range ways {
-		if ways[i].used == w.used {
-			if w.score > ways[i].score {
-				ways[i] = w
-			}
-			return ways
+// better gives the way that is to be filled in for a score: a new one, or the
+// one with the same cells used if its score is lower; nil if it is not.
+func better(ways *[]headWay, used headIndex, score int) *headWay {
+	for i := range *ways {
+		w := &(*ways)[i]
+		if w.used != used {
+			continue
 		}
+		if score <= w.score {
+			return nil
+		}
+		w.score = score
+		return w
 	}
-	return append(ways, w)
+	*ways = append(*ways, headWay{used: used, score: score})
+	return &(*ways)[len(*ways)-1]
 }
 
 // score says how well a heading suits the columns [from, from+width) and the

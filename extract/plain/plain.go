@@ -29,6 +29,7 @@ type reader struct {
 	hyphened map[string]bool // words printed with a hyphen inside a line
 	prose    map[string]int  // how often each word stands in running text
 	sections sections
+	regions  map[int]region // tables by their first line, as looked for so far; no rows: none
 }
 
 // Read turns a text file into a Document. Blank lines part paragraphs; in a
@@ -48,7 +49,7 @@ func Read(path string, content []byte) (*paper.Document, error) {
 		return nil, err
 	}
 	sum := sha256.Sum256(content)
-	r := &reader{src: src, doc: &paper.Document{Path: path, SHA256: hex.EncodeToString(sum[:]), Format: paper.Text}}
+	r := &reader{src: src, doc: &paper.Document{Path: path, SHA256: hex.EncodeToString(sum[:]), Format: paper.Text}, regions: map[int]region{}}
 	r.split()
 	if len(r.lines) > maxLines {
 		r.problem("cut-short", fmt.Sprintf("the file has more than %d lines; what follows was not read", maxLines), true)

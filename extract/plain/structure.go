@@ -56,15 +56,11 @@ func (r *reader) chunk(i int) int {
 
 // startsTable reports whether the rows of a table begin at line k.
 func (r *reader) startsTable(k int) bool {
-	if r.tabbed(k) {
-		_, ok := r.tabRegion(k)
-		return ok
+	if !r.tabbed(k) && !r.piped(k) {
+		return false
 	}
-	if r.piped(k) {
-		_, ok := r.pipeRegion(k)
-		return ok
-	}
-	return false
+	_, ok := r.regionAt(k, false)
+	return ok
 }
 
 // regionAt reads the table whose rows begin at line i, in any of the forms.
@@ -72,6 +68,17 @@ func (r *reader) regionAt(i int, captioned bool) (region, bool) {
 	if r.lines[i].blank || r.lines[i].running {
 		return region{}, false
 	}
+	if g, ok := r.regions[i]; ok {
+		return g, len(g.rows) > 0
+	}
+	g, ok := r.findRegion(i, captioned)
+	if ok || !captioned {
+		r.regions[i] = g
+	}
+	return g, ok
+}
+
+func (r *reader) findRegion(i int, captioned bool) (region, bool) {
 	if r.tabbed(i) || len(r.text(r.lines[i])) < longLine && r.rowsBelow(i+1) {
 		if g, ok := r.tabRegion(i); ok {
 			return g, true
