@@ -3,6 +3,7 @@ package review
 import (
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"github.com/mattn/go-runewidth"
@@ -103,6 +104,9 @@ func Table(w io.Writer, rows []ledger.Row, opt TableOptions) error {
 		for _, c := range all {
 			cells[i] = append(cells[i], oneLine(c.value(&rows[i], ids)))
 		}
+	}
+	if !slices.ContainsFunc(rows, func(r ledger.Row) bool { return r.State != ledger.StateOpen }) {
+		all[len(all)-1].rank = 8 // it would say the same in every line
 	}
 	widths := fit(all, cells, opt.Width)
 	for start := 0; start < len(rows); {

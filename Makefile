@@ -1,0 +1,57 @@
+# make help lists the targets.
+GO ?= go
+STATICCHECK ?= honnef.co/go/tools/cmd/staticcheck@v0.8.2
+FUZZTIME ?= 30s
+DEMO := $(or $(TMPDIR),/tmp)/halfspan-demo
+
+.PHONY: help build demo test short lint bench fuzz cover golden errors papers clean
+
+help: ## list the targets
+	@grep -hE '^[a-z]+:.*## ' $(MAKEFILE_LIST) | sed -E 's/:[^#]*## /\t/' | expand -t 10
+
+build: ## build the program into ./halfspan
+	@echo "Building halfspan (the first time with downloads and compiling, some minutes) ..." >&2
+	@$(GO) build -o halfspan ./cmd/halfspan
+
+demo: build ## scan the invented papers and print the review table
+	@mkdir -p $(DEMO)
+	@echo "Reading the demo papers; one of them is a picture without text, to show how that is said." >&2
+	@./halfspan scan --ledger $(DEMO)/halfspan.ledger testdata/papers/*.pdf testdata/papers/*.xml testdata/papers/*.txt || test $$? -eq 3
+	@echo "Next: ./halfspan check --ledger $(DEMO)/halfspan.ledger --checker ME" >&2
+
+test: ## all tests
+	$(GO) test ./...
+
+short: ## the tests that take no time
+	$(GO) test -short ./...
+
+lint: ## formatting, vet and a linter
+	@test -z "$$(gofmt -l cmd extract convert report | tee /dev/stderr)" || { echo "gofmt -w the files above" >&2; exit 1; }
+	$(GO) vet ./...
+	@if command -v golangci-lint >/dev/null; then golangci-lint run; else $(GO) run $(STATICCHECK) ./...; fi
+
+bench: ## benchmarks, with allocations
+	$(GO) test -run '^$$' -bench . -benchmem ./...
+
+fuzz: ## every fuzz target for FUZZTIME (30s)
+	@set -e; for p in $$($(GO) list ./...); do \
+		for f in $$($(GO) test -list '^Fuzz' $$p | grep '^Fuzz' || true); do \
+			echo "$$p $$f"; $(GO) test -run '^$$' -fuzz "^$$f$$" -fuzztime $(FUZZTIME) $$p; \
+		done; \
+	done
+
+cover: ## how much of the code the tests run
+	$(GO) test -coverprofile coverage.out -coverpkg ./... ./...
+	$(GO) tool cover -func coverage.out | tail -1
+
+golden: ## write the expected outputs anew; read the difference before committing it
+	$(GO) test ./... -update
+
+errors: ## the simulations behind the typical errors of the methods
+	$(GO) test -run Simulation -v ./convert/... -simulate
+
+papers: ## rebuild the demo papers from their sources
+	testdata/papers/sources/build.sh
+
+clean: ## remove what was built and the demo's ledger
+	rm -rf halfspan coverage.out $(DEMO)
