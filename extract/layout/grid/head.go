@@ -20,10 +20,8 @@ func (rd *reader) headBlocks() []block {
 	var out []block
 	boxes := rd.columnBoxes()
 	bands := rd.headBands(boxes)
-	for i := range bands {
-		if i+1 < len(bands) {
-			rd.shareColumns(bands[i], bands[i+1], boxes)
-		}
+	for i := len(bands) - 2; i >= 0; i-- {
+		rd.shareColumns(bands[i], bands[i+1], boxes)
 	}
 	for _, row := range bands {
 		for k := range row {
@@ -246,6 +244,7 @@ func coversOthers(r rule, p *headPiece, band []headPiece) bool {
 // shareColumns widens the pieces of a heading band that stand over several
 // cells of the next one with nothing drawn between them.
 func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
+	rd.goesOver(row, next)
 	under := make([]*headPiece, len(boxes))
 	n := 0
 	for k := range next {
@@ -337,6 +336,24 @@ func (rd *reader) byPattern(row, next []headPiece) bool {
 		return true
 	}
 	return false
+}
+
+// goesOver gives a piece that stands flush or centred over one spanning piece of
+// the next band the columns of that one: two lines of one heading.
+func (rd *reader) goesOver(row, next []headPiece) {
+	for k := range row {
+		p := &row[k]
+		if p.fixed || p.c0 == 0 {
+			continue
+		}
+		for j := range next {
+			q := &next[j]
+			aligned := abs(p.x0-q.x0)*10 < rd.em*4 || abs(p.run.mid()-q.run.mid())*10 < rd.em*4
+			if q.c1 > q.c0 && q.c0 <= p.c0 && p.c1 <= q.c1 && aligned {
+				p.c0, p.c1, p.fixed = q.c0, q.c1, true
+			}
+		}
+	}
 }
 
 // stretcher lets heading pieces reach over free neighbouring columns.

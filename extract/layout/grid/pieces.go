@@ -42,6 +42,9 @@ func (s *sheet) pieces(ln *line, at int, cs []corridor, em int, head bool) []pie
 		p.figure = isFigure(p.text)
 		p.c0, p.c1 = columnsOf(cs, p.x0, p.x1, em)
 	}
+	if !head && len(out) == 1 && out[0].c0 == 0 && !out[0].figure {
+		out[0].c1 = 0 // a row heading runs on over empty cells
+	}
 	return out
 }
 

@@ -67,6 +67,7 @@ func newReader(s *sheet, body box) *reader {
 	}
 	rd.head = rd.headLines()
 	rd.cs = s.findColumns(rd.lines[rd.head:], rd.em)
+	rd.ownStub()
 	rd.cells = make([][]piece, len(rd.lines))
 	for i := range rd.lines {
 		rd.cells[i] = s.pieces(&rd.lines[i], i, rd.cs, rd.em, i < rd.head)
@@ -311,5 +312,38 @@ func (rd *reader) boxed() {
 				p.c0, p.c1 = c0, c1
 			}
 		}
+	}
+}
+
+// ownStub adds a column for row headings where these stand only on lines of
+// their own, further left than the figures below them.
+func (rd *reader) ownStub() {
+	edge := rd.area.x1
+	if len(rd.cs) > 0 {
+		edge = rd.cs[0].mid()
+	}
+	left, figures, cells, labels := 1<<30, 0, 0, 0
+	for i := rd.head; i < len(rd.lines); i++ {
+		rs := rd.s.atoms(&rd.lines[i])
+		if len(rs) < 2 || rs[0].x0 >= edge {
+			continue
+		}
+		cells++
+		if t := rd.s.join(rs[0].toks); isFigure(t) && strings.ContainsAny(t, "(±[.") {
+			figures++
+		}
+		left = min(left, rs[0].x0)
+	}
+	if figures < 2 || figures*10 < cells*9 {
+		return
+	}
+	for i := rd.head; i < len(rd.lines); i++ {
+		rs := rd.s.runs(&rd.lines[i], wideGap)
+		if len(rs) == 1 && rs[0].x0 < left-rd.em/2 && !isFigure(rd.s.join(rs[0].toks)) {
+			labels++
+		}
+	}
+	if labels >= 2 {
+		rd.cs = append([]corridor{{x0: left - rd.em/2, x1: left}}, rd.cs...)
 	}
 }

@@ -153,6 +153,17 @@ func (s *sheet) pictured(r Region, caption []line, sides box, bottom int) (Regio
 			return r, true
 		}
 	}
+	// A picture that the reader of the file did not see leaves a hole.
+	next := s.bounds.bot
+	if lines := s.linesIn(box{sides.x0, bottom, sides.x1, s.bounds.bot}); len(lines) > 0 {
+		next = lines[0].top
+	}
+	drawn := len(rulesIn(s.rules, box{sides.x0, bottom, sides.x1, next}))
+	if (r.label.score >= 5 || drawn >= 3) && next-bottom > 8*r.label.size && next < s.bounds.bot {
+		r.Picture, r.caption, r.body = true, caption, box{sides.x0, bottom, sides.x1, next}
+		r.area = s.areaOf(&r)
+		return r, true
+	}
 	return r, false
 }
 

@@ -145,6 +145,12 @@ func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 		}
 		stubs, open = nil, nil
 	}
+	gaps := false // rows without a heading of their own
+	for k := range rows {
+		_, beside := g.at[[2]int{head + k, 1}]
+		_, own := g.at[[2]int{head + k, 0}]
+		gaps = gaps || beside && !own
+	}
 	for k := range rows {
 		_, beside := g.at[[2]int{head + k, 1}]
 		if !beside {
@@ -153,7 +159,7 @@ func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 		}
 		if c, ok := g.at[[2]int{head + k, 0}]; ok {
 			n := len(stubs)
-			if n > 0 && g.cells[stubs[n-1]].Row == head+k-1 && rd.sameStub(&g.cells[stubs[n-1]], &g.cells[c]) {
+			if n > 0 && gaps && g.cells[stubs[n-1]].Row == head+k-1 && rd.sameStub(&g.cells[stubs[n-1]], &g.cells[c]) {
 				up := &g.cells[stubs[n-1]]
 				up.toks = append(up.toks, g.cells[c].toks...)
 				g.cells[c].toks = nil
