@@ -18,12 +18,13 @@ import (
 
 // A job is what a worker process is asked to do with one paper.
 type job struct {
-	Task string `json:"task"` // one of tasks
-	Path string `json:"path"` // to open it
-	Name string `json:"name"` // as it is to stand in the records
-	OCR  bool   `json:"ocr,omitempty"`
-	Page int    `json:"page,omitempty"` // only this page, for the tasks that show a paper; 0 all
-	Form string `json:"form,omitempty"` // of the output, for the tasks that have several
+	Task  string `json:"task"` // one of tasks
+	Path  string `json:"path"` // to open it
+	Name  string `json:"name"` // as it is to stand in the records
+	OCR   bool   `json:"ocr,omitempty"`
+	Page  int    `json:"page,omitempty"`  // only this page, for the tasks that show a paper; 0 all
+	Width int    `json:"width,omitempty"` // of a picture, in pixels
+	Form  string `json:"form,omitempty"`  // of the output, for the tasks that have several
 }
 
 // A task makes something of a document, in the worker process.
@@ -35,6 +36,18 @@ func tasks() map[string]task {
 	return map[string]task{
 		"results": findResults, // outcome
 		"text":    showText,    // shown
+		"read":    showRead,    // readAnswer
+	}
+}
+
+// A glance is a task that needs the file only, not what stands in it.
+type glance func(j *job, content []byte) (any, error)
+
+// glances lists the tasks for which a paper is not read.
+func glances() map[string]glance {
+	return map[string]glance{
+		"pages":   showPages,   // pageFacts
+		"picture": showPicture, // drawn
 	}
 }
 
@@ -57,13 +70,21 @@ func work(request []byte, alive worker.Alive) ([]byte, error) {
 	if err := json.Unmarshal(request, &j); err != nil {
 		return nil, fmt.Errorf("reading the job: %w", err)
 	}
-	do, ok := tasks()[j.Task]
-	if !ok {
+	do, known := tasks()[j.Task]
+	look, quick := glances()[j.Task]
+	if !known && !quick {
 		return nil, fmt.Errorf("no such task: %q", j.Task)
 	}
 	content, err := readFile(j.Path)
 	if err != nil {
 		return nil, err
+	}
+	if quick {
+		made, err := look(&j, content)
+		if err != nil {
+			return nil, err
+		}
+		return json.Marshal(made)
 	}
 	doc, err := extract.Read(j.Path, content, extract.Options{
 		OCR:       j.OCR,

@@ -98,6 +98,6 @@ confirmed is exported, with the evidence.
 		SilenceUsage:  true,
 	}
 	root.SetVersionTemplate(versionText())
-	root.AddCommand(newScan(s), newList(s), newCheck(s), newSheet(s), newAgree(s), newExport(s), newText(s))
+	root.AddCommand(newDesk(s), newScan(s), newList(s), newCheck(s), newSheet(s), newAgree(s), newExport(s), newText(s))
 	return root
 }

@@ -40,7 +40,6 @@ func (d *Document) Page(number int) (g paper.GlyphPage, cut bool, err error) {
 	return g, cut, r.err
 }
 
-// facts reads the page's visible box and its turn.
 // Facts gives the visible box and the rotation of a page, 1-based, without
 // reading what stands on it.
 func (d *Document) Facts(number int) (paper.Page, error) {
@@ -53,6 +52,7 @@ func (d *Document) Facts(number int) (paper.Page, error) {
 	return facts, d.r.err
 }
 
+// facts reads the page's visible box and its turn.
 func (d *Document) facts(page uint64, number int) paper.Page {
 	r := d.r
 	p := paper.Page{Number: number, Reader: "pdfium"}
