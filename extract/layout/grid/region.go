@@ -114,12 +114,11 @@ func (s *sheet) regionOf(labels []label, k int, taken []box) (Region, bool) {
 	limit := s.floor(labels, k, sides, bottom)
 	body, open, ok := s.bodyBelow(sides, bottom, limit, l.size)
 	if !ok {
-		body, caption, ok = s.bodyAbove(&l, labels, k, taken)
-		open = false
+		above, its, ok := s.bodyAbove(&l, labels, k, taken)
 		if !ok {
 			return s.pictured(r, caption, sides, bottom)
 		}
-		r.caption, r.body, r.Open = caption, body, false
+		r.caption, r.body = its, above
 		r.area = s.areaOf(&r)
 		return r, true
 	}
