@@ -54,6 +54,9 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 		return // the paper says that these are the numbers at baseline
 	}
 	if !ok {
+		s, ok = b.flowSize(i, f, x)
+	}
+	if !ok {
 		s, ok = b.otherSize(i, x.arm)
 		if !ok {
 			return
@@ -92,7 +95,7 @@ func kindOfN(s string) string {
 // atBaseline reports that a result is about the time before treatment.
 func atBaseline(x *context) bool {
 	low := fold(x.time)
-	return low == "" && !x.change || strings.Contains(low, "baseline") && !x.change || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
+	return low == "" && !x.change || strings.Contains(low, "baseline") && !strings.Contains(low, "change") && !strings.Contains(low, " to ") || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
 }
 
 // baselineN reports that a note says the headings' n's are those at baseline:
@@ -144,6 +147,11 @@ func sameOpening(a, b string) bool {
 func (b *binder) contrastSize(r *result.Result, i int, f *frame, e *estimate, x *context) {
 	one := func(arm string) (size, bool) {
 		if s, ok := f.armSizeIn(e, arm); ok {
+			return s, true
+		}
+		y := *x
+		y.arm = arm
+		if s, ok := b.flowSize(i, f, &y); ok {
 			return s, true
 		}
 		return b.otherSize(i, arm)

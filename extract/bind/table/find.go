@@ -40,6 +40,7 @@ type binder struct {
 	frames []*frame
 	blocks []*paper.Block
 	arms   []armSize
+	flow   []flowSentence
 }
 
 func newBinder(doc *paper.Document) *binder {
@@ -63,6 +64,7 @@ func newBinder(doc *paper.Document) *binder {
 		}
 	}
 	b.findArmSizes()
+	b.findFlow()
 	return b
 }
 

@@ -126,6 +126,9 @@ func (f *frame) rowRole(r int) role {
 	role := roleOf(l, &p)
 	switch role.kind {
 	case roleN:
+		if !p.countHead {
+			return roleNoneOf(role)
+		}
 		switch strings.Trim(fold(l.text), " *.:") {
 		case "no", "number", "nr", "total", "count":
 			if !strings.HasSuffix(clean(l.text), ".") {
@@ -153,11 +156,12 @@ func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
 
 var (
 	timeUnit   = `(?:weeks?|wks?|w|months?|mos?|mths?|m|days?|d|years?|yrs?|y|hours?|hrs?|h|minutes?|mins?|min|seconds?|secs?|s)`
-	timeNumber = `(?:\d+(?:\.\d+)?(?:st|nd|rd|th)?|one|two|three|four|five|six|seven|eight|nine|ten|twelve|eighteen|twenty-four|first|second|third|fourth|fifth|sixth)`
+	oneNumber  = `(?:\d+(?:\.\d+)?(?:st|nd|rd|th)?|one|two|three|four|five|six|seven|eight|nine|ten|twelve|eighteen|twenty-four|first|second|third|fourth|fifth|sixth)`
+	timeNumber = oneNumber + `(?:\s?[-–—−]\s?` + oneNumber + `)?`
 	// timeMark is one mention of a time point or period.
 	timeMark = regexp.MustCompile(`(?i)\b(?:` +
-		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:-|to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
-		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?` + timeNumber + `(?:\s?(?:-|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
+		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
+		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?` + timeNumber + `(?:\s?(?:[-–—−]|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
 		`|[tv]\d{1,2}\b|d\d{1,3}\b|w\d{1,2}\b` +
 		`|baseline|screening|enrol?lment|randomi[sz]ation|admission|discharge|follow-?up|end ?point|endline|midline|study end|washout|run-in|` +
 		`pre-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy)|post-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy|trial)|` +

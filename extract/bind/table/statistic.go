@@ -47,25 +47,65 @@ func outranks(near, have result.Statistic) bool {
 	return false
 }
 
+// nearStatistic gives the statistic that the nearest statement names. What says
+// more (a ratio, a coefficient, a difference) in the row label or the column
+// heading goes before a mean or a change; efficacy, area and the like only count
+// where nothing else is said.
 func nearStatistic(all []statement, limit rank) (result.Statistic, string, string) {
+	var first, strong, weak pair
 	for i := range all {
 		if all[i].rank > limit {
 			break
 		}
 		best := pair{}
 		for _, q := range all[i].pairs {
-			if q.Statistic == "" {
+			if q.Statistic == "" || all[i].nameOnly(q) {
 				continue
 			}
 			if best.Statistic == "" || q.Spread != "" && best.Spread == "" || weight(q.Statistic) > weight(best.Statistic) {
 				best = q
 			}
 		}
-		if best.Statistic != "" {
-			return result.Statistic(best.Statistic), best.Measure, best.Model
+		switch {
+		case best.Statistic == "":
+		case best.Statistic == "other":
+			if weak.Statistic == "" {
+				weak = best
+			}
+		default:
+			if first.Statistic == "" {
+				first = best
+			}
+			if strong.Statistic == "" && all[i].rank <= rankColumn && (best.Statistic == "ratio" || best.Statistic == "coefficient" || best.Statistic == "risk difference") {
+				strong = best
+			}
+		}
+	}
+	for _, q := range []pair{strong, first, weak} {
+		if q.Statistic != "" {
+			return result.Statistic(q.Statistic), q.Measure, q.Model
 		}
 	}
 	return "", "", ""
+}
+
+// nameOnly reports a term that here is part of what was measured: "E/A ratio",
+// "heart rate", "area under the curve", beside other words and without a spread.
+func (s *statement) nameOnly(q pair) bool {
+	if q.Spread != "" && q.Statistic != "ratio" || s.rank > rankGroup {
+		return false
+	}
+	switch q.Statistic {
+	case "ratio":
+		if q.Measure != "" {
+			return false
+		}
+	case "rate", "other", "coefficient":
+	default:
+		return false
+	}
+	p := readPhrase(s.text)
+	return !p.onlyTerms
 }
 
 // weight orders statistics named in one heading by how much they say.
@@ -182,14 +222,14 @@ func (f *frame) adjustedOf(e *estimate, rd *reading, r *result.Result, all []sta
 		r.Adjusted = "no"
 	case adjustedWord.MatchString(near):
 		r.Adjusted = "yes"
-	case rd.given == result.SD:
+	case rd.given == result.SD || f.adjustsElsewhere() && !adjustedWord.MatchString(f.tab.Caption.S):
 		r.Adjusted = "no"
 	case adjustedWord.MatchString(wide):
 		r.Adjusted = "yes"
 		if r.Statistic == result.Mean && !adjustedWord.MatchString(f.tab.Caption.S) {
 			r.Adjusted = "unclear"
 		}
-	case modelWord.MatchString(wide):
+	case modelWord.MatchString(wide) || modelWord.MatchString(near):
 		r.Adjusted = "unclear"
 	default:
 		r.Adjusted = "no"
@@ -205,6 +245,22 @@ func (f *frame) adjustedOf(e *estimate, rd *reading, r *result.Result, all []sta
 	}
 }
 
+// adjustsElsewhere reports that the table heads other columns or rows as
+// adjusted, so that those without the word are not.
+func (f *frame) adjustsElsewhere() bool {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if f.pColumn(c) {
+			continue
+		}
+		for _, l := range f.heads[c] {
+			if adjustedWord.MatchString(l.text) && !unadjustedWord.MatchString(l.text) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
 // words gives the texts near an estimate (labels, headings and the notes their
 // marks lead to, also those of the p values of the row) and those of the whole
 // table.
@@ -213,9 +269,11 @@ func (f *frame) words(e *estimate, all []statement) (near, wide string) {
 	for _, s := range all {
 		if s.rank <= rankGroup {
 			n = append(n, s.text)
-		} else {
-			w = append(w, s.text)
 		}
+	}
+	w = append(w, f.tab.Caption.S)
+	for _, nt := range f.notes.list {
+		w = append(w, nt.run.S)
 	}
 	for c := f.stub; c < f.tab.Cols; c++ {
 		if !f.pColumn(c) || f.grid[e.row][c] == nil {
