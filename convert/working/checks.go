@@ -36,12 +36,11 @@ func checksOfReading() []check {
 			return fmt.Sprintf("%s is not between %s and %s", it.res.Estimate, it.res.Lower, it.res.Upper), it.outsideInterval()
 		}},
 		{"asymmetric-interval", func(it *item) (string, bool) {
-			plain := isStatistic(result.Mean, result.MeanChange, result.MeanDifference, result.RiskDifference, result.Coefficient)
 			return "not symmetric about the estimate, even allowing for rounding",
-				it.lopside != nil && it.res.GivenAs == result.CI && plain(it) && it.interval() && it.est != nil && !it.outsideInterval()
+				it.lopside != nil && it.res.GivenAs == result.CI && plainScale(it) && it.interval() && it.est != nil && !it.outsideInterval()
 		}},
 		{"barely-symmetric", func(it *item) (string, bool) {
-			return "all three numbers would have to be rounded from the middle", it.tied
+			return "all three numbers would have to be rounded from the middle", it.tied && it.res.GivenAs == result.CI && plainScale(it)
 		}},
 		{"decimal-slip", decimalSlip},
 		{"n-elsewhere", func(it *item) (string, bool) {
@@ -67,6 +66,12 @@ func checksOfReading() []check {
 		}},
 		{"mean-impossible", meanImpossible},
 	}
+}
+
+// plainScale reports that an interval of this statistic is expected to be symmetric
+// as printed.
+func plainScale(it *item) bool {
+	return isStatistic(result.Mean, result.MeanChange, result.MeanDifference, result.RiskDifference, result.Coefficient)(it)
 }
 
 // checksOfWorking look at what was worked out.

@@ -125,3 +125,18 @@ func rate(it *item, effects map[string]Effect) string {
 	}
 	return [effectEnd]string{Clear, Look, Doubtful}[worst]
 }
+
+// ExplainFlag looks up one flag.
+func ExplainFlag(name string) (FlagInfo, bool) {
+	for _, f := range Flags() {
+		if f.Name == name {
+			return f, true
+		}
+	}
+	return FlagInfo{}, false
+}
+
+// String says in words what the effect is.
+func (e Effect) String() string {
+	return [effectEnd]string{"none", "look", "doubtful"}[e]
+}

@@ -167,6 +167,9 @@ func ownScaleLog(it *item) {
 		symbol, short(high.Value), short(low.Value), short(factor), short(se))
 	it.rec().SE, it.rec().Scale = number(se), text("log")
 	it.method("log-se-from-ci")
+	if span, err := convert.Margin(low, high, nil, convert.Log); err == nil {
+		it.step("the printed digits allow %s to %s", short(span.Low/factor), short(span.High/factor))
+	}
 	if it.est != nil {
 		if _, err := convert.Margin(low, high, it.est, convert.Log); err != nil {
 			it.note("not symmetric on the log scale (an exact, profile, bootstrap or Bayesian interval, or a misprint): the SE is an approximation")
