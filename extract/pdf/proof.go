@@ -7,66 +7,74 @@ import (
 	"halfspan/extract/pdf/glyphs"
 )
 
-// What has been read alike by both readers proves our reader's way of reading a
-// font. A digit or sign is proved if it was itself seen alike; or if the font
-// was read alike over enough glyphs without a fault, for a digit also by others
-// whose codes lie as far apart as the digits do. Letters are proved with their
-// font, or by a paper of which enough was read without a fault.
+// What has been read alike by both readers proves our reader. A code of a font
+// is proved when it was seen alike. A way of reading (the kind of font and the
+// source of its text) is proved when enough glyphs of this paper, all ten
+// digits among them, were read alike in that way and none with a fault: the
+// next font that is read in the same way goes through the same steps, with data
+// that the other reader would take from the same place. Where the codes are
+// ASCII's own, half of the digits are enough. Letters, which no comparison
+// counts, are proved with the paper. A font with a fault is never proved again.
 const (
-	enoughForSigns   = 200
-	enoughForDigits  = 100
-	enoughDigits     = 3
-	enoughForLetters = 60
-	enoughOfPaper    = 1500
+	enoughAlike  = 200
+	enoughDigits = 5
+	enoughPaper  = 1500
 )
 
 // proof is what both readers have shown of one paper.
 type proof struct {
-	fonts  map[*glyphs.Font]*fontProof
-	alike  int
-	failed bool // a digit or sign differed once
+	fonts map[*glyphs.Font]*fontProof
+	ways  map[glyphs.Way]*wayProof
+	alike int
+	fault bool
 }
 
 type fontProof struct {
-	alike  int
 	failed bool
 	codes  map[uint32]bool // seen alike
-	digits map[uint32]int  // seen alike, by code less digit
 }
 
-func newProof() *proof { return &proof{fonts: map[*glyphs.Font]*fontProof{}} }
+type wayProof struct {
+	alike  int
+	digits [10]bool
+	failed bool
+}
+
+func newProof() *proof {
+	return &proof{fonts: map[*glyphs.Font]*fontProof{}, ways: map[glyphs.Way]*wayProof{}}
+}
+
+func (p *proof) of(m glyphs.Mark) (*fontProof, *wayProof) {
+	f, w := p.fonts[m.Font], p.ways[m.Way]
+	if f == nil {
+		f = &fontProof{codes: map[uint32]bool{}}
+		p.fonts[m.Font] = f
+	}
+	if w == nil {
+		w = &wayProof{}
+		p.ways[m.Way] = w
+	}
+	return f, w
+}
 
 // learn takes a page that both readers read.
 func (p *proof) learn(m *matching, marks []glyphs.Mark) {
 	for i, j := range m.toB {
-		mark, ours := marks[i], m.a[i].Text
-		f := p.fonts[mark.Font]
-		if f == nil {
-			f = &fontProof{codes: map[uint32]bool{}, digits: map[uint32]int{}}
-			p.fonts[mark.Font] = f
-		}
+		f, w := p.of(marks[i])
+		ours := m.a[i].Text
 		switch {
 		case j >= 0 && ours == m.b[j].Text:
-			f.alike++
+			f.codes[marks[i].Code] = true
+			w.alike++
 			p.alike++
-			if !f.codes[mark.Code] {
-				f.codes[mark.Code] = true
-				if d, ok := digit(ours); ok {
-					f.digits[mark.Code-d]++
-				}
+			if len(ours) == 1 && ours[0] >= '0' && ours[0] <= '9' {
+				w.digits[ours[0]-'0'] = true
 			}
 		case j >= 0 && alike(ours, m.b[j].Text):
 		case telling(ours) != "" || j >= 0 && telling(m.b[j].Text) != "":
-			f.failed, p.failed = true, true
+			f.failed, w.failed, p.fault = true, true, true
 		}
 	}
-}
-
-func digit(s string) (uint32, bool) {
-	if len(s) == 1 && s[0] >= '0' && s[0] <= '9' {
-		return uint32(s[0] - '0'), true
-	}
-	return 0, false
 }
 
 // holds reports whether a page that our reader read needs no second reading.
@@ -74,8 +82,8 @@ func (p *proof) holds(page *glyphs.Page) bool {
 	if page.Short || len(page.Glyphs) == 0 {
 		return false
 	}
-	for i := range page.Marks {
-		if !p.proved(page.Marks[i], &page.Glyphs[i]) {
+	for i, m := range page.Marks {
+		if !p.proved(m, &page.Glyphs[i]) {
 			return false
 		}
 	}
@@ -83,7 +91,7 @@ func (p *proof) holds(page *glyphs.Page) bool {
 }
 
 func (p *proof) proved(m glyphs.Mark, g *paper.Glyph) bool {
-	f := p.fonts[m.Font]
+	f, w := p.fonts[m.Font], p.ways[m.Way]
 	if f != nil && (f.failed || f.codes[m.Code]) {
 		return !f.failed
 	}
@@ -91,15 +99,19 @@ func (p *proof) proved(m glyphs.Mark, g *paper.Glyph) bool {
 		return false
 	}
 	if telling(g.Text) == "" {
-		return f != nil && f.alike >= enoughForLetters || p.alike >= enoughOfPaper && !p.failed
+		return p.alike >= enoughPaper && !p.fault
 	}
-	if f == nil || g.Repaired {
+	if w == nil || w.failed || g.Repaired || w.alike < enoughAlike {
 		return false
 	}
-	if d, ok := digit(g.Text); ok {
-		return f.alike >= enoughForDigits && f.digits[m.Code-d] >= enoughDigits
+	seen := 0
+	for _, d := range w.digits {
+		if d {
+			seen++
+		}
 	}
-	return f.alike >= enoughForSigns
+	ascii := len(g.Text) == 1 && uint32(g.Text[0]) == m.Code
+	return seen == 10 || ascii && seen >= enoughDigits
 }
 
 // printable reports whether a text says what is printed.

@@ -128,7 +128,7 @@ func (r *reading) page(n int) {
 			}
 		}
 	}
-	theirs, cut, err := r.doc.Page(n)
+	theirs, cut, err := r.doc.Page(n, ours == nil)
 	if err != nil {
 		r.withoutEngine(n, ours, err)
 		return
@@ -177,6 +177,8 @@ func (r *reading) compare(ours *glyphs.Page, theirs paper.GlyphPage) {
 		text := fmt.Sprintf("One reader of the PDF reads %s here, the other %s.", orNothing(d.engine), orNothing(d.ours))
 		theirs.Doubts = append(theirs.Doubts, paper.Doubt{Page: n, Box: d.box, Kind: "readers-differ", Text: text})
 	}
+	// The drawings of both are the same, and ours are there already.
+	theirs.Rules, theirs.Images = ours.Rules, ours.Images
 	first := differ[0]
 	r.problem(n, "readers-differ", false, fmt.Sprintf("The two PDF readers differ in %d numbers or signs of page %d, first in %s against %s: look at the page.",
 		len(differ), n, orNothing(first.engine), orNothing(first.ours)))

@@ -35,7 +35,7 @@ func BenchmarkPage(b *testing.B) {
 	b.ReportAllocs()
 	n := 0
 	for i := range b.N {
-		g, _, err := d.Page(1 + i%d.NumPage())
+		g, _, err := d.Page(1+i%d.NumPage(), true)
 		if err != nil {
 			b.Fatal(err)
 		}

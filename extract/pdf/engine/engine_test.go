@@ -41,7 +41,7 @@ func TestPage(t *testing.T) {
 	if got := d.NumPage(); got != 2 {
 		t.Fatalf("got %d pages, want 2", got)
 	}
-	g, cut, err := d.Page(1)
+	g, cut, err := d.Page(1, true)
 	if err != nil || cut {
 		t.Fatal(err, cut)
 	}
@@ -57,14 +57,14 @@ func TestPage(t *testing.T) {
 	if len(g.Rules) != 2 {
 		t.Errorf("got rules %v, want the stroke and the thin rectangle", g.Rules)
 	}
-	g, _, err = d.Page(2)
+	g, _, err = d.Page(2, true)
 	if err != nil {
 		t.Fatal(err)
 	}
 	if g.Page.Rotate != 90 || g.Glyphs[0].Angle != 90 || g.Glyphs[0].Invisible || !g.Glyphs[len(g.Glyphs)-1].Invisible {
 		t.Errorf("got turn %d, first %+v, last %+v", g.Page.Rotate, g.Glyphs[0], g.Glyphs[len(g.Glyphs)-1])
 	}
-	if _, _, err := d.Page(3); err == nil {
+	if _, _, err := d.Page(3, true); err == nil {
 		t.Error("page 3 of 2: got no error")
 	}
 }
@@ -136,7 +136,7 @@ func TestInstances(t *testing.T) {
 	doc := pdftest.Doc{Pages: []pdftest.Page{{Content: "BT /F1 10 Tf 72 700 Td (12.4) Tj ET"}}}
 	d := open(t, doc.Bytes())
 	for i := range pagesPerInstance + 20 {
-		g, _, err := d.Page(1)
+		g, _, err := d.Page(1, true)
 		if err != nil || textOf(g) != "12.4" {
 			t.Fatalf("reading %d: got %q, %v", i, textOf(g), err)
 		}

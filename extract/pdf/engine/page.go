@@ -14,9 +14,10 @@ import (
 // hold 3,000 to 15,000.
 const maxChars = 400_000
 
-// Page reads one page, 1-based. A page with more than maxChars characters is
-// cut there and comes back with cut set.
-func (d *Document) Page(number int) (g paper.GlyphPage, cut bool, err error) {
+// Page reads one page, 1-based, with its drawn lines and pictures or without.
+// A page with more than maxChars characters is cut there and comes back with
+// cut set.
+func (d *Document) Page(number int, drawings bool) (g paper.GlyphPage, cut bool, err error) {
 	page, err := d.loadPage(number)
 	if err != nil {
 		return g, false, err
@@ -35,8 +36,10 @@ func (d *Document) Page(number int) (g paper.GlyphPage, cut bool, err error) {
 		cut = t.read()
 		r.call("FPDFText_ClosePage", text)
 	}
-	o := objectReader{r: r, page: &g}
-	o.read(page)
+	if drawings {
+		o := objectReader{r: r, page: &g}
+		o.read(page)
+	}
 	return g, cut, r.err
 }
 

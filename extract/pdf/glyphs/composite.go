@@ -67,15 +67,15 @@ func (f *Font) readGlyph(code uint32) *glyph {
 	if f.encoding != nil && len(f.encoding.cids) > 0 {
 		cid = f.encoding.cid(code)
 	}
-	g := &glyph{width: f.missing, text: unknown}
+	g := &glyph{width: f.missing, text: unknown, way: ofComposite}
 	if w, ok := f.widths[cid]; ok {
 		g.width = w
 	}
 	switch t, ok := f.toText[code]; {
 	case ok && t != "":
-		g.text = t
+		g.text, g.way = t, ofComposite|byMap
 	case f.ucs2:
-		g.text = string(rune(code))
+		g.text, g.way = string(rune(code)), ofComposite|byEncoding
 	}
 	return g
 }

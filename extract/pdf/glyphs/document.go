@@ -92,10 +92,11 @@ type Page struct {
 	Short bool
 }
 
-// Mark says by which font and code a glyph was shown.
+// Mark says by which font and code a glyph was shown, and how that was read.
 type Mark struct {
 	Font *Font
 	Code uint32
+	Way  Way
 }
 
 // Page reads one page, 1-based. Every error is an [*Error].
@@ -109,6 +110,8 @@ func (d *Document) Page(number int) (p *Page, err error) {
 	p.GlyphPage.Page = paper.Page{Number: number, Reader: "own", Box: d.visible(node), Rotate: rotation(node.rotate)}
 	content, short := d.content(node.v)
 	p.Short = short
+	likely := min(len(content)/6+64, maxPageGlyphs/8)
+	p.Glyphs, p.Marks = make([]paper.Glyph, 0, likely), make([]Mark, 0, likely)
 	in := newInterpreter(d, p)
 	in.run(content, d.resources(node.resources))
 	in.finish()

@@ -39,7 +39,23 @@ type glyph struct {
 	text     string
 	width    float64 // in em
 	repaired bool
+	way      Way
 }
+
+// Way is the way by which the text of a code is found: the kind of font and
+// the source in it. Two fonts read in the same way are read by the same steps.
+type Way uint8
+
+// The sources of a code's text; a composite or Type 3 font adds its kind.
+const (
+	byNothing   Way = iota
+	byMap           // the font's own map to Unicode
+	byName          // the name of its glyph
+	byEncoding      // a named encoding
+	byLayout        // the layout of a mathematics font
+	ofComposite Way = 8
+	ofType3     Way = 16
+)
 
 // unknown stands for what cannot be told from the file.
 const unknown = "\uFFFD"

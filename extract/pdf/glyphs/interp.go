@@ -51,6 +51,7 @@ type interpreter struct {
 	text, line geom.Matrix // text matrix, text line matrix
 
 	operands []operand
+	items    []operand // of the present operator's arrays, reused
 	path     lines.Finder
 	pending  bool      // the path has segments
 	outline  paper.Box // around the path
@@ -93,6 +94,9 @@ func (in *interpreter) run(content []byte, res *dict) {
 			break
 		}
 		if t.kind != tokWord {
+			if len(in.operands) == first {
+				in.items = in.items[:0]
+			}
 			if v, ok := in.operand(l, t, 0); ok && len(in.operands)-first < maxOperands {
 				in.operands = append(in.operands, v)
 			}
@@ -127,9 +131,17 @@ func (in *interpreter) operand(l *lexer, t token, depth int) (operand, bool) {
 	default:
 		return v, true
 	}
+	// The items of an outermost array lie behind each other in one store.
+	var nested []operand
+	store := &nested
+	if depth == 0 {
+		store = &in.items
+	}
+	start := len(*store)
 	for {
 		t := l.next()
 		if t.kind == end || t.kind == tokEOF {
+			v.items = (*store)[start:len(*store):len(*store)]
 			return v, true
 		}
 		burn(&in.doc.fuel.operators, 1, fuelOperators, "operands")
@@ -137,7 +149,7 @@ func (in *interpreter) operand(l *lexer, t token, depth int) (operand, bool) {
 			continue
 		}
 		if item, ok := in.operand(l, t, depth+1); ok {
-			v.items = append(v.items, item)
+			*store = append(*store, item)
 		}
 	}
 }

@@ -39,10 +39,10 @@ func (d *Document) readSimple(f *Font, v, desc lib.Value, kind string) {
 	}
 	math, why := mathLayout(&names, &given)
 	for c, g := range f.simple {
-		g.text, g.repaired = f.text(uint32(c), names[c], enc.baseText(byte(c)))
+		g.text, g.way, g.repaired = f.text(uint32(c), names[c], enc.baseText(byte(c)))
 		if t, ok := math[uint32(c)]; ok && t != g.text {
 			f.Repairs = append(f.Repairs, Repair{uint32(c), g.text, t, why})
-			g.text, g.repaired = t, true
+			g.text, g.way, g.repaired = t, byLayout, true
 		}
 	}
 }
@@ -57,27 +57,27 @@ func (d *Document) number(array lib.Value, i int) float64 {
 // printed, else the glyph's name, else the encoding, else the code itself if
 // it is a control code (so that its use can be studied), else unknown. It is a
 // repair where the map says something that cannot be printed.
-func (f *Font) text(code uint32, name, base string) (text string, repaired bool) {
+func (f *Font) text(code uint32, name, base string) (text string, way Way, repaired bool) {
 	mapped := f.toText[code]
 	if sane(mapped) {
-		return mapped, false
+		return mapped, byMap, false
 	}
 	if t := nameText(name); t != "" {
 		if mapped == "" || mapped == t || t == " " || !sane(t) {
-			return t, false
+			return t, byName, false
 		}
 		f.Repairs = append(f.Repairs, Repair{code, mapped, t, "its glyph is named " + name})
-		return t, true
+		return t, byName, true
 	}
 	switch {
 	case mapped != "":
-		return mapped, false
+		return mapped, byMap, false
 	case name == "" && base != "":
-		return base, false
+		return base, byEncoding, false
 	case code < ' ':
-		return string(rune(code)), false
+		return string(rune(code)), byNothing, false
 	}
-	return unknown, false
+	return unknown, byNothing, false
 }
 
 func (d *Document) simpleEncoding(f *Font, v, desc lib.Value, kind string) *simpleEncoding {
@@ -208,7 +208,8 @@ func (d *Document) readType3(f *Font, v lib.Value) {
 	widths := d.key(v, "Widths")
 	for c := range 256 {
 		g := &glyph{}
-		g.text, g.repaired = f.text(uint32(c), enc.name(byte(c)), "")
+		g.text, g.way, g.repaired = f.text(uint32(c), enc.name(byte(c)), "")
+		g.way |= ofType3
 		if i := c - first; i >= 0 && i < widths.Len() {
 			g.width = d.number(widths, i) * sx
 		}

@@ -157,7 +157,7 @@ func (in *interpreter) show(b []byte) {
 			out.Box = m.Box(0, geom.Descent*f.scale, g.width, geom.Ascent*f.scale)
 			out.Invisible = out.Invisible || !in.shows(out.Box)
 			p.Glyphs = append(p.Glyphs, out)
-			p.Marks = append(p.Marks, Mark{Font: f, Code: code})
+			p.Marks = append(p.Marks, Mark{Font: f, Code: code, Way: g.way})
 		}
 		space := in.char
 		if n == 1 && b[0] == ' ' {
