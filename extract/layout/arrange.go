@@ -235,31 +235,28 @@ func (s *sheet) dropWords(taken map[grid.Ref]bool) {
 // findColumns finds the gutters of all sheets, the sure ones first: where they
 // stand on one page they are believed with less text on another.
 func (a *arranger) findColumns() {
-	var prior []int
+	var upright []*sheet
 	for p := range a.sheets {
 		for i := range a.sheets[p] {
-			if a.sheets[p][i].frame.Oblique {
-				continue
+			if s := &a.sheets[p][i]; !s.frame.Oblique {
+				upright = append(upright, s)
 			}
-			for _, c := range a.sheets[p][i].findGutters(nil, a.body) {
-				if c.left >= 6 && c.right >= 6 && c.left+c.right >= 16 {
-					prior = append(prior, (c.g.x0+c.g.x1)/2)
-				}
+		}
+	}
+	var prior []int
+	for _, s := range upright {
+		s.weighStripes(a.body)
+		for _, c := range s.chooseGutters(nil, a.body) {
+			if c.left >= 6 && c.right >= 6 && c.left+c.right >= 16 {
+				prior = append(prior, (c.g.x0+c.g.x1)/2)
 			}
 		}
 	}
 	slices.Sort(prior)
 	prior = slices.CompactFunc(prior, func(x, y int) bool { return abs(y-x) < cell })
-	for p := range a.sheets {
-		for i := range a.sheets[p] {
-			s := &a.sheets[p][i]
-			if s.frame.Oblique {
-				continue
-			}
-			cs := s.findGutters(prior, a.body)
-			for _, c := range cs {
-				s.gutters = append(s.gutters, c.g)
-			}
+	for _, s := range upright {
+		for _, c := range s.chooseGutters(prior, a.body) {
+			s.gutters = append(s.gutters, c.g)
 		}
 	}
 }

@@ -2,6 +2,7 @@ package layout
 
 import (
 	"regexp"
+	"slices"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -67,10 +68,14 @@ func (a *arranger) run(d *draft) paper.TextRun {
 	return w.run()
 }
 
+// What the lines about a paper begin with or hold: dates, licence, addresses.
 var (
-	frontMatter = regexp.MustCompile(`(?i)@|^correspond|^\*?\s?correspond|correspondence (?:to|should)|^received:? |^accepted:? |accepted:? [0-9]{1,2} |^copyright|©|creative commons|all rights reserved|^doi:|^https?://|^academic editor|^edited by|^reviewed by|^specialty section|^citation:|^to cite|^how to cite|^e-?mail|^funding:|^data availability|^competing interests|^editor:|^issn|^open access$|^publisher|^key ?words`)
-	affiliation = regexp.MustCompile(`(?i)\b(?:department|university|universit[éà]|hospital|institute|school of|faculty|college|division of|cent(?:er|re) for)\b`)
-	resultLike  = regexp.MustCompile(`±|[0-9]\s?%|\bCI\b|\bSD\b|\bp\s?[<=]`)
+	aboutStarts = []string{"correspond", "*correspond", "* correspond", "received", "accepted:", "copyright", "doi:", "http://", "https://",
+		"academic editor", "edited by", "reviewed by", "specialty section", "citation:", "to cite", "how to cite", "e-mail", "email", "funding:",
+		"data availability", "competing interests", "editor:", "issn", "publisher", "keyword", "key word"}
+	aboutHolds = []string{"@", "correspondence to", "correspondence should", "©", "creative commons", "all rights reserved"}
+	addresses  = []string{"department", "universit", "hospital", "institute", "school of", "faculty", "college", "division of", "center for", "centre for"}
+	resultLike = regexp.MustCompile(`±|[0-9]\s?%|\bCI\b|\bSD\b|\bp\s?[<=]`)
 )
 
 // classify gives each draft its kind.
@@ -146,13 +151,16 @@ func (d *draft) oblique() bool {
 }
 
 func (a *arranger) isFrontMatter(d *draft, text string, abstractSeen bool) bool {
-	if resultLike.MatchString(text) && len(text) > 300 {
+	if len(text) > 300 && resultLike.MatchString(text) {
 		return false
 	}
-	if frontMatter.MatchString(text) && (len(text) < 900 || d.size*100 < a.body*95) {
+	lower := strings.ToLower(text[:min(len(text), 1500)])
+	starts := func(p string) bool { return strings.HasPrefix(lower, p) }
+	holds := func(p string) bool { return strings.Contains(lower, p) }
+	if (slices.ContainsFunc(aboutStarts, starts) || slices.ContainsFunc(aboutHolds, holds) || lower == "open access") && (len(text) < 900 || d.size*100 < a.body*95) {
 		return true
 	}
-	return !abstractSeen && d.page == 1 && affiliation.MatchString(text) && len(text) < 1500 && strings.Count(text, ". ")*120 < len(text)
+	return !abstractSeen && d.page == 1 && slices.ContainsFunc(addresses, holds) && len(text) < 1500 && strings.Count(text, ". ")*120 < len(text)
 }
 
 // isFootNote reports whether a draft is a note in small print that begins with

@@ -37,9 +37,20 @@ func newRaster(x0, top, x1, bot int) *raster {
 func (r *raster) fill(x0, top, x1, bot int) {
 	cx0, cx1 := max((x0-r.x)/cell, 0), min((x1-r.x)/cell, r.nx-1)
 	cy0, cy1 := max((top-r.y)/cell, 0), min((bot-r.y)/cell, r.ny-1)
-	for x := cx0; x <= cx1; x++ {
-		for y := cy0; y <= cy1; y++ {
-			r.cols[x][y>>6] |= 1 << (y & 63)
+	if cx0 > cx1 || cy0 > cy1 {
+		return
+	}
+	from, to := cy0>>6, cy1>>6
+	for w := from; w <= to; w++ {
+		mask := ^uint64(0)
+		if w == from {
+			mask &= ^uint64(0) << (cy0 & 63)
+		}
+		if w == to {
+			mask &= ^uint64(0) >> (63 - cy1&63)
+		}
+		for x := cx0; x <= cx1; x++ {
+			r.cols[x][w] |= mask
 		}
 	}
 }
@@ -77,12 +88,11 @@ type candidate struct {
 	crossed     int // lines that run on over it with no more than a word space
 }
 
-// findGutters finds the white stripes between columns of running text. prior
-// are the middles of gutters that other pages of the paper have: there less
-// text is needed.
-func (s *sheet) findGutters(prior []int, bodySize int) []candidate {
+// weighStripes finds the white stripes of a sheet and counts the text beside
+// them.
+func (s *sheet) weighStripes(bodySize int) {
 	if len(s.lines) == 0 {
-		return nil
+		return
 	}
 	x0, x1, top, bot := s.lines[0].x0, s.lines[0].x1, s.lines[0].top, s.lines[0].bot
 	for i := range s.lines {
@@ -103,23 +113,28 @@ func (s *sheet) findGutters(prior []int, bodySize int) []candidate {
 			r.fill(int(w.Box.X0), l.top, int(w.Box.X1), l.bot)
 		}
 	}
-	var cands []candidate
 	for _, st := range r.stripes(max(4*bodySize/cell, 2)) {
 		c := candidate{g: gutter{r.x + st.col*cell, r.x + (st.col+2)*cell, r.y + st.top*cell, r.y + (st.bot+1)*cell}}
 		s.weigh(&c, bodySize)
-		known := slices.ContainsFunc(prior, func(x int) bool { return abs(x-(c.g.x0+cell)) <= bodySize })
-		if c.crossed*4 > c.left+c.right {
-			continue
-		}
-		if c.left >= 3 && c.right >= 3 && c.left+c.right >= 8 || known && max(c.left, c.right) >= 2 && c.left+c.right >= 4 {
-			cands = append(cands, c)
+		if max(c.left, c.right) >= 2 && c.crossed*4 <= c.left+c.right {
+			s.stripes = append(s.stripes, c)
 		}
 	}
-	slices.SortStableFunc(cands, func(a, b candidate) int {
+	slices.SortStableFunc(s.stripes, func(a, b candidate) int {
 		return cmp.Or(cmp.Compare(b.left+b.right, a.left+a.right), cmp.Compare(b.g.bot-b.g.top, a.g.bot-a.g.top))
 	})
+}
+
+// chooseGutters takes the stripes that part columns of running text. prior are
+// the middles of gutters that other pages of the paper have: there less text
+// is needed.
+func (s *sheet) chooseGutters(prior []int, bodySize int) []candidate {
 	var out []candidate
-	for _, c := range cands {
+	for _, c := range s.stripes {
+		known := slices.ContainsFunc(prior, func(x int) bool { return abs(x-(c.g.x0+cell)) <= bodySize })
+		if !known && (c.left < 3 || c.right < 3 || c.left+c.right < 8) || c.left+c.right < 4 {
+			continue
+		}
 		if !slices.ContainsFunc(out, func(o candidate) bool { return clash(&o.g, &c.g, bodySize) }) {
 			out = append(out, c)
 		}

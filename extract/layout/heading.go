@@ -57,8 +57,7 @@ func sentenceIn(text string) bool {
 // knownTitle reports whether a line is one of the headings that papers have,
 // and nothing else.
 func knownTitle(text string) bool {
-	r := []rune(text)
-	if len(r) > 60 || len(r) == 0 || unicode.IsLower(r[0]) {
+	if len(text) > 80 || len(text) == 0 || strings.Count(text, " ") > 7 || !startsUpper(text) {
 		return false
 	}
 	zone, sure := paper.ZoneOf(text)

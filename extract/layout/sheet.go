@@ -23,8 +23,9 @@ type line struct {
 	left, right    int      // gutters beside it, -1 for none
 	no             int      // 1-based number on the page, in reading order
 	page           int
-	leading, width int // of its column: usual distance of baselines, and from edge to edge
-	edge           int // left edge of its column
+	leading, width int    // of its column: usual distance of baselines, and from edge to edge
+	edge           int    // left edge of its column
+	printed        string // what text gives, once it was asked for
 }
 
 // tableAt is a table in the flow of the lines.
@@ -40,6 +41,7 @@ type sheet struct {
 	frame   words.Frame
 	fonts   map[int32]int32 // the page's font numbers to the paper's
 	lines   []line          // not yet in reading order
+	stripes []candidate     // white stripes that may be gutters, the best first
 	gutters []gutter
 }
 
@@ -93,8 +95,12 @@ func wordsOf(seg *words.Line) []*words.Word {
 	return out
 }
 
-// text is the line as printed, words joined by single spaces.
+// text is the line as printed, words joined by single spaces. The words of a
+// line never change, so that it is made once.
 func (l *line) text() string {
+	if l.printed != "" {
+		return l.printed
+	}
 	n := 0
 	for _, w := range l.words {
 		n += len(w.Text) + 1
@@ -106,7 +112,8 @@ func (l *line) text() string {
 		}
 		buf = append(buf, w.Text...)
 	}
-	return string(buf)
+	l.printed = string(buf)
+	return l.printed
 }
 
 func (l *line) mid() int { return (l.top + l.bot) / 2 }
