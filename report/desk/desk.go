@@ -98,6 +98,7 @@ func (d *Desk) Serve(ctx context.Context, l net.Listener) error {
 	server := &http.Server{Handler: handler, ReadHeaderTimeout: 10 * time.Second, IdleTimeout: 2 * time.Minute, MaxHeaderBytes: 64 << 10}
 	done := make(chan error, 1)
 	go func() { done <- server.Serve(l) }()
+	go d.warm(context.WithoutCancel(ctx))
 	select {
 	case err := <-done:
 		return err
@@ -111,6 +112,18 @@ func (d *Desk) Serve(ctx context.Context, l net.Listener) error {
 		return err
 	}
 	return nil
+}
+
+// warm has the readers started while the browser opens: the first page would
+// wait for them. What fails here fails again, and is said, when it is asked for.
+func (d *Desk) warm(ctx context.Context) {
+	rows, err := d.opt.Book.Rows()
+	if err != nil || len(rows) == 0 {
+		return
+	}
+	if p, ok := d.papers[paperKey(rows[0].Working.Record.PaperSHA256)]; ok {
+		_, _ = d.opt.Papers.Pages(ctx, p)
+	}
 }
 
 // mode is what the page is told of how it is used.

@@ -9,10 +9,11 @@ import (
 	"halfspan/extract/paper"
 )
 
-// mark is a stretch of the file where one field of a result was read.
+// mark is a stretch of text where one field of a result was read.
 type mark struct {
-	start, end int // byte offsets in the file
-	field      string
+	offset int // of its first byte in the file
+	text   string
+	field  string
 }
 
 // own are the fields that are the result itself.
@@ -24,7 +25,7 @@ func marksOf(w working.Working) []mark {
 	var out []mark
 	for _, p := range w.Record.Places {
 		if p.Offset != nil && p.Text != "" {
-			out = append(out, mark{*p.Offset, *p.Offset + len(p.Text), p.Field})
+			out = append(out, mark{*p.Offset, p.Text, p.Field})
 		}
 	}
 	sort.SliceStable(out, func(i, j int) bool {
@@ -39,11 +40,16 @@ func spans(t *paper.TextRun, marks []mark, lead string) []spanView {
 	fields := make([]string, len(t.S))
 	for _, m := range marks {
 		for _, run := range t.Runs {
-			base := run.Start - run.Place.Offset
-			from, to := max(m.start+base, run.Start), min(m.end+base, run.End)
-			for i := max(from, 0); i < min(to, len(t.S)); i++ {
+			from := m.offset - run.Place.Offset + run.Start
+			if from < run.Start || from >= run.End {
+				continue
+			}
+			// What is printed may take more bytes in the file than here (&minus;),
+			// so its length is that of the text.
+			for i := from; i < min(from+len(m.text), len(t.S)); i++ {
 				fields[i] = m.field
 			}
+			break
 		}
 	}
 	var out []spanView

@@ -103,6 +103,8 @@ type rowBrief struct {
 	Find  string      `json:"find"` // what a search looks through, in lower case
 	Star  bool        `json:"star"`
 	Aside bool        `json:"aside"`
+	Paper string      `json:"paper"` // its key
+	Page  *int        `json:"page"`
 	Cells []cellBrief `json:"cells"`
 }
 
@@ -124,7 +126,8 @@ func (d *Desk) rows(*http.Request) (any, error) {
 	}
 	out := make([]rowBrief, 0, len(groups))
 	for _, g := range groups {
-		b := rowBrief{Key: g.key, Title: title(g.rows[0]), Star: g.star, Aside: g.aside}
+		b := rowBrief{Key: g.key, Title: title(g.rows[0]), Star: g.star, Aside: g.aside,
+			Paper: paperKey(g.rows[0].Working.Record.PaperSHA256), Page: g.rows[0].Working.Record.Page}
 		var find strings.Builder
 		for _, row := range g.rows {
 			rec := row.Current().Working.Record

@@ -48,8 +48,10 @@ export class Leaf {
     const width = this.width();
     const image = el('img', { src: this.picture(paper, number), alt: `Page ${number} of the paper`, draggable: 'false' });
     image.addEventListener('error', () => say(`Page ${number} could not be drawn. The file may have changed or moved since the scan.`, true));
+    const wait = el('p', { class: 'wait' }, 'The page is being drawn …');
+    image.addEventListener('load', () => wait.remove());
     const over = svg('svg', { viewBox: `0 0 ${w} ${h}`, 'aria-hidden': 'true' });
-    const sheet = el('div', { class: 'page' }, image, over);
+    const sheet = el('div', { class: 'page' }, wait, image, over);
     sheet.style.width = `${width}px`;
     sheet.style.height = `${width * h / w}px`;
     const same = this.shown?.paper === paper && this.shown?.page === number;
@@ -64,12 +66,14 @@ export class Leaf {
   }
 
   #ahead(paper, facts, number) {
-    if (facts.pages.some((p) => p.number === number + 1)) new Image().src = this.picture(paper, number + 1);
+    if (facts.pages.some((p) => p.number === number + 1)) this.prepare(paper, number + 1);
   }
+
+  // prepare has a page drawn before it is asked for.
+  prepare(paper, page) { new Image().src = this.picture(paper, page); }
 
   #outline(over, g, working, mates, number) {
     const seen = new Set();
-    let own = null;
     for (const mate of mates) for (const p of mate.record.places ?? []) {
       if (p.page === number && p.box && OWN.has(p.field)) over.append(this.#rect(this.#box(p.box, g), 'at-mate', 1.5));
     }
@@ -81,14 +85,17 @@ export class Leaf {
       if (!seen.has(key)) over.append(svg('text', { class: 'at-tag', x: box.x, y: box.y - 4, 'font-size': 9 }, TAGS[p.field] ?? p.field));
       seen.add(key);
     }
+    // One outline for each printed line that the result stands on.
+    const lines = [];
     for (const p of places.filter((p) => OWN.has(p.field))) {
       const b = this.#box(p.box, g);
-      own = own ? { x: Math.min(own.x, b.x), y: Math.min(own.y, b.y), x1: Math.max(own.x1, b.x1), y1: Math.max(own.y1, b.y1) } : { ...b };
+      const line = lines.find((l) => Math.min(l.y1, b.y1) - Math.max(l.y, b.y) > 0.5 * Math.min(l.y1 - l.y, b.y1 - b.y));
+      if (line) Object.assign(line, { x: Math.min(line.x, b.x), y: Math.min(line.y, b.y), x1: Math.max(line.x1, b.x1), y1: Math.max(line.y1, b.y1) });
+      else lines.push({ ...b });
     }
-    if (own && own.y1 - own.y < 60) over.append(this.#rect(own, 'at-result', 3));
-    else if (own) for (const p of places.filter((p) => OWN.has(p.field))) over.append(this.#rect(this.#box(p.box, g), 'at-result', 3));
+    for (const line of lines) over.append(this.#rect(line, 'at-result', 3));
     replace($('legend'), el('li', {}, '▭ solid: the result'), el('li', {}, '┄ dashed: where the rest was read'));
-    return own;
+    return lines[0] ?? null;
   }
 
   // #box turns a box of the unrotated page (points, y upwards) into the shown

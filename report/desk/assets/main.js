@@ -54,6 +54,7 @@ function draw() {
   drawCell();
   leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch(fail);
   state.shownAt = performance.now();
+  for (const row of visible().slice(state.at + 1, state.at + 3)) if (row.page && (row.page !== state.row.page || row.paper !== state.row.paper)) leaf.prepare(row.paper, row.page);
 }
 
 function drawCell() {
