@@ -5,6 +5,8 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"fmt"
+	"path/filepath"
+	"strings"
 
 	"halfspan/extract/bind/prose"
 	"halfspan/extract/bind/table"
@@ -29,7 +31,8 @@ type Options struct {
 // what to do; what could be read in part comes back with Document.Problems.
 func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 	switch {
-	case pdf.IsPDF(content):
+	case pdf.IsPDF(content), strings.EqualFold(filepath.Ext(path), ".pdf"):
+		// What only its name calls a PDF is told so by the PDF reader.
 		return readPDF(path, content, opt)
 	case jats.Is(content):
 		return jats.Read(path, content)

@@ -71,12 +71,12 @@ func ruleOf(pkg string) []string {
 	return nil
 }
 
-type listed struct {
+type listedPackage struct {
 	ImportPath, Doc, Dir string
 	Imports              []string
 }
 
-func packages(t *testing.T) []listed {
+func packages(t *testing.T) []listedPackage {
 	t.Helper()
 	list := exec.Command("go", "list", "-e", "-json=ImportPath,Doc,Dir,Imports", module+"/...")
 	list.Stderr = os.Stderr
@@ -84,9 +84,9 @@ func packages(t *testing.T) []listed {
 	if err != nil {
 		t.Fatal(err)
 	}
-	var all []listed
+	var all []listedPackage
 	for dec := json.NewDecoder(bytes.NewReader(out)); ; {
-		var p listed
+		var p listedPackage
 		if err := dec.Decode(&p); errors.Is(err, io.EOF) {
 			break
 		} else if err != nil {

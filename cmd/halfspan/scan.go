@@ -79,6 +79,9 @@ func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) erro
 	if err != nil {
 		return err
 	}
+	if len(g.papers) == 0 && len(g.failed) == 0 {
+		return noPapers(paths, g)
+	}
 	sc := &scanning{s: s, opt: opt, root: g.root, reader: readerKey(opt.ocr)}
 	if opt.jsonl {
 		sc.jsonl = json.NewEncoder(s.out)
@@ -93,9 +96,6 @@ func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) erro
 	sc.sum.PassedOver = g.passed
 	for _, u := range g.failed {
 		sc.sum.Unread = append(sc.sum.Unread, review.Unread{Name: u.name, Reason: u.reason})
-	}
-	if len(g.papers) == 0 && len(g.failed) == 0 {
-		return noPapers(paths, g)
 	}
 	if err := sc.read(ctx, g.papers); err != nil {
 		if errors.Is(err, context.Canceled) {
@@ -172,19 +172,21 @@ func (sc *scanning) adopt(l *ledger.Ledger, g *gathered) error {
 // read reads the papers that have changed.
 func (sc *scanning) read(ctx context.Context, papers []paperFile) error {
 	var jobs []job
-	first := map[string]string{} // name by content
-	for _, f := range papers {
-		sum := hashFile(f.path)
-		if other, ok := first[sum]; ok && sum != "" {
-			sc.sum.Same = append(sc.sum.Same, review.Unread{Name: f.name, Reason: "same content as " + other})
+	sums := make([]string, len(papers))
+	for i, f := range papers {
+		sums[i] = hashFile(f.path)
+	}
+	holder := sc.holders(papers, sums)
+	for i, f := range papers {
+		if h := holder[sums[i]]; h != "" && h != f.name {
+			sc.sum.Same = append(sc.sum.Same, review.Unread{Name: f.name, Reason: "same content as " + h})
 			continue
 		}
-		first[sum] = f.name
 		sc.names = append(sc.names, f.name)
 		old, ok := sc.kept[f.name]
-		if ok && !sc.opt.again && old.SHA256 == sum && old.Reader == sc.reader {
+		if ok && !sc.opt.again && old.SHA256 == sums[i] && old.Reader == sc.reader {
 			sc.sum.Unchanged++
-			sc.report(&old)
+			sc.sum.AddPaper(&old)
 			continue
 		}
 		jobs = append(jobs, job{Task: "results", Path: f.path, Name: f.name, OCR: sc.opt.ocr})
@@ -194,6 +196,26 @@ func (sc *scanning) read(ctx context.Context, papers []paperFile) error {
 	watch, clear := newWatcher(sc.s.err, len(jobs))
 	defer clear()
 	return runInOrder(ctx, pool, jobs, watch, func(i int, a answer) error { return sc.take(&jobs[i], a) })
+}
+
+// holders settles which of several files with one content is read: the one that
+// was read before, or else the first.
+func (sc *scanning) holders(papers []paperFile, sums []string) map[string]string {
+	holder := map[string]string{} // name by content
+	for i, f := range papers {
+		if old, ok := sc.kept[f.name]; ok && old.SHA256 == sums[i] && old.Failure == "" && holder[sums[i]] == "" {
+			holder[sums[i]] = f.name
+		}
+	}
+	for i, f := range papers {
+		if holder[sums[i]] == "" {
+			holder[sums[i]] = f.name
+		}
+	}
+	// Files that cannot be read, and empty ones, are each named for themselves.
+	delete(holder, "")
+	delete(holder, emptySum)
+	return holder
 }
 
 // take keeps what a worker made of one paper.
@@ -219,13 +241,8 @@ func (sc *scanning) take(j *job, a answer) error {
 	} else if err := sc.emit(out.Items); err != nil {
 		return err
 	}
-	sc.report(&out.Paper)
+	sc.sum.AddPaper(&out.Paper)
 	return nil
-}
-
-// report notes in the summary how a paper was read.
-func (sc *scanning) report(p *ledger.Paper) {
-	sc.sum.AddPaper(p)
 }
 
 // emit writes records, or holds them for the table.
@@ -314,6 +331,9 @@ func (sc *scanning) rows() ([]ledger.Row, error) {
 	}
 	return slices.DeleteFunc(all, func(r ledger.Row) bool { return !named[r.Working.Record.Paper] }), nil
 }
+
+// emptySum is the SHA-256 of no content at all.
+var emptySum = hex.EncodeToString(sha256.New().Sum(nil))
 
 // hashFile is the SHA-256 of a file's content in hexadecimal; empty where it
 // cannot be read, which the worker reports.

@@ -152,9 +152,22 @@ func showText(j *job, doc *paper.Document) (any, error) {
 	if j.Form == "boxes" {
 		made.Text, err = boxLines(doc, j.Page)
 	} else {
-		made.Text = blockText(doc, j.Page)
+		made.Text = pageText(doc, j.Page)
 	}
 	return made, err
+}
+
+// pageText writes the text of a document as it is printed, with a form feed
+// where a page begins; formats that keep no printed pages are written block by
+// block.
+func pageText(doc *paper.Document, only int) string {
+	switch {
+	case len(doc.Printed) == 0:
+		return blockText(doc, only)
+	case only > 0:
+		return doc.Printed[only-1]
+	}
+	return strings.Join(doc.Printed, "\f")
 }
 
 // blockText writes the pages as they are printed or, for a paper without pages,

@@ -158,6 +158,10 @@ func (b *Book) change(decide func(rows []Row) ([]Decision, error)) ([]Row, error
 	if err := b.refresh(); err != nil {
 		return nil, err
 	}
+	// What is refused anyhow must not make a file.
+	if _, err := decide(b.rows()); err != nil {
+		return nil, err
+	}
 	entries, err := b.decisions.add(b.stamp.Decided, func(since []Decision) ([]Decision, error) {
 		b.take(since)
 		return decide(b.rows())

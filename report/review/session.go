@@ -33,6 +33,7 @@ type Session struct {
 
 	rows  []ledger.Row
 	at    int
+	shown string   // what stands on the screen
 	taken []string // ids of the results decided in this session, for undo
 	count map[ledger.Verdict]int
 }
@@ -103,9 +104,12 @@ func (s *Session) end() {
 // step shows one result and does what the next key says.
 func (s *Session) step() error {
 	row := &s.rows[s.at]
-	fmt.Fprintf(s.Out, "\n%d of %d  %s\n", s.at+1, len(s.rows), row.ID())
-	c := card{s.Out, s.Width, s.Colour, s.Explain}
-	c.show(row)
+	if shown := row.ID() + row.Token(); shown != s.shown {
+		s.shown = shown
+		fmt.Fprintf(s.Out, "\n%d of %d  %s\n", s.at+1, len(s.rows), row.ID())
+		c := card{s.Out, s.Width, s.Colour, s.Explain}
+		c.show(row)
+	}
 	for {
 		fmt.Fprint(s.Out, "> ")
 		key, err := s.In.Key()

@@ -56,8 +56,8 @@ func intervalName(r *working.Record) string {
 // what the printed digits can bear; a dash where there is neither.
 func Spread(r *working.Record) string {
 	switch {
-	case r.SD != nil && r.Use == "printed":
-		return r.SD.String()
+	case r.SD != nil && r.Use == "printed" && r.GivenValue != nil:
+		return *r.GivenValue
 	case r.SD != nil:
 		return Short(*r.SD)
 	case r.SE != nil && r.Scale != nil && *r.Scale != "raw":
@@ -68,9 +68,10 @@ func Spread(r *working.Record) string {
 	return "-"
 }
 
-// DigitsAllow writes the range of SDs that the printed digits allow.
+// DigitsAllow writes the range of SDs that the printed digits allow, where the
+// SD was worked out.
 func DigitsAllow(r *working.Record) string {
-	if r.SDLow == nil || r.SDHigh == nil {
+	if r.Use == "printed" || r.SDLow == nil || r.SDHigh == nil {
 		return ""
 	}
 	return Short(*r.SDLow) + " to " + Short(*r.SDHigh)
