@@ -195,7 +195,7 @@ func (p *parser) fits(lower, upper *Number, sep string, k, end int, in where) bo
 			}
 		}
 		// "(12, 14, 17)": a list.
-		if in == inBracket && (p.kind(end) == TokComma) && p.kind(end+1) == TokNumber && !p.toks[end+1].Spaced {
+		if next := p.kind(end + 2); in == inBracket && p.kind(end) == TokComma && p.kind(end+1) == TokNumber && (next == TokClose || next == TokComma) {
 			return false
 		}
 	case "/":

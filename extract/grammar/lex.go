@@ -178,7 +178,7 @@ func (l *lexer) word() {
 		end = next
 	}
 	lower := fold(l.s[l.pos:end])
-	if l.digitAt(end) && end < stop && !splitWords[lower] && !l.decimalAt(end, stop) {
+	if l.digitAt(end) && end < stop && !splitWords[lower] && !l.decimalAt(end, stop) && !((lower == "t" || lower == "f") && l.loweredAt(end)) {
 		for end < stop {
 			r, size := utf8.DecodeRuneInString(l.s[end:])
 			if !unicode.IsLetter(r) && !isDigit(r) {
@@ -204,6 +204,16 @@ func (l *lexer) singleLetters(i int) bool {
 	}
 	after, _ := utf8.DecodeRuneInString(l.s[i+1+size:])
 	return !unicode.IsLetter(after)
+}
+
+// loweredAt reports that a subscript begins at byte i.
+func (l *lexer) loweredAt(i int) bool {
+	for _, s := range l.in.Lowered {
+		if s.Start >= i {
+			return s.Start == i
+		}
+	}
+	return false
 }
 
 func (l *lexer) letters(i, stop int) int {

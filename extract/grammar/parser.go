@@ -15,6 +15,8 @@ type parser struct {
 	toks  []Token
 	out   Reading
 	stack []int // 1-based indices of the open brackets
+
+	looking bool // hasValue is at work
 }
 
 // Read finds everything that is printed in a stretch of running text.

@@ -216,6 +216,9 @@ func (p *parser) spreadWord(i int) int {
 	if !ok {
 		return i
 	}
+	if p.word(i-1) == "per" {
+		return k // "per se 12"
+	}
 	words := k
 	for steps := 0; steps < 3; steps++ {
 		switch {

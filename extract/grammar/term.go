@@ -11,12 +11,18 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 	if i >= len(p.toks) || p.toks[i].Kind != TokWord {
 		return Meaning{}, i, false
 	}
+	if i > 0 && !p.toks[i].Spaced && (p.toks[i-1].Kind == TokPeriod || p.src[p.toks[i-1].Start:p.toks[i-1].End] == "@") {
+		return Meaning{}, i, false // part of an address: lab.se
+	}
 	for _, e := range vocabulary[singular(p.toks[i].Value)] {
 		if p.toks[i].Value == "quartile" {
 			break // "the highest quartile" is a group
 		}
 		if needsValue[e.words[0]] && i > 0 && !p.toks[i].Spaced && p.toks[i-1].Kind == TokNumber {
 			continue // the b of "1b" is no coefficient
+		}
+		if e.Spread != "" && len(e.words) == 1 && p.kind(i+1) == TokDash && !p.toks[i+1].Spaced && p.kind(i+2) == TokNumber && !p.toks[i+2].Spaced {
+			continue // a name: SE-4
 		}
 		if end, ok := p.pattern(i, e); ok && (!needsValue[e.words[0]] || len(e.words) > 1 || p.hasValue(end)) {
 			return e.Meaning, p.definition(end, e.Meaning), true
@@ -29,7 +35,14 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 // spread behind them: "M = 12.4", "B (SE)".
 var needsValue = map[string]bool{"No": true, "M": true, "B": true, "b": true, "β": true}
 
+// hasValue looks a term's value up behind it; never from within itself, so that
+// "B (B (B (" costs no more than its length.
 func (p *parser) hasValue(i int) bool {
+	if p.looking {
+		return false
+	}
+	p.looking = true
+	defer func() { p.looking = false }()
 	switch p.kind(i) {
 	case 0:
 		return i == 1
@@ -164,9 +177,9 @@ func (p *parser) levelPhrase(i int) (Item, int, bool) {
 	}
 	m, end, ok := p.termAt(k)
 	switch {
-	case ok && m.Spread == SpreadCI && !p.liquid(k, it.Level):
-	case it.Level != "" && p.word(k) == "cl" && p.src[p.toks[k].Start:p.toks[k].End] == "Cl":
-		m, end = Meaning{Spread: SpreadCI}, k+1 // "95% Cl": a small L for the capital I
+	case ok && m.Spread == SpreadCI:
+	case it.Level != "" && (p.word(k) == "cl" || p.word(k) == "cls"):
+		m, end = Meaning{Spread: SpreadCI}, k+1 // confidence limits, or a small L for the capital I
 	default:
 		return it, i, false
 	}
@@ -180,11 +193,6 @@ func (p *parser) levelPhrase(i int) (Item, int, bool) {
 	}
 	it.Span = Span{p.toks[i].Start, p.toks[end-1].End}
 	return it, end, true
-}
-
-// liquid reports a CL that is not a confidence limit: only with a level it is.
-func (p *parser) liquid(k int, level string) bool {
-	return p.word(k) == "cl" && level == ""
 }
 
 // levelAfter reads the level of "CI 95%", "CI (95%)".

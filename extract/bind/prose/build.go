@@ -11,7 +11,7 @@ import (
 )
 
 // result makes the Result of a candidate, with the place of every field.
-func (p *para) result(c *cand) (result.Result, bool) {
+func (p *para) result(c *cand) result.Result {
 	it := &p.r.Items[c.item]
 	r := result.Result{Section: p.block.Section, Zone: p.block.Zone, GivenAs: c.given}
 	place := p.run.At(c.start)
@@ -52,7 +52,7 @@ func (p *para) result(c *cand) (result.Result, bool) {
 	r.Flags = append(r.Flags, c.flags...)
 	p.slips(&r, c)
 	r.Snippet = p.snippet(min(it.Start, c.est.Start), max(it.End, c.est.End))
-	return r, true
+	return r
 }
 
 // printed is a bound as the record keeps it: an open bound by its word.

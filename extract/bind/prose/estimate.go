@@ -97,7 +97,10 @@ func (p *para) misfit(c *cand, n grammar.Number) float64 {
 		w += 3
 	case outside:
 		w += 9
-		if p.gap(c, n) {
+		switch {
+		case p.gap(c, n) && n.Percent && c.lower.Percent && p.r.Items[c.item].Bracket > 0:
+			w = 1 // "6.4% (95% CI 77.2% to 95.5%)": a slip, kept as printed
+		case p.gap(c, n):
 			w -= 6
 		}
 	}

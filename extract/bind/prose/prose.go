@@ -77,6 +77,9 @@ func (f *finder) block(i int) {
 	text.DecimalComma = f.comma
 	p := &para{f: f, block: b, run: &b.Text, s: b.Text.S, r: grammar.Read(text)}
 	p.sentences()
+	if !p.isProse() {
+		return
+	}
 	p.used = make([]bool, len(p.r.Items))
 	for k := range p.r.Items {
 		p.spread(k)
@@ -84,8 +87,8 @@ func (f *finder) block(i int) {
 	p.lists()
 	first := len(f.out)
 	for k := range p.cands {
-		if r, ok := p.result(&p.cands[k]); ok {
-			f.out = append(f.out, r)
+		if c := &p.cands[k]; p.inSentence(c.est.Start) {
+			f.out = append(f.out, p.result(c))
 		}
 	}
 	p.mates(first)

@@ -323,7 +323,7 @@ func (p *para) wordSpread(k int) {
 // same sentence.
 func (p *para) bareBracket(k int) {
 	it := &p.r.Items[k]
-	if it.Value.Value == "" || it.Value.Rel != "" || strings.HasPrefix(it.Value.Value, "-") {
+	if p.looksCited(k) || it.Value.Value == "" || it.Value.Rel != "" || strings.HasPrefix(it.Value.Value, "-") {
 		return
 	}
 	w := p.shared(k, grammar.SpreadSD, grammar.SpreadSE, grammar.SpreadIQR, grammar.SpreadCI, grammar.SpreadRange)

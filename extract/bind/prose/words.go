@@ -1,0 +1,53 @@
+package prose
+
+import (
+	"strings"
+
+	"halfspan/extract/grammar"
+)
+
+// functionWords are what sentences have and rows of a table have not.
+var functionWords = map[string]bool{}
+
+func init() {
+	for _, w := range strings.Fields(`the a an of in and was were is are with for by to at that this from had has have not no on as than
+		between among after during which we our their its be been or but did who these those it both`) {
+		functionWords[w] = true
+	}
+}
+
+// tally counts the words, function words and numbers of a stretch.
+type tally struct{ words, function, numbers int }
+
+func (p *para) tally(from, to int) tally {
+	var t tally
+	for i := p.token(from); i < len(p.r.Tokens) && p.r.Tokens[i].Start < to; i++ {
+		switch tok := p.r.Tokens[i]; tok.Kind {
+		case grammar.TokWord:
+			if functionWords[tok.Value] {
+				t.function++
+			}
+			if len(tok.Value) > 1 {
+				t.words++
+			}
+		case grammar.TokNumber:
+			t.numbers++
+		}
+	}
+	return t
+}
+
+// isProse reports that a block reads as sentences. Rows of a table that a reader
+// took for a paragraph do not: their results have lost their headings.
+func (p *para) isProse() bool {
+	t := p.tally(0, len(p.s))
+	return t.words >= 6 && t.function >= 2 && t.numbers <= t.words
+}
+
+// inSentence reports that the sentence around byte b has words enough for its
+// numbers.
+func (p *para) inSentence(b int) bool {
+	from, to := p.sentence(b)
+	t := p.tally(from, to)
+	return t.words >= 2 && 2*t.numbers <= 3*t.words+6 && 5*t.function >= t.numbers-6
+}
