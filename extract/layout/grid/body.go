@@ -8,6 +8,7 @@ import (
 // bodyBelow finds the body of a table between height top and limit, within
 // sides. open says that it reaches the foot of the page without an end.
 func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok bool) {
+	sides = s.stickOut(sides, top, limit, size)
 	area := box{sides.x0 - size/2, top, sides.x1 + size/2, limit}
 	lines := s.linesIn(area)
 	if len(lines) == 0 || lines[0].top-top > 5*size {
@@ -41,6 +42,20 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 	body = box{area.x0, top, area.x1, max(lines[last].bot, end)}
 	open = end < lines[last].base && lines[last].bot > s.footTop()-4*size || end > s.footTop()-4*size
 	return body, open, tabular > 0
+}
+
+// stickOut widens the sides of a table by what little its lines stick out of
+// its rules to the right.
+func (s *sheet) stickOut(sides box, top, limit, size int) box {
+	x1 := sides.x1
+	for i := range s.segs {
+		g := &s.segs[i]
+		if g.base > top && g.base < min(limit, top+40*size) && g.x0 < sides.x1 && g.x1 > sides.x1 && g.x1 < sides.x1+8*size && g.x0 > sides.x0 && g.n < 5 {
+			x1 = max(x1, g.x1)
+		}
+	}
+	sides.x1 = x1
+	return sides
 }
 
 // notesInside gives the index of the first of the lines at a body's end that are
@@ -232,7 +247,7 @@ func isLetters(t string) bool {
 
 // notesBelow gives the note lines under a body.
 func (s *sheet) notesBelow(body box, limit int) []line {
-	lines := s.linesIn(box{body.x0, body.bot, body.x1, limit})
+	lines := s.linesFrom(box{body.x0, body.bot, body.x1, limit})
 	var out []line
 	for i := range lines {
 		ln := &lines[i]

@@ -34,13 +34,13 @@ func (s *sheet) atoms(l *line) []run {
 		if k > 0 {
 			p := &s.toks[l.toks[k-1]]
 			gap := (t.x0 - p.x1) * 100
-			cut = gap >= wideGap*l.size || gap >= atomGap*l.size && !t.glued && depth <= 0 && figuresMeet(p.text, t.text, gap < 35*l.size)
+			cut = gap >= wideGap*l.size || gap >= atomGap*l.size && !t.glued && depth <= 0 && (figuresMeet(p.text, t.text, gap < 35*l.size) || bracketsMeet(s.toks[out[len(out)-1].toks[0]].text, p.text, t.text))
 		}
 		if cut {
 			out = append(out, run{box: box{t.x0, l.top, t.x1, l.bot}})
 			depth = 0
 		}
-		depth += strings.Count(t.text, "(") + strings.Count(t.text, "[") - strings.Count(t.text, ")") - strings.Count(t.text, "]")
+		depth += bracketDepth(t.text)
 		r := &out[len(out)-1]
 		r.toks, r.x1 = append(r.toks, i), max(r.x1, t.x1)
 	}
@@ -258,7 +258,7 @@ func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bo
 		if figuresMeet(ta.text, tb.text, gap < 35*em) {
 			meet++
 		}
-		if clings(ta.text, tb.text) && !(isBlankMark(tb.text) && gap >= 60*em) {
+		if clings(ta.text, tb.text) && !bracketsMeet(s.toks[firstIn(toks, s, lo)].text, ta.text, tb.text) && !(isBlankMark(tb.text) && gap >= 60*em) {
 			glue++
 		}
 	}
@@ -274,6 +274,16 @@ func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bo
 		return meet*10 >= n*8 && n >= 3 || wide*4 >= n && meet*10 >= n*5, true
 	}
 	return true, true
+}
+
+// firstIn is the first of the tokens right of x.
+func firstIn(toks []int, s *sheet, x int) int {
+	for _, t := range toks {
+		if s.toks[t].mid() > x {
+			return t
+		}
+	}
+	return toks[0]
 }
 
 // clings reports whether two words belong to one cell: a bracket or ± after a

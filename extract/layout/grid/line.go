@@ -22,7 +22,13 @@ type run struct {
 
 // linesIn gives the lines of the words whose middle is inside b, from top to
 // bottom.
-func (s *sheet) linesIn(b box) []line {
+func (s *sheet) linesIn(b box) []line { return s.lines(b, false) }
+
+// linesFrom is linesIn with the whole of each segment that begins inside b: text
+// may be wider than the table it belongs to.
+func (s *sheet) linesFrom(b box) []line { return s.lines(b, true) }
+
+func (s *sheet) lines(b box, whole bool) []line {
 	lo, _ := slices.BinarySearchFunc(s.segs, b.top, func(g segment, y int) int { return cmp.Compare(g.base, y) })
 	var out []line
 	for gi := lo; gi < len(s.segs) && s.segs[gi].base <= b.bot; gi++ {
@@ -34,7 +40,7 @@ func (s *sheet) linesIn(b box) []line {
 		fresh := n < 0 || g.base-out[n].base > max(100, min(g.size, out[n].size)/5)
 		for i := g.first; i < g.first+g.n; i++ {
 			t := &s.toks[i]
-			if !b.holdsX(t.mid()) {
+			if whole && !b.holdsX(g.x0) || !whole && !b.holdsX(t.mid()) {
 				continue
 			}
 			if fresh {

@@ -1,5 +1,7 @@
 package grid
 
+import "strings"
+
 // piece is what a cell has on one line.
 type piece struct {
 	run
@@ -24,15 +26,26 @@ func column(cs []corridor, x int) int {
 func (s *sheet) pieces(ln *line, at int, cs []corridor, em int, head bool) []piece {
 	whole := !head && s.crossesInWord(ln, cs) && len(s.atoms(ln)) == 1
 	var out []piece
+	depth := 0
 	for k, i := range ln.toks {
 		t := &s.toks[i]
 		cut := k == 0
 		if k > 0 && !whole {
-			cut = s.cutBetween(ln.toks[k-1], i, cs, em, head)
+			prev := &s.toks[ln.toks[k-1]]
+			near := (t.x0-prev.x1)*100 < wideGap*em
+			switch {
+			case depth > 0 && near:
+			case near && bracketsMeet(s.toks[out[len(out)-1].toks[0]].text, prev.text, t.text):
+				cut = column(cs, prev.mid()) != column(cs, t.mid())
+			default:
+				cut = s.cutBetween(ln.toks[k-1], i, cs, em, head)
+			}
 		}
 		if cut {
 			out = append(out, piece{run: run{box: box{t.x0, ln.top, t.x1, ln.bot}}, line: at})
+			depth = 0
 		}
+		depth += bracketDepth(t.text)
 		p := &out[len(out)-1]
 		p.toks, p.x1 = append(p.toks, i), max(p.x1, t.x1)
 	}
@@ -60,6 +73,18 @@ func (s *sheet) crossesInWord(ln *line, cs []corridor) bool {
 		}
 	}
 	return false
+}
+
+// bracketsMeet reports whether a piece that begins with a bracket and has come
+// to its end at word a is followed by another bracket, as intervals on a line
+// of their own are.
+func bracketsMeet(first, a, b string) bool {
+	return strings.HasPrefix(first, "(") && strings.HasSuffix(a, ")") && strings.HasPrefix(b, "(")
+}
+
+// bracketDepth is how many brackets a word leaves open.
+func bracketDepth(t string) int {
+	return strings.Count(t, "(") + strings.Count(t, "[") - strings.Count(t, ")") - strings.Count(t, "]")
 }
 
 // columnsOf gives the first and last column that x0..x1 stands in: those whose

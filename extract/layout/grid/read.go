@@ -207,7 +207,7 @@ func (rd *reader) headLines() int {
 		}
 	}
 	ruled := len(full)*2 > n && len(full) > 3
-	if len(full) > 0 && len(full) <= 4 && full[0] <= min(6, n/2) && data == 0 && full[0] < n && len(full)*4 <= n {
+	if len(full) > 0 && len(full) <= 4 && full[0] <= min(6, n/2) && data == 0 && full[0] < n && (len(full) == 1 || len(full)*4 <= n) {
 		data = full[0] // numbers above the one rule under the heading: times, doses, years
 	}
 	if len(full) > 0 && (full[0] > data && full[0] <= 8 && rd.fewFigures(full[0]) || !ruled && full[0] <= data) {

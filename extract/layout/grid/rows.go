@@ -89,6 +89,17 @@ func (rd *reader) rowPitch() int {
 	return all[len(all)/5]
 }
 
+// uniform reports whether the body lines stand at one distance throughout, so
+// that it says nothing about which belong together.
+func (rd *reader) uniform() bool {
+	lo, hi := 1<<30, 0
+	for i := rd.head + 1; i < len(rd.lines); i++ {
+		step := rd.lines[i].base - rd.lines[i-1].base
+		lo, hi = min(lo, step), max(hi, step)
+	}
+	return hi*92 <= lo*100
+}
+
 // figuresShared reports whether two lines have complete figures in one column.
 func (rd *reader) figuresShared(a, b int) bool {
 	for k := range rd.cells[b] {
@@ -116,7 +127,8 @@ func (rd *reader) joins(cur, unit []int, pitch int, ruled bool) bool {
 	if ruled {
 		return step < 3*rd.em && !rd.clash(above, unit)
 	}
-	tight := pitch > 0 && step*100 <= pitch*92 && step*10 <= rd.em*16 || pitch == 0 && step*10 <= rd.em*13
+	uniform := pitch == 0 && rd.uniform()
+	tight := pitch > 0 && step*100 <= pitch*92 && step*10 <= rd.em*16 || pitch == 0 && !uniform && step*10 <= rd.em*13
 	if pitch > 0 && step*10 > pitch*15 && step*10 > rd.em*16 {
 		return false
 	}
@@ -211,8 +223,6 @@ func (rd *reader) dataGoesOn(above map[int]*piece, unit []int, stubUp, dataUp, t
 				on++
 			case p.figure && q.figure:
 				anew++
-			case p.figure && startsP(q.text):
-				on++
 			case tight || startsLow(q.text):
 				on++
 			default:
@@ -224,13 +234,13 @@ func (rd *reader) dataGoesOn(above map[int]*piece, unit []int, stubUp, dataUp, t
 }
 
 // goesOnFigure reports whether a text is the second part of a figure broken
-// over two lines: "(0.92 to 2.76)", "to 2.76)", "± 1.3".
+// over two lines: "(0.92 to 2.76)", "to 2.76)", "± 1.3", or its p value.
 func goesOnFigure(t string) bool {
 	r, _ := utf8.DecodeRuneInString(t)
 	switch {
 	case strings.ContainsRune("([±)]", r):
 		return true
-	case strings.HasPrefix(t, "to "), strings.HasPrefix(t, "– "):
+	case strings.HasPrefix(t, "to "), strings.HasPrefix(t, "– "), isP(t):
 		return true
 	}
 	open := strings.Count(t, "(") - strings.Count(t, ")") + strings.Count(t, "[") - strings.Count(t, "]")
@@ -251,8 +261,10 @@ func unfinished(t string) bool {
 	return false
 }
 
-func startsP(t string) bool {
-	return strings.HasPrefix(t, "P") || strings.HasPrefix(t, "p")
+// isP reports whether a text is a p value that says so.
+func isP(t string) bool {
+	rest, ok := strings.CutPrefix(strings.ToLower(t), "p")
+	return ok && strings.IndexAny(strings.TrimLeft(rest, "  "), "=<>≤≥") == 0
 }
 
 func startsLow(t string) bool {

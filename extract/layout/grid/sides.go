@@ -113,8 +113,8 @@ func (s *sheet) captionLines(l *label, sides box, top int) []line {
 	if top == 0 {
 		end = l.box.bot + 16*l.size
 	}
-	area := box{min(sides.x0, l.box.x0), l.box.top, max(sides.x1, l.box.x1), end}
-	lines := s.linesIn(area)
+	area := box{min(sides.x0, l.box.x0) - l.size, l.box.top, max(sides.x1, l.box.x1), end}
+	lines := s.linesFrom(area)
 	var out []line
 	for i := range lines {
 		ln := lines[i]

@@ -3,6 +3,7 @@ package grid
 import (
 	"slices"
 	"strings"
+	"unicode"
 
 	"halfspan/extract/paper"
 	"halfspan/extract/tidy"
@@ -355,7 +356,7 @@ func (w *writer) text(lines [][]int) paper.TextRun {
 			if b.Len() > 0 {
 				switch {
 				case k == 0 && li > 0:
-					if !w.unhyphen(&b, &run, t.text) {
+					if !w.unhyphen(&b, &run, t.text) && !rangeGoesOn(b.String(), t.text) {
 						b.WriteByte(' ')
 					}
 				case k > 0 && !t.glued:
@@ -378,6 +379,13 @@ func (w *writer) text(lines [][]int) paper.TextRun {
 	}
 	run.S = b.String()
 	return run
+}
+
+// rangeGoesOn reports whether a line ends with the dash of a range whose second
+// number the next line begins with.
+func rangeGoesOn(before, next string) bool {
+	body := strings.TrimRight(before, "–—-−")
+	return body != before && body != "" && (unicode.IsDigit(lastRune(body)) || lastRune(body) == '%') && unicode.IsDigit(firstRune(next))
 }
 
 // unhyphen takes back a hyphen at a line's end where the word goes on in lower
