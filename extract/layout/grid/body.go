@@ -26,7 +26,7 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 			}
 			continue
 		}
-		if !s.goesOn(lines, i, last, end, sides) {
+		if !s.goesOn(lines, i, last, end, sides, limit) {
 			break
 		}
 		last = i
@@ -142,7 +142,7 @@ func (s *sheet) isTabular(ln *line) bool {
 
 // goesOn reports whether line i, below the last rule, still belongs to the
 // table whose last line is lines[last].
-func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
+func (s *sheet) goesOn(lines []line, i, last, end int, sides box, limit int) bool {
 	ln := &lines[i]
 	if last >= 0 && end > lines[last].base && s.closed(sides, lines[0].top, end) && !s.figuresIn(ln) {
 		return false
@@ -165,7 +165,12 @@ func (s *sheet) goesOn(lines []line, i, last, end int, sides box) bool {
 	if s.isTabular(ln) {
 		return true
 	}
-	return s.cellsFollow(lines, i)
+	if s.cellsFollow(lines, i) {
+		return true
+	}
+	// The first words of a row at the foot of the page, whose rest stands on the next.
+	foot := limit >= s.bounds.bot && len(lines)-i <= 2 && end < prevBot && ln.top-prevBot < size
+	return foot && !s.isNoteStart(ln) && ln.x1-ln.x0 < sides.width()/2 && len(s.runs(ln, 90)) == 1
 }
 
 // closed reports whether three or more rules of the table's width end at height

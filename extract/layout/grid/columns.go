@@ -94,8 +94,9 @@ func allDigits(t string) bool {
 	return t != "" && strings.Trim(t, "0123456789") == ""
 }
 
-// findColumns gives the corridors between the columns of the body lines.
-func (s *sheet) findColumns(lines []line, em int) []corridor {
+// findColumns gives the corridors between the columns of the body lines. The
+// heading lines only say where "12.4 (1.3)" is two columns.
+func (s *sheet) findColumns(lines, head []line, em int) []corridor {
 	atoms := make([][]run, len(lines))
 	for i := range lines {
 		atoms[i] = s.atoms(&lines[i])
@@ -138,7 +139,7 @@ func (s *sheet) findColumns(lines []line, em int) []corridor {
 		}
 		right = max(right, sp.x1)
 	}
-	return s.votes(s.hidden(s.votes(cs, kept, em), kept, em), kept, em)
+	return s.votes(s.hidden(s.votes(cs, kept, head, em), kept, em), kept, head, em)
 }
 
 // besides gives the tokens of the lines of one run that stand between two lines
@@ -208,7 +209,7 @@ func overflows(a *run, figures []box) bool {
 // votes drops the corridors that are only spaces between the words of a cell:
 // each line with words on both sides says how wide its gap is and whether two
 // cells can meet there.
-func (s *sheet) votes(cs []corridor, kept [][]int, em int) []corridor {
+func (s *sheet) votes(cs []corridor, kept [][]int, head []line, em int) []corridor {
 	for again := true; again; {
 		again = false
 		for k := 0; k < len(cs); k++ {
@@ -219,7 +220,7 @@ func (s *sheet) votes(cs []corridor, kept [][]int, em int) []corridor {
 			if k+1 < len(cs) {
 				hi = cs[k+1].mid()
 			}
-			ok, tight := s.vote(cs[k], lo, hi, kept, em)
+			ok, tight := s.vote(cs[k], lo, hi, kept, head, em)
 			cs[k].tight = tight
 			if !ok {
 				cs = slices.Delete(cs, k, k+1)
@@ -231,7 +232,7 @@ func (s *sheet) votes(cs []corridor, kept [][]int, em int) []corridor {
 	return cs
 }
 
-func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bool) {
+func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, head []line, em int) (ok, tight bool) {
 	n, wide, narrow, meet, glue := 0, 0, 0, 0, 0
 	for _, toks := range kept {
 		a, b := -1, -1
@@ -267,7 +268,10 @@ func (s *sheet) vote(c corridor, lo, hi int, kept [][]int, em int) (ok, tight bo
 		return true, false
 	case glue*10 >= n*8:
 		// "12.4 ± 1.3" set in three columns is one cell; "12.4" and "(1.3)" far apart are two.
-		return wide*10 >= n*8 && !s.pmBetween(c, lo, hi, kept) && (c.x1-c.x0)*100 >= 150*em, false
+		if s.pmBetween(c, kept) {
+			return false, false
+		}
+		return s.headParts(c, lo, hi, head, em) || wide*10 >= n*8 && (c.x1-c.x0)*100 >= 150*em, false
 	case wide*2 >= n:
 		return true, false
 	case narrow*2 >= n:
@@ -302,12 +306,27 @@ func clings(a, b string) bool {
 	return strings.HasSuffix(a, ",") || strings.HasSuffix(a, "(") || strings.HasSuffix(a, "[")
 }
 
-// pmBetween reports whether words beside a corridor begin or end with ±.
-func (s *sheet) pmBetween(c corridor, lo, hi int, kept [][]int) bool {
+// pmBetween reports whether a word beside a corridor ends or begins with ±.
+func (s *sheet) pmBetween(c corridor, kept [][]int) bool {
 	for _, toks := range kept {
-		for _, t := range toks {
-			m := s.toks[t].mid()
-			if m > lo && m < hi && strings.Contains(s.toks[t].text, "±") {
+		for k := 1; k < len(toks); k++ {
+			a, b := &s.toks[toks[k-1]], &s.toks[toks[k]]
+			if a.mid() < c.mid() && b.mid() > c.mid() && (strings.HasSuffix(a.text, "±") || strings.HasPrefix(b.text, "±")) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// headParts reports whether a heading line has a cell on either side of a
+// corridor, between the neighbouring ones, with a wide gap between.
+func (s *sheet) headParts(c corridor, lo, hi int, head []line, em int) bool {
+	for i := range head {
+		toks := head[i].toks
+		for k := 1; k < len(toks); k++ {
+			a, b := &s.toks[toks[k-1]], &s.toks[toks[k]]
+			if a.mid() > lo && a.mid() < c.mid() && b.mid() > c.mid() && b.mid() < hi && (b.x0-a.x1)*100 >= wideGap*em {
 				return true
 			}
 		}

@@ -95,6 +95,14 @@ func (s *sheet) join(toks []int) string {
 	return b.String()
 }
 
+func (s *sheet) joinLines(lines [][]int) string {
+	var all []int
+	for _, l := range lines {
+		all = append(all, l...)
+	}
+	return s.join(all)
+}
+
 // isProse reports whether a run reads like running text in the page's own size.
 func (s *sheet) isProse(r *run) bool {
 	if len(r.toks) < 5 || r.width() < 10*s.bodySize {

@@ -66,7 +66,7 @@ func newReader(s *sheet, body box) *reader {
 		}
 	}
 	rd.head = rd.headLines()
-	rd.cs = s.findColumns(rd.lines[rd.head:], rd.em)
+	rd.cs = s.findColumns(rd.lines[rd.head:], rd.lines[:rd.head], rd.em)
 	rd.ownStub()
 	rd.cells = make([][]piece, len(rd.lines))
 	for i := range rd.lines {

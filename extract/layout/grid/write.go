@@ -30,6 +30,7 @@ func (rd *reader) write(t *paper.Table, w *writer) {
 		rd.writeRow(&g, t.HeadRows+k, lines)
 	}
 	t.Rows = t.HeadRows + len(rows)
+	rd.finishFigures(&g, t.HeadRows, t.Rows)
 	rd.spanStubs(&g, rows, t.HeadRows)
 	g.cells = slices.DeleteFunc(g.cells, func(c gridCell) bool { return len(c.toks) == 0 })
 	slices.SortStableFunc(g.cells, func(a, b gridCell) int {
@@ -129,6 +130,27 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 			c.ColSpan = 1
 		}
 		g.put(c, p.toks)
+	}
+}
+
+// finishFigures takes the second part of a figure that a cell breaks over two
+// rows back to its first: "1.84 (0.92" over "to 2.76)".
+func (rd *reader) finishFigures(g *cellGrid, from, to int) {
+	for row := from + 1; row < to; row++ {
+		for col := 1; col <= len(rd.cs); col++ {
+			k, ok := g.at[[2]int{row, col}]
+			up, upOk := g.at[[2]int{row - 1, col}]
+			if !ok || !upOk || g.cells[k].Col != col || g.cells[up].Col != col || g.cells[up].RowSpan > 1 {
+				continue
+			}
+			a, b := rd.s.joinLines(g.cells[up].toks), rd.s.joinLines(g.cells[k].toks)
+			if !isFigure(a) || !unfinished(a) || !(goesOnFigure(b) || strings.HasSuffix(a, "(") || strings.Contains(b, ")") && strings.Count(a, "(") > strings.Count(a, ")")) {
+				continue
+			}
+			g.cells[up].toks = append(g.cells[up].toks, g.cells[k].toks...)
+			g.cells[k].toks = nil
+			delete(g.at, [2]int{row, col})
+		}
 	}
 }
 
