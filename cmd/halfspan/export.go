@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io"
@@ -20,6 +21,8 @@ type exportOptions struct {
 	settled  string
 	out      string
 	jsonl    bool
+	evidence string
+	marked   string
 }
 
 func newExport(s *streams) *cobra.Command {
@@ -39,10 +42,11 @@ has settled (--settled); the others are listed.
 		Example: `  halfspan export papers                          into halfspan-results.csv
   halfspan export papers --out tables/mass.csv
   halfspan export papers --checker AB,CD --settled EF
-  halfspan export --out - > results.csv           without a codebook`,
+  halfspan export --out - > results.csv           without a codebook
+  halfspan export papers --evidence evidence --marked marked`,
 		Args: cobra.MaximumNArgs(1),
-		RunE: func(_ *cobra.Command, args []string) error {
-			return exportResults(s, args, &opt)
+		RunE: func(cmd *cobra.Command, args []string) error {
+			return exportResults(cmd.Context(), s, args, &opt)
 		},
 	}
 	cmd.Flags().StringVar(&opt.ledger, "ledger", "", "the ledger file (default: halfspan.ledger in PATH, here, or in the one folder here that has one)")
@@ -50,6 +54,8 @@ has settled (--settled); the others are listed.
 	cmd.Flags().StringVar(&opt.settled, "settled", "", "who has settled what two checkers did not agree on")
 	cmd.Flags().StringVar(&opt.out, "out", "", "the file to write; - for standard output (default halfspan-results.csv, or .jsonl)")
 	cmd.Flags().BoolVar(&opt.jsonl, "jsonl", false, "JSON Lines instead of CSV")
+	cmd.Flags().StringVar(&opt.evidence, "evidence", "", "also write a cut-out of the page for every exported result, named by its id, into this folder")
+	cmd.Flags().StringVar(&opt.marked, "marked", "", "also write copies of the PDFs with the exported results highlighted into this folder")
 	return cmd
 }
 
@@ -60,7 +66,7 @@ type chosen struct {
 	sums      map[string]string // SHA-256 over the decisions, by checker
 }
 
-func exportResults(s *streams, args []string, opt *exportOptions) error {
+func exportResults(ctx context.Context, s *streams, args []string, opt *exportOptions) error {
 	var what *chosen
 	var err error
 	if len(opt.checkers) > 1 || opt.settled != "" {
@@ -86,6 +92,9 @@ func exportResults(s *streams, args []string, opt *exportOptions) error {
 		if err := write(s.out); err != nil {
 			return err
 		}
+		if err := writeEvidence(ctx, s, args, opt, what.rows); err != nil {
+			return err
+		}
 		return reportExport(s.err, what, "")
 	}
 	if err := writeFile(out, write); err != nil {
@@ -99,6 +108,9 @@ func exportResults(s *streams, args []string, opt *exportOptions) error {
 			return err
 		}
 		wrote += ", explained in " + codebook
+	}
+	if err := writeEvidence(ctx, s, args, opt, what.rows); err != nil {
+		return err
 	}
 	return reportExport(s.out, what, wrote)
 }

@@ -18,13 +18,14 @@ import (
 
 // A job is what a worker process is asked to do with one paper.
 type job struct {
-	Task  string `json:"task"` // one of tasks
-	Path  string `json:"path"` // to open it
-	Name  string `json:"name"` // as it is to stand in the records
-	OCR   bool   `json:"ocr,omitempty"`
-	Page  int    `json:"page,omitempty"`  // only this page, for the tasks that show a paper; 0 all
-	Width int    `json:"width,omitempty"` // of a picture, in pixels
-	Form  string `json:"form,omitempty"`  // of the output, for the tasks that have several
+	Task     string          `json:"task"` // one of tasks
+	Path     string          `json:"path"` // to open it
+	Name     string          `json:"name"` // as it is to stand in the records
+	OCR      bool            `json:"ocr,omitempty"`
+	Page     int             `json:"page,omitempty"`     // only this page, for the tasks that show a paper; 0 all
+	Width    int             `json:"width,omitempty"`    // of a picture, in pixels
+	Evidence json.RawMessage `json:"evidence,omitempty"` // what to show of it, for the tasks that write evidence
+	Form     string          `json:"form,omitempty"`     // of the output, for the tasks that have several
 }
 
 // A task makes something of a document, in the worker process.
@@ -48,6 +49,8 @@ func glances() map[string]glance {
 	return map[string]glance{
 		"pages":   showPages,   // pageFacts
 		"picture": showPicture, // drawn
+		"cutouts": showCutouts, // cutouts
+		"marked":  showMarked,  // marked
 	}
 }
 
