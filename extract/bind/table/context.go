@@ -144,7 +144,7 @@ func unbalanced(s string) string {
 	return strings.Trim(s, edge)
 }
 
-var contrastWord = regexp.MustCompile(`(?i)\bdifferences?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of effect\b|\beffect estimates?\b|\bminus\b`)
+var contrastWord = regexp.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
 
 func isContrast(low string) bool { return contrastWord.MatchString(low) }
 
@@ -465,6 +465,9 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			x.armAt = l
 		}
 	}
+	if !x.contrast && len(arms) == 0 && f.colArms && f.columnStatistic(e) == "coefficient" && len(f.armNames()) == 2 {
+		x.contrast = true // a model's coefficient beside the columns of two arms
+	}
 	if len(others) > 0 && len(others) < len(arms) {
 		// One heading is an arm by name: the others say what it is about.
 		arms = without(arms, others)
@@ -477,6 +480,16 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		x.armFrom = f.columnName(e.col)
 	}
 	x.time = joinPath(times, ", ")
+}
+
+// columnStatistic gives the statistic that the estimate's column announces.
+func (f *frame) columnStatistic(e *estimate) string {
+	for _, q := range f.columnRole(e.row, e.col).pairs {
+		if q.Statistic != "" {
+			return q.Statistic
+		}
+	}
+	return ""
 }
 
 func without(all, taken []string) []string {

@@ -98,6 +98,9 @@ func (f *frame) rowEvidence(r int) countGrade {
 	if len(cells) == 0 {
 		return countOpen
 	}
+	if !whole {
+		return countNever // small means with small SDs fit by chance
+	}
 	sum := 0.0
 	fit, miss, known := 0, 0, 0
 	for _, p := range cells {
@@ -109,7 +112,11 @@ func (f *frame) rowEvidence(r int) countGrade {
 			continue
 		}
 		known++
-		if math.Abs(100*p.a/float64(p.n)-p.b) <= 1 {
+		within := 1.0
+		if p.bDec > 0 {
+			within = 0.3
+		}
+		if math.Abs(100*p.a/float64(p.n)-p.b) <= within {
 			fit++
 		} else {
 			miss++
@@ -117,9 +124,6 @@ func (f *frame) rowEvidence(r int) countGrade {
 	}
 	if known > 0 && fit > 0 && miss <= (known-1)/3 {
 		return countLikely
-	}
-	if !whole {
-		return countNever
 	}
 	if len(cells) > 1 && sum > 0 && (rowPercents(cells, sum) || oneTotal(cells)) {
 		return countLikely

@@ -48,10 +48,16 @@ func (f *frame) statements(e *estimate) []statement {
 	}
 	byMarks(e.marks, rankCell)
 	ln := &f.lines[e.row]
+	path := f.path(e.row, e.col)
+	if k := len(path) - 1; k >= 0 && ownMeaning(path[k].text) {
+		// A column of differences says itself what it prints; the row label
+		// speaks of the arms' columns.
+		byLabel(path[k], rankRow, f.columnName(e.col))
+		path = path[:k]
+	}
 	for i := len(ln.labels) - 1; i >= 0; i-- {
 		byLabel(ln.labels[i], rankRow, "row label")
 	}
-	path := f.path(e.row, e.col)
 	for i := len(path) - 1; i >= 0; i-- {
 		byLabel(path[i], rankColumn, f.columnName(e.col))
 	}
@@ -67,6 +73,19 @@ func (f *frame) statements(e *estimate) []statement {
 	}
 	out = append(out, f.tableStatements()...)
 	return out
+}
+
+// ownMeaning reports a column heading of a comparison that names its spread.
+func ownMeaning(s string) bool {
+	if !compares(s) && !isContrast(fold(s)) {
+		return false
+	}
+	for _, q := range readPhrase(s).pairs {
+		if q.Spread != "" {
+			return true
+		}
+	}
+	return false
 }
 
 // tableStatements gives what caption and notes say for the whole table.

@@ -113,7 +113,7 @@ var fillers = map[string]bool{"value": true, "values": true, "adj": true, "adjus
 	"estimate": true, "estimates": true, "estimated": true, "est": true, "of": true, "the": true, "and": true, "or": true, "in": true, "for": true,
 	"with": true, "as": true, "per": true, "cent": true, "two": true, "sided": true, "tailed": true, "statistic": true, "statistics": true, "to": true, "from": true,
 	"min": true, "max": true, "th": true, "st": true, "number": true, "patients": true, "subjects": true, "participants": true, "between": true,
-	"group": true, "groups": true, "dif": true, "diff": true, "data": true, "are": true, "is": true, "observed": true, "mean": true, "total": true, "unless": true}
+	"group": true, "groups": true, "dif": true, "diff": true, "data": true, "are": true, "is": true, "observed": true, "model": true, "mean": true, "total": true, "unless": true}
 
 // restWords gives the words of s that are in no item and are no fillers.
 func restWords(s string, h grammar.Heading) []string {

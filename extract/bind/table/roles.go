@@ -168,7 +168,7 @@ var (
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
 		`start|entry|immediately|delivery|birth)` +
 		`)`)
-	changeMark = regexp.MustCompile(`(?i)\b(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?|Δ|delta|reductions?|decreases?|increases?|declines?|improvements?|variation)\b(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
+	changeMark = regexp.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
 
 // isTimeHeading reports that a folded heading names a time or a period and

@@ -1,6 +1,9 @@
 package table
 
 import (
+	"strings"
+	"unicode"
+
 	"halfspan/extract/paper"
 )
 
@@ -42,6 +45,11 @@ func (f *frame) findLines() {
 		ln := &f.lines[r]
 		own := f.ownLabels(r)
 		ln.kind = f.kindOf(r, own)
+		if lastData >= 0 && f.wraps(r, lastData, own) {
+			f.joinLabel(lastData, own[0])
+			ln.kind = lineNone
+			continue
+		}
 		if ln.kind == lineHead {
 			f.addMidHead(r)
 			if len(own) > 0 {
@@ -75,6 +83,55 @@ func (f *frame) findLines() {
 		}
 	}
 	f.nest()
+}
+
+// wraps reports that row r only goes on with the label of the row above, beside
+// second lines of its p values.
+func (f *frame) wraps(r, above int, own []label) bool {
+	if len(own) != 1 || len(f.lines[above].labels) == 0 || f.grid[r][0] == nil || f.grid[r][0].Head && f.grid[r][0].RowSpan > 1 {
+		return false
+	}
+	if above != r-1 {
+		return false
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if cell := f.cellAt(r, c); cell != nil && !isBlankText(cell.Text.S) && f.columnRole(r, c).kind != roleP && !f.pColumn(c) && !f.reads[cell].pLike() && !f.underP(c) {
+			return false
+		}
+	}
+	first := []rune(own[0].text)
+	last := f.lines[above].labels[len(f.lines[above].labels)-1].text
+	return len(first) > 0 && unicode.IsLower(first[0]) || strings.HasSuffix(last, ",") || strings.HasSuffix(last, "-")
+}
+
+// underP reports that the column beside p values, under their heading or next
+// to them, holds p values by what is printed.
+func (f *frame) underP(c int) bool {
+	small, all := 0, 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		cell := f.cellAt(r, c)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		all++
+		vs := f.reads[cell].cell.Values
+		if len(vs) == 1 && len(vs[0].Parts) == 0 {
+			if v, ok := vs[0].Estimate.Float(); ok && v >= 0 && v <= 1 && strings.Contains(vs[0].Estimate.Value, ".") {
+				small++
+			}
+		}
+	}
+	return all > 2 && 10*small >= 9*all && f.pColumn(min(c+1, f.tab.Cols-1))
+}
+
+// joinLabel puts the second line of a wrapped label behind the first.
+func (f *frame) joinLabel(r int, more label) {
+	ls := append([]label{}, f.lines[r].labels...)
+	l := &ls[len(ls)-1]
+	l.text = clean(l.text + " " + more.text)
+	l.raw = clean(l.raw + " " + more.raw)
+	l.marks = append(append([]string{}, l.marks...), more.marks...)
+	f.lines[r].labels = ls
 }
 
 // innerLabelsBelow reports that the next filled row labels only its inner stub.

@@ -432,10 +432,30 @@ var noteFiller = map[string]bool{"score": true, "the": true, "value": true, "mea
 // where the table is about one arm.
 func (f *frame) captionSize(_ *estimate, x *context) (size, bool) {
 	c := &f.tab.Caption
-	if n, ok := nForArm(c.S, x.arm, f.otherArms(x.arm)); ok {
-		return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(0)}, true
+	for _, name := range f.otherNames(x.arm) {
+		if n, ok := nForArm(c.S, name, f.otherArms(x.arm)); ok {
+			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(0)}, true
+		}
 	}
 	return size{}, false
+}
+
+// otherNames gives the arm's name and, of two arms of which one is the control,
+// the general words that captions use for them.
+func (f *frame) otherNames(arm string) []string {
+	out := []string{arm}
+	names := f.armNames()
+	if len(names) != 2 || !f.aboutArms(arm) {
+		return out
+	}
+	c0, c1 := controls.MatchString(names[0]), controls.MatchString(names[1])
+	if c0 == c1 {
+		return out
+	}
+	if controls.MatchString(arm) {
+		return append(out, "control")
+	}
+	return append(out, "intervention", "treatment", "experimental")
 }
 
 // loneSize reads the only n of caption or notes where the table has one arm.
