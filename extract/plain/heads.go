@@ -60,7 +60,7 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
-	headFuel    = 50_000 // steps of the search for one table
+	headFuel    = 400_000 // steps of the search for one table
 )
 
 // headIndex counts the cells used in each heading row.
@@ -135,11 +135,15 @@ func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
 				if s.steps++; s.steps > headFuel {
 					return nil
 				}
-				score := s.score(level, cell, from, width, height, used)
+				score := s.score(level, cell, from, width, height)
 				for _, below := range s.tile(level+height, from, from+width, after) {
+					group := 0
+					if width > 1 && level+height < len(s.rows) {
+						group = s.groupScore(level+height, width, used, below.used)
+					}
 					for _, rest := range s.tile(level, from+width, to, below.used) {
 						s.steps++
-						total := score + below.score + rest.score
+						total := score + group + below.score + rest.score
 						if w := better(&ways, rest.used, total); w != nil {
 							w.last = chain(&placed{level, cell, spot{from, width, height}, nil}, below.last, rest.last)
 						}
@@ -179,9 +183,9 @@ func better(ways *[]headWay, used headIndex, score int) *headWay {
 	return &(*ways)[len(*ways)-1]
 }
 
-// score says how well a heading suits the columns [from, from+width) and the
-// headings below it. Hundredths of a full likeness.
-func (s *headSearch) score(level, cell, from, width, height int, used headIndex) int {
+// score says how well a heading suits the columns [from, from+width).
+// Hundredths of a full likeness.
+func (s *headSearch) score(level, cell, from, width, height int) int {
 	c := &s.rows[level][cell]
 	lowest := level+height == len(s.rows)
 	score := 0
@@ -191,45 +195,56 @@ func (s *headSearch) score(level, cell, from, width, height int, used headIndex)
 		if level == 0 && c.kind != empty && score == 0 && s.body[from].mostly(textual) {
 			score = 40 // a column of words has its name at the top
 		}
-		if height > 1 {
-			score += reachesDown(from, s.cols)
-		}
 	case lowest:
 		for k := from; k < from+width; k++ {
 			score += min(suits(c.label, &s.body[k]), 40)
 		}
 		score -= 100 // a heading over several columns without headings of their own
-		if from == 0 && s.body[1%s.cols].mostly(textual) && s.body[0].mostly(textual) {
+		if from == 0 && s.body[width-1].mostly(textual) && s.body[0].mostly(textual) {
 			score += 100 // but a stub of two columns is often named once
 		}
+	case width == 1 && c.kind == empty:
+		score = 10
 	case width == 1:
-		if c.kind == empty {
-			score = 10
-		} else if pWord.MatchString(c.label) {
+		if pWord.MatchString(c.label) {
 			score = suits(c.label, &s.body[from]) / 2
 		}
-		if height > 1 {
-			score += reachesDown(from, s.cols) - 10
-		}
 	default:
-		score = s.groupScore(level+height, int(used[min(level+height, maxHeadRows-1)]), width)
-		if c.kind == empty {
-			score -= 150
-		} else {
-			score += s.suitsAll(c.label, from, width)
+		score = s.wideScore(level, c, from, width)
+	}
+	if height > 1 && width == 1 {
+		score += reachesDown(from, s.cols)
+	}
+	if height > 1 && !lowest {
+		score -= 10 + 20*(width-1)
+	}
+	return score
+}
+
+// groupWord is what a heading over several columns often says: whom they are
+// about, or when.
+var groupWord = regexp.MustCompile(`(?i)\b(?:groups?|arms?|treatments?|weeks?|months?|days?|years?|baseline|follow-?up|visit)\b`)
+
+// wideScore says how well a heading suits being over several columns that have
+// headings of their own.
+func (s *headSearch) wideScore(level int, c *rowCell, from, width int) int {
+	score := -20 * width * width / s.cols // groups are about as wide as one another
+	switch {
+	case c.kind == empty:
+		score -= 150
+	case pWord.MatchString(c.label):
+		score -= 80
+	default:
+		score += s.suitsAll(c.label, from, width)
+		if groupWord.MatchString(c.label) {
+			score += 20
 		}
-		if from == 0 && s.body[0].mostly(textual) && !s.body[width-1].mostly(textual) {
-			score -= 60 // the stub is not grouped with values
-		}
-		if level > 0 {
-			score -= 40
-		}
-		if height > 1 {
-			score -= 30
-		}
-		if strings.TrimSpace(c.label) != "" && pWord.MatchString(c.label) {
-			score -= 80
-		}
+	}
+	if level > 0 {
+		score -= 40
+	}
+	if s.body[from].mostly(textual) && !s.body[from+width-1].mostly(textual) {
+		score -= 60 // the stub is not grouped with values
 	}
 	return score
 }
@@ -246,45 +261,62 @@ func reachesDown(col, cols int) int {
 	return 0
 }
 
-// groupScore looks at the width headings below a wide one, from index first of
-// their row: like those of the neighbour group is good, the same word twice
-// within the group is bad.
-func (s *headSearch) groupScore(level, first, width int) int {
-	if level >= len(s.rows) {
-		return 0
+// groupScore looks at the headings below a wide one: those of the next row and
+// those of the last row, whichever tell more. before and after are the cells
+// used in each row without and with the group's.
+func (s *headSearch) groupScore(level, width int, before, after headIndex) int {
+	score := s.likeOthers(level, before, after)
+	if last := len(s.rows) - 1; last > level && int(after[last]-before[last]) == width {
+		score = max(score, s.likeOthers(last, before, after))
 	}
+	return score
+}
+
+// likeOthers says how well the cells of one row make a group: that another
+// group has the same is good, the same word twice within is bad.
+func (s *headSearch) likeOthers(level int, before, after headIndex) int {
 	row := s.rows[level]
-	if first+width > len(row) {
+	first, n := int(before[level]), int(after[level])-int(before[level])
+	if n < 2 {
 		return 0
 	}
 	score := 0
 	distinct := map[string]bool{}
-	for _, c := range row[first : first+width] {
+	for _, c := range row[first : first+n] {
 		distinct[strings.ToLower(c.label)] = true
 	}
-	for other := range row {
-		if len(distinct) > 1 && (other+width <= first || other >= first+width) && sameLabels(row, other, first, width) {
-			score += 100
-			break
-		}
+	if len(distinct) > 1 {
+		score += neighbour(row, first, n)
 	}
-	if len(distinct) > 1 && len(distinct) < width {
+	if len(distinct) > 1 && len(distinct) < n {
 		score -= 80
 	}
-	for k, c := range row[first : first+width] {
-		if width > 1 && pWord.MatchString(c.label) {
-			if k == width-1 {
+	for k, c := range row[first : first+n] {
+		if pWord.MatchString(c.label) {
+			if k == n-1 {
 				score += 30 // a p value closes its group
 			} else {
 				score -= 30
 			}
 		}
 	}
-	score -= 2 * width * width // groups are about as wide as one another
 	if row[first].kind == empty {
 		score -= 60 // a group does not begin with a nameless column
 	}
 	return score
+}
+
+// neighbour looks for the same n headings next to those from first on, at most
+// two headings of single columns between.
+func neighbour(row []rowCell, first, n int) int {
+	for gap, score := range []int{100, 60, 60} {
+		for _, other := range []int{first - n - gap, first + n + gap} {
+			if other >= 0 && sameLabels(row, other, first, n) {
+				return score
+			}
+		}
+	}
+	return 0
 }
 
 func sameLabels(row []rowCell, a, b, n int) bool {
@@ -292,14 +324,25 @@ func sameLabels(row []rowCell, a, b, n int) bool {
 		return false
 	}
 	for k := 0; k < n; k++ {
-		if !strings.EqualFold(row[a+k].label, row[b+k].label) {
+		if !sameLabel(row[a+k].label, row[b+k].label) {
 			return false
 		}
 	}
 	return true
 }
 
-var pWord = regexp.MustCompile(`(?i)^\W*p[a-d]?\W*$|\bp[- ]?values?|^sig(?:nificance|\.)?$|^statistics?$`)
+// sameLabel compares two headings but for case, signs and a mark at the end.
+func sameLabel(a, b string) bool {
+	a, b = bare.ReplaceAllString(strings.ToLower(a), ""), bare.ReplaceAllString(strings.ToLower(b), "")
+	if len(a) > len(b) {
+		a, b = b, a
+	}
+	return a == b || len(a) > 2 && len(b)-len(a) <= 2 && strings.HasPrefix(b, a)
+}
+
+var bare = regexp.MustCompile(`[^\pL\pN]+`)
+
+var pWord = regexp.MustCompile(`(?i)^\W*p[a-d]?\b|\bp[- ]?values?|^sig(?:nificance|\.)?$|^statistics?$`)
 
 // headWords tie words of a heading to what its column holds.
 var headWords = []struct {
@@ -312,7 +355,7 @@ var headWords = []struct {
 	{regexp.MustCompile(`(?i)^\W*(?:\d\d\s*%\s*)?(?:CI|confidence interval|IQR|range)\W*$`), []kind{interval}},
 	{regexp.MustCompile(`(?i)^(?:mean|median|n|no\.?|number).*\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|IQR|standard)[^)]*\)|\w\s*\(\s*(?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.)\s*\)`), []kind{bracket, estimate}},
 	{regexp.MustCompile(`(?i)\((?:n|no\.?)\)$`), []kind{whole}},
-	{regexp.MustCompile(`(?i)^\W*(?:n|no\.?|number)\W*$`), []kind{whole}},
+	{regexp.MustCompile(`(?i)^\W*(?:total\s+)?(?:n|no\.?|number)\W*$`), []kind{whole}},
 	{regexp.MustCompile(`(?i)^\W*(?:mean|SD|s\.d\.|SEM?|s\.e\.|%|median|B|β|t|F|z|χ2|OR|RR|HR|MD|effect size|cohen.?s d)\W*$`), []kind{decimal, whole, percent, pvalue}},
 }
 

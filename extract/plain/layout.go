@@ -163,32 +163,30 @@ func dataRow(row []rowCell) (data, telling bool) {
 	return filled > 0 && 2*numbers > filled, telling
 }
 
-// headings tells how many rows at the top are column headings.
+// headings tells how many rows at the top are column headings. The first is one
+// unless it prints values. A row below is one too if it prints none and cannot
+// be the first of the body: it is short, as only a row below wide or tall
+// headings is there, or has no stub, or names the stub that no row named yet.
 func headings(rows [][]rowCell, cols int) int {
 	const most = 5
-	for i, row := range rows {
-		if i > most {
-			break
-		}
+	if data, telling := dataRow(rows[0]); data && telling {
+		return 0
+	}
+	named := rows[0][0].kind != empty // the stub has its heading
+	n := 1
+	for ; n < len(rows) && n < most; n++ {
+		row := rows[n]
 		data, telling := dataRow(row)
-		if !data || i == 0 && !telling {
-			continue
-		}
-		for i > 1 && labelOnly(rows[i-1]) {
-			i--
-		}
-		return i
-	}
-	// no values: all rows above the first full one, and that one if it is the first
-	for i, row := range rows {
-		if i > most {
+		full, stub := len(row) >= cols, row[0].kind != empty
+		if labelOnly(row) || data && (telling || stub && full) || full && stub && named {
 			break
 		}
-		if len(row) == cols {
-			return max(i, 1)
-		}
+		named = named || full && stub
 	}
-	return 1
+	if n == len(rows) {
+		return 1
+	}
+	return n
 }
 
 // bodyPlacer places the rows below the headings, top to bottom.
@@ -198,6 +196,7 @@ type bodyPlacer struct {
 	groups []spot
 	above  []*spot // the cell that covers each column in the row before
 	filled []bool  // whether that cell has text
+	kinds  []kind  // and of what kind it is
 }
 
 func (p *bodyPlacer) row(row []rowCell) []spot {
@@ -221,16 +220,20 @@ func (p *bodyPlacer) row(row []rowCell) []spot {
 // below lets the cells of the row above reach down over the columns that this
 // row leaves free, and keeps what covers each column now.
 func (p *bodyPlacer) below(row []rowCell, spots []spot) {
-	above, filled := make([]*spot, p.cols), make([]bool, p.cols)
+	above, filled, ofKind := make([]*spot, p.cols), make([]bool, p.cols), make([]kind, p.cols)
+	complement := true // values stand where the row above has none
 	for k := range spots {
 		for c := spots[k].col; c < spots[k].col+spots[k].width; c++ {
-			above[c], filled[c] = &spots[k], row[k].kind != empty
+			above[c], filled[c], ofKind[c] = &spots[k], row[k].kind != empty, row[k].kind
+			if row[k].kind.numeric() && p.above != nil && p.filled[c] {
+				complement = false
+			}
 		}
 	}
 	if p.above != nil && !labelOnly(row) && len(row) > 1 {
 		for c := 0; c < p.cols; c++ {
 			up := p.above[c]
-			if above[c] != nil || up == nil || !p.filled[c] || c > up.col {
+			if above[c] != nil || up == nil || !p.filled[c] || c > up.col || !complement && plainValue[p.kinds[c]] {
 				continue
 			}
 			free := true
@@ -242,12 +245,16 @@ func (p *bodyPlacer) below(row []rowCell, spots []spot) {
 			}
 			up.height++
 			for k := c; k < c+up.width; k++ {
-				above[k], filled[k] = up, true
+				above[k], filled[k], ofKind[k] = up, true, p.kinds[c]
 			}
 		}
 	}
-	p.above, p.filled = above, filled
+	p.above, p.filled, p.kinds = above, filled, ofKind
 }
+
+// plainValue marks values that are about their own row only. A p value, a
+// comparison or a text may be about several.
+var plainValue = map[kind]bool{whole: true, decimal: true, bracket: true, spread: true, percent: true}
 
 // Costs, in hundredths of a full likeness.
 const (

@@ -2,6 +2,7 @@ package plain
 
 import (
 	"regexp"
+	"strconv"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -46,14 +47,31 @@ func (r *reader) notes(t *paper.Table, from int) int {
 		}
 		end := r.paragraphEnd(k, r.chunk(k))
 		run := r.run(k, end)
-		if !r.isNote(run.S, t, marks) && !r.betweenNotes(run.S, end, t, marks) {
+		next := nextMark(t)
+		if next.number == "" && firstNumber.MatchString(run.S) && r.below(end, secondNumber) {
+			next.number = "1"
+		}
+		if !r.isNote(run.S, next, marks) && !r.betweenNotes(run.S, end, next, marks) {
 			break
 		}
-		t.Notes = append(t.Notes, r.splitNotes(run, t, marks)...)
+		t.Notes = append(t.Notes, r.splitNotes(run, next, marks)...)
 		i = end
 	}
 	r.raiseMarks(t)
 	return i
+}
+
+// firstNumber and secondNumber begin notes whose marks are numbers; only both
+// below one another tell them from other text.
+var (
+	firstNumber  = regexp.MustCompile(`^1[).]?\s?\pL`)
+	secondNumber = regexp.MustCompile(`^2[).]?\s?\pL`)
+)
+
+// below reports whether the text after line k begins like the form.
+func (r *reader) below(k int, form *regexp.Regexp) bool {
+	k = r.skipBlank(k)
+	return k < len(r.lines) && form.MatchString(strings.TrimSpace(r.text(r.lines[k])))
 }
 
 var (
@@ -81,15 +99,16 @@ func cellMarks(t *paper.Table) map[string]bool {
 	return marks
 }
 
-// isNote reports whether a paragraph below t is one of its notes.
-func (r *reader) isNote(s string, t *paper.Table, marks map[string]bool) bool {
+// isNote reports whether a paragraph below a table is one of its notes; next
+// are the marks that would come next.
+func (r *reader) isNote(s string, next following, marks map[string]bool) bool {
 	if s == "" || utf8.RuneCountInString(s) > longNote || figureStart.MatchString(s) {
 		return false
 	}
 	if _, sure := paper.ZoneOf(s); sure && looksHeading(s) {
 		return false
 	}
-	if r.markAt(s, nextMark(t), marks) > 0 {
+	if r.markAt(s, next, marks) > 0 {
 		return true
 	}
 	if numberedHeading.MatchString(s) {
@@ -103,8 +122,8 @@ func (r *reader) isNote(s string, t *paper.Table, marks map[string]bool) bool {
 
 // betweenNotes reports whether s, no note by its look, stands right above one:
 // then it is one too, if it is short and no heading.
-func (r *reader) betweenNotes(s string, next int, t *paper.Table, marks map[string]bool) bool {
-	k := r.skipBlank(next)
+func (r *reader) betweenNotes(s string, end int, next following, marks map[string]bool) bool {
+	k := r.skipBlank(end)
 	if k >= len(r.lines) || utf8.RuneCountInString(s) > longNote/2 || figureStart.MatchString(s) || isCaption(r.text(r.lines[k])) || r.startsTable(k) {
 		return false
 	}
@@ -112,7 +131,7 @@ func (r *reader) betweenNotes(s string, next int, t *paper.Table, marks map[stri
 		return false
 	}
 	below := r.run(k, r.paragraphEnd(k, r.chunk(k))).S
-	return r.isNote(below, t, marks) && !(looksHeading(s) && sentences(below))
+	return r.isNote(below, next, marks) && !(looksHeading(s) && sentences(below))
 }
 
 // declares reports whether s has the look of a list "X, words; Y, words" or
@@ -145,21 +164,32 @@ func sentences(s string) bool {
 	return len(s) > long && strings.Count(s, ". ") >= 2
 }
 
-// nextMark is the letter or number that the next note of t would have.
-func nextMark(t *paper.Table) string {
-	for k := len(t.Notes) - 1; k >= 0; k-- {
-		m := t.Notes[k].Mark
-		if len(m) == 1 && m[0] >= 'a' && m[0] < 'z' || len(m) == 1 && m[0] >= '1' && m[0] < '9' {
-			return string(m[0] + 1)
-		}
+// following holds the letter and the number that the next note's mark would be;
+// no number where notes have none.
+type following struct{ letter, number string }
+
+// nextMark tells what follows the notes that t has.
+func nextMark(t *paper.Table) following {
+	f := following{letter: "a"}
+	for _, n := range t.Notes {
+		f = f.after(n.Mark)
 	}
-	return "a"
+	return f
+}
+
+func (f following) after(mark string) following {
+	if len(mark) == 1 && mark[0] >= 'a' && mark[0] < 'z' {
+		f.letter = string(mark[0] + 1)
+	} else if k, err := strconv.Atoi(mark); err == nil {
+		f.number = strconv.Itoa(k + 1)
+	}
+	return f
 }
 
 // markAt gives the length of the note mark that s begins with, 0 without one.
 // expected is the mark that would come next; text has lost what was raised, so
 // that "aRank test" must be told from "a rank test" and "adjusted".
-func (r *reader) markAt(s, expected string, marks map[string]bool) int {
+func (r *reader) markAt(s string, expected following, marks map[string]bool) int {
 	if loc := symbolMark.FindStringIndex(s); loc != nil {
 		return loc[1]
 	}
@@ -171,12 +201,12 @@ func (r *reader) markAt(s, expected string, marks map[string]bool) int {
 	rest := s[loc[1]:]
 	next, _ := utf8.DecodeRuneInString(rest)
 	if mark[0] <= '9' { // a number: only where a word is glued to it
-		if len(mark) == 1 && (unicode.IsUpper(next) || loc[1] > len(mark) && next == ' ' && !numberedHeading.MatchString(s)) && (mark == expected || mark == "1") {
+		if mark == expected.number && (unicode.IsLetter(next) || next == ' ') {
 			return loc[1]
 		}
 		return 0
 	}
-	known := mark == expected || marks[mark]
+	known := mark == expected.letter || marks[mark]
 	switch {
 	case loc[1] > len(mark): // "a)" or "a."
 		return loc[1]
@@ -187,7 +217,7 @@ func (r *reader) markAt(s, expected string, marks map[string]bool) int {
 	case unicode.IsUpper(next), unicode.IsDigit(next), strings.ContainsRune("(<=>≤≥", next):
 		return loc[1]
 	case unicode.IsLower(next):
-		if r.glued(mark+firstWord(rest), firstWord(rest), 1) || mark != "a" && mark == expected && marks[mark] && r.prose[strings.ToLower(mark+firstWord(rest))] <= 1 {
+		if r.glued(mark+firstWord(rest), firstWord(rest), 1) || mark != "a" && mark == expected.letter && marks[mark] && r.prose[strings.ToLower(mark+firstWord(rest))] <= 1 {
 			return loc[1]
 		}
 	}
@@ -221,13 +251,12 @@ var anyWord = regexp.MustCompile(`\pL+`)
 
 // splitNotes parts a paragraph into notes at the marks it holds: at its start
 // and after a full stop, comma or semicolon.
-func (r *reader) splitNotes(run paper.TextRun, t *paper.Table, marks map[string]bool) []paper.FootNote {
+func (r *reader) splitNotes(run paper.TextRun, next following, marks map[string]bool) []paper.FootNote {
 	var notes []paper.FootNote
-	expected := nextMark(t)
 	mark, start := "", 0
-	if n := r.markAt(run.S, expected, marks); n > 0 {
+	if n := r.markAt(run.S, next, marks); n > 0 {
 		mark, start = trimMark(run.S[:n]), n
-		expected = follow(mark, expected)
+		next = next.after(mark)
 	}
 	finish := func(end int) {
 		text := source.Trim(source.Slice(run, start, end))
@@ -240,14 +269,14 @@ func (r *reader) splitNotes(run paper.TextRun, t *paper.Table, marks map[string]
 			continue
 		}
 		s := run.S[i+1:]
-		n := r.markAt(s, expected, marks)
+		n := r.markAt(s, next, marks)
 		m := trimMark(s[:n])
-		if n == 0 || m[0] >= 'a' && m[0] <= 'z' && m != expected || m[0] <= '9' && m[0] >= '0' && m != expected {
+		if n == 0 || m[0] >= 'a' && m[0] <= 'z' && m != next.letter {
 			continue
 		}
 		finish(i)
 		mark, start = m, i+1+n
-		expected = follow(mark, expected)
+		next = next.after(mark)
 		i += n
 	}
 	finish(len(run.S))
@@ -255,14 +284,6 @@ func (r *reader) splitNotes(run paper.TextRun, t *paper.Table, marks map[string]
 }
 
 func trimMark(s string) string { return strings.Trim(s, "().: \u00A0\u2009") }
-
-// follow gives the mark that comes after mark.
-func follow(mark, expected string) string {
-	if len(mark) == 1 && (mark[0] >= 'a' && mark[0] < 'z' || mark[0] >= '0' && mark[0] < '9') {
-		return string(mark[0] + 1)
-	}
-	return expected
-}
 
 // raiseMarks gives the letters that end cells, labels and the caption, and that
 // a note of the table explains, the style they had in print: raised.

@@ -38,7 +38,7 @@ func looksHeading(s string) bool {
 	if s == "" || utf8.RuneCountInString(s) > long || len(strings.Fields(s)) > words {
 		return false
 	}
-	if strings.ContainsAny(s[len(s)-1:], ".;,?") && !numberedHeading.MatchString(s) {
+	if strings.ContainsAny(s[len(s)-1:], ".;,?") {
 		return false
 	}
 	first, _ := utf8.DecodeRuneInString(s)
