@@ -128,10 +128,10 @@ func verdictOf(k signKey, uses []use, hasPlusMinus bool) verdict {
 		return verdict{text: s, why: "its private code is that of this sign in the Symbol font, and its use fits"}
 	}
 	if k.text != "+" {
-		if v := equalsSign(uses); v.text != "" {
+		if v := minusSign(uses); v.text != "" {
 			return v
 		}
-		if v := minusSign(uses); v.text != "" {
+		if v := equalsSign(uses); v.text != "" {
 			return v
 		}
 	}
@@ -148,19 +148,27 @@ var beforeEquals = map[string]bool{
 	"t": true, "F": true, "df": true, "d.f": true, "M": true, "Z": true, "z": true, "𝑛": true, "𝑁": true,
 }
 
+// mayEqual are words after which an equals sign often stands, and others too.
+var mayEqual = map[string]bool{
+	"p": true, "P": true, "r": true, "R": true, "b": true, "B": true, "d": true, "k": true, "R2": true, "I2": true,
+	"χ2": true, "β": true, "α": true, "κ": true, "𝑝": true, "𝑃": true,
+}
+
 func equalsSign(uses []use) verdict {
-	fit, numbers := 0, 0
+	fit, may, numbers := 0, 0, 0
 	for _, u := range uses {
-		word, _ := before(u.left)
 		if !startsNumber(u.right) {
 			continue
 		}
 		numbers++
-		if beforeEquals[word] {
+		switch word, _ := before(u.left); {
+		case beforeEquals[word]:
 			fit++
+		case mayEqual[word]:
+			may++
 		}
 	}
-	if fit < 2 || numbers*2 < len(uses) {
+	if fit < 2 || numbers*2 < len(uses) || (fit+may)*10 < numbers*6 {
 		return verdict{}
 	}
 	return verdict{text: "=", why: fmt.Sprintf("it stands %d times between a word such as n, CI or SD and a number", fit)}

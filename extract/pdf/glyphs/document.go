@@ -15,7 +15,7 @@ type Document struct {
 	fuel  fuel
 	r     *lib.Reader
 	pages []pageNode
-	fonts map[ref]*Font
+	fonts map[fontKey]*Font
 	forms map[ref]*form
 	dicts map[ref]*dict
 }
@@ -37,7 +37,7 @@ func Open(content []byte) (d *Document, err error) {
 	if err != nil {
 		return nil, err
 	}
-	d = &Document{fonts: map[ref]*Font{}, forms: map[ref]*form{}, dicts: map[ref]*dict{}}
+	d = &Document{fonts: map[fontKey]*Font{}, forms: map[ref]*form{}, dicts: map[ref]*dict{}}
 	d.r, err = lib.NewReader(&file{content: ready, fuel: &d.fuel}, int64(len(ready)))
 	if err != nil {
 		return nil, &Error{What: "the file's structure", Err: err}

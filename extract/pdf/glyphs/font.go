@@ -60,7 +60,16 @@ const (
 // unknown stands for what cannot be told from the file.
 const unknown = "\uFFFD"
 
-// fontNamed gives a font of the present resources; nil if there is none.
+// fontKey is where a font is described: in an object of its own, or under a name
+// in a dictionary.
+type fontKey struct {
+	r    ref
+	in   *dict
+	name string
+}
+
+// fontNamed gives a font of the present resources; nil if there is none. It is
+// read once per paper.
 func (d *Document) fontNamed(fonts *dict, name string) *Font {
 	if fonts == nil {
 		return nil
@@ -69,23 +78,25 @@ func (d *Document) fontNamed(fonts *dict, name string) *Font {
 	if !there {
 		return nil
 	}
-	if f, ok := d.fonts[r]; ok && r != 0 {
-		return f
+	key := fontKey{r: r}
+	if r == 0 {
+		key = fontKey{in: fonts, name: name}
 	}
-	return d.font(fonts.key(name))
+	return d.fontAt(key, func() lib.Value { return fonts.key(name) })
 }
 
-// font gives the font that v describes, read once per paper where v is an
-// object of its own.
+// font gives the font that v describes.
 func (d *Document) font(v lib.Value) *Font {
-	if v.Kind() != lib.Dict {
-		return nil
-	}
-	r := refOf(v)
-	f, ok := d.fonts[r]
-	if !ok || r == 0 {
-		f = d.readFont(v)
-		d.fonts[r] = f
+	return d.fontAt(fontKey{r: refOf(v), name: v.String()}, func() lib.Value { return v })
+}
+
+func (d *Document) fontAt(key fontKey, load func() lib.Value) *Font {
+	f, ok := d.fonts[key]
+	if !ok {
+		if v := load(); v.Kind() == lib.Dict {
+			f = d.readFont(v)
+		}
+		d.fonts[key] = f
 	}
 	return f
 }
