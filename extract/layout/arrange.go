@@ -73,8 +73,8 @@ func sheetsOf(p *paper.GlyphPage, fonts map[string]int32) []sheet {
 		s := &out[i]
 		s.page, s.frame, s.fonts = p.Page.Number, frames[i], own
 		s.lines = make([]line, len(frames[i].Lines))
-		for k := range frames[i].Lines {
-			s.lines[k] = s.line(wordsOf(&frames[i].Lines[k]))
+		for k, ws := range wordsOf(frames[i].Lines) {
+			s.lines[k] = s.line(ws)
 		}
 	}
 	return out
@@ -89,7 +89,7 @@ func bodyPrint(sheets [][]sheet) (size int, font int32) {
 		for i := range page {
 			for k := range page[i].lines {
 				l := &page[i].lines[k]
-				end = end || len(l.words) <= 3 && paper.PlainTitle(l.text()) == "references"
+				end = end || len(l.words) <= 3 && plainWord(l.words[len(l.words)-1].Text) == "references"
 				n := l.glyphs
 				if len(l.words) < 6 {
 					n = (n + 9) / 10

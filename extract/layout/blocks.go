@@ -62,6 +62,11 @@ func entries(d *draft) []draft {
 // run writes the text of a draft.
 func (a *arranger) run(d *draft) paper.TextRun {
 	var w writer
+	glyphs, bytes := 0, 0
+	for i := range d.lines {
+		glyphs, bytes = glyphs+d.lines[i].glyphs, bytes+len(d.lines[i].text())+1
+	}
+	w.s, w.runs = make([]byte, 0, bytes), make([]paper.Run, 0, glyphs)
 	for i := range d.lines {
 		w.line(&d.lines[i], a.dict)
 	}

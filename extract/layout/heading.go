@@ -17,9 +17,24 @@ var (
 	runIn        = regexp.MustCompile(`^(?i:(?:abstract|summary)[.:]?\s+)?((?i:background|introduction|objectives?|aims?|purpose|context|importance|methods?|methodology|materials? and methods|patients and methods|study design|design|setting|settings|participants|subjects|interventions?|measurements?|main outcome measures?|main outcomes?(?: and measures)?|outcome measures?|results?|findings|main results|conclusions?|interpretation|discussion|trial registration|background/aims?|background and (?:aims?|objectives?|purpose)|methods and results|methods/design|aims? and objectives?|limitations?|significance|rationale|hypothesis|funding))\s?([.:—–]|\s+-)\s*\S`)
 )
 
+// titleStarts are the first four letters of the headings that name a zone.
+var titleStarts = starts("abst summ stru intr back meth mate pati subj part desi rese expe stat data resu find disc conc comm limi stre inte refe " +
+	"bibl lite ackn comp conf decl fund fina auth cont abbr supp addi appe avai pre- prep cons ethi prov note endn tria")
+
+func starts(list string) map[string]bool {
+	m := map[string]bool{}
+	for _, s := range strings.Fields(list) {
+		m[s] = true
+	}
+	return m
+}
+
 // startsLabel reports whether a line begins like the caption of a figure or a
 // table.
 func startsLabel(text string) bool {
+	if text == "" || strings.IndexByte("FTSCBAsa", text[0]) < 0 {
+		return false
+	}
 	return figureLabel.MatchString(text) || tableLabel.MatchString(text)
 }
 
@@ -58,6 +73,11 @@ func sentenceIn(text string) bool {
 // and nothing else.
 func knownTitle(text string) bool {
 	if len(text) > 80 || len(text) == 0 || strings.Count(text, " ") > 7 || !startsUpper(text) {
+		return false
+	}
+	// Most lines are none: look at the first word before the whole.
+	first := strings.ToLower(strings.TrimLeft(text, "0123456789.IVX)|: \t"))
+	if first != "" && !titleStarts[first[:min(len(first), 4)]] && !titleStarts[strings.ToLower(text[:min(len(text), 4)])] {
 		return false
 	}
 	zone, sure := paper.ZoneOf(text)

@@ -86,11 +86,20 @@ func (s *sheet) line(ws []*words.Word) line {
 	return l
 }
 
-// wordsOf are pointers to the words of a segment.
-func wordsOf(seg *words.Line) []*words.Word {
-	out := make([]*words.Word, len(seg.Words))
-	for i := range seg.Words {
-		out[i] = &seg.Words[i]
+// wordsOf are pointers to the words of the segments of a frame.
+func wordsOf(segs []words.Line) [][]*words.Word {
+	n := 0
+	for i := range segs {
+		n += len(segs[i].Words)
+	}
+	all := make([]*words.Word, 0, n)
+	out := make([][]*words.Word, len(segs))
+	for i := range segs {
+		start := len(all)
+		for k := range segs[i].Words {
+			all = append(all, &segs[i].Words[k])
+		}
+		out[i] = all[start:len(all):len(all)]
 	}
 	return out
 }

@@ -1,7 +1,6 @@
 package layout
 
 import (
-	"regexp"
 	"slices"
 	"strings"
 	"unicode"
@@ -166,17 +165,34 @@ func (a *arranger) apart(l *line) bool { return l.font >= 0 && l.font != a.font 
 // short reports whether a line ends well before its column does.
 func (l *line) short() bool { return l.x1 < l.edge+l.width*85/100 }
 
-// sentenceEnd is how a sentence ends: a stop, what closes after it, and a mark
-// or citation numbers. Digits right after a stop that follows a digit are
-// decimals.
-var sentenceEnd = regexp.MustCompile(`(?:[.?!:][)\]"”’'*†‡§¶]*|[^0-9\s][.?!][)\]"”’']*[0-9][0-9,–\-]*|[.?!]\s*\[[0-9][0-9, –\-]*\])$`)
+const closers = `)]"”’'*†‡§¶`
 
-// ended reports whether a text ends as a sentence does.
+// ended reports whether a text ends as a sentence does: with a stop, after
+// which a bracket or quote may close and a mark or citation numbers stand.
+// Digits right after a stop that follows a digit are decimals.
 func ended(text string) bool {
-	if len(text) > 40 {
-		text = text[len(text)-40:]
+	t := strings.TrimRight(text, closers)
+	if t == "" {
+		return false
 	}
-	return sentenceEnd.MatchString(text)
+	if strings.IndexByte(".?!:", t[len(t)-1]) >= 0 {
+		return true
+	}
+	if strings.HasSuffix(text, "]") {
+		if i := strings.LastIndexByte(text, '['); i > 0 && strings.Trim(text[i:], "[]0123456789, –-") == "" {
+			t = strings.TrimRight(text[:i], " ")
+			return t != "" && strings.IndexByte(".?!", t[len(t)-1]) >= 0
+		}
+	}
+	cut := strings.TrimRight(t, "0123456789,–-")
+	if len(cut) == len(t) || strings.IndexByte("0123456789", t[len(cut)]) < 0 {
+		return false
+	}
+	cut = strings.TrimRight(cut, `)]"”’'`)
+	if len(cut) < 2 || strings.IndexByte(".?!", cut[len(cut)-1]) < 0 {
+		return false
+	}
+	return strings.IndexByte("0123456789 ", cut[len(cut)-2]) < 0
 }
 
 // endsOpen reports whether a text ends where a sentence cannot.

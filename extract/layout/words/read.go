@@ -139,10 +139,12 @@ func lines(p *paper.GlyphPage, items []item) []Line {
 	chunks := chunked(items)
 	assignRows(chunks)
 	attachShifted(chunks)
+	m := newMaker(p, len(items))
 	var out []Line
 	for _, row := range rowsOf(p, chunks) {
-		out = append(out, segments(p, row)...)
+		out = append(out, m.segments(row)...)
 	}
+	m.write(out)
 	slices.SortStableFunc(out, func(a, b Line) int {
 		return cmp.Or(cmp.Compare(b.Base, a.Base), cmp.Compare(a.Box.X0, b.Box.X0))
 	})
@@ -210,7 +212,11 @@ func rowsOf(p *paper.GlyphPage, chunks []chunk) [][]item {
 	rows := make([][]item, 0, n)
 	for _, m := range members {
 		for _, layer := range layers(p, chunks, m) {
-			var r []item
+			n := 0
+			for _, i := range layer {
+				n += len(chunks[i].items)
+			}
+			r := make([]item, 0, n)
 			for _, i := range layer {
 				for _, it := range chunks[i].items {
 					it.shift = chunks[i].shift

@@ -11,13 +11,13 @@ import (
 )
 
 // segments cuts one row into lines at gaps wider than an em, and those into words.
-func segments(p *paper.GlyphPage, row []item) []Line {
-	row = single(p, row)
+func (m *maker) segments(row []item) []Line {
+	row = single(m.page, row)
 	var out []Line
 	start, right := 0, 0
 	for i := range row {
 		if i > start && row[i].x0-right > max(row[i].size, row[i-1].size) {
-			out = append(out, segment(p, row[start:i]))
+			out = append(out, m.segment(row[start:i]))
 			start = i
 		}
 		if i == start {
@@ -26,7 +26,7 @@ func segments(p *paper.GlyphPage, row []item) []Line {
 		right = max(right, row[i].x1)
 	}
 	if start < len(row) {
-		out = append(out, segment(p, row[start:]))
+		out = append(out, m.segment(row[start:]))
 	}
 	return out
 }
@@ -59,24 +59,23 @@ func twins(p *paper.GlyphPage, a, b *item) bool {
 	return b.glyph != a.glyph+1 || a.x0 != b.x0 || !unicode.IsLetter(r)
 }
 
-func segment(p *paper.GlyphPage, items []item) Line {
-	var l Line
-	start, right := 0, items[0].x1
-	glued := false
-	flush := func(end int) {
-		l.Words = append(l.Words, word(p, items[start:end], glued))
-		start = end
-	}
+func (m *maker) segment(items []item) Line {
+	right := items[0].x1
 	track := tracking(items)
+	m.ends, m.gaps = m.ends[:0], m.gaps[:0]
 	for i := 1; i < len(items); i++ {
 		gap := apart(&items[i-1], &items[i], right, track)
 		if gap || items[i].shift != items[i-1].shift {
-			flush(i)
-			glued = !gap
+			m.ends, m.gaps = append(m.ends, i), append(m.gaps, gap)
 		}
 		right = max(right, items[i].x1)
 	}
-	flush(len(items))
+	l := Line{Words: make([]Word, 0, len(m.ends)+1)}
+	start := 0
+	for k, end := range append(m.ends, len(items)) {
+		l.Words = append(l.Words, m.word(items[start:end], k > 0 && !m.gaps[k-1]))
+		start = end
+	}
 	finish(&l, items)
 	return l
 }
@@ -138,30 +137,51 @@ func tracking(items []item) int {
 	return 0
 }
 
-func word(p *paper.GlyphPage, items []item, glued bool) Word {
+// maker makes the words of one frame. Their glyphs stand in one slice and
+// their texts in one string, since a page has a thousand words.
+type maker struct {
+	page   *paper.GlyphPage
+	glyphs []paper.Glyph
+	texts  []byte
+	spans  [][2]int // of each word in texts, as the words were made
+	ends   []int    // scratch of segment
+	gaps   []bool
+}
+
+func newMaker(p *paper.GlyphPage, items int) *maker {
+	return &maker{page: p, glyphs: make([]paper.Glyph, 0, items), texts: make([]byte, 0, items+items/8), spans: make([][2]int, 0, items/4)}
+}
+
+func (m *maker) word(items []item, glued bool) Word {
 	w := Word{Glued: glued, Shift: items[0].shift, Base: int32(items[0].base), Bold: true, Italic: true, Invisible: true}
-	w.Glyphs = make([]paper.Glyph, len(items))
-	n := 0
-	for i, it := range items {
-		g := &p.Glyphs[it.glyph]
-		w.Glyphs[i] = *g
-		n += len(g.Text)
+	first, start := len(m.glyphs), len(m.texts)
+	for _, it := range items {
+		g := m.page.Glyphs[it.glyph]
+		g.Text = Spell(g.Text)
+		m.glyphs, m.texts = append(m.glyphs, g), append(m.texts, g.Text...)
 		w.Box = w.Box.Union(paper.Box{X0: int32(it.x0), Y0: int32(it.y0), X1: int32(it.x1), Y1: int32(it.y1)})
 		w.Size = max(w.Size, int32(it.size))
 		w.Bold, w.Italic, w.Invisible = w.Bold && g.Bold, w.Italic && g.Italic, w.Invisible && g.Invisible
 	}
-	var b strings.Builder
-	b.Grow(n)
-	for i := range w.Glyphs {
-		w.Glyphs[i].Text = Spell(w.Glyphs[i].Text)
-		b.WriteString(w.Glyphs[i].Text)
-	}
-	w.Text = b.String()
+	w.Glyphs = m.glyphs[first:len(m.glyphs):len(m.glyphs)]
+	m.spans = append(m.spans, [2]int{start, len(m.texts)})
 	return w
+}
+
+// write gives the words of the lines, in the order they were made, their texts.
+func (m *maker) write(lines []Line) {
+	all, n := string(m.texts), 0
+	for i := range lines {
+		for k := range lines[i].Words {
+			lines[i].Words[k].Text = all[m.spans[n][0]:m.spans[n][1]]
+			n++
+		}
+	}
 }
 
 // oblique makes one line of each run of text that keeps its odd angle.
 func oblique(p *paper.GlyphPage, items []item) []Line {
+	m := newMaker(p, len(items))
 	var out []Line
 	var l Line
 	start := 0
@@ -169,7 +189,7 @@ func oblique(p *paper.GlyphPage, items []item) []Line {
 		if i < len(items) && !items[i].space && near(&items[i-1], &items[i]) {
 			continue
 		}
-		l.Words = append(l.Words, word(p, items[start:i], false))
+		l.Words = append(l.Words, m.word(items[start:i], false))
 		start = i
 		if i == len(items) || !near(&items[i-1], &items[i]) {
 			finish(&l, items[i-1:i])
@@ -177,6 +197,7 @@ func oblique(p *paper.GlyphPage, items []item) []Line {
 			l = Line{}
 		}
 	}
+	m.write(out)
 	return out
 }
 
