@@ -71,7 +71,7 @@ func (r *reading) suspects() map[signKey][]use {
 			if g.Text == "o" && !afterP(page.Glyphs, i) {
 				continue
 			}
-			left, right := context(page.Glyphs, i, func(j int) string {
+			left, right := around(page.Glyphs, i, func(j int) string {
 				if page.Glyphs[j].Text == g.Text && r.signOf(p, j) == k {
 					return mark
 				}

@@ -201,6 +201,7 @@ func (r *reading) keep(p paper.GlyphPage, marks []glyphs.Mark) {
 
 // finish looks at the paper as a whole.
 func (r *reading) finish() {
+	r.pictures()
 	r.learn()
 	r.reportRepairs()
 	r.unknownSigns()

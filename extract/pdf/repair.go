@@ -114,6 +114,6 @@ func (r *reading) unknownSigns() {
 
 // besideNumber reports whether glyph i directly precedes or follows a digit.
 func besideNumber(all []paper.Glyph, i int) bool {
-	left, right := context(all, i, func(k int) string { return all[k].Text })
+	left, right := around(all, i, func(k int) string { return all[k].Text })
 	return startsNumber(right) || endsNumber(left)
 }

@@ -21,9 +21,9 @@ const contextGlyphs = 28
 // mark stands for the sign in question in the print around it.
 const mark = "\uE000"
 
-// context gives the print around glyph i; text gives what to print for each
+// around gives the print around glyph i; text gives what to print for each
 // glyph.
-func context(all []paper.Glyph, i int, text func(k int) string) (left, right string) {
+func around(all []paper.Glyph, i int, text func(k int) string) (left, right string) {
 	var parts []string
 	from := i
 	for from > 0 && i-from < contextGlyphs && sameLine(all[from-1], all[from]) {
