@@ -54,15 +54,34 @@ func columns() []column {
 	}
 }
 
-// stateWord is the state with what is to be known of the result's whereabouts.
+// stateWord is the state with a word on a result that is not among those read.
 func stateWord(r *ledger.Row) string {
 	switch {
 	case r.ByHand != "":
-		return string(r.State) + ", added from " + r.ByHand
+		return string(r.State) + ", added"
 	case r.Gone != "":
-		return string(r.State) + ", " + r.Gone
+		return string(r.State) + ", gone"
 	}
 	return string(r.State)
+}
+
+// goneNotes explains the word gone, under the table.
+func goneNotes(rows []ledger.Row) []string {
+	count := map[string]int{}
+	var reasons []string
+	for i := range rows {
+		if why := rows[i].Gone; why != "" {
+			if count[why] == 0 {
+				reasons = append(reasons, why)
+			}
+			count[why]++
+		}
+	}
+	slices.Sort(reasons)
+	for i, why := range reasons {
+		reasons[i] = fmt.Sprintf("gone: %s decided, and the decision is kept, but %s", Count(count[why], "result"), why)
+	}
+	return reasons
 }
 
 // shortIDs shortens ids to what tells them apart.
@@ -132,6 +151,14 @@ func Table(w io.Writer, rows []ledger.Row, opt TableOptions) error {
 			return err
 		}
 		start = end
+	}
+	for i, note := range goneNotes(rows) {
+		if i == 0 {
+			note = "\n" + note
+		}
+		if _, err := fmt.Fprintln(w, note+"."); err != nil {
+			return err
+		}
 	}
 	return nil
 }
