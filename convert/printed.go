@@ -120,8 +120,8 @@ func (s Scale) To(v float64) float64 {
 // Logit). The result is in units of scale.
 // Assumes: interval symmetric about the estimate on the scale; all rounded to
 // the nearest.
-// Errors: ErrNotFinite; ErrOrder when lower > upper; ErrDomain when a bound lies
-// outside the scale; ErrInconsistent when no symmetric interval on this scale
+// Errors: ErrNotFinite; ErrOrder when lower > upper; ErrDomain when a bound may lie
+// outside the scale (a lower bound of 0.04 printed as 0.0 has no logarithm); ErrInconsistent when no symmetric interval on this scale
 // prints like this (then it is not symmetric there).
 // Limits: bounds without rounding give one value.
 // Rounding: this is the exact set (Fourier-Motzkin elimination of the estimate).
@@ -139,7 +139,7 @@ func Margin(lower, upper Printed, estimate *Printed, scale Scale) (Range, error)
 	if lower.Value > upper.Value {
 		return Range{}, fmt.Errorf("%w: lower bound %v above upper bound %v", ErrOrder, lower.Value, upper.Value)
 	}
-	if scale != Raw && (lower.Value <= 0 || scale == Logit && upper.Value >= 1) {
+	if scale != Raw && (lower.Low() <= 0 || scale == Logit && upper.High() >= 1) {
 		return Range{}, fmt.Errorf("%w: bounds %v and %v have no %s", ErrDomain, lower.Value, upper.Value, scale)
 	}
 	l1, l2 := scale.To(lower.Low()), scale.To(lower.High())

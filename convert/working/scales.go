@@ -43,6 +43,11 @@ func (it *item) explainLopside() {
 		it.offer(Alternative{Name: "quartiles or a range", Note: "the estimate would more likely be a median"})
 		return
 	}
+	it.offerQuantiles(low, high, n)
+}
+
+// offerQuantiles shows what the bounds give as quartiles and as extremes.
+func (it *item) offerQuantiles(low, high convert.Printed, n int) {
 	if m, err := convert.WanFromQuartiles(low.Value, it.est.Value, high.Value, n); err == nil {
 		it.offer(Alternative{Name: "if the bounds are quartiles of a median", Mean: number(m.Mean), SD: number(m.SD), Note: "by wan-quartiles"})
 	}

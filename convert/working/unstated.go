@@ -21,6 +21,11 @@ const readingLevel = 95
 func weighReadings(it *item) {
 	it.raise("spread-unstated", "the paper does not say what stands after the ± or in the bracket")
 	it.withhold("the paper does not say whether the spread is an SD, an SE or the half-width of an interval")
+	if it.val == nil && it.interval() {
+		it.withhold("the paper does not say whether the bounds are an interval, quartiles or a range")
+		it.weighBounds()
+		return
+	}
 	if it.val == nil || it.val.Value <= 0 {
 		it.raise("spread-not-positive", "spread "+it.res.GivenValue)
 		return
@@ -55,6 +60,29 @@ func weighReadings(it *item) {
 		it.offer(a)
 	}
 	it.assume("nothing: the readings are shown side by side and none is applied")
+}
+
+// weighBounds shows what two unexplained bounds would mean as an interval, as
+// quartiles and as a range.
+func (it *item) weighBounds() {
+	n := it.res.N
+	if n < 3 {
+		it.raise("n-missing", "no sample size is printed for this result")
+		return
+	}
+	if it.outsideInterval() || it.est == nil {
+		return
+	}
+	if it.lopside == nil && it.halfWidth() > 0 {
+		if sd, err := convert.SDFromInterval(-it.halfWidth(), it.halfWidth(), readingLevel, n, float64(n-1)); err == nil {
+			factor := sd / it.halfWidth()
+			it.offer(Alternative{Name: "as a 95% interval of a mean", Mean: number(it.est.Value), SD: number(sd), Low: down(it.margin.Low * factor), High: up(it.margin.High * factor)})
+		}
+	} else {
+		it.offer(Alternative{Name: "as a 95% interval of a mean", Struck: true, Note: "impossible: not symmetric about the estimate, even allowing for rounding"})
+	}
+	low, high := it.bounds()
+	it.offerQuantiles(low, high, n)
 }
 
 func (it *item) stepReadings(sds [3]float64, n int) {
