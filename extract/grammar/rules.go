@@ -187,7 +187,7 @@ func (p *parser) percentiles(i int) (Meaning, int, bool) {
 	if w := p.word(k); w == "percentile" || w == "percentiles" || w == "centile" || w == "centiles" || w == "quartiles" {
 		return Meaning{Spread: SpreadIQR}, k + 1, true
 	}
-	if p.kind(k-1) == TokPercent {
+	if p.kind(k-1) == TokPercent && p.kind(i-1) == TokOpen {
 		return Meaning{Spread: SpreadIQR}, k, true
 	}
 	return Meaning{}, i, false

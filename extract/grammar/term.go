@@ -21,7 +21,7 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 		if needsValue[e.words[0]] && i > 0 && !p.toks[i].Spaced && p.toks[i-1].Kind == TokNumber {
 			continue // the b of "1b" is no coefficient
 		}
-		if e.Spread != "" && len(e.words) == 1 && p.kind(i+1) == TokDash && !p.toks[i+1].Spaced && p.kind(i+2) == TokNumber && !p.toks[i+2].Spaced {
+		if (e.Spread == SpreadSD || e.Spread == SpreadSE) && len(e.words) == 1 && p.kind(i+1) == TokDash && !p.toks[i+1].Spaced && p.kind(i+2) == TokNumber && !p.toks[i+2].Spaced && whole(p.toks[i+2].Value) {
 			continue // a name: SE-4
 		}
 		if end, ok := p.pattern(i, e); ok && (!needsValue[e.words[0]] || len(e.words) > 1 || p.hasValue(end)) {
@@ -109,6 +109,12 @@ func isApostrophe(t Token) bool { return t.Kind == TokOther && strings.ContainsA
 
 // definition skips a bracket that only gives the term's abbreviation.
 func (p *parser) definition(i int, m Meaning) int {
+	if p.kind(i) == TokComma && m.Spread != "" && p.short(i+1, m) {
+		return i + 2 // "95% confidence interval, CI: 0.8 to 1.6"
+	}
+	if p.kind(i) == TokOpen && p.kind(i+1) == TokNumber && p.kind(i+2) == TokPercent && p.kind(i+4) == TokClose && p.short(i+3, m) {
+		return i + 5 // "95% confidence interval (95% CI)"
+	}
 	if i+2 >= len(p.toks) || p.toks[i].Kind != TokOpen || p.toks[i+1].Kind != TokWord {
 		return i
 	}
@@ -118,6 +124,16 @@ func (p *parser) definition(i int, m Meaning) int {
 		}
 	}
 	return i
+}
+
+// short reports that the one word at i is another name of the same spread.
+func (p *parser) short(i int, m Meaning) bool {
+	for _, e := range vocabulary[singular(p.word(i))] {
+		if _, ok := p.pattern(i, e); ok && len(e.words) == 1 && e.Spread == m.Spread && e.Spread != "" {
+			return true
+		}
+	}
+	return false
 }
 
 // modifiers are words that may stand between a level and the word interval.

@@ -35,7 +35,7 @@ var vocabulary = buildVocabulary([]row{
 	{"standard deviation|std deviation|std dev|standard dev|sd|s.d.|s.d|std|stdev|SDs", Meaning{Spread: SpreadSD}},
 	{"standard error of the mean|standard error of mean|std error of the mean|std error of mean|std error mean|SE of the mean|SE of mean|SE mean|standard error mean|standard error|std error|std err|sem|s.e.m.|s.e.m|SE|se|s.e.|s.e|SEs|SEMs", Meaning{Spread: SpreadSE}},
 	{"confidence interval|confidence limit|confidence bound|confidence intervall|ci|c.i.|c.i|CIs|conf interval", Meaning{Spread: SpreadCI}},
-	{"credible interval|credibility interval|posterior interval|highest density interval|highest posterior density interval|CrI|CrIs|CRI|BCI|HDI|HPDI", Meaning{Spread: SpreadCI, Design: "bayesian"}},
+	{"credible interval|credibility interval|posterior interval|highest density interval|highest posterior density interval|CrI|CrIs|HPDI", Meaning{Spread: SpreadCI, Design: "bayesian"}},
 	{"interquartile range|inter quartile range|interquartile interval|interquartile|quartile|lower and upper quartile|upper and lower quartile|first and third quartile|iqr|i.q.r.|IQRs|Q1 Q3|Q1 to Q3|Q1 and Q3|q1 q3|P25 P75", Meaning{Spread: SpreadIQR}},
 	{"range|min max|minimum maximum|minimum to maximum|min to max|minimum and maximum|min and max|extremes", Meaning{Spread: SpreadRange}},
 	{"coefficient of variation|cv|CVs", Meaning{Spread: SpreadCV}},

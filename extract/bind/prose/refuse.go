@@ -11,6 +11,7 @@ import (
 
 var (
 	planning  = regexp.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bprojected\b|\bhypothesi[sz]|\bprior studies\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
+	planned   = regexp.MustCompile(`(?i)\bsample[- ]size|% power|\bpower(?:ed)? (?:of|to|calculation|analysis)\b`)
 	norms     = regexp.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
 	scaleText = regexp.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
 	climate   = regexp.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
@@ -32,7 +33,7 @@ func (p *para) planned(b int) bool {
 	if !planning.MatchString(s) {
 		return false
 	}
-	return p.block.Zone == paper.Methods || p.block.Zone == paper.Elsewhere || strings.Contains(strings.ToLower(s), "power") || strings.Contains(strings.ToLower(s), "sample size")
+	return p.block.Zone == paper.Methods || p.block.Zone == paper.Elsewhere || planned.MatchString(s)
 }
 
 // refusedPlusMinus reports visit windows, tolerances and assumptions.
@@ -56,9 +57,12 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 	if whole(c.est.Value) && whole(it.Value.Value) && (c.est.Value == "0" || p.window(it.End)) {
 		return true // "0 ± 3°" is a class, "10 ± 5 min after" a window
 	}
+	if p.block.Zone == paper.Methods && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(c.est.End) && p.timeBehind(it.End) {
+		return true // "every 12 hours ± 15 minutes"
+	}
 	s := p.sentenceText(it.Start)
 	j := p.token(it.End)
-	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || climate.MatchString(s)) {
+	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && p.block.Zone == paper.Methods {
 		return true
 	}
 	if climate.MatchString(s) && p.block.Zone == paper.Methods && strings.Contains(s, "humidity") {
@@ -68,6 +72,11 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 }
 
 var windowWords = map[string]bool{"after": true, "before": true, "prior": true, "post": true, "following": true, "postoperatively": true, "from": true}
+
+func (p *para) timeBehind(b int) bool {
+	i := p.token(b)
+	return i < len(p.r.Tokens) && timeUnits[p.r.Tokens[i].Value]
+}
 
 // window reports that a unit of time and a word like "after" follow byte b.
 func (p *para) window(b int) bool {

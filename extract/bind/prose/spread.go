@@ -1,9 +1,11 @@
 package prose
 
 import (
+	"regexp"
 	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/result"
 )
@@ -264,7 +266,7 @@ func (p *para) plusMinus(k int) {
 		c.est, c.estItem = it.Of, k
 	} else {
 		p.estimate(&c)
-		if c.estItem < 0 || !p.nextTo(&c) {
+		if c.estItem < 0 || !p.nextTo(&c) && it.Spread != grammar.SpreadCI {
 			return
 		}
 	}
@@ -327,17 +329,43 @@ func (p *para) bareBracket(k int) {
 		return
 	}
 	w := p.shared(k, grammar.SpreadSD, grammar.SpreadSE, grammar.SpreadIQR, grammar.SpreadCI, grammar.SpreadRange)
-	if w == nil || w.Spread != grammar.SpreadSD && w.Spread != grammar.SpreadSE || !w.announce && !w.bracket {
+	c := cand{item: k, value: it.Value, start: it.Value.Start, estItem: -1}
+	said := w != nil && (w.Spread == grammar.SpreadSD || w.Spread == grammar.SpreadSE) && (w.announce || w.bracket)
+	if w != nil && !said {
 		return
 	}
-	c := cand{item: k, value: it.Value, start: it.Value.Start, estItem: -1}
 	p.estimate(&c)
 	if c.estItem < 0 || !p.nextTo(&c) || p.refusedBracket(&c) {
 		return
 	}
-	p.take(&c, w)
+	if said {
+		p.take(&c, w)
+	} else if !p.declaredBracket(&c) {
+		return
+	}
 	p.cands = append(p.cands, c)
 }
+
+// declaredBracket takes "a mean mass of 12.4 (1.3)" where the paper declares
+// what stands in brackets behind its means. Decimals and the word must be there:
+// nearly every other number in brackets is a count, a share or a citation.
+func (p *para) declaredBracket(c *cand) bool {
+	if c.est.Percent || c.value.Percent || decimals(c.est.Value) == 0 || decimals(c.value.Value) == 0 || p.planned(c.est.Start) {
+		return false
+	}
+	from, _ := p.sentence(c.est.Start)
+	if !meanWord.MatchString(p.s[from:c.est.Start]) {
+		return false
+	}
+	a, ok := p.f.conv.Bracket(convention.Prose)
+	if !ok || a.Conflict || !a.Bracket && a.Sign {
+		return false
+	}
+	c.given, c.conv = a.Spread, &conventionSource{a.Statement}
+	return true
+}
+
+var meanWord = regexp.MustCompile(`(?i)\b(?:means?|averaged?)\b`)
 
 func number(v string) (float64, bool) {
 	f, err := strconv.ParseFloat(v, 64)

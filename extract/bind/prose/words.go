@@ -49,5 +49,5 @@ func (p *para) isProse() bool {
 func (p *para) inSentence(b int) bool {
 	from, to := p.sentence(b)
 	t := p.tally(from, to)
-	return t.words >= 2 && 2*t.numbers <= 3*t.words+6 && 5*t.function >= t.numbers-6
+	return t.words >= 2 && t.numbers <= 2*t.words+3 && 5*t.function >= t.numbers-20
 }
