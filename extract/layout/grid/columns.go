@@ -104,13 +104,18 @@ func (s *sheet) findColumns(lines, head []line, em int) []corridor {
 	figures := s.figureColumns(atoms)
 	type span struct{ x0, x1 int }
 	var spans []span
+	left := 1 << 30
+	for i := range lines {
+		left = min(left, lines[i].x0)
+	}
 	kept := make([][]int, 0, len(lines))
 	for i := range lines {
 		var toks []int
 		for k := range atoms[i] {
 			a := &atoms[i][k]
 			figure := isFigure(s.join(a.toks))
-			if !figure && (len(atoms[i]) == 1 || overflows(a, figures)) {
+			centred := k == 0 && len(atoms[i]) == 2 && a.x0 > left+3*em // a row group with its p value
+			if !figure && (len(atoms[i]) == 1 || centred || overflows(a, figures)) {
 				continue
 			}
 			toks = append(toks, a.toks...)

@@ -66,6 +66,9 @@ func newReader(s *sheet, body box) *reader {
 		}
 	}
 	rd.head = rd.headLines()
+	for rd.head > 0 && rd.head+1 < len(rd.lines) && rd.statisticLine(rd.head) {
+		rd.head++
+	}
 	rd.cs = s.findColumns(rd.lines[rd.head:], rd.lines[:rd.head], rd.em)
 	rd.ownStub()
 	rd.cells = make([][]piece, len(rd.lines))
@@ -119,6 +122,21 @@ func (rd *reader) fullBetween(i int) bool {
 		sum += max(0, min(r.x1, rd.area.x1)-max(r.x0, rd.area.x0))
 	}
 	return sum*10 >= rd.area.width()*8
+}
+
+// statisticLine reports whether a line below the rule of the heading still
+// belongs to it: no row heading, no figures, several cells ("n (%)", "p").
+func (rd *reader) statisticLine(i int) bool {
+	rs := rd.s.runs(&rd.lines[i], wideGap)
+	if len(rs) < 2 || rs[0].x0 < rd.area.x0+rd.area.width()/6 {
+		return false
+	}
+	for k := range rs {
+		if t := rd.s.join(rs[k].toks); isFigure(t) && !isHeadFigure(t) || len(t) > 40 {
+			return false
+		}
+	}
+	return true
 }
 
 // boldLines counts the lines at the top that are bold throughout, if others

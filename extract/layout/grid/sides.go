@@ -61,7 +61,7 @@ func (s *sheet) barriers(l *label, labels []label) (left, right int) {
 	left, right = s.bounds.x0, s.bounds.x1
 	for i := range labels {
 		o := &labels[i]
-		if o.tok == l.tok || abs(o.box.top-l.box.top) > 6*l.size {
+		if o.tok == l.tok || abs(o.box.top-l.box.top) > 6*l.size || o.figure && o.box.bot <= l.box.top {
 			continue
 		}
 		if o.box.x0 > l.box.x0+6*l.size {

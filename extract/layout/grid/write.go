@@ -115,6 +115,9 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 			parts[at].figure = parts[at].figure || p.figure
 		}
 	}
+	if p := &parts[0]; len(parts) == 2 && p.c0 > 0 && !p.figure && parts[1].figure && rd.wordShare(p.c0) < 50 {
+		p.c0 = 0 // a row group set in the middle, with its p value
+	}
 	label := len(parts) == 1 && !parts[0].figure
 	heading := rd.headingRow(lines)
 	for _, p := range parts {
