@@ -41,6 +41,7 @@ var mayImport = map[string][]string{
 	"report/ledger":      {"extract/paper", "extract/result", "convert/working"},
 	"report/review":      {"extract/paper", "extract/result", "convert", "convert/working", "report/ledger"},
 	"report/export":      {"extract/paper", "extract/result", "convert", "convert/working", "report/ledger", "report/review"},
+	"report/evidence":    {"extract/paper", "extract/result", "convert/working", "report/ledger", "report/export"},
 	"report/desk":        {"extract", "extract/...", "convert", "convert/working", "report/ledger", "report/review", "report/export"},
 	"cmd/halfspan":       {"extract", "extract/...", "convert", "convert/...", "report/..."},
 }
