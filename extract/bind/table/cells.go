@@ -184,7 +184,7 @@ func (f *frame) takeParts(e *estimate, v *grammar.Value, rd *cellReading) {
 		case grammar.KindSpread:
 			sp.shape, sp.value = shapeWord, it.Value
 		case grammar.KindNumber:
-			if !it.Alone && it.Bracket > 0 && f.crowded(rd, it) {
+			if !it.Alone && it.Bracket > 0 {
 				e.extra = append(e.extra, it)
 				continue
 			}
@@ -202,17 +202,4 @@ func (f *frame) takeParts(e *estimate, v *grammar.Value, rd *cellReading) {
 		}
 		e.spreads = append(e.spreads, sp)
 	}
-}
-
-// crowded reports that a bracket holds more than the number: another item.
-func (f *frame) crowded(rd *cellReading, it grammar.Item) bool {
-	k := 0
-	for i := range rd.cell.Values {
-		for _, o := range rd.cell.Values[i].Parts {
-			if o.Bracket == it.Bracket {
-				k++
-			}
-		}
-	}
-	return k > 1
 }

@@ -64,10 +64,28 @@ func (f *frame) partOf(l label) part {
 		p.kind, p.name = partTime, tidyTime(l.text)
 	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
 		p.kind = partArm
+	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.armRow[l.cell.Row]:
+		p.kind = partArm // beside a heading that names an arm
 	default:
 		p.kind = partOther
 	}
 	return p
+}
+
+// findArmRows marks the heading rows in which some heading names an arm by its
+// words: its neighbours then name arms too.
+func (f *frame) findArmRows() {
+	rows := map[int]bool{}
+	for i := range f.tab.Cells {
+		c := &f.tab.Cells[i]
+		if c.Row >= f.head || c.Col < f.stub || isBlankText(c.Text.S) {
+			continue
+		}
+		if p := f.partOf(f.label(c)); p.kind == partArm && f.isArm(fold(p.name)) {
+			rows[c.Row] = true
+		}
+	}
+	f.armRow = rows
 }
 
 // rowPart classifies a label before a row: there an n does not make an arm, and
@@ -91,6 +109,7 @@ func hasArmShape(s string) bool { return len(s) < 120 }
 
 var (
 	spaceBracket = regexp.MustCompile(`\(\s*\)|\[\s*\]`)
+	loneMark     = regexp.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
 	edge         = " ,;:-–—/.±"
 )
 
@@ -101,7 +120,11 @@ func nameOf(s string) string {
 	for k := 0; k < 3; k++ {
 		t = spaceBracket.ReplaceAllString(t, " ")
 	}
+	t = strings.ReplaceAll(t, "±", " ")
+	t = loneMark.ReplaceAllString(t, "$1")
+	t = spaceBracket.ReplaceAllString(t, " ")
 	t = clean(t)
+	t = strings.ReplaceAll(strings.ReplaceAll(t, " )", ")"), "( ", "(")
 	t = strings.Trim(t, edge)
 	t = unbalanced(t)
 	if !hasLetter(t) && !hasDigit(t) {
@@ -122,7 +145,7 @@ func nameOf(s string) string {
 
 var statFiller = map[string]bool{"value": true, "values": true, "adj": true, "adjusted": true, "unadjusted": true, "crude": true, "estimate": true,
 	"estimates": true, "est": true, "of": true, "the": true, "and": true, "or": true, "in": true, "for": true, "as": true, "dif": true, "diff": true,
-	"statistic": true, "statistics": true, "a": true, "b": true, "m": true, "min": true, "max": true, "std": true, "error": true, "score": false, "to": true,
+	"statistic": true, "statistics": true, "a": true, "b": true, "m": true, "min": true, "max": true, "std": true, "error": true, "score": true, "scores": true, "result": true, "results": true, "to": true,
 	"unless": true, "otherwise": true, "stated": true, "data": true, "are": true, "is": true, "estimated": true, "observed": true, "multivariate": true, "univariate": true,
 	"multivariable": true, "univariable": true, "model": true, "mean": true, "means": true, "median": true, "medians": true}
 
@@ -161,6 +184,7 @@ var outcomeWord = regexp.MustCompile(`(?i)\b(?:rate|score|duration|time|days|num
 
 // axes settles which of rows and columns name the arms.
 func (f *frame) findAxes() {
+	f.findArmRows()
 	arms, rows := 0, 0
 	for r := f.head; r < f.tab.Rows; r++ {
 		ln := &f.lines[r]
@@ -448,12 +472,20 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if generic[fold(p.name)] {
 				continue
 			}
+			if f.armRows && len(times) > 0 && !hasLetter(p.name) {
+				times[len(times)-1] += " " + p.name
+				continue
+			}
 			if f.armRows {
 				x.outcome = joinPath([]string{x.outcome, p.name}, ", ")
 				x.outcomeAt, x.outcomeFrom = l, f.columnName(e.col)
 				continue
 			}
 			name := p.name
+			if len(times) > 0 && p.kind == partOther && !hasLetter(name) {
+				times[len(times)-1] += " " + name // "Hours after treatment" over 24, 48, 72
+				continue
+			}
 			if t := timeIn(name); t != "" && p.kind == partOther {
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
@@ -518,9 +550,14 @@ func (f *frame) armBelow(path []label) bool {
 
 // compares reports that a heading announces a statistic between arms.
 func compares(s string) bool {
-	for _, q := range readPhrase(s).pairs {
+	p := readPhrase(s)
+	for _, q := range p.pairs {
 		switch q.Statistic {
-		case "ratio", "mean difference", "risk difference":
+		case "ratio":
+			if q.Measure != "" || p.onlyTerms {
+				return true // else it may be what was measured: the E/A ratio
+			}
+		case "mean difference", "risk difference":
 			return true
 		}
 	}
@@ -563,11 +600,11 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			case own && f.subgroupLike(p.name):
 				if n := len(ln.groups); n > 0 && len(ln.labels) == 1 {
 					for _, g := range f.lines[ln.groups[n-1]].labels {
-						if unitIn(g.text) == "" {
+						if unitIn(g.text) == "" && !f.colArms {
 							subs = append(subs, nameOf(g.text))
 						}
 					}
-				} else if len(ln.labels) > 1 && unitIn(ln.labels[0].text) == "" {
+				} else if len(ln.labels) > 1 && unitIn(ln.labels[0].text) == "" && !f.colArms {
 					subs = append(subs, nameOf(ln.labels[0].text))
 				}
 				subs = append(subs, p.name)
@@ -636,9 +673,29 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	switch low := fold(capt); {
 	case scoreCaption.MatchString(low):
 		x.change, x.changeAll = true, true
-	case changeCaption.MatchString(low):
+	case changeCaption.MatchString(low) && !f.someChange():
 		x.change = true
 	}
+}
+
+// someChange reports that a heading or label of the table speaks of changes, so
+// that the rest prints values.
+func (f *frame) someChange() bool {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		for _, l := range f.heads[c] {
+			if changeMark.MatchString(fold(l.text)) {
+				return true
+			}
+		}
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		for _, l := range f.lines[r].labels {
+			if changeMark.MatchString(fold(l.text)) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 var (
@@ -722,7 +779,7 @@ func tidyTime(s string) string {
 		t = clean(s)
 	}
 	low := fold(t)
-	for _, pre := range []string{"at ", "by "} {
+	for _, pre := range []string{"at ", "by ", "the "} {
 		if strings.HasPrefix(low, pre) {
 			t = t[len(pre):]
 		}

@@ -78,6 +78,14 @@ func (f *frame) contrastArms(e *estimate, x *context) {
 		x.arm, x.arm2, x.armFrom = a, b, "the table's two arms"
 		return
 	}
+	if f.armRows && len(arms) == 2 && x.arm != "" {
+		a, b := arms[0], arms[1]
+		if controls.MatchString(a) && !controls.MatchString(b) {
+			a, b = b, a
+		}
+		x.arm, x.arm2, x.armFrom = a, b, "the table's two arms"
+		return
+	}
 	if x.arm == "" {
 		x.arm = f.armOfColumn(e.row, e.col)
 	}

@@ -287,6 +287,9 @@ func countStatement(s *statement) (is, strong bool) {
 			is = true
 		}
 	}
+	if countWords.MatchString(s.text) && s.rank <= rankGroup {
+		return true, true
+	}
 	if !is && len(s.pairs) > 0 {
 		low := fold(s.text)
 		if strings.Contains(low, "number") && strings.Contains(low, "percent") || strings.Contains(low, "n (%)") {
@@ -295,6 +298,8 @@ func countStatement(s *statement) (is, strong bool) {
 	}
 	return is, strong
 }
+
+var countWords = regexp.MustCompile(`(?i)\b(?:no\.?|n|number|nr\.?|frequency|count)\s*[,;:]?\s*[(\[]\s*(?:%|percent)|\b(?:no\.?|n|number|frequency)\s*(?:,|;|and|/)\s*(?:%|percent)`)
 
 // hasPair reports a spread or statistic among the pairs.
 func hasPair(ps []pair) bool {

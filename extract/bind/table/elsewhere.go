@@ -166,7 +166,7 @@ func (b *binder) contrastSize(r *result.Result, i int, f *frame, e *estimate, x 
 	}
 	s1, ok1 := one(x.arm)
 	s2, ok2 := one(x.arm2)
-	if total, ok := f.columnSize(e, x); ok {
+	if total, ok := f.columnSize(e, x); ok && !f.armRows {
 		if !ok1 || !ok2 || total.n != s1.n+s2.n {
 			b.setN(r, total, f, x)
 			return

@@ -107,7 +107,7 @@ func (b *binder) table(i int, f *frame) []result.Result {
 // result makes the record of one estimate with one of its spreads.
 func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, all []statement) (result.Result, bool) {
 	rd := f.meaningOf(e, sp, all)
-	if rd.count || rd.none || e.value.Value == "" {
+	if rd.count || rd.none || e.value.Value == "" || e.value.Rel != "" || sp.shape == shapeBracket && sp.value.Rel != "" {
 		return result.Result{}, false
 	}
 	r := result.Result{Section: b.blocks[i].Section, Zone: b.blocks[i].Zone, Table: tableName(f), Row: f.rowKey(e), Estimate: e.value.Value}

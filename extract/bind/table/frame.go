@@ -25,6 +25,7 @@ type frame struct {
 	colArms  bool               // column headings name the arms
 	rowArms  map[string]bool    // row labels found to be arms by repetition
 	outerSub bool               // group labels name analyses or subgroups of the same outcomes
+	armRow   map[int]bool       // heading rows that name arms
 	armList  []string
 }
 

@@ -148,7 +148,7 @@ func noteStatements(n note, rk rank) []statement {
 		p := readPhrase(text)
 		s := statement{rank: rk, text: clean(text), from: n.from, place: n.run.Between(seg.Start, seg.End)}
 		for i, q := range p.pairs {
-			if declares(text, p.pairs, i) {
+			if declares(text, p.pairs, i, rk) {
 				s.pairs = append(s.pairs, q)
 			}
 		}
@@ -190,7 +190,7 @@ var declaring = []string{"express", "present", "values", "value is", "data", "gi
 
 // declares reports whether the i-th pair of a note's sentence declares what is
 // printed, and does not only expand an abbreviation.
-func declares(text string, pairs []pair, i int) bool {
+func declares(text string, pairs []pair, i int, rk rank) bool {
 	q := pairs[i]
 	low := fold(text)
 	if q.Count && q.Percent || q.Sign {
@@ -219,7 +219,7 @@ func declares(text string, pairs []pair, i int) bool {
 	case q.Percent || q.Count:
 		return said
 	case q.Statistic != "":
-		return said
+		return said && rk >= rankCaption
 	}
 	return false
 }

@@ -1,10 +1,12 @@
 package table
 
 import (
+	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
+	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 )
 
@@ -32,6 +34,10 @@ func newNotes(t *paper.Table, v *vocabulary) *notes {
 			from = "footnote " + mark
 			n.known[mark] = true
 		}
+		if mark == "" {
+			n.splitMarked(&fn.Text)
+			continue
+		}
 		n.list = append(n.list, note{mark, &fn.Text, from})
 	}
 	if mark, run := captionNote(&t.Caption); mark != "" {
@@ -39,6 +45,37 @@ func newNotes(t *paper.Table, v *vocabulary) *notes {
 		n.known[mark] = true
 	}
 	return n
+}
+
+var markEquals = regexp.MustCompile(`^\s*([a-z]|[*†‡§#¶]{1,3})\s*(?:=|:)\s+`)
+
+// splitMarked parts a note that holds others: "Values are means. a = adjusted".
+func (n *notes) splitMarked(t *paper.TextRun) {
+	var cuts []grammar.Span
+	var marks []string
+	for _, sp := range segments(t.S) {
+		if m := markEquals.FindStringSubmatch(t.S[sp.Start:sp.End]); m != nil {
+			cuts = append(cuts, sp)
+			marks = append(marks, m[1])
+			n.known[m[1]] = true
+		}
+	}
+	if len(cuts) == 0 {
+		n.list = append(n.list, note{"", t, "note below the table"})
+		return
+	}
+	if cuts[0].Start > 0 {
+		head := slice(t, 0, cuts[0].Start)
+		n.list = append(n.list, note{"", &head, "note below the table"})
+	}
+	for i, c := range cuts {
+		end := len(t.S)
+		if i+1 < len(cuts) {
+			end = cuts[i+1].Start
+		}
+		part := slice(t, c.Start, end)
+		n.list = append(n.list, note{marks[i], &part, "footnote " + marks[i]})
+	}
 }
 
 // captionNote finds a remark with a mark in a caption: "(* values are mean ± SD)".

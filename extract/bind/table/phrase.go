@@ -96,6 +96,13 @@ func parsePhrase(in grammar.Text) phrase {
 			p.terms++
 		}
 	}
+	for i := range p.pairs {
+		for k := range p.pairs {
+			if p.pairs[i].Statistic == "mean change" && p.pairs[k].Statistic == "mean difference" && k < i+2 {
+				p.pairs[i].Statistic = "mean difference" // "mean difference in change"
+			}
+		}
+	}
 	p.rest = restWords(in.S, h)
 	low := fold(in.S)
 	p.onlyTerms = p.terms > 0 && len(p.rest) == 0

@@ -181,6 +181,9 @@ func isTimeHeading(low string) bool {
 		return true
 	}
 	rest := stripTerms(low)
+	if k := strings.IndexByte(rest, '('); k > 0 && timeMark.FindString(rest[:k]) != "" {
+		rest = rest[:k] // "Baseline (self-reported)"
+	}
 	t := timeMark.FindAllString(rest, -1)
 	if len(t) == 0 {
 		switch strings.TrimSpace(low) {

@@ -344,11 +344,53 @@ func (f *frame) mixedBold() bool {
 	return b > 0 && plain > 0
 }
 
+// repeats finds labels of rows that come again and again under others that come
+// once: "Mass" with its first values, then "Syrup", "Water"; "Time" with its
+// values, then "Syrup", "Water". It returns the row of the outer label for each
+// such row.
+func (f *frame) repeats() map[int]int {
+	count := map[string]int{}
+	for r := f.head; r < f.tab.Rows; r++ {
+		if ln := &f.lines[r]; ln.kind == lineData && len(ln.labels) == 1 && len(ln.groups) == 0 {
+			count[fold(ln.labels[0].text)]++
+		} else if ln.kind == lineGroup {
+			return nil
+		}
+	}
+	out := map[int]int{}
+	outer, outers := -1, 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind != lineData || len(ln.labels) != 1 {
+			continue
+		}
+		if count[fold(ln.labels[0].text)] == 1 {
+			outer = r
+			outers++
+			continue
+		}
+		if outer < 0 || f.rowRole(r).kind != roleNone {
+			return nil
+		}
+		out[r] = outer
+	}
+	if outers < 2 || len(out) < outers {
+		return nil
+	}
+	return out
+}
+
 // nest gives every row the group labels over it. Levels come in fours for each
 // step of indentation: a group with groups of the same step right below it
 // (+0), a group with rows of the same step (+1), a row (+2).
 func (f *frame) nest() {
 	mixed := f.mixedBold()
+	if under := f.repeats(); under != nil {
+		for r, g := range under {
+			f.lines[r].groups = []int{g}
+		}
+		return
+	}
 	var stack []int
 	for r := f.head; r < f.tab.Rows; r++ {
 		ln := &f.lines[r]

@@ -34,6 +34,9 @@ func number(n grammar.Number) int {
 func lastN(l label) (int, bool) {
 	p := readPhrase(l.raw)
 	for i := len(p.ns) - 1; i >= 0; i-- {
+		if end := p.ns[i].End; end < len(l.raw) && (l.raw[end] == 'M' || l.raw[end] == 'F') {
+			return 0, false // 4M, 13F: two numbers
+		}
 		if n := number(p.ns[i].Value); n > 0 {
 			return n, true
 		}
@@ -462,6 +465,13 @@ func (f *frame) otherNames(arm string) []string {
 func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 	if x.contrast || f.armsInColumns() || f.armRows || x.subgroup != "" {
 		return size{}, false
+	}
+	for k := 0; k < f.stub; k++ {
+		for _, l := range f.heads[k] {
+			if n, ok := lastN(l); ok {
+				return sizeOfLabel(n, l, result.NHeading, f.columnName(k)), true
+			}
+		}
 	}
 	c := &f.tab.Caption
 	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
