@@ -170,6 +170,9 @@ func (rd *reader) clear(i int, r rule) bool {
 
 // isData reports whether a line holds figures in cells right of its first run.
 func (rd *reader) isData(i int) bool {
+	if rd.lines[i].size*100 < 80*rd.em {
+		return false // raised marks that found no host
+	}
 	rs := rd.s.atoms(&rd.lines[i])
 	figures, others := 0, 0
 	for k := range rs {
@@ -283,6 +286,9 @@ func (rd *reader) allSingle(i, j int) bool {
 // some of their cells are figures ("10-14" weeks, a year).
 func (rd *reader) fewFigures(n int) bool {
 	for i := range n {
+		if rd.lines[i].size*100 < 80*rd.em {
+			continue
+		}
 		figures := 0
 		rs := rd.s.runs(&rd.lines[i], 60)
 		for k := range rs {

@@ -55,7 +55,9 @@ func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
 	st.left = left*2 > spans && left >= centred
 	first := slices.MinFunc(next, func(a, b headPiece) int { return a.top - b.top })
 	tight := (first.top-row[0].top)*100 <= 135*rd.em && !rd.anyRule(&row[0], &first)
-	st.wrapped = tight && (left > 0 || centred > 0)
+	if tight && (left > 0 || centred > 0) {
+		return // lines of one heading rather than levels
+	}
 	for k := range row {
 		if p := &row[k]; !p.fixed && p.c0 > 0 {
 			st.stretch(p)
@@ -127,12 +129,12 @@ func (rd *reader) goesOver(row, next []headPiece) {
 
 // stretcher lets heading pieces reach over free neighbouring columns.
 type stretcher struct {
-	rd            *reader
-	boxes         []box
-	under         []*headPiece // the piece of the next band in each column
-	next          []headPiece
-	taken         []bool
-	left, wrapped bool // headings flush left with their first column; lines of one cell rather than levels
+	rd    *reader
+	boxes []box
+	under []*headPiece // the piece of the next band in each column
+	next  []headPiece
+	taken []bool
+	left  bool // headings flush left with their first column
 }
 
 // free reports whether column c may come under the heading p.
@@ -142,7 +144,7 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 	}
 	q, own := st.under[c], st.under[p.c0]
 	again := repeated(st.next, q.text)
-	if st.left && isTestHead(q.text) && !again || st.wrapped && !again {
+	if st.left && isTestHead(q.text) && !again {
 		return false
 	}
 	return own == nil || isSize(own.text) == isSize(q.text)
