@@ -41,7 +41,7 @@ func (p *para) tally(from, to int) tally {
 // took for a paragraph do not: their results have lost their headings.
 func (p *para) isProse() bool {
 	t := p.tally(0, len(p.s))
-	return t.words >= 6 && t.function >= 2 && t.numbers <= t.words
+	return t.words >= 6 && t.function >= 2 && (t.numbers <= t.words || t.function >= 4 && 2*t.numbers <= 3*t.words)
 }
 
 // inSentence reports that the sentence around byte b has words enough for its
