@@ -125,8 +125,8 @@ func (in *interpreter) advance(x, y float64) {
 // how some programs make bold.
 type glyphKey struct {
 	font *Font
-	x, y int32 // in whole points
-	text string
+	x, y int32  // in whole points
+	text uint64 // a hash of the codes
 }
 
 // show shows one string.
@@ -180,7 +180,7 @@ func (in *interpreter) overprinted(f *Font, b []byte, m geom.Matrix) bool {
 		return false
 	}
 	x, y := geom.Hundredth(m[4])/100, geom.Hundredth(m[5])/100
-	key := glyphKey{font: f, x: x, y: y, text: string(b)}
+	key := glyphKey{font: f, x: x, y: y, text: hash(b)}
 	if in.overlaid[key] {
 		return true
 	}
@@ -195,6 +195,15 @@ func (in *interpreter) overprinted(f *Font, b []byte, m geom.Matrix) bool {
 		}
 	}
 	return false
+}
+
+// hash is FNV-1a.
+func hash(b []byte) uint64 {
+	h := uint64(14695981039346656037)
+	for _, c := range b {
+		h = (h ^ uint64(c)) * 1099511628211
+	}
+	return h
 }
 
 func (in *interpreter) fontIndex(f *Font) int32 {
