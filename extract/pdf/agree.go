@@ -14,6 +14,10 @@ import (
 // glyph; they differ by less than 1.2 points (99th percentile).
 const near = 150
 
+// moved is how far apart the same character may stand: one reader drops a
+// spacing here and there.
+const moved = 400
+
 // place finds glyphs by where they stand.
 type place struct{ x, y int32 }
 
@@ -42,17 +46,20 @@ func match(a, b []paper.Glyph) *matching {
 	j := 0
 	for i := range a {
 		for k := j; k < len(b) && k < j+3; k++ {
-			if m.toA[k] < 0 && close(a[i], b[k]) && a[i].Text == b[k].Text {
+			if m.toA[k] < 0 && within(a[i], b[k], near) && a[i].Text == b[k].Text {
 				m.tie(i, k)
 				j = k + 1
 				break
 			}
 		}
 	}
-	for _, same := range [2]bool{true, false} {
+	for _, pass := range []struct {
+		same bool
+		most int32
+	}{{true, near}, {true, moved}, {false, near}} {
 		for i := range a {
 			if m.toB[i] < 0 {
-				if k := m.find(at, i, same); k >= 0 {
+				if k := m.find(at, i, pass.same, pass.most); k >= 0 {
 					m.tie(i, k)
 				}
 			}
@@ -63,19 +70,20 @@ func match(a, b []paper.Glyph) *matching {
 
 func (m *matching) tie(i, j int) { m.toB[i], m.toA[j] = j, i }
 
-func close(a, b paper.Glyph) bool {
+func within(a, b paper.Glyph, most int32) bool {
 	dx, dy := a.Origin.X-b.Origin.X, a.Origin.Y-b.Origin.Y
-	return dx <= near && dx >= -near && dy <= near && dy >= -near
+	return dx <= most && dx >= -most && dy <= most && dy >= -most
 }
 
-// find looks for the nearest free glyph of b in the place of glyph i of a.
-func (m *matching) find(at map[place][]int, i int, sameText bool) int {
+// find looks for the nearest free glyph of b within most of glyph i of a.
+func (m *matching) find(at map[place][]int, i int, sameText bool, most int32) int {
 	best, bestDist := -1, int64(1)<<62
 	p := placeOf(m.a[i].Origin)
-	for dx := int32(-1); dx <= 1; dx++ {
-		for dy := int32(-1); dy <= 1; dy++ {
+	reach := (most + 2*near - 1) / (2 * near)
+	for dx := -reach; dx <= reach; dx++ {
+		for dy := -reach; dy <= reach; dy++ {
 			for _, j := range at[place{p.x + dx, p.y + dy}] {
-				if m.toA[j] >= 0 || !close(m.a[i], m.b[j]) || sameText && m.a[i].Text != m.b[j].Text {
+				if m.toA[j] >= 0 || !within(m.a[i], m.b[j], most) || sameText && m.a[i].Text != m.b[j].Text {
 					continue
 				}
 				x, y := int64(m.a[i].Origin.X-m.b[j].Origin.X), int64(m.a[i].Origin.Y-m.b[j].Origin.Y)
