@@ -91,11 +91,16 @@ func Flags() []FlagInfo {
 		{"bounds-not-positive", MakesIt, "a ratio or geometric mean with a bound that is not above 0", "look at the page: a lost digit, or a difference"},
 		{"decimal-slip", AsksLook, "one bound lies ten times as far from the estimate as the other or has another number of decimals", "look at the page: a lost decimal point"},
 		// What it is about.
-		{"arm-unclear", AsksLook, "the arm is not named where the result stands", "check the arm"},
-		{"time-unclear", AsksLook, "the time point rests on the caption", "check the time"},
+		{"described-alike", AsksLook, "two results of one table, or of the text, are described by the same words and differ", "look what tells them apart: arm, time, subgroup or outcome"},
+		{"in-running-text", AsksLook, "read from a sentence: arm, time, outcome and n are less sure than in a table", "read the sentence"},
+		{"arm-not-named", MakesIt, "read from a sentence that names no arm", "read the sentence: which arm, or all together"},
+		{"arm-unclear", AsksLook, "the arm is not named where the result stands, or only other results of the table name one", "check the arm"},
+		{"time-unclear", AsksLook, "the time point rests on the caption, or only other results of the table name one", "check the time"},
 		{"outcome-unclear", AsksLook, "no row label or heading says what was measured", "check the outcome"},
 		{"row-shape-odd", AsksLook, "the spread stands in another cell and was joined to its estimate by position", "check that the two belong together"},
 		{"quoted", AsksLook, "seems to quote another study, or to repeat", "take it from where it was first reported"},
+		{"sign-differs", AsksLook, "the sign was read in two ways", "look at the page"},
+		{"spread-from-rows", None, "what the spread is was taken from other rows of the table", "check the row's heading"},
 		{"in-methods", AsksLook, "printed in the methods: an assumption or a description", "rarely a result"},
 		// The text.
 		{"misprint", AsksLook, "a number is printed with a slip and was read as meant", "look at the page"},

@@ -41,6 +41,7 @@ func Work(doc Facts, results []result.Result) []Working {
 		applyPolicy(it)
 	}
 	compare(items)
+	compareContexts(items)
 	effects := effectOf(Flags())
 	out := make([]Working, len(items))
 	for i, it := range items {
