@@ -16,7 +16,7 @@ func (a *arranger) blocks() []paper.Block {
 	a.classify()
 	a.clearFigures()
 	a.join()
-	z := &zoner{body: a.body, titleSize: a.titleSize(), parts: map[string]bool{}}
+	z := &zoner{body: a.body, titleSize: a.titleSize(), parts: map[string]bool{}, ahead: a.headings()}
 	var out []paper.Block
 	for i := range a.drafts {
 		d := &a.drafts[i]
@@ -54,6 +54,17 @@ func entries(d *draft) []draft {
 			e.page = e.lines[0].page
 			out = append(out, e)
 			start = i
+		}
+	}
+	return out
+}
+
+// headings counts the headings of the paper by plain title.
+func (a *arranger) headings() map[string]int {
+	out := map[string]int{}
+	for i := range a.drafts {
+		if d := &a.drafts[i]; d.kind == paper.Heading {
+			out[paper.PlainTitle(d.text())]++
 		}
 	}
 	return out

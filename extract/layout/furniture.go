@@ -98,7 +98,7 @@ func markRepeats(at []*sheet, all []margin, open []bool, pages int) {
 	})
 	for i := range all {
 		m := &all[i]
-		if m.line < 0 || !open[m.page] || at[m.page].lines[m.line].furniture || strings.HasPrefix(m.key, "table") {
+		if m.line < 0 || !open[m.page] || at[m.page].lines[m.line].furniture || reports(m.key) {
 			continue
 		}
 		need := 2
@@ -121,6 +121,13 @@ func markRepeats(at []*sheet, all []margin, open []bool, pages int) {
 			at[m.page].lines[m.line].furniture = true
 		}
 	}
+}
+
+// reports reports whether a text (in lower case) may be of a table or hold a
+// result: such lines repeat, too, where one layout of table comes again and again.
+func reports(key string) bool {
+	return strings.HasPrefix(key, "table") || strings.ContainsAny(key, "±<=") && !strings.Contains(key, "http") ||
+		strings.Contains(key, "mean") || strings.Contains(key, "95%") || strings.Contains(key, "# (#")
 }
 
 // rows groups the lines of a sheet by baseline, from the top.

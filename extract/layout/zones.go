@@ -15,6 +15,7 @@ type zoner struct {
 	section         string
 	abstractSize    int             // font size of the heading that opened the abstract
 	parts           map[string]bool // headings met inside the abstract
+	ahead           map[string]int  // headings still to come, by plain title
 	done            bool            // the abstract is behind
 	numbered        bool            // the main headings carry numbers
 }
@@ -99,6 +100,7 @@ func (z *zoner) heading(d *draft, run paper.TextRun) paper.Block {
 	}
 	title := strings.TrimSpace(run.S)
 	zone, sure := paper.ZoneOf(title)
+	z.ahead[paper.PlainTitle(title)]--
 	switch {
 	case z.inAbstract(d, title, zone, sure):
 		z.section = title
@@ -124,6 +126,11 @@ func (z *zoner) inAbstract(d *draft, title string, zone paper.Zone, sure bool) b
 		return false
 	}
 	plain := paper.PlainTitle(title)
+	if sure && z.ahead[plain] > 0 && !z.parts[plain] {
+		// The same heading comes again: this one is of the abstract.
+		z.parts[plain] = true
+		return true
+	}
 	if sure && (zone == paper.References || plain == "introduction" || numbered.MatchString(title)) {
 		return false
 	}

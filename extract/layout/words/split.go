@@ -61,7 +61,7 @@ func twins(p *paper.GlyphPage, a, b *item) bool {
 
 func (m *maker) segment(items []item) Line {
 	right := items[0].x1
-	track := tracking(items)
+	track := m.tracking(items)
 	m.ends, m.gaps = m.ends[:0], m.gaps[:0]
 	for i := 1; i < len(items); i++ {
 		gap := apart(&items[i-1], &items[i], right, track)
@@ -106,29 +106,37 @@ func apart(a, b *item, right, track int) bool {
 		return gap >= 4
 	}
 	if a.hangs {
-		gap += 7
+		gap += 4
 	}
 	return gap >= 10
 }
 
-// tracking is the letter spacing of a line in hundredths of an em, where it is
-// so wide that gaps between letters would pass for spaces: the upper quartile
-// of the gaps of a line most of whose gaps are wide.
-func tracking(items []item) int {
+// tracking is the letter spacing of a line of letters, in hundredths of an em:
+// the median of its gaps, since letters outnumber spaces. In lines of digits a
+// gap may part one number from the next, however regular it is: there none is
+// taken away.
+func (m *maker) tracking(items []item) int {
 	if len(items) < 6 {
 		return 0
 	}
 	var hist [100]int
-	n := 0
-	for i := 1; i < len(items); i++ {
-		g := (items[i].x0 - items[i-1].x1) * 100 / items[i].size
-		hist[min(max(g, 0), 99)]++
-		n++
+	letters := 0
+	for i := range items {
+		if r, _ := utf8.DecodeRuneInString(m.page.Glyphs[items[i].glyph].Text); unicode.IsLetter(r) {
+			letters++
+		}
+		if i > 0 {
+			g := (items[i].x0 - items[i-1].x1) * 100 / items[i].size
+			hist[min(max(g, 0), 99)]++
+		}
+	}
+	if letters*10 < len(items)*7 {
+		return 0
 	}
 	seen := 0
 	for g, c := range hist {
-		if seen += c; seen*2 >= n { // the median gap: letters outnumber spaces
-			if g < 8 {
+		if seen += c; seen*2 >= len(items)-1 {
+			if g < 2 || g > 40 {
 				return 0
 			}
 			return g

@@ -67,6 +67,10 @@ func TestRead(t *testing.T) {
 		}, "Results\n"},
 		{"ligature and italic letter", func(p *sketch.Page) { p.Text(50, 700, "conﬁdence 𝑛 = 33") },
 			"confidence n = 33\n"},
+		{"letters spaced out", func(p *sketch.Page) { p.Spread = 20; p.Text(50, 700, "RESULTS OF FEEDING") },
+			"RESULTS OF FEEDING\n"},
+		{"digits spaced out are numbers", func(p *sketch.Page) { p.Spread = 30; p.Text(50, 700, "123456789") },
+			"1 2 3 4 5 6 7 8 9\n"},
 		{"fine print under a line is no subscript", func(p *sketch.Page) {
 			p.Text(50, 700, "Syrup")
 			p.Size = 6

@@ -20,6 +20,7 @@ type Page struct {
 	Bold   bool
 	Italic bool
 	Angle  int16 // 0, 90, 180 or 270: direction of the next text
+	Spread int   // space put in after each letter, hundredths of an em
 }
 
 // New is an empty page of width by height points with 10 point text.
@@ -50,7 +51,7 @@ func (p *Page) Text(x, y int, text string) int {
 		i += len(string(r))
 		w := Width(r) * size / 100
 		p.glyph(x*100, y*100, at, shift, w, size, string(r))
-		at += w
+		at += w + p.Spread*size/100
 	}
 	return x + at/100
 }
