@@ -64,6 +64,11 @@ func figuresMeet(a, b string, near bool) bool {
 	if !endsFigure {
 		return false
 	}
+	if a == "−" || a == "-" || a == "–" {
+		if r := firstRune(b); near && (unicode.IsDigit(r) || r == '.') {
+			return false // a sign set apart from its number
+		}
+	}
 	rb := []rune(b)
 	k := 0
 	for k < len(rb) && strings.ContainsRune("-–−<>≤≥=", rb[k]) {
@@ -305,7 +310,7 @@ func clings(a, b string) bool {
 	case '(', '[':
 		return true
 	}
-	if strings.HasPrefix(b, "±") || strings.HasSuffix(a, "±") || b == "to" || a == "to" || b == "–" || a == "–" || b == "-" {
+	if strings.HasPrefix(b, "±") || strings.HasSuffix(a, "±") || b == "to" || a == "to" || b == "–" || a == "–" || b == "-" || a == "-" || a == "−" || a == "<" || a == "=" {
 		return true
 	}
 	return strings.HasSuffix(a, ",") || strings.HasSuffix(a, "(") || strings.HasSuffix(a, "[")

@@ -21,7 +21,7 @@ func (rd *reader) headBlocks() []block {
 	boxes := rd.columnBoxes()
 	bands := rd.headBands(boxes)
 	for i := len(bands) - 2; i >= 0; i-- {
-		rd.shareColumns(bands[i], nearest(bands[i+1:], len(boxes)), boxes)
+		rd.shareColumns(bands[:i+1], nearest(bands[i+1:], len(boxes)), boxes)
 	}
 	statisticOver(bands, len(boxes))
 	for _, row := range bands {

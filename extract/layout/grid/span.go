@@ -5,9 +5,10 @@ import (
 	"strings"
 )
 
-// shareColumns widens the pieces of a heading band that stand over several
-// cells of the next one with nothing drawn between them.
-func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
+// shareColumns widens the pieces of the last of the heading bands that stand
+// over several cells of the next one with nothing drawn between them.
+func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []box) {
+	row := bands[len(bands)-1]
 	rd.goesOver(row, next)
 	under := make([]*headPiece, len(boxes))
 	n := 0
@@ -25,6 +26,14 @@ func (rd *reader) shareColumns(row, next []headPiece, boxes []box) {
 	for c, p := range under {
 		if p != nil && p.c0 == p.c1 {
 			st.boxes[c] = st.boxes[c].union(p.box)
+		}
+	}
+	if len(bands) > 1 {
+		// A cell whose lines stand a little higher has its column to itself.
+		for _, p := range bands[len(bands)-2] {
+			if p.c0 == p.c1 && (row[0].top-p.top)*100 <= 135*rd.em {
+				st.taken[p.c0] = true
+			}
 		}
 	}
 	spans, left, centred := 0, 0, 0
@@ -112,18 +121,28 @@ func (rd *reader) byPattern(row, next []headPiece) bool {
 // goesOver gives a piece that stands flush or centred over one spanning piece of
 // the next band the columns of that one: two lines of one heading.
 func (rd *reader) goesOver(row, next []headPiece) {
-	for k := range row {
-		p := &row[k]
-		if p.fixed || p.c0 == 0 {
+	over := map[int]int{} // piece of row -> spanning piece of next
+	spanning := 0
+	for j := range next {
+		q := &next[j]
+		if q.c1 == q.c0 || q.c0 == 0 {
 			continue
 		}
-		for j := range next {
-			q := &next[j]
+		spanning++
+		for k := range row {
+			p := &row[k]
 			aligned := abs(p.x0-q.x0)*10 < rd.em*4 || abs(p.run.mid()-q.run.mid())*10 < rd.em*4
-			if q.c1 > q.c0 && q.c0 <= p.c0 && p.c1 <= q.c1 && aligned {
-				p.c0, p.c1, p.fixed = q.c0, q.c1, true
+			if !p.fixed && q.c0 <= p.c0 && p.c1 <= q.c1 && aligned {
+				over[k] = j
+				break
 			}
 		}
+	}
+	if len(over) < spanning {
+		return // some have nothing over them: row is a level of its own
+	}
+	for k, j := range over {
+		row[k].c0, row[k].c1, row[k].fixed = next[j].c0, next[j].c1, true
 	}
 }
 
