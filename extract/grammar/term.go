@@ -24,6 +24,9 @@ func (p *parser) termAt(i int) (Meaning, int, bool) {
 		if (e.Spread == SpreadSD || e.Spread == SpreadSE) && len(e.words) == 1 && p.kind(i+1) == TokDash && !p.toks[i+1].Spaced && p.kind(i+2) == TokNumber && !p.toks[i+2].Spaced && whole(p.toks[i+2].Value) {
 			continue // a name: SE-4
 		}
+		if e.exact && len(e.words) == 1 && p.kind(i+1) == TokDash && !p.toks[i+1].Spaced && p.kind(i+2) == TokWord && !p.toks[i+2].Spaced {
+			continue // part of a longer name: HR-HPV
+		}
 		if end, ok := p.pattern(i, e); ok && (!needsValue[e.words[0]] || len(e.words) > 1 || p.hasValue(end)) {
 			return e.Meaning, p.definition(end, e.Meaning), true
 		}

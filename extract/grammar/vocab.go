@@ -68,8 +68,9 @@ var vocabulary = buildVocabulary([]row{
 	{"number needed to treat|NNT|NNTs|NNTB|NNH", Meaning{Statistic: "other", Measure: "number needed to treat"}},
 	{"regression coefficient|coefficient|beta|slope|β|B|b|unstandardised coefficient|unstandardized coefficient|coef", Meaning{Statistic: "coefficient"}},
 	{"correlation coefficient|correlation|pearson s r|spearman s rho", Meaning{Statistic: "coefficient", Measure: "correlation"}},
-	{"vaccine efficacy|efficacy|VE|area under the curve|AUC|kappa|ICC|intraclass correlation coefficient|intraclass correlation", Meaning{Statistic: "other"}},
-	{"proportion|prevalence|percentage|percent|sensitivity|specificity|response rate|survival rate|success rate|cure rate|event rate|success rate|cumulative incidence", Meaning{Statistic: "proportion"}},
+	{"intraclass correlation coefficient|intraclass correlation|ICC|kappa|area under the ROC curve", Meaning{Statistic: "coefficient", Measure: "agreement"}},
+	{"vaccine efficacy|efficacy|VE|area under the curve|AUC", Meaning{Statistic: "other"}},
+	{"proportion|prevalence|percentage|percent|sensitivity|specificity|positive predictive value|negative predictive value|predictive value|response rate|survival rate|success rate|cure rate|event rate|success rate|cumulative incidence", Meaning{Statistic: "proportion"}},
 	{"incidence rate|rate|event rate per|incidence", Meaning{Statistic: "rate"}},
 
 	{"n|number|Nr|No", Meaning{Count: true}},

@@ -184,12 +184,28 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		if percent {
 			n.statistic = result.Proportion
 		}
+	case result.Coefficient:
+		if n.measure == "" && compared {
+			n.statistic = result.MeanDifference // the coefficient of an arm
+		}
 	case result.MeanDifference:
-		if percent && n.measure == "" && (sharesOf.MatchString(around) || strings.Count(around, "%") > 3) {
+		if percent && n.measure == "" && sharesBeside(p, c, from, to) {
 			n.statistic = result.RiskDifference
 		}
 	}
 	return n
+}
+
+// sharesBeside reports that percentages stand in the sentence besides the
+// candidate's own: the difference is one of shares.
+func sharesBeside(p *para, c *cand, from, to int) bool {
+	for k := range p.r.Items {
+		e := &p.r.Items[k]
+		if e.Kind == grammar.KindNumber && e.Value.Percent && e.Start >= from && e.End <= to && k != c.estItem {
+			return true
+		}
+	}
+	return false
 }
 
 // settleSpread decides for a value with SD, SE or a bare ±: a mean, unless a
