@@ -222,7 +222,71 @@ func (f *frame) findAxes() {
 	if colArm && f.armRows && 10*arms < 8*rows {
 		f.armRows = false
 	}
+	f.outcomeCols = !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows || f.unitColumns())
+	if f.outcomeCols {
+		if 5*f.timeRows() < 4*rows {
+			f.nameRows()
+			f.armRows = len(f.rowArms) > 0
+		}
+		return
+	}
 	f.colArms = !f.armRows && (colArm || f.namedColumns() >= 2)
+}
+
+// timeRows counts the data rows that a time labels and nothing else.
+func (f *frame) timeRows() int {
+	n := 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		if ln := &f.lines[r]; ln.kind == lineData && len(ln.labels) == 1 && f.rowPart(ln.labels[0]).kind == partTime {
+			n++
+		}
+	}
+	return n
+}
+
+// unitColumns reports that the data columns are headed by outcomes: most names
+// over them carry a unit, and the row labels carry none.
+func (f *frame) unitColumns() bool {
+	with, all := 0, 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if f.pColumn(c) {
+			continue
+		}
+		for _, l := range f.heads[c] {
+			if f.partOf(l).kind == partOther {
+				all++
+				if u := unitIn(l.text); u != "" && u != "%" || strings.Contains(l.text, "(%)") {
+					with++
+				}
+			}
+		}
+	}
+	if all < 2 || 5*with < 3*all {
+		return false
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		for _, l := range f.lines[r].labels {
+			if unitIn(l.text) != "" {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+// nameRows takes the innermost labels of the data rows for arms.
+func (f *frame) nameRows() {
+	f.rowArms = map[string]bool{}
+	for r := f.head; r < f.tab.Rows; r++ {
+		ln := &f.lines[r]
+		if ln.kind != lineData || len(ln.labels) == 0 {
+			continue
+		}
+		p := f.partOf(ln.labels[len(ln.labels)-1])
+		if p.kind == partOther && !subgroupName.MatchString(p.name) && f.rowRole(r).kind == roleNone {
+			f.rowArms[fold(p.name)] = true
+		}
+	}
 }
 
 // repeatedLabels finds arms by repetition: the same few names in every block,
@@ -472,11 +536,11 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if generic[fold(p.name)] {
 				continue
 			}
-			if f.armRows && len(times) > 0 && !hasLetter(p.name) {
+			if (f.armRows || f.outcomeCols) && len(times) > 0 && !hasLetter(p.name) {
 				times[len(times)-1] += " " + p.name
 				continue
 			}
-			if f.armRows {
+			if f.armRows || f.outcomeCols {
 				x.outcome = joinPath([]string{x.outcome, p.name}, ", ")
 				x.outcomeAt, x.outcomeFrom = l, f.columnName(e.col)
 				continue
@@ -505,7 +569,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		arms = without(arms, others)
 		x.aside = joinPath(others, ", ")
 	}
-	if f.colArms || len(arms) > 0 && !f.armRows {
+	if f.colArms || len(arms) > 0 && !f.armRows && !f.outcomeCols {
 		if !x.contrast || x.arm == "" {
 			x.arm = joinPath(arms, ", ")
 		}
@@ -701,7 +765,7 @@ func (f *frame) someChange() bool {
 var (
 	captionArm    = regexp.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
 	changeCaption = regexp.MustCompile(`(?i)\bchanges? (?:in|of)\b`)
-	scoreCaption  = regexp.MustCompile(`(?i)\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
+	scoreCaption  = regexp.MustCompile(`(?i)\bmeans?\s*(?:\((?:sd|se|sem|95% ci)\)|± ?(?:sd|sem?))\s*(?:changes?|reductions?)\b|\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
 )
 
 func captionOutcome(s string) string {

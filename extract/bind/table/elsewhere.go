@@ -57,6 +57,15 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 	if ok && s.from == result.NHeading && f.baselineN(b) && !atBaseline(x) {
 		return // the paper says that these are the numbers at baseline
 	}
+	if ok && s.shared && f.colArms {
+		// One column of n's beside several arms: of all of them together, unless
+		// every arm has the same subjects.
+		if o, known := b.otherSize(i, x.arm); known && 4*s.n > 5*o.n {
+			s = o
+		} else {
+			r.Raise(FlagNTotal, "one column of n's stands beside several arms")
+		}
+	}
 	if !ok {
 		s, ok = b.flowSize(i, f, x)
 	}

@@ -13,20 +13,21 @@ type frame struct {
 	head int
 	stub int
 
-	notes    *notes
-	reads    map[*paper.Cell]*cellReading
-	heads    [][]label // column headings from the top, by column; without repeats
-	lines    []line    // one per grid row; heading rows and empty rows have kind lineNone
-	mid      []midHead // headings repeated inside the body, in order
-	vocab    *vocabulary
-	whole    []statement        // what caption and notes say for all
-	counts   map[int]countGrade // by row, once weighed
-	armRows  bool               // row labels name the arms
-	colArms  bool               // column headings name the arms
-	rowArms  map[string]bool    // row labels found to be arms by repetition
-	outerSub bool               // group labels name analyses or subgroups of the same outcomes
-	armRow   map[int]bool       // heading rows that name arms
-	armList  []string
+	notes       *notes
+	reads       map[*paper.Cell]*cellReading
+	heads       [][]label // column headings from the top, by column; without repeats
+	lines       []line    // one per grid row; heading rows and empty rows have kind lineNone
+	mid         []midHead // headings repeated inside the body, in order
+	vocab       *vocabulary
+	whole       []statement        // what caption and notes say for all
+	counts      map[int]countGrade // by row, once weighed
+	armRows     bool               // row labels name the arms
+	colArms     bool               // column headings name the arms
+	rowArms     map[string]bool    // row labels found to be arms by repetition
+	outcomeCols bool               // column headings name outcomes
+	outerSub    bool               // group labels name analyses or subgroups of the same outcomes
+	armRow      map[int]bool       // heading rows that name arms
+	armList     []string
 }
 
 // newFrame lays out a table; nil where it has no cells to read.

@@ -257,7 +257,7 @@ func stripTerms(s string) string {
 				b[i] = ' '
 			}
 		}
-		if q.Count || q.Percent {
+		if (q.Count || q.Percent) && (all || q.Count && q.Percent) {
 			for i := q.Start; i < q.End; i++ {
 				b[i] = ' '
 			}

@@ -12,13 +12,14 @@ import (
 
 // size is a sample size with where it was read.
 type size struct {
-	n     int
-	from  string // the record's n_from
-	words string // in words
-	text  string // as printed
-	place paper.Place
-	total bool // it may be the total of several arms
-	base  bool // said to be the number at baseline
+	n      int
+	from   string // the record's n_from
+	words  string // in words
+	text   string // as printed
+	place  paper.Place
+	shared bool // from one column of n's for all arms of the row
+	total  bool // it may be the total of several arms
+	base   bool // said to be the number at baseline
 }
 
 // number reads an n as printed.
@@ -192,7 +193,8 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	if n == 0 {
 		return size{}, false
 	}
-	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast}, true
+	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast,
+		shared: len(nCols) == 1 && best == 0 && len(f.armNames()) > 1}, true
 }
 
 // labelSize reads an n in the labels of the row.

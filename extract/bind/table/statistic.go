@@ -100,7 +100,7 @@ func (s *statement) nameOnly(q pair) bool {
 		if q.Measure != "" {
 			return false
 		}
-	case "rate", "other", "coefficient":
+	case "rate", "other", "coefficient", "proportion":
 	default:
 		return false
 	}
