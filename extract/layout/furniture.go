@@ -127,7 +127,8 @@ func markRepeats(at []*sheet, all []margin, open []bool, pages int) {
 // result: such lines repeat, too, where one layout of table comes again and again.
 func reports(key string) bool {
 	return strings.HasPrefix(key, "table") || strings.ContainsAny(key, "±<=") && !strings.Contains(key, "http") ||
-		strings.Contains(key, "mean") || strings.Contains(key, "95%") || strings.Contains(key, "# (#")
+		strings.Contains(key, "mean") || strings.Contains(key, "95%") || strings.Contains(key, "# (#") ||
+		strings.Contains(key, "#(#") && strings.Trim(key, "#()%.,-–− ") == ""
 }
 
 // rows groups the lines of a sheet by baseline, from the top.
