@@ -33,6 +33,8 @@ type Book struct {
 	papers    []Paper
 	items     []Item
 	history   history
+	joined    []Row // what rows made
+	joinedAt  Stamp // of what
 }
 
 // Stamp tells one state of a book from another: it differs after every change,
@@ -118,33 +120,34 @@ func (b *Book) Rows() ([]Row, error) {
 	if err := b.refresh(); err != nil {
 		return nil, err
 	}
-	return b.rows(), nil
+	return slices.Clone(b.rows()), nil
 }
 
 // Row finds one result by its id, or an unambiguous beginning of it.
 func (b *Book) Row(id string) (Row, error) {
-	rows, err := b.Rows()
-	if err != nil {
+	b.mu.Lock()
+	defer b.mu.Unlock()
+	if err := b.refresh(); err != nil {
 		return Row{}, err
 	}
-	return findRow(rows, id)
+	return findRow(b.rows(), id)
 }
 
 func findRow(rows []Row, id string) (Row, error) {
-	var found []Row
-	for _, r := range rows {
-		if r.ID() == id {
-			return r, nil
+	var found []int
+	for i := range rows {
+		if rows[i].ID() == id {
+			return rows[i], nil
 		}
-		if id != "" && strings.HasPrefix(r.ID(), id) {
-			found = append(found, r)
+		if id != "" && strings.HasPrefix(rows[i].ID(), id) {
+			found = append(found, i)
 		}
 	}
 	switch len(found) {
 	case 0:
 		return Row{}, fmt.Errorf("%s: %w", id, ErrUnknown)
 	case 1:
-		return found[0], nil
+		return rows[found[0]], nil
 	}
 	return Row{}, fmt.Errorf("%s: %w: %d results begin so", id, ErrUnknown, len(found))
 }
@@ -199,22 +202,31 @@ func (b *Book) take(entries []Decision) {
 	}
 }
 
-// rows joins what was read with what was decided.
+// rows joins what was read with what was decided. The slice is kept: it is not
+// to be changed.
 func (b *Book) rows() []Row {
+	if b.joined != nil && b.joinedAt == b.stamp {
+		return b.joined
+	}
 	name := map[string]string{} // of the contents that are there
 	contentOf := map[string]string{}
 	for _, p := range b.papers {
 		name[p.SHA256], contentOf[p.Name] = p.Name, p.SHA256
 	}
-	var rows []Row
+	type chapter struct {
+		paper string
+		rows  []Row
+	}
+	var chapters []chapter
 	joined := map[string]bool{} // contents
 	for start := 0; start < len(b.items); {
-		sha := b.items[start].Working.Record.PaperSHA256
+		record := &b.items[start].Working.Record
 		end := start
-		for end < len(b.items) && b.items[end].Working.Record.PaperSHA256 == sha {
+		for end < len(b.items) && b.items[end].Working.Record.PaperSHA256 == record.PaperSHA256 {
 			end++
 		}
-		rows = append(rows, joinPaper(b.items[start:end], b.history.byContent[sha], "")...)
+		sha := record.PaperSHA256
+		chapters = append(chapters, chapter{record.Paper, joinPaper(b.items[start:end], b.history.byContent[sha], "")})
 		joined[sha] = true
 		start = end
 	}
@@ -229,11 +241,14 @@ func (b *Book) rows() []Row {
 		} else if _, there := contentOf[files[0].paper()]; there {
 			gone = "its paper's file has changed"
 		}
-		rows = append(rows, joinPaper(nil, files, gone)...)
+		chapters = append(chapters, chapter{files[0].paper(), joinPaper(nil, files, gone)})
 	}
-	slices.SortStableFunc(rows, func(x, y Row) int {
-		return strings.Compare(x.Working.Record.Paper, y.Working.Record.Paper)
-	})
+	slices.SortStableFunc(chapters, func(x, y chapter) int { return strings.Compare(x.paper, y.paper) })
+	var rows []Row
+	for i := range chapters {
+		rows = append(rows, chapters[i].rows...)
+	}
+	b.joined, b.joinedAt = rows, b.stamp
 	return rows
 }
 

@@ -60,7 +60,7 @@ func (b *Book) Decide(drafts ...Draft) ([]Row, error) {
 
 // entry turns a draft into the decision to be kept.
 func (b *Book) entry(d *Draft, rows []Row) (Decision, error) {
-	i := slices.IndexFunc(rows, func(r Row) bool { return r.ID() == d.ID })
+	i := indexRow(rows, d.ID)
 	if i < 0 {
 		return Decision{}, ErrUnknown
 	}
@@ -171,10 +171,21 @@ func (b *Book) change(decide func(rows []Row) ([]Decision, error)) ([]Row, error
 	}
 	b.take(entries)
 	var changed []Row
-	for _, row := range b.rows() {
-		if slices.ContainsFunc(entries, func(d Decision) bool { return d.ResultID == row.ID() }) {
-			changed = append(changed, row)
+	rows := b.rows()
+	for i := range rows {
+		if slices.ContainsFunc(entries, func(d Decision) bool { return d.ResultID == rows[i].ID() }) {
+			changed = append(changed, rows[i])
 		}
 	}
 	return changed, nil
+}
+
+// indexRow finds a row by its whole id. Rows are large: they are not copied.
+func indexRow(rows []Row, id string) int {
+	for i := range rows {
+		if rows[i].ID() == id {
+			return i
+		}
+	}
+	return -1
 }
