@@ -27,6 +27,7 @@ type scanOptions struct {
 	ledger string
 	keep   bool // false for --ledger ""
 	again  bool
+	notes  bool
 	ocr    bool
 }
 
@@ -56,6 +57,7 @@ and keeps every decision. No paper leaves this machine.
 	cmd.Flags().BoolVar(&opt.jsonl, "jsonl", false, "write the records to standard output, one JSON object a line, instead of the table")
 	cmd.Flags().StringVar(&opt.ledger, "ledger", "", ledgerHelp+`; "" keeps nothing`)
 	cmd.Flags().BoolVar(&opt.again, "again", false, "read every paper again, changed or not")
+	cmd.Flags().BoolVar(&opt.notes, "notes", false, "list everything the readers have to say, not only the first of it")
 	cmd.Flags().BoolVar(&opt.ocr, "ocr", false, "read page pictures without text with tesseract, if it is installed")
 	return cmd
 }
@@ -93,7 +95,7 @@ func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) erro
 		}
 		defer sc.ledger.Close()
 	}
-	sc.sum.PassedOver = g.passed
+	sc.sum.PassedOver, sc.sum.All = g.passed, opt.notes
 	for _, u := range g.failed {
 		sc.sum.Unread = append(sc.sum.Unread, review.Unread{Name: u.name, Reason: u.reason})
 	}

@@ -29,6 +29,7 @@ type Summary struct {
 	Pictures   []Unread // tables that are only pictures
 	Notes      []Unread // what else the readers had to say
 	PassedOver []string // files that are no papers by their type
+	All        bool     // write every line; otherwise long lists are cut, and their rest counted
 
 	results  int
 	readings map[string]int
@@ -95,9 +96,9 @@ func (s *Summary) Write(w io.Writer) error {
 	if n := len(s.Trouble()); n > 0 {
 		fmt.Fprintf(&b, "Not read, or not whole: %s, named on standard error with the reasons.\n", filesOf(s.Trouble()))
 	}
-	list(&b, "Tables that are only pictures", s.Pictures)
-	list(&b, "Read once only", s.Same)
-	list(&b, "Notes on reading", s.Notes)
+	s.list(&b, "Tables that are only pictures", s.Pictures)
+	s.list(&b, "Read once only", s.Same)
+	s.list(&b, "Notes on reading", s.Notes)
 	if len(s.PassedOver) > 0 {
 		fmt.Fprintf(&b, "Passed over %s: %s.\n", Count(len(s.PassedOver), "file"), byType(s.PassedOver))
 	}
@@ -125,7 +126,7 @@ func (s *Summary) writeResults(b *strings.Builder) {
 	}
 	fmt.Fprintf(b, "Decisions: %s.\n", strings.Join(parts, ", "))
 	if s.gone > 0 {
-		fmt.Fprintf(b, "Of the decided results, %d are no longer found; their decisions are kept.\n", s.gone)
+		fmt.Fprintf(b, "No longer found, with their decisions kept: %s.\n", Count(s.gone, "decided result"))
 	}
 }
 
@@ -138,12 +139,19 @@ func filesOf(all []Unread) string {
 	return Count(len(names), "paper")
 }
 
-func list(b *strings.Builder, title string, files []Unread) {
+// mostLines is how many lines of one list are written.
+const mostLines = 12
+
+func (s *Summary) list(b *strings.Builder, title string, files []Unread) {
 	if len(files) == 0 {
 		return
 	}
 	fmt.Fprintf(b, "%s:\n", title)
-	for _, u := range files {
+	for i, u := range files {
+		if i == mostLines && !s.All {
+			fmt.Fprintf(b, "  and %d more; --notes lists all\n", len(files)-i)
+			break
+		}
 		fmt.Fprintf(b, "  %s: %s\n", oneLine(u.Name), oneLine(u.Reason))
 	}
 }

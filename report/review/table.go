@@ -45,8 +45,14 @@ func columns() []column {
 		{title: "statistic", least: 6, most: 15, rank: 6, value: func(r *ledger.Row, _ shortIDs) string { return str(r.Current().Working.Record.Statistic) }},
 		{title: "arm", least: 7, most: 24, rank: 2, value: func(r *ledger.Row, _ shortIDs) string { return Group(&r.Current().Working.Record) }},
 		{title: "time", least: 6, most: 14, rank: 4, value: func(r *ledger.Row, _ shortIDs) string { return str(r.Current().Working.Record.Time) }},
-		{title: "n", right: true, value: func(r *ledger.Row, _ shortIDs) string { return Sizes(&r.Current().Working.Record) }},
-		{title: "SD", right: true, value: func(r *ledger.Row, _ shortIDs) string { return Spread(&r.Current().Working.Record) }},
+		{title: "n", right: true, value: func(r *ledger.Row, _ shortIDs) string {
+			return strings.ReplaceAll(Sizes(&r.Current().Working.Record), ", ", "/")
+		}},
+		{title: "SD", right: true, value: func(r *ledger.Row, _ shortIDs) string {
+			// The scale of an SE goes with the statistic and stands in the card.
+			spread, _, _ := strings.Cut(Spread(&r.Current().Working.Record), " l")
+			return spread
+		}},
 		{title: "digits allow", rank: 5, value: func(r *ledger.Row, _ shortIDs) string { return DigitsAllow(&r.Current().Working.Record) }},
 		{title: "reading", rank: 1, value: func(r *ledger.Row, _ shortIDs) string { return r.Working.Record.Reading }},
 		{title: "flags", least: 12, most: 44, rank: 7, value: func(r *ledger.Row, _ shortIDs) string { return strings.Join(r.Working.Record.Flags, " ") }},
