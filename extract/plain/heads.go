@@ -2,6 +2,7 @@ package plain
 
 import (
 	"regexp"
+	"sort"
 	"strings"
 )
 
@@ -21,8 +22,14 @@ func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
 		leftAlign(spots, rows, cols)
 		return
 	}
-	for p := best.last; p != nil; p = p.before {
+	best.places.put(spots)
+}
+
+// put writes the places into the spots.
+func (p *placed) put(spots [][]spot) {
+	for ; p != nil; p = p.rest {
 		spots[p.row][p.cell] = p.at
+		p.below.put(spots)
 	}
 }
 
@@ -33,7 +40,7 @@ func searchHeads(rows [][]rowCell, cols int, body []profile, wide bool) *headWay
 	if len(rows) > maxHeadRows {
 		return nil
 	}
-	s := headSearch{rows: rows, cols: cols, body: body, wide: wide, memo: map[headKey][]headWay{}}
+	s := headSearch{rows: known(rows, cols, body), cols: cols, body: body, wide: wide, memo: map[headKey][]headWay{}}
 	var start headIndex
 	var best *headWay
 	for _, w := range s.tile(0, 0, cols, start) {
@@ -60,7 +67,8 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
-	headFuel    = 400_000 // steps of the search for one table
+	mostWays    = 24     // ways kept for a stretch of columns
+	headFuel    = 40_000 // steps of the search for one table
 )
 
 // headIndex counts the cells used in each heading row.
@@ -72,17 +80,18 @@ type headKey struct {
 }
 
 // headWay is one way to fill columns with headings: the cells used so far, how
-// well they suit, and their places as a linked list.
+// well they suit, and their places.
 type headWay struct {
-	used  headIndex
-	score int
-	last  *placed
+	used   headIndex
+	score  int
+	places *placed
 }
 
 type placed struct {
 	row, cell int
 	at        spot
-	before    *placed
+	below     *placed // headings under it
+	rest      *placed // headings to its right
 }
 
 func (w *headWay) complete(rows [][]rowCell) bool {
@@ -94,8 +103,31 @@ func (w *headWay) complete(rows [][]rowCell) bool {
 	return true
 }
 
+// headCell is a heading with what the search asks of it again and again.
+type headCell struct {
+	kind     kind
+	label    string // bare: for comparing
+	p, group bool   // names a p value; speaks of groups or times
+	suits    []int  // for each column
+}
+
+// known asks of every heading what the search needs.
+func known(rows [][]rowCell, cols int, body []profile) [][]headCell {
+	out := make([][]headCell, len(rows))
+	for i, row := range rows {
+		for _, c := range row {
+			h := headCell{kind: c.kind, label: bare.ReplaceAllString(strings.ToLower(c.label), ""), p: pWord.MatchString(c.label), group: groupWord.MatchString(c.label), suits: make([]int, cols)}
+			for k := range h.suits {
+				h.suits[k] = suits(c.label, &body[k])
+			}
+			out[i] = append(out[i], h)
+		}
+	}
+	return out
+}
+
 type headSearch struct {
-	rows  [][]rowCell
+	rows  [][]headCell
 	cols  int
 	body  []profile
 	wide  bool // cells of the last row may be over several columns
@@ -145,24 +177,19 @@ func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
 						s.steps++
 						total := score + group + below.score + rest.score
 						if w := better(&ways, rest.used, total); w != nil {
-							w.last = chain(&placed{level, cell, spot{from, width, height}, nil}, below.last, rest.last)
+							w.places = &placed{level, cell, spot{from, width, height}, below.places, rest.places}
 						}
 					}
 				}
 			}
 		}
 	}
+	if len(ways) > mostWays {
+		sort.SliceStable(ways, func(i, j int) bool { return ways[i].score > ways[j].score })
+		ways = ways[:mostWays]
+	}
 	s.memo[key] = ways
 	return ways
-}
-
-// chain links a place and two lists of places to one list.
-func chain(p, a, b *placed) *placed {
-	out := b
-	for ; a != nil; a = a.before {
-		out = &placed{a.row, a.cell, a.at, out}
-	}
-	return &placed{p.row, p.cell, p.at, out}
 }
 
 // better gives the way that is to be filled in for a score: a new one, or the
@@ -191,13 +218,13 @@ func (s *headSearch) score(level, cell, from, width, height int) int {
 	score := 0
 	switch {
 	case lowest && width == 1:
-		score = suits(c.label, &s.body[from])
+		score = c.suits[from]
 		if level == 0 && c.kind != empty && score == 0 && s.body[from].mostly(textual) {
 			score = 40 // a column of words has its name at the top
 		}
 	case lowest:
 		for k := from; k < from+width; k++ {
-			score += min(suits(c.label, &s.body[k]), 40)
+			score += min(c.suits[k], 40)
 		}
 		score -= 100 // a heading over several columns without headings of their own
 		if from == 0 && s.body[width-1].mostly(textual) && s.body[0].mostly(textual) {
@@ -206,8 +233,8 @@ func (s *headSearch) score(level, cell, from, width, height int) int {
 	case width == 1 && c.kind == empty:
 		score = 10
 	case width == 1:
-		if pWord.MatchString(c.label) {
-			score = suits(c.label, &s.body[from]) / 2
+		if c.p {
+			score = c.suits[from] / 2
 		}
 	default:
 		score = s.wideScore(level, c, from, width)
@@ -227,16 +254,16 @@ var groupWord = regexp.MustCompile(`(?i)\b(?:groups?|arms?|treatments?|weeks?|mo
 
 // wideScore says how well a heading suits being over several columns that have
 // headings of their own.
-func (s *headSearch) wideScore(level int, c *rowCell, from, width int) int {
+func (s *headSearch) wideScore(level int, c *headCell, from, width int) int {
 	score := -20 * width * width / s.cols // groups are about as wide as one another
 	switch {
 	case c.kind == empty:
 		score -= 150
-	case pWord.MatchString(c.label):
+	case c.p:
 		score -= 80
 	default:
-		score += s.suitsAll(c.label, from, width)
-		if groupWord.MatchString(c.label) {
+		score += c.suitsAll(from, width)
+		if c.group {
 			score += 20
 		}
 	}
@@ -283,7 +310,7 @@ func (s *headSearch) likeOthers(level int, before, after headIndex) int {
 	score := 0
 	distinct := map[string]bool{}
 	for _, c := range row[first : first+n] {
-		distinct[strings.ToLower(c.label)] = true
+		distinct[c.label] = true
 	}
 	if len(distinct) > 1 {
 		score += neighbour(row, first, n)
@@ -292,7 +319,7 @@ func (s *headSearch) likeOthers(level int, before, after headIndex) int {
 		score -= 80
 	}
 	for k, c := range row[first : first+n] {
-		if pWord.MatchString(c.label) {
+		if c.p {
 			if k == n-1 {
 				score += 30 // a p value closes its group
 			} else {
@@ -308,7 +335,7 @@ func (s *headSearch) likeOthers(level int, before, after headIndex) int {
 
 // neighbour looks for the same n headings next to those from first on, at most
 // two headings of single columns between.
-func neighbour(row []rowCell, first, n int) int {
+func neighbour(row []headCell, first, n int) int {
 	for gap, score := range []int{100, 60, 60} {
 		for _, other := range []int{first - n - gap, first + n + gap} {
 			if other >= 0 && sameLabels(row, other, first, n) {
@@ -319,7 +346,7 @@ func neighbour(row []rowCell, first, n int) int {
 	return 0
 }
 
-func sameLabels(row []rowCell, a, b, n int) bool {
+func sameLabels(row []headCell, a, b, n int) bool {
 	if max(a, b)+n > len(row) {
 		return false
 	}
@@ -331,9 +358,8 @@ func sameLabels(row []rowCell, a, b, n int) bool {
 	return true
 }
 
-// sameLabel compares two headings but for case, signs and a mark at the end.
+// sameLabel compares two bare headings but for a mark at the end.
 func sameLabel(a, b string) bool {
-	a, b = bare.ReplaceAllString(strings.ToLower(a), ""), bare.ReplaceAllString(strings.ToLower(b), "")
 	if len(a) > len(b) {
 		a, b = b, a
 	}
@@ -385,10 +411,10 @@ func suits(label string, p *profile) int {
 
 // suitsAll is the mean of suits over several columns; a heading that says
 // nothing of their content counts 0.
-func (s *headSearch) suitsAll(label string, from, width int) int {
+func (c *headCell) suitsAll(from, width int) int {
 	total := 0
-	for k := from; k < from+width; k++ {
-		total += suits(label, &s.body[k])
+	for _, v := range c.suits[from : from+width] {
+		total += v
 	}
 	return max(total/width, 0)
 }

@@ -18,15 +18,19 @@ import (
 
 var (
 	// noteOpens begins nothing but a note, however long it is.
-	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|is|represent|given|shown|in|presented|expressed|reported|denote|indicate)\b|values,|mean(?:s)? ?(?:±|\(|\+)|median(?:s)? ?\(|n \(%\)|n, number|numbers? (?:in|are)\b|(?:the )?table (?:shows|presents|gives)|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=))`)
+	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
+	// noteForms are forms inside a paragraph that only a note has.
+	noteForms = regexp.MustCompile(`^[\w%()*†‡ .-]{1,14}\s?=\s|^[A-Z][\w-]*[A-Z0-9]\s(?:denotes?|indicates?|stands for|\pL[^.;,]+,\s[A-Z]\w*\s\pL)|\bin (?:parenthes[ei]s|brackets)\b|\b(?:in|of) (?:the|this) table\b|\b(?:are|is|were|was) (?:expressed|presented|given|shown|reported|displayed) as (?:the )?(?:mean|median|n\b|number|percent)`)
+	noteStat  = regexp.MustCompile(`^(?i:(?:mean|median|n)s? ?(?:±|\(|\+))`)
+	aDecimal  = regexp.MustCompile(`\d[.·]\d`)
 	noteWords = regexp.MustCompile(`^(?i:notes?\b|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
 	// expands is a list of what letters stand for.
 	expands = regexp.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
 	// abbreviated is the same without a sign between letters and words.
 	abbreviated = regexp.MustCompile(`^[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL[^.;]+;\s[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL`)
 	// symbolMark is a mark that is no letter or digit.
-	symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆•µ]{1,3})`)
-	plainMark  = regexp.MustCompile(`^(?:[a-z]|\d{1,2})[).:]?`)
+	symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆△▲◊■●○•µ]{1,3})`)
+	plainMark  = regexp.MustCompile(`^(?:[a-z]|\d{1,2})[).]?`)
 )
 
 const (
@@ -102,6 +106,7 @@ func cellMarks(t *paper.Table) map[string]bool {
 // isNote reports whether a paragraph below a table is one of its notes; next
 // are the marks that would come next.
 func (r *reader) isNote(s string, next following, marks map[string]bool) bool {
+	s = strings.TrimSpace(specialSpace.Replace(s))
 	if s == "" || utf8.RuneCountInString(s) > longNote || figureStart.MatchString(s) {
 		return false
 	}
@@ -117,21 +122,44 @@ func (r *reader) isNote(s string, next following, marks map[string]bool) bool {
 	if (expands.MatchString(s) || abbreviated.MatchString(s)) && (strings.Count(s, ";")+strings.Count(s, ",") > 1 || len(s) < shortNote) && declares(s) {
 		return true
 	}
-	return noteOpens.MatchString(s) || noteWords.MatchString(s) && !sentences(s)
+	switch {
+	case noteOpens.MatchString(s):
+		return true
+	case noteStat.MatchString(s): // "Mean (SD)." is a note, "Mean (SD) mass was 12.4 (1.3) kg." a sentence
+		return !aDecimal.MatchString(s)
+	case noteWords.MatchString(s), noteForms.MatchString(s):
+		return !sentences(s)
+	}
+	return false
 }
 
-// betweenNotes reports whether s, no note by its look, stands right above one:
-// then it is one too, if it is short and no heading.
+// runningText has what a note has not: it points to tables and figures, or
+// reports results.
+var runningText = regexp.MustCompile(`\((?:see )?(?:Tables?|Figures?|Figs?\.?)[\s\x{00A0}]*\d|\bTable \d|\d[.·]\d.*\d[.·]\d.*\d[.·]\d`)
+
+// betweenNotes reports whether s, no note by its look, stands above one with
+// little between: then it is one too, if it is short and no heading.
 func (r *reader) betweenNotes(s string, end int, next following, marks map[string]bool) bool {
-	k := r.skipBlank(end)
-	if k >= len(r.lines) || utf8.RuneCountInString(s) > longNote/2 || figureStart.MatchString(s) || isCaption(r.text(r.lines[k])) || r.startsTable(k) {
-		return false
+	const ahead, most = 3, 800 // paragraphs, characters
+	for n := 0; n < ahead; n++ {
+		if utf8.RuneCountInString(s) > most || figureStart.MatchString(s) || numberedHeading.MatchString(s) {
+			return false
+		}
+		if _, sure := paper.ZoneOf(s); sure || runningText.MatchString(s) {
+			return false
+		}
+		k := r.skipBlank(end)
+		if k >= len(r.lines) || isCaption(r.text(r.lines[k])) || r.startsTable(k) {
+			return false
+		}
+		end = r.paragraphEnd(k, r.chunk(k))
+		below := r.run(k, end).S
+		if r.isNote(below, next, marks) {
+			return !(looksHeading(s) && sentences(below))
+		}
+		s = below
 	}
-	if _, sure := paper.ZoneOf(s); sure || numberedHeading.MatchString(s) {
-		return false
-	}
-	below := r.run(k, r.paragraphEnd(k, r.chunk(k))).S
-	return r.isNote(below, next, marks) && !(looksHeading(s) && sentences(below))
+	return false
 }
 
 // declares reports whether s has the look of a list "X, words; Y, words" or
@@ -201,7 +229,7 @@ func (r *reader) markAt(s string, expected following, marks map[string]bool) int
 	rest := s[loc[1]:]
 	next, _ := utf8.DecodeRuneInString(rest)
 	if mark[0] <= '9' { // a number: only where a word is glued to it
-		if mark == expected.number && (unicode.IsLetter(next) || next == ' ') {
+		if mark == expected.number && (unicode.IsLetter(next) || next == ' ') || mark == "1" && loc[1] == 1 && unicode.IsUpper(next) {
 			return loc[1]
 		}
 		return 0
