@@ -58,12 +58,16 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 	if spans == 0 || n <= spans {
 		return
 	}
-	if rd.byPattern(row, next) {
-		return
-	}
-	st.left = left*2 > spans && left >= centred
 	first := slices.MinFunc(next, func(a, b headPiece) int { return a.top - b.top })
 	tight := (first.top-row[0].top)*100 <= 135*rd.em && !rd.anyRule(&row[0], &first)
+	if rd.byPattern(row, next, tight) {
+		for k := range row {
+			for c := row[k].c0; row[k].c0 > 0 && c <= row[k].c1; c++ {
+				st.taken[c] = true
+			}
+		}
+	}
+	st.left = left*2 > spans && left >= centred
 	if tight && (left > 0 || centred > 0) {
 		return // lines of one heading rather than levels
 	}
@@ -74,48 +78,95 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 	}
 }
 
-// byPattern shares the columns of the next band where its texts repeat as often
-// as there are headings above: "mean, SD" under each of two arms.
-func (rd *reader) byPattern(row, next []headPiece) bool {
-	var heads []*headPiece
-	for k := range row {
-		if row[k].c0 > 0 {
-			heads = append(heads, &row[k])
-		}
-	}
-	subs := slices.Clone(next)
-	slices.SortStableFunc(subs, func(a, b headPiece) int { return a.c0 - b.c0 })
-	for len(subs) > 0 && subs[0].c0 < heads[0].c0-1 || len(subs) > 0 && subs[0].c0 == 0 {
+// byPattern shares the columns of the next band where its texts repeat, as
+// "mean, SD" under each of two arms, and every repeat has one heading over it.
+// Lines that are tight may be lines of one heading: then every heading must have
+// its repeat.
+func (rd *reader) byPattern(row, next []headPiece, tight bool) bool {
+	subs, heads := next, 0
+	for len(subs) > 0 && subs[0].c0 == 0 {
 		subs = subs[1:]
 	}
-	for skip := 0; skip < 2 && skip < len(subs); skip++ {
-		var starts []int
-		for k := skip; k < len(subs); k++ {
-			if subs[k].text == subs[skip].text {
-				starts = append(starts, k)
+	for k := range row {
+		if row[k].c0 > 0 {
+			heads++
+		}
+	}
+	for start := range min(len(subs), 8) {
+		for period := 2; period <= 6; period++ {
+			n := repeats(subs[start:], period, false)
+			if loose := repeats(subs[start:], period, true); n < 2 && loose == heads && loose == count(subs, subs[start].text) {
+				n = loose
+			}
+			if n < 2 || n != heads && (tight || n != count(subs, subs[start].text)) {
+				continue
+			}
+			if rd.overGroups(row, subs[start:], period, n) {
+				return true
 			}
 		}
-		if len(starts) != len(heads) || len(starts) < 2 || starts[1]-starts[0] < 2 {
-			continue
-		}
-		period := starts[1] - starts[0]
-		ok := starts[len(starts)-1]+period <= len(subs)
-		for k := range starts {
-			ok = ok && starts[k] == starts[0]+k*period
-			if ok {
-				first, last := &subs[starts[k]], &subs[starts[k]+period-1]
-				ok = heads[k].run.mid() > first.x0-rd.em && heads[k].run.mid() < last.x1+rd.em
-			}
-		}
-		if !ok {
-			continue
-		}
-		for k := range starts {
-			heads[k].c0, heads[k].c1 = subs[starts[k]].c0, subs[starts[k]+period-1].c1
-		}
-		return true
 	}
 	return false
+}
+
+// count tells how many pieces have a text.
+func count(row []headPiece, text string) int {
+	n := 0
+	for i := range row {
+		if row[i].text == text {
+			n++
+		}
+	}
+	return n
+}
+
+// repeats counts how often the first period texts stand one after another, by
+// all of them or (loose) by the first of each; 0 where the first comes again
+// among them.
+func repeats(subs []headPiece, period int, loose bool) int {
+	for i := 1; i < period && i < len(subs); i++ {
+		if subs[i].text == subs[0].text {
+			return 0
+		}
+	}
+	n := 0
+	for (n+1)*period <= len(subs) {
+		for i := range period {
+			if (i == 0 || !loose) && subs[n*period+i].text != subs[i].text {
+				return n
+			}
+		}
+		n++
+	}
+	return n
+}
+
+// overGroups gives each group of subheadings the pieces that stand over it.
+func (rd *reader) overGroups(row, subs []headPiece, period, n int) bool {
+	of := make([]int, len(row)) // 1 + group of each piece
+	for g := range n {
+		first, last := &subs[g*period], &subs[(g+1)*period-1]
+		var over *headPiece
+		for k := range row {
+			p := &row[k]
+			if m := p.run.mid(); p.c0 == 0 || p.c0 < first.c0-1 || p.c1 > last.c1+1 || m < first.x0-rd.em || m > last.x1+rd.em {
+				continue
+			}
+			if over != nil && !rd.aligned(over, p) {
+				return false // two headings over one group
+			}
+			of[k], over = g+1, p
+		}
+		if over == nil {
+			return false
+		}
+	}
+	for k, g := range of {
+		if g > 0 {
+			row[k].c0, row[k].c1, row[k].fixed = subs[(g-1)*period].c0, subs[g*period-1].c1, true
+		}
+	}
+	return true
 }
 
 // goesOver gives a piece that stands flush or centred over one spanning piece of
@@ -131,8 +182,7 @@ func (rd *reader) goesOver(row, next []headPiece) {
 		spanning++
 		for k := range row {
 			p := &row[k]
-			aligned := abs(p.x0-q.x0)*10 < rd.em*4 || abs(p.run.mid()-q.run.mid())*10 < rd.em*4
-			if !p.fixed && q.c0 <= p.c0 && p.c1 <= q.c1 && aligned {
+			if !p.fixed && q.c0 <= p.c0 && p.c1 <= q.c1 && rd.aligned(p, q) {
 				over[k] = j
 				break
 			}
@@ -144,6 +194,11 @@ func (rd *reader) goesOver(row, next []headPiece) {
 	for k, j := range over {
 		row[k].c0, row[k].c1, row[k].fixed = next[j].c0, next[j].c1, true
 	}
+}
+
+// aligned reports whether two pieces are flush left or centred on one another.
+func (rd *reader) aligned(p, q *headPiece) bool {
+	return abs(p.x0-q.x0)*10 < rd.em*4 || abs(p.run.mid()-q.run.mid())*10 < rd.em*4
 }
 
 // stretcher lets heading pieces reach over free neighbouring columns.
@@ -162,7 +217,7 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 		return false
 	}
 	q, own := st.under[c], st.under[p.c0]
-	again := repeated(st.next, q.text)
+	again := count(st.next, q.text) > 1
 	if st.left && isTestHead(q.text) && !again {
 		return false
 	}
@@ -201,17 +256,6 @@ func (st *stretcher) stretch(p *headPiece) {
 	for c := b0; c <= b1; c++ {
 		st.taken[c] = true
 	}
-}
-
-// repeated reports whether a text stands twice in a band, as subheadings do.
-func repeated(row []headPiece, text string) bool {
-	n := 0
-	for i := range row {
-		if row[i].text == text {
-			n++
-		}
-	}
-	return n > 1
 }
 
 // isTestHead reports whether a heading names a test, not a group's statistic.
