@@ -67,8 +67,8 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
-	mostWays    = 24     // ways kept for a stretch of columns
-	headFuel    = 40_000 // steps of the search for one table
+	mostWays    = 48     // ways kept for a stretch of columns
+	headFuel    = 150_000 // steps of the search for one table
 )
 
 // headIndex counts the cells used in each heading row.

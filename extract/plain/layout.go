@@ -172,7 +172,7 @@ func headings(rows [][]rowCell, cols int) int {
 	if data, telling := dataRow(rows[0]); data && telling {
 		return 0
 	}
-	named := rows[0][0].kind != empty // the stub has its heading
+	named := rows[0][0].kind != empty || allNamed(rows[0], cols) // the stub has its heading, or will have none
 	n := 1
 	for ; n < len(rows) && n < most; n++ {
 		row := rows[n]
@@ -187,6 +187,19 @@ func headings(rows [][]rowCell, cols int) int {
 		return 1
 	}
 	return n
+}
+
+// allNamed reports whether every column but the first has a heading in the row.
+func allNamed(row []rowCell, cols int) bool {
+	if len(row) < cols {
+		return false
+	}
+	for _, c := range row[1:] {
+		if c.kind == empty {
+			return false
+		}
+	}
+	return true
 }
 
 // bodyPlacer places the rows below the headings, top to bottom.
