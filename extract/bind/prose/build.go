@@ -107,6 +107,11 @@ func (p *para) setGiven(r *result.Result, c *cand) {
 // setUnit takes a percent sign or a unit printed directly behind the estimate,
 // its spread or its bracket.
 func (p *para) setUnit(r *result.Result, c *cand) {
+	defer func() {
+		if c.est.Power != "" {
+			r.Unit = strings.TrimSpace("×" + c.est.Power + " " + r.Unit)
+		}
+	}()
 	if c.est.Percent || c.value.Percent || c.lower.Percent {
 		r.Unit = "%"
 		return
@@ -211,6 +216,9 @@ func (p *para) test(r *result.Result, e *grammar.Item) bool {
 func (p *para) slips(r *result.Result, c *cand) {
 	if c.est.Mended || c.lower.Mended || c.upper.Mended || c.value.Mended {
 		r.Raise("misprint", "a number is printed with a slip and was read as meant")
+	}
+	if c.value.Value != "" && c.est.Power != c.value.Power && c.value.Power != "" {
+		r.Raise("powers-differ", "the estimate and its spread are printed with different powers of ten")
 	}
 	lo, ok1 := c.lower.Float()
 	hi, ok2 := c.upper.Float()

@@ -116,7 +116,7 @@ func init() {
 		mean median value values difference differences change total number score scores showed in between-group within-group between-groups i.e e.g after before during`) {
 		stopName[w] = true
 	}
-	for _, w := range strings.Fields(`group groups arm arms patients participants subjects women men children treatment the individuals cohort users`) {
+	for _, w := range strings.Fields(`group groups arm arms patients participants subjects women men children individuals cohort users`) {
 		weakName[w] = true
 	}
 	delete(stopName, "patients")
@@ -301,10 +301,10 @@ func (p *para) mentions(from, to int) []mention {
 		best, bestEnd, bestLen := -1, i, 0
 		for a := range p.f.cast.arms {
 			arm := &p.f.cast.arms[a]
-			if arm.seen < 2 && len(arm.sizes) == 0 || len(arm.key) <= bestLen {
+			if len(arm.key) <= bestLen {
 				continue
 			}
-			if end, ok := p.named(i, arm); ok {
+			if end, ok := p.named(i, arm); ok && (arm.seen > 1 || len(arm.sizes) > 0 || groupNoun[p.r.Tokens[end-1].Value]) {
 				best, bestEnd, bestLen = a, end, len(arm.key)
 			}
 		}
@@ -316,6 +316,8 @@ func (p *para) mentions(from, to int) []mention {
 	sort.SliceStable(out, func(a, b int) bool { return out[a].start < out[b].start })
 	return out
 }
+
+var groupNoun = map[string]bool{"group": true, "groups": true, "arm": true, "arms": true}
 
 // named reports whether the arm's words begin at token i. A single word must be
 // followed by "group" or "arm", or be a name that is printed with its size or

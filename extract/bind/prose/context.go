@@ -212,18 +212,21 @@ func (p *para) joined(list []int) bool {
 	return true
 }
 
+const count = `(?:[0-9]+(?:\.[0-9]+)?|one|two|three|four|five|six|eight|nine|ten|twelve)`
+
 var (
 	inOrder   = regexp.MustCompile(`(?i)\brespectively\b|\bresp\.`)
 	joining   = regexp.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
-	timeWords = regexp.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until|from)\s+(?:the\s+)?)?(?:` +
-		`(?:week|month|day|year|hour|visit|cycle|session)s?\s+[0-9]+(?:\s*(?:-|–|to|and)\s*[0-9]+)?` +
-		`|(?:[0-9]+(?:\.[0-9]+)?|one|two|three|four|five|six|eight|nine|ten|twelve)[ -](?:weeks?|months?|days?|years?|hours?|h|min|minutes)(?:\s+(?:follow-?up|post\w*|after \w+))?` +
-		`|baseline|follow-?up|pre-?test|post-?test|(?:pre|post)-?(?:treatment|intervention|operative(?:ly)?)|end of (?:the )?(?:study|trial|treatment|intervention)|week [0-9]+)\b`)
+	timeWords = regexp.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until)\s+(?:the\s+)?)?(?:` +
+		`(?:week|month|day|year|hour|visit|cycle|session)s?\s+[0-9]+(?:\s*(?:-|–|to)\s*(?:week|month|day|year)?\s?[0-9]+)?` +
+		`|baseline|follow-?up|pre-?test|post-?test|(?:pre|post)-?(?:treatment|intervention|operative(?:ly)?)|(?:the )?end of (?:the )?(?:study|trial|treatment|intervention))\b` +
+		`|\b(?:at|after|by|over|during|within|until)\s+(?:the\s+)?` + count + `[ \x{a0}-](?:weeks?|months?|days?|years?|hours?|h|min|minutes)\b(?:\s+(?:follow-?up|post\w*|after \w+))?` +
+		`|\b(?:at\s+(?:the\s+)?|after\s+(?:the\s+)?)?` + count + `-(?:week|month|day|year|hour)s?\b(?:\s+(?:follow-?up|visit|time point))?`)
 	timeAfter = regexp.MustCompile(`(?i)^[^.;,()0-9]{0,50}$`)
 )
 
 // setTime names the time point: the one right behind the result, else the last
-// before it in the sentence.
+// before it in the sentence. "From baseline" names no time of a value.
 func (p *para) setTime(r *result.Result, c *cand) {
 	it := &p.r.Items[c.item]
 	from, to := p.sentence(it.Start)
@@ -231,38 +234,111 @@ func (p *para) setTime(r *result.Result, c *cand) {
 	if it.Bracket > 0 {
 		end = min(to, max(end, p.r.Brackets[it.Bracket-1].End))
 	}
-	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) {
-		r.Time = p.s[end+m[0] : end+m[1]]
-		p.source(r, "time", grammar.Span{Start: end + m[0], End: end + m[1]})
+	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) && !strings.HasSuffix(p.s[:end+m[0]], "from ") {
+		p.setTimeAt(r, end+m[0], end+m[1])
 		return
 	}
 	before := timeWords.FindAllStringIndex(p.s[from:c.est.Start], -1)
-	if len(before) == 0 {
-		return
+	for k := len(before) - 1; k >= 0; k-- {
+		a, b := from+before[k][0], from+before[k][1]
+		if !strings.HasSuffix(p.s[:a], "from ") && !p.inSpread(a, b) {
+			p.setTimeAt(r, a, b)
+			return
+		}
 	}
-	m := before[len(before)-1]
-	r.Time = p.s[from+m[0] : from+m[1]]
-	p.source(r, "time", grammar.Span{Start: from + m[0], End: from + m[1]})
+}
+
+func (p *para) setTimeAt(r *result.Result, a, b int) {
+	r.Time = p.s[a:b]
+	p.source(r, "time", grammar.Span{Start: a, End: b})
+}
+
+// inSpread reports that a stretch holds the estimate of a result: "35 min" is
+// then no time point.
+func (p *para) inSpread(a, b int) bool {
+	for k := range p.cands {
+		if e := p.cands[k].est; e.Start < b && e.End > a {
+			return true
+		}
+	}
+	return false
 }
 
 var (
-	leadWords  = regexp.MustCompile(`(?i)^(?:the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
+	leadWords  = regexp.MustCompile(`(?i)^(?:kg|mg|min|the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
 	trailWords = regexp.MustCompile(`(?i)\s+(?:was|were|is|are|of|by|to|from|averaged|approximately|about|had|has|have|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|significantly|statistically|only|=|:|OR|HR|RR|M|MD|score of)$`)
 	// what is no outcome by itself
-	emptyWords = regexp.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range)[\s=:,.]*)+$`)
+	emptyWords = regexp.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range|was|were|is|are)[\s=:,.]*)+$`)
 )
 
-// setOutcome takes the words before the estimate, back to a mark, as what was
-// measured.
+// setOutcome takes the words before the estimate, back to a mark or to the
+// result before, as what was measured. A result that is only joined to the one
+// before ("12.4 kg with syrup and 11.1 kg with water") is about the same.
 func (p *para) setOutcome(r *result.Result, c *cand) {
 	from, _ := p.sentence(c.est.Start)
-	stretch := p.s[from:c.est.Start]
+	previous, k := p.previous(c, from)
+	if k >= 0 && c.quartile || k >= 0 && previous < c.est.Start && sameOutcome.MatchString(p.s[previous:c.est.Start]) {
+		p.inherit(r, &p.cands[k])
+		return
+	}
+	if k >= 0 && p.cands[k].est.Start == c.est.Start {
+		p.inherit(r, &p.cands[k])
+		return
+	}
+	from = max(from, min(previous, c.est.Start))
+	if at, ok := p.nounBefore(from, c.est.Start); ok {
+		r.Outcome = p.s[at.Start:at.End]
+		p.source(r, "outcome", at)
+	}
+}
+
+// previous gives the end of the last result before the candidate in its
+// sentence, and its index; -1 where it is the first.
+func (p *para) previous(c *cand, from int) (end, index int) {
+	end, index = from, -1
+	for k := range p.cands {
+		o := &p.cands[k]
+		if o.item == c.item || o.est.Start > c.est.Start || o.est.Start < from || o.item > c.item {
+			continue
+		}
+		if e := p.r.Items[o.item].End; e >= end {
+			end, index = e, k
+		}
+	}
+	return end, index
+}
+
+// sameOutcome is what stands between two results of one outcome: a unit, an
+// arm or a time behind the first, a joining word, nothing of its own.
+var sameOutcome = regexp.MustCompile(`(?i)^[)\]%]*[^.;()\[\]]{0,70}?(?:,|\band|\bvs\.?|\bversus|\bto|\bcompared (?:with|to)|\bthan|&)\s*(?:(?:in|with|for|from|at|by|to|the|a)\s+)*[(\[]?$`)
+
+// inherit copies the outcome of another candidate's result.
+func (p *para) inherit(r *result.Result, o *cand) {
+	at := p.run.Between(o.est.Start, o.est.End)
+	for i := len(p.f.out) - 1; i >= 0; i-- {
+		if place(&p.f.out[i], "estimate") != at {
+			continue
+		}
+		r.Outcome = p.f.out[i].Outcome
+		for _, s := range p.f.out[i].Sources {
+			if s.Field == "outcome" {
+				r.Sources = append(r.Sources, s)
+			}
+		}
+		return
+	}
+}
+
+// nounBefore finds the last stretch between two bytes that names something:
+// between marks, without words of statistics, verbs and joining words at its
+// ends.
+func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
+	stretch := p.s[from:to]
 	end := len(stretch)
 	for end > 0 {
 		i := strings.LastIndexAny(stretch[:end], ",;:()[]")
 		part := stretch[i+1 : end]
-		lead := len(part) - len(strings.TrimLeft(part, " \u00a0"))
-		start := i + 1 + lead
+		start := i + 1 + len(part) - len(strings.TrimLeft(part, " \u00a0"))
 		part = strings.TrimSpace(part)
 		for {
 			short := leadWords.ReplaceAllString(part, "")
@@ -283,10 +359,9 @@ func (p *para) setOutcome(r *result.Result, c *cand) {
 				}
 				part, start = part[cut+1:], start+cut+1
 			}
-			r.Outcome = part
-			p.source(r, "outcome", grammar.Span{Start: from + start, End: from + start + len(part)})
-			return
+			return grammar.Span{Start: from + start, End: from + start + len(part)}, true
 		}
 		end = max(i, 0)
 	}
+	return grammar.Span{}, false
 }

@@ -153,6 +153,13 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		return p.settleSpread(c, n, before, p.s[p.r.Items[c.item].End:to])
 	}
 	change := changeWords.MatchString(lastClause(before))
+	if fromTo.MatchString(before) && changeWords.MatchString(before) && (n.statistic == "" || n.statistic == result.MeanChange) {
+		n.statistic = result.Mean // "rose from 12.4 to 13.1"
+		if percent {
+			n.statistic = result.Proportion
+		}
+		return n
+	}
 	compared := betterThan.MatchString(around) || contrast.MatchString(p.beforeFirst(c, from))
 	switch n.statistic {
 	case "":
@@ -177,6 +184,8 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 			n.statistic = result.Proportion
 		case compared:
 			n.statistic = result.MeanDifference
+		case p.changeNoun(n.at, at):
+			n.statistic = result.MeanChange
 		case percent && changeWords.MatchString(around):
 			n.statistic = result.MeanChange
 		}
@@ -225,6 +234,8 @@ func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 	case moreish.MatchString(behind) && !strings.Contains(behind[:min(len(behind), 45)], " than"):
 		n.statistic = result.MeanDifference
 	case n.statistic == result.MeanDifference:
+	case n.statistic == result.Mean && p.changeNoun(n.at, c.est.Start):
+		n.statistic = result.MeanChange
 	case n.statistic == result.MeanChange && (strings.Contains(strings.ToLower(p.s[n.at.Start:n.at.End]), "mean") || byMuch.MatchString(before)):
 	case changeWords.MatchString(clause) && byMuch.MatchString(before):
 		n.statistic = result.MeanChange
@@ -232,6 +243,21 @@ func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 		n.statistic, n.measure = result.Mean, ""
 	}
 	return n
+}
+
+var (
+	changeNouns = regexp.MustCompile(`(?i)\b(?:weight|mass)? ?(?:loss|gain|reduction|increase|decrease|decline|improvement|change)s?\b`)
+	otherLoss   = regexp.MustCompile(`(?i)\b(?:blood|hair|hearing|tooth|job|fluid|bone|water|heat|vision|memory) loss`)
+)
+
+// changeNoun reports a word of change between a term and the estimate: "mean
+// weight loss was 1.2 kg".
+func (p *para) changeNoun(term grammar.Span, est int) bool {
+	if term.End == 0 || term.End > est {
+		return false
+	}
+	s := p.s[term.End:est]
+	return len(s) < 90 && changeNouns.MatchString(s) && !otherLoss.MatchString(s) && !strings.ContainsAny(s, ";")
 }
 
 // introduced reports that a term stands right before the candidate's estimate,
