@@ -55,7 +55,7 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 			}
 		}
 	}
-	if spans == 0 || n <= spans {
+	if spans == 0 || n == 0 {
 		return
 	}
 	first := slices.MinFunc(next, func(a, b headPiece) int { return a.top - b.top })
@@ -68,7 +68,7 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 		}
 	}
 	st.left = left*2 > spans && left >= centred
-	if tight && (left > 0 || centred > 0) {
+	if n <= spans || tight && (left > 0 || centred > 0) {
 		return // lines of one heading rather than levels
 	}
 	for k := range row {
