@@ -1,24 +1,24 @@
 package convention
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
 var (
 	// subject and participle of a declaring sentence
-	declaring = regexp.MustCompile(`(?i)\b(?:presented|expressed|reported|given|shown|summari[sz]ed|described|displayed|represented?|denoted?s?|indicated?s?|listed|calculated|computed|used to describe|descriptive statistics|are (?:the )?(?:least[ -]squares? |adjusted |unadjusted |arithmetic |geometric )?(?:means?|medians?)|is (?:the )?(?:mean|median)|(?:values?|data|results?|bars?|numbers?|figures?)\s*(?:are|were|is|:|=|represent|indicate|denote|show))\b`)
-	unless    = regexp.MustCompile(`(?i)\bunless\b|\bexcept\b`)
-	tablesAre = regexp.MustCompile(`(?i)\btables?\b`)
-	figures   = regexp.MustCompile(`(?i)\bfigures?\b(?: [0-9]|s\b)|\berror bars?\b|\bgraphs?\b|\bplots?\b|\bbars\b`)
-	inText    = regexp.MustCompile(`(?i)\b(?:in|throughout) the text\b`)
-	plan      = regexp.MustCompile(`(?i)\bsample size\b|\bpower\b|\bassum|\bdetect|\bexpected\b|\bprevious(?:ly)?\b|\bnorm(?:s|ative|ed)?\b`)
-	meaningOf = regexp.MustCompile(`(?i)(?:±|\bplus[- ]minus\b|\bparenthes[ei]s|\bbrackets?|\berror bars?|\bbars|\bwhiskers)`)
+	declaring = pattern.MustCompile(`(?i)\b(?:presented|expressed|reported|given|shown|summari[sz]ed|described|displayed|represented?|denoted?s?|indicated?s?|listed|calculated|computed|used to describe|descriptive statistics|are (?:the )?(?:least[ -]squares? |adjusted |unadjusted |arithmetic |geometric )?(?:means?|medians?)|is (?:the )?(?:mean|median)|(?:values?|data|results?|bars?|numbers?|figures?)\s*(?:are|were|is|:|=|represent|indicate|denote|show))\b`)
+	unless    = pattern.MustCompile(`(?i)\bunless\b|\bexcept\b`)
+	tablesAre = pattern.MustCompile(`(?i)\btables?\b`)
+	figures   = pattern.MustCompile(`(?i)\bfigures?\b(?: [0-9]|s\b)|\berror bars?\b|\bgraphs?\b|\bplots?\b|\bbars\b`)
+	inText    = pattern.MustCompile(`(?i)\b(?:in|throughout) the text\b`)
+	plan      = pattern.MustCompile(`(?i)\bsample size\b|\bpower\b|\bassum|\bdetect|\bexpected\b|\bprevious(?:ly)?\b|\bnorm(?:s|ative|ed)?\b`)
+	meaningOf = pattern.MustCompile(`(?i)(?:±|\bplus[- ]minus\b|\bparenthes[ei]s|\bbrackets?|\berror bars?|\bbars|\bwhiskers)`)
 )
 
 // read gives the statements of a text; levels, where not nil, counts the levels
@@ -43,7 +43,7 @@ func read(run *paper.TextRun, levels map[float64]int) []Statement {
 	return out
 }
 
-var stop = regexp.MustCompile(`[.;]["”’)\]]?\s+[A-Z(\[]`)
+var stop = pattern.MustCompile(`[.;]["”’)\]]?\s+[A-Z(\[]`)
 
 func sentenceEnd(s string, start int) int {
 	if loc := stop.FindStringIndex(s[start:]); loc != nil {

@@ -1,7 +1,6 @@
 package prose
 
 import (
-	"regexp"
 	"sort"
 	"strconv"
 	"strings"
@@ -9,6 +8,7 @@ import (
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // fromHeading says that a size stands in a table's column heading.
@@ -102,8 +102,8 @@ func (f *finder) learnSizes(b *paper.Block) {
 }
 
 var (
-	groupNamed  = regexp.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
-	wholeSample = regexp.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+)?(?:randomi[sz]ed|enrolled|included|recruited)\b`)
+	groupNamed  = pattern.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
+	wholeSample = pattern.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+)?(?:randomi[sz]ed|enrolled|included|recruited)\b`)
 	stopName    = map[string]bool{}
 	weakName    = map[string]bool{}
 )

@@ -1,25 +1,25 @@
 package prose
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
 var (
-	planning  = regexp.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bprojected\b|\bhypothesi[sz]|\bprior studies\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
-	planned   = regexp.MustCompile(`(?i)\bsample[- ]size|% power|\bpower(?:ed)? (?:of|to|calculation|analysis)\b`)
-	norms     = regexp.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
-	scaleText = regexp.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
-	climate   = regexp.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
-	margins   = regexp.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
-	central   = regexp.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
-	limits    = regexp.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits)\s*$`)
-	cited     = regexp.MustCompile(`(?i)\bet al\b|\bmeta-?analys|\bprevious(?:ly)?\b|\b(?:other|earlier|recent|another|similar) (?:study|studies|trial|trials|report|reports)\b|\bsystematic review|\breported (?:by|in)\b|\bpublished\b|\bliterature\b`)
-	bracketed = regexp.MustCompile(`\[[0-9]+(?:[-–,][ 0-9]+)*\]`)
+	planning  = pattern.MustCompile(`(?i)\bsample[- ]size|\bpower(?:ed)?\b|\bprojected\b|\bhypothesi[sz]|\bprior studies\b|\bassum(?:e|ed|es|ing|ption|ptions)\b|\bto detect\b|\banticipat|\btype (?:I|1|II|2)\b|\bwere? (?:needed|required)\b|\bclinically (?:relevant|significant|important|meaningful) (?:difference|change)`)
+	planned   = pattern.MustCompile(`(?i)\bsample[- ]size|% power|\bpower(?:ed)? (?:of|to|calculation|analysis)\b`)
+	norms     = pattern.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
+	scaleText = pattern.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
+	climate   = pattern.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
+	margins   = pattern.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
+	central   = pattern.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
+	limits    = pattern.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits)\s*$`)
+	cited     = pattern.MustCompile(`(?i)\bet al\b|\bmeta-?analys|\bprevious(?:ly)?\b|\b(?:other|earlier|recent|another|similar) (?:study|studies|trial|trials|report|reports)\b|\bsystematic review|\breported (?:by|in)\b|\bpublished\b|\bliterature\b`)
+	bracketed = pattern.MustCompile(`\[[0-9]+(?:[-–,][ 0-9]+)*\]`)
 )
 
 func (p *para) sentenceText(b int) string {

@@ -1,19 +1,19 @@
 package prose
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
 // subjects are the words for what a trial counts.
 const subjects = `(?:participants?|patients?|subjects?|women|men|children|adults?|adolescents?|girls?|boys?|infants?|individuals?|people|persons?|volunteers?|students?|colonies|colony|bees?|animals?|mothers?|workers?|employees|respondents|pupils|cases|newborns?|neonates?|residents?|eyes|teeth|couples|families)`
 
-var counted = regexp.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + numberWords + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + subjects + `\b`)
+var counted = pattern.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + numberWords + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + subjects + `\b`)
 
 const numberWords = `(?:(?:one|two|three|four|five|six|seven|eight|nine) hundred(?: and)? )?(?:(?:twenty|thirty|forty|fifty|sixty|seventy|eighty|ninety)(?:[- ](?:one|two|three|four|five|six|seven|eight|nine))?|ten|eleven|twelve|thirteen|fourteen|fifteen|sixteen|seventeen|eighteen|nineteen|two|three|four|five|six|seven|eight|nine)|(?:one|two|three|four|five|six|seven|eight|nine) hundred`
 
@@ -88,7 +88,7 @@ func (p *para) alone(from, to int) bool {
 	return !contrast.MatchString(s) && !groupWord.MatchString(s) && !strings.Contains(s, "respectively")
 }
 
-var groupWord = regexp.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
+var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
 
 // countedIn reads "the 61 included subjects", "Forty-two colonies" where it is
 // the only count before the result.
@@ -109,8 +109,8 @@ func (p *para) countedIn(from, to int) (size, bool) {
 }
 
 var (
-	otherCount = regexp.MustCompile(`(?i)(?:\band\s+|[-–/]|[0-9]\s+)$|\b(?:male|female|men|women|boys|girls)s?\b[^.;]*\band\s*$`)
-	loose      = regexp.MustCompile(`(?i)\s(?:of|in|to|at|among|for|with|by|from|and|or|mo|months?|weeks?|wk|days?|years?|hours?|h|min|mg|ml|g|kg|percent|the|were|was|had|per)\s`)
+	otherCount = pattern.MustCompile(`(?i)(?:\band\s+|[-–/]|[0-9]\s+)$|\b(?:male|female|men|women|boys|girls)s?\b[^.;]*\band\s*$`)
+	loose      = pattern.MustCompile(`(?i)\s(?:of|in|to|at|among|for|with|by|from|and|or|mo|months?|weeks?|wk|days?|years?|hours?|h|min|mg|ml|g|kg|percent|the|were|was|had|per)\s`)
 )
 
 // wholeCount refuses counts that are only part of a group ("35 male and 19
@@ -153,7 +153,7 @@ func (p *para) setSize(r *result.Result, c *cand) {
 	}
 }
 
-var sampleOf = regexp.MustCompile(`(?i)\b(?:participants|patients|subjects|sample|women|men|children|colonies|respondents|all|overall|age|aged|BMI)\b`)
+var sampleOf = pattern.MustCompile(`(?i)\b(?:participants|patients|subjects|sample|women|men|children|colonies|respondents|all|overall|age|aged|BMI)\b`)
 
 // wholeSample gives the number of all subjects to a baseline mean that names no
 // arm.
@@ -174,7 +174,7 @@ func (p *para) wholeSample(r *result.Result, c *cand) {
 	}
 }
 
-var ageLike = regexp.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline)\b`)
+var ageLike = pattern.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline)\b`)
 
 // elsewhere fills an n that is stated away from the result.
 func (p *para) elsewhere(r *result.Result, field string, n *int, s size) {

@@ -1,12 +1,12 @@
 package prose
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -365,7 +365,7 @@ func (p *para) declaredBracket(c *cand) bool {
 	return true
 }
 
-var meanWord = regexp.MustCompile(`(?i)\b(?:means?|averaged?)\b`)
+var meanWord = pattern.MustCompile(`(?i)\b(?:means?|averaged?)\b`)
 
 func number(v string) (float64, bool) {
 	f, err := strconv.ParseFloat(v, 64)

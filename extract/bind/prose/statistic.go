@@ -1,10 +1,10 @@
 package prose
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -17,10 +17,10 @@ type named struct {
 }
 
 var (
-	changeWords = regexp.MustCompile(`(?i)\b(?:change[ds]?|increas(?:e|ed|es|ing)|decreas(?:e|ed|es|ing)|reduc(?:ed|tion|tions|es)|fell|rose|dropp?ed|declined?|gain(?:ed|s)?|lost|loss|improve(?:d|ment)|rise|fall|drop)\b`)
-	contrast    = regexp.MustCompile(`(?i)\b(?:than|compared (?:with|to)|versus|vs|relative to|in favou?r of|between[- ](?:the )?(?:two )?(?:groups?|arms?|treatments?)|differen(?:ce|t|ces|tial)|superior)\b`)
-	betterThan  = regexp.MustCompile(`(?i)\b(?:higher|lower|greater|less|more|fewer|longer|shorter|larger|smaller|better|worse|younger|older)\b[^.;]{0,80}\bthan\b`)
-	sharesOf    = regexp.MustCompile(`(?i)\b(?:percentage|proportion|prevalence|sensitivity|specificity|predictive value|survival|cure|success|response|rates?|coverage|uptake|adherence|incidence)\b`)
+	changeWords = pattern.MustCompile(`(?i)\b(?:change[ds]?|increas(?:e|ed|es|ing)|decreas(?:e|ed|es|ing)|reduc(?:ed|tion|tions|es)|fell|rose|dropp?ed|declined?|gain(?:ed|s)?|lost|loss|improve(?:d|ment)|rise|fall|drop)\b`)
+	contrast    = pattern.MustCompile(`(?i)\b(?:than|compared (?:with|to)|versus|vs|relative to|in favou?r of|between[- ](?:the )?(?:two )?(?:groups?|arms?|treatments?)|differen(?:ce|t|ces|tial)|superior)\b`)
+	betterThan  = pattern.MustCompile(`(?i)\b(?:higher|lower|greater|less|more|fewer|longer|shorter|larger|smaller|better|worse|younger|older)\b[^.;]{0,80}\bthan\b`)
+	sharesOf    = pattern.MustCompile(`(?i)\b(?:percentage|proportion|prevalence|sensitivity|specificity|predictive value|survival|cure|success|response|rates?|coverage|uptake|adherence|incidence)\b`)
 )
 
 // statistic finds what kind of estimate the candidate is: from the nearest term
@@ -61,7 +61,7 @@ func (p *para) heartRate(c *cand, at grammar.Span) bool {
 	return false
 }
 
-var denied = regexp.MustCompile(`(?i)\b(?:no|not|any|without)\b[^.;]{0,40}$`)
+var denied = pattern.MustCompile(`(?i)\b(?:no|not|any|without)\b[^.;]{0,40}$`)
 
 // noContrastOf reports that a word "difference" only speaks about the values
 // of single groups: "no significant differences in mass (12.4 ± 1.3 vs ...)".
@@ -125,9 +125,9 @@ func (p *para) combine(a, b named) named {
 }
 
 var (
-	fromTo  = regexp.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
-	byMuch  = regexp.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
-	moreish = regexp.MustCompile(`(?i)^[^).;]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
+	fromTo  = pattern.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
+	byMuch  = pattern.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
+	moreish = pattern.MustCompile(`(?i)^[^).;]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
 )
 
 // settle decides where no term, or one that is too general, was found.
@@ -246,8 +246,8 @@ func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 }
 
 var (
-	changeNouns = regexp.MustCompile(`(?i)\b(?:weight|mass)? ?(?:loss|gain|reduction|increase|decrease|decline|improvement|change)s?\b`)
-	otherLoss   = regexp.MustCompile(`(?i)\b(?:blood|hair|hearing|tooth|job|fluid|bone|water|heat|vision|memory) loss`)
+	changeNouns = pattern.MustCompile(`(?i)\b(?:weight|mass)? ?(?:loss|gain|reduction|increase|decrease|decline|improvement|change)s?\b`)
+	otherLoss   = pattern.MustCompile(`(?i)\b(?:blood|hair|hearing|tooth|job|fluid|bone|water|heat|vision|memory) loss`)
 )
 
 // changeNoun reports a word of change between a term and the estimate: "mean
