@@ -2,6 +2,7 @@ package table
 
 import (
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 

@@ -56,6 +56,8 @@ func (f *frame) partOf(l label) part {
 		if isTimeHeading(fold(l.text)) {
 			p.kind, p.name = partTime, tidyTime(l.text)
 		}
+	case isUnit(p.name) && len(p.name) > 1 && !strings.Contains(p.name, " "):
+		p.kind, p.name = partEmpty, "" // a unit alone names no group
 	case isPHeading(low) || isCountHeading(low):
 		p.kind, p.name = partEmpty, ""
 	case isContrast(low) || compares(l.text) && !f.isArm(low):
@@ -64,6 +66,8 @@ func (f *frame) partOf(l label) part {
 		p.kind, p.name = partTime, tidyTime(l.text)
 	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
 		p.kind = partArm
+	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.timeRow[l.cell.Row]:
+		p.kind, p.name = partTime, tidyTime(l.text)
 	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.armRow[l.cell.Row]:
 		p.kind = partArm // beside a heading that names an arm
 	default:
@@ -86,6 +90,24 @@ func (f *frame) findArmRows() {
 		}
 	}
 	f.armRow = rows
+	f.timeRow = map[int]bool{}
+	for r := 0; r < f.head; r++ {
+		times, all := 0, 0
+		for c := f.stub; c < f.tab.Cols; c++ {
+			cell := f.cellAt(r, c)
+			if cell == nil || isBlankText(cell.Text.S) {
+				continue
+			}
+			switch f.partOf(f.label(cell)).kind {
+			case partTime:
+				times++
+				all++
+			case partOther, partArm:
+				all++
+			}
+		}
+		f.timeRow[r] = times >= 2 && 2*times >= all && !rows[r]
+	}
 }
 
 // rowPart classifies a label before a row: there an n does not make an arm, and
@@ -177,7 +199,7 @@ func (f *frame) isArm(low string) bool {
 	if f.rowArms[low] || f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
 		return true
 	}
-	return armWord.MatchString(low) && len(words(low)) <= 6 && !strings.Contains(low, "(") && !outcomeWord.MatchString(low)
+	return armWord.MatchString(low) && len(words(low)) <= 6 && unitIn(low) == "" && !outcomeWord.MatchString(low)
 }
 
 var outcomeWord = regexp.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
@@ -564,7 +586,9 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	if !x.contrast && len(arms) == 0 && f.colArms && f.columnStatistic(e) == "coefficient" && len(f.armNames()) == 2 {
 		x.contrast = true // a model's coefficient beside the columns of two arms
 	}
-	if len(others) > 0 && len(others) < len(arms) {
+	if len(others) > 0 && len(others) < len(arms) && f.spannedBy(path) {
+		arms = others
+	} else if len(others) > 0 && len(others) < len(arms) {
 		// One heading is an arm by name: the others say what it is about.
 		arms = without(arms, others)
 		x.aside = joinPath(others, ", ")
@@ -575,7 +599,27 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		}
 		x.armFrom = f.columnName(e.col)
 	}
+	for len(times) > 1 && generalTime[fold(times[0])] {
+		times = times[1:]
+	}
 	x.time = joinPath(times, ", ")
+}
+
+// generalTime are headings over times that name none.
+var generalTime = map[string]bool{"time": true, "times": true, "time point": true, "time points": true, "timepoint": true, "timepoints": true, "stage": true, "stages": true,
+	"visit": true, "visits": true, "period": true, "periods": true, "phase": true, "assessment": true, "assessments": true, "assessment period": true, "measurement": true, "measurements": true}
+
+var onlyArmWord = regexp.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
+
+// spannedBy reports that the arm's heading is a general word over columns with
+// names of their own: "Intervention" over three regimens.
+func (f *frame) spannedBy(path []label) bool {
+	for _, l := range path {
+		if onlyArmWord.MatchString(nameOf(l.text)) && l.cell != nil && l.cell.ColSpan > 1 {
+			return true
+		}
+	}
+	return false
 }
 
 // columnStatistic gives the statistic that the estimate's column announces.

@@ -42,6 +42,10 @@ func beforeFor(s string) string {
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
 	name := nameOf(l.text)
+	if ab := parseVs(name); ab != nil && (isTimeHeading(fold(ab[1])) || timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
+		x.contrast, x.change = false, true // against baseline: a change inside one arm
+		return
+	}
 	if ab := parseVs(name); ab != nil {
 		x.arm, x.arm2 = ab[0], ab[1]
 		x.armAt, x.armFrom = l, "heading"

@@ -2,10 +2,10 @@ package table
 
 import (
 	"math"
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 )
 
 // countGrade says how well "a (b)" fits a count with its percentage.
@@ -50,7 +50,7 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	return g
 }
 
-var percentThenN = regexp.MustCompile(`(?i)(?:%|\bper ?cent(?:age)?)[^(\[]{0,20}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|\bn\s*[(\[]\s*rate\b`)
+var percentThenN = pattern.MustCompile(`(?i)(?:%|\bper ?cent(?:age)?)[^(\[]{0,20}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|\bn\s*[(\[]\s*rate\b`)
 
 // percentWithCount reports a heading, label, caption or note that announces a
 // percentage with its count in brackets: "% (n)".
@@ -299,7 +299,7 @@ func countStatement(s *statement) (is, strong bool) {
 	return is, strong
 }
 
-var countWords = regexp.MustCompile(`(?i)\b(?:no\.?|n|number|nr\.?|frequency|count)\s*[,;:]?\s*[(\[]\s*(?:%|percent)|\b(?:no\.?|n|number|frequency)\s*(?:,|;|and|/)\s*(?:%|percent)`)
+var countWords = pattern.MustCompile(`(?i)\b(?:no\.?|n|number|nr\.?|frequency|count)\s*[,;:]?\s*[(\[]\s*(?:%|percent)|\b(?:no\.?|n|number|frequency)\s*(?:,|;|and|/)\s*(?:%|percent)`)
 
 // hasPair reports a spread or statistic among the pairs.
 func hasPair(ps []pair) bool {

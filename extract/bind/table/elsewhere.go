@@ -1,11 +1,11 @@
 package table
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -369,7 +369,7 @@ func sameArm(a, b string) bool {
 
 var _ = paper.Bold
 
-var wholeColumn = regexp.MustCompile(`(?i)\b(?:total|tested|all|overall|sample|participants|patients|subjects|population|colonies|examined|screened|respondents)\b`)
+var wholeColumn = pattern.MustCompile(`(?i)\b(?:total|tested|all|overall|sample|participants|patients|subjects|population|colonies|examined|screened|respondents)\b`)
 
 // categorySize reads the n's of a ratio that compares categories in rows: the
 // count beside it in the column for all subjects, and that of the reference row

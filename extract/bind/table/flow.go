@@ -1,11 +1,11 @@
 package table
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -18,9 +18,9 @@ type flowSentence struct {
 }
 
 var (
-	flowWord = regexp.MustCompile(`(?i)\bfollow(?:ed)?[- ]?up\b|\bcompleted\b|\bcompleters\b|\bavailable\b|\banaly[sz]ed\b|\bincluded in the (?:final )?analys[ie]s\b|\bevaluated\b|\bassessed\b|\bremained\b`)
-	planWord = regexp.MustCompile(`(?i)\bpower\b|\bsample size\b|\brequired?\b|\bneeded\b|\bplanned\b|\bcalculat|\bdetect\b|\bwould\b|\blost\b.{0,20}$`)
-	inEach   = regexp.MustCompile(`(?i)\b(\d{1,5}|[a-z]+(?:[- ][a-z]+)?)\s+(?:patients|subjects|participants|women|men|children|colonies|individuals|people|persons|animals|adults|infants)\s+(?:in|from|of|per)\s+(?:each|both|either)?\s*(?:of the )?(?:two |three |four )?(?:study |treatment )?(?:group|arm)s?\b`)
+	flowWord = pattern.MustCompile(`(?i)\bfollow(?:ed)?[- ]?up\b|\bcompleted\b|\bcompleters\b|\bavailable\b|\banaly[sz]ed\b|\bincluded in the (?:final )?analys[ie]s\b|\bevaluated\b|\bassessed\b|\bremained\b`)
+	planWord = pattern.MustCompile(`(?i)\bpower\b|\bsample size\b|\brequired?\b|\bneeded\b|\bplanned\b|\bcalculat|\bdetect\b|\bwould\b|\blost\b.{0,20}$`)
+	inEach   = pattern.MustCompile(`(?i)\b(\d{1,5}|[a-z]+(?:[- ][a-z]+)?)\s+(?:patients|subjects|participants|women|men|children|colonies|individuals|people|persons|animals|adults|infants)\s+(?:in|from|of|per)\s+(?:each|both|either)?\s*(?:of the )?(?:two |three |four )?(?:study |treatment )?(?:group|arm)s?\b`)
 )
 
 // findFlow gathers the sentences of abstract and results that count who was

@@ -1,6 +1,8 @@
 package table
 
 import (
+	"strings"
+
 	"halfspan/extract/paper"
 )
 
@@ -26,6 +28,7 @@ type frame struct {
 	rowArms     map[string]bool    // row labels found to be arms by repetition
 	outcomeCols bool               // column headings name outcomes
 	outerSub    bool               // group labels name analyses or subgroups of the same outcomes
+	timeRow     map[int]bool       // heading rows that name times
 	armRow      map[int]bool       // heading rows that name arms
 	armList     []string
 }
@@ -74,8 +77,8 @@ func (f *frame) findHead() {
 		f.head++
 	}
 	// A row of data among the marked heading rows ends them.
-	for r := 1; r < f.head; r++ {
-		if f.dataCells(r) >= 2 && !f.blank(r, 0) {
+	for r := 0; r < f.head; r++ {
+		if f.dataCells(r) >= 2 && !f.blank(r, 0) && r > 0 || f.spreadCells(r) > 0 && !f.blank(r, 0) {
 			f.head = r
 			return
 		}
@@ -150,6 +153,22 @@ func (f *frame) dataCells(r int) int {
 	return n
 }
 
+// spreadCells counts the cells of row r that print an estimate with its spread.
+func (f *frame) spreadCells(r int) int {
+	n := 0
+	for c := 1; c < f.tab.Cols; c++ {
+		cell := f.cellAt(r, c)
+		if cell == nil {
+			continue
+		}
+		rd := f.reads[cell]
+		if rd.hasSpread() && rd.cell.Letters == 0 && len(rd.cell.Terms) == 0 && !rd.phrase.hasN {
+			n++
+		}
+	}
+	return n
+}
+
 // findStub settles how many leading columns label the rows.
 func (f *frame) findStub() {
 	f.stub = 1
@@ -194,11 +213,21 @@ func (f *frame) stubLike(c int) bool {
 		if cell.Col == c && (p.isP || p.onlyN) {
 			return false
 		}
-		if isTimeHeading(fold(cell.Text.S)) && text+other > 1 {
-			return true
+		if generalTime[strings.Trim(fold(cell.Text.S), " .:()")] && !f.anySpread(c) {
+			return true // Week: 0, 6, 12
 		}
 	}
 	return text >= 2*other || text >= other && f.spannedStub(c-1)
+}
+
+// anySpread reports a cell of column c that prints an estimate with its spread.
+func (f *frame) anySpread(c int) bool {
+	for r := f.head; r < f.tab.Rows; r++ {
+		if cell := f.cellAt(r, c); cell != nil && f.reads[cell].hasSpread() {
+			return true
+		}
+	}
+	return false
 }
 
 // spannedStub reports that labels of column c span several rows, so that the

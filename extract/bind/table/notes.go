@@ -1,13 +1,13 @@
 package table
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // note is one footnote, or a remark in the caption that a mark leads to.
@@ -47,7 +47,7 @@ func newNotes(t *paper.Table, v *vocabulary) *notes {
 	return n
 }
 
-var markEquals = regexp.MustCompile(`^\s*([a-z]|[*†‡§#¶]{1,3})\s*(?:=|:)\s+`)
+var markEquals = pattern.MustCompile(`^\s*([a-z]|[*†‡§#¶]{1,3})\s*(?:=|:)\s+`)
 
 // splitMarked parts a note that holds others: "Values are means. a = adjusted".
 func (n *notes) splitMarked(t *paper.TextRun) {

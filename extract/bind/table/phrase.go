@@ -1,7 +1,6 @@
 package table
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 	"unicode"
@@ -54,14 +53,14 @@ func readPhrase(s string) phrase { return parsePhrase(grammar.Text{S: s}) }
 // not know as one term; each is put in with spaces to the same length, so that
 // places stay right.
 var variants = []struct {
-	form *regexp.Regexp
+	form *pattern.Pattern
 	as   string
 }{
-	{regexp.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
-	{regexp.MustCompile(`(?i)\bq1\s*(?:[-–—:;,/~]|to|and)\s*q3\b`), "IQR"},
-	{regexp.MustCompile(`(?i)\b(?:p|c)?25(?:th)?(?: ?%| percentile)?\s*(?:[-–—:;,/~]|to|and)\s*(?:p|c)?75(?:th)?(?: ?%| ?percentiles?| ?centiles?)`), "IQR"},
-	{regexp.MustCompile(`(?i)\b(?:lower|first|1st)\s*(?:[-–—:;,/~]|to|and)\s*(?:upper|third|3rd) quartiles?\b`), "IQR"},
-	{regexp.MustCompile(`(?i)\bquartile [1I]\s*(?:[-–—:;,/~]|to|and)\s*(?:quartile )?(?:3|III)\b`), "IQR"},
+	{pattern.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
+	{pattern.MustCompile(`(?i)\bq1\s*(?:[-–—:;,/~]|to|and)\s*q3\b`), "IQR"},
+	{pattern.MustCompile(`(?i)\b(?:p|c)?25(?:th)?(?: ?%| percentile)?\s*(?:[-–—:;,/~]|to|and)\s*(?:p|c)?75(?:th)?(?: ?%| ?percentiles?| ?centiles?)`), "IQR"},
+	{pattern.MustCompile(`(?i)\b(?:lower|first|1st)\s*(?:[-–—:;,/~]|to|and)\s*(?:upper|third|3rd) quartiles?\b`), "IQR"},
+	{pattern.MustCompile(`(?i)\bquartile [1I]\s*(?:[-–—:;,/~]|to|and)\s*(?:quartile )?(?:3|III)\b`), "IQR"},
 }
 
 func normalise(s string) string {

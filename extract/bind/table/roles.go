@@ -161,12 +161,12 @@ var (
 	// timeMark is one mention of a time point or period.
 	timeMark = regexp.MustCompile(`(?i)\b(?:` +
 		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
-		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?` + timeNumber + `(?:\s?(?:[-–—−]|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
+		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?[-–−]?` + timeNumber + `(?:\s?(?:[-–—−]|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
 		`|[tv]\d{1,2}\b|d\d{1,3}\b|w\d{1,2}\b` +
 		`|baseline|screening|enrol?lment|randomi[sz]ation|admission|discharge|follow-?up|end ?point|endline|midline|study end|washout|run-in|` +
 		`pre-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy)|post-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy|trial)|` +
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
-		`start|entry|immediately|delivery|birth)` +
+		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))` +
 		`)`)
 	changeMark = regexp.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
@@ -249,6 +249,9 @@ func stripTerms(s string) string {
 	all := onlyTerms(s, h)
 	for _, q := range h.Pairs {
 		for _, sp := range []grammar.Span{q.SpreadAt, q.StatisticAt} {
+			if sp == q.StatisticAt && q.Statistic == "" && !all {
+				continue // "No. of eggs" is a name
+			}
 			word := strings.ToLower(s[sp.Start:sp.End])
 			if changeMark.MatchString(word) || strings.Contains(word, "change") || sp == q.StatisticAt && !all && partOfName(q) {
 				continue

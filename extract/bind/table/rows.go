@@ -260,11 +260,15 @@ func (f *frame) path(r, c int) []label {
 	if cell := f.grid[r%f.tab.Rows][c]; r < f.tab.Rows && cell != nil && cell.ColSpan > 1 && cell.Row == r && cell.Col >= f.stub {
 		path = covering(path, cell)
 	}
-	for _, m := range f.mid {
+	for i, m := range f.mid {
 		if m.row > r {
 			break
 		}
 		if m.cells[c].empty() && len(m.cells[c].marks) == 0 {
+			continue
+		}
+		if i > 0 && f.mid[i-1].row == m.row-1 && !f.mid[i-1].cells[c].empty() {
+			path = []label{f.mid[i-1].cells[c], m.cells[c]} // a whole new head
 			continue
 		}
 		path = overlay(f.heads[c], m.cells[c])
@@ -292,7 +296,7 @@ func overlay(base []label, l label) []label {
 	out := append([]label{}, base...)
 	if k := len(out) - 1; k >= 0 {
 		p := readPhrase(out[k].text)
-		if p.onlyTerms || p.terms > 0 && !p.hasN && !p.armLike {
+		if p.onlyTerms || p.terms > 0 && !p.hasN && !p.armLike || fold(out[k].text) == fold(l.text) {
 			out = out[:k]
 		}
 	}

@@ -57,11 +57,17 @@ func unitIn(s string) string {
 	if m := unitComma.FindStringSubmatch(t); m != nil && isUnit(clean(m[1])) {
 		return clean(m[1])
 	}
+	if ws := strings.Fields(t); len(ws) > 1 && len(ws[len(ws)-1]) > 1 && plainUnit.MatchString(ws[len(ws)-1]) {
+		return ws[len(ws)-1]
+	}
 	if strings.Contains(t, "%") && !strings.Contains(s, "95%") {
 		return "%"
 	}
 	return ""
 }
+
+// plainUnit are units that stand behind a name without a comma or bracket.
+var plainUnit = regexp.MustCompile(`^(?:years|yrs|cm|mm|kg|mg|mL|ml|mmHg|kcal|bpm|mg/dL|mg/dl|mmol/L|mmol/l|kg/m2|g/dL|g/dl|ng/mL|pg/mL|µg/L|μg/L|minutes|min|days|weeks|months|hours)$`)
 
 // isUnit reports that every part of s is the sign of a unit.
 func isUnit(s string) bool {
