@@ -101,5 +101,8 @@ func groupMethods() []Method {
 			"Thomson 1955", []string{againstR, "all samples of six whole numbers from 0 to 6"}, []string{"SDBoundsFromRange"}},
 		{"d2", "SD from the range of a small normal sample", []string{"SD = R/d₂(n), d₂ the expected range in SDs"}, []string{"normal values, n from 2 to 25"},
 			"Tippett 1925", []string{againstR, "printed d₂ and d₃ tables (recalled from memory)"}, []string{"SDFromRangeSmall", "ExpectedRange", "SDOfRange"}},
+		{"kappa", "agreement of two checkers beyond chance, on keeping or dropping", []string{"kappa = (po − pe)/(1 − pe)", "po: share on which both chose the same; pe = Σ (row sum)·(column sum)/N²"},
+			[]string{"both judged the same results, each by themselves", "read it beside the share that is kept: where nearly all are kept it is low however well two people agree"},
+			"Cohen 1960", []string{"Fleiss's printed example of 100 diagnoses, 0.68 (recalled from memory)", "a direct count over all pairs of judgements"}, []string{"Kappa"}},
 	}
 }

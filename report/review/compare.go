@@ -208,12 +208,14 @@ func (c *Comparison) Write(w io.Writer) error {
 	fmt.Fprintf(&b, "%s and %s have both decided about %s.\n", c.NameA, c.NameB, Count(total, "result"))
 	if total > 0 {
 		fmt.Fprintf(&b, "Kept by both %d, by %s only %d, by %s only %d, by neither %d: alike in %d of %d.\n", both, c.NameA, onlyA, c.NameB, onlyB, neither, both+neither, total)
+		b.WriteString(c.chance())
 	}
 	if both > 0 {
 		fmt.Fprintf(&b, "\nOf %s kept by both, the same value:\n", Count(both, "result"))
 		for _, f := range c.Fields() {
-			fmt.Fprintf(&b, "  %-12s %d of %d\n", f.Field, f.Same, f.Both)
+			fmt.Fprintf(&b, "  %-12s %d of %d%s\n", f.Field, f.Same, f.Both, c.apart(f.Field))
 		}
+		b.WriteString(c.modes())
 	}
 	if one := len(c.Pairs) - total; one > 0 {
 		fmt.Fprintf(&b, "\nDecided by one of them only, or queried: %s.\n", Count(one, "result"))
