@@ -61,6 +61,10 @@ func checksOfReading() []check {
 			}
 			return it.res.Evidence.Repairs[0], true
 		}},
+		{"adjusted-baseline", func(it *item) (string, bool) {
+			return "a baseline value is called adjusted: the word may belong to other columns",
+				it.res.Evidence.Baseline && it.res.Adjusted == "yes" && isStatistic(result.Mean, result.MeanChange)(it)
+		}},
 		{"count-data", func(it *item) (string, bool) {
 			return "", it.res.Evidence.Integer
 		}},

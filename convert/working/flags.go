@@ -34,6 +34,7 @@ func Flags() []FlagInfo {
 	return []FlagInfo{
 		// The sample size.
 		{"n-missing", AsksLook, "no sample size is printed for this result", "look for n in the paper; without it an interval gives the SE only"},
+		{"n-missing-here", AsksLook, "no n was found for this result, though other results of its table have one", "look at the table's headings and its n row"},
 		{"n-elsewhere", AsksLook, "n was read in another table or in the text, by the name of the arm", "check that this n is the one analysed here"},
 		{"n-kind-unclear", AsksLook, "whether n counts those analysed in this row is not said", "look for missing values; fewer analysed means a larger SE for the same SD"},
 		{"n-randomised", None, "n counts those randomised; fewer may have been analysed", "look for the number analysed in the flow of the study"},
@@ -72,6 +73,8 @@ func Flags() []FlagInfo {
 		{"statistic-unclear", MakesIt, "the paper does not say what the estimate is", "decide whether it is a mean, a median or something else"},
 		{"statistic-assumed", AsksLook, "mean, median or other is not said and was taken from the kind of spread", "check the table's heading and the methods"},
 		{"adjusted", None, "the mean or difference is adjusted", "its interval reflects a model: the SD is withheld"},
+		{"statistic-against-heading", AsksLook, "a word of the heading contradicts the statistic that was read", "decide which of them holds"},
+		{"adjusted-baseline", AsksLook, "a baseline value is called adjusted", "the word may belong to other columns; if so, its SD can be worked out"},
 		{"adjusted-unclear", None, "the paper leaves open whether the mean is adjusted or comes from a model", "look in the methods; the SD is withheld"},
 		{"model-based", None, "the mean comes from a model (least squares, marginal, mixed model)", "the SD is withheld"},
 		{"model-stated", None, "an analysis by a model is stated with the result", "look whether this number comes from it; the SD is withheld"},
@@ -96,6 +99,8 @@ func Flags() []FlagInfo {
 		{"arm-not-named", MakesIt, "read from a sentence that names no arm", "read the sentence: which arm, or all together"},
 		{"arm-unclear", AsksLook, "the arm is not named where the result stands, or only other results of the table name one", "check the arm"},
 		{"time-unclear", AsksLook, "the time point rests on the caption, or only other results of the table name one", "check the time"},
+		{"outcome-abbreviated", AsksLook, "the outcome is only an abbreviation", "look up what it stands for"},
+		{"outcome-stacked", AsksLook, "the outcome's row group has a unit of its own: the row above may be another outcome", "check which row the values belong to"},
 		{"outcome-unclear", AsksLook, "no row label or heading says what was measured", "check the outcome"},
 		{"row-shape-odd", AsksLook, "the spread stands in another cell and was joined to its estimate by position", "check that the two belong together"},
 		{"quoted", AsksLook, "seems to quote another study, or to repeat", "take it from where it was first reported"},
