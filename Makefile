@@ -45,10 +45,12 @@ cover: ## how much of the code the tests run
 	$(GO) tool cover -func coverage.out | tail -1
 
 golden: ## write the expected outputs anew; read the difference before committing it
-	$(GO) test ./... -update
+	@set -e; for p in $$(grep -rl 'flag.Bool("update"' --include='*_test.go' . | xargs -n1 dirname | sort -u); do \
+		$(GO) test $$p -update; \
+	done
 
-errors: ## the simulations behind the typical errors of the methods
-	$(GO) test -run Simulation -v ./convert/... -simulate
+errors: ## make the table of the methods' typical errors anew (minutes)
+	$(GO) test -run 'TestTypicalErrors$$' -timeout 30m -v ./convert -simulate
 
 papers: ## rebuild the demo papers from their sources
 	testdata/papers/sources/build.sh

@@ -8,7 +8,7 @@ import (
 	"strings"
 )
 
-// typicalTable is written by TestTypicalErrors with -update (make errors).
+// typicalTable is written by TestTypicalErrors with -simulate (make errors).
 //
 //go:embed typical.tsv
 var typicalTable string

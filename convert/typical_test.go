@@ -11,7 +11,7 @@ import (
 	"testing"
 )
 
-var update = flag.Bool("update", false, "write golden files and tables anew")
+var simulateAll = flag.Bool("simulate", false, "make the table of typical errors anew: minutes")
 
 // law makes one random value.
 type law struct {
@@ -148,12 +148,12 @@ const typicalSeed = 20261201
 
 var typicalSizes = []int{10, 25, 50, 100, 500}
 
-// TestTypicalErrors makes the table of typical errors (-update: whole, 20,000
+// TestTypicalErrors makes the table of typical errors (-simulate: whole, 20,000
 // samples a row) or makes a part of it again and compares.
 func TestTypicalErrors(t *testing.T) {
-	if *update {
+	if *simulateAll {
 		var b strings.Builder
-		b.WriteString("# written by go test ./convert -run TestTypicalErrors -update (make errors); do not edit\n")
+		b.WriteString("# written by go test ./convert -run TestTypicalErrors -simulate (make errors); do not edit\n")
 		b.WriteString("# law\tn\tmethod\tmean bias\tmean RMSE\tSD bias\tSD RMSE (percent; mean in SDs)\n")
 		for i, l := range laws() {
 			for _, n := range typicalSizes {
