@@ -1,12 +1,12 @@
 package jats
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // longestFormula is how many characters of a formula are read as text: a
@@ -91,8 +91,8 @@ func (b *builder) mathChars(start, end int) {
 }
 
 var (
-	texBody    = regexp.MustCompile(`(?s)(?:\$\$|\\\(|\\\[|\$)(.*?)(?:\$\$|\\\)|\\\]|\$)`)
-	texToken   = regexp.MustCompile(`\\[A-Za-z]+|\\.|[{}^_~$]|\s+|[^\\{}^_~$\s]+`)
+	texBody    = pattern.MustCompile(`(?s)(?:\$\$|\\\(|\\\[|\$)(.*?)(?:\$\$|\\\)|\\\]|\$)`)
+	texToken   = pattern.MustCompile(`\\[A-Za-z]+|\\.|[{}^_~$]|\s+|[^\\{}^_~$\s]+`)
 	texSymbols = map[string]string{
 		`\pm`: "±", `\times`: "×", `\le`: "≤", `\leq`: "≤", `\leqslant`: "≤", `\ge`: "≥", `\geq`: "≥", `\geqslant`: "≥",
 		`\cdot`: "·", `\alpha`: "α", `\beta`: "β", `\chi`: "χ", `\Delta`: "Δ", `\delta`: "δ", `\mu`: "μ", `\kappa`: "κ",

@@ -1,14 +1,14 @@
 package jats
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
+	"halfspan/extract/pattern"
 	"halfspan/extract/tidy"
 )
 
-var paddingStyle = regexp.MustCompile(`(?:padding-left|text-indent|margin-left)\s*:\s*([0-9]+(?:\.[0-9]+)?)\s*(em|pt|px|mm|cm|%)?`)
+var paddingStyle = pattern.MustCompile(`(?:padding-left|text-indent|margin-left)\s*:\s*([0-9]+(?:\.[0-9]+)?)\s*(em|pt|px|mm|cm|%)?`)
 
 // styleIndent reads an indentation from a style attribute, in the measure of
 // tidy.SpaceWidth (8 to the em).

@@ -1,10 +1,10 @@
 package jats
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 )
 
@@ -89,7 +89,7 @@ func (r *reader) element(b *builder, n *node) {
 var markRefs = map[string]bool{"table-fn": true, "fn": true, "author-notes": true}
 
 // citationNumber is what the mark of a numbered citation looks like.
-var citationNumber = regexp.MustCompile(`^[\[(]?(?:[Rr]efs?\.?\s*)?[SRs]?[0-9]{1,3}[a-z]?(?:\s*[,;–—‐‑−-]\s*[SRs]?[0-9]{1,3}[a-z]?)*[\])]?[,;.]?$`)
+var citationNumber = pattern.MustCompile(`^[\[(]?(?:[Rr]efs?\.?\s*)?[SRs]?[0-9]{1,3}[a-z]?(?:\s*[,;–—‐‑−-]\s*[SRs]?[0-9]{1,3}[a-z]?)*[\])]?[,;.]?$`)
 
 func (r *reader) crossref(b *builder, n *node) {
 	kind := n.get("ref-type")
@@ -130,7 +130,7 @@ func (r *reader) alternatives(b *builder, n *node) {
 var (
 	cite         = citation
 	citeCluster  = cite + `(?:[\s\x{00A0}\x{2009}]*(?:[,;–—‐‑−-]|and|&|to)?[\s\x{00A0}\x{2009}]*` + cite + `)*`
-	citeBrackets = regexp.MustCompile(`[\s\x{00A0}\x{2009}]*(?:\[\s*(?:see\s+)?` + citeCluster + `\s*[.,;]?\s*\]|\(\s*(?:see\s+)?` + citeCluster + `\s*\))|` + citeCluster)
+	citeBrackets = pattern.MustCompile(`[\s\x{00A0}\x{2009}]*(?:\[\s*(?:see\s+)?` + citeCluster + `\s*[.,;]?\s*\]|\(\s*(?:see\s+)?` + citeCluster + `\s*\))|` + citeCluster)
 )
 
 // cutCitations removes the marks of numbered citations with the brackets and

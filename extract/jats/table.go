@@ -2,12 +2,12 @@ package jats
 
 import (
 	"fmt"
-	"regexp"
 	"strconv"
 	"strings"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 	"halfspan/extract/tidy"
 )
@@ -230,7 +230,7 @@ func tidyLines(t paper.TextRun) paper.TextRun {
 	return source.Drop(t, cuts)
 }
 
-var lineEnd = regexp.MustCompile(`[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*\n[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*`)
+var lineEnd = pattern.MustCompile(`[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*\n[\s\x{00A0}\x{2000}-\x{200B}\x{202F}]*`)
 
 // place gives every cell its row and column as a browser does: cells fill the
 // free positions of their row from the left, a spanning cell keeps positions in

@@ -7,13 +7,13 @@ import (
 	"fmt"
 	"html"
 	"io"
-	"regexp"
 	"strings"
 	"unicode/utf8"
 
 	"golang.org/x/net/html/charset"
 	"golang.org/x/text/encoding/charmap"
 
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 )
 
@@ -83,10 +83,10 @@ func (n *node) each(f func(*node) bool) {
 }
 
 var (
-	declared   = regexp.MustCompile(`^\s*<\?xml[^>]*?\sencoding\s*=\s*["']([A-Za-z0-9._:-]+)["']`)
-	version11  = regexp.MustCompile(`^\s*<\?xml\s+version\s*=\s*["']1\.1["']`)
-	entityName = regexp.MustCompile(`&([A-Za-z][A-Za-z0-9._-]*);`)
-	entityDecl = regexp.MustCompile(`<!ENTITY\s+([A-Za-z][A-Za-z0-9._-]*)\s+(?:"([^"]*)"|'([^']*)')\s*>`)
+	declared   = pattern.MustCompile(`^\s*<\?xml[^>]*?\sencoding\s*=\s*["']([A-Za-z0-9._:-]+)["']`)
+	version11  = pattern.MustCompile(`^\s*<\?xml\s+version\s*=\s*["']1\.1["']`)
+	entityName = pattern.MustCompile(`&([A-Za-z][A-Za-z0-9._-]*);`)
+	entityDecl = pattern.MustCompile(`<!ENTITY\s+([A-Za-z][A-Za-z0-9._-]*)\s+(?:"([^"]*)"|'([^']*)')\s*>`)
 )
 
 // decode brings the file into UTF-8 by its byte order mark, else by its

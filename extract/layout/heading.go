@@ -1,20 +1,20 @@
 package layout
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 var (
-	figureLabel  = regexp.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
-	tableLabel   = regexp.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
-	numbered     = regexp.MustCompile(`^(?:[0-9]{1,2}(?:\.[0-9]{1,2}){0,3}\.?|[IVX]{1,4}\.|[A-H]\.)\s+\p{Lu}`)
-	numberedDeep = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2}){1,3}\.?\s+\p{Lu}`)
-	runIn        = regexp.MustCompile(`^(?i:(?:abstract|summary)[.:]?\s+)?((?i:background|introduction|objectives?|aims?|purpose|context|importance|methods?|methodology|materials? and methods|patients and methods|study design|design|setting|settings|participants|subjects|interventions?|measurements?|main outcome measures?|main outcomes?(?: and measures)?|outcome measures?|results?|findings|main results|conclusions?|interpretation|discussion|trial registration|background/aims?|background and (?:aims?|objectives?|purpose)|methods and results|methods/design|aims? and objectives?|limitations?|significance|rationale|hypothesis|funding))\s?([.:—–]|\s+-)\s*\S`)
+	figureLabel  = pattern.MustCompile(`^(?i:supplementary |supplemental |additional )?(?:Figure|FIGURE|Fig\.?|FIG\.?|Scheme|Chart|Box|BOX)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
+	tableLabel   = pattern.MustCompile(`^(?:Table|TABLE)\s?(?:[0-9]{1,2}|[SA][0-9]+|[IVX]+)[A-Za-z]?(?:$|[.:|–—]|\s+[^\sa-z])`)
+	numbered     = pattern.MustCompile(`^(?:[0-9]{1,2}(?:\.[0-9]{1,2}){0,3}\.?|[IVX]{1,4}\.|[A-H]\.)\s+\p{Lu}`)
+	numberedDeep = pattern.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2}){1,3}\.?\s+\p{Lu}`)
+	runIn        = pattern.MustCompile(`^(?i:(?:abstract|summary)[.:]?\s+)?((?i:background|introduction|objectives?|aims?|purpose|context|importance|methods?|methodology|materials? and methods|patients and methods|study design|design|setting|settings|participants|subjects|interventions?|measurements?|main outcome measures?|main outcomes?(?: and measures)?|outcome measures?|results?|findings|main results|conclusions?|interpretation|discussion|trial registration|background/aims?|background and (?:aims?|objectives?|purpose)|methods and results|methods/design|aims? and objectives?|limitations?|significance|rationale|hypothesis|funding))\s?([.:—–]|\s+-)\s*\S`)
 )
 
 // titleStarts are the first four letters of the headings that name a zone.

@@ -1,10 +1,10 @@
 package layout
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // zoner walks the blocks in reading order and keeps the zone and section that
@@ -20,7 +20,7 @@ type zoner struct {
 	numbered        bool            // the main headings carry numbers
 }
 
-var keywords = regexp.MustCompile(`(?i)^(?:key ?words?|index terms|keywords and phrases|mesh)\b`)
+var keywords = pattern.MustCompile(`(?i)^(?:key ?words?|index terms|keywords and phrases|mesh)\b`)
 
 // floating is the zone of a table or figure: of the text it is met in.
 func (z *zoner) floating() paper.Zone {
@@ -169,8 +169,8 @@ func level(d *draft, text string, body int) int {
 }
 
 var (
-	topNumber  = regexp.MustCompile(`^(?:[0-9]{1,2}|[IVX]{1,4})\.?\s+\p{Lu}`)
-	headNumber = regexp.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2})*\.?\s`)
+	topNumber  = pattern.MustCompile(`^(?:[0-9]{1,2}|[IVX]{1,4})\.?\s+\p{Lu}`)
+	headNumber = pattern.MustCompile(`^[0-9]{1,2}(?:\.[0-9]{1,2})*\.?\s`)
 )
 
 // abstract cuts a paragraph of the abstract where its parts begin.

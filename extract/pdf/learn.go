@@ -2,13 +2,13 @@ package pdf
 
 import (
 	"fmt"
-	"regexp"
 	"sort"
 	"strconv"
 	"strings"
 	"unicode"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/pdf/glyphs"
 )
 
@@ -176,10 +176,10 @@ func equalsSign(uses []use) verdict {
 
 // interval finds two numbers joined as bounds, each perhaps with the sign in
 // question before it.
-var interval = regexp.MustCompile(`(` + mark + `?) ?(\d+(?:[.·]\d+)?) ?(?:,|;|to|–|-|—|and) ?(` + mark + `?) ?(\d+(?:[.·]\d+)?)`)
+var interval = pattern.MustCompile(`(` + mark + `?) ?(\d+(?:[.·]\d+)?) ?(?:,|;|to|–|-|—|and) ?(` + mark + `?) ?(\d+(?:[.·]\d+)?)`)
 
 // opener is what stands before an interval: a bracket, or the level.
-var opener = regexp.MustCompile(`(?:[(\[]|CI:?,?|interval:?|[(\[]?95 ?% ?CI:?,?) ?$`)
+var opener = pattern.MustCompile(`(?:[(\[]|CI:?,?|interval:?|[(\[]?95 ?% ?CI:?,?) ?$`)
 
 func minusSign(uses []use) verdict {
 	fit, against, mended, broken := 0, 0, 0, 0
@@ -232,8 +232,8 @@ func number64(s string) float64 {
 }
 
 var (
-	meanBefore = regexp.MustCompile(`(?i)\b(?:means?|averages?|x̄|values?)[ ,(\[]*$`)
-	spreadNext = regexp.MustCompile(`^[ (\[]*(?:[sS]\.? ?[dD]\b|[sS]\.? ?[eE]\b|SEM\b|[sS]\.[eE]\.[mM]|[sS]tandard|STD\b|[sS]td\b)`)
+	meanBefore = pattern.MustCompile(`(?i)\b(?:means?|averages?|x̄|values?)[ ,(\[]*$`)
+	spreadNext = pattern.MustCompile(`^[ (\[]*(?:[sS]\.? ?[dD]\b|[sS]\.? ?[eE]\b|SEM\b|[sS]\.[eE]\.[mM]|[sS]tandard|STD\b|[sS]td\b)`)
 )
 
 // plusMinus needs the paper to say it: "mean + SD", with the same sign between
@@ -275,7 +275,7 @@ func lessThan(uses []use) verdict {
 	return verdict{text: "<", only: fits, why: "the letter o stands between p and a number"}
 }
 
-var smallNumber = regexp.MustCompile(`^ ?0?[.·]0*\d`)
+var smallNumber = pattern.MustCompile(`^ ?0?[.·]0*\d`)
 
 // symbolCode gives the sign that a private code U+F0xx means in the Symbol
 // font, which many programs write so.

@@ -1,10 +1,10 @@
 package tidy
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // mostHeadRows is how many heading rows are looked for where none are marked.
@@ -13,11 +13,11 @@ const mostHeadRows = 5
 var (
 	// dataCell is a cell that prints a value: a number with nothing but marks,
 	// a spread or an interval after it.
-	dataCell = regexp.MustCompile(`^[(\[]?\s*[<>≤≥=~+–−‐-]?\s*[$£€]?[0-9.][0-9.,·\s\x{00A0}\x{2009}]*%?\s*(?:[\*†‡§¶#a-d]{0,3}|(?:±|\+/|\(|\[|–|−|‐|-|/|to\b|,|;|\n\s*[(\[±0-9−–-]).*)$`)
+	dataCell = pattern.MustCompile(`^[(\[]?\s*[<>≤≥=~+–−‐-]?\s*[$£€]?[0-9.][0-9.,·\s\x{00A0}\x{2009}]*%?\s*(?:[\*†‡§¶#a-d]{0,3}|(?:±|\+/|\(|\[|–|−|‐|-|/|to\b|,|;|\n\s*[(\[±0-9−–-]).*)$`)
 	// plainWhole is a number that a heading may print too: a week, a dose, a year.
-	plainWhole = regexp.MustCompile(`^\(?[0-9]{1,4}\)?%?$`)
+	plainWhole = pattern.MustCompile(`^\(?[0-9]{1,4}\)?%?$`)
 	// headWord is what a second heading row prints under the first.
-	headWord = regexp.MustCompile(`(?i)^\W*(?:n|no\.?|p|%|sd|se|sem|ci|mean|median|iqr|range|value|\W*p[ -]?values?)\W*$|\bn\s*=|\bmean\b|\bmedian\b|\bSD\b|\bSE\b|\bSEM\b|\bCI\b|%|\bp[ -]values?\b`)
+	headWord = pattern.MustCompile(`(?i)^\W*(?:n|no\.?|p|%|sd|se|sem|ci|mean|median|iqr|range|value|\W*p[ -]?values?)\W*$|\bn\s*=|\bmean\b|\bmedian\b|\bSD\b|\bSE\b|\bSEM\b|\bCI\b|%|\bp[ -]values?\b`)
 )
 
 // isData reports whether row r prints values. Whole numbers alone do not tell.

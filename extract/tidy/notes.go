@@ -1,12 +1,12 @@
 package tidy
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 )
 
@@ -33,7 +33,7 @@ func noteRow(row []*paper.Cell, cols int, in Part) bool {
 }
 
 // symbolMark is a mark that can be nothing else where a note begins.
-var symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗•∆Δ♦¥€$^]{1,3})`)
+var symbolMark = pattern.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗•∆Δ♦¥€$^]{1,3})`)
 
 // SplitNotes parts a paragraph below a table into its notes. A note begins at a
 // raised letter, digit or symbol, or at a symbol, that stands at the start or

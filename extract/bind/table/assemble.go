@@ -2,7 +2,6 @@ package table
 
 import (
 	"halfspan/extract/grammar"
-	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 

@@ -5,7 +5,6 @@ import (
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
-	"halfspan/extract/pattern"
 )
 
 // cellReading is what the grammar finds in one cell, read both as values and as

@@ -7,7 +7,6 @@ import (
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
-	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 

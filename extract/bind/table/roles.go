@@ -1,10 +1,10 @@
 package table
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 )
 
 // roleKind is what the values of a column or row are, by its heading.
@@ -159,7 +159,7 @@ var (
 	oneNumber  = `(?:\d+(?:\.\d+)?(?:st|nd|rd|th)?|one|two|three|four|five|six|seven|eight|nine|ten|twelve|eighteen|twenty-four|first|second|third|fourth|fifth|sixth)`
 	timeNumber = oneNumber + `(?:\s?[-–—−]\s?` + oneNumber + `)?`
 	// timeMark is one mention of a time point or period.
-	timeMark = regexp.MustCompile(`(?i)\b(?:` +
+	timeMark = pattern.MustCompile(`(?i)\b(?:` +
 		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
 		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?[-–−]?` + timeNumber + `(?:\s?(?:[-–—−]|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
 		`|[tv]\d{1,2}\b|d\d{1,3}\b|w\d{1,2}\b` +
@@ -168,7 +168,7 @@ var (
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
 		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))` +
 		`)`)
-	changeMark = regexp.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
+	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
 
 // isTimeHeading reports that a folded heading names a time or a period and
@@ -223,7 +223,7 @@ var timeFiller = map[string]bool{"at": true, "after": true, "of": true, "the": t
 	"m": true, "w": true, "d": true, "vs": true, "versus": true, "minus": true, "mean": true, "results": true, "test": true, "data": true, "no": true, "only": true, "surgery": true, "operation": true,
 	"therapy": true, "exercise": true, "dose": true, "during": true, "within": true, "between": true, "infusion": true, "training": true, "follow": true, "up": true, "st": true, "nd": true, "rd": true, "th": true, "a": true, "b": true, "since": true, "randomisation": true, "randomization": true, "recruitment": true, "p": true, "for": true, "by": true, "one": true}
 
-var nPhrase = regexp.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
+var nPhrase = pattern.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
 
 // onlyTerms reports that nothing but terms stands in a heading.
 func onlyTerms(s string, h grammar.Heading) bool { return len(restWords(s, h)) == 0 }

@@ -1,12 +1,12 @@
 package table
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -49,8 +49,8 @@ func lastN(l label) (int, bool) {
 }
 
 var (
-	bareCount = regexp.MustCompile(`(?i)[(\[]\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)?\s*[)\]]\s*$`)
-	worded    = regexp.MustCompile(`(?i)[(\[]\s*(?:n|no\.?)?\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)\s*[)\]]`)
+	bareCount = pattern.MustCompile(`(?i)[(\[]\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)?\s*[)\]]\s*$`)
+	worded    = pattern.MustCompile(`(?i)[(\[]\s*(?:n|no\.?)?\s*(\d[\d,]*)\s*(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals)\s*[)\]]`)
 )
 
 // bareN reads "Syrup (42 colonies)".
@@ -123,7 +123,7 @@ func (f *frame) cellSize(e *estimate, _ *context) (size, bool) {
 	return size{}, false
 }
 
-var nInBracket = regexp.MustCompile(`(?i)[(\[]\s*(?:n|no\.?|number)\s*[)\]]`)
+var nInBracket = pattern.MustCompile(`(?i)[(\[]\s*(?:n|no\.?|number)\s*[)\]]`)
 
 // bracketIsN reports that a heading, caption or note says that a bracket holds
 // the n: "mean ± SD (n)".
@@ -376,7 +376,7 @@ func (f *frame) noteSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
-var nFor = regexp.MustCompile(`(?i)\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in|at)\s+(?:the )?([^.;,]{2,60})`)
+var nFor = pattern.MustCompile(`(?i)\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in|at)\s+(?:the )?([^.;,]{2,60})`)
 
 // rowNote reads "n = 38 for protein" and "n = 38 at week 12" out of the notes,
 // for the rows or times that they name.
@@ -491,7 +491,7 @@ func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
-var nMention = regexp.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|for|in)\b`)
+var nMention = pattern.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|for|in)\b`)
 
 // nForArm finds in a sentence the n that stands with an arm's name: "(n = 42)"
 // behind it, "42 colonies in the syrup arm", "Syrup (42)".
@@ -556,7 +556,7 @@ func wordIndex(low, name string) int {
 // totals are names of a column for all arms together.
 var totals = map[string]bool{"total": true, "all": true, "overall": true, "all patients": true, "all participants": true, "all subjects": true, "entire cohort": true, "whole group": true, "total sample": true}
 
-var totalMention = regexp.MustCompile(`\b(\d[\d,]*) (?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|cases)\b`)
+var totalMention = pattern.MustCompile(`\b(\d[\d,]*) (?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|cases)\b`)
 
 func letterAt(s string, i int) bool {
 	return s[i] >= 'a' && s[i] <= 'z' || s[i] >= '0' && s[i] <= '9' || s[i] >= 0x80

@@ -1,10 +1,10 @@
 package table
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -130,9 +130,9 @@ func usual(g result.GivenAs) result.Statistic {
 }
 
 var (
-	percentWord = regexp.MustCompile(`(?i)%|\bper ?cent|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\bincidence\b|\bsurvival\b|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission) rates?\b|\brates?\b`)
-	strictShare = regexp.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|\bpatients with\b|\bpatients \(%\)`)
-	coefficient = regexp.MustCompile(`(?i)\bregression\b|\bcoefficients?\b|\bβ\b|\bmodel β\b`)
+	percentWord = pattern.MustCompile(`(?i)%|\bper ?cent|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\bincidence\b|\bsurvival\b|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission) rates?\b|\brates?\b`)
+	strictShare = pattern.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|\bpatients with\b|\bpatients \(%\)`)
+	coefficient = pattern.MustCompile(`(?i)\bregression\b|\bcoefficients?\b|\bβ\b|\bmodel β\b`)
 )
 
 // refine turns a plain mean into a change, a difference or a proportion where
@@ -201,11 +201,11 @@ func (f *frame) shares(x *context, all []statement) bool {
 var _ = grammar.SpreadCI
 
 var (
-	adjustedWord   = regexp.MustCompile(`(?i)\badjust(?:ed|ing|ment)\b|\bancova\b|\banalysis of covariance\b|\bcovariates?\b|\bcontroll(?:ed|ing) for\b|\bleast[- ]squares?\b|\bls[- ]?means?\b|\blsmd?\b|\bmarginal means?\b|\bmultivaria(?:te|ble)\b|\bmodel-(?:averaged|based|adjusted)\b|\badj\.?\b|\bmultiple regression\b|\bpropensity\b`)
-	unadjustedWord = regexp.MustCompile(`(?i)\bunadjusted\b|\bcrude\b|\bunivaria(?:te|ble)\b|\bnot adjusted\b|\braw means?\b|\bobserved means?\b`)
-	modelWord      = regexp.MustCompile(`(?i)\bmixed[- ](?:effects? )?models?\b|\bgee\b|\bgeneralized (?:estimating|linear)\b|\bgeneralised (?:estimating|linear)\b|\bglm\b|\brepeated[- ]measures\b|\bimput|\bgeneral linear\b|\bmmrm\b|\bregression\b`)
-	leastWord      = regexp.MustCompile(`(?i)\bleast[- ]squares?\b|\bls[- ]?means?\b`)
-	marginalWord   = regexp.MustCompile(`(?i)\bmarginal means?\b`)
+	adjustedWord   = pattern.MustCompile(`(?i)\badjust(?:ed|ing|ment)\b|\bancova\b|\banalysis of covariance\b|\bcovariates?\b|\bcontroll(?:ed|ing) for\b|\bleast[- ]squares?\b|\bls[- ]?means?\b|\blsmd?\b|\bmarginal means?\b|\bmultivaria(?:te|ble)\b|\bmodel-(?:averaged|based|adjusted)\b|\badj\.?\b|\bmultiple regression\b|\bpropensity\b`)
+	unadjustedWord = pattern.MustCompile(`(?i)\bunadjusted\b|\bcrude\b|\bunivaria(?:te|ble)\b|\bnot adjusted\b|\braw means?\b|\bobserved means?\b`)
+	modelWord      = pattern.MustCompile(`(?i)\bmixed[- ](?:effects? )?models?\b|\bgee\b|\bgeneralized (?:estimating|linear)\b|\bgeneralised (?:estimating|linear)\b|\bglm\b|\brepeated[- ]measures\b|\bimput|\bgeneral linear\b|\bmmrm\b|\bregression\b`)
+	leastWord      = pattern.MustCompile(`(?i)\bleast[- ]squares?\b|\bls[- ]?means?\b`)
+	marginalWord   = pattern.MustCompile(`(?i)\bmarginal means?\b`)
 )
 
 // adjustedOf reads from headings, caption and notes whether an estimate is

@@ -1,14 +1,15 @@
 package table
 
 import (
-	"regexp"
 	"strings"
+
+	"halfspan/extract/pattern"
 )
 
 var (
-	unitBracket = regexp.MustCompile(`[(\[]([^()\[\]]{1,30})[)\]]`)
-	unitComma   = regexp.MustCompile(`,\s*([^,;()]{1,20})$`)
-	unitToken   = regexp.MustCompile(`^(?:[µμm]?(?:g|l|L|mol|M|m|s|V|W|Hz|Pa|J|U|IU|Eq|Osm|Gy|bar)|[kcdn](?:g|m|l|L|J|Pa|mol|cal|Hz|M|W|V|s)|%|°C|°|℃|mmHg|mm ?Hg|cmH2O|cm ?H2O|bpm|years?|yrs?|y|months?|mos?|weeks?|wks?|days?|d|hours?|hrs?|h|minutes?|mins?|min|seconds?|secs?|s|sec|ms|kcal|cal|MET|METs|points?|score|beats?|breaths?|€|\$|£|US\$|USD|EUR|AUD|units?|cells?|copies|IU|U|mIU|µIU|μIU|mEq|mEq|ng|pg|fg|kJ|MJ|torr|Torr|rpm|kPa|inches|in|lb|lbs|colony|colonies|frames?|mm2|mm3|cm2|cm3|m2|kg|cm|mm|nm|ml|mL|dl|dL|fl|fL|times|stones?|steps|servings?|portions?|pack-years|person-years|ppm|ppb|AU|a\.u\.|arb|1\.73|predicted|log10|log|body|weight|BW|bw|total|energy|protein|creatinine|Hg|O2|CO2|per|night|week|day|year|month|minute|hour|of|serum|plasma|Cr|cr|tissue|×|x|10|103|106|109|ηg|mmol|µmol|μmol|nmol|pmol|fmol|mg|µg|μg|mcg|gm|gms|Kg|Kgs|kgs|litres?|liters?|Meq|meq|mosm|mOsm|dyn|dynes|Nm|kN|lux|dB|dioptres?|diopters?|mV|kV|mA|mmhg|MmHg)[\d⁻−²³^*-]*$`)
+	unitBracket = pattern.MustCompile(`[(\[]([^()\[\]]{1,30})[)\]]`)
+	unitComma   = pattern.MustCompile(`,\s*([^,;()]{1,20})$`)
+	unitToken   = pattern.MustCompile(`^(?:[µμm]?(?:g|l|L|mol|M|m|s|V|W|Hz|Pa|J|U|IU|Eq|Osm|Gy|bar)|[kcdn](?:g|m|l|L|J|Pa|mol|cal|Hz|M|W|V|s)|%|°C|°|℃|mmHg|mm ?Hg|cmH2O|cm ?H2O|bpm|years?|yrs?|y|months?|mos?|weeks?|wks?|days?|d|hours?|hrs?|h|minutes?|mins?|min|seconds?|secs?|s|sec|ms|kcal|cal|MET|METs|points?|score|beats?|breaths?|€|\$|£|US\$|USD|EUR|AUD|units?|cells?|copies|IU|U|mIU|µIU|μIU|mEq|mEq|ng|pg|fg|kJ|MJ|torr|Torr|rpm|kPa|inches|in|lb|lbs|colony|colonies|frames?|mm2|mm3|cm2|cm3|m2|kg|cm|mm|nm|ml|mL|dl|dL|fl|fL|times|stones?|steps|servings?|portions?|pack-years|person-years|ppm|ppb|AU|a\.u\.|arb|1\.73|predicted|log10|log|body|weight|BW|bw|total|energy|protein|creatinine|Hg|O2|CO2|per|night|week|day|year|month|minute|hour|of|serum|plasma|Cr|cr|tissue|×|x|10|103|106|109|ηg|mmol|µmol|μmol|nmol|pmol|fmol|mg|µg|μg|mcg|gm|gms|Kg|Kgs|kgs|litres?|liters?|Meq|meq|mosm|mOsm|dyn|dynes|Nm|kN|lux|dB|dioptres?|diopters?|mV|kV|mA|mmhg|MmHg)[\d⁻−²³^*-]*$`)
 )
 
 // unitOf reads the unit from the row labels, the headings or the cell.
@@ -67,7 +68,7 @@ func unitIn(s string) string {
 }
 
 // plainUnit are units that stand behind a name without a comma or bracket.
-var plainUnit = regexp.MustCompile(`^(?:years|yrs|cm|mm|kg|mg|mL|ml|mmHg|kcal|bpm|mg/dL|mg/dl|mmol/L|mmol/l|kg/m2|g/dL|g/dl|ng/mL|pg/mL|µg/L|μg/L|minutes|min|days|weeks|months|hours)$`)
+var plainUnit = pattern.MustCompile(`^(?:years|yrs|cm|mm|kg|mg|mL|ml|mmHg|kcal|bpm|mg/dL|mg/dl|mmol/L|mmol/l|kg/m2|g/dL|g/dl|ng/mL|pg/mL|µg/L|μg/L|minutes|min|days|weeks|months|hours)$`)
 
 // isUnit reports that every part of s is the sign of a unit.
 func isUnit(s string) bool {
