@@ -78,6 +78,11 @@ func (p *Pattern) FindSubmatch(b []byte) [][]byte { return p.compiled().FindSubm
 // FindSubmatchIndex is the place of the leftmost match in b and of its groups.
 func (p *Pattern) FindSubmatchIndex(b []byte) []int { return p.compiled().FindSubmatchIndex(b) }
 
+// FindAllSubmatch lists up to n matches in b with their groups.
+func (p *Pattern) FindAllSubmatch(b []byte, n int) [][][]byte {
+	return p.compiled().FindAllSubmatch(b, n)
+}
+
 // FindAllIndex lists the places of up to n matches in b.
 func (p *Pattern) FindAllIndex(b []byte, n int) [][]int { return p.compiled().FindAllIndex(b, n) }
 
