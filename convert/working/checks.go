@@ -55,7 +55,7 @@ func checksOfReading() []check {
 		{"quoted", func(it *item) (string, bool) {
 			return "seems to quote another study or to repeat", it.res.Evidence.Quoted
 		}},
-		{"repaired-characters", func(it *item) (string, bool) {
+		{"repaired", func(it *item) (string, bool) {
 			if len(it.res.Evidence.Repairs) == 0 {
 				return "", false
 			}

@@ -109,7 +109,13 @@ func Flags() []FlagInfo {
 		{"in-methods", AsksLook, "printed in the methods: an assumption or a description", "rarely a result"},
 		// The text.
 		{"misprint", AsksLook, "a number is printed with a slip and was read as meant", "look at the page"},
-		{"repaired-characters", AsksLook, "characters of the file were repaired to read the numbers", "compare the digits with the page"},
+		{"repaired", AsksLook, "characters of the file were repaired to read the numbers", "compare the digits with the page"},
+		{"unknown-sign", AsksLook, "a character of the file could not be told: a sign or a digit may be missing", "compare with the page"},
+		{"ocr", AsksLook, "read from a picture of the page", "compare every digit with the page"},
+		{"conventions-differ", AsksLook, "the paper declares more than one meaning of its spreads", "decide which one this sentence follows"},
+		{"interval-unnamed", AsksLook, "nothing says that these bounds are a confidence interval", "decide whether they are an interval, quartiles or a range"},
+		{"scale-differs", AsksLook, "the estimate fits its bounds only as a percentage", "look at the page: fraction or percent"},
+		{"powers-differ", AsksLook, "estimate and spread are printed with different powers of ten", "look at the page; put them on one power"},
 		{"readers-differ", MakesIt, "the two readers of the PDF read different digits here", "compare the digits with the page"},
 	}
 }
