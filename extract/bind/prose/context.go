@@ -1,10 +1,10 @@
 package prose
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -125,7 +125,7 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 		}
 	}
 	for _, m := range all {
-		if m.start >= end && m.start-end < 60 && linked.MatchString(p.s[end:m.start]) && !contrast.MatchString(p.s[end:m.start]) {
+		if m.start >= end && m.start-end < 60 && linked.MatchString(p.s[end:m.start]) && !contrast.MatchString(p.s[end:m.start]) && !strings.Contains(p.s[end:m.start], " and ") {
 			return m, true
 		}
 	}
@@ -156,7 +156,7 @@ func (p *para) claimed(m mention, end int) bool {
 }
 
 // linked is what may stand between a result and its arm's name behind it.
-var linked = regexp.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+var linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
 
 // byOrder pairs the results of a sentence with its arms where there are as many
 // of either and all arms stand before all results or behind them: "lower with
@@ -215,14 +215,14 @@ func (p *para) joined(list []int) bool {
 const count = `(?:[0-9]+(?:\.[0-9]+)?|one|two|three|four|five|six|eight|nine|ten|twelve)`
 
 var (
-	inOrder   = regexp.MustCompile(`(?i)\brespectively\b|\bresp\.`)
-	joining   = regexp.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
-	timeWords = regexp.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until)\s+(?:the\s+)?)?(?:` +
+	inOrder   = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
+	joining   = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
+	timeWords = pattern.MustCompile(`(?i)\b(?:(?:at|after|by|over|during|within|until)\s+(?:the\s+)?)?(?:` +
 		`(?:week|month|day|year|hour|visit|cycle|session)s?\s+[0-9]+(?:\s*(?:-|–|to)\s*(?:week|month|day|year)?\s?[0-9]+)?` +
 		`|baseline|follow-?up|pre-?test|post-?test|(?:pre|post)-?(?:treatment|intervention|operative(?:ly)?)|(?:the )?end of (?:the )?(?:study|trial|treatment|intervention))\b` +
 		`|\b(?:at|after|by|over|during|within|until)\s+(?:the\s+)?` + count + `[ \x{a0}-](?:weeks?|months?|days?|years?|hours?|h|min|minutes)\b(?:\s+(?:follow-?up|post\w*|after \w+))?` +
 		`|\b(?:at\s+(?:the\s+)?|after\s+(?:the\s+)?)?` + count + `-(?:week|month|day|year|hour)s?\b(?:\s+(?:follow-?up|visit|time point))?`)
-	timeAfter = regexp.MustCompile(`(?i)^[^.;,()0-9]{0,50}$`)
+	timeAfter = pattern.MustCompile(`(?i)^[^.;,()0-9]{0,50}$`)
 )
 
 // setTime names the time point: the one right behind the result, else the last
@@ -234,7 +234,7 @@ func (p *para) setTime(r *result.Result, c *cand) {
 	if it.Bracket > 0 {
 		end = min(to, max(end, p.r.Brackets[it.Bracket-1].End))
 	}
-	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) && !strings.HasSuffix(p.s[:end+m[0]], "from ") {
+	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) && !strings.Contains(p.s[end:end+m[0]], " and ") && !strings.HasSuffix(p.s[:end+m[0]], "from ") {
 		p.setTimeAt(r, end+m[0], end+m[1])
 		return
 	}
@@ -265,10 +265,10 @@ func (p *para) inSpread(a, b int) bool {
 }
 
 var (
-	leadWords  = regexp.MustCompile(`(?i)^(?:kg|mg|min|the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
-	trailWords = regexp.MustCompile(`(?i)\s+(?:was|were|is|are|of|by|to|from|averaged|approximately|about|had|has|have|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|significantly|statistically|only|=|:|OR|HR|RR|M|MD|score of)$`)
+	leadWords  = pattern.MustCompile(`(?i)^(?:kg|mg|min|the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
+	trailWords = pattern.MustCompile(`(?i)\s+(?:was|were|is|are|of|by|to|from|averaged|approximately|about|had|has|have|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|significantly|statistically|only|=|:|OR|HR|RR|M|MD|score of)$`)
 	// what is no outcome by itself
-	emptyWords = regexp.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range|was|were|is|are)[\s=:,.]*)+$`)
+	emptyWords = pattern.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range|was|were|is|are|modelled|model|modeled|between|means|groups?|no|significant|significantly|differences|similar trends|respective|we|observed|it|this|there|estimated|estimate|values?|decrease|increase|reduction|treatment|effect|by|on average|of|that|kg|months?|weeks?)[\s=:,.]*)+$`)
 )
 
 // setOutcome takes the words before the estimate, back to a mark or to the
@@ -310,7 +310,7 @@ func (p *para) previous(c *cand, from int) (end, index int) {
 
 // sameOutcome is what stands between two results of one outcome: a unit, an
 // arm or a time behind the first, a joining word, nothing of its own.
-var sameOutcome = regexp.MustCompile(`(?i)^[)\]%]*[^.;()\[\]]{0,70}?(?:,|\band|\bvs\.?|\bversus|\bto|\bcompared (?:with|to)|\bthan|&)\s*(?:(?:in|with|for|from|at|by|to|the|a)\s+)*[(\[]?$`)
+var sameOutcome = pattern.MustCompile(`(?i)^[)\]%]*(?:[^.;()\[\]]|\(n ?= ?[0-9]+\)){0,70}?(?:,|\band|\bvs\.?|\bversus|\bto|\bcompared (?:with|to)|\bthan|&)\s*(?:(?:in|with|for|from|at|by|to|the|a)\s+)*[(\[]?$`)
 
 // inherit copies the outcome of another candidate's result.
 func (p *para) inherit(r *result.Result, o *cand) {
@@ -327,6 +327,21 @@ func (p *para) inherit(r *result.Result, o *cand) {
 		}
 		return
 	}
+}
+
+// subject is what stands before the verb of a stretch: "Mass was higher in".
+var subject = pattern.MustCompile(`(?i)^(.*?)\s(?:was|were|is|are|rose|fell|(?:significantly |also )?(?:decreased|increased|improved|declined|dropped|differed|changed|reduced)|remained|did|had|has|showed)\b`)
+
+var comparing = pattern.MustCompile(`(?i)^(?:compared|versus|vs|than|relative to|as opposed)\b`)
+
+// onlyArm reports that a stretch is nothing but an arm's name.
+func (p *para) onlyArm(a, b int) bool {
+	for _, m := range p.mentions(a, b) {
+		if m.start-a < 5 && b-m.end < 3 {
+			return true
+		}
+	}
+	return false
 }
 
 // nounBefore finds the last stretch between two bytes that names something:
@@ -350,7 +365,10 @@ func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
 			}
 			part = short
 		}
-		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<>=") {
+		if m := subject.FindStringSubmatch(part); m != nil && len(m[1]) > 2 && !groupWord.MatchString(m[1]) && !emptyWords.MatchString(m[1]) {
+			part = strings.TrimSpace(m[1])
+		}
+		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<=") && !comparing.MatchString(part) && !p.onlyArm(from+start, from+start+len(part)) {
 			const most = 90
 			for len(part) > most {
 				cut := strings.IndexByte(part, ' ')
