@@ -67,7 +67,7 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
-	mostWays    = 48     // ways kept for a stretch of columns
+	mostWays    = 48      // ways kept for a stretch of columns
 	headFuel    = 150_000 // steps of the search for one table
 )
 
@@ -336,7 +336,7 @@ func (s *headSearch) likeOthers(level int, before, after headIndex) int {
 // neighbour looks for the same n headings next to those from first on, at most
 // two headings of single columns between.
 func neighbour(row []headCell, first, n int) int {
-	for gap, score := range []int{100, 60, 60} {
+	for gap, score := range []int{100, 90, 60} {
 		for _, other := range []int{first - n - gap, first + n + gap} {
 			if other >= 0 && sameLabels(row, other, first, n) {
 				return score

@@ -242,7 +242,7 @@ func (r *reader) markAt(s string, expected following, marks map[string]bool) int
 		return 0
 	case unicode.IsSpace(next) || next == '\u00A0':
 		return loc[1]
-	case unicode.IsUpper(next), unicode.IsDigit(next), strings.ContainsRune("(<=>≤≥", next):
+	case unicode.IsUpper(next), unicode.IsDigit(next), sampleSize.MatchString(rest), strings.ContainsRune("(<=>≤≥", next):
 		return loc[1]
 	case unicode.IsLower(next):
 		if r.glued(mark+firstWord(rest), firstWord(rest), 1) || mark != "a" && mark == expected.letter && marks[mark] && r.prose[strings.ToLower(mark+firstWord(rest))] <= 1 {
@@ -251,6 +251,9 @@ func (r *reader) markAt(s string, expected following, marks map[string]bool) int
 	}
 	return 0
 }
+
+// sampleSize begins a note that gives an n.
+var sampleSize = regexp.MustCompile(`^[nN][\s\x{00A0}\x{2009}]*=`)
 
 // glued reports whether a word is a mark with another word before or behind it:
 // the file uses the other word, and the whole not more often than times in its
@@ -312,46 +315,6 @@ func (r *reader) splitNotes(run paper.TextRun, next following, marks map[string]
 }
 
 func trimMark(s string) string { return strings.Trim(s, "().: \u00A0\u2009") }
-
-// raiseMarks gives the letters that end cells, labels and the caption, and that
-// a note of the table explains, the style they had in print: raised.
-func (r *reader) raiseMarks(t *paper.Table) {
-	has := map[string]bool{}
-	for _, n := range t.Notes {
-		if len(n.Mark) == 1 && n.Mark[0] >= 'a' && n.Mark[0] <= 'z' {
-			has[n.Mark] = true
-		}
-	}
-	if len(has) == 0 {
-		return
-	}
-	r.raise(&t.Caption, has, 1)
-	for i := range t.Cells {
-		r.raise(&t.Cells[i].Text, has, 0)
-	}
-}
-
-func (r *reader) raise(run *paper.TextRun, has map[string]bool, times int) {
-	s := run.S
-	at := -1
-	if m := endMarks.FindStringSubmatchIndex(s); m != nil {
-		at = m[2]
-		for _, l := range oneLetter.FindAllString(s[m[2]:], -1) {
-			if !has[l] {
-				return
-			}
-		}
-	} else if n := len(s); n > 2 && has[s[n-1:]] {
-		word := lastWord(s)
-		stem := word[:max(len(word)-1, 0)]
-		if len(stem) > 0 && r.glued(word, stem, times) {
-			at = n - 1
-		}
-	}
-	if at >= 0 {
-		run.Styles = append(run.Styles, paper.Style{Start: at, End: len(s), Kind: paper.Raised})
-	}
-}
 
 // after is the part of run behind offset i, without space and punctuation in
 // front.
