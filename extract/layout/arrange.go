@@ -243,21 +243,22 @@ func (a *arranger) findColumns() {
 			}
 		}
 	}
-	var prior []int
+	var prior []known
 	for _, s := range upright {
 		s.weighStripes(a.body)
 		for _, c := range s.chooseGutters(nil, a.body) {
 			if c.left >= 6 && c.right >= 6 && c.left+c.right >= 16 {
-				prior = append(prior, (c.g.x0+c.g.x1)/2)
+				prior = append(prior, known{(c.g.x0 + c.g.x1) / 2, s.edgeOf(&c.g)})
 			}
 		}
 	}
-	slices.Sort(prior)
-	prior = slices.CompactFunc(prior, func(x, y int) bool { return abs(y-x) < cell })
+	slices.SortFunc(prior, func(a, b known) int { return cmp.Or(cmp.Compare(a.mid, b.mid), cmp.Compare(a.edge, b.edge)) })
+	prior = slices.CompactFunc(prior, func(x, y known) bool { return abs(y.mid-x.mid) < cell && abs(y.edge-x.edge) < cell })
 	for _, s := range upright {
 		for _, c := range s.chooseGutters(prior, a.body) {
 			s.gutters = append(s.gutters, c.g)
 		}
+		s.addKnown(prior, a.body)
 	}
 }
 

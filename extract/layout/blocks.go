@@ -218,7 +218,11 @@ func (a *arranger) join() {
 	a.drafts = kept
 }
 
-const maxBetween = 60 // blocks that may stand between the two parts of a paragraph
+// Between the two parts of a paragraph may stand whole pages of tables.
+const (
+	maxBetween = 60 // blocks
+	maxPages   = 8
+)
 
 // continuation is the draft that goes on with the sentence at the end of draft
 // i, or -1.
@@ -234,7 +238,7 @@ func (a *arranger) continuation(i int, gone []bool) int {
 		if gone[k] {
 			continue
 		}
-		if e.page > page+1 {
+		if e.page > page+maxPages {
 			return -1
 		}
 		switch e.kind {
@@ -253,7 +257,8 @@ func (a *arranger) continuation(i int, gone []bool) int {
 		if abs(e.size-d.size)*100 > 4*d.size {
 			continue
 		}
-		if goesOn(prev, e.first().text()) {
+		next := e.first().text()
+		if goesOn(prev, next) || d.last().full() && e.first().full() && !opensBlock(next) {
 			return k
 		}
 		return -1
@@ -277,6 +282,12 @@ func goesOn(prev, next string) bool {
 		return !numbered.MatchString(next)
 	}
 	return endsOpen(prev) || strings.Count(prev, "(") > strings.Count(prev, ")")
+}
+
+// opensBlock reports whether a line begins something of its own, whatever
+// stands before it.
+func opensBlock(next string) bool {
+	return bullet(next) || startsLabel(next) || numbered.MatchString(next) || runInHeading(next) != ""
 }
 
 // titleSize is the font size of the paper's title: the largest print of some

@@ -74,13 +74,31 @@ func repeated(pages [][]sheet, dir int) {
 			markRepeats(at, all, open, len(pages))
 			for p := range pages {
 				if open[p] && depth < len(rows[p]) {
-					for _, li := range rows[p][rowAt(fromTop, depth, len(rows[p]))] {
-						open[p] = open[p] && at[p].lines[li].furniture
-					}
+					open[p] = at[p].settleRow(rows[p][rowAt(fromTop, depth, len(rows[p]))])
 				}
 			}
 		}
 	}
+}
+
+// settleRow keeps the marks of a row only where they cover a good part of it:
+// a short word of running text may come back on the same spot, too. It reports
+// whether the whole row is furniture.
+func (s *sheet) settleRow(row []int) bool {
+	marked, all := 0, 0
+	for _, i := range row {
+		all += s.lines[i].glyphs
+		if s.lines[i].furniture {
+			marked += s.lines[i].glyphs
+		}
+	}
+	if marked*10 < all*4 {
+		for _, i := range row {
+			s.lines[i].furniture = false
+		}
+		return false
+	}
+	return marked == all
 }
 
 func rowAt(fromTop bool, depth, n int) int {

@@ -100,6 +100,7 @@ func (s *sheet) weighStripes(bodySize int) {
 		x0, x1, top, bot = min(x0, l.x0), max(x1, l.x1), min(top, l.top), max(bot, l.bot)
 	}
 	r := newRaster(x0, top, x1, bot)
+	s.raster = r
 	for i := range s.lines {
 		l := &s.lines[i]
 		if l.furniture {
@@ -125,14 +126,86 @@ func (s *sheet) weighStripes(bodySize int) {
 	})
 }
 
+// known is a gutter that the paper has on some page: its middle and the left
+// edge of the column right of it.
+type known struct{ mid, edge int }
+
+// edgeOf is the left edge of the column right of a gutter.
+func (s *sheet) edgeOf(g *gutter) int {
+	var lefts []int
+	for i := range s.lines {
+		if l := &s.lines[i]; !l.furniture && l.table == nil && l.x0 >= g.x0 && l.x0-g.x0 <= 6*l.size && g.covers(l.mid()) {
+			lefts = append(lefts, l.x0)
+		}
+	}
+	if len(lefts) == 0 {
+		return g.x1
+	}
+	slices.Sort(lefts)
+	return commonEdge(lefts)
+}
+
+// addKnown adds gutters of a line or two, between a title or table above and
+// another below: nothing stands in the known gutter there, and a line begins
+// where the column right of it does.
+func (s *sheet) addKnown(prior []known, bodySize int) {
+	if s.raster == nil {
+		return
+	}
+	for _, p := range prior {
+		for _, g := range s.raster.gaps(p.mid, max(bodySize*8/10, cell)) {
+			if slices.ContainsFunc(s.gutters, func(o gutter) bool { return clash(&o, &g, bodySize) }) {
+				continue
+			}
+			left, right := 0, 0
+			for i := range s.lines {
+				l := &s.lines[i]
+				switch {
+				case l.furniture || l.table != nil || !g.covers(l.mid()):
+				case l.x1 <= p.mid && l.x1-l.x0 >= 6*l.size:
+					left++
+				case abs(l.x0-p.edge)*2 <= l.size && l.x1-l.x0 >= 2*l.size:
+					right++
+				}
+			}
+			if left > 0 && right > 0 {
+				s.gutters = append(s.gutters, g)
+			}
+		}
+	}
+	slices.SortStableFunc(s.gutters, func(a, b gutter) int {
+		return cmp.Or(cmp.Compare(a.x0, b.x0), cmp.Compare(a.top, b.top))
+	})
+}
+
+// gaps are the empty runs of a raster's column at x that are at least least
+// high.
+func (r *raster) gaps(x, least int) []gutter {
+	c := (x - r.x) / cell
+	if x < r.x || c >= r.nx {
+		return nil
+	}
+	var out []gutter
+	start := 0
+	for y := 0; y <= r.ny; y++ {
+		if y < r.ny && r.cols[c][y>>6]>>(y&63)&1 == 0 {
+			continue
+		}
+		if (y-start)*cell >= least {
+			out = append(out, gutter{x - cell, x + cell, r.y + start*cell, r.y + y*cell})
+		}
+		start = y + 1
+	}
+	return out
+}
+
 // chooseGutters takes the stripes that part columns of running text. prior are
-// the middles of gutters that other pages of the paper have: there less text
-// is needed.
-func (s *sheet) chooseGutters(prior []int, bodySize int) []candidate {
+// the gutters that other pages of the paper have: there less text is needed.
+func (s *sheet) chooseGutters(prior []known, bodySize int) []candidate {
 	var out []candidate
 	for _, c := range s.stripes {
-		known := slices.ContainsFunc(prior, func(x int) bool { return abs(x-(c.g.x0+cell)) <= bodySize })
-		if !known && (c.left < 3 || c.right < 3 || c.left+c.right < 8) || c.left+c.right < 4 {
+		seen := slices.ContainsFunc(prior, func(k known) bool { return abs(k.mid-(c.g.x0+cell)) <= bodySize })
+		if !seen && (c.left < 3 || c.right < 3 || c.left+c.right < 8) || c.left+c.right < 4 {
 			continue
 		}
 		if !slices.ContainsFunc(out, func(o candidate) bool { return clash(&o.g, &c.g, bodySize) }) {

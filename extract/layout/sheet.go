@@ -43,6 +43,7 @@ type sheet struct {
 	lines   []line          // not yet in reading order
 	stripes []candidate     // white stripes that may be gutters, the best first
 	gutters []gutter
+	raster  *raster
 }
 
 // line makes a line of words, which must not be empty.

@@ -162,6 +162,11 @@ func startsUpper(text string) bool {
 // text.
 func (a *arranger) apart(l *line) bool { return l.font >= 0 && l.font != a.font }
 
+// full reports whether a line reaches from edge to edge of its column.
+func (l *line) full() bool {
+	return l.x1 >= l.edge+l.width-2*l.size && l.x0 <= l.edge+l.size/2 && len(l.words) > 2
+}
+
 // short reports whether a line ends well before its column does.
 func (l *line) short() bool { return l.x1 < l.edge+l.width*85/100 }
 
