@@ -4,6 +4,7 @@ import (
 	"unicode"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pdf/engine"
 	"halfspan/extract/pdf/glyphs"
 )
 
@@ -62,6 +63,11 @@ func (p *proof) learn(m *matching, marks []glyphs.Mark) {
 	for i, j := range m.toB {
 		f, w := p.of(marks[i])
 		ours := m.a[i].Text
+		if j >= 0 {
+			if _, code := engine.CodeOnly(m.b[j].Text); code {
+				continue // only one of the two knows what this is
+			}
+		}
 		switch {
 		case j >= 0 && ours == m.b[j].Text:
 			f.codes[marks[i].Code] = true
@@ -124,16 +130,29 @@ func printable(s string) bool {
 	return true
 }
 
-// lend gives the other reading of a page what only ours can know: signs read
-// against a lying font, and what is clipped away.
+// lend gives the other reading of a page what only ours can know: what a code
+// means, signs read against a lying font, and what is clipped away.
 func lend(m *matching) {
 	for i, j := range m.toB {
 		if j < 0 {
 			continue
 		}
-		if m.a[i].Repaired {
-			m.b[j].Text, m.b[j].Repaired = m.a[i].Text, true
+		if _, code := engine.CodeOnly(m.b[j].Text); code || m.a[i].Repaired {
+			m.b[j].Text, m.b[j].Repaired = m.a[i].Text, m.a[i].Repaired
 		}
 		m.b[j].Invisible = m.b[j].Invisible || m.a[i].Invisible
+	}
+}
+
+// settle makes unknown what is only a code. Control codes stay as they are:
+// their use may show what they are.
+func settle(all []paper.Glyph) {
+	for i := range all {
+		if code, ok := engine.CodeOnly(all[i].Text); ok {
+			all[i].Text = string(unicode.ReplacementChar)
+			if code < ' ' {
+				all[i].Text = string(rune(code))
+			}
+		}
 	}
 }

@@ -141,6 +141,7 @@ func (r *reading) page(n int) {
 		if ownErr != nil {
 			r.problem(n, "one-reader", false, fmt.Sprintf("Only one of the two PDF readers can read page %d (%v): its digits were not read twice.", n, ownErr))
 		}
+		settle(theirs.Glyphs)
 		r.keep(theirs, nil)
 		return
 	}
@@ -163,8 +164,9 @@ func (r *reading) withoutEngine(n int, ours *glyphs.Page, err error) {
 // differ in a number the engine's stands, and every such number is a doubt.
 func (r *reading) compare(ours *glyphs.Page, theirs paper.GlyphPage) {
 	m := match(ours.Glyphs, theirs.Glyphs)
-	lend(m)
 	r.proof.learn(m, ours.Marks)
+	lend(m)
+	settle(theirs.Glyphs)
 	differ := m.disputes()
 	n := theirs.Page.Number
 	if len(differ) == 0 {

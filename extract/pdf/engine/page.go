@@ -4,6 +4,7 @@ import (
 	"math"
 	"strings"
 	"unicode/utf16"
+	"unicode/utf8"
 
 	"halfspan/extract/paper"
 	"halfspan/extract/pdf/facename"
@@ -15,6 +16,7 @@ import (
 const maxChars = 400_000
 
 // Page reads one page, 1-based, with its drawn lines and pictures or without.
+// Of some glyphs the library knows no more than the code: see [CodeOnly].
 // A page with more than maxChars characters is cut there and comes back with
 // cut set.
 func (d *Document) Page(number int, drawings bool) (g paper.GlyphPage, cut bool, err error) {
@@ -115,8 +117,8 @@ func (t *textReader) char(i uint64) {
 	}
 }
 
-// whole puts the two halves of a character together, and says of what is only
-// a code of the font, not a character, that it is not known.
+// whole puts the two halves of a character together, and marks what is only a
+// code of the font, not a character.
 func (t *textReader) whole(code rune, i uint64) (rune, bool) {
 	high := t.high
 	t.high = 0
@@ -128,10 +130,24 @@ func (t *textReader) whole(code rune, i uint64) (rune, bool) {
 		return utf16.DecodeRune(high, code), true
 	case code == 0 || code > 0x10FFFF:
 		return '\uFFFD', true
-	case code > ' ' && code < 0x100 && t.r.int("FPDFText_HasUnicodeMapError", t.text, i) == 1:
-		return '\uFFFD', true
+	case code != ' ' && code < 0x100 && t.r.int("FPDFText_HasUnicodeMapError", t.text, i) == 1:
+		return codeOnly + code, true
 	}
 	return code, true
+}
+
+// codeOnly is where the characters begin, behind all that are assigned, by
+// which codes go that mean no character.
+const codeOnly = 0x10F000
+
+// CodeOnly reports whether a glyph's text is only a code of its font, of which
+// the library does not know what it means, and gives the code.
+func CodeOnly(text string) (code byte, ok bool) {
+	r, n := utf8.DecodeRuneInString(text)
+	if r > codeOnly && r < codeOnly+0x100 && n == len(text) {
+		return byte(r - codeOnly), true
+	}
+	return 0, false
 }
 
 // add keeps one character. Several in the same place are the parts of one

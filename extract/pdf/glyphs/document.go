@@ -56,7 +56,7 @@ func Open(content []byte) (d *Document, err error) {
 
 // collect walks the page tree.
 func (d *Document) collect(node lib.Value, above pageNode, depth int) {
-	if depth > maxNesting || len(d.pages) > maxPages {
+	if depth > maxTree || len(d.pages) > maxPages {
 		panic(&Error{What: "the page tree is endless", Err: ErrFuel})
 	}
 	above.v = node

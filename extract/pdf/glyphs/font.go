@@ -101,6 +101,25 @@ func (d *Document) fontAt(key fontKey, load func() lib.Value) *Font {
 	return f
 }
 
+// standIn is the font for text whose own font is missing.
+func (d *Document) standIn() *Font {
+	key := fontKey{name: "stand-in"}
+	f, ok := d.fonts[key]
+	if !ok {
+		f = &Font{Name: "Helvetica", scale: 1}
+		enc := &simpleEncoding{base: "WinAnsiEncoding"}
+		for c := range 256 {
+			g := &glyph{width: 0.5, text: enc.baseText(byte(c)), way: byNothing}
+			if w, ok := standardWidth("Helvetica", enc.widthName(byte(c))); ok {
+				g.width = w / 1000
+			}
+			f.simple[c] = g
+		}
+		d.fonts[key] = f
+	}
+	return f
+}
+
 func (d *Document) readFont(v lib.Value) *Font {
 	full := d.key(v, "BaseFont").Name()
 	f := &Font{Name: facename.Plain(full), scale: 1}

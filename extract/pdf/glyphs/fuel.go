@@ -19,6 +19,7 @@ const (
 	maxOperands   = 512         // before an operator
 	maxNesting    = 32          // arrays and dictionaries inside each other
 	maxPages      = 20_000
+	maxTree       = 500 // nodes of the page tree above a page
 	maxRules      = 20_000
 )
 

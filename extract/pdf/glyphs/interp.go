@@ -42,7 +42,8 @@ type form struct {
 type interpreter struct {
 	doc   *Document
 	page  *Page
-	res   *dict
+	home  *dict // the page's resources
+	res   *dict // the present ones
 	fonts *dict // of res
 	xobj  *dict
 
@@ -76,10 +77,37 @@ func (in *interpreter) finish() { in.actual.flush(in.page) }
 // use makes res the present resources and gives a function that goes back.
 func (in *interpreter) use(res *dict) (back func()) {
 	old, fonts, xobj := in.res, in.fonts, in.xobj
+	if in.home == nil {
+		in.home = res
+	}
 	in.res = res
 	in.fonts = in.doc.resources(res.key("Font"))
 	in.xobj = in.doc.resources(res.key("XObject"))
 	return func() { in.res, in.fonts, in.xobj = old, fonts, xobj }
+}
+
+// resource looks up a named resource: the present ones first, then the page's,
+// as viewers do.
+func (in *interpreter) resource(kind, name string) lib.Value {
+	v := in.doc.key(in.res.key(kind), name)
+	if v.IsNull() && in.home != in.res {
+		v = in.doc.key(in.home.key(kind), name)
+	}
+	return v
+}
+
+// fontNamed gives a font of the resources. Text in a font that is not there is
+// printed all the same, in a standard one.
+func (in *interpreter) fontNamed(name string) *Font {
+	if f := in.doc.fontNamed(in.fonts, name); f != nil {
+		return f
+	}
+	if in.home != in.res {
+		if f := in.doc.fontNamed(in.doc.resources(in.home.key("Font")), name); f != nil {
+			return f
+		}
+	}
+	return in.doc.standIn()
 }
 
 // run runs a content stream.
@@ -307,7 +335,7 @@ func (in *interpreter) extState(args []operand) {
 	if len(args) == 0 || args[len(args)-1].kind != tokName {
 		return
 	}
-	gs := in.doc.key(in.res.key("ExtGState"), string(args[len(args)-1].b))
+	gs := in.resource("ExtGState", string(args[len(args)-1].b))
 	if gs.Kind() != lib.Dict {
 		return
 	}
@@ -320,6 +348,9 @@ func (in *interpreter) extState(args []operand) {
 // xobject shows a form or an image.
 func (in *interpreter) xobject(name string) {
 	f := in.doc.form(in.xobj, name)
+	if f == nil && in.home != in.res {
+		f = in.doc.form(in.doc.resources(in.home.key("XObject")), name)
+	}
 	if f == nil {
 		return
 	}

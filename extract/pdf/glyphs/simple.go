@@ -209,6 +209,9 @@ func (d *Document) readType3(f *Font, v lib.Value) {
 	for c := range 256 {
 		g := &glyph{}
 		g.text, g.way, g.repaired = f.text(uint32(c), enc.name(byte(c)), "")
+		if t := codeName(enc.name(byte(c)), uint32(c)); t != "" && !sane(f.toText[uint32(c)]) {
+			g.text, g.way = t, byName
+		}
 		g.way |= ofType3
 		if i := c - first; i >= 0 && i < widths.Len() {
 			g.width = d.number(widths, i) * sx

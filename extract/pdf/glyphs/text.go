@@ -18,7 +18,7 @@ func (in *interpreter) textOperator(op []byte, args []operand, n []float64) bool
 	case "ET":
 	case "Tf":
 		if len(args) >= 2 && args[len(args)-2].kind == tokName && nums(args, n[:1]) {
-			in.font, in.size = in.doc.fontNamed(in.fonts, string(args[len(args)-2].b)), n[0]
+			in.font, in.size = in.fontNamed(string(args[len(args)-2].b)), n[0]
 		}
 	case "Tm":
 		if nums(args, n[:6]) {
@@ -232,7 +232,7 @@ func (in *interpreter) beginMarked(args []operand) {
 			}
 		}
 	case tokName:
-		if v := in.doc.key(in.doc.key(in.res.key("Properties"), string(props.b)), "ActualText"); v.Kind() == lib.String {
+		if v := in.doc.key(in.resource("Properties", string(props.b)), "ActualText"); v.Kind() == lib.String {
 			in.actual.begin(in.page, textString([]byte(v.RawString())), true)
 			return
 		}
