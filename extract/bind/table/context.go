@@ -2,7 +2,7 @@ package table
 
 import (
 	"fmt"
-	"regexp"
+	"halfspan/extract/pattern"
 	"strconv"
 	"strings"
 
@@ -42,7 +42,7 @@ type part struct {
 	kind partKind
 }
 
-var armWord = regexp.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard (?:care|treatment|therapy)|intervention|treatment|experimental|vehicle|wait(?:ing)?[- ]?list|arms?|groups?|comparator|active|exposed|unexposed|treated|untreated|cases)\b`)
+var armWord = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard (?:care|treatment|therapy)|intervention|treatment|experimental|vehicle|wait(?:ing)?[- ]?list|arms?|groups?|comparator|active|exposed|unexposed|treated|untreated|cases)\b`)
 
 // partOf classifies one heading or label.
 func (f *frame) partOf(l label) part {
@@ -58,7 +58,7 @@ func (f *frame) partOf(l label) part {
 		}
 	case isUnit(p.name) && len(p.name) > 1 && !strings.Contains(p.name, " "):
 		p.kind, p.name = partEmpty, "" // a unit alone names no group
-	case isPHeading(low) || isCountHeading(low):
+	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
 		p.kind, p.name = partEmpty, ""
 	case isContrast(low) || compares(l.text) && !f.isArm(low):
 		p.kind = partContrast
@@ -126,12 +126,26 @@ func (f *frame) rowPart(l label) part {
 	return p
 }
 
+// overValues reports that estimates with spreads stand under a heading, so that
+// "Men" names a group and no number of men.
+func (f *frame) overValues(l label) bool {
+	if l.cell == nil || l.cell.Row >= f.head {
+		return false
+	}
+	for c := max(l.cell.Col, f.stub); c < min(l.cell.Col+l.cell.ColSpan, f.tab.Cols); c++ {
+		if f.anySpread(c) {
+			return true
+		}
+	}
+	return false
+}
+
 // hasArmShape keeps "All (n = 57)" apart: names with an n are arms.
 func hasArmShape(s string) bool { return len(s) < 120 }
 
 var (
-	spaceBracket = regexp.MustCompile(`\(\s*\)|\[\s*\]`)
-	loneMark     = regexp.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
+	spaceBracket = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
+	loneMark     = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
 	edge         = " ,;:-–—/.±"
 )
 
@@ -189,7 +203,7 @@ func unbalanced(s string) string {
 	return strings.Trim(s, edge)
 }
 
-var contrastWord = regexp.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
+var contrastWord = pattern.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
 
 func isContrast(low string) bool { return contrastWord.MatchString(low) }
 
@@ -202,7 +216,7 @@ func (f *frame) isArm(low string) bool {
 	return armWord.MatchString(low) && len(words(low)) <= 6 && unitIn(low) == "" && !outcomeWord.MatchString(low)
 }
 
-var outcomeWord = regexp.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
+var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
 
 // axes settles which of rows and columns name the arms.
 func (f *frame) findAxes() {
@@ -491,13 +505,19 @@ func (f *frame) armNames() []string {
 var generic = map[string]bool{"treatment group": true, "treatment groups": true, "study group": true, "study groups": true, "group": true, "groups": true, "treatment": true,
 	"between groups": true, "group assignment": true, "treatment arm": true, "arm": true, "arms": true, "study arm": true, "intervention groups": true, "randomised group": true, "randomized group": true, "allocation": true, "treatment allocation": true, "treatments": true}
 
+// general reports a heading over several columns that only says that arms
+// stand below it.
+func (f *frame) general(p part) bool {
+	return generic[fold(p.name)] && (p.l.cell == nil || p.l.cell.ColSpan > 1 || p.l.cell.Col < f.stub)
+}
+
 // armOfColumn joins the headings over a column that name its arm.
 func (f *frame) armOfColumn(r, c int) string {
 	var names, known []string
 	for _, l := range f.path(r, c) {
 		p := f.partOf(l)
 		if p.kind == partArm || p.kind == partOther {
-			if generic[fold(p.name)] {
+			if f.general(p) {
 				continue
 			}
 			names = append(names, p.name)
@@ -555,7 +575,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
 			}
 		case partArm, partOther:
-			if generic[fold(p.name)] {
+			if f.general(p) {
 				continue
 			}
 			if (f.armRows || f.outcomeCols) && len(times) > 0 && !hasLetter(p.name) {
@@ -609,7 +629,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 var generalTime = map[string]bool{"time": true, "times": true, "time point": true, "time points": true, "timepoint": true, "timepoints": true, "stage": true, "stages": true,
 	"visit": true, "visits": true, "period": true, "periods": true, "phase": true, "assessment": true, "assessments": true, "assessment period": true, "measurement": true, "measurements": true}
 
-var onlyArmWord = regexp.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
+var onlyArmWord = pattern.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
 
 // spannedBy reports that the arm's heading is a general word over columns with
 // names of their own: "Intervention" over three regimens.
@@ -751,11 +771,11 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	x.subgroup = joinPath(subs, ", ")
 }
 
-var subgroupName = regexp.MustCompile(`(?i)^(?:all|total|overall|males?|females?|men|women|boys?|girls?|yes|no|low|medium|moderate|high|easy|difficult|insufficient|good|poor|normal|overweight|obese|underweight|single|married|present|absent|combined|[<>≤≥]?\s*\d+(?:\.\d+)?\s*(?:[-–]\s*\d+(?:\.\d+)?)?(?:\s*(?:years?|yrs?|y))?(?:\s*or (?:more|less|older|younger))?)$`)
+var subgroupName = pattern.MustCompile(`(?i)^(?:all|total|overall|males?|females?|men|women|boys?|girls?|yes|no|low|medium|moderate|high|easy|difficult|insufficient|good|poor|normal|overweight|obese|underweight|single|married|present|absent|combined|[<>≤≥]?\s*\d+(?:\.\d+)?\s*(?:[-–]\s*\d+(?:\.\d+)?)?(?:\s*(?:years?|yrs?|y))?(?:\s*or (?:more|less|older|younger))?)$`)
 
 func (f *frame) subgroupLike(name string) bool { return subgroupName.MatchString(name) }
 
-var baselineCaption = regexp.MustCompile(`(?i)\bbaseline\b|\bdemographics?\b|\bcharacteristics of\b|\b(?:patient|participant|subject|clinical|sociodemographic|demographic|general)s?['’]? characteristics\b`)
+var baselineCaption = pattern.MustCompile(`(?i)\bbaseline\b|\bdemographics?\b|\bcharacteristics of\b|\b(?:patient|participant|subject|clinical|sociodemographic|demographic|general)s?['’]? characteristics\b`)
 
 // captionContext fills in from the caption what rows and columns leave open.
 func (f *frame) captionContext(e *estimate, x *context) {
@@ -807,9 +827,9 @@ func (f *frame) someChange() bool {
 }
 
 var (
-	captionArm    = regexp.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
-	changeCaption = regexp.MustCompile(`(?i)\bchanges? (?:in|of)\b`)
-	scoreCaption  = regexp.MustCompile(`(?i)\bmeans?\s*(?:\((?:sd|se|sem|95% ci)\)|± ?(?:sd|sem?))\s*(?:changes?|reductions?)\b|\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
+	captionArm    = pattern.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
+	changeCaption = pattern.MustCompile(`(?i)\bchanges? (?:in|of)\b`)
+	scoreCaption  = pattern.MustCompile(`(?i)\bmeans?\s*(?:\((?:sd|se|sem|95% ci)\)|± ?(?:sd|sem?))\s*(?:changes?|reductions?)\b|\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
 )
 
 func captionOutcome(s string) string {
@@ -830,7 +850,7 @@ func timeIn(s string) string {
 	return ts[0]
 }
 
-var pointInTime = regexp.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
+var pointInTime = pattern.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
 
 // rowTime finds a time point in a row label that also names an outcome. A
 // period that belongs to the outcome ("pain in the previous 7 days", "costs in
@@ -841,7 +861,7 @@ func rowTime(s string) string {
 	}
 	for _, t := range timesIn(s) {
 		k := strings.Index(fold(s), fold(t))
-		if k < 0 || recall.MatchString(fold(s)[:k]) || fold(t) == "endpoint" {
+		if k < 0 || recall.MatchString(fold(s)[:k]) {
 			continue
 		}
 		return t
@@ -849,16 +869,21 @@ func rowTime(s string) string {
 	return ""
 }
 
-var recall = regexp.MustCompile(`(?:previous|last|past|prior|preceding|within|during the|per|in|first|every|over)\s*$`)
+var recall = pattern.MustCompile(`(?:previous|last|past|prior|preceding|within|during the|per|in|first|every|over)\s*$`)
 
 func timesIn(s string) []string {
 	var out []string
 	seen := map[string]bool{}
-	for _, m := range timeMark.FindAllString(clean(s), -1) {
+	text := clean(s)
+	for _, at := range timeMark.FindAllStringIndex(text, -1) {
+		m := text[at[0]:at[1]]
+		if ageBefore.MatchString(text[:at[0]]) {
+			continue
+		}
 		low := fold(m)
 		if !hasDigit(low) {
 			switch low {
-			case "baseline", "screening", "follow-up", "followup", "endpoint", "discharge", "admission":
+			case "baseline", "screening", "follow-up", "followup", "discharge", "admission":
 			default:
 				if !strings.HasPrefix(low, "end of") && !strings.HasPrefix(low, "pre") && !strings.HasPrefix(low, "post") || len(low) < 6 {
 					continue
@@ -875,9 +900,11 @@ func timesIn(s string) []string {
 	return out
 }
 
-var longUnit = regexp.MustCompile(`week|wk|month|mo\b|day|year|hour|visit|session|cycle|minute|\bmin\b|period|phase|wave|trimester|quarter`)
+var ageBefore = pattern.MustCompile(`(?i)(?:\bage[ds]?(?: group)?[^.;,]{0,12}|[<>≤≥]\s*|\bolder than |\byounger than )$`)
 
-var leadTime = regexp.MustCompile(`(?i)^(?:at|after|by|from|in|within|until|on|for|to) (?:the )?`)
+var longUnit = pattern.MustCompile(`week|wk|month|mo\b|day|year|hour|visit|session|cycle|minute|\bmin\b|period|phase|wave|trimester|quarter`)
+
+var leadTime = pattern.MustCompile(`(?i)^(?:at|after|by|from|in|within|until|on|for|to) (?:the )?`)
 
 // tidyTime gives a time heading in one form: without statistics, n's and
 // leading prepositions that vary.

@@ -1,11 +1,11 @@
 package table
 
 import (
-	"regexp"
+	"halfspan/extract/pattern"
 	"strings"
 )
 
-var vsForm = regexp.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] )\s*(.+)$`)
+var vsForm = pattern.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] )\s*(.+)$`)
 
 // parseVs splits "A vs B", "A minus B", "A − B" into its arms.
 func parseVs(s string) []string {
@@ -53,9 +53,9 @@ func (f *frame) parseContrast(l label, x *context) {
 }
 
 var (
-	minusNote = regexp.MustCompile(`(?i)\b(?:differences?|estimates?|effects?)\b[^.;]{0,40}?\b(?:is|are|was|were|=|calculated as|defined as|as)\s+(?:the )?([\w+/ -]{2,40}?)\s+(?:minus|versus|vs\.?|compared with|[-–−])\s+(?:the )?([\w+/ -]{2,40}?)(?:[.,;)]|$)`)
-	controls  = regexp.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard care|vehicle|wait(?:ing)?[- ]?list|no (?:treatment|intervention)|natural course|comparator|saline|water)\b`)
-	overOne   = regexp.MustCompile(`(?i)\b(?:over|versus|vs\.?|minus|compared (?:with|to)|relative to|against)\s+(?:the )?(placebo|controls?|sham|usual care|vehicle|[A-Z][\w-]*)\b`)
+	minusNote = pattern.MustCompile(`(?i)\b(?:differences?|estimates?|effects?)\b[^.;]{0,40}?\b(?:is|are|was|were|=|calculated as|defined as|as)\s+(?:the )?([\w+/ -]{2,40}?)\s+(?:minus|versus|vs\.?|compared with|[-–−])\s+(?:the )?([\w+/ -]{2,40}?)(?:[.,;)]|$)`)
+	controls  = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard care|vehicle|wait(?:ing)?[- ]?list|no (?:treatment|intervention)|natural course|comparator|saline|water)\b`)
+	overOne   = pattern.MustCompile(`(?i)\b(?:over|versus|vs\.?|minus|compared (?:with|to)|relative to|against)\s+(?:the )?(placebo|controls?|sham|usual care|vehicle|[A-Z][\w-]*)\b`)
 )
 
 // contrastArms fills in the arms of a difference that its heading leaves open:

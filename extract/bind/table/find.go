@@ -7,6 +7,7 @@ import (
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -110,6 +111,9 @@ func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, al
 	if rd.count || rd.none || e.value.Value == "" || e.value.Rel != "" || sp.shape == shapeBracket && sp.value.Rel != "" {
 		return result.Result{}, false
 	}
+	if rd.given == result.Unstated && sp.shape == shapeSign && f.visitWindow(e, sp) {
+		return result.Result{}, false
+	}
 	r := result.Result{Section: b.blocks[i].Section, Zone: b.blocks[i].Zone, Table: tableName(f), Row: f.rowKey(e), Estimate: e.value.Value}
 	if !b.settleSpread(&r, f, e, sp, &rd, all, x) {
 		return result.Result{}, false
@@ -127,6 +131,26 @@ func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, al
 	f.rowTests(&r, e)
 	b.check(&r, f, e, sp, x)
 	return r, true
+}
+
+var visitLabel = pattern.MustCompile(`(?i)^(?:study )?(?:weeks?|days?|months?|visits?|time)\b|\bwindow\b|[(]\s*±`)
+
+// visitWindow reports a planned visit with its window: "12 (±4)" in a row of
+// weeks.
+func (f *frame) visitWindow(e *estimate, sp *spread) bool {
+	if !isWhole(e.value.Value) || !isWhole(sp.value.Value) {
+		return false
+	}
+	ls := append([]label{}, f.lines[e.row].labels...)
+	for c := 0; c < f.stub; c++ {
+		ls = append(ls, f.heads[c]...)
+	}
+	for _, l := range append(ls, f.path(e.row, e.col)...) {
+		if visitLabel.MatchString(l.text) {
+			return true
+		}
+	}
+	return false
 }
 
 func tableName(f *frame) string {

@@ -72,6 +72,8 @@ func kindOfPairs(p *phrase) roleKind {
 		return roleSpread // "95% CI of the hazard ratio"
 	case both > 0:
 		return roleBoth
+	case spr > 0 && est == 0 && len(p.rest) > 0 && p.bracketed():
+		return roleBoth // "Mass (SD)"
 	case spr > 0 && est == 0:
 		return roleSpread
 	case spr > 0:
@@ -88,6 +90,20 @@ func kindOfPairs(p *phrase) roleKind {
 	return roleNone
 }
 
+// bracketed reports that the first spread of a heading stands in brackets.
+func (p *phrase) bracketed() bool {
+	for _, q := range p.pairs {
+		if q.Spread != "" {
+			k := q.SpreadAt.Start
+			for k > 0 && (q.text[k-1] == ' ' || q.text[k-1] >= '0' && q.text[k-1] <= '9' || q.text[k-1] == '%') {
+				k--
+			}
+			return k > 0 && (q.text[k-1] == '(' || q.text[k-1] == '[')
+		}
+	}
+	return false
+}
+
 // columnRole gives the role of column c at row r, from the lowest heading that
 // announces one.
 func (f *frame) columnRole(r, c int) role {
@@ -95,6 +111,9 @@ func (f *frame) columnRole(r, c int) role {
 	for k := len(path) - 1; k >= 0; k-- {
 		p := readPhrase(path[k].text)
 		if role := roleOf(path[k], &p); role.kind != roleNone {
+			if role.kind == roleN && f.anySpread(c) {
+				continue
+			}
 			if k < len(path)-1 && (role.kind == roleP || role.kind == roleN || role.kind == roleTest || role.kind == roleBound) && path[len(path)-1].text != "" && !p.onlyTerms && role.kind != roleP {
 				continue
 			}
@@ -166,7 +185,7 @@ var (
 		`|baseline|screening|enrol?lment|randomi[sz]ation|admission|discharge|follow-?up|end ?point|endline|midline|study end|washout|run-in|` +
 		`pre-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy)|post-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy|trial)|` +
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
-		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))` +
+		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))\b` +
 		`)`)
 	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
@@ -174,7 +193,7 @@ var (
 // isTimeHeading reports that a folded heading names a time or a period and
 // little else.
 func isTimeHeading(low string) bool {
-	if len(words(low)) == 0 || len(low) > 80 {
+	if len(words(low)) == 0 || len(low) > 80 || ageWord.MatchString(low) {
 		return false
 	}
 	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" {
@@ -202,6 +221,8 @@ func isTimeHeading(low string) bool {
 	}
 	return left == 0 || left == 1 && len(t) > 0 && len(words(low)) >= 3 && strings.ContainsAny(low, "0123456789")
 }
+
+var ageWord = pattern.MustCompile(`\bage[ds]?\b`)
 
 // phaseWord begins headings of the time before, during or after something.
 var phaseWord = map[string]bool{"pre": true, "post": true, "before": true, "after": true, "during": true, "preoperative": true, "postoperative": true, "pretreatment": true, "posttreatment": true, "pretest": true, "posttest": true}

@@ -45,6 +45,11 @@ func (f *frame) findLines() {
 		ln := &f.lines[r]
 		own := f.ownLabels(r)
 		ln.kind = f.kindOf(r, own)
+		if lastData >= 0 && f.spreadsUnder(r, lastData, own) {
+			f.joinLabel(lastData, own[0])
+			ln.kind, ln.above, ln.labels = lineContinue, lastData, f.lines[lastData].labels
+			continue
+		}
 		if lastData >= 0 && f.wraps(r, lastData, own) {
 			f.joinLabel(lastData, own[0])
 			ln.kind = lineNone
@@ -83,6 +88,36 @@ func (f *frame) findLines() {
 		}
 	}
 	f.nest()
+}
+
+// spreadsUnder reports that row r prints, under a label that goes on with the
+// one above, only the spreads of the row above: "Flight time," over "12.4",
+// "min" over "(11.8 to 13.0)".
+func (f *frame) spreadsUnder(r, above int, own []label) bool {
+	if above != r-1 || len(own) != 1 || len(f.lines[above].labels) == 0 {
+		return false
+	}
+	first := []rune(own[0].text)
+	if len(first) == 0 || !unicode.IsLower(first[0]) {
+		return false
+	}
+	found := 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		cell := f.cellAt(r, c)
+		if cell == nil || isBlankText(cell.Text.S) || f.pColumn(c) {
+			continue
+		}
+		up := f.cellAt(above, c)
+		vs := f.reads[cell].cell.Values
+		if len(vs) != 1 || !vs[0].Estimate.IsZero() || up == nil {
+			return false
+		}
+		if us := f.reads[up].cell.Values; len(us) != 1 || len(us[0].Parts) > 0 || us[0].Estimate.IsZero() {
+			return false
+		}
+		found++
+	}
+	return found > 0
 }
 
 // wraps reports that row r only goes on with the label of the row above, beside

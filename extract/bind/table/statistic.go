@@ -29,6 +29,15 @@ func (f *frame) statisticOf(e *estimate, rd *reading, x *context, all []statemen
 	}
 	if st == "" {
 		st, assumed = usual(rd.given), true
+		switch {
+		case (rd.given == result.CI || rd.given == result.SE) && regression.MatchString(f.tab.Caption.S):
+			st = result.Coefficient
+		case rd.given == result.CI && e.value.Percent:
+			st = result.Proportion
+		}
+	}
+	if st == result.Ratio && rd.given != result.CI && rd.given != result.SE && rd.given != result.Unstated {
+		st, measure = usual(rd.given), "" // HR is a heart rate here
 	}
 	return f.refine(st, measure, e, rd, x, all), measure, model, assumed
 }
@@ -120,6 +129,8 @@ func weight(s string) int {
 	}
 	return 2
 }
+
+var regression = pattern.MustCompile(`(?i)\bregression\b|\bmultivaria(?:te|ble) analys|\bunivaria(?:te|ble) analys|\bcoefficients?\b`)
 
 func usual(g result.GivenAs) result.Statistic {
 	switch g {

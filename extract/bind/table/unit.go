@@ -34,7 +34,10 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		x.unit, x.unitAt = "%", label{text: "%", raw: "%", cell: e.cell}
 		return
 	}
-	for _, l := range ls {
+	for i, l := range ls {
+		if i >= len(ls)-len(path) && f.colArms && !unitBracket.MatchString(l.text) {
+			continue // "Drug 100 mg": a dose
+		}
 		if u := unitIn(l.text); u != "" {
 			x.unit, x.unitAt = u, l
 			return
