@@ -19,6 +19,7 @@ type arm struct {
 	name  string   // as first printed
 	key   []string // its content words, lower case, in order
 	seen  int      // how often it was named
+	group bool     // it was named as a group or arm, or in a table's heading
 	sizes []size   // every n printed right behind its name
 }
 
@@ -94,6 +95,9 @@ func (f *finder) learnSizes(b *paper.Block) {
 	}
 	for i, k := range at {
 		it := &r.Items[k]
+		if lost.MatchString(around(b.Text.S, it.Start)) {
+			continue // who left, not who took part
+		}
 		paired := i > 0 && it.Start-r.Items[at[i-1]].End < pairedWithin || i+1 < len(at) && r.Items[at[i+1]].Start-it.End < pairedWithin
 		if paired {
 			f.addArm(nameBefore(b.Text.S[:r.Brackets[it.Bracket-1].Start]), it, &b.Text, "elsewhere in the text")
@@ -158,7 +162,7 @@ func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from s
 		return
 	}
 	for _, w := range key {
-		if timeUnits[w] || w == "baseline" || w == "week" || w == "follow" || w == "percent" || w == "total" || w == "post" {
+		if timeUnits[w] || w == "baseline" || w == "week" || w == "follow" || w == "percent" || unitWords[w] || w == "total" || w == "post" {
 			return
 		}
 	}
@@ -175,9 +179,11 @@ func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from s
 	a := &f.cast.arms[i]
 	a.seen++
 	if n == nil {
+		a.group = true
 		return
 	}
-	if v, err := strconv.Atoi(n.Value.Value); err == nil && v > 1 {
+	a.group = a.group || from == fromHeading
+	if v, err := strconv.Atoi(n.Value.Value); err == nil && v > 3 {
 		a.sizes = append(a.sizes, size{n: v, at: n.Span, text: run.S[n.Start:n.End], run: run, from: from})
 	}
 }
@@ -196,6 +202,14 @@ func (a *arm) sizeOf(baseline bool) (size, bool) {
 		return text, true
 	}
 	return size{}, false
+}
+
+// lost are the words of sentences that count who left.
+var lost = pattern.MustCompile(`(?i)\b(?:drop-?outs?|dropped out|withdr[ae]w\w*|lost to|excluded|exclusion|discontinu\w+|died|deaths?|refus\w+|declined|adverse|missing)\b`)
+
+// around is the stretch of 200 bytes round a byte.
+func around(s string, at int) string {
+	return strings.ToValidUTF8(s[max(0, at-100):min(len(s), at+100)], "")
 }
 
 func hasHeads(sizes []size) bool {
@@ -337,8 +351,11 @@ func (p *para) named(i int, a *arm) (int, bool) {
 	if k < len(toks) && (weakName[toks[k].Value]) {
 		return k + 1, true
 	}
-	if len(a.key) > 1 || len(a.sizes) > 0 {
+	if len(a.key) > 1 || len(a.sizes) > 0 && a.group {
 		return k, true
+	}
+	if k+1 < len(toks) && toks[k].Kind == grammar.TokOpen && toks[k+1].Value == "n" {
+		return k, true // "syrup (n = 42)"
 	}
 	printed := p.s[toks[i].Start:toks[i].End]
 	return k, strings.ToUpper(printed) == printed && len(printed) > 1

@@ -4,6 +4,7 @@ import (
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
@@ -58,7 +59,7 @@ func (p *para) setArm(r *result.Result, field string, m mention) {
 				r.NFrom, r.NKind = result.NBeside, result.NUnclear
 			}
 			p.source(r, name, s.at)
-		} else if s, ok := p.f.cast.sized(m.arm, r.Evidence.Baseline); ok && sizeTold(r) {
+		} else if s, ok := p.f.cast.sized(m.arm, r.Evidence.Baseline); ok && sizeTold(r) && p.wholeArm(m) {
 			p.elsewhere(r, name, n, s)
 		}
 	}
@@ -78,6 +79,16 @@ func sizeTold(r *result.Result) bool {
 		return !r.Evidence.Quoted
 	}
 	return false
+}
+
+var part = pattern.MustCompile(`(?i)\b(?:drop-?outs?|adherers|completers|survivors|non-?survivors|(?:non-?)?responders|subgroups?|subset|smokers|males?|females?|of whom|per[- ]protocol|stratum|strata)\b`)
+
+// wholeArm reports that the sentence speaks of a whole arm and gives no count of
+// its own, so that the arm's size stated elsewhere may stand for it.
+func (p *para) wholeArm(m mention) bool {
+	from, to := p.sentence(m.start)
+	s := p.s[from:to]
+	return p.block.Zone != paper.Methods && !part.MatchString(s) && !counted.MatchString(s)
 }
 
 // behindName reads the n printed right behind an arm's name: "Syrup (n = 42)".
@@ -131,9 +142,12 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 	}
 	best, ok := mention{}, false
 	for _, m := range all {
-		if m.end <= c.est.Start && m.start >= previous && !(previous > from && p.claimed(m, previous)) {
+		if m.end <= c.est.Start && m.start >= previous && !(previous > from && p.claimed(m, previous)) && !p.shut(m.start, c.est.Start) {
 			best, ok = m, true
 		}
+	}
+	if ok && best.arm == all[0].arm && contrast.MatchString(p.s[max(from, best.start-30):best.start]) {
+		return mention{}, false // "lower than in the water group (12.4 vs 11.1)": the other arm has no name here
 	}
 	if ok {
 		return best, true
@@ -147,6 +161,16 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
 	}
 	return all[0], all[0].start < c.est.Start
+}
+
+// shut reports that byte a stands in a bracket that is closed before byte b.
+func (p *para) shut(a, b int) bool {
+	for _, br := range p.r.Brackets {
+		if br.Start < a && a < br.End && br.End <= b {
+			return true
+		}
+	}
+	return false
 }
 
 // claimed reports that arm m belongs to the result that ends at byte end: it

@@ -35,7 +35,7 @@ func (p *para) beside(c *cand) (size, bool) {
 		return s, true
 	}
 	it := &p.r.Items[c.item]
-	var only *grammar.Item
+	var only, same *grammar.Item
 	count := 0
 	from, to := p.sentence(it.Start)
 	for k := range p.r.Items {
@@ -44,13 +44,22 @@ func (p *para) beside(c *cand) (size, bool) {
 			continue
 		}
 		if it.Bracket > 0 && e.Bracket == it.Bracket {
-			return p.sized(e)
+			if same == nil || e.Start < it.Start { // of several the nearest before
+				same = e
+			}
+			continue
 		}
 		if e.Start > it.End && e.Start-it.End < 8 {
 			return p.sized(e)
 		}
 		count++
 		only = e
+	}
+	if same != nil {
+		return p.sized(same)
+	}
+	if c.meaning.Spread == grammar.SpreadCI && p.statistic(c).statistic == result.Ratio {
+		return size{}, false // a ratio's n is seldom the one count of its sentence
 	}
 	if p.alone(from, to) && count == 1 && only.Start < it.Start && it.Start-only.End < 80 {
 		return p.sized(only)
@@ -70,7 +79,7 @@ func (p *para) wholeGroup(c *cand) (size, bool) {
 		return size{}, false
 	}
 	s, ok := p.countedIn(from, c.est.Start)
-	if !ok || c.est.Start-s.at.End > near || strings.ContainsAny(p.s[s.at.End:c.est.Start], ";") {
+	if !ok || s.at.End > c.est.Start || p.statistic(c).statistic == result.Ratio || c.est.Start-s.at.End > near || strings.ContainsAny(p.s[s.at.End:c.est.Start], ";") {
 		return size{}, false
 	}
 	return s, true
