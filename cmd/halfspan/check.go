@@ -82,7 +82,7 @@ func check(ctx context.Context, s *streams, args []string, flags *ledgerFlags, f
 		return nil
 	}
 	session := review.Session{
-		Book: book, In: keys, Out: s.out, Width: min(terminalWidth(s.out), 100), Order: order, Explain: explainFlag,
+		Book: book, In: keys, Out: s.out, Width: min(terminalWidth(s.out), 100), Order: order,
 		Colour: isTerminal(s.out) && os.Getenv("NO_COLOR") == "" && os.Getenv("TERM") != "dumb",
 	}
 	return session.Run(rows)
@@ -115,11 +115,14 @@ func (k *keys) Key() (rune, error) {
 		}
 	}
 	for {
-		r, _, err := k.in.ReadRune()
+		r, err := until(k.ctx, func() (rune, error) {
+			r, _, err := k.in.ReadRune()
+			return r, err
+		})
 		switch {
 		case err != nil:
 			return 0, err
-		case k.ctx.Err() != nil, r == 0x03, r == 0x04: // Ctrl-C, Ctrl-D
+		case r == 0x03, r == 0x04: // Ctrl-C, Ctrl-D
 			return 0, io.EOF
 		case r > ' ':
 			k.keyed = k.terminal == nil
@@ -131,9 +134,10 @@ func (k *keys) Key() (rune, error) {
 // Line asks for a line of text.
 func (k *keys) Line(prompt string) (string, error) {
 	fmt.Fprint(k.out, prompt)
-	line, err := k.in.ReadString('\n')
+	read := func() (string, error) { return k.in.ReadString('\n') }
+	line, err := until(k.ctx, read)
 	if k.keyed && err == nil && strings.TrimRight(line, "\r\n") == "" {
-		line, err = k.in.ReadString('\n')
+		line, err = until(k.ctx, read)
 	}
 	k.keyed = false
 	if errors.Is(err, io.EOF) && line != "" {
@@ -143,4 +147,25 @@ func (k *keys) Line(prompt string) (string, error) {
 		fmt.Fprintln(k.out, strings.TrimRight(line, "\r\n"))
 	}
 	return strings.TrimRight(line, "\r\n"), err
+}
+
+// until waits for a read, or for ctx to end, which counts as the end of the
+// input: a read from a terminal cannot be called off, so it is left behind.
+func until[T any](ctx context.Context, read func() (T, error)) (T, error) {
+	type outcome struct {
+		value T
+		err   error
+	}
+	done := make(chan outcome, 1)
+	go func() {
+		v, err := read()
+		done <- outcome{v, err}
+	}()
+	select {
+	case o := <-done:
+		return o.value, o.err
+	case <-ctx.Done():
+		var none T
+		return none, io.EOF
+	}
 }

@@ -1,6 +1,7 @@
 package review
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"strings"
@@ -8,18 +9,15 @@ import (
 	"github.com/mattn/go-runewidth"
 
 	"halfspan/convert/working"
+	"halfspan/extract/result"
 	"halfspan/report/ledger"
 )
-
-// Explain says what a flag means and what to do about it.
-type Explain func(flag string) string
 
 // card writes everything there is to know about one result.
 type card struct {
 	w       io.Writer
 	width   int
 	colour  bool
-	explain Explain
 }
 
 const labelWidth = 11
@@ -34,19 +32,23 @@ func (c *card) show(r *ledger.Row) {
 	c.fields(&r.Current().Working.Record)
 	c.working(&r.Current().Working)
 	for _, f := range r.Working.Flags {
-		text := f.Name
-		if f.Detail != "" {
-			text += ": " + f.Detail
-		}
-		if c.explain != nil {
-			if meaning := c.explain(f.Name); meaning != "" && meaning != f.Detail {
-				text += " (" + meaning + ")"
-			}
-		}
-		c.labelled("flag", text)
+		c.labelled("flag", flagWords(f))
 	}
 	c.labelled("reading", record.Reading)
 	c.decision(r)
+}
+
+// flagWords says what a flag means here, and what to do about it.
+func flagWords(f result.Flag) string {
+	info, _ := working.ExplainFlag(f.Name)
+	text := f.Name
+	if about := cmp.Or(f.Detail, info.Meaning); about != "" {
+		text += ": " + about
+	}
+	if info.Do != "" {
+		text += "; " + info.Do
+	}
+	return text
 }
 
 // whereabouts says where a result stands: "hives.txt, page 4, Table 2, Results".

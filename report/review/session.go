@@ -28,7 +28,6 @@ type Session struct {
 	Out     io.Writer
 	Width   int
 	Colour  bool
-	Explain Explain // what a flag means; may be nil
 	Order   string  // one of [Orders]
 
 	rows  []ledger.Row
@@ -107,7 +106,7 @@ func (s *Session) step() error {
 	if shown := row.ID() + row.Token(); shown != s.shown {
 		s.shown = shown
 		fmt.Fprintf(s.Out, "\n%d of %d  %s\n", s.at+1, len(s.rows), row.ID())
-		c := card{s.Out, s.Width, s.Colour, s.Explain}
+		c := card{s.Out, s.Width, s.Colour}
 		c.show(row)
 	}
 	for {
