@@ -98,12 +98,12 @@ func (s *sheet) labelAt(i, end int) (label, bool) {
 	if trimmed != num {
 		l.score += 2
 	}
-	l.n, l.text = k-i, "Table "+trimmed
-	l.alone = k >= end
 	if k < end && (s.toks[k].text == "|" || s.toks[k].text == ":" || s.toks[k].text == ".") {
-		l.n++
+		k++
 		l.score += 2
 	}
+	l.n, l.text = k-i, "Table "+trimmed
+	l.alone = k >= end
 	return l, true
 }
 

@@ -151,7 +151,22 @@ func (rd *reader) joins(cur, unit []int, pitch int, ruled bool) bool {
 	case !dataUp:
 		return unfinished || !deeper && tight && same && startsLow(stub.text)
 	}
-	return !rd.clash(above, unit) && (unfinished || tight && same && startsLow(stub.text))
+	return !rd.clash(above, unit) && (unfinished || same && startsLow(stub.text) && (tight || rd.allGoOn(above, unit)))
+}
+
+// allGoOn reports whether everything right of the stub in the lines is the
+// second part of a figure above it.
+func (rd *reader) allGoOn(above map[int]*piece, lines []int) bool {
+	for _, i := range lines {
+		for k := range rd.cells[i] {
+			q := &rd.cells[i][k]
+			p := above[q.c0]
+			if q.c0 > 0 && (p == nil || !goesOnFigure(q.text) && !unfinished(p.text)) {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // anyData reports whether one of the lines has anything right of the stub.
