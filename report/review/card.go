@@ -15,9 +15,9 @@ import (
 
 // card writes everything there is to know about one result.
 type card struct {
-	w       io.Writer
-	width   int
-	colour  bool
+	w      io.Writer
+	width  int
+	colour bool
 }
 
 const labelWidth = 11

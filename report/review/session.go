@@ -23,12 +23,12 @@ type Input interface {
 // Session is a checking session in the terminal. Every decision is on disk
 // before the next result is shown.
 type Session struct {
-	Book    *ledger.Book
-	In      Input
-	Out     io.Writer
-	Width   int
-	Colour  bool
-	Order   string  // one of [Orders]
+	Book   *ledger.Book
+	In     Input
+	Out    io.Writer
+	Width  int
+	Colour bool
+	Order  string // one of [Orders]
 
 	rows  []ledger.Row
 	at    int
