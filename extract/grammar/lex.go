@@ -161,7 +161,7 @@ func (l *lexer) afterDigit() bool {
 // n42, p0.05, CI0.9, SD1.3.
 var splitWords = map[string]bool{
 	"n": true, "p": true, "ci": true, "sd": true, "se": true, "sem": true, "iqr": true, "md": true,
-	"or": true, "rr": true, "hr": true, "po": true, "to": true, "of": true, "and": true, "is": true, "was": true,
+	"range": true, "or": true, "rr": true, "hr": true, "po": true, "to": true, "of": true, "and": true, "is": true, "was": true,
 }
 
 // word reads letters; abbreviations with points (S.D.) are one word, and digits

@@ -88,7 +88,13 @@ var part = pattern.MustCompile(`(?i)\b(?:drop-?outs?|adherers|completers|survivo
 func (p *para) wholeArm(m mention) bool {
 	from, to := p.sentence(m.start)
 	s := p.s[from:to]
-	return p.block.Zone != paper.Methods && !part.MatchString(s) && !counted.MatchString(s)
+	rest := strings.TrimLeft(p.s[m.end:to], " ")
+	for _, w := range [...]string{"with ", "who ", "without ", "whose "} {
+		if strings.HasPrefix(rest, w) {
+			return false
+		}
+	}
+	return p.block.Zone != paper.Methods && p.block.Zone != paper.Discussion && !part.MatchString(s) && !counted.MatchString(s)
 }
 
 // behindName reads the n printed right behind an arm's name: "Syrup (n = 42)".
@@ -135,6 +141,9 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 			previous = max(previous, min(p.r.Items[o.item].End, c.est.Start))
 		}
 	}
+	if m, ok := p.alternate(c, all, from, previous); ok {
+		return m, true
+	}
 	for _, m := range all {
 		if m.start >= end && m.start-end < 60 && linked.MatchString(p.s[end:m.start]) && !contrast.MatchString(p.s[end:m.start]) && !strings.Contains(p.s[end:m.start], " and ") {
 			return m, true
@@ -161,6 +170,26 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
 	}
 	return all[0], all[0].start < c.est.Start
+}
+
+// alternate reads "lower with syrup than with water at week 1 (12.4 vs 13.1) and
+// at week 2 (11.1 vs 12.0)": two arms are set against each other before all
+// results, which then take turns.
+func (p *para) alternate(c *cand, all []mention, from, previous int) (mention, bool) {
+	first := from + len(p.beforeFirst(c, from))
+	var two []mention
+	for _, m := range all {
+		if m.end <= first && (len(two) == 0 || two[len(two)-1].arm != m.arm) {
+			two = append(two, m)
+		}
+	}
+	if len(two) != 2 || len(two) != len(all) || !contrast.MatchString(p.s[two[0].end:two[1].start]) {
+		return mention{}, false
+	}
+	if previous > from && contrast.MatchString(p.s[previous:c.est.Start]) {
+		return two[1], true
+	}
+	return two[0], true
 }
 
 // shut reports that byte a stands in a bracket that is closed before byte b.
