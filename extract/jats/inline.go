@@ -138,6 +138,12 @@ var (
 func cutCitations(t paper.TextRun) paper.TextRun {
 	var cuts [][2]int
 	for _, m := range citeBrackets.FindAllStringIndex(t.S, -1) {
+		rest := strings.TrimLeft(t.S[m[1]:], " ")
+		if rest == "" || strings.ContainsAny(rest[:1], ".,;:)]") || len(rest) < len(t.S)-m[1] {
+			for m[0] > 0 && t.S[m[0]-1] == ' ' {
+				m[0]--
+			}
+		}
 		cuts = append(cuts, [2]int{m[0], m[1]})
 	}
 	return source.Drop(t, cuts)

@@ -42,7 +42,6 @@ type rawRow struct {
 func (r *reader) tableWrap(n *node) {
 	label := strings.TrimRight(r.text(n.child("label")).S, " .:")
 	caption, floats := r.caption(n)
-	notes := r.footNotes(n)
 	var tables []*paper.Table
 	n.each(func(k *node) bool {
 		if k.name == "table" || k.name == "array" {
@@ -58,6 +57,7 @@ func (r *reader) tableWrap(n *node) {
 			tables = append(tables, t)
 		}
 	}
+	notes := r.footNotes(n) // with those that stand in cells
 	if len(tables) == 0 {
 		r.pictureTable(label, caption, notes, n)
 	}

@@ -4,6 +4,7 @@ import (
 	"sort"
 	"strings"
 	"unicode"
+	"unicode/utf8"
 
 	"halfspan/extract/paper"
 )
@@ -40,7 +41,12 @@ func (b *Builder) put(s []byte, off int) {
 // as an entity is.
 func (b *Builder) PutAs(s []byte, off int) {
 	b.Flush()
-	b.add(s, b.Src.Offset(off))
+	at := b.Src.Offset(off)
+	for len(s) > 0 { // each character stands where the whole does
+		_, n := utf8.DecodeRune(s)
+		b.add(s[:n], at)
+		s = s[n:]
+	}
 }
 
 // add adds bytes that run in step with the file from file offset at.

@@ -35,7 +35,7 @@ func isData(cells []*paper.Cell) bool {
 			}
 		}
 	}
-	return telling > 0 && 2*data > filled
+	return telling > 0 && 2*data >= filled
 }
 
 // rowCells gives the cells that begin in each row, by column.
