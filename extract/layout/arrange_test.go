@@ -140,6 +140,62 @@ Mass, kg	12.4 (1.3)	11.1 (1.2)
 Protein, mg/mL	8.1 (1.0)	7.7 (0.9)
 The table of this page is printed sideways for want of room.
 `},
+		{name: "dates and keywords beside the abstract", draw: func() []*sketch.Page {
+			p := sketch.New(1, 600, 800)
+			p.Size = 7
+			p.Lines(50, 703, 9, "Article history:", "Received 12 May 2020", "Accepted 30 June 2020", "Available online 3 July 2020",
+				"Keywords:", "Honey bee", "Colony mass")
+			p.Size = 8
+			p.Lines(190, 700, 10, "Background: Colonies that are fed with syrup in spring may gain mass or they may lose it to robbers in",
+				"the neighbourhood, and nobody has weighed them before and after. Methods: We fed 84 colonies with syrup",
+				"or water for twelve weeks and weighed them each week on a balance that was checked before use and in",
+				"the evening of each day of the trial. Results: Mass rose by 1.84 kg (95% CI 0.92 to 2.76) with syrup and",
+				"did not change with water, nor did the protein of the haemolymph change in any of the arms in the weeks",
+				"of the trial. Conclusions: Syrup raises the mass of the colonies in spring, and more of it may raise more",
+				"of them in the neighbourhood.")
+			return []*sketch.Page{p}
+		}, want: `Background: Colonies that are fed with syrup in spring may gain mass or they may lose it to robbers in
+the neighbourhood, and nobody has weighed them before and after. Methods: We fed 84 colonies with syrup
+or water for twelve weeks and weighed them each week on a balance that was checked before use and in
+the evening of each day of the trial. Results: Mass rose by 1.84 kg (95% CI 0.92 to 2.76) with syrup and
+did not change with water, nor did the protein of the haemolymph change in any of the arms in the weeks
+of the trial. Conclusions: Syrup raises the mass of the colonies in spring, and more of it may raise more
+of them in the neighbourhood.
+Article history:
+Received 12 May 2020
+Accepted 30 June 2020
+Available online 3 July 2020
+Keywords:
+Honey bee
+Colony mass
+`},
+		{name: "labels in the margin stay with their lines", draw: func() []*sketch.Page {
+			p := sketch.New(1, 600, 800)
+			for i, label := range []string{"Objective", "", "Design", "Setting", "", "Results", "", "Conclusion"} {
+				p.Text(50, 700-12*i, label)
+				p.Text(130, 700-12*i, "the "+ordinals[i]+" line of a text that says what was found in the trial of the bees")
+			}
+			return []*sketch.Page{p}
+		}, want: `Objective	the Zeroth line of a text that says what was found in the trial of the bees
+the First line of a text that says what was found in the trial of the bees
+Design	the Second line of a text that says what was found in the trial of the bees
+Setting	the Third line of a text that says what was found in the trial of the bees
+the Fourth line of a text that says what was found in the trial of the bees
+Results	the Fifth line of a text that says what was found in the trial of the bees
+the Sixth line of a text that says what was found in the trial of the bees
+Conclusion	the Seventh line of a text that says what was found in the trial of the bees
+`},
+		{name: "a large first letter", draw: func() []*sketch.Page {
+			p := sketch.New(1, 600, 800)
+			p.Lines(68, 700, 12, "ees store syrup when there is no nectar in", "the neighbourhood, and they lose mass in")
+			p.Lines(50, 676, 12, "spring. Nobody has weighed the colonies.")
+			p.Size = 32
+			p.Text(50, 684, "B")
+			return []*sketch.Page{p}
+		}, want: `Bees store syrup when there is no nectar in
+the neighbourhood, and they lose mass in
+spring. Nobody has weighed the colonies.
+`},
 		{name: "three columns", draw: func() []*sketch.Page {
 			p := sketch.New(1, 600, 800)
 			p.Size = 8

@@ -257,6 +257,9 @@ func (a *arranger) continuation(i int, gone []bool) int {
 		if abs(e.size-d.size)*100 > 4*d.size {
 			continue
 		}
+		if text := e.text(); strings.Count(text, " ") < 3 && !ended(text) { // a piece of a figure
+			continue
+		}
 		next := e.first().text()
 		if goesOn(prev, next) || d.last().full() && e.first().full() && !opensBlock(next) {
 			return k

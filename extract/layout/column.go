@@ -3,6 +3,8 @@ package layout
 import (
 	"cmp"
 	"slices"
+	"unicode"
+	"unicode/utf8"
 
 	"halfspan/extract/layout/words"
 )
@@ -21,6 +23,7 @@ type stack struct {
 // baseline of one column and gives the stacks in reading order.
 func (s *sheet) columns() []stack {
 	s.cutAtGutters()
+	s.dropCaps()
 	s.place()
 	s.joinRows()
 	stacks := s.stacks()
@@ -71,6 +74,47 @@ func (st *stack) extent() (width, size int, table bool) {
 		table = table || l.table != nil
 	}
 	return x1 - x0, commonest(sizes), table
+}
+
+// dropCaps puts the large first letter of a text, which reaches down over
+// several lines, before the rest of its word.
+func (s *sheet) dropCaps() {
+	kept := s.lines[:0]
+	for i := range s.lines {
+		c := s.lines[i]
+		if host := s.capHost(&c); host != nil {
+			if r, _ := utf8.DecodeRuneInString(host.words[0].Text); unicode.IsLower(r) || unicode.IsUpper(r) && len(host.words[0].Text) > 1 {
+				host.words[0].Glued = true
+			}
+			l := s.line(append(slices.Clone(c.words), host.words...))
+			l.base, l.size, l.top, l.bot, l.furniture = host.base, host.size, host.top, host.bot, host.furniture
+			l.x0 = host.x0 // the line begins where its letters do, so that it is not set in
+			*host = l
+			continue
+		}
+		kept = append(kept, c)
+	}
+	s.lines = kept
+}
+
+// capHost is the line that a drop cap belongs to, nil where c is none.
+func (s *sheet) capHost(c *line) *line {
+	if c.table != nil || c.furniture || len(c.words) != 1 || c.glyphs != 1 {
+		return nil
+	}
+	if r, _ := utf8.DecodeRuneInString(c.words[0].Text); !unicode.IsUpper(r) {
+		return nil
+	}
+	for i := range s.lines {
+		h := &s.lines[i]
+		near := h.x0 >= c.x1-h.size/2 && h.x0-c.x1 <= h.size
+		// Its foot stands on the second or third baseline; its head is level with the first line.
+		if h.table == nil && !h.furniture && len(h.words) > 2 && near && c.size*10 >= h.size*18 &&
+			h.base < c.base && c.base-h.base <= 4*h.size && abs((c.base-c.size*7/10)-(h.base-h.size*7/10)) <= h.size*6/10 {
+			return h
+		}
+	}
+	return nil
 }
 
 // cutAtGutters splits lines that reach over a gutter.

@@ -84,8 +84,9 @@ func (r *raster) stripes(least int) []stripe {
 // candidate is a stripe with the running text beside it counted.
 type candidate struct {
 	g           gutter
-	left, right int // lines of running text close by on each side
-	crossed     int // lines that run on over it with no more than a word space
+	left, right int  // lines of running text close by on each side
+	crossed     int  // lines that run on over it with no more than a word space
+	beside      bool // a list of short lines (dates, keywords) stands beside the text
 }
 
 // weighStripes finds the white stripes of a sheet and counts the text beside
@@ -118,6 +119,7 @@ func (s *sheet) weighStripes(bodySize int) {
 		c := candidate{g: gutter{r.x + st.col*cell, r.x + (st.col+2)*cell, r.y + st.top*cell, r.y + (st.bot+1)*cell}}
 		s.weigh(&c, bodySize)
 		if max(c.left, c.right) >= 2 && c.crossed*4 <= c.left+c.right {
+			c.beside = c.crossed == 0 && max(c.left, c.right) >= 6 && s.listBeside(&c)
 			s.stripes = append(s.stripes, c)
 		}
 	}
@@ -205,7 +207,7 @@ func (s *sheet) chooseGutters(prior []known, bodySize int) []candidate {
 	var out []candidate
 	for _, c := range s.stripes {
 		seen := slices.ContainsFunc(prior, func(k known) bool { return abs(k.mid-(c.g.x0+cell)) <= bodySize })
-		if !seen && (c.left < 3 || c.right < 3 || c.left+c.right < 8) || c.left+c.right < 4 {
+		if !seen && !c.beside && (c.left < 3 || c.right < 3 || c.left+c.right < 8) || c.left+c.right < 4 {
 			continue
 		}
 		if !slices.ContainsFunc(out, func(o candidate) bool { return clash(&o.g, &c.g, bodySize) }) {
@@ -254,6 +256,51 @@ func (s *sheet) weigh(c *candidate, bodySize int) {
 			}
 		}
 	}
+}
+
+// listBeside reports whether on one side of c stands running text, begun at one
+// edge, and on the other a column of short lines that are no labels of its
+// lines: the dates and keywords that stand beside an abstract. Labels, numbers
+// of entries and the cells of tables stand on the baselines of the other side.
+func (s *sheet) listBeside(c *candidate) bool {
+	mid := (c.g.x0 + c.g.x1) / 2
+	var left, right []*line
+	for i := range s.lines {
+		l := &s.lines[i]
+		if l.furniture || l.table != nil || !c.g.covers(l.mid()) || l.x1-l.x0 < 2*l.size {
+			continue
+		}
+		if l.x1 <= mid {
+			left = append(left, l)
+		} else {
+			right = append(right, l)
+		}
+	}
+	text, list := right, left
+	if c.left > c.right {
+		text, list = left, right
+	}
+	if len(list) < 4 || len(text) < 6 || len(text)*2 < len(list) {
+		return false
+	}
+	var lefts []int
+	for _, l := range right {
+		lefts = append(lefts, l.x0)
+	}
+	slices.Sort(lefts)
+	edge, same := commonEdge(lefts), 0
+	for _, l := range right {
+		if abs(l.x0-edge)*2 <= l.size {
+			same++
+		}
+	}
+	level := 0
+	for _, l := range list {
+		if slices.ContainsFunc(text, func(o *line) bool { return abs(o.base-l.base)*6 <= l.size }) {
+			level++
+		}
+	}
+	return same*10 >= len(right)*6 && level*2 < len(list)
 }
 
 // wordAfter is the first word that begins right of x, or -1.

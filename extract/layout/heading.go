@@ -72,7 +72,7 @@ func sentenceIn(text string) bool {
 // knownTitle reports whether a line is one of the headings that papers have,
 // and nothing else.
 func knownTitle(text string) bool {
-	if len(text) > 80 || len(text) == 0 || strings.Count(text, " ") > 7 || !startsUpper(text) {
+	if len(text) > 80 || len(text) == 0 || strings.Count(text, " ") > 7 || !startsUpper(text) && text != "abstract" {
 		return false
 	}
 	// Most lines are none: look at the first word before the whole.

@@ -213,7 +213,7 @@ func endsOpen(text string) bool {
 func bullet(text string) bool {
 	r, n := utf8.DecodeRuneInString(text)
 	switch r {
-	case '•', '►', '▪', '●', '■', '◆', '➢', '\uF0B7', '◦', '‣', '▸':
+	case '•', '●', '►', '▪', '■', '◆', '➢', '\uF0B7', '◦', '‣', '▸':
 		return len(text) > n
 	}
 	return false
