@@ -105,7 +105,9 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 			return nil, err
 		}
 	}
-	return working.Work(working.FactsOf(doc), results), nil
+	facts := working.FactsOf(doc)
+	facts.Typed = true
+	return working.Work(facts, results), nil
 }
 
 // bareSpread reads "12.4 (1.3)", "12.4 (11.2 to 13.6)": an estimate with a bracket

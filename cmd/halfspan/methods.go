@@ -72,8 +72,8 @@ func nearestMethod(word string) string {
 			names = append(names, m.Name)
 		}
 	}
-	if len(names) == 0 || len(names) > 6 {
+	if len(names) == 0 {
 		return ""
 	}
-	return " (did you mean " + strings.Join(names, ", ") + "?)"
+	return " (did you mean " + strings.Join(names[:min(len(names), 5)], ", ") + "?)"
 }

@@ -11,6 +11,7 @@ type Facts struct {
 	SHA256   string // of the file's content
 	Format   paper.Format
 	Problems []paper.Problem
+	Typed    bool // a single result typed in: what it is about is nobody's question
 }
 
 // FactsOf takes the facts from a document.
@@ -41,7 +42,9 @@ func Work(doc Facts, results []result.Result) []Working {
 		applyPolicy(it)
 	}
 	compare(items)
-	compareContexts(items)
+	if !doc.Typed {
+		compareContexts(items)
+	}
 	effects := effectOf(Flags())
 	out := make([]Working, len(items))
 	for i, it := range items {
