@@ -33,7 +33,7 @@ const (
 // sense is passed over.
 func readCMap(b []byte, f *fuel) *cmap {
 	m := &cmap{text: map[uint32]string{}}
-	r := cmapReader{l: lexer{b: b}, m: m, fuel: f}
+	r := cmapReader{l: lexer{b: b}, m: m, fuel: f, left: maxMapText}
 	var last token
 	for t := r.next(); t.kind != tokEOF; t = r.next() {
 		if t.kind == tokWord {
@@ -64,6 +64,7 @@ func readCMap(b []byte, f *fuel) *cmap {
 
 type cmapReader struct {
 	l    lexer
+	left int // entries of text that may still be written
 	m    *cmap
 	fuel *fuel
 }
@@ -123,7 +124,8 @@ func (r *cmapReader) bfchar() {
 }
 
 func (r *cmapReader) add(code uint32, text string) {
-	if len(r.m.text) < maxMapText {
+	if r.left > 0 {
+		r.left--
 		r.m.text[code] = text
 	}
 }
@@ -188,8 +190,8 @@ func (r *cmapReader) run(first, last uint32, text string) {
 		return
 	}
 	last = min(last, first+0xFFFF)
-	for code := first; code <= last && len(r.m.text) < maxMapText; code++ {
-		r.m.text[code] = string(runes)
+	for code := first; code <= last && r.left > 0; code++ {
+		r.add(code, string(runes))
 		runes[len(runes)-1]++
 		if code == 0xFFFFFFFF {
 			return

@@ -9,10 +9,13 @@ import (
 const (
 	fuelObjects   = 400_000     // objects looked up
 	fuelOperators = 40_000_000  // operators run
+	fuelForms     = 300_000     // forms run
 	fuelGlyphs    = 6_000_000   // glyphs shown
-	fuelInflated  = 1_000 << 20 // bytes inflated
+	fuelInflated  = 500 << 20   // bytes inflated
+	fuelContent   = 500 << 20   // bytes of content run, those of a form each time
 	fuelRead      = 2_000 << 20 // bytes that the library read from the file, again and again
-	maxStream     = 128 << 20   // bytes of one inflated stream
+	maxStream     = 64 << 20    // bytes of one inflated stream
+	keepForm      = 4 << 20     // bytes of a form that is kept for its next use
 	maxPageGlyphs = 400_000     // glyphs of one page
 	maxForms      = 24          // form XObjects inside each other
 	maxStack      = 64          // saved graphics states
@@ -26,7 +29,7 @@ const (
 // fuel counts what one paper has cost so far. It is counted, not timed, so
 // that a paper is cut at the same place whatever the load.
 type fuel struct {
-	objects, operators, glyphs, inflated, read int64
+	objects, operators, forms, glyphs, inflated, content, read int64
 }
 
 // Error is a failure of this reader; the paper may be sound.

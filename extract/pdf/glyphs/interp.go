@@ -36,6 +36,7 @@ type form struct {
 	box       *[4]float64 // what it shows, in its own space; nil: all
 	image     bool
 	short     bool
+	running   bool // a form that shows itself is not run again
 }
 
 // interpreter runs the content of one page.
@@ -81,8 +82,8 @@ func (in *interpreter) use(res *dict) (back func()) {
 		in.home = res
 	}
 	in.res = res
-	in.fonts = in.doc.resources(res.key("Font"))
-	in.xobj = in.doc.resources(res.key("XObject"))
+	in.fonts = res.sub("Font")
+	in.xobj = res.sub("XObject")
 	return func() { in.res, in.fonts, in.xobj = old, fonts, xobj }
 }
 
@@ -103,7 +104,7 @@ func (in *interpreter) fontNamed(name string) *Font {
 		return f
 	}
 	if in.home != in.res {
-		if f := in.doc.fontNamed(in.doc.resources(in.home.key("Font")), name); f != nil {
+		if f := in.doc.fontNamed(in.home.sub("Font"), name); f != nil {
 			return f
 		}
 	}
@@ -113,6 +114,7 @@ func (in *interpreter) fontNamed(name string) *Font {
 // run runs a content stream.
 func (in *interpreter) run(content []byte, res *dict) {
 	defer in.use(res)()
+	burn(&in.doc.fuel.content, len(content), fuelContent, "content")
 	l := &lexer{b: content}
 	base := len(in.saved)
 	first := len(in.operands)
@@ -349,7 +351,7 @@ func (in *interpreter) extState(args []operand) {
 func (in *interpreter) xobject(name string) {
 	f := in.doc.form(in.xobj, name)
 	if f == nil && in.home != in.res {
-		f = in.doc.form(in.doc.resources(in.home.key("XObject")), name)
+		f = in.doc.form(in.home.sub("XObject"), name)
 	}
 	if f == nil {
 		return
@@ -360,12 +362,14 @@ func (in *interpreter) xobject(name string) {
 		}
 		return
 	}
-	if in.depth >= maxForms {
+	if in.depth >= maxForms || f.running {
 		return
 	}
+	burn(&in.doc.fuel.forms, 1, fuelForms, "forms")
 	in.page.Short = in.page.Short || f.short
 	outer, text, line, res := in.state, in.text, in.line, in.res
 	in.depth++
+	f.running = true
 	in.ctm = f.matrix.Mul(in.ctm)
 	if b := f.box; b != nil {
 		in.clip = intersect(in.clip, in.ctm.Box(b[0], b[1], b[2], b[3]))
@@ -375,6 +379,7 @@ func (in *interpreter) xobject(name string) {
 	}
 	in.run(f.content, res)
 	in.depth--
+	f.running = false
 	in.state, in.text, in.line = outer, text, line
 }
 
@@ -407,7 +412,9 @@ func (d *Document) form(xobj *dict, name string) *form {
 			f.box = &[4]float64{b.Index(0).Float64(), b.Index(1).Float64(), b.Index(2).Float64(), b.Index(3).Float64()}
 		}
 	}
-	d.forms[r] = f
+	if f == nil || len(f.content) <= keepForm {
+		d.forms[r] = f
+	}
 	return f
 }
 

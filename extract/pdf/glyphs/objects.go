@@ -64,10 +64,11 @@ type dict struct {
 	v    lib.Value
 	refs map[string]ref
 	got  map[string]lib.Value
+	subs map[string]*dict
 }
 
 func (d *Document) dict(v lib.Value) *dict {
-	return &dict{doc: d, v: v, refs: children(v), got: map[string]lib.Value{}}
+	return &dict{doc: d, v: v, refs: children(v), got: map[string]lib.Value{}, subs: map[string]*dict{}}
 }
 
 func (d *dict) key(name string) lib.Value {
@@ -83,6 +84,19 @@ func (d *dict) key(name string) lib.Value {
 		d.got[name] = v
 	}
 	return v
+}
+
+// sub gives an entry that is a dictionary itself; nil if it is none.
+func (d *dict) sub(name string) *dict {
+	if d == nil {
+		return nil
+	}
+	s, ok := d.subs[name]
+	if !ok {
+		s = d.doc.resources(d.key(name))
+		d.subs[name] = s
+	}
+	return s
 }
 
 // key looks up one entry of a dictionary and counts it.
