@@ -4,7 +4,7 @@ STATICCHECK ?= honnef.co/go/tools/cmd/staticcheck@v0.8.2
 FUZZTIME ?= 30s
 DEMO := $(or $(TMPDIR),/tmp)/halfspan-demo
 
-.PHONY: help build demo test short lint bench fuzz cover golden errors papers clean
+.PHONY: help build demo test short lint bench fuzz cover golden errors truth papers clean
 
 help: ## list the targets
 	@grep -hE '^[a-z]+:.*## ' $(MAKEFILE_LIST) | sed -E 's/:[^#]*## /\t/' | expand -t 10
@@ -51,6 +51,9 @@ golden: ## write the expected outputs anew; read the difference before committin
 
 errors: ## make the table of the methods' typical errors anew (minutes)
 	$(GO) test -run 'TestTypicalErrors$$' -timeout 30m -v ./convert -simulate
+
+truth: ## compare SDs worked out with those printed in the same row, over real papers (minutes)
+	$(GO) test -run 'TestTruthRows$$' -timeout 30m -v ./cmd/halfspan -truth
 
 papers: ## rebuild the demo papers from their sources
 	testdata/papers/sources/build.sh

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"flag"
 	"fmt"
 	"math"
 	"os"
@@ -20,6 +21,8 @@ import (
 // realPapers is where real papers to measure with lie, beside the project.
 const realPapers = "../../../shared/papers"
 
+var truthRows = flag.Bool("truth", false, "compare rows that print both an SD and an interval, over all papers: minutes")
+
 // agreement counts how the SD worked out without the printed one compares with it.
 type agreement struct {
 	rows, meets, close, converted, convertedMeets int
@@ -30,6 +33,9 @@ type agreement struct {
 // interval or an SE, the printed SD is the truth. It is hidden, the SD is worked out
 // from the other, and the two are compared, by what the row says.
 func TestTruthRows(t *testing.T) {
+	if !*truthRows {
+		t.Skip("reads many papers: make truth")
+	}
 	var files []string
 	for _, dir := range []string{"labelled/xml", "more/xml"} {
 		found, err := filepath.Glob(filepath.Join(realPapers, dir, "*.*xml"))
@@ -40,9 +46,6 @@ func TestTruthRows(t *testing.T) {
 	}
 	if len(files) == 0 {
 		t.Skipf("no real papers at %s: nothing to compare with", realPapers)
-	}
-	if testing.Short() {
-		t.Skip("reads many papers")
 	}
 	table := map[string]*agreement{}
 	for _, path := range files {
