@@ -259,7 +259,7 @@ func (p *para) setEvidence(r *result.Result, c *cand, st named) {
 			addOnce(&r.Evidence.Design, e.means)
 		}
 	}
-	for _, e := range modelWords {
+	for _, e := range modelled {
 		if strings.Contains(s, e.word) {
 			addOnce(&r.Evidence.Model, e.means)
 		}
@@ -270,14 +270,7 @@ func (p *para) setEvidence(r *result.Result, c *cand, st named) {
 		}
 	}
 	r.Evidence.Baseline = strings.Contains(s, "baseline") && !strings.Contains(s, "from baseline")
-	switch r.Statistic {
-	case result.Mean, result.MeanChange, result.MeanDifference:
-		if len(r.Evidence.Model) > 0 {
-			r.Adjusted = "yes"
-		} else if strings.Contains(s, "unadjusted") || strings.Contains(s, "crude") {
-			r.Adjusted = "no"
-		}
-	}
+	p.setAdjusted(r, s)
 	if p.block.Zone == paper.Methods {
 		r.Raise("in-methods", "printed in the methods")
 	}
@@ -288,7 +281,7 @@ type wordMeans struct{ word, means string }
 var designWords = []wordMeans{{"bootstrap", "bootstrap"}, {"credible interval", "bayesian"}, {"cluster", "clustered"}, {"crossover", "crossover"},
 	{"cross-over", "crossover"}, {"bonferroni", "simultaneous"}, {"back-transformed", "back-transformed"}, {"geometric", "log-scale"}, {"one-sided", "one-sided"}}
 
-var modelWords = []wordMeans{{"least squares mean", "least-squares"}, {"least-squares mean", "least-squares"}, {"ls mean", "least-squares"},
+var modelled = []wordMeans{{"least squares mean", "least-squares"}, {"least-squares mean", "least-squares"}, {"ls mean", "least-squares"},
 	{"marginal mean", "marginal"}, {" adjusted", "adjusted"}, {"adjusting for", "adjusted"}, {"adjustment for", "adjusted"}, {"controlling for", "adjusted"}, {"(adjusted", "adjusted"}, {"modelled", "adjusted"}}
 
 var testWords = []wordMeans{{"t test", "t test"}, {"t-test", "t test"}, {"paired t", "paired t test"}, {"mann-whitney", "rank test"}, {"mann–whitney", "rank test"},

@@ -14,6 +14,7 @@ import (
 func Find(doc *paper.Document) []result.Result {
 	f := &finder{doc: doc, conv: convention.Of(doc), comma: decimalComma(doc)}
 	f.learn()
+	f.learnModels()
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		switch b.Kind {
@@ -37,6 +38,9 @@ type finder struct {
 	comma bool // the paper prints decimal commas
 	cast  cast // its arms and their sizes
 	out   []result.Result
+
+	models, leastMeans model    // what the methods say of models
+	designs            []string // of the whole trial: "clustered", "crossover"
 }
 
 // decimalComma reports whether the paper prints decimal commas: most numbers
