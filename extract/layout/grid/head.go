@@ -177,8 +177,9 @@ type headPiece struct {
 	fixed bool
 }
 
-// headBands gives the pieces of the heading by height: lines that overlap, as
-// where one cell is centred beside two lines of another, are one band. The
+// headBands gives the pieces of the heading by height: lines that stand a little
+// higher or lower beside one another, as where one cell is centred beside two
+// lines of another, are one band. The
 // columns of each piece are told by the upright rules beside it or by the rule
 // under it, where they are drawn.
 func (rd *reader) headBands(boxes []box) [][]headPiece {
@@ -188,7 +189,7 @@ func (rd *reader) headBands(boxes []box) [][]headPiece {
 		for _, p := range rd.cells[i] {
 			row = append(row, headPiece{piece: p})
 		}
-		if n := len(out); n > 0 && (rd.lines[i].base-rd.lines[i-1].base)*10 < rd.em*8 {
+		if n := len(out); n > 0 && (rd.lines[i].base-rd.lines[i-1].base)*10 < rd.em*8 && beside(out[n-1], row) {
 			out[n-1] = append(out[n-1], row...)
 			continue
 		}
@@ -244,6 +245,18 @@ func (rd *reader) sidesAt(x int, ln *line) (x0, x1 int, ok bool) {
 		}
 	}
 	return x0, x1, n >= 2 && x0 > -1<<30 && x1 < 1<<30
+}
+
+// beside reports whether no piece of a line stands over or under one of a band.
+func beside(band, row []headPiece) bool {
+	for i := range band {
+		for k := range row {
+			if band[i].x0 < row[k].x1 && row[k].x0 < band[i].x1 {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // ruleUnder gives the rule drawn under a heading piece and under no other piece
@@ -308,7 +321,7 @@ func (rd *reader) above(blocks []block, p *piece, row []headPiece) int {
 		case p.top-k.bot > rd.em:
 			return -1
 		case k.c0 == p.c0 && k.c1 == p.c1:
-		case k.c0 <= p.c0 && p.c1 <= k.c1 && alone(k, p, row) && !k.fixed:
+		case k.c0 <= p.c0 && p.c1 <= k.c1 && alone(k, p, row) && !k.fixed && rd.inLine(&k.pieces[len(k.pieces)-1], p):
 		case p.c0 <= k.c0 && k.c1 <= p.c1 && p.c1-p.c0 < 2 && onlyOver(blocks, k, p):
 		default:
 			return -1

@@ -3,6 +3,7 @@ package grid
 import (
 	"slices"
 	"strings"
+	"unicode"
 )
 
 // shareColumns widens the pieces of the last of the heading bands that stand
@@ -22,7 +23,7 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 		}
 		n++
 	}
-	st := stretcher{rd: rd, boxes: slices.Clone(boxes), under: under, taken: make([]bool, len(boxes)), next: next}
+	st := stretcher{rd: rd, boxes: slices.Clone(boxes), under: under, taken: make([]bool, len(boxes)), next: next, upper: bands[:len(bands)-1]}
 	for c, p := range under {
 		if p != nil && p.c0 == p.c1 {
 			st.boxes[c] = st.boxes[c].union(p.box)
@@ -60,7 +61,7 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 	}
 	first := slices.MinFunc(next, func(a, b headPiece) int { return a.top - b.top })
 	tight := (first.top-row[0].top)*100 <= 135*rd.em && !rd.anyRule(&row[0], &first)
-	if rd.byPattern(row, next, tight) {
+	if rd.byPattern(bands, next, tight) {
 		for k := range row {
 			for c := row[k].c0; row[k].c0 > 0 && c <= row[k].c1; c++ {
 				st.taken[c] = true
@@ -68,21 +69,49 @@ func (rd *reader) shareColumns(bands [][]headPiece, next []headPiece, boxes []bo
 		}
 	}
 	st.left = left*2 > spans && left >= centred
-	if n <= spans || tight && (left > 0 || centred > 0) {
-		return // lines of one heading rather than levels
+	if n <= spans {
+		return
 	}
 	for k := range row {
-		if p := &row[k]; !p.fixed && p.c0 > 0 {
-			st.stretch(p)
+		p := &row[k]
+		if p.fixed || p.c0 == 0 {
+			continue
+		}
+		if rd.sameCell(p, under[p.c0]) && !st.overAlike(p) {
+			continue
+		}
+		st.stretch(p)
+	}
+}
+
+// overAlike reports whether p stands over one of several free subheadings that
+// differ in their numbers only.
+func (st *stretcher) overAlike(p *headPiece) bool {
+	own := st.under[p.c0]
+	for _, c := range []int{p.c0 - 1, p.c0 + 1} {
+		if own != nil && st.free(p, c) && alike(own.text, st.under[c].text) {
+			return true
 		}
 	}
+	return false
+}
+
+// sameCell reports whether q, the piece under p, is rather the next line of the
+// same heading than a heading of its own: close below, in line with p, nothing
+// drawn between.
+func (rd *reader) sameCell(p, q *headPiece) bool {
+	if q == nil || q.c1 > q.c0 {
+		return false
+	}
+	return (q.top-p.top)*100 <= 135*rd.em && rd.aligned(p, q) && !rd.anyRule(p, q)
 }
 
 // byPattern shares the columns of the next band where its texts repeat, as
 // "mean, SD" under each of two arms, and every repeat has one heading over it.
 // Lines that are tight may be lines of one heading: then every heading must have
 // its repeat.
-func (rd *reader) byPattern(row, next []headPiece, tight bool) bool {
+func (rd *reader) byPattern(bands [][]headPiece, next []headPiece, tight bool) bool {
+	row := bands[len(bands)-1]
 	subs, heads := next, 0
 	for len(subs) > 0 && subs[0].c0 == 0 {
 		subs = subs[1:]
@@ -101,7 +130,7 @@ func (rd *reader) byPattern(row, next []headPiece, tight bool) bool {
 			if n < 2 || n != heads && (tight || n != count(subs, subs[start].text)) {
 				continue
 			}
-			if rd.overGroups(row, subs[start:], period, n) {
+			if rd.overGroups(bands, subs[start:], period, n) {
 				return true
 			}
 		}
@@ -142,7 +171,9 @@ func repeats(subs []headPiece, period int, loose bool) int {
 }
 
 // overGroups gives each group of subheadings the pieces that stand over it.
-func (rd *reader) overGroups(row, subs []headPiece, period, n int) bool {
+func (rd *reader) overGroups(bands [][]headPiece, subs []headPiece, period, n int) bool {
+	row := bands[len(bands)-1]
+	any := false
 	of := make([]int, len(row)) // 1 + group of each piece
 	for g := range n {
 		first, last := &subs[g*period], &subs[(g+1)*period-1]
@@ -157,9 +188,13 @@ func (rd *reader) overGroups(row, subs []headPiece, period, n int) bool {
 			}
 			of[k], over = g+1, p
 		}
-		if over == nil {
+		if over == nil && !rd.higher(bands[:len(bands)-1], first, last) {
 			return false
 		}
+		any = any || over != nil
+	}
+	if !any {
+		return false
 	}
 	for k, g := range of {
 		if g > 0 {
@@ -167,6 +202,19 @@ func (rd *reader) overGroups(row, subs []headPiece, period, n int) bool {
 		}
 	}
 	return true
+}
+
+// higher reports whether one of the bands has a piece over the columns from
+// first to last.
+func (rd *reader) higher(bands [][]headPiece, first, last *headPiece) bool {
+	for _, band := range bands {
+		for k := range band {
+			if m := band[k].run.mid(); band[k].c0 > 0 && m > first.x0-rd.em && m < last.x1+rd.em {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // goesOver gives a piece that stands flush or centred over one spanning piece of
@@ -197,7 +245,9 @@ func (rd *reader) goesOver(row, next []headPiece) {
 }
 
 // aligned reports whether two pieces are flush left or centred on one another.
-func (rd *reader) aligned(p, q *headPiece) bool {
+func (rd *reader) aligned(p, q *headPiece) bool { return rd.inLine(&p.piece, &q.piece) }
+
+func (rd *reader) inLine(p, q *piece) bool {
 	return abs(p.x0-q.x0)*10 < rd.em*4 || abs(p.run.mid()-q.run.mid())*10 < rd.em*4
 }
 
@@ -207,6 +257,7 @@ type stretcher struct {
 	boxes []box
 	under []*headPiece // the piece of the next band in each column
 	next  []headPiece
+	upper [][]headPiece // the bands above
 	taken []bool
 	left  bool // headings flush left with their first column
 }
@@ -225,7 +276,7 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 }
 
 // stretch widens p: flush left, up to the next heading; else to the columns
-// whose middle is nearest to its own.
+// whose middle is nearest to its own, the widest of those that are as near.
 func (st *stretcher) stretch(p *headPiece) {
 	lo, hi := p.c0, p.c1
 	for st.free(p, lo-1) {
@@ -235,27 +286,76 @@ func (st *stretcher) stretch(p *headPiece) {
 		hi++
 	}
 	if st.left {
-		lo = p.c0
+		lo, hi = p.c0, min(hi, st.before(p)-1)
 	}
-	if lo == hi {
+	if lo >= hi {
 		return
 	}
 	b0, b1 := p.c0, hi
 	if !st.left {
-		b1 = p.c1
-		best := st.rd.offCentre(p, b0, b1, st.boxes) - st.rd.em/2
-		for a := lo; a <= p.c0; a++ {
-			for b := p.c1; b <= hi; b++ {
-				if d := st.rd.offCentre(p, a, b, st.boxes); d < best {
-					b0, b1, best = a, b, d
-				}
-			}
-		}
+		b0, b1 = st.centred(p, lo, hi)
 	}
 	p.c0, p.c1 = b0, b1
 	for c := b0; c <= b1; c++ {
 		st.taken[c] = true
 	}
+}
+
+// before is the first column right of p that a heading of a higher band begins
+// with.
+func (st *stretcher) before(p *headPiece) int {
+	next := len(st.boxes)
+	for _, band := range st.upper {
+		for k := range band {
+			if c := band[k].c0; c > p.c0 {
+				next = min(next, max(c, p.c1+1))
+			}
+		}
+	}
+	return next
+}
+
+// centred gives the columns between lo and hi that p is centred over.
+func (st *stretcher) centred(p *headPiece, lo, hi int) (b0, b1 int) {
+	b0, b1 = p.c0, p.c1
+	own := st.rd.offCentre(p, b0, b1, st.boxes)
+	best := own - st.rd.em/2
+	near := false
+	for a := lo; a <= p.c0; a++ {
+		for b := p.c1; b <= hi; b++ {
+			d := st.rd.offCentre(p, a, b, st.boxes)
+			both := a < p.c0 && b > p.c1
+			switch {
+			case d*10 <= st.rd.em*6 && (both || own*10 > st.rd.em*6 && b-a > 0):
+				if !near || b-a > b1-b0 {
+					b0, b1, near = a, b, true
+				}
+			case !near && d < best:
+				b0, b1, best = a, b, d
+			}
+		}
+	}
+	return b0, b1
+}
+
+// alike reports whether two subheadings differ in their numbers only: "Week 3"
+// and "Week 6", "19.5 mg/ml" and "39 mg/ml".
+func alike(a, b string) bool {
+	shape := func(s string) string {
+		digits := false
+		return strings.Map(func(r rune) rune {
+			if unicode.IsDigit(r) || digits && (r == '.' || r == ',') {
+				if digits {
+					return -1
+				}
+				digits = true
+				return '#'
+			}
+			digits = false
+			return r
+		}, s)
+	}
+	return a != b && shape(a) == shape(b)
 }
 
 // isTestHead reports whether a heading names a test, not a group's statistic.
