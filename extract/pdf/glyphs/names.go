@@ -12,12 +12,18 @@ import (
 //go:embed tables.txt
 var tablesText string
 
+// sections are the parts of tables.txt by name.
+var sections = sync.OnceValue(func() map[string]string {
+	all := map[string]string{}
+	for part := range strings.SplitSeq(tablesText, "\n[") {
+		name, body, _ := strings.Cut(part, "]\n")
+		all[name] = body
+	}
+	return all
+})
+
 // section gives the lines of one part of tables.txt.
-func section(name string) string {
-	_, rest, _ := strings.Cut(tablesText, "\n["+name+"]\n")
-	body, _, _ := strings.Cut(rest, "\n[")
-	return body
-}
+func section(name string) string { return sections()[name] }
 
 // lookUp finds the line "key value" in a section whose lines are sorted.
 func lookUp(section, key string) (string, bool) {
@@ -41,8 +47,6 @@ func lookUp(section, key string) (string, bool) {
 	}
 	return "", false
 }
-
-var nameSection = sync.OnceValue(func() string { return section("names") })
 
 // nameText gives the text that a glyph's name stands for, or "": names of the
 // Adobe Glyph List, uniXXXX and uXXXXX, parts joined by '_', variants behind a
@@ -72,7 +76,7 @@ func partText(name string) string {
 	if t := alias(name); t != "" {
 		return t
 	}
-	if hex, ok := lookUp(nameSection(), name); ok {
+	if hex, ok := lookUp(section("names"), name); ok {
 		v, _ := strconv.ParseUint(hex, 16, 32)
 		if v < 0xE000 || v > 0xF8FF {
 			return string(rune(v))

@@ -9,7 +9,7 @@ import (
 // allocates a row for every object number that is named and follows the chain
 // of older tables without end. Both are looked at here first.
 const (
-	maxObjectNumber = 4_000_000
+	maxObjectNumber = 500_000
 	maxChain        = 400
 )
 

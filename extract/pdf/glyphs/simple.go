@@ -2,6 +2,7 @@ package glyphs
 
 import (
 	"strings"
+	"sync"
 
 	lib "github.com/ledongthuc/pdf"
 )
@@ -142,22 +143,25 @@ func (e *simpleEncoding) widthName(c byte) string {
 	return runeName(e.baseText(c), c)
 }
 
-// runeName names the glyph of a code in a Latin encoding: by the standard
-// encoding where the character is there.
+// runeName names the glyph of a character in a Latin encoding, as the standard
+// encoding does.
 func runeName(text string, c byte) string {
-	if text == "" {
-		return ""
-	}
-	if n := standardNames()[c]; nameText(n) == text {
+	if n := standardNames()[c]; n != "" && nameText(n) == text {
 		return n
 	}
+	return standardByText()[text]
+}
+
+// standardByText gives the names of the standard encoding by what they mean.
+var standardByText = sync.OnceValue(func() map[string]string {
+	names := map[string]string{}
 	for _, n := range standardNames() {
-		if n != "" && nameText(n) == text {
-			return n
+		if t := nameText(n); t != "" && names[t] == "" {
+			names[t] = n
 		}
 	}
-	return ""
-}
+	return names
+})
 
 // builtin reads the encoding inside an embedded Type 1 font, whose first part
 // is plain text: "dup 45 /minus put".
