@@ -15,7 +15,6 @@ type assembly struct {
 	at   map[spot][]*estimate
 	list []*estimate
 	lost []spread // spreads that no estimate was found for
-	cols map[int]map[int]role
 	rows []role
 }
 
@@ -307,7 +306,7 @@ func sameGroups(y, x *line, r int) bool {
 		return true
 	}
 	if len(y.groups) != len(x.groups) {
-		return len(y.groups) < len(x.groups) && len(y.groups) > 0 && y.groups[len(y.groups)-1] == x.groups[len(y.groups)-1] && false
+		return false
 	}
 	for i := range y.groups {
 		if y.groups[i] != x.groups[i] {

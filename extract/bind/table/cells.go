@@ -113,9 +113,7 @@ type estimate struct {
 	marks    []string       // marks behind it
 	ordinal  int            // of several stacked in one cell
 	stacked  int            // how many are stacked there
-	percent  grammar.Number // "3 (7.5%)": the percentage printed with a sign
 	extra    []grammar.Item // bracketed numbers beside another spread: an n, a percent change
-	line     int            // of stacked values: the line of the cell
 }
 
 // estimatesIn gives the estimates printed in a cell, and the spreads that stand
@@ -140,7 +138,6 @@ func (f *frame) estimatesIn(r, c int) (ests []*estimate, orphans []spread) {
 			orphans = append(orphans, e.spreads...)
 			continue
 		}
-		e.line = strings.Count(cell.Text.S[:v.Start], "\n")
 		ests = append(ests, e)
 	}
 	for _, e := range ests {

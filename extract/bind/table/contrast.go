@@ -1,8 +1,9 @@
 package table
 
 import (
-	"halfspan/extract/pattern"
 	"strings"
+
+	"halfspan/extract/pattern"
 )
 
 var vsForm = pattern.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] )\s*(.+)$`)

@@ -4,7 +4,6 @@ import (
 	"math"
 	"strings"
 
-	"halfspan/extract/grammar"
 	"halfspan/extract/pattern"
 )
 
@@ -27,7 +26,7 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	if sp.shape == shapeInterval && sp.lower.Value != "" && !strings.ContainsAny(sp.lower.Value+sp.upper.Value, ".") && sp.item.Sep == "," && f.percentWithCount(e) {
 		return countSure // a thousands comma: 39.4 (10,369)
 	}
-	if sp.shape != shapeBracket {
+	if sp.shape != shapeBracket || sp.cell != e.cell {
 		return countNever
 	}
 	if !e.of.IsZero() {
@@ -212,6 +211,11 @@ func oneTotal(cells []pairCell) bool {
 		lo, hi = math.Max(lo, l), math.Min(hi, h)
 		seen++
 	}
+	for _, p := range cells {
+		if p.bDec == 0 && seen < 3 {
+			return false // whole percentages of two cells leave too much room
+		}
+	}
 	return seen > 1 && lo <= hi && math.Floor(hi) >= math.Ceil(lo)
 }
 
@@ -300,15 +304,3 @@ func countStatement(s *statement) (is, strong bool) {
 }
 
 var countWords = pattern.MustCompile(`(?i)\b(?:no\.?|n|number|nr\.?|frequency|count)\s*[,;:]?\s*[(\[]\s*(?:%|percent)|\b(?:no\.?|n|number|frequency)\s*(?:,|;|and|/)\s*(?:%|percent)`)
-
-// hasPair reports a spread or statistic among the pairs.
-func hasPair(ps []pair) bool {
-	for _, q := range ps {
-		if q.Spread != "" || q.Statistic != "" {
-			return true
-		}
-	}
-	return false
-}
-
-var _ = grammar.SpreadSD

@@ -124,9 +124,8 @@ func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, al
 	if assumed {
 		r.Raise(FlagStatistic, "nothing names the statistic; taken from the kind of spread")
 	}
-	_ = model
 	b.fill(&r, f, e, sp, x, &rd)
-	f.adjustedOf(e, &rd, &r, all)
+	f.adjustedOf(&rd, &r, model, e, all)
 	b.size(&r, i, f, e, x)
 	f.rowTests(&r, e)
 	b.check(&r, f, e, sp, x)
@@ -311,7 +310,6 @@ func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *co
 	}
 	r.Snippet = snippet(x, e, sp)
 	r.Evidence.Baseline = strings.Contains(fold(x.time), "baseline") || fold(x.time) == "pre" || strings.HasPrefix(fold(x.time), "before")
-	r.Evidence.Integer = false
 	if e.value.Mended || first.Mended {
 		r.Raise(FlagMended, "printed with a slip; kept as printed")
 	}
@@ -334,88 +332,6 @@ func snippet(x *context, e *estimate, sp *spread) string {
 		s += " | " + clean(sp.cell.Text.S)
 	}
 	return shorten(s, 300)
-}
-
-// rowTests keeps p, t, F and df of the row, and p printed in the cell.
-func (f *frame) rowTests(r *result.Result, e *estimate) {
-	for _, it := range e.parts {
-		switch it.Kind {
-		case grammar.KindPValue:
-			r.P = it.Value.Rel + it.Value.Value
-			r.P = strings.TrimPrefix(r.P, "=")
-		case grammar.KindTest:
-			switch it.Name {
-			case "t":
-				r.T, r.DF = it.Value.Value, it.DF
-			case "F":
-				r.F, r.DF = it.Value.Value, it.DF
-			}
-		}
-	}
-	for c := f.stub; c < f.tab.Cols; c++ {
-		cell := f.grid[e.row][c]
-		if cell == nil || isBlankText(cell.Text.S) || cell == e.cell {
-			continue
-		}
-		role := f.columnRole(e.row, c)
-		switch role.kind {
-		case roleP:
-			if p := pText(f.reads[cell], cell); p != "" {
-				if r.Evidence.RowP == "" {
-					r.Evidence.RowP = p
-				}
-				if r.P == "" && c > e.col && f.ownsTest(e, c) {
-					r.P = p
-				}
-			}
-		case roleTest:
-			v := clean(cell.Text.S)
-			if c <= e.col || !f.ownsTest(e, c) || !hasDigit(v) {
-				continue
-			}
-			v, _ = f.notes.split(&cell.Text)
-			switch role.test {
-			case "t":
-				r.T = v
-			case "F":
-				r.F = v
-			case "df":
-				r.DF = v
-			}
-		}
-	}
-}
-
-// ownsTest reports that the test in column c is about this estimate alone: no
-// other estimate stands between them.
-func (f *frame) ownsTest(e *estimate, c int) bool {
-	for k := e.col + 1; k < c; k++ {
-		switch f.columnRole(e.row, k).kind {
-		case roleP, roleTest, roleN, roleSpread, roleBound:
-			continue
-		}
-		if cell := f.grid[e.row][k]; cell != nil && cell != e.cell && f.reads[cell].isData() {
-			return false
-		}
-	}
-	return true
-}
-
-func pText(rd *cellReading, cell *paper.Cell) string {
-	for i := range rd.cell.Values {
-		v := &rd.cell.Values[i]
-		if it := v.Part(grammar.KindPValue); it != nil {
-			return strings.TrimPrefix(it.Value.Rel+it.Value.Value, "=")
-		}
-		if !v.Estimate.IsZero() {
-			return v.Estimate.Rel + v.Estimate.Value
-		}
-	}
-	s := fold(cell.Text.S)
-	if s == "ns" || s == "n.s." || s == "n.s" {
-		return "ns"
-	}
-	return ""
 }
 
 // check raises the flags that the finished record calls for.

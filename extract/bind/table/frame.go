@@ -268,6 +268,9 @@ func (f *frame) headCell(r, c int) *paper.Cell {
 	if f.blank(r+1, c) && !f.headBelow(r+1, c) {
 		return cell
 	}
+	if f.standsAlone(r+1, c) {
+		return cell
+	}
 	for k := c - 1; k >= f.stub; k-- {
 		left := f.grid[r][k]
 		if left == nil || isBlankText(left.Text.S) {
@@ -282,6 +285,20 @@ func (f *frame) headCell(r, c int) *paper.Cell {
 		return left
 	}
 	return cell
+}
+
+// standsAlone reports that the heading below a blank one is of a comparison or
+// of p values, which belongs to none of the arms beside it.
+func (f *frame) standsAlone(r, c int) bool {
+	for ; r < f.head; r++ {
+		cell := f.grid[r][c]
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		low := fold(cell.Text.S)
+		return isPHeading(low) || compares(cell.Text.S) || isContrast(low)
+	}
+	return false
 }
 
 // aloneInRow reports that a heading is the only one over the data columns in

@@ -3,7 +3,6 @@ package table
 import (
 	"strconv"
 	"strings"
-	"unicode"
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
@@ -250,12 +249,4 @@ func givenAs(spread string) result.GivenAs {
 		return result.Range
 	}
 	return ""
-}
-
-// isUpperInitial reports a text that begins with a capital letter.
-func isUpperInitial(s string) bool {
-	for _, r := range s {
-		return unicode.IsUpper(r)
-	}
-	return false
 }

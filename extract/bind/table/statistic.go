@@ -3,7 +3,6 @@ package table
 import (
 	"strings"
 
-	"halfspan/extract/grammar"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
@@ -30,7 +29,7 @@ func (f *frame) statisticOf(e *estimate, rd *reading, x *context, all []statemen
 	if st == "" {
 		st, assumed = usual(rd.given), true
 		switch {
-		case (rd.given == result.CI || rd.given == result.SE) && regression.MatchString(f.tab.Caption.S):
+		case rd.given != result.SD && rd.given != result.IQR && rd.given != result.Range && regression.MatchString(f.tab.Caption.S):
 			st = result.Coefficient
 		case rd.given == result.CI && e.value.Percent:
 			st = result.Proportion
@@ -141,9 +140,7 @@ func usual(g result.GivenAs) result.Statistic {
 }
 
 var (
-	percentWord = pattern.MustCompile(`(?i)%|\bper ?cent|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\bincidence\b|\bsurvival\b|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission) rates?\b|\brates?\b`)
 	strictShare = pattern.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|\bpatients with\b|\bpatients \(%\)`)
-	coefficient = pattern.MustCompile(`(?i)\bregression\b|\bcoefficients?\b|\bβ\b|\bmodel β\b`)
 )
 
 // refine turns a plain mean into a change, a difference or a proportion where
@@ -209,8 +206,6 @@ func (f *frame) shares(x *context, all []statement) bool {
 	return false
 }
 
-var _ = grammar.SpreadCI
-
 var (
 	adjustedWord   = pattern.MustCompile(`(?i)\badjust(?:ed|ing|ment)\b|\bancova\b|\banalysis of covariance\b|\bcovariates?\b|\bcontroll(?:ed|ing) for\b|\bleast[- ]squares?\b|\bls[- ]?means?\b|\blsmd?\b|\bmarginal means?\b|\bmultivaria(?:te|ble)\b|\bmodel-(?:averaged|based|adjusted)\b|\badj\.?\b|\bmultiple regression\b|\bpropensity\b`)
 	unadjustedWord = pattern.MustCompile(`(?i)\bunadjusted\b|\bcrude\b|\bunivaria(?:te|ble)\b|\bnot adjusted\b|\braw means?\b|\bobserved means?\b`)
@@ -221,7 +216,7 @@ var (
 
 // adjustedOf reads from headings, caption and notes whether an estimate is
 // adjusted.
-func (f *frame) adjustedOf(e *estimate, rd *reading, r *result.Result, all []statement) {
+func (f *frame) adjustedOf(rd *reading, r *result.Result, model string, e *estimate, all []statement) {
 	switch r.Statistic {
 	case result.Mean, result.MeanChange, result.MeanDifference, result.GeometricMean:
 	default:
@@ -231,7 +226,7 @@ func (f *frame) adjustedOf(e *estimate, rd *reading, r *result.Result, all []sta
 	switch {
 	case unadjustedWord.MatchString(near):
 		r.Adjusted = "no"
-	case adjustedWord.MatchString(near):
+	case adjustedWord.MatchString(near) || model != "" && rd.given != result.SD:
 		r.Adjusted = "yes"
 	case rd.given == result.SD || f.adjustsElsewhere() && !adjustedWord.MatchString(f.tab.Caption.S):
 		r.Adjusted = "no"

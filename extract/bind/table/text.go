@@ -75,15 +75,6 @@ func isBlankText(s string) bool {
 	return false
 }
 
-// isDashText reports a cell that says by a dash or a word that it has no value.
-func isDashText(s string) bool {
-	switch fold(s) {
-	case "-", "--", "---", "n/a", "na", "nd", "n.a.", "nr", "ne", "n.d.", "not applicable", "not available", "not reported":
-		return true
-	}
-	return false
-}
-
 // hasLetter reports whether s holds any letter.
 func hasLetter(s string) bool { return strings.IndexFunc(s, unicode.IsLetter) >= 0 }
 

@@ -26,6 +26,13 @@ func (f *frame) unitOf(e *estimate, x *context) {
 	for i := len(path) - 1; i >= 0; i-- {
 		ls = append(ls, path[i])
 	}
+	if f.armRows || f.outcomeCols {
+		// The column names the outcome.
+		ls = append(append([]label{}, ls[len(ls)-len(path):]...), ls[:len(ls)-len(path)]...)
+	}
+	if x.outcomeGuess {
+		ls = append(ls, x.outcomeAt)
+	}
 	if e.unit != "" && isUnit(e.unit) {
 		x.unit, x.unitAt = e.unit, label{text: e.unit, raw: e.unit, cell: e.cell}
 		return
@@ -35,7 +42,7 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		return
 	}
 	for i, l := range ls {
-		if i >= len(ls)-len(path) && f.colArms && !unitBracket.MatchString(l.text) {
+		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && !unitBracket.MatchString(l.text) {
 			continue // "Drug 100 mg": a dose
 		}
 		if u := unitIn(l.text); u != "" {
@@ -56,8 +63,7 @@ func unitIn(s string) string {
 			}
 		}
 	}
-	t := clean(stripTerms(s))
-	t = strings.Trim(spaceBracket.ReplaceAllString(t, " "), " ,;")
+	t := nameOf(s)
 	if m := unitComma.FindStringSubmatch(t); m != nil && isUnit(clean(m[1])) {
 		return clean(m[1])
 	}

@@ -1,0 +1,253 @@
+package table
+
+import (
+	"strings"
+
+	"halfspan/extract/pattern"
+)
+
+// kind of a part of a heading.
+type partKind uint8
+
+const (
+	partEmpty partKind = iota
+	partTime
+	partArm
+	partContrast
+	partOther
+)
+
+// part is one heading or label with what it is taken for.
+type part struct {
+	l    label
+	name string // without n, statistics and marks
+	kind partKind
+}
+
+var armWord = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard (?:care|treatment|therapy)|intervention|treatment|experimental|vehicle|wait(?:ing)?[- ]?list|arms?|groups?|comparator|active|exposed|unexposed|treated|untreated|cases)\b`)
+
+// partOf classifies one heading or label.
+func (f *frame) partOf(l label) part {
+	p := part{l: l, name: nameOf(l.text)}
+	low := fold(p.name)
+	switch {
+	case low == "" && isContrast(fold(l.text)):
+		p.kind = partContrast
+	case low == "":
+		p.kind = partEmpty
+		if isTimeHeading(fold(l.text)) {
+			p.kind, p.name = partTime, tidyTime(l.text)
+		}
+	case boundHeading(fold(l.text)) != 0:
+		p.kind, p.name = partEmpty, ""
+	case isUnit(p.name) && len(p.name) > 1 && !strings.Contains(p.name, " "):
+		p.kind, p.name = partEmpty, "" // a unit alone names no group
+	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
+		p.kind, p.name = partEmpty, ""
+	case isContrast(low) || compares(l.text) && !f.isArm(low):
+		p.kind = partContrast
+	case isTimeHeading(low):
+		p.kind, p.name = partTime, tidyTime(l.text)
+	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
+		p.kind = partArm
+	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.timeRow[l.cell.Row]:
+		p.kind, p.name = partTime, tidyTime(l.text)
+	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.armRow[l.cell.Row]:
+		p.kind = partArm // beside a heading that names an arm
+	default:
+		p.kind = partOther
+	}
+	return p
+}
+
+// rowPart classifies a label before a row: there an n does not make an arm, and
+// a time stands without other words.
+func (f *frame) rowPart(l label) part {
+	p := f.partOf(l)
+	low := fold(p.name)
+	switch {
+	case p.kind == partArm && !f.isArm(low):
+		if !f.armRows {
+			p.kind = partOther
+		}
+	case p.kind == partTime && !bareTime(low):
+		p.kind, p.name = partOther, nameOf(l.text)
+	}
+	return p
+}
+
+// overValues reports that estimates with spreads stand under a heading, so that
+// "Men" names a group and no number of men.
+func (f *frame) overValues(l label) bool {
+	if l.cell == nil || l.cell.Row >= f.head {
+		return false
+	}
+	for c := max(l.cell.Col, f.stub); c < min(l.cell.Col+l.cell.ColSpan, f.tab.Cols); c++ {
+		if f.anySpread(c) {
+			return true
+		}
+	}
+	return false
+}
+
+// hasArmShape keeps "All (n = 57)" apart: names with an n are arms.
+func hasArmShape(s string) bool { return len(s) < 120 }
+
+var (
+	spaceBracket = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
+	loneMark     = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
+	edge         = " ,;:-–—/.±"
+)
+
+// nameOf takes n's, statistics and levels out of a heading: what it names.
+func nameOf(s string) string {
+	t := stripTerms(clean(s))
+	t = worded.ReplaceAllString(t, " ")
+	for k := 0; k < 3; k++ {
+		t = spaceBracket.ReplaceAllString(t, " ")
+	}
+	t = strings.ReplaceAll(t, "±", " ")
+	t = loneMark.ReplaceAllString(t, "$1")
+	t = spaceBracket.ReplaceAllString(t, " ")
+	t = clean(t)
+	t = strings.ReplaceAll(strings.ReplaceAll(t, " )", ")"), "( ", "(")
+	t = strings.Trim(t, edge)
+	t = unbalanced(dropStatParts(t))
+	if !hasLetter(t) && !hasDigit(t) {
+		return ""
+	}
+	ws := words(t)
+	left := 0
+	for _, w := range ws {
+		if !statFiller[w] {
+			left++
+		}
+	}
+	if left == 0 {
+		return ""
+	}
+	return t
+}
+
+// dropStatParts drops the parts of a list, after the first, that hold only words
+// of statistics: "Mass, kg, mean".
+func dropStatParts(s string) string {
+	parts := strings.Split(s, ",")
+	out := parts[:1]
+	for _, p := range parts[1:] {
+		keep := len(words(p)) == 0 || isUnit(clean(p))
+		for _, w := range words(p) {
+			keep = keep || !statFiller[w]
+		}
+		if keep && strings.TrimSpace(p) != "" {
+			out = append(out, p)
+		}
+	}
+	return strings.Join(out, ",")
+}
+
+var statFiller = map[string]bool{"value": true, "values": true, "adj": true, "adjusted": true, "unadjusted": true, "crude": true, "estimate": true,
+	"estimates": true, "est": true, "of": true, "the": true, "and": true, "or": true, "in": true, "for": true, "as": true, "dif": true, "diff": true,
+	"statistic": true, "statistics": true, "a": true, "b": true, "m": true, "min": true, "max": true, "std": true, "error": true, "score": true, "scores": true, "result": true, "results": true, "to": true,
+	"unless": true, "otherwise": true, "stated": true, "data": true, "are": true, "is": true, "estimated": true, "observed": true, "multivariate": true, "univariate": true,
+	"multivariable": true, "univariable": true, "model": true, "mean": true, "means": true, "median": true, "medians": true}
+
+// unbalanced drops a bracket that lost its partner when terms were taken out.
+func unbalanced(s string) string {
+	for _, pr := range [][2]string{{"(", ")"}, {"[", "]"}} {
+		o, c := strings.Count(s, pr[0]), strings.Count(s, pr[1])
+		if o > c && strings.HasSuffix(s, pr[0]) {
+			s = strings.TrimSuffix(s, pr[0])
+		}
+		if c > o && strings.HasSuffix(s, pr[1]) {
+			s = strings.TrimSuffix(s, pr[1])
+		} else if o > c {
+			if k := strings.LastIndex(s, pr[0]); k > 0 && len(s)-k < 4 {
+				s = s[:k]
+			}
+		}
+	}
+	return strings.Trim(s, edge)
+}
+
+var contrastWord = pattern.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
+
+func isContrast(low string) bool { return contrastWord.MatchString(low) }
+
+// isArm reports that the folded name is an arm by its words or because a table
+// of the paper gives it an n.
+func (f *frame) isArm(low string) bool {
+	if f.rowArms[low] || f.vocab.groups[low] && !outcomeWord.MatchString(low) || f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
+		return true
+	}
+	return armWord.MatchString(low) && len(words(low)) <= 6 && unitIn(low) == "" && !outcomeWord.MatchString(low)
+}
+
+var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
+
+var onlyArmWord = pattern.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
+
+// spannedBy reports that the arm's heading is a general word over columns with
+// names of their own: "Intervention" over three regimens.
+func (f *frame) spannedBy(path []label) bool {
+	for _, l := range path {
+		if onlyArmWord.MatchString(nameOf(l.text)) && l.cell != nil && l.cell.ColSpan > 1 {
+			return true
+		}
+	}
+	return false
+}
+
+// columnStatistic gives the statistic that the estimate's column announces.
+func (f *frame) columnStatistic(e *estimate) string {
+	for _, q := range f.columnRole(e.row, e.col).pairs {
+		if q.Statistic != "" {
+			return q.Statistic
+		}
+	}
+	return ""
+}
+
+func without(all, taken []string) []string {
+	drop := map[string]bool{}
+	for _, t := range taken {
+		drop[t] = true
+	}
+	var out []string
+	for _, a := range all {
+		if !drop[a] {
+			out = append(out, a)
+		}
+	}
+	return out
+}
+
+// armBelow reports that one of the headings names an arm.
+func (f *frame) armBelow(path []label) bool {
+	for _, l := range path {
+		if k := f.partOf(l).kind; k == partArm || k == partOther {
+			return true
+		}
+	}
+	return false
+}
+
+// compares reports that a heading announces a statistic between arms.
+func compares(s string) bool {
+	p := readPhrase(s)
+	for _, q := range p.pairs {
+		switch q.Statistic {
+		case "ratio":
+			if q.Measure != "" || p.onlyTerms {
+				return true // else it may be what was measured: the E/A ratio
+			}
+		case "mean difference", "risk difference":
+			return true
+		}
+	}
+	return false
+}
+
+var subgroupName = pattern.MustCompile(`(?i)^(?:all|total|overall|males?|females?|men|women|boys?|girls?|yes|no|low|medium|moderate|high|easy|difficult|insufficient|good|poor|normal|overweight|obese|underweight|single|married|present|absent|combined|[<>≤≥]?\s*\d+(?:\.\d+)?\s*(?:[-–]\s*\d+(?:\.\d+)?)?(?:\s*(?:years?|yrs?|y))?(?:\s*or (?:more|less|older|younger))?)$`)
+
+func (f *frame) subgroupLike(name string) bool { return subgroupName.MatchString(name) }
