@@ -153,6 +153,9 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 	if !ok {
 		return it, i, false
 	}
+	if in == afterWord && (p.kind(end+2) == TokClose || p.kind(end+2) == TokSemicolon) {
+		end = p.joinPoint(&upper, end) // "1. 02)"
+	}
 	if sep == "-" && k2 == k+1 && p.toks[k].Spaced && !p.toks[k2].Spaced && upper.Value != "" && p.toks[k].Kind == TokDash {
 		if strings.HasPrefix(lower.Value, "-") && p.toks[k].Value == p.src[lower.Start:lower.Start+len(p.toks[k].Value)] {
 			upper.Value = "-" + upper.Value
@@ -170,10 +173,15 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 
 // brokenPoint mends "14. 6 to 1.9": a space behind the decimal point.
 func (p *parser) brokenPoint(n *Number, k int) int {
-	if !whole(strings.TrimPrefix(n.Value, "-")) || p.kind(k) != TokPeriod || p.toks[k].Spaced || p.kind(k+1) != TokNumber || !whole(p.toks[k+1].Value) {
+	if s, _ := p.separator(k+2, bare); s == "" {
 		return k
 	}
-	if s, _ := p.separator(k+2, bare); s == "" {
+	return p.joinPoint(n, k)
+}
+
+// joinPoint joins a whole number, a point and the digits behind a space.
+func (p *parser) joinPoint(n *Number, k int) int {
+	if !whole(strings.TrimPrefix(n.Value, "-")) || p.kind(k) != TokPeriod || p.toks[k].Spaced || p.kind(k+1) != TokNumber || !whole(p.toks[k+1].Value) {
 		return k
 	}
 	n.Value += "." + p.toks[k+1].Value

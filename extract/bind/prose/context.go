@@ -385,6 +385,31 @@ func (p *para) inherit(r *result.Result, o *cand) {
 // subject is what stands before the verb of a stretch: "Mass was higher in".
 var subject = pattern.MustCompile(`(?i)^(.*?)\s(?:was|were|is|are|rose|fell|(?:significantly |also )?(?:decreased|increased|improved|declined|dropped|differed|changed|reduced)|remained|did|had|has|showed)\b`)
 
+// wholeList takes the names before "protein and flight time" in, which a
+// "respectively" sentence shares out: "mass, protein and flight time".
+func wholeList(stretch string, start int, part string) (string, int) {
+	end := start + len(part)
+	for start > 0 {
+		i := strings.LastIndexAny(strings.TrimRight(stretch[:start], ", "), ",;:()[]")
+		piece := strings.TrimSpace(stretch[i+1 : start])
+		if !strings.HasSuffix(piece, ",") || len(strings.Fields(piece)) > 6 || strings.ContainsAny(piece, "0123456789") {
+			break
+		}
+		start = i + 1 + len(stretch[i+1:start]) - len(strings.TrimLeft(stretch[i+1:start], " "))
+	}
+	return stretch[start:end], start
+}
+
+// holdsSpread reports that words of an interval or spread stand in a stretch.
+func (p *para) holdsSpread(a, b int) bool {
+	for k := range p.r.Items {
+		if it := &p.r.Items[k]; it.Spread != "" && it.Start < b && it.End > a {
+			return true
+		}
+	}
+	return false
+}
+
 var comparing = pattern.MustCompile(`(?i)^(?:compared|versus|vs|than|relative to|as opposed)\b`)
 
 // onlyArm reports that a stretch is nothing but an arm's name.
@@ -421,7 +446,10 @@ func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
 		if m := subject.FindStringSubmatch(part); m != nil && len(m[1]) > 2 && !groupWord.MatchString(m[1]) && !emptyWords.MatchString(m[1]) {
 			part = strings.TrimSpace(m[1])
 		}
-		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<=") && !comparing.MatchString(part) && !p.onlyArm(from+start, from+start+len(part)) {
+		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<=") && !comparing.MatchString(part) && !p.onlyArm(from+start, from+start+len(part)) && !p.holdsSpread(from+start, from+start+len(part)) {
+			if strings.Contains(part, " and ") && inOrder.MatchString(p.s[to:min(len(p.s), to+250)]) {
+				part, start = wholeList(stretch, start, part)
+			}
 			const most = 90
 			for len(part) > most {
 				cut := strings.IndexByte(part, ' ')
