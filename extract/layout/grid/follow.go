@@ -17,12 +17,13 @@ type Sheet struct {
 // all of it, the others are marked Joined and are not to be read.
 func FindAll(sheets []Sheet, bodySize int32) [][]Region {
 	out := make([][]Region, len(sheets))
+	known := learn(sheets)
 	for i := range sheets {
 		if sheets[i].Frame.Oblique {
 			continue
 		}
 		s := newSheet(sheets[i].Frame, int(bodySize))
-		s.page = sheets[i].Page
+		s.page, s.words = sheets[i].Page, known
 		prev := openBefore(sheets, out, i)
 		out[i] = s.find(prev)
 	}
@@ -181,7 +182,7 @@ func (r *Region) whole() (*sheet, box) {
 	if len(r.parts) == 0 {
 		return r.sheet, r.body
 	}
-	m := &sheet{frame: r.sheet.frame, bodySize: r.sheet.bodySize, bounds: r.sheet.bounds, page: r.sheet.page}
+	m := &sheet{frame: r.sheet.frame, bodySize: r.sheet.bodySize, bounds: r.sheet.bounds, page: r.sheet.page, words: r.sheet.words}
 	first := r.sheet.linesIn(r.body)
 	m.addPart(r.sheet, first, r.body, 0, 0)
 	bottom := r.body.bot

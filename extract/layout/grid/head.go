@@ -132,7 +132,7 @@ func (rd *reader) wordShare(c int) int {
 		for k := range rd.cells[i] {
 			if p := &rd.cells[i][k]; p.c0 == c {
 				all++
-				if !p.figure {
+				if !p.figure || hasUnit(p.text) {
 					words++
 				}
 			}

@@ -63,6 +63,7 @@ type sheet struct {
 	bounds   box
 	bodySize int // the font size that most letters have
 	page     int
+	words    map[string]bool // that the paper prints, for joining broken ones
 }
 
 const (

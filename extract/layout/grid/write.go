@@ -3,10 +3,8 @@ package grid
 import (
 	"slices"
 	"strings"
-	"unicode"
 
 	"halfspan/extract/paper"
-	"halfspan/extract/tidy"
 )
 
 // write fills the table's grid from the reader's pieces.
@@ -92,7 +90,7 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 		c0, c1 int
 		toks   [][]int
 		figure bool
-		x0     int
+		x0, x1 int
 	}
 	var parts []part
 	for _, i := range lines {
@@ -106,7 +104,7 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 				}
 			}
 			if at < 0 {
-				parts = append(parts, part{c0: p.c0, c1: p.c1, figure: p.figure, x0: p.x0})
+				parts = append(parts, part{c0: p.c0, c1: p.c1, figure: p.figure, x0: p.x0, x1: p.x1})
 				at = len(parts) - 1
 			} else if q := &parts[at]; p.c1-p.c0 < q.c1-q.c0 {
 				q.c0, q.c1 = p.c0, p.c1
@@ -124,8 +122,8 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 		c := paper.Cell{Row: row, Col: p.c0, RowSpan: 1, ColSpan: p.c1 - p.c0 + 1, Head: heading || p.c0 == 0}
 		if label {
 			c.Head = true
-			if p.c0 > 0 && p.x0 > rd.area.x0+rd.area.width()/5 {
-				c.Col, c.ColSpan = 0, len(rd.cs)+1 // a centred row group
+			if rd.groupInMiddle(p.c0, p.c1, p.x0, p.x1) {
+				c.Col, c.ColSpan = 0, len(rd.cs)+1
 			} else if p.c0 == 0 {
 				c.ColSpan = 1
 			}
@@ -157,101 +155,27 @@ func (rd *reader) finishFigures(g *cellGrid, from, to int) {
 	}
 }
 
-// spanStubs lets a row heading reach over the rows that have none, where the
-// next column holds row headings too: down from its row or, where headings are
-// set in the middle of their rows, both ways.
-func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
-	if len(rd.cs) < 2 || !rd.labels(1) {
-		return
+// groupInMiddle reports whether words that stand alone in their row, in columns
+// c0 to c1 and from x0 to x1, are a row group over the whole table: centred on
+// it, or right of the stub and not flush with a column.
+func (rd *reader) groupInMiddle(c0, c1, x0, x1 int) bool {
+	left := rd.area.x1
+	for i := rd.head; i < len(rd.lines); i++ {
+		if rd.hasStub(i) {
+			left = min(left, rd.cells[i][0].x0)
+		}
 	}
-	var stubs, open []int // cells of the stub; rows without one
-	flush := func() {
-		if len(open) > 0 && len(stubs) > 0 {
-			rd.spanMiddle(g, stubs, open, rows, head)
-		}
-		stubs, open = nil, nil
+	if x0-left < 3*rd.em {
+		return false
 	}
-	gaps := false // rows without a heading of their own
-	for k := range rows {
-		_, beside := g.at[[2]int{head + k, 1}]
-		_, own := g.at[[2]int{head + k, 0}]
-		gaps = gaps || beside && !own
+	if abs(x0+x1-rd.area.x0-rd.area.x1) <= 4*rd.em || c0 == 0 && c1 == len(rd.cs) {
+		return true
 	}
-	for k := range rows {
-		_, beside := g.at[[2]int{head + k, 1}]
-		if !beside {
-			flush() // a row group of its own
-			continue
-		}
-		if c, ok := g.at[[2]int{head + k, 0}]; ok {
-			n := len(stubs)
-			if n > 0 && gaps && g.cells[stubs[n-1]].Row == head+k-1 && rd.sameStub(&g.cells[stubs[n-1]], &g.cells[c]) {
-				up := &g.cells[stubs[n-1]]
-				up.toks = append(up.toks, g.cells[c].toks...)
-				g.cells[c].toks = nil
-				delete(g.at, [2]int{head + k, 0})
-			} else {
-				stubs = append(stubs, c)
-			}
-		}
-		open = append(open, k)
+	if c0 == 0 {
+		return false
 	}
-	flush()
-}
-
-// sameStub reports whether two row headings below one another are one that is
-// set beside several rows.
-func (rd *reader) sameStub(up, down *gridCell) bool {
-	a, b := rd.s.join(up.toks[len(up.toks)-1]), rd.s.join(down.toks[0])
-	return unfinishedLabel(a, b) || startsLow(b) && b[0] != '%'
-}
-
-// spanMiddle shares the rows of one stretch among its row headings.
-func (rd *reader) spanMiddle(g *cellGrid, stubs, stretch []int, rows [][]int, head int) {
-	height := func(k int) int { // of the middle of a row, by its second column
-		for _, i := range rows[k] {
-			for _, p := range rd.cells[i] {
-				if p.c0 == 1 {
-					return rd.lines[i].base
-				}
-			}
-		}
-		return rd.lines[rows[k][0]].base
-	}
-	middle := g.cells[stubs[0]].Row > head+stretch[0]
-	from := stretch[0]
-	last := stretch[len(stretch)-1]
-	for n, c := range stubs {
-		cell := &g.cells[c]
-		own, next := cell.Row-head, last+1
-		if n+1 < len(stubs) {
-			next = g.cells[stubs[n+1]].Row - head
-		}
-		to := next - 1
-		if middle {
-			y := 0
-			for _, toks := range cell.toks {
-				y += rd.s.toks[toks[0]].base
-			}
-			y /= len(cell.toks)
-			best := 1 << 30
-			for e := own; e < next; e++ {
-				if d := abs((height(from)+height(e))/2 - y); d < best {
-					best, to = d, e
-				}
-			}
-			if n == len(stubs)-1 {
-				to = last
-			}
-		} else {
-			from = own
-		}
-		for k := from; k <= to; k++ {
-			g.at[[2]int{head + k, 0}] = c
-		}
-		cell.Row, cell.RowSpan = head+from, to-from+1
-		from = to + 1
-	}
+	lo, _ := rd.strip(c0)
+	return abs(x0-lo)*10 > rd.em*4 && x0 > rd.area.x0+rd.area.width()/5
 }
 
 // headingRow reports whether a body row is a second row of column headings:
@@ -276,189 +200,4 @@ func (rd *reader) headingRow(lines []int) bool {
 		}
 	}
 	return n >= 2 && (heads == n || bold+heads == n)
-}
-
-// indents gives the row headings their steps of indentation.
-func (rd *reader) indents(cells []gridCell, headRows int) {
-	var xs []int
-	left := func(c *gridCell) int { return rd.s.toks[c.toks[0][0]].x0 }
-	for i := range cells {
-		if c := &cells[i]; c.Row >= headRows && c.Col == 0 && c.ColSpan == 1 {
-			xs = append(xs, left(c))
-		}
-	}
-	if len(xs) == 0 {
-		return
-	}
-	slices.Sort(xs)
-	steps := []int{xs[0]}
-	for _, x := range xs {
-		if x-steps[len(steps)-1] > rd.em*35/100 {
-			steps = append(steps, x)
-		}
-	}
-	if len(steps) > 6 {
-		return // centred or ragged: the left edge says nothing
-	}
-	for i := range cells {
-		c := &cells[i]
-		if c.Row < headRows || c.Col != 0 || c.ColSpan != 1 {
-			continue
-		}
-		for k := range steps {
-			if left(c) >= steps[k] {
-				c.Indent = k
-			}
-		}
-	}
-}
-
-// writer makes TextRuns with places.
-type writer struct {
-	sheet *sheet
-	page  int
-}
-
-// pageOf is the page of a token: its sheet's, where that is known.
-func (w *writer) pageOf(t *tok) int {
-	if t.page != 0 {
-		return int(t.page)
-	}
-	return w.page
-}
-
-// caption is the caption's text without its label.
-func (w *writer) caption(r *Region) paper.TextRun {
-	var toks [][]int
-	for i := range r.caption {
-		ts := r.caption[i].toks
-		if i == 0 {
-			kept := ts[:0:0]
-			for _, t := range ts {
-				if t < r.label.tok || t >= r.label.tok+r.label.n {
-					kept = append(kept, t)
-				}
-			}
-			ts = kept
-		}
-		if len(ts) > 0 {
-			toks = append(toks, ts)
-		}
-	}
-	return w.text(toks)
-}
-
-// notes cuts the note lines into notes by their marks.
-func (w *writer) notes(lines []line) []paper.FootNote {
-	var out []paper.FootNote
-	var cur [][]int
-	flush := func() {
-		if len(cur) > 0 {
-			out = append(out, tidy.SplitNotes(w.text(cur))...)
-		}
-		cur = nil
-	}
-	for i := range lines {
-		first := &w.sheet.toks[lines[i].toks[0]]
-		if first.shift == paper.Raised || strings.Trim(first.text, "*†‡§¶#‖|∗") == "" {
-			flush()
-		}
-		cur = append(cur, lines[i].toks)
-	}
-	flush()
-	return out
-}
-
-// text makes a TextRun of tokens by line: words joined by one space where they
-// are not glued, hyphenated line ends joined.
-func (w *writer) text(lines [][]int) paper.TextRun {
-	var run paper.TextRun
-	var b strings.Builder
-	for li, toks := range lines {
-		for k, i := range toks {
-			t := &w.sheet.toks[i]
-			word := t.w
-			if b.Len() > 0 {
-				switch {
-				case k == 0 && li > 0:
-					if !w.unhyphen(&b, &run, t.text) && !rangeGoesOn(b.String(), t.text) {
-						b.WriteByte(' ')
-					}
-				case k > 0 && !t.glued:
-					b.WriteByte(' ')
-				}
-			}
-			start := b.Len()
-			for gi := range word.Glyphs {
-				g := &word.Glyphs[gi]
-				from := b.Len()
-				b.WriteString(g.Text)
-				if b.Len() > from {
-					run.Runs = append(run.Runs, paper.Run{Start: from, End: b.Len(), Place: paper.Place{
-						Page: w.pageOf(t), Line: int(t.line) + 1, Box: g.Box, Origin: g.Origin,
-					}})
-				}
-			}
-			w.styles(&run, start, b.Len(), t, word.Italic)
-		}
-	}
-	run.S = b.String()
-	return run
-}
-
-// rangeGoesOn reports whether a line ends with the dash of a range whose second
-// number the next line begins with.
-func rangeGoesOn(before, next string) bool {
-	body := strings.TrimRight(before, "–—-−")
-	return body != before && body != "" && (unicode.IsDigit(lastRune(body)) || lastRune(body) == '%') && unicode.IsDigit(firstRune(next))
-}
-
-// unhyphen takes back a hyphen at a line's end where the word goes on in lower
-// case, and reports whether the lines are to be joined without a space.
-func (w *writer) unhyphen(b *strings.Builder, run *paper.TextRun, next string) bool {
-	s := b.String()
-	if !strings.HasSuffix(s, "-") && !strings.HasSuffix(s, "\u2010") && !strings.HasSuffix(s, "\u00ad") {
-		return false
-	}
-	body := strings.TrimRight(s, "-\u2010\u00ad")
-	if body == "" || !lowerLetter(lastRune(body)) || !lowerLetter(firstRune(next)) {
-		return false
-	}
-	n := len(run.Runs)
-	if n == 0 || run.Runs[n-1].End != b.Len() {
-		return false
-	}
-	cut := run.Runs[n-1].Start
-	if s[cut:] != "-" && s[cut:] != "\u2010" && s[cut:] != "\u00ad" {
-		return true
-	}
-	b.Reset()
-	b.WriteString(s[:cut])
-	run.Runs = run.Runs[:n-1]
-	for k := range run.Styles {
-		run.Styles[k].End = min(run.Styles[k].End, cut)
-	}
-	return true
-}
-
-// styles adds the styles of one word, joined to the same style before it.
-func (w *writer) styles(run *paper.TextRun, start, end int, t *tok, italic bool) {
-	add := func(kind paper.StyleKind) {
-		for k := len(run.Styles) - 1; k >= 0 && k >= len(run.Styles)-4; k-- {
-			if s := &run.Styles[k]; s.Kind == kind && s.End >= start-1 {
-				s.End = end
-				return
-			}
-		}
-		run.Styles = append(run.Styles, paper.Style{Start: start, End: end, Kind: kind})
-	}
-	if t.shift != 0 {
-		run.Styles = append(run.Styles, paper.Style{Start: start, End: end, Kind: t.shift})
-	}
-	if t.bold {
-		add(paper.Bold)
-	}
-	if italic {
-		add(paper.Italic)
-	}
 }

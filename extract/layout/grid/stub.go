@@ -1,0 +1,153 @@
+package grid
+
+import "slices"
+
+// spanStubs lets a row heading reach over the rows that have none, where the
+// next column holds row headings too: down from its row or, where headings are
+// set in the middle of their rows, both ways.
+func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
+	if len(rd.cs) < 2 || !rd.labels(1) {
+		return
+	}
+	var stubs, open []int // cells of the stub; rows without one
+	flush := func() {
+		if len(open) > 0 && len(stubs) > 0 {
+			rd.spanMiddle(g, stubs, open, rows, head)
+		}
+		stubs, open = nil, nil
+	}
+	gaps := false // rows without a heading of their own
+	for k := range rows {
+		_, beside := g.at[[2]int{head + k, 1}]
+		_, own := g.at[[2]int{head + k, 0}]
+		gaps = gaps || beside && !own
+	}
+	for k := range rows {
+		_, beside := g.at[[2]int{head + k, 1}]
+		if !beside {
+			flush() // a row group of its own
+			continue
+		}
+		if c, ok := g.at[[2]int{head + k, 0}]; ok {
+			n := len(stubs)
+			if n > 0 && gaps && g.cells[stubs[n-1]].Row == head+k-1 && rd.sameStub(&g.cells[stubs[n-1]], &g.cells[c]) {
+				up := &g.cells[stubs[n-1]]
+				up.toks = append(up.toks, g.cells[c].toks...)
+				g.cells[c].toks = nil
+				delete(g.at, [2]int{head + k, 0})
+			} else {
+				stubs = append(stubs, c)
+			}
+		}
+		open = append(open, k)
+	}
+	flush()
+}
+
+// sameStub reports whether two row headings below one another are one that is
+// set beside several rows.
+func (rd *reader) sameStub(up, down *gridCell) bool {
+	a, b := rd.s.join(up.toks[len(up.toks)-1]), rd.s.join(down.toks[0])
+	return unfinishedLabel(a, b) || startsLow(b) && b[0] != '%'
+}
+
+// spanMiddle shares the rows of one stretch among its row headings: each has
+// the rows that it stands in the middle of or, where that does not come out
+// even, those from its own down.
+func (rd *reader) spanMiddle(g *cellGrid, stubs, stretch []int, rows [][]int, head int) {
+	from, ok := rd.middles(g, stubs, stretch, rows, head)
+	if !ok {
+		from = nil
+		for _, c := range stubs {
+			from = append(from, g.cells[c].Row-head)
+		}
+	}
+	for n, c := range stubs {
+		cell := &g.cells[c]
+		to := stretch[len(stretch)-1]
+		if n+1 < len(stubs) {
+			to = from[n+1] - 1
+		}
+		for k := from[n]; k <= to; k++ {
+			g.at[[2]int{head + k, 0}] = c
+		}
+		cell.Row, cell.RowSpan = head+from[n], to-from[n]+1
+	}
+}
+
+// middles gives the first row of each row heading if all of them stand in the
+// middle of their rows and not beside the first.
+func (rd *reader) middles(g *cellGrid, stubs, stretch []int, rows [][]int, head int) (from []int, ok bool) {
+	height := func(k int) int { // of a row, by its second column
+		for _, i := range rows[k] {
+			for _, p := range rd.cells[i] {
+				if p.c0 == 1 {
+					return rd.lines[i].base
+				}
+			}
+		}
+		return rd.lines[rows[k][0]].base
+	}
+	last := stretch[len(stretch)-1]
+	start, off := stretch[0], false
+	for n, c := range stubs {
+		cell := &g.cells[c]
+		own, next := cell.Row-head, last+1
+		if n+1 < len(stubs) {
+			next = g.cells[stubs[n+1]].Row - head
+		}
+		y := 0
+		for _, toks := range cell.toks {
+			y += rd.s.toks[toks[0]].base
+		}
+		y /= len(cell.toks)
+		off = off || abs(y-height(own))*5 > rd.em || n == 0 && start < own
+		best, to := 1<<30, own
+		for e := max(own, start); e < next; e++ {
+			if d := abs((height(start)+height(e))/2 - y); d < best {
+				best, to = d, e
+			}
+		}
+		if best*10 > rd.em*4 {
+			return nil, false
+		}
+		from = append(from, start)
+		start = to + 1
+	}
+	return from, off && start == last+1
+}
+
+// indents gives the row headings their steps of indentation.
+func (rd *reader) indents(cells []gridCell, headRows int) {
+	var xs []int
+	left := func(c *gridCell) int { return rd.s.toks[c.toks[0][0]].x0 }
+	for i := range cells {
+		if c := &cells[i]; c.Row >= headRows && c.Col == 0 && c.ColSpan == 1 {
+			xs = append(xs, left(c))
+		}
+	}
+	if len(xs) == 0 {
+		return
+	}
+	slices.Sort(xs)
+	steps := []int{xs[0]}
+	for _, x := range xs {
+		if x-steps[len(steps)-1] > rd.em*35/100 {
+			steps = append(steps, x)
+		}
+	}
+	if len(steps) > 6 {
+		return // centred or ragged: the left edge says nothing
+	}
+	for i := range cells {
+		c := &cells[i]
+		if c.Row < headRows || c.Col != 0 || c.ColSpan != 1 {
+			continue
+		}
+		for k := range steps {
+			if left(c) >= steps[k] {
+				c.Indent = k
+			}
+		}
+	}
+}
