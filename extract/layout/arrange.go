@@ -180,6 +180,10 @@ func (s *sheet) takeRegions(regions []grid.Region, from []int) {
 		l.table = &tableAt{rows: rows, joined: r.Joined}
 		if !r.Joined {
 			l.table.table = r.Read(s.page)
+			// The table may be wider than its words: a white last column.
+			if t := s.frame.Upright(l.table.table.Box); l.table.table.Page == s.page && t.X1 > t.X0 {
+				l.x0, l.x1 = min(l.x0, int(t.X0)), max(l.x1, int(t.X1))
+			}
 		}
 		tables = append(tables, l)
 	}

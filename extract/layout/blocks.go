@@ -261,7 +261,7 @@ func (a *arranger) continuation(i int, gone []bool) int {
 			continue
 		}
 		next := e.first().text()
-		if goesOn(prev, next) || d.last().full() && e.first().full() && !opensBlock(next) {
+		if goesOn(prev, next) || !opensBlock(next) && runsOver(d, e) {
 			return k
 		}
 		return -1
@@ -285,6 +285,17 @@ func goesOn(prev, next string) bool {
 		return !numbered.MatchString(next)
 	}
 	return endsOpen(prev) || strings.Count(prev, "(") > strings.Count(prev, ")")
+}
+
+// runsOver reports whether paragraph d, which ends without a stop, fills its
+// column to the end and e begins at the edge of another one.
+func runsOver(d, e *draft) bool {
+	p, q := d.last(), e.first()
+	if p.full() && q.full() {
+		return true
+	}
+	moved := p.page != q.page || q.base < p.base || q.edge > p.edge+p.width/2
+	return moved && len(d.lines) >= 3 && !p.short() && q.x0 <= q.edge+q.size/2 && len(q.words) > 2
 }
 
 // opensBlock reports whether a line begins something of its own, whatever

@@ -115,6 +115,12 @@ func (s *sheet) weighStripes(bodySize int) {
 			r.fill(int(w.Box.X0), l.top, int(w.Box.X1), l.bot)
 		}
 	}
+	// A line drawn across parts what is above from what is below.
+	for _, rule := range s.frame.Rules {
+		if h := int(rule.Y1) - int(rule.Y0); h <= 2*cell && int(rule.X1)-int(rule.X0) >= 8*bodySize {
+			r.fill(int(rule.X0), -int(rule.Y1), int(rule.X1), -int(rule.Y0))
+		}
+	}
 	for _, st := range r.stripes(max(4*bodySize/cell, 2)) {
 		c := candidate{g: gutter{r.x + st.col*cell, r.x + (st.col+2)*cell, r.y + st.top*cell, r.y + (st.bot+1)*cell}}
 		s.weigh(&c, bodySize)
