@@ -2,6 +2,7 @@ package plain
 
 import (
 	"strings"
+	"unicode"
 	"unicode/utf8"
 )
 
@@ -85,11 +86,12 @@ func (r *reader) alignedRegion(i int, captioned bool) (region, bool) {
 	if len(cuts) == 0 {
 		return region{}, false
 	}
-	g := region{from: i, to: end}
+	g := region{from: i, to: end, fixed: true}
 	for _, p := range all {
 		g.rows = append(g.rows, r.alignRow(p, cuts))
 	}
-	g.joinWrapped()
+	spanHeads(g.rows, all)
+	g.rows = joinWrapped(g.rows)
 	return g, true
 }
 
@@ -162,19 +164,13 @@ func columnCuts(rows [][]piece) []int {
 	return cuts
 }
 
-// alignRow puts the pieces of a line into columns; a piece over a cut stays in
-// the column that holds its beginning and leaves the next ones empty.
+// alignRow puts the pieces of a line into columns by where they begin.
 func (r *reader) alignRow(p []piece, cuts []int) []rowCell {
 	row := make([]rowCell, len(cuts)+1)
 	for _, c := range p {
 		k := 0
 		for k < len(cuts) && (c.from+min(c.to, c.from+3))/2 >= cuts[k] {
 			k++
-		}
-		if len(p) > 1 && k < len(cuts) && c.to > cuts[k] && row[k].label == "" {
-			// a heading set in the middle of its columns
-			row[k] = r.rowCell(c.start, c.end)
-			continue
 		}
 		if row[k].label != "" {
 			row[k] = r.rowCell(row[k].start, c.end)
@@ -185,11 +181,140 @@ func (r *reader) alignRow(p []piece, cuts []int) []rowCell {
 			row[k].indent = 2 * c.from
 		}
 	}
-	if len(p) == 1 && row[0].label != "" && strings.TrimSpace(row[0].label) != "" {
-		return row
-	}
 	return row
 }
 
-// joinWrapped is a hook for rows broken over lines; see wrap.go.
-func (g *region) joinWrapped() {}
+// spanHeads finds what each heading above other headings spans: the columns
+// round its own that it stands over the middle of.
+func spanHeads(rows [][]rowCell, all [][]piece) {
+	ink := columnInk(rows, all)
+	head := headings(rows, len(ink))
+	for i := 0; i+1 < head; i++ {
+		row := rows[i]
+		for k := 1; k < len(row); k++ {
+			if row[k].label == "" {
+				continue
+			}
+			first, last := k, k
+			for first > 1 && row[first-1].label == "" && row[first-1].over == 0 {
+				first--
+			}
+			for last+1 < len(row) && row[last+1].label == "" {
+				last++
+			}
+			from, to := centred(ink, k, first, last, twiceMiddle(all[i], row[k].start))
+			row[from], row[k] = row[k], row[from]
+			row[from].over = to - from + 1
+			for c := from + 1; c <= to; c++ {
+				row[c] = rowCell{over: -1}
+			}
+			k = to
+		}
+	}
+}
+
+// columnInk gives the stretch of positions that each column's cells take, by
+// the rows that fill at least half of the columns.
+func columnInk(rows [][]rowCell, all [][]piece) []piece {
+	ink := make([]piece, len(rows[0]))
+	for i, row := range rows {
+		filled := 0
+		for _, c := range row {
+			if c.label != "" {
+				filled++
+			}
+		}
+		if 2*filled < len(row) {
+			continue
+		}
+		for k, c := range row {
+			for _, p := range all[i] {
+				if c.label == "" || p.start != c.start {
+					continue
+				}
+				if ink[k].to == 0 {
+					ink[k] = p
+				}
+				ink[k].from, ink[k].to = min(ink[k].from, p.from), max(ink[k].to, p.to)
+			}
+		}
+	}
+	return ink
+}
+
+// twiceMiddle is twice the middle of the piece of a line that begins at byte
+// start.
+func twiceMiddle(line []piece, start int) int {
+	for _, p := range line {
+		if p.start == start {
+			return p.from + p.to
+		}
+	}
+	return 0
+}
+
+// centred picks the columns [from, to] within [first, last] that hold column k
+// and whose middle is nearest to a heading's; of equals the most.
+func centred(ink []piece, k, first, last, twice int) (from, to int) {
+	from, to = k, k
+	best := -1
+	for a := first; a <= k; a++ {
+		for z := k; z <= last; z++ {
+			off := ink[a].from + ink[z].to - twice
+			off = max(off, -off)
+			if best < 0 || off < best || off == best && z-a > to-from {
+				best, from, to = off, a, z
+			}
+		}
+	}
+	return from, to
+}
+
+// joinWrapped joins the lines of a label that is wrapped round its values: a
+// first part without values, values without a label, an end without values.
+func joinWrapped(rows [][]rowCell) [][]rowCell {
+	var out [][]rowCell
+	for i, row := range rows {
+		if n := len(out); n > 0 && i > 1 {
+			above := out[n-1]
+			switch {
+			case labelOnly(above) && row[0].label == "" && hasValues(row):
+				row[0] = above[0]
+				out[n-1] = row
+				continue
+			case labelOnly(above) && hasValues(row) && goesOn(above[0].label, row[0].label):
+				row[0] = joinLabels(above[0], row[0])
+				out[n-1] = row
+				continue
+			case hasValues(above) && labelOnly(row) && closes(row[0].label):
+				above[0] = joinLabels(above[0], row[0])
+				continue
+			}
+		}
+		out = append(out, row)
+	}
+	return out
+}
+
+func hasValues(row []rowCell) bool {
+	data, _ := dataRow(row)
+	return data
+}
+
+// goesOn reports whether a label is the beginning of the one below it.
+func goesOn(above, below string) bool {
+	first, _ := utf8.DecodeRuneInString(below)
+	return strings.HasSuffix(above, ",") || strings.HasSuffix(above, "-") || unicode.IsLower(first) || strings.HasPrefix(below, "(")
+}
+
+// closes reports whether a label is the end of the one above it.
+func closes(label string) bool {
+	first, _ := utf8.DecodeRuneInString(label)
+	return unicode.IsLower(first) || strings.HasPrefix(label, "(")
+}
+
+func joinLabels(a, b rowCell) rowCell {
+	a.label += " " + b.label
+	a.more = append(append(a.more[:len(a.more):len(a.more)], piece{start: b.start, end: b.end}), b.more...)
+	return a
+}

@@ -37,7 +37,7 @@ func (p *placed) put(spots [][]spot) {
 // row are over one column each unless wide says otherwise: that is rare, and
 // costs a long search.
 func searchHeads(rows [][]rowCell, cols int, body []profile, wide bool) *headWay {
-	if len(rows) > maxHeadRows {
+	if len(rows) > maxHeadRows || cols > maxHeadCols {
 		return nil
 	}
 	s := headSearch{rows: known(rows, cols, body), cols: cols, body: body, wide: wide, memo: map[headKey][]headWay{}}
@@ -67,6 +67,7 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 
 const (
 	maxHeadRows = 4
+	maxHeadCols = 40      // wider tables are not printed; their headings stand as they come
 	mostWays    = 48      // ways kept for a stretch of columns
 	headFuel    = 150_000 // steps of the search for one table
 )

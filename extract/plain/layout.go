@@ -38,6 +38,21 @@ func layOut(rows [][]rowCell, head int) layoutOf {
 	return lay
 }
 
+// asTold takes rows with a cell for every column as they are.
+func asTold(rows [][]rowCell) layoutOf {
+	lay := layoutOf{cols: columns(rows), rows: make([][]spot, len(rows))}
+	lay.head = headings(rows, lay.cols)
+	for i, row := range rows {
+		lay.rows[i] = make([]spot, len(row))
+		for k, c := range row {
+			if c.over >= 0 && k < lay.cols {
+				lay.rows[i][k] = spot{k, min(max(c.over, 1), lay.cols-k), 1}
+			}
+		}
+	}
+	return lay
+}
+
 // place finds the spots of all cells by what the columns hold.
 func (lay *layoutOf) place(rows [][]rowCell, body []profile) {
 	var groups []spot // heading cells over several columns, as units that body cells may span too

@@ -28,6 +28,7 @@ type reader struct {
 
 	hyphened map[string]bool // words printed with a hyphen inside a line
 	prose    map[string]int  // how often each word stands in running text
+	front    int             // the first line after title, authors and addresses
 	sections sections
 	regions  map[int]region // tables by their first line, as looked for so far; no rows: none
 }
@@ -58,6 +59,7 @@ func Read(path string, content []byte) (*paper.Document, error) {
 	r.findHyphens()
 	r.countWords()
 	r.furniture()
+	r.findFront()
 	r.read()
 	if src.Guessed {
 		r.problem("encoding-guessed", "the file is not UTF-8; it was read as "+src.Encoding+", so look at its special characters", false)

@@ -12,11 +12,10 @@ import (
 // sections follows the headings of a text: which zone it is in, and whether an
 // "Results" belongs to a structured abstract or to the paper's body.
 type sections struct {
-	zone      paper.Zone
-	title     string
-	abstract  abstractState
-	seen      map[paper.Zone]bool // zones named inside the abstract
-	frontDone bool
+	zone     paper.Zone
+	title    string
+	abstract abstractState
+	seen     map[paper.Zone]bool // zones named inside the abstract
 }
 
 type abstractState uint8
@@ -38,7 +37,7 @@ func looksHeading(s string) bool {
 	if s == "" || utf8.RuneCountInString(s) > long || len(strings.Fields(s)) > words {
 		return false
 	}
-	if strings.ContainsAny(s[len(s)-1:], ".;,?") {
+	if strings.ContainsAny(s[len(s)-1:], ".;,?:") || strings.Contains(s, "\t") || frontLine.MatchString(s) {
 		return false
 	}
 	first, _ := utf8.DecodeRuneInString(s)

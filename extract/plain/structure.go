@@ -22,6 +22,33 @@ func isCaption(s string) bool {
 	return m != nil && !refersTo.MatchString(s[m[3]:])
 }
 
+// findFront looks for the line "Abstract" near the start: what stands before it
+// is title, authors and addresses.
+func (r *reader) findFront() {
+	const within, fewest = 120, 15 // lines; letters of a title
+	for i, l := range r.lines[:min(len(r.lines), within)] {
+		s := r.text(l)
+		if len(s) > 40 {
+			continue
+		}
+		if z, sure := paper.ZoneOf(s); !sure || z != paper.Abstract {
+			continue
+		}
+		r.front = i
+		for _, l := range r.lines[:i] {
+			s := strings.TrimSpace(r.text(l))
+			if len(s) >= fewest && len(strings.Fields(s)) > 3 && !frontLine.MatchString(s) && !citationLine.MatchString(s) {
+				r.doc.Title = s
+				return
+			}
+		}
+		return
+	}
+}
+
+// citationLine is the line that says where a paper was published.
+var citationLine = regexp.MustCompile(`(?i)\bdoi\b|\b(?:19|20)\d\d\s*[;:]|\bvol(?:ume|\.)`)
+
 // read goes through the lines and makes the blocks.
 func (r *reader) read() {
 	for i := 0; i < len(r.lines); {
@@ -56,7 +83,7 @@ func (r *reader) chunk(i int) int {
 
 // startsTable reports whether the rows of a table begin at line k.
 func (r *reader) startsTable(k int) bool {
-	if !r.tabbed(k) && !r.piped(k) {
+	if !r.tabbed(k) && !r.piped(k) && !gridRule.MatchString(r.text(r.lines[k])) {
 		return false
 	}
 	_, ok := r.regionAt(k, false)
@@ -79,6 +106,12 @@ func (r *reader) regionAt(i int, captioned bool) (region, bool) {
 }
 
 func (r *reader) findRegion(i int, captioned bool) (region, bool) {
+	if gridRule.MatchString(r.text(r.lines[i])) && i+1 < len(r.lines) && r.piped(i+1) {
+		if g, ok := r.pipeRegion(i + 1); ok {
+			g.from = i
+			return g, true
+		}
+	}
 	if r.tabbed(i) || len(r.text(r.lines[i])) < longLine && r.rowsBelow(i+1) {
 		if g, ok := r.tabRegion(i); ok {
 			return g, true
@@ -217,7 +250,7 @@ func (r *reader) paragraphEnd(from, to int) int {
 	for k := from; k < to; k++ {
 		widest = max(widest, utf8.RuneCountInString(r.text(r.lines[k])))
 	}
-	if widest > printed || to-from == 1 {
+	if widest > printed || to-from == 1 || r.tabbed(from) || r.tabbed(from+1) {
 		return from + 1
 	}
 	if to-from > 1 && r.headingLine(from) && !r.continues(from, widest) {
@@ -245,10 +278,11 @@ var entryStart = regexp.MustCompile(`^\s*(?:\[\d{1,3}\]|\d{1,3}\.|\(\d{1,3}\)|[â
 // paragraph reads lines [from, to) as a heading or as one paragraph.
 func (r *reader) paragraph(from, to int) {
 	s := strings.TrimFunc(r.run(from, to).S, unicode.IsSpace)
-	if to-from <= 2 && r.sections.heading(s, r.lines, to) {
-		if r.sections.zone == paper.References || strings.EqualFold(paper.PlainTitle(s), "abstract") {
-			r.sections.frontDone = true
-		}
+	if from < r.front {
+		r.emit(paper.Furniture, from, to)
+		return
+	}
+	if to-from <= 2 && !r.tabbed(from) && r.sections.heading(s, r.lines, to) {
 		r.emit(paper.Heading, from, to)
 		return
 	}

@@ -14,14 +14,17 @@ type rowCell struct {
 	start, end int // in the decoded text
 	indent     int
 	kind       kind
-	label      string // its text
+	label      string  // its text
+	more       []piece // further lines of it
+	over       int     // how many columns it spans, where the form tells; 0: not told; -1: none, a cell before it covers it
 }
 
 // region is the lines of one table.
 type region struct {
 	from, to int // lines
 	rows     [][]rowCell
-	head     int // heading rows that the form marks (a rule of a pipe table); 0 none
+	fixed    bool // the form tells where cells stand: each row has a cell for every column
+	head     int  // heading rows that the form marks (a rule of a pipe table); 0 none
 }
 
 // tabbed reports whether line i is a row with cells parted by tabs.
@@ -234,7 +237,12 @@ func (r *reader) splitPipes(l line) []rowCell {
 
 // table lays the rows of a region out as a grid.
 func (r *reader) table(g region) *paper.Table {
-	lay := layOut(g.rows, g.head)
+	var lay layoutOf
+	if g.fixed {
+		lay = asTold(g.rows)
+	} else {
+		lay = layOut(g.rows, g.head)
+	}
 	t := &paper.Table{Rows: len(g.rows), Cols: lay.cols, HeadRows: lay.head}
 	for i, row := range g.rows {
 		for k, c := range row {
@@ -244,6 +252,10 @@ func (r *reader) table(g region) *paper.Table {
 			}
 			b := &source.Builder{Src: r.src}
 			r.spaced(b, c.start, c.end)
+			for _, p := range c.more {
+				b.Space(p.start)
+				r.spaced(b, p.start, p.end)
+			}
 			t.Cells = append(t.Cells, paper.Cell{Row: i, Col: at.col, RowSpan: at.height, ColSpan: at.width, Indent: c.indent, Head: i < lay.head, Text: b.Run()})
 		}
 	}

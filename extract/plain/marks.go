@@ -1,0 +1,103 @@
+package plain
+
+import (
+	"regexp"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"halfspan/extract/paper"
+)
+
+// In text a raised mark stands on the line like any letter: "0.65a", "meansa",
+// "(0-10)c, mm". Where a note of the table explains it, it gets back the style
+// it had in print, so that what reads the table sees one form only.
+
+// raiseMarks marks the letters and symbols in caption and cells that a note of
+// the table explains as raised.
+func (r *reader) raiseMarks(t *paper.Table) {
+	has := map[rune]bool{}
+	for _, n := range t.Notes {
+		for _, c := range n.Mark {
+			if !unicode.IsDigit(c) && !unicode.IsUpper(c) {
+				has[c] = true
+			}
+		}
+	}
+	if len(has) == 0 {
+		return
+	}
+	r.raise(&t.Caption, has, 1)
+	for i := range t.Cells {
+		r.raise(&t.Cells[i].Text, has, 0)
+	}
+}
+
+// raise marks what is raised in one text; times is how often the text itself
+// counts among the running text of the file.
+func (r *reader) raise(run *paper.TextRun, has map[rune]bool, times int) {
+	s := run.S
+	for i := 0; i < len(s); {
+		c, w := utf8.DecodeRuneInString(s[i:])
+		end := i + w
+		if has[c] {
+			if unicode.IsLetter(c) && c < utf8.RuneSelf {
+				end = r.letterMark(s, i, has, times)
+			} else if next, _ := utf8.DecodeRuneInString(s[end:]); unicode.IsLetter(next) || i == 0 {
+				end = i // "µg"; a cell that begins with the sign
+			}
+			if end > i {
+				run.Styles = append(run.Styles, paper.Style{Start: i, End: end, Kind: paper.Raised})
+			}
+		}
+		i = max(end, i+w)
+	}
+}
+
+var (
+	// markList is one letter, or several with commas.
+	markList = regexp.MustCompile(`^[a-z](?:,\s?[a-z]\b)*`)
+	// namedByLetter is a word that a letter behind it names a case of.
+	namedByLetter = regexp.MustCompile(`(?i)(?:group|arm|type|model|class|grade|stage|hepatitis|vitamin|phase|category|part|panel|table|figure|level|study|or|and|versus|vs\.?)$`)
+)
+
+// letterMark gives the end of the mark of letters that begins at i of s, i if
+// these letters are none.
+func (r *reader) letterMark(s string, i int, has map[rune]bool, times int) int {
+	end := i + len(markList.FindString(s[i:]))
+	for _, c := range s[i:end] {
+		if unicode.IsLetter(c) && !has[c] {
+			return i
+		}
+	}
+	next, _ := utf8.DecodeRuneInString(s[end:])
+	if end < len(s) && (unicode.IsLetter(next) || unicode.IsDigit(next) || strings.ContainsRune("-–'/", next)) {
+		return i
+	}
+	prev, _ := utf8.DecodeLastRuneInString(s[:i])
+	switch {
+	case i == 0:
+		return i
+	case unicode.IsLetter(prev):
+		word := lastWord(s[:i])
+		if !r.glued(word+s[i:end], word, times) {
+			return i
+		}
+	case unicode.IsSpace(prev):
+		before := strings.TrimRightFunc(s[:i], unicode.IsSpace)
+		behind := strings.TrimLeftFunc(s[end:], unicode.IsSpace)
+		last, _ := utf8.DecodeLastRuneInString(before)
+		first, _ := utf8.DecodeRuneInString(behind)
+		switch {
+		case namedByLetter.MatchString(before):
+			return i
+		case unicode.IsLower(first): // "a dose"
+			return i
+		case unicode.IsDigit(last) && strings.ContainsRune("dghlms", rune(s[i])): // "5 d"
+			return i
+		}
+	case !unicode.IsDigit(prev) && !strings.ContainsRune(")]%*†‡§¶#,", prev):
+		return i
+	}
+	return end
+}
