@@ -225,7 +225,7 @@ func (a *assembly) announced(sp spread) bool {
 	f := a.f
 	ls := append(append([]label{}, f.path(sp.row, sp.col)...), f.lines[sp.row].labels...)
 	for _, l := range ls {
-		p := readPhrase(l.text)
+		p := a.f.lex.phrase(l.text)
 		r := role{pairs: p.pairs}
 		if r.wantsInterval() {
 			return true

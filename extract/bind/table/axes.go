@@ -19,6 +19,7 @@ func (f *frame) findArmRows() {
 		}
 	}
 	f.armRow = rows
+	f.forgetParts()
 	f.timeRow = map[int]bool{}
 	for r := 0; r < f.head; r++ {
 		times, all := 0, 0
@@ -37,10 +38,12 @@ func (f *frame) findArmRows() {
 		}
 		f.timeRow[r] = times >= 2 && 2*times >= all && !rows[r]
 	}
+	f.forgetParts()
 }
 
 // axes settles which of rows and columns name the arms.
 func (f *frame) findAxes() {
+	defer f.forgetParts()
 	f.findArmRows()
 	arms, rows := 0, 0
 	for r := f.head; r < f.tab.Rows; r++ {
@@ -115,7 +118,7 @@ func (f *frame) unitColumns() bool {
 		for _, l := range f.heads[c] {
 			if f.partOf(l).kind == partOther {
 				all++
-				if u := unitIn(l.text); u != "" && u != "%" || strings.Contains(l.text, "(%)") {
+				if u := f.lex.unit(l.text); u != "" && u != "%" || strings.Contains(l.text, "(%)") {
 					with++
 				}
 			}
@@ -126,7 +129,7 @@ func (f *frame) unitColumns() bool {
 	}
 	for r := f.head; r < f.tab.Rows; r++ {
 		for _, l := range f.lines[r].labels {
-			if u := unitIn(l.text); u != "" && u != "%" {
+			if u := f.lex.unit(l.text); u != "" && u != "%" {
 				return false
 			}
 		}
@@ -147,6 +150,7 @@ func (f *frame) nameRows() {
 			f.rowArms[fold(p.name)] = true
 		}
 	}
+	f.forgetParts()
 }
 
 // repeatedLabels finds arms by repetition: the same few names in every block,
@@ -171,7 +175,7 @@ func (f *frame) repeatedLabels() int {
 		l := ln.labels[len(ln.labels)-1]
 		p := f.partOf(l)
 		low := fold(p.name)
-		if p.kind == partTime || p.kind == partEmpty || p.kind == partContrast || subgroupName.MatchString(low) || f.rowRole(r).kind != roleNone || unitIn(l.text) != "" {
+		if p.kind == partTime || p.kind == partEmpty || p.kind == partContrast || subgroupName.MatchString(low) || f.rowRole(r).kind != roleNone || f.lex.unit(l.text) != "" {
 			continue
 		}
 		if blocks[low] == nil {
@@ -209,6 +213,7 @@ func (f *frame) repeatedLabels() int {
 	for _, name := range names {
 		f.rowArms[name] = true
 	}
+	f.forgetParts()
 	return n
 }
 
@@ -216,7 +221,7 @@ func (f *frame) repeatedLabels() int {
 func (f *frame) comparing() bool {
 	for c := f.stub; c < f.tab.Cols; c++ {
 		for _, l := range f.heads[c] {
-			if compares(l.text) {
+			if f.lex.compares(l.text) {
 				return true
 			}
 		}
@@ -232,7 +237,7 @@ func (f *frame) outerArms() bool {
 		ln := &f.lines[r]
 		if ln.kind == lineGroup && len(ln.labels) > 0 {
 			all++
-			if f.isArm(fold(nameOf(ln.labels[0].text))) {
+			if f.isArm(fold(f.lex.name(ln.labels[0].text))) {
 				arms++
 			}
 		}
@@ -254,7 +259,7 @@ func (f *frame) namesArm(r int) bool {
 	}
 	for q := f.head; q < f.tab.Rows; q++ {
 		o := &f.lines[q]
-		if o.kind == lineData && len(o.labels) > 0 && len(o.groups) == len(ln.groups) && prefix(o.groups, ln.groups) && totals[fold(nameOf(o.labels[len(o.labels)-1].text))] {
+		if o.kind == lineData && len(o.labels) > 0 && len(o.groups) == len(ln.groups) && prefix(o.groups, ln.groups) && totals[fold(f.lex.name(o.labels[len(o.labels)-1].text))] {
 			return false
 		}
 	}
@@ -335,8 +340,7 @@ func (f *frame) general(p part) bool {
 	return generic[fold(p.name)] && (p.l.cell == nil || p.l.cell.ColSpan > 1 || p.l.cell.Col < f.stub)
 }
 
-// armOfColumn joins the headings over a column that name its arm.
-func (f *frame) armOfColumn(r, c int) string {
+func (f *frame) findArm(r, c int) string {
 	var names, known []string
 	for _, l := range f.path(r, c) {
 		p := f.partOf(l)

@@ -97,10 +97,10 @@ func (f *frame) armSizeIn(e *estimate, arm string) (size, bool) {
 				continue
 			}
 			l := ln.labels[len(ln.labels)-1]
-			if armWords(nameOf(l.text)) != want || !prefix(f.lines[e.row].groups, ln.groups) && len(f.lines[e.row].groups) > 0 {
+			if armWords(f.lex.name(l.text)) != want || !prefix(f.lines[e.row].groups, ln.groups) && len(f.lines[e.row].groups) > 0 {
 				continue
 			}
-			if n, ok := lastN(l); ok {
+			if n, ok := f.lex.lastN(l); ok {
 				return sizeOfLabel(n, l, result.NBeside, "row label"), true
 			}
 			o := &estimate{row: r, col: e.col, cell: f.grid[r][e.col]}

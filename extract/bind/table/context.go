@@ -47,7 +47,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		if p.kind == partContrast && parseVs(p.name) == nil && f.armBelow(path[i+1:]) {
 			continue // "Between groups" over the arms themselves
 		}
-		if compares(l.text) && !f.armBelow(path[i+1:]) {
+		if f.lex.compares(l.text) && !f.armBelow(path[i+1:]) {
 			x.contrast = true
 		}
 		switch p.kind {
@@ -121,7 +121,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	var outcome, subs []string
 	take := func(l label, own bool) {
 		p := f.rowPart(l)
-		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && compares(l.text) {
+		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && f.lex.compares(l.text) {
 			x.contrast = true
 		}
 		if changeMark.MatchString(fold(l.text)) {
@@ -152,12 +152,12 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			case own && f.subgroupLike(p.name):
 				if n := len(ln.groups); n > 0 && len(ln.labels) == 1 {
 					for _, g := range f.lines[ln.groups[n-1]].labels {
-						if unitIn(g.text) == "" && !f.colArms {
-							subs = append(subs, nameOf(g.text))
+						if f.lex.unit(g.text) == "" && !f.colArms {
+							subs = append(subs, f.lex.name(g.text))
 						}
 					}
-				} else if len(ln.labels) > 1 && unitIn(ln.labels[0].text) == "" && !f.colArms {
-					subs = append(subs, nameOf(ln.labels[0].text))
+				} else if len(ln.labels) > 1 && f.lex.unit(ln.labels[0].text) == "" && !f.colArms {
+					subs = append(subs, f.lex.name(ln.labels[0].text))
 				}
 				subs = append(subs, p.name)
 			case own && len(ln.groups) > 0 && nPhrase.MatchString(l.text):

@@ -42,8 +42,8 @@ func beforeFor(s string) string {
 
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
-	name := nameOf(l.text)
-	if ab := parseVs(name); ab != nil && (isTimeHeading(fold(ab[1])) || timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
+	name := f.lex.name(l.text)
+	if ab := parseVs(name); ab != nil && (f.lex.isTime(fold(ab[1])) || timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
 		x.contrast, x.change = false, true // against baseline: a change inside one arm
 		return
 	}

@@ -73,7 +73,7 @@ func (f *frame) percentWithCount(e *estimate) bool {
 // headsCount reports a heading or label that announces numbers of subjects.
 func (f *frame) headsCount(e *estimate) bool {
 	for _, l := range append(append([]label{}, f.path(e.row, e.col)...), f.lines[e.row].labels...) {
-		for _, q := range readPhrase(l.text).pairs {
+		for _, q := range f.lex.phrase(l.text).pairs {
 			if q.Count {
 				return true
 			}

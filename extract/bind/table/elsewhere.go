@@ -29,7 +29,7 @@ func (b *binder) findArmSizes() {
 			}
 			name := armWords(f.armOfColumn(f.head, c))
 			if name == "" {
-				name = armWords(nameOf(l.text))
+				name = armWords(b.vocab.lex.name(l.text))
 			}
 			key := name + strconv.Itoa(n)
 			if name == "" || seen[key] {

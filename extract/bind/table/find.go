@@ -73,11 +73,11 @@ func newBinder(doc *paper.Document) *binder {
 func (f *frame) nameArms() {
 	for c := f.stub; c < f.tab.Cols; c++ {
 		for _, l := range f.heads[c] {
-			if _, ok := lastN(l); !ok {
+			if _, ok := f.lex.lastN(l); !ok {
 				continue
 			}
-			name := nameOf(l.text)
-			if w := armWords(name); w != "" && !isTimeHeading(fold(name)) && len(w) < 60 {
+			name := f.lex.name(l.text)
+			if w := armWords(name); w != "" && !f.lex.isTime(fold(name)) && len(w) < 60 {
 				f.vocab.arms[w] = true
 				f.vocab.arms[fold(name)] = true
 			}

@@ -21,6 +21,8 @@ type frame struct {
 	lines       []line    // one per grid row; heading rows and empty rows have kind lineNone
 	mid         []midHead // headings repeated inside the body, in order
 	vocab       *vocabulary
+	lex         *lexicon
+	memo        memo
 	whole       []statement        // what caption and notes say for all
 	counts      map[int]countGrade // by row, once weighed
 	armRows     bool               // row labels name the arms
@@ -38,7 +40,7 @@ func newFrame(t *paper.Table, num int, v *vocabulary) *frame {
 	if t.Picture || len(t.Cells) == 0 || t.Rows < 1 || t.Cols < 1 {
 		return nil
 	}
-	f := &frame{tab: t, num: num, grid: t.Grid(), vocab: v, reads: map[*paper.Cell]*cellReading{}, counts: map[int]countGrade{}}
+	f := &frame{tab: t, num: num, grid: t.Grid(), vocab: v, lex: v.lex, memo: newMemo(), reads: map[*paper.Cell]*cellReading{}, counts: map[int]countGrade{}}
 	f.notes = newNotes(t, v)
 	for i := range t.Cells {
 		f.reads[&t.Cells[i]] = readCell(&t.Cells[i])
@@ -47,6 +49,7 @@ func newFrame(t *paper.Table, num int, v *vocabulary) *frame {
 	f.findStub()
 	f.findHeads()
 	f.findLines()
+	f.memo = newMemo() // what was asked before the rows were known may not hold
 	return f
 }
 
@@ -220,8 +223,7 @@ func (f *frame) stubLike(c int) bool {
 	return text >= 2*other || text >= other && f.spannedStub(c-1)
 }
 
-// anySpread reports a cell of column c that prints an estimate with its spread.
-func (f *frame) anySpread(c int) bool {
+func (f *frame) findSpread(c int) bool {
 	for r := f.head; r < f.tab.Rows; r++ {
 		if cell := f.cellAt(r, c); cell != nil && f.reads[cell].hasSpread() {
 			return true
@@ -296,7 +298,7 @@ func (f *frame) standsAlone(r, c int) bool {
 			continue
 		}
 		low := fold(cell.Text.S)
-		return isPHeading(low) || compares(cell.Text.S) || isContrast(low)
+		return isPHeading(low) || f.lex.compares(cell.Text.S) || isContrast(low)
 	}
 	return false
 }
@@ -333,8 +335,7 @@ func (f *frame) headBelow(r, c int) bool {
 // heads its own column only.
 func (f *frame) soleHead(r, c int) bool { return !f.headBelow(r+1, c) }
 
-// label gives the words of a heading cell and the marks printed with them.
-func (f *frame) label(cell *paper.Cell) label {
+func (f *frame) findLabel(cell *paper.Cell) label {
 	text, marks := f.notes.split(&cell.Text)
 	return label{text: text, raw: clean(cell.Text.S), marks: marks, cell: cell}
 }

@@ -11,7 +11,7 @@ func (f *frame) markHabit(sp *spread, hint string) (pair, label, bool) {
 			for _, m := range v.Marks {
 				for _, mk := range f.cellMarks(c.Text.S[m.Start:m.End]) {
 					for _, nt := range f.notes.marked(mk) {
-						for _, st := range noteStatements(nt, rankCaption) {
+						for _, st := range f.lex.noteStatements(nt, rankCaption) {
 							for _, q := range st.pairs {
 								if q.Spread == "" || !fitsShape(q.Spread, sp) || hint != "" && q.Statistic != "" && q.Statistic != hint {
 									continue
@@ -42,7 +42,7 @@ func (f *frame) habit(sp *spread, hint string) (reading, bool) {
 			continue
 		}
 		l := ln.labels[len(ln.labels)-1]
-		for _, q := range readPhrase(l.text).pairs {
+		for _, q := range f.lex.phrase(l.text).pairs {
 			if q.Spread == "" || q.Statistic == "" || !fitsShape(q.Spread, sp) || sp.shape == shapeSign != q.Sign {
 				continue
 			}
@@ -63,6 +63,6 @@ func (f *frame) habit(sp *spread, hint string) (reading, bool) {
 	if found.Spread == "" || sp.shape == shapeBracket {
 		return reading{}, false
 	}
-	s := labelStatement(from, rankNote, "label of another row")
+	s := f.lex.labelStatement(from, rankNote, "label of another row")
 	return reading{given: givenAs(found.Spread), pair: found, at: s, level: level(found.Level), habit: true}, true
 }

@@ -23,12 +23,13 @@ const (
 
 // statement is one text that says how values are printed.
 type statement struct {
-	rank  rank
-	pairs []pair
-	text  string
-	from  string // in words
-	place paper.Place
-	l     label
+	rank      rank
+	pairs     []pair
+	text      string
+	from      string // in words
+	place     paper.Place
+	l         label
+	onlyTerms bool // it names nothing but statistics
 }
 
 // statements gives every text that may say what the values of an estimate mean,
@@ -38,18 +39,18 @@ func (f *frame) statements(e *estimate) []statement {
 	byMarks := func(marks []string, rk rank) {
 		for _, m := range marks {
 			for _, n := range f.notes.marked(m) {
-				out = append(out, noteStatements(n, rk)...)
+				out = append(out, f.lex.noteStatements(n, rk)...)
 			}
 		}
 	}
 	byLabel := func(l label, rk rank, from string) {
-		out = append(out, labelStatement(l, rk, from))
+		out = append(out, f.lex.labelStatement(l, rk, from))
 		byMarks(l.marks, rk)
 	}
 	byMarks(e.marks, rankCell)
 	ln := &f.lines[e.row]
 	path := f.path(e.row, e.col)
-	if k := len(path) - 1; k >= 0 && ownMeaning(path[k].text) {
+	if k := len(path) - 1; k >= 0 && f.ownMeaning(path[k].text) {
 		// A column of differences says itself what it prints; the row label
 		// speaks of the arms' columns.
 		byLabel(path[k], rankRow, f.columnName(e.col))
@@ -76,11 +77,11 @@ func (f *frame) statements(e *estimate) []statement {
 }
 
 // ownMeaning reports a column heading of a comparison that names its spread.
-func ownMeaning(s string) bool {
-	if !compares(s) && !isContrast(fold(s)) {
+func (f *frame) ownMeaning(s string) bool {
+	if !f.lex.compares(s) && !isContrast(fold(s)) {
 		return false
 	}
-	for _, q := range readPhrase(s).pairs {
+	for _, q := range f.lex.phrase(s).pairs {
 		if q.Spread != "" {
 			return true
 		}
@@ -95,14 +96,14 @@ func (f *frame) tableStatements() []statement {
 	}
 	out := []statement{}
 	capt := note{run: &f.tab.Caption, from: "caption"}
-	out = append(out, noteStatements(capt, rankCaption)...)
+	out = append(out, f.lex.noteStatements(capt, rankCaption)...)
 	for _, n := range f.notes.general() {
-		out = append(out, noteStatements(n, rankNote)...)
+		out = append(out, f.lex.noteStatements(n, rankNote)...)
 	}
 	used := f.usedMarks()
 	for _, n := range f.notes.list {
 		if n.mark != "" && !used[n.mark] {
-			out = append(out, noteStatements(n, rankNote)...)
+			out = append(out, f.lex.noteStatements(n, rankNote)...)
 		}
 	}
 	f.whole = out
@@ -129,9 +130,9 @@ func (f *frame) usedMarks() map[string]bool {
 	return used
 }
 
-func labelStatement(l label, rk rank, from string) statement {
-	p := readPhrase(l.text)
-	s := statement{rank: rk, pairs: p.pairs, text: l.text, from: from, l: l}
+func (x *lexicon) labelStatement(l label, rk rank, from string) statement {
+	p := x.phrase(l.text)
+	s := statement{rank: rk, pairs: p.pairs, text: l.text, from: from, l: l, onlyTerms: p.onlyTerms}
 	if l.cell != nil {
 		s.place = l.cell.Text.Between(0, len(l.cell.Text.S))
 	}
@@ -261,7 +262,7 @@ func (f *frame) meaningOf(e *estimate, sp *spread, all []statement) reading {
 	if sp.own.kind == roleSpread {
 		for _, q := range sp.own.pairs {
 			if g := givenAs(q.Spread); g != "" {
-				s := labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
+				s := f.lex.labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
 				if sp.own.label.cell != nil && sp.own.label.cell.Row == sp.row {
 					s.rank, s.from = rankRow, "row label"
 				}
@@ -271,7 +272,7 @@ func (f *frame) meaningOf(e *estimate, sp *spread, all []statement) reading {
 		return reading{none: true}
 	}
 	if sp.own.kind == roleBound {
-		s := labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
+		s := f.lex.labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
 		for _, q := range sp.own.pairs {
 			if g := givenAs(q.Spread); g != "" {
 				return f.withLevel(reading{given: g, pair: q, level: level(q.Level), at: s}, all)
@@ -430,7 +431,7 @@ func (f *frame) withLevel(rd reading, all []statement) reading {
 		}
 	}
 	for i := range f.tab.Notes {
-		for _, q := range readPhrase(f.tab.Notes[i].Text.S).pairs {
+		for _, q := range f.lex.phrase(f.tab.Notes[i].Text.S).pairs {
 			if q.Spread == grammar.SpreadCI && level(q.Level) > 0 {
 				rd.level = level(q.Level)
 				rd.levelAt = &statement{rank: rankNote, from: "note below the table", text: q.Level + "% CI", place: f.tab.Notes[i].Text.At(q.LevelAt.Start)}

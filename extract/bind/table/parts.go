@@ -28,14 +28,25 @@ var armWord = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|st
 
 // partOf classifies one heading or label.
 func (f *frame) partOf(l label) part {
-	p := part{l: l, name: nameOf(l.text)}
+	key := partKey{l.cell, l.text}
+	if p, ok := f.memo.parts[key]; ok {
+		p.l = l
+		return p
+	}
+	p := f.classify(l)
+	f.memo.parts[key] = p
+	return p
+}
+
+func (f *frame) classify(l label) part {
+	p := part{l: l, name: f.lex.name(l.text)}
 	low := fold(p.name)
 	switch {
 	case low == "" && isContrast(fold(l.text)):
 		p.kind = partContrast
 	case low == "":
 		p.kind = partEmpty
-		if isTimeHeading(fold(l.text)) {
+		if f.lex.isTime(fold(l.text)) {
 			p.kind, p.name = partTime, tidyTime(l.text)
 		}
 	case boundHeading(fold(l.text)) != 0:
@@ -44,9 +55,9 @@ func (f *frame) partOf(l label) part {
 		p.kind, p.name = partEmpty, "" // a unit alone names no group
 	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
 		p.kind, p.name = partEmpty, ""
-	case isContrast(low) || compares(l.text) && !f.isArm(low):
+	case isContrast(low) || f.lex.compares(l.text) && !f.isArm(low):
 		p.kind = partContrast
-	case isTimeHeading(low):
+	case f.lex.isTime(low):
 		p.kind, p.name = partTime, tidyTime(l.text)
 	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
 		p.kind = partArm
@@ -71,7 +82,7 @@ func (f *frame) rowPart(l label) part {
 			p.kind = partOther
 		}
 	case p.kind == partTime && !bareTime(low):
-		p.kind, p.name = partOther, nameOf(l.text)
+		p.kind, p.name = partOther, f.lex.name(l.text)
 	}
 	return p
 }
@@ -180,7 +191,7 @@ func (f *frame) isArm(low string) bool {
 	if f.rowArms[low] || f.vocab.groups[low] && !outcomeWord.MatchString(low) || f.vocab.arms[low] || f.vocab.arms[armWords(low)] {
 		return true
 	}
-	return armWord.MatchString(low) && len(words(low)) <= 6 && unitIn(low) == "" && !outcomeWord.MatchString(low)
+	return armWord.MatchString(low) && len(words(low)) <= 6 && f.lex.unit(low) == "" && !outcomeWord.MatchString(low)
 }
 
 var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
@@ -191,7 +202,7 @@ var onlyArmWord = pattern.MustCompile(`(?i)^(?:the )?(?:interventions?|treatment
 // names of their own: "Intervention" over three regimens.
 func (f *frame) spannedBy(path []label) bool {
 	for _, l := range path {
-		if onlyArmWord.MatchString(nameOf(l.text)) && l.cell != nil && l.cell.ColSpan > 1 {
+		if onlyArmWord.MatchString(f.lex.name(l.text)) && l.cell != nil && l.cell.ColSpan > 1 {
 			return true
 		}
 	}
@@ -232,9 +243,8 @@ func (f *frame) armBelow(path []label) bool {
 	return false
 }
 
-// compares reports that a heading announces a statistic between arms.
-func compares(s string) bool {
-	p := readPhrase(s)
+// comparesArms reports that a heading announces a statistic between arms.
+func comparesArms(p *phrase) bool {
 	for _, q := range p.pairs {
 		switch q.Statistic {
 		case "ratio":

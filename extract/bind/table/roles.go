@@ -104,13 +104,11 @@ func (p *phrase) bracketed() bool {
 	return false
 }
 
-// columnRole gives the role of column c at row r, from the lowest heading that
-// announces one.
-func (f *frame) columnRole(r, c int) role {
+func (f *frame) findColumnRole(r, c int) role {
 	path := f.path(r, c)
 	for k := len(path) - 1; k >= 0; k-- {
-		p := readPhrase(path[k].text)
-		if role := roleOf(path[k], &p); role.kind != roleNone {
+		p := f.lex.phrase(path[k].text)
+		if role := roleOf(path[k], p); role.kind != roleNone {
 			if role.kind == roleN && f.anySpread(c) {
 				continue
 			}
@@ -133,16 +131,14 @@ func (f *frame) pColumn(c int) bool {
 	return false
 }
 
-// rowRole gives the role of row r from its innermost own label, where that
-// names a statistic and nothing else.
-func (f *frame) rowRole(r int) role {
+func (f *frame) findRowRole(r int) role {
 	ln := &f.lines[r]
 	if len(ln.labels) == 0 || ln.kind == lineContinue {
 		return role{}
 	}
 	l := ln.labels[len(ln.labels)-1]
-	p := readPhrase(l.text)
-	role := roleOf(l, &p)
+	p := f.lex.phrase(l.text)
+	role := roleOf(l, p)
 	switch role.kind {
 	case roleN:
 		if !p.countHead {

@@ -268,7 +268,7 @@ func (f *frame) realHeading(r int, own []label) bool {
 		switch {
 		case p.onlyTerms || p.onlyN || p.terms > 0:
 			terms++
-		case isTimeHeading(fold(cell.Text.S)):
+		case f.lex.isTime(fold(cell.Text.S)):
 			times++
 		}
 	}
@@ -288,9 +288,7 @@ func (f *frame) addMidHead(r int) {
 	f.mid = append(f.mid, m)
 }
 
-// path gives the headings over (r, c), the outermost first: those of the
-// table's head, with headings repeated in the body in place of or after them.
-func (f *frame) path(r, c int) []label {
+func (f *frame) findPath(r, c int) []label {
 	path := f.heads[c]
 	if cell := f.grid[r%f.tab.Rows][c]; r < f.tab.Rows && cell != nil && cell.ColSpan > 1 && cell.Row == r && cell.Col >= f.stub {
 		path = covering(path, cell)
@@ -306,7 +304,7 @@ func (f *frame) path(r, c int) []label {
 			path = []label{f.mid[i-1].cells[c], m.cells[c]} // a whole new head
 			continue
 		}
-		path = overlay(f.heads[c], m.cells[c])
+		path = f.overlay(f.heads[c], m.cells[c])
 	}
 	return path
 }
@@ -327,10 +325,10 @@ func covering(path []label, cell *paper.Cell) []label {
 
 // overlay puts a heading repeated in the body in place of the lowest heading
 // where both announce a statistic, and below it otherwise.
-func overlay(base []label, l label) []label {
+func (f *frame) overlay(base []label, l label) []label {
 	out := append([]label{}, base...)
 	if k := len(out) - 1; k >= 0 {
-		p := readPhrase(out[k].text)
+		p := f.lex.phrase(out[k].text)
 		if p.onlyTerms || p.terms > 0 && !p.hasN && !p.armLike || fold(out[k].text) == fold(l.text) {
 			out = out[:k]
 		}

@@ -124,7 +124,7 @@ func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 	}
 	for k := 0; k < f.stub; k++ {
 		for _, l := range f.heads[k] {
-			if n, ok := lastN(l); ok {
+			if n, ok := f.lex.lastN(l); ok {
 				return sizeOfLabel(n, l, result.NHeading, f.columnName(k)), true
 			}
 		}

@@ -32,8 +32,8 @@ func number(n grammar.Number) int {
 }
 
 // lastN gives the last n = 42 of a label.
-func lastN(l label) (int, bool) {
-	p := readPhrase(l.raw)
+func (x *lexicon) lastN(l label) (int, bool) {
+	p := x.phrase(l.raw)
 	for i := len(p.ns) - 1; i >= 0; i-- {
 		if end := p.ns[i].End; end < len(l.raw) && (l.raw[end] == 'M' || l.raw[end] == 'F') {
 			return 0, false // 4M, 13F: two numbers
@@ -65,7 +65,7 @@ func bareN(s string) (int, bool) {
 func (f *frame) headingN(r, c int) (int, label, bool) {
 	path := f.path(r, c)
 	for i := len(path) - 1; i >= 0; i-- {
-		if n, ok := lastN(path[i]); ok {
+		if n, ok := f.lex.lastN(path[i]); ok {
 			return n, path[i], true
 		}
 	}
@@ -200,7 +200,7 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 func (f *frame) labelSize(e *estimate, x *context) (size, bool) {
 	ln := &f.lines[e.row]
 	for i := len(ln.labels) - 1; i >= 0; i-- {
-		if n, ok := lastN(ln.labels[i]); ok {
+		if n, ok := f.lex.lastN(ln.labels[i]); ok {
 			s := sizeOfLabel(n, ln.labels[i], result.NBeside, "row label")
 			if _, _, inHead := f.headingN(e.row, e.col); inHead && f.armsInColumns() {
 				continue // a total beside arms with n's of their own
@@ -337,7 +337,7 @@ func (f *frame) markSize(e *estimate, x *context) (size, bool) {
 	}
 	for i := len(ln.groups) - 1; i >= 0; i-- {
 		for _, l := range f.lines[ln.groups[i]].labels {
-			if n, ok := lastN(l); ok && !f.armsInColumns() {
+			if n, ok := f.lex.lastN(l); ok && !f.armsInColumns() {
 				return sizeOfLabel(n, l, result.NHeading, "label of the row group"), true
 			}
 		}

@@ -112,8 +112,7 @@ func (s *statement) nameOnly(q pair) bool {
 	default:
 		return false
 	}
-	p := readPhrase(s.text)
-	return !p.onlyTerms
+	return !s.onlyTerms
 }
 
 // weight orders statistics named in one heading by how much they say.

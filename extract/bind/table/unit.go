@@ -45,7 +45,7 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && !unitBracket.MatchString(l.text) {
 			continue // "Drug 100 mg": a dose
 		}
-		if u := unitIn(l.text); u != "" {
+		if u := f.lex.unit(l.text); u != "" {
 			x.unit, x.unitAt = u, l
 			return
 		}

@@ -8,13 +8,14 @@ import (
 // vocabulary is what the whole paper tells about words: which words its running
 // text uses, and which headings of its tables name arms.
 type vocabulary struct {
+	lex    *lexicon
 	text   map[string]bool
 	groups map[string]bool // folded names before "group" or "arm" in the text
 	arms   map[string]bool // folded names of arms, as table headings print them with an n
 }
 
 func newVocabulary(doc *paper.Document) *vocabulary {
-	v := &vocabulary{text: map[string]bool{}, arms: map[string]bool{}, groups: map[string]bool{}}
+	v := &vocabulary{lex: newLexicon(), text: map[string]bool{}, arms: map[string]bool{}, groups: map[string]bool{}}
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		if b.Kind == paper.TableBlock && b.Table != nil {
