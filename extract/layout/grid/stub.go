@@ -17,14 +17,21 @@ func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 		stubs, open = nil, nil
 	}
 	gaps := false // rows without a heading of their own
+	filled := func(k int) bool {
+		for col := 1; col <= len(rd.cs); col++ {
+			if _, ok := g.at[[2]int{head + k, col}]; ok {
+				return true
+			}
+		}
+		return false
+	}
 	for k := range rows {
-		_, beside := g.at[[2]int{head + k, 1}]
+		beside := filled(k)
 		_, own := g.at[[2]int{head + k, 0}]
 		gaps = gaps || beside && !own
 	}
 	for k := range rows {
-		_, beside := g.at[[2]int{head + k, 1}]
-		if !beside {
+		if !filled(k) {
 			flush() // a row group of its own
 			continue
 		}
@@ -88,8 +95,18 @@ func (rd *reader) middles(g *cellGrid, stubs, stretch []int, rows [][]int, head 
 		}
 		return rd.lines[rows[k][0]].base
 	}
-	last := stretch[len(stretch)-1]
-	start, off := stretch[0], false
+	// The first rows may have no heading at all.
+	for start := stretch[0]; start <= g.cells[stubs[0]].Row-head; start++ {
+		if from, ok := rd.middlesFrom(start, g, stubs, stretch[len(stretch)-1], head, height); ok {
+			return from, true
+		}
+	}
+	return nil, false
+}
+
+// middlesFrom is middles with the first heading's rows beginning at start.
+func (rd *reader) middlesFrom(start int, g *cellGrid, stubs []int, last, head int, height func(int) int) (from []int, ok bool) {
+	off := false
 	for n, c := range stubs {
 		cell := &g.cells[c]
 		own, next := cell.Row-head, last+1
@@ -117,17 +134,21 @@ func (rd *reader) middles(g *cellGrid, stubs, stretch []int, rows [][]int, head 
 	return from, off && start == last+1
 }
 
-// indents gives the row headings their steps of indentation.
+// indents gives the row headings their steps of indentation. Headings that are
+// centred have none, or one below those that are flush left.
 func (rd *reader) indents(cells []gridCell, headRows int) {
-	var xs []int
-	left := func(c *gridCell) int { return rd.s.toks[c.toks[0][0]].x0 }
+	var own []*gridCell
 	for i := range cells {
 		if c := &cells[i]; c.Row >= headRows && c.Col == 0 && c.ColSpan == 1 {
-			xs = append(xs, left(c))
+			own = append(own, c)
 		}
 	}
-	if len(xs) == 0 {
+	if len(own) == 0 {
 		return
+	}
+	xs := make([]int, len(own))
+	for i, c := range own {
+		xs[i] = rd.left(c)
 	}
 	slices.Sort(xs)
 	steps := []int{xs[0]}
@@ -136,18 +157,47 @@ func (rd *reader) indents(cells []gridCell, headRows int) {
 			steps = append(steps, x)
 		}
 	}
-	if len(steps) > 6 {
-		return // centred or ragged: the left edge says nothing
-	}
-	for i := range cells {
-		c := &cells[i]
-		if c.Row < headRows || c.Col != 0 || c.ColSpan != 1 {
-			continue
+	if len(steps) > 2 {
+		flush := func(c *gridCell) bool { return rd.left(c)-xs[0] <= rd.em*35/100 }
+		inner := slices.DeleteFunc(slices.Clone(own), flush)
+		switch {
+		case rd.centredCells(inner):
+			if flushed := len(own) - len(inner); flushed == 1 && rd.centredCells(append(inner, own...)) {
+				return // the longest of them
+			}
+			for _, c := range inner {
+				c.Indent = 1
+			}
+			return
+		case len(steps) > 6:
+			return // ragged: the left edge says nothing
 		}
+	}
+	for _, c := range own {
 		for k := range steps {
-			if left(c) >= steps[k] {
+			if rd.left(c) >= steps[k] {
 				c.Indent = k
 			}
 		}
 	}
+}
+
+// left is where the text of a cell begins.
+func (rd *reader) left(c *gridCell) int { return rd.s.toks[c.toks[0][0]].x0 }
+
+// centredCells reports whether most of the cells have one middle.
+func (rd *reader) centredCells(cells []*gridCell) bool {
+	mids := make([]int, len(cells))
+	for i, c := range cells {
+		first := c.toks[0]
+		mids[i] = (rd.left(c) + rd.s.toks[first[len(first)-1]].x1) / 2
+	}
+	slices.Sort(mids)
+	n := 0
+	for _, m := range mids {
+		if abs(m-mids[len(mids)/2])*10 <= rd.em*3 {
+			n++
+		}
+	}
+	return len(cells) >= 3 && n*10 >= len(cells)*8
 }
