@@ -2,9 +2,11 @@ package working
 
 import (
 	"fmt"
+	"regexp"
 	"slices"
 	"strings"
 	"unicode"
+	"unicode/utf8"
 
 	"halfspan/extract/result"
 )
@@ -19,6 +21,7 @@ func compareContexts(items []*item) {
 		it.raise("in-running-text", "read from a sentence")
 		if it.res.N == 0 {
 			it.raise("n-missing", "no sample size is printed for this result")
+			it.raise("sentence-without-n", "the sentence gives no n and no arm whose n is known")
 		}
 		if it.res.Arm == "" {
 			it.raise("arm-not-named", "the sentence names no arm that the program knows")
@@ -28,10 +31,11 @@ func compareContexts(items []*item) {
 		sizesMissing(table)
 		for _, it := range table {
 			againstHeading(it)
-			wordsOfOutcome(it)
+			wordsOfContext(it)
 		}
-		lacking(table, "time-unclear", "other results of this table name a time, this one does not", func(r *result.Result) string { return r.Time })
-		lacking(table, "arm-unclear", "other results of this table name an arm, this one does not", func(r *result.Result) string { return r.Arm })
+		lostLabels(table)
+		lacking(table, "time-missing-here", "other results of this table name a time, this one does not", func(r *result.Result) string { return r.Time })
+		lacking(table, "arm-missing-here", "other results of this table name an arm, this one does not", func(r *result.Result) string { return r.Arm })
 	}
 	toldApart(items)
 }
@@ -116,44 +120,50 @@ func againstHeading(it *item) {
 	}
 }
 
-// wordsOfOutcome flags an outcome that is only an abbreviation, and one whose row
-// group carries a unit of its own: then the group above is another outcome.
-func wordsOfOutcome(it *item) {
-	longest, run := 0, 0
-	for _, r := range it.res.Outcome {
-		if unicode.IsLower(r) {
-			run++
-			longest = max(longest, run)
-		} else {
-			run = 0
-		}
+// inBrackets, stackedUnit and cutArm are how words of a context look that are not
+// the whole or the right ones.
+var (
+	inBrackets  = regexp.MustCompile(`\([^)]*\)`)
+	lowerRun    = regexp.MustCompile(`\p{Ll}{4,}`)
+	stackedUnit = regexp.MustCompile(`(\([^)]*[/%°][^)]*\)|,\s*%),`)
+	cutShort    = regexp.MustCompile(`\b(or|and|of|the|with|to|for|in|a|versus|vs)$`)
+)
+
+// wordsOfContext flags words that say too little: an outcome that is only an
+// abbreviation, that starts in the middle of a phrase or whose row group is another
+// outcome (it has a unit of its own), and an arm that breaks off.
+func wordsOfContext(it *item) {
+	o := it.res.Outcome
+	if o != "" && !lowerRun.MatchString(inBrackets.ReplaceAllString(o, "")) {
+		it.raise("outcome-abbreviated", o)
 	}
-	if it.res.Outcome != "" && longest < 4 {
-		it.raise("outcome-abbreviated", it.res.Outcome)
-	}
-	parts := strings.Split(it.res.Heading, " | ")
-	units := 0
-	for _, p := range parts {
-		if strings.Contains(it.res.Outcome, p) && hasUnit(p) {
-			units++
-		}
-	}
-	if units > 1 {
+	if stackedUnit.MatchString(o) {
 		it.raise("outcome-stacked", "the row group above is named with a unit of its own")
+	}
+	if r, _ := utf8.DecodeRuneInString(o); unicode.IsLower(r) {
+		it.raise("outcome-unclear", "the outcome starts in the middle of a phrase")
+	}
+	if cutShort.MatchString(it.res.Arm) {
+		it.raise("arm-cut-short", it.res.Arm)
 	}
 }
 
-// hasUnit reports a bracket or a percent sign that looks like a unit.
-func hasUnit(s string) bool {
-	if strings.Contains(s, "%") {
-		return true
+// lostLabels flags an outcome that only names the group of other outcomes of the
+// table: its own label was not found, as happens behind a page break.
+func lostLabels(table []*item) {
+	groups := map[string]bool{}
+	for _, it := range table {
+		for i, r := range it.res.Outcome {
+			if r == ',' {
+				groups[it.res.Outcome[:i]] = true
+			}
+		}
 	}
-	open := strings.LastIndexByte(s, '(')
-	if open < 0 || !strings.HasSuffix(strings.TrimSpace(s), ")") {
-		return false
+	for _, it := range table {
+		if groups[it.res.Outcome] {
+			it.raise("outcome-unclear", "other outcomes of the table stand in a group of this name: a label may be lost")
+		}
 	}
-	inside := strings.TrimSuffix(strings.TrimSpace(s[open+1:]), ")")
-	return inside != "" && !strings.ContainsAny(inside, "= ") && strings.ContainsAny(inside, "/°²³")
 }
 
 // toldApart flags results of one table (or of the running text) that are described

@@ -148,10 +148,13 @@ func raisedByWorking() map[string][]result.Result {
 		"sd-impossible":       one(as(sd("8.1", "6.9", "syrup", 28), func(r *result.Result) { r.Evidence.ScaleLow, r.Evidence.ScaleHigh = "0", "10" })),
 		"bounds-not-positive": one(ci("1.4", "-0.2", "3.1", func(r *result.Result) { r.Statistic = result.Ratio })),
 		"described-alike":     {plain, ci("12.6", "11.4", "13.8", nil)},
+		"sentence-without-n":  one(as(plain, func(r *result.Result) { r.Table, r.N = "", 0 })),
+		"outcome-unclear":     {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Outcome = "colony mass, Queens" })},
+		"arm-cut-short":       one(as(plain, func(r *result.Result) { r.Arm = "syrup or" })),
 		"in-running-text":     one(as(plain, func(r *result.Result) { r.Table = "" })),
 		"arm-not-named":       one(as(plain, func(r *result.Result) { r.Table, r.Arm = "", "" })),
-		"arm-unclear":         {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Arm = "" })},
-		"time-unclear":        {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Time = "" })},
+		"arm-missing-here":    {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Arm = "" })},
+		"time-missing-here":   {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Time = "" })},
 		"outcome-abbreviated": one(as(plain, func(r *result.Result) { r.Outcome = "CM (kg)" })),
 		"outcome-stacked": one(as(plain, func(r *result.Result) {
 			r.Outcome, r.Heading = "Protein (mg/mL), Density (g/mL)", "Syrup | Protein (mg/mL) | Density (g/mL)"
@@ -171,7 +174,7 @@ func unstatedWith(est, value, arm string) result.Result {
 // byReading are the flags that reading raises and the working passes on; the
 // program's own test shows invented print for each (cmd/halfspan).
 var byReading = []string{"n-kind-unclear", "n-conflict", "spread-from-methods", "spread-from-rows", "count-or-spread", "level-assumed", "level-elsewhere",
-	"open-bound", "bound-not-a-number", "outcome-unclear", "row-shape-odd", "in-methods", "misprint", "readers-differ", "sign-differs", "ocr", "unknown-sign",
+	"open-bound", "bound-not-a-number", "row-shape-odd", "in-methods", "misprint", "readers-differ", "sign-differs", "ocr", "arm-unclear", "time-unclear", "unknown-sign",
 	"conventions-differ", "interval-unnamed", "scale-differs", "powers-differ"}
 
 // Every flag of the table that the working raises is raised by invented results.
