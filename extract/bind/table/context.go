@@ -41,7 +41,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	path := f.path(e.row, e.col)
 	for i, l := range path {
 		p := f.partOf(l)
-		if changeMark.MatchString(fold(l.text)) {
+		if f.lex.change(l.text) {
 			x.change = true
 		}
 		if p.kind == partContrast && parseVs(p.name) == nil && f.armBelow(path[i+1:]) {
@@ -57,7 +57,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		case partContrast:
 			x.contrast = true
 			f.parseContrast(l, x)
-			if t := timeIn(l.text); t != "" {
+			if t := f.lex.timeIn(l.text); t != "" {
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
 			}
@@ -79,7 +79,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 				times[len(times)-1] += " " + name // "Hours after treatment" over 24, 48, 72
 				continue
 			}
-			if t := timeIn(name); t != "" && p.kind == partOther {
+			if t := f.lex.timeIn(name); t != "" && p.kind == partOther {
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
 			}
@@ -124,7 +124,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && f.lex.compares(l.text) {
 			x.contrast = true
 		}
-		if changeMark.MatchString(fold(l.text)) {
+		if f.lex.change(l.text) {
 			x.change = true
 		}
 		switch {
@@ -166,7 +166,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 				subs = append(subs, p.name)
 			}
 			outcome = append(outcome, p.name)
-			if t := rowTime(p.name); t != "" && x.time == "" {
+			if t := f.lex.rowTime(p.name); t != "" && x.time == "" {
 				x.time, x.timeAt, x.timeFrom = t, l, "row label"
 			}
 			x.outcomeAt, x.outcomeFrom = l, "row label"
@@ -205,7 +205,7 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	capt := f.tab.Caption.S
 	l := label{text: clean(capt), raw: clean(capt)}
 	if x.time == "" {
-		switch ts := timesIn(capt); {
+		switch ts := f.lex.timesIn(capt); {
 		case len(ts) == 1 && strings.Contains(fold(ts[0]), " and "):
 		case len(ts) == 1:
 			x.time, x.timeAt, x.timeFrom, x.timeGuess = ts[0], l, "caption", true

@@ -43,7 +43,7 @@ func beforeFor(s string) string {
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
 	name := f.lex.name(l.text)
-	if ab := parseVs(name); ab != nil && (f.lex.isTime(fold(ab[1])) || timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
+	if ab := parseVs(name); ab != nil && (f.lex.isTime(fold(ab[1])) || f.lex.timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
 		x.contrast, x.change = false, true // against baseline: a change inside one arm
 		return
 	}

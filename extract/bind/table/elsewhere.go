@@ -221,13 +221,14 @@ func (b *binder) only(table int, name string) bool {
 	return n == 1
 }
 
+var armNoise = strings.NewReplacer(" group", "", " arm", "", "group ", "", "the ", "", "-", " ", ".", "")
+
 // sameArm reports that one name is the other with more words: "placebo" and
 // "placebo group 50 mg" are not the same, "chemotherapy" and "chemotherapy arm"
 // are.
 func sameArm(a, b string) bool {
 	strip := func(s string) string {
-		s = strings.NewReplacer(" group", "", " arm", "", "group ", "", "the ", "", "-", " ", ".", "").Replace(s)
-		return strings.TrimSpace(s)
+		return strings.TrimSpace(armNoise.Replace(s))
 	}
 	return strip(a) == strip(b) && strip(a) != ""
 }

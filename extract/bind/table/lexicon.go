@@ -3,6 +3,7 @@ package table
 import (
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // lexicon remembers what was read in the headings, labels and notes of one
@@ -14,6 +15,10 @@ type lexicon struct {
 	times    map[string]bool
 	compared map[string]bool
 	units    map[string]string
+	points   map[string][]string
+	inRow    map[string]string
+	changes  map[string]bool
+	found    map[patternKey]bool
 	marked   map[noteKey][]statement
 }
 
@@ -22,9 +27,14 @@ type noteKey struct {
 	rk  rank
 }
 
+type patternKey struct {
+	p *pattern.Pattern
+	s string
+}
+
 func newLexicon() *lexicon {
 	return &lexicon{phrases: map[string]*phrase{}, names: map[string]string{}, times: map[string]bool{}, compared: map[string]bool{},
-		units: map[string]string{}, marked: map[noteKey][]statement{}}
+		units: map[string]string{}, points: map[string][]string{}, inRow: map[string]string{}, changes: map[string]bool{}, found: map[patternKey]bool{}, marked: map[noteKey][]statement{}}
 }
 
 // phrase reads a heading without marks.
@@ -87,4 +97,53 @@ func (x *lexicon) noteStatements(n note, rk rank) []statement {
 		x.marked[key] = s
 	}
 	return s
+}
+
+// timesIn lists the times named in a text: see timesIn.
+func (x *lexicon) timesIn(s string) []string {
+	t, ok := x.points[s]
+	if !ok {
+		t = timesIn(s)
+		x.points[s] = t
+	}
+	return t
+}
+
+// timeIn is the first time named in a text.
+func (x *lexicon) timeIn(s string) string {
+	if t := x.timesIn(s); len(t) > 0 {
+		return t[0]
+	}
+	return ""
+}
+
+// rowTime is the time point in a row label: see rowTime.
+func (x *lexicon) rowTime(s string) string {
+	t, ok := x.inRow[s]
+	if !ok {
+		t = rowTime(s)
+		x.inRow[s] = t
+	}
+	return t
+}
+
+// change reports that a text speaks of a change.
+func (x *lexicon) change(s string) bool {
+	c, ok := x.changes[s]
+	if !ok {
+		c = changeMark.MatchString(fold(s))
+		x.changes[s] = c
+	}
+	return c
+}
+
+// has reports that the text holds a match of the pattern.
+func (x *lexicon) has(p *pattern.Pattern, s string) bool {
+	key := patternKey{p, s}
+	m, ok := x.found[key]
+	if !ok {
+		m = p.MatchString(s)
+		x.found[key] = m
+	}
+	return m
 }

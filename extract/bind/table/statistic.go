@@ -191,7 +191,7 @@ func (f *frame) namedPoint(x *context) bool {
 	if low == "" || x.timeGuess || changeMark.MatchString(low) {
 		return false
 	}
-	own := changeMark.MatchString(fold(x.heading))
+	own := f.lex.change(x.heading)
 	return !own
 }
 
@@ -223,26 +223,26 @@ func (f *frame) adjustedOf(rd *reading, r *result.Result, model string, e *estim
 	}
 	near, wide := f.words(e, all)
 	switch {
-	case unadjustedWord.MatchString(near):
+	case f.lex.has(unadjustedWord, near):
 		r.Adjusted = "no"
-	case adjustedWord.MatchString(near) || model != "" && rd.given != result.SD:
+	case f.lex.has(adjustedWord, near) || model != "" && rd.given != result.SD:
 		r.Adjusted = "yes"
-	case rd.given == result.SD || f.adjustsElsewhere() && !adjustedWord.MatchString(f.tab.Caption.S):
+	case rd.given == result.SD || f.adjustsElsewhere() && !f.lex.has(adjustedWord, f.tab.Caption.S):
 		r.Adjusted = "no"
-	case adjustedWord.MatchString(wide):
+	case f.lex.has(adjustedWord, wide):
 		r.Adjusted = "yes"
-		if r.Statistic == result.Mean && !adjustedWord.MatchString(f.tab.Caption.S) {
+		if r.Statistic == result.Mean && !f.lex.has(adjustedWord, f.tab.Caption.S) {
 			r.Adjusted = "unclear"
 		}
-	case modelWord.MatchString(wide) || modelWord.MatchString(near):
+	case f.lex.has(modelWord, wide) || f.lex.has(modelWord, near):
 		r.Adjusted = "unclear"
 	default:
 		r.Adjusted = "no"
 	}
-	if leastWord.MatchString(near + " " + wide) {
+	if f.lex.has(leastWord, near+" "+wide) {
 		r.Evidence.Model = append(r.Evidence.Model, "least-squares")
 	}
-	if marginalWord.MatchString(near) {
+	if f.lex.has(marginalWord, near) {
 		r.Evidence.Model = append(r.Evidence.Model, "marginal")
 	}
 	if r.Adjusted == "yes" && len(r.Evidence.Model) == 0 {
@@ -258,7 +258,7 @@ func (f *frame) adjustsElsewhere() bool {
 			continue
 		}
 		for _, l := range f.heads[c] {
-			if adjustedWord.MatchString(l.text) && !unadjustedWord.MatchString(l.text) {
+			if f.lex.has(adjustedWord, l.text) && !f.lex.has(unadjustedWord, l.text) {
 				return true
 			}
 		}

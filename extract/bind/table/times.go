@@ -17,14 +17,14 @@ var baselineCaption = pattern.MustCompile(`(?i)\bbaseline\b|\bdemographics?\b|\b
 func (f *frame) someChange() bool {
 	for c := f.stub; c < f.tab.Cols; c++ {
 		for _, l := range f.heads[c] {
-			if changeMark.MatchString(fold(l.text)) {
+			if f.lex.change(l.text) {
 				return true
 			}
 		}
 	}
 	for r := f.head; r < f.tab.Rows; r++ {
 		for _, l := range f.lines[r].labels {
-			if changeMark.MatchString(fold(l.text)) {
+			if f.lex.change(l.text) {
 				return true
 			}
 		}
