@@ -67,7 +67,7 @@ func FuzzRead(f *testing.F) {
 func TestMutations(t *testing.T) {
 	rng := rand.New(rand.NewPCG(3, 4))
 	all := seeds(t)
-	for range 2000 {
+	for range 700 {
 		b := bytes.Clone(all[rng.IntN(len(all))])
 		for range 1 + rng.IntN(4) {
 			i := rng.IntN(len(b) + 1)

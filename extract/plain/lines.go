@@ -163,7 +163,8 @@ func layoutByte(c byte) bool {
 // joint parts what b holds from line k, or joins the halves of a word or of a
 // range that the line's end broke.
 func (r *reader) joint(b *source.Builder, k int) {
-	before := string(b.S)
+	const word = 100 // bytes; more than the longest word
+	before := string(b.S[max(0, len(b.S)-word):])
 	next := strings.TrimLeftFunc(r.text(r.lines[k]), source.Blank)
 	first, _ := utf8.DecodeRuneInString(next)
 	dash, width := utf8.DecodeLastRuneInString(before)
