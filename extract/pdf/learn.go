@@ -131,6 +131,9 @@ func verdictOf(k signKey, uses []use, hasPlusMinus bool) verdict {
 		if v := minusSign(uses); v.text != "" {
 			return v
 		}
+		if v := acuteMinus(k, uses); v.text != "" {
+			return v
+		}
 		if v := equalsSign(uses); v.text != "" {
 			return v
 		}
@@ -225,6 +228,23 @@ func minusSign(uses []use) verdict {
 	return verdict{text: "−", why: fmt.Sprintf("it stands %d times before a number, and %d intervals run backwards without it, none with it", fit, mended),
 		only: func(u use) bool { return startsNumber(u.right) }}
 }
+
+// acuteMinus takes an acute accent that stands before decimal numbers and
+// nowhere else: it has no other meaning there.
+func acuteMinus(k signKey, uses []use) verdict {
+	if k.text != "´" || len(uses) < 3 {
+		return verdict{}
+	}
+	for _, u := range uses {
+		word, gap := before(u.left)
+		if word != "" && !gap || !decimalNext.MatchString(u.right) {
+			return verdict{}
+		}
+	}
+	return verdict{text: "−", why: fmt.Sprintf("it stands %d times before a decimal number and nowhere else", len(uses))}
+}
+
+var decimalNext = pattern.MustCompile(`^ ?\d*[.·]\d`)
 
 func number64(s string) float64 {
 	v, _ := strconv.ParseFloat(strings.ReplaceAll(s, "·", "."), 64)

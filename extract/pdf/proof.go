@@ -17,7 +17,7 @@ import (
 // ASCII's own, half of the digits are enough. Letters, which no comparison
 // counts, are proved with the paper. A font with a fault is never proved again.
 const (
-	enoughAlike  = 200
+	enoughAlike  = 100
 	enoughDigits = 5
 	enoughPaper  = 1500
 )
@@ -64,8 +64,11 @@ func (p *proof) learn(m *matching, marks []glyphs.Mark) {
 		f, w := p.of(marks[i])
 		ours := m.a[i].Text
 		if j >= 0 {
-			if _, code := engine.CodeOnly(m.b[j].Text); code {
-				continue // only one of the two knows what this is
+			// Only one of the two knows what this is. That the other sees it in
+			// the same place, and nothing else in it, is all it can say.
+			if _, code := engine.CodeOnly(m.b[j].Text); code || m.a[i].Repaired {
+				f.codes[marks[i].Code] = code || telling(m.b[j].Text) == ""
+				continue
 			}
 		}
 		switch {

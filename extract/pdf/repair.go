@@ -2,6 +2,7 @@ package pdf
 
 import (
 	"fmt"
+	"strings"
 
 	"halfspan/extract/paper"
 	"halfspan/extract/pdf/glyphs"
@@ -96,7 +97,7 @@ func (r *reading) unknownSigns() {
 		n := 0
 		for i := range page.Glyphs {
 			g := &page.Glyphs[i]
-			if g.Invisible || printable(g.Text) || !besideNumber(page.Glyphs, i) {
+			if g.Invisible || !doubtful(page.Glyphs, i) {
 				continue
 			}
 			if n++; n == 1 {
@@ -112,8 +113,18 @@ func (r *reading) unknownSigns() {
 	}
 }
 
-// besideNumber reports whether glyph i directly precedes or follows a digit.
-func besideNumber(all []paper.Glyph, i int) bool {
+// doubtful reports whether glyph i is a sign beside a number that nobody could
+// tell, or one that has no business there.
+func doubtful(all []paper.Glyph, i int) bool {
+	text := all[i].Text
+	odd := text == "´" || text == "˘" || text == "¼"
+	if printable(text) && !odd || all[i].Repaired {
+		return false
+	}
 	left, right := around(all, i, func(k int) string { return all[k].Text })
+	if odd {
+		word, gap := before(left)
+		return startsNumber(right) && (gap || word == "") && !strings.HasPrefix(right, " ") == (text != "¼")
+	}
 	return startsNumber(right) || endsNumber(left)
 }

@@ -104,7 +104,7 @@ func (t *textReader) char(i uint64) {
 			return
 		}
 	case 2: // the library's mark for a hyphen at the end of a line
-		if r.int("FPDFText_IsHyphen", t.text, i) == 1 {
+		if r.int("FPDFText_IsHyphen", t.text, i) == 1 && r.int("FPDFText_HasUnicodeMapError", t.text, i) == 0 {
 			code = '-'
 		}
 	}
