@@ -31,6 +31,9 @@ func (b *binder) findFlow() {
 		if bl.Kind != paper.Paragraph || bl.Zone != paper.Results && bl.Zone != paper.Abstract {
 			continue
 		}
+		if !strings.ContainsAny(bl.Text.S, "0123456789") && !strings.Contains(bl.Text.S, "each") {
+			continue
+		}
 		for _, sp := range segments(bl.Text.S) {
 			s := clean(bl.Text.S[sp.Start:sp.End])
 			if len(s) > 500 || !hasLetter(s) || !flowWord.MatchString(s) || planWord.MatchString(s) {

@@ -221,28 +221,28 @@ func (f *frame) adjustedOf(rd *reading, r *result.Result, model string, e *estim
 	default:
 		return
 	}
-	near, wide := f.words(e, all)
+	near, wide := f.near(e, all), f.wide()
 	switch {
-	case f.lex.has(unadjustedWord, near):
+	case f.lex.anyHas(unadjustedWord, near):
 		r.Adjusted = "no"
-	case f.lex.has(adjustedWord, near) || model != "" && rd.given != result.SD:
+	case f.lex.anyHas(adjustedWord, near) || model != "" && rd.given != result.SD:
 		r.Adjusted = "yes"
 	case rd.given == result.SD || f.adjustsElsewhere() && !f.lex.has(adjustedWord, f.tab.Caption.S):
 		r.Adjusted = "no"
-	case f.lex.has(adjustedWord, wide):
+	case f.lex.anyHas(adjustedWord, wide):
 		r.Adjusted = "yes"
 		if r.Statistic == result.Mean && !f.lex.has(adjustedWord, f.tab.Caption.S) {
 			r.Adjusted = "unclear"
 		}
-	case f.lex.has(modelWord, wide) || f.lex.has(modelWord, near):
+	case f.lex.anyHas(modelWord, wide) || f.lex.anyHas(modelWord, near):
 		r.Adjusted = "unclear"
 	default:
 		r.Adjusted = "no"
 	}
-	if f.lex.has(leastWord, near+" "+wide) {
+	if f.lex.anyHas(leastWord, near) || f.lex.anyHas(leastWord, wide) {
 		r.Evidence.Model = append(r.Evidence.Model, "least-squares")
 	}
-	if f.lex.has(marginalWord, near) {
+	if f.lex.anyHas(marginalWord, near) {
 		r.Evidence.Model = append(r.Evidence.Model, "marginal")
 	}
 	if r.Adjusted == "yes" && len(r.Evidence.Model) == 0 {
@@ -266,33 +266,48 @@ func (f *frame) adjustsElsewhere() bool {
 	return false
 }
 
-// words gives the texts near an estimate (labels, headings and the notes their
-// marks lead to, also those of the p values of the row) and those of the whole
-// table.
-func (f *frame) words(e *estimate, all []statement) (near, wide string) {
-	var n, w []string
+// near gives the texts near an estimate: labels, headings, the notes that their
+// marks and those of the row's p values lead to.
+func (f *frame) near(e *estimate, all []statement) []string {
+	var out []string
 	for _, s := range all {
 		if s.rank <= rankGroup {
-			n = append(n, s.text)
+			out = append(out, s.text)
 		}
-	}
-	w = append(w, f.tab.Caption.S)
-	for _, nt := range f.notes.list {
-		w = append(w, nt.run.S)
 	}
 	for c := f.stub; c < f.tab.Cols; c++ {
-		if !f.pColumn(c) || f.grid[e.row][c] == nil {
+		cell := f.grid[e.row][c]
+		if cell == nil || !f.pColumn(c) {
 			continue
 		}
-		for _, v := range f.reads[f.grid[e.row][c]].cell.Values {
+		for _, v := range f.reads[cell].cell.Values {
 			for _, m := range v.Marks {
-				for _, mk := range f.cellMarks(f.grid[e.row][c].Text.S[m.Start:m.End]) {
+				for _, mk := range f.cellMarks(cell.Text.S[m.Start:m.End]) {
 					for _, nt := range f.notes.marked(mk) {
-						n = append(n, nt.run.S)
+						out = append(out, nt.run.S)
 					}
 				}
 			}
 		}
 	}
-	return strings.Join(n, " . "), strings.Join(w, " . ")
+	return out
+}
+
+// wide gives the caption and the notes of the whole table.
+func (f *frame) wide() []string {
+	out := []string{f.tab.Caption.S}
+	for _, nt := range f.notes.list {
+		out = append(out, nt.run.S)
+	}
+	return out
+}
+
+// anyHas reports that one of the texts holds a match of the pattern.
+func (x *lexicon) anyHas(p *pattern.Pattern, texts []string) bool {
+	for _, s := range texts {
+		if x.has(p, s) {
+			return true
+		}
+	}
+	return false
 }

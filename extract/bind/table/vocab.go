@@ -1,6 +1,8 @@
 package table
 
 import (
+	"strings"
+
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 )
@@ -33,11 +35,29 @@ func (v *vocabulary) add(s string) {
 	for _, w := range words(s) {
 		v.text[w] = true
 	}
-	for _, m := range groupName.FindAllStringSubmatch(fold(s), -1) {
-		for _, name := range m[1:] {
-			if name != "" && !noGroup[name] {
-				v.groups[name] = true
+	low := fold(s)
+	for _, noun := range []string{" group", " arm"} {
+		for from := 0; ; {
+			k := strings.Index(low[from:], noun)
+			if k < 0 {
+				break
 			}
+			from += k + len(noun)
+			v.addGroup(low[max(0, from-80):min(len(low), from+2)])
+		}
+	}
+}
+
+// addGroup takes the names before the last "group" or "arm" of a stretch of
+// text.
+func (v *vocabulary) addGroup(s string) {
+	ms := groupName.FindAllStringSubmatch(s, -1)
+	if len(ms) == 0 {
+		return
+	}
+	for _, name := range ms[len(ms)-1][1:] {
+		if name != "" && !noGroup[name] {
+			v.groups[name] = true
 		}
 	}
 }
