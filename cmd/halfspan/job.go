@@ -37,6 +37,7 @@ func tasks() map[string]task {
 	return map[string]task{
 		"results": findResults, // outcome
 		"text":    showText,    // shown
+		"tables":  showTables,  // shown
 		"read":    showRead,    // readAnswer
 	}
 }

@@ -98,7 +98,7 @@ confirmed is exported, with the evidence.
 		SilenceUsage:  true,
 	}
 	root.SetVersionTemplate(versionText())
-	root.AddCommand(newDesk(s), newScan(s), newList(s), newCheck(s), newSheet(s), newAgree(s), newExport(s), newText(s),
+	root.AddCommand(newDesk(s), newScan(s), newList(s), newCheck(s), newSheet(s), newAgree(s), newExport(s), newText(s), newTables(s),
 		newConvert(s), newMethods(s), newFlags(s))
 	return root
 }
