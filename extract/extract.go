@@ -23,7 +23,8 @@ type Options struct {
 	OCR      bool      // read page images without text through tesseract, where it is on PATH
 	Progress func(int) // called after each page with its number, may be nil: the sign of life
 
-	Preparing func() // called once if the PDF reader must first be compiled (some seconds), may be nil
+	Preparing   func()    // called once if the PDF reader must first be compiled (some seconds), may be nil
+	Recognising func(int) // called with the number of a page before tesseract reads it (up to two minutes), may be nil
 }
 
 // Read turns the content of the file at path into a Document. The format is
@@ -42,7 +43,7 @@ func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 
 // readPDF reads the glyphs of a PDF and lays them out.
 func readPDF(path string, content []byte, opt Options) (*paper.Document, error) {
-	glyphs, err := pdf.Read(content, pdf.Options{OCR: opt.OCR, Progress: opt.Progress, Preparing: opt.Preparing})
+	glyphs, err := pdf.Read(content, pdf.Options{OCR: opt.OCR, Progress: opt.Progress, Preparing: opt.Preparing, Recognising: opt.Recognising})
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", path, err)
 	}

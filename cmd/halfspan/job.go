@@ -68,6 +68,9 @@ const maxFile = 200 << 20
 // preparing is how long the PDF reader may take to be compiled, once for a user.
 const preparing = 3 * time.Minute
 
+// recognising is how long tesseract may take for one page.
+const recognising = 2 * time.Minute
+
 // work is the handler of the worker processes.
 func work(request []byte, alive worker.Alive) ([]byte, error) {
 	var j job
@@ -94,6 +97,9 @@ func work(request []byte, alive worker.Alive) ([]byte, error) {
 		OCR:       j.OCR,
 		Progress:  func(page int) { alive(fmt.Sprintf("page %d", page), 0) },
 		Preparing: func() { alive("preparing the PDF reader, once", preparing) },
+		Recognising: func(page int) {
+			alive(fmt.Sprintf("recognising page %d", page), recognising)
+		},
 	})
 	if err != nil {
 		return nil, errors.New(strings.TrimPrefix(err.Error(), j.Path+": "))

@@ -40,6 +40,9 @@ func (r *reading) pictures() {
 			r.problem(n, "no-text", true, fmt.Sprintf("Page %d is a picture without text: %s.", n, err))
 			continue
 		}
+		if r.opt.Recognising != nil {
+			r.opt.Recognising(n)
+		}
 		read, err := ocr.page(r.doc, p.Page)
 		if err != nil {
 			r.problem(n, "no-text", true, fmt.Sprintf("Page %d is a picture without text, and tesseract could not read it: %v.", n, err))

@@ -24,6 +24,9 @@ type Options struct {
 	OCR       bool      // read page images without text through tesseract, where it is on PATH
 	Progress  func(int) // called after each page with its number, may be nil
 	Preparing func()    // called once if the PDF reader must first be compiled (some seconds), may be nil
+	// Recognising is called with the number of a page before tesseract reads it,
+	// which may take a minute or two; may be nil.
+	Recognising func(int)
 	// OneReader reads by the sandboxed engine alone. It is for a paper that
 	// made a process hang or burst once: our reader's library may be why.
 	OneReader bool
