@@ -25,9 +25,10 @@ func (rd *reader) headBlocks() []block {
 	}
 	statisticOver(bands, len(boxes))
 	for _, row := range bands {
+		level := statisticBand(row)
 		for k := range row {
 			p := row[k]
-			if b := rd.above(out, &p.piece, row); b >= 0 {
+			if b := rd.above(out, &p.piece, row); b >= 0 && !(level && isStatistic(p.text)) {
 				out[b].box = out[b].box.union(p.box)
 				out[b].pieces = append(out[b].pieces, p.piece)
 				out[b].c0, out[b].c1 = min(out[b].c0, p.c0), max(out[b].c1, p.c1)
@@ -45,6 +46,17 @@ func (rd *reader) headBlocks() []block {
 		}
 	}
 	return out
+}
+
+// statisticBand reports whether a band names the statistic of several columns:
+// a level of its own, however close below the arms it stands.
+func statisticBand(row []headPiece) bool {
+	for i := range row {
+		if isStatistic(row[i].text) && count(row, row[i].text) > 1 {
+			return true
+		}
+	}
+	return false
 }
 
 // nearest gives the topmost piece of the bands in each column, without
@@ -132,7 +144,7 @@ func (rd *reader) wordShare(c int) int {
 		for k := range rd.cells[i] {
 			if p := &rd.cells[i][k]; p.c0 == c {
 				all++
-				if !p.figure || hasUnit(p.text) {
+				if (!p.figure || hasUnit(p.text)) && !isSize(p.text) && !isStatistic(p.text) {
 					words++
 				}
 			}

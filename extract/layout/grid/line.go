@@ -184,6 +184,25 @@ func hasUnit(text string) bool {
 		f[1][0] != '(' && strings.Trim(f[0], "0123456789.,·") == ""
 }
 
+// statisticWords are what headings that only name a statistic are made of.
+var statisticWords = map[string]bool{
+	"mean": true, "means": true, "median": true, "sd": true, "se": true, "sem": true, "iqr": true, "ci": true, "n": true, "no": true,
+	"or": true, "and": true, "range": true, "min": true, "max": true, "m": true, "s": true, "d": true, "e": true, "std": true,
+	"deviation": true, "standard": true, "error": true, "percent": true, "hr": true, "rr": true, "freq": true, "frequency": true,
+}
+
+// isStatistic reports whether a heading only names a statistic: "Mean (SD)",
+// "mean ± SE", "n (%)", "OR (95% CI)".
+func isStatistic(text string) bool {
+	words := strings.FieldsFunc(strings.ToLower(text), func(r rune) bool { return !unicode.IsLetter(r) })
+	for _, w := range words {
+		if !statisticWords[w] {
+			return false
+		}
+	}
+	return len(words) > 0 && strings.ContainsAny(text, "(±%,/") && !isSize(text)
+}
+
 // isSize reports whether a heading is only a sample size: "(n = 42)".
 func isSize(text string) bool {
 	low := strings.ToLower(strings.Trim(strings.TrimSpace(text), "()[] "))

@@ -132,6 +132,10 @@ func (rd *reader) joins(cur, unit []int, pitch int, ruled bool) bool {
 	if pitch > 0 && step*10 > pitch*15 && step*10 > rd.em*16 {
 		return false
 	}
+	if rd.headsOnly(unit) {
+		// Below other headings they go on; below figures they begin a heading row.
+		return rd.anyData(cur) && rd.wordsOnly(cur) && (!rd.headsOnly(cur) || !rd.shares(above, unit))
+	}
 	stubUp, stub := above[0], rd.stubPiece(unit)
 	dataUp, data := rd.anyData(cur), rd.anyData(unit)
 	if stub == nil {
@@ -162,6 +166,48 @@ func (rd *reader) allGoOn(above map[int]*piece, lines []int) bool {
 			q := &rd.cells[i][k]
 			p := above[q.c0]
 			if q.c0 > 0 && (p == nil || !goesOnFigure(q.text) && !unfinished(p.text)) {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+// headsOnly reports whether the lines hold nothing right of the stub but sample
+// sizes and names of statistics: a second heading inside the body.
+func (rd *reader) headsOnly(lines []int) bool {
+	n := 0
+	for _, i := range lines {
+		for k := range rd.cells[i] {
+			if p := &rd.cells[i][k]; p.c0 > 0 {
+				if !isSize(p.text) && !isStatistic(p.text) {
+					return false
+				}
+				n++
+			}
+		}
+	}
+	return n > 1
+}
+
+// shares reports whether the lines have something in a column right of the stub
+// where the row above has something too.
+func (rd *reader) shares(above map[int]*piece, lines []int) bool {
+	for _, i := range lines {
+		for k := range rd.cells[i] {
+			if c := rd.cells[i][k].c0; c > 0 && above[c] != nil {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// wordsOnly reports whether no line holds a figure right of the stub.
+func (rd *reader) wordsOnly(lines []int) bool {
+	for _, i := range lines {
+		for k := range rd.cells[i] {
+			if p := &rd.cells[i][k]; p.c0 > 0 && p.figure && !isSize(p.text) {
 				return false
 			}
 		}
