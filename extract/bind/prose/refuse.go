@@ -62,11 +62,14 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 	}
 	s := p.sentenceText(it.Start)
 	j := p.token(it.End)
-	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && p.block.Zone == paper.Methods {
+	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || climate.MatchString(s)) {
 		return true
 	}
-	if climate.MatchString(s) && p.block.Zone == paper.Methods && strings.Contains(s, "humidity") {
+	if climate.MatchString(s) && strings.Contains(s, "humidity") {
 		return true
+	}
+	if i > 0 && p.r.Tokens[i-1].Value == "every" && whole(c.est.Value) && whole(it.Value.Value) {
+		return true // "every 90 (±30) days"
 	}
 	return p.planned(it.Start)
 }
