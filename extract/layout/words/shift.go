@@ -7,6 +7,10 @@ import (
 	"halfspan/extract/paper"
 )
 
+// maxHosts is how many chunks above and below a chunk are looked at: a page has
+// some ten within reach, a figure made of letters thousands.
+const maxHosts = 300
+
 // attachShifted finds the chunks that are superscripts or subscripts of a line
 // and moves them into its row.
 //
@@ -15,33 +19,33 @@ import (
 // ending where the shifted chunk begins, or beginning where it ends.
 func attachShifted(chunks []chunk) {
 	byBase := make([]int, len(chunks))
-	largestSize := 0
 	for i := range byBase {
 		byBase[i] = i
-		largestSize = max(largestSize, chunks[i].size)
 	}
 	slices.SortStableFunc(byBase, func(a, b int) int { return cmp.Compare(chunks[a].base, chunks[b].base) })
 	host := make([]int, len(chunks))
-	for i := range chunks {
+	for at, i := range byBase {
 		c := &chunks[i]
 		best, bestCost := -1, 0
-		// Hosts lie between 0.75 of their size below and 0.45 above the chunk's baseline;
-		// no host is taken that is more than 3 times as large.
-		reach := 3 * c.size
-		k, _ := slices.BinarySearchFunc(byBase, c.base-reach, func(j, base int) int { return cmp.Compare(chunks[j].base, base) })
-		for ; k < len(byBase) && chunks[byBase[k]].base <= c.base+reach; k++ {
-			j := byBase[k]
+		consider := func(j int) bool {
 			h := &chunks[j]
-			if j == i || h.row == c.row || shiftOf(c, h) == 0 {
-				continue
+			// No host is more than 3 times as large.
+			if abs(h.base-c.base) > 3*c.size {
+				return false
 			}
-			cost, ok := beside(c, h)
-			if !ok {
-				continue
+			if h.row == c.row || shiftOf(c, h) == 0 {
+				return true
 			}
-			if cost = cost*4 + abs(c.base-h.base); best < 0 || cost < bestCost {
-				best, bestCost = j, cost
+			if cost, ok := beside(c, h); ok {
+				if cost = cost*4 + abs(c.base-h.base); best < 0 || cost < bestCost || cost == bestCost && j < best {
+					best, bestCost = j, cost
+				}
 			}
+			return true
+		}
+		for k := at - 1; k >= 0 && k >= at-maxHosts && consider(byBase[k]); k-- {
+		}
+		for k := at + 1; k < len(byBase) && k <= at+maxHosts && consider(byBase[k]); k++ {
 		}
 		host[i] = best
 	}
