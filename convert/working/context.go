@@ -130,8 +130,9 @@ var (
 )
 
 // wordsOfContext flags words that say too little: an outcome that is only an
-// abbreviation, that starts in the middle of a phrase or whose row group is another
-// outcome (it has a unit of its own), and an arm that breaks off.
+// abbreviation, that starts in the middle of a phrase, that is more than a name or
+// whose row group is another outcome (it has a unit of its own), and an arm that
+// breaks off.
 func wordsOfContext(it *item) {
 	o := it.res.Outcome
 	if o != "" && !lowerRun.MatchString(inBrackets.ReplaceAllString(o, "")) {
@@ -142,6 +143,9 @@ func wordsOfContext(it *item) {
 	}
 	if r, _ := utf8.DecodeRuneInString(o); unicode.IsLower(r) {
 		it.raise("outcome-unclear", "the outcome starts in the middle of a phrase")
+	}
+	if strings.Contains(o, ":") {
+		it.raise("outcome-unclear", "the outcome holds a colon: more than a name")
 	}
 	if cutShort.MatchString(it.res.Arm) {
 		it.raise("arm-cut-short", it.res.Arm)

@@ -49,7 +49,7 @@ func Flags() []FlagInfo {
 		{"spread-not-positive", MakesIt, "the spread or the interval has no width, or is negative", "look at the page: a misprint or a slip of reading"},
 		{"count-or-spread", AsksLook, "headed as a count with its percentage, which the numbers contradict", "decide whether it is a count or a mean"},
 		{"se-as-sd", AsksLook, "two spreads of one row, both called SD, differ by about √n: the smaller looks like an SE", "look at the page; compare with other papers"},
-		{"sd-as-se", None, "two spreads of one row, both called SE, differ by about √n: the larger looks like an SD", "compare with other papers; the SD is withheld"},
+		{"sd-as-se", None, "called an SE, but its size, beside another of its row or as a multiple of the mean, is that of an SD", "compare with other papers; the SD is withheld"},
 		{"no-reading-fits", AsksLook, "the paper's p value fits no reading of the unexplained ±", "another test was used, or a number is misprinted"},
 		// The interval.
 		{"level-missing", AsksLook, "the level of the interval is not printed", "look in the methods; what 90, 95 and 99% would give is shown"},

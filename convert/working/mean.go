@@ -63,6 +63,11 @@ func takeSD(it *item) {
 func down(v float64) *Number { n := Down(v); return &n }
 func up(v float64) *Number   { n := Up(v); return &n }
 
+// mostSDs is how many times its mean an SD may be before an SE is taken for an SD:
+// values that cannot be negative hardly ever vary so much, and where they can be
+// negative withholding costs little.
+const mostSDs = 4
+
 // meanFromSE works out the SD behind the SE of a mean.
 func meanFromSE(it *item) {
 	if it.val == nil || it.val.Value <= 0 {
@@ -96,6 +101,11 @@ func meanFromSE(it *item) {
 		return
 	}
 	span := convert.Range{Low: math.Max(it.val.Low(), 0), High: it.val.High()}.Times(math.Sqrt(float64(n)))
+	if it.res.Statistic == result.Mean && it.est != nil && it.est.Low() > 0 && span.Low > mostSDs*it.est.High() {
+		it.raise("sd-as-se", fmt.Sprintf("as an SE %s would mean an SD of %s with a mean of %s", it.res.GivenValue, short(sd), it.res.Estimate))
+		it.withhold("printed as an SE, but its size says that it is an SD")
+		return
+	}
 	it.step("SD = SE·√n = %s·√%d = %s", it.res.GivenValue, n, short(sd))
 	it.give(sd, span, "sd-from-se")
 	it.assume(fmt.Sprintf("SE = SD/√n of %d independent values", n))

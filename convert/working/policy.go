@@ -94,10 +94,10 @@ type obstacle struct {
 func obstacles() []obstacle {
 	return []obstacle{
 		{"adjusted", "the mean is adjusted: its interval or SE reflects a model, not the spread of the values", func(it *item) (string, bool) {
-			return "the paper says so", it.res.Adjusted == "yes"
+			return "the paper says so", it.res.Adjusted == "yes" && !plainBaseline(it)
 		}},
 		{"model-based", "the mean comes from a model: its interval or SE does not lead to the SD of the values", func(it *item) (string, bool) {
-			return strings.Join(it.res.Evidence.Model, ", "), len(it.res.Evidence.Model) > 0
+			return strings.Join(it.res.Evidence.Model, ", "), len(it.res.Evidence.Model) > 0 && !plainBaseline(it)
 		}},
 		{"clustered", "clustered data: SE·√n is not the SD", design("clustered")},
 		{"crossover", "a crossover design: the interval may rest on differences within the same units", design("crossover")},
@@ -131,6 +131,19 @@ func obstacles() []obstacle {
 			return "neither said nor ruled out", it.res.Adjusted == "unclear"
 		}},
 	}
+}
+
+// plainBaseline reports a baseline mean whose own heading says nothing of a model:
+// what the caption says of adjustment concerns the values after it. Such a reading
+// asks for a look (adjusted-baseline).
+func plainBaseline(it *item) bool {
+	heading := strings.ToLower(it.res.Heading)
+	for _, word := range []string{"adj", "least", "ls mean", "marginal", "model", "estimated", "predicted", "ancova"} {
+		if strings.Contains(heading, word) {
+			return false
+		}
+	}
+	return it.res.Evidence.Baseline && it.res.Heading != "" && isStatistic(result.Mean)(it)
 }
 
 func design(word string) func(*item) (string, bool) {
