@@ -210,10 +210,18 @@ func (a *assembly) accepts(e *estimate, sp spread) bool {
 		}
 		return statistic || holds(sp.lower, sp.upper, e.value)
 	}
+	if sp.own.kind == roleNone && (sp.shape == shapeBracket || sp.shape == shapeSign) && !sameHeading(f.path(sp.row, sp.col), path) {
+		return false // a bracket in a column of its own may be a reference
+	}
 	if sp.shape == shapePlain && sp.own.kind != roleSpread && sp.own.kind != roleBound {
 		return false
 	}
 	return statistic || len(e.spreads) == 0 || sp.own.kind == roleBound
+}
+
+// sameHeading reports that one heading stands lowest over both columns.
+func sameHeading(a, b []label) bool {
+	return len(a) > 0 && len(b) > 0 && a[len(a)-1].cell != nil && a[len(a)-1].cell == b[len(b)-1].cell
 }
 
 // announced reports that a heading over the interval, or its row label, speaks

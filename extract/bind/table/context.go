@@ -2,6 +2,7 @@ package table
 
 import (
 	"fmt"
+	"halfspan/extract/pattern"
 	"strings"
 
 	"halfspan/extract/paper"
@@ -21,6 +22,9 @@ type context struct {
 	armGuess                                          bool
 	outcomeGuess                                      bool
 }
+
+// aroundTime are names of outcomes that also say when: "Vigour after feeding".
+var aroundTime = pattern.MustCompile(`(?i)\b(?:before|after|prior to|pre-?|post-?)\s?(?:the )?(?:treatment|intervention|therapy|surgery|operation|training|exercise|feeding|study|trial|test|dose)\b`)
 
 // contextOf finds whom and what an estimate is about.
 func (f *frame) contextOf(e *estimate) *context {
@@ -82,6 +86,12 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if t := f.lex.timeIn(name); t != "" && p.kind == partOther {
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
+			}
+			if p.kind == partOther && aroundTime.MatchString(name) {
+				// "Vigour before feeding", "Vigour after feeding"
+				times = append(times, name)
+				x.timeAt, x.timeFrom = l, f.columnName(e.col)
+				continue
 			}
 			if p.kind == partOther {
 				others = append(others, name)

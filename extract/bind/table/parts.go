@@ -53,6 +53,8 @@ func (f *frame) classify(l label) part {
 		p.kind, p.name = partEmpty, ""
 	case isUnit(p.name) && len(p.name) > 1 && !strings.Contains(p.name, " "):
 		p.kind, p.name = partEmpty, "" // a unit alone names no group
+	case countOf.MatchString(nPhrase.ReplaceAllString(fold(l.text), " ")) && isCountHeading(clean(nPhrase.ReplaceAllString(fold(l.text), " "))):
+		p.kind, p.name = partEmpty, ""
 	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
 		p.kind, p.name = partEmpty, ""
 	case isContrast(low) || f.lex.compares(l.text) && !f.isArm(low):
@@ -70,6 +72,8 @@ func (f *frame) classify(l label) part {
 	}
 	return p
 }
+
+var countOf = pattern.MustCompile(`^\s*(?:no\.?|number|nr\.?|n\.?) of `)
 
 // rowPart classifies a label before a row: there an n does not make an arm, and
 // a time stands without other words.
