@@ -1,6 +1,7 @@
 package extract
 
 import (
+	"bytes"
 	"cmp"
 	"crypto/sha256"
 	"encoding/hex"
@@ -35,7 +36,8 @@ func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 	case pdf.IsPDF(content), strings.EqualFold(filepath.Ext(path), ".pdf"):
 		// What only its name calls a PDF is told so by the PDF reader.
 		return readPDF(path, content, opt)
-	case jats.Is(content):
+	case jats.Is(content), bytes.HasPrefix(content, []byte("<?xml")):
+		// XML that is no article is told so by the article reader.
 		return jats.Read(path, content)
 	}
 	return plain.Read(path, content)

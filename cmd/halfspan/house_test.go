@@ -27,6 +27,7 @@ const module = "halfspan"
 var mayImport = map[string][]string{
 	"extract/result":     {"extract/paper"},
 	"extract/source":     {"extract/paper"},
+	"extract/readtest":   {"extract/paper"}, // helpers of the readers' tests
 	"extract/tidy":       {"extract/paper", "extract/source"},
 	"extract/pdf":        {"extract/paper", "extract/pdf/..."},
 	"extract/pdf/...":    {"extract/paper", "extract/pdf/..."},

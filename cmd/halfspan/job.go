@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"errors"
 	"fmt"
+	"io"
 	"io/fs"
 	"os"
 	"strings"
@@ -12,6 +13,7 @@ import (
 	"halfspan/convert/working"
 	"halfspan/extract"
 	"halfspan/extract/paper"
+	"halfspan/extract/pdf"
 	"halfspan/extract/worker"
 	"halfspan/report/ledger"
 )
@@ -61,9 +63,13 @@ type outcome struct {
 	Items []ledger.Item
 }
 
-// maxFile bounds the size of a file that is read at all. The largest of some
-// hundred published papers has 30 MB.
-const maxFile = 200 << 20
+// maxFile and maxText bound the size of a PDF and of other files that are read
+// at all. The largest of some hundred published PDFs has 30 MB, the longest
+// text 1 MB.
+const (
+	maxFile = 200 << 20
+	maxText = 32 << 20
+)
 
 // preparing is how long the PDF reader may take to be compiled, once for a user.
 const preparing = 3 * time.Minute
@@ -115,23 +121,38 @@ func work(request []byte, alive worker.Alive) ([]byte, error) {
 
 // readFile reads a paper's file, or says in plain words why not.
 func readFile(path string) ([]byte, error) {
-	info, err := os.Stat(path)
-	switch {
-	case errors.Is(err, fs.ErrPermission):
-		return nil, errors.New("no permission to read it")
-	case err != nil:
-		return nil, fmt.Errorf("opening it: %w", bare(err))
-	case info.Size() > maxFile:
-		return nil, fmt.Errorf("it has %d MB, and no paper has more than %d: split it, or leave it out", info.Size()>>20, maxFile>>20)
-	}
-	content, err := os.ReadFile(path)
+	f, err := os.Open(path)
 	if errors.Is(err, fs.ErrPermission) {
 		return nil, errors.New("no permission to read it")
 	}
 	if err != nil {
 		return nil, fmt.Errorf("opening it: %w", bare(err))
 	}
-	return content, nil
+	defer f.Close()
+	info, err := f.Stat()
+	if err != nil {
+		return nil, fmt.Errorf("opening it: %w", bare(err))
+	}
+	if info.IsDir() {
+		return nil, errors.New("it is a folder")
+	}
+	head := make([]byte, 1024)
+	n, err := io.ReadFull(f, head)
+	if err != nil && !errors.Is(err, io.EOF) && !errors.Is(err, io.ErrUnexpectedEOF) {
+		return nil, fmt.Errorf("reading it: %w", bare(err))
+	}
+	most, what := int64(maxText), "text"
+	if pdf.IsPDF(head[:n]) {
+		most, what = maxFile, "PDF"
+	}
+	if info.Size() > most {
+		return nil, fmt.Errorf("it has %d MB, and no %s of a paper has more than %d: split it, or leave it out", info.Size()>>20, what, most>>20)
+	}
+	rest, err := io.ReadAll(io.LimitReader(f, most))
+	if err != nil {
+		return nil, fmt.Errorf("reading it: %w", bare(err))
+	}
+	return append(head[:n], rest...), nil
 }
 
 // bare is an error of the file system without the path, which is said already.
