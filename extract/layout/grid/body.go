@@ -32,7 +32,7 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 		last = i
 		tabular++
 	}
-	if last < 0 || tabular == 0 && end == 0 {
+	if last < 0 || tabular == 0 && end == 0 || end == 0 && !s.hasRows(lines[:last+1]) {
 		return box{}, false, false
 	}
 	if n := s.notesInside(lines[:last+1], sides); n > 0 && n <= last {
@@ -183,6 +183,18 @@ func (s *sheet) closed(sides box, top, end int) bool {
 		}
 	}
 	return n >= 3
+}
+
+// hasRows reports whether at least two lines have figures in cells beside their
+// first, as a table without any rule must.
+func (s *sheet) hasRows(lines []line) bool {
+	n := 0
+	for i := range lines {
+		if s.figuresIn(&lines[i]) {
+			n++
+		}
+	}
+	return n >= 2
 }
 
 // figuresIn reports whether a line has a figure in a cell other than its first.

@@ -268,6 +268,9 @@ func (st *stretcher) free(p *headPiece, c int) bool {
 		return false
 	}
 	q, own := st.under[c], st.under[p.c0]
+	if q.c1 > q.c0 && (q.top-p.top)*100 <= 135*st.rd.em {
+		return false // a heading of p's own level, set a little lower
+	}
 	again := count(st.next, q.text) > 1
 	if st.left && isTestHead(q.text) && !again {
 		return false
