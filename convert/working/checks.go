@@ -102,6 +102,14 @@ func checksOfWorking() []check {
 			return fmt.Sprintf("mean %s with an SD of %s: skewed%s, if the values cannot be negative; this does not touch the SD", it.res.Estimate, short(float64(*rec.SD)), strong),
 				it.est.High() < 2*low
 		}},
+		{"large-converted-sd", func(it *item) (string, bool) {
+			rec := it.rec()
+			if rec.Use != useConverted || it.est == nil || it.res.Statistic != result.Mean || it.est.Low() <= 0 {
+				return "", false
+			}
+			return fmt.Sprintf("an SD of %s worked out beside a mean of %s", short(float64(*rec.SD)), it.res.Estimate),
+				it.est.High() < 2*float64(*rec.SDLow)
+		}},
 		{"sd-impossible", func(it *item) (string, bool) {
 			rec := it.rec()
 			if rec.SDLow == nil || it.est == nil || it.res.N < 2 {

@@ -53,6 +53,9 @@ func compareMates(it, m *item) {
 	if it.val == nil && !it.interval() || m.val == nil || m.val.Low() <= 0 {
 		return
 	}
+	if it.res.N == 0 {
+		impliedN(it, m)
+	}
 	switch {
 	case it.res.GivenAs == result.CI && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SE:
 		settleTorZ(it, convert.Range{Low: m.val.Low(), High: m.val.High()}, "SE "+m.res.GivenValue)
@@ -65,6 +68,27 @@ func compareMates(it, m *item) {
 			detail := fmt.Sprintf("SD %s and SE %s belong to n from %.0f to %.0f, not to %d", m.res.GivenValue, it.res.GivenValue, math.Ceil(n.Low), math.Floor(n.High), it.res.N)
 			it.raise("mates-disagree", detail)
 			m.raise("mates-disagree", detail)
+		}
+	}
+}
+
+// impliedN notes which n makes a printed SD and the interval or SE of one mean agree,
+// where n is not printed. It is not applied.
+func impliedN(it, m *item) {
+	if m.res.GivenAs != result.SD || !isMean(it) {
+		return
+	}
+	switch it.res.GivenAs {
+	case result.SE:
+		if n, err := convert.NFromSDAndSE(*m.val, *it.val); err == nil {
+			it.note("SD %s and SE %s of one mean belong to n from %.0f to %.0f", m.res.GivenValue, it.res.GivenValue, math.Ceil(n.Low), math.Floor(n.High))
+		}
+	case result.CI:
+		if it.res.Level == 0 || it.lopside != nil || it.margin.Low <= 0 {
+			return
+		}
+		if low, high, err := convert.NFromSDAndInterval(*m.val, it.margin, it.res.Level, false); err == nil {
+			it.note("SD %s and this interval of one mean belong to n from %d to %d, by t", m.res.GivenValue, low, high)
 		}
 	}
 }

@@ -87,6 +87,7 @@ func Flags() []FlagInfo {
 		{"log-scale", None, "analysed on the log scale", "its interval belongs to that scale: the SD is withheld"},
 		// The values.
 		{"skewed", None, "mean below 2 SD: values that cannot be negative would be skewed", "an SD from an interval stands all the same; a median's proposals mislead"},
+		{"large-converted-sd", AsksLook, "the SD worked out is more than half the mean", "check n and what the spread is: an n of another group gives such an SD"},
 		{"skewed-summary", None, "median and quantiles are skewed by the test for them", "the methods for near-normal data mislead"},
 		{"count-data", None, "the outcome is counted in whole numbers", "often skewed; an SD from an interval stands all the same"},
 		{"mean-impossible", AsksLook, "no whole numbers have this mean with this n", "n or the mean was misread or misprinted, or the outcome is not counted"},

@@ -140,6 +140,7 @@ func raisedByWorking() map[string][]result.Result {
 		"back-transformed":          design("back-transformed"),
 		"log-scale":                 design("log-scale"),
 		"skewed":                    one(sd("1.2", "1.9", "syrup", 20)),
+		"large-converted-sd":        one(as(sd("14.4", "1.22", "syrup", 98), asSE)),
 		"skewed-summary": one(as(plain, func(r *result.Result) {
 			r.Statistic, r.GivenAs, r.Estimate, r.Lower, r.Upper = result.Median, result.Range, "12", "4", "31"
 		})),

@@ -200,51 +200,110 @@ func (it *item) attainable(sds [3]float64) (fits [3]bool, scale string) {
 	return fits, ""
 }
 
-// supportReading names the reading that the paper's own p value fits: only where a
-// t test is stated, the row compares exactly two arms in this form, and exactly one
-// reading fits. It is never applied.
+// supportReading names the reading that the paper's own p value or interval of the
+// difference fits: only where a t test is stated, the row compares exactly two arms
+// in this form, and exactly one reading fits. It is never applied.
 func supportReading(row []*item) {
-	var pair []*item
-	for _, it := range row {
-		if it.res.GivenAs == result.Unstated && it.res.Statistic == result.Mean && it.est != nil && it.val != nil && it.res.N > 1 {
-			pair = append(pair, it)
-		}
-	}
-	if len(pair) != 2 || pair[0].res.Arm == pair[1].res.Arm || pair[0].res.Time != pair[1].res.Time || pair[0].res.Outcome != pair[1].res.Outcome {
+	pair, difference := comparedArms(row)
+	if len(pair) != 2 {
 		return
 	}
 	a, b := pair[0], pair[1]
 	stated := func(x *item) bool { return slices.Contains(x.res.Evidence.Tests, "t test") }
-	printed := rowP(a, b)
-	if printed == "" || !stated(a) && !stated(b) {
+	if !stated(a) && !stated(b) {
 		return
 	}
-	p, err := convert.ReadP(printed)
-	if err != nil {
+	fits, evidence, ok := fittingByP(a, b)
+	if !ok && difference != nil {
+		fits, evidence, ok = fittingByInterval(a, b, difference)
+	}
+	if !ok {
 		return
 	}
-	arm := func(x *item) convert.PrintedArm { return convert.PrintedArm{Mean: *x.est, Spread: *x.val, N: x.res.N} }
-	ranges, err := convert.PUnderReadings(arm(a), arm(b), readingLevel)
-	if err != nil {
-		return
-	}
-	fitting := -1
-	for r, q := range ranges {
-		if q.Meets(p.Range) {
-			if fitting >= 0 {
-				return
-			}
+	fitting, count := 0, 0
+	for r, fit := range fits {
+		if fit {
 			fitting = r
+			count++
 		}
 	}
 	for _, it := range pair {
-		if fitting < 0 {
-			it.raise("no-reading-fits", "p "+printed+" fits no reading of the ± by a t test")
-			continue
+		switch count {
+		case 0:
+			it.raise("no-reading-fits", evidence+" fits no reading of the ± by a t test")
+		case 1:
+			it.note("%s fits only the reading %s, by a t test of the two arms; it is not applied", evidence, readingNames[fitting])
 		}
-		it.note("the paper's p value %s fits only the reading %s (t test of the two arms: p %s to %s); it is not applied",
-			printed, readingNames[fitting], short(ranges[fitting].Low), short(ranges[fitting].High))
 	}
+}
+
+// comparedArms finds the two arms of a row with an unexplained spread, at one time,
+// and the row's difference with its interval, if it has one.
+func comparedArms(row []*item) (pair []*item, difference *item) {
+	for _, it := range row {
+		switch {
+		case it.res.GivenAs == result.Unstated && it.res.Statistic == result.Mean && it.est != nil && it.val != nil && it.res.N > 1:
+			pair = append(pair, it)
+		case it.res.GivenAs == result.CI && it.res.Statistic == result.MeanDifference && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0:
+			difference = it
+		}
+	}
+	if len(pair) != 2 || pair[0].res.Arm == pair[1].res.Arm || pair[0].res.Time != pair[1].res.Time || pair[0].res.Outcome != pair[1].res.Outcome {
+		return nil, nil
+	}
+	return pair, difference
+}
+
+func fittingByP(a, b *item) (fits [3]bool, evidence string, ok bool) {
+	printed := rowP(a, b)
+	p, err := convert.ReadP(printed)
+	if printed == "" || err != nil {
+		return fits, "", false
+	}
+	arm := func(x *item) convert.PrintedArm {
+		return convert.PrintedArm{Mean: *x.est, Spread: *x.val, N: x.res.N}
+	}
+	ranges, err := convert.PUnderReadings(arm(a), arm(b), readingLevel)
+	if err != nil {
+		return fits, "", false
+	}
+	for r, q := range ranges {
+		fits[r] = q.Meets(p.Range)
+	}
+	return fits, "the paper's p value " + printed, true
+}
+
+// fittingByInterval compares the SE behind the interval of the difference with the
+// one that each reading gives; it works where the difference is near 0 too.
+func fittingByInterval(a, b, difference *item) (fits [3]bool, evidence string, ok bool) {
+	t, err := convert.TwoSided(difference.res.Level, float64(a.res.N+b.res.N-2))
+	if err != nil {
+		return fits, "", false
+	}
+	se := difference.margin.Times(1 / t)
+	for r := range fits {
+		span := convert.Range{Low: math.Inf(1)}
+		for _, side := range []float64{-1, 1} {
+			var g [2]convert.Group
+			for i, x := range []*item{a, b} {
+				spread := x.val.Value + side*x.val.Half
+				sds, err := convert.SDsOfReadings(spread, x.res.N, readingLevel)
+				if err != nil {
+					return fits, "", false
+				}
+				g[i] = convert.Group{N: x.res.N, SD: sds[r]}
+			}
+			for _, test := range []func(convert.Group, convert.Group, float64) (convert.Comparison, error){convert.Pooled, convert.Welch} {
+				c, err := test(g[0], g[1], difference.res.Level)
+				if err != nil {
+					return fits, "", false
+				}
+				span.Low, span.High = math.Min(span.Low, c.SE), math.Max(span.High, c.SE)
+			}
+		}
+		fits[r] = se.Meets(span)
+	}
+	return fits, fmt.Sprintf("the interval of the difference, %s to %s,", difference.res.Lower, difference.res.Upper), true
 }
 
 func rowP(items ...*item) string {

@@ -1,0 +1,184 @@
+package working
+
+import (
+	"encoding/json"
+	"strings"
+	"testing"
+
+	"halfspan/convert"
+	"halfspan/extract/result"
+)
+
+// trail is everything that a person reads of a working, on one string.
+func trail(t *testing.T, w Working) string {
+	t.Helper()
+	b, err := json.Marshal(w)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return string(b)
+}
+
+// What several results of one paper say together, and what a lone one says beside.
+func TestTogether(t *testing.T) {
+	mean := func(est, low, high string, n int, mates ...int) result.Result {
+		return result.Result{Statistic: result.Mean, GivenAs: result.CI, Estimate: est, Lower: low, Upper: high, Level: 95, N: n, Table: "Table 2", Row: "1", Arm: "syrup", Outcome: "colony mass", Mates: mates}
+	}
+	spread := func(kind result.GivenAs, est, value, arm string, n int, mates ...int) result.Result {
+		return result.Result{Statistic: result.Mean, GivenAs: kind, Estimate: est, GivenValue: value, N: n, Table: "Table 2", Row: "1", Arm: arm, Outcome: "colony mass", Mates: mates}
+	}
+	median := func(kind result.GivenAs, low, high string, n int, mates ...int) result.Result {
+		return result.Result{Statistic: result.Median, GivenAs: kind, Estimate: "12", Lower: low, Upper: high, N: n, Table: "Table 2", Row: "1", Arm: "syrup", Outcome: "flight time", Mates: mates}
+	}
+	tested := func(r result.Result, p string) result.Result {
+		r.Evidence.Tests, r.Evidence.RowP = []string{"t test"}, p
+		return r
+	}
+	scaled := func(r result.Result, low, high string) result.Result {
+		r.Evidence.ScaleLow, r.Evidence.ScaleHigh = low, high
+		return r
+	}
+	difference := result.Result{Statistic: result.MeanDifference, GivenAs: result.CI, Estimate: "1.8", Lower: "0.1", Upper: "3.5", Level: 95, N: 30, N2: 28, Table: "Table 2", Row: "1", Outcome: "colony mass"}
+	cases := []struct {
+		name    string
+		results []result.Result
+		want    []string // in the first working
+		not     []string
+	}{
+		// 1.96·0.612 = 1.20 while t(9)·0.612 = 1.38
+		{"an SE beside settles z", []result.Result{mean("12.40", "11.20", "13.60", 10, 1), spread(result.SE, "12.40", "0.612", "syrup", 10, 0)},
+			[]string{`made with z`, `"method":"sd-from-ci-normal"`, `"sd":1.93`, `"sd_normal":null`}, []string{"t-or-z"}},
+		{"an SE beside settles t", []result.Result{mean("12.40", "11.20", "13.60", 10, 1), spread(result.SE, "12.40", "0.530", "syrup", 10, 0)},
+			[]string{`made with t`, `"method":"sd-from-ci"`}, []string{`"t-or-z"`}},
+		{"an SE that fits neither", []result.Result{mean("12.40", "11.20", "13.60", 10, 1), spread(result.SE, "12.40", "0.90", "syrup", 10, 0)},
+			[]string{`mates-disagree`}, nil},
+		{"SD and SE say what n is", []result.Result{spread(result.SE, "12.4", "1.39", "syrup", 0, 1), spread(result.SD, "12.4", "8.6", "syrup", 0, 0)},
+			[]string{"belong to n from 38 to 39", `"use":"withheld"`}, nil},
+		{"SD and interval say what n is", []result.Result{mean("32.1", "30.0", "34.2", 0, 1), spread(result.SD, "32.1", "5.09", "syrup", 0, 0)},
+			[]string{"belong to n from 24 to 26, by t"}, nil},
+		{"quartiles and range are five numbers", []result.Result{median(result.IQR, "9", "16", 40, 1), median(result.Range, "4", "31", 40, 0)},
+			[]string{"luo-five with shi-five", `"mean":12.9709748,"sd":5.91783357`, "bland-five", "read from the result printed beside", `"sd":null`}, []string{"luo-quartiles with"}},
+		{"quartiles alone", []result.Result{median(result.IQR, "9", "16", 40)},
+			[]string{"luo-quartiles with wan-quartiles", `"mean":12.354875,"sd":5.38250931`, "preferred in the literature", "typical error at n 50", "skewness 0.142857"}, nil},
+		{"a median with an interval", []result.Result{func() result.Result { r := median(result.CI, "9", "16", 40); r.Level = 95; return r }()},
+			[]string{"no published method leads from it"}, []string{"luo"}},
+		{"the p value fits one reading", []result.Result{tested(spread(result.Unstated, "24.6", "3.1", "syrup", 30), "0.04"), spread(result.Unstated, "22.8", "3.4", "water", 28)},
+			[]string{"fits only the reading as an SD", "it is not applied", `"use":"withheld"`, `"sd":null`}, nil},
+		{"the p value fits two readings", []result.Result{tested(spread(result.Unstated, "14.2", "1.5", "syrup", 6), "0.04"), spread(result.Unstated, "12.0", "1.7", "water", 6)},
+			nil, []string{"fits only"}},
+		{"no test stated, nothing said", []result.Result{func() result.Result {
+			r := spread(result.Unstated, "24.6", "3.1", "syrup", 30)
+			r.Evidence.RowP = "0.04"
+			return r
+		}(), spread(result.Unstated, "22.8", "3.4", "water", 28)}, nil, []string{"fits only"}},
+		{"the interval of the difference fits one reading", []result.Result{tested(spread(result.Unstated, "24.6", "3.1", "syrup", 30), ""), spread(result.Unstated, "22.8", "3.4", "water", 28), difference},
+			[]string{"the interval of the difference, 0.1 to 3.5, fits only the reading as an SD"}, nil},
+		{"the scale strikes readings out", []result.Result{scaled(spread(result.Unstated, "8.1", "0.9", "syrup", 40), "0", "10")},
+			[]string{"does not fit on the scale from 0 to 10", `"name":"as an SE"`, `"struck":true`}, nil},
+		{"printed extremes strike readings out", []result.Result{spread(result.Unstated, "40.2", "1.9", "syrup", 30, 1), func() result.Result {
+			r := spread(result.Range, "40.2", "", "syrup", 30, 0)
+			r.Lower, r.Upper = "21", "64"
+			return r
+		}()}, []string{"with a range of 21 to 64 the SD is at least"}, nil},
+		{"whole numbers strike readings out", []result.Result{func() result.Result {
+			r := scaled(spread(result.Unstated, "2.93", "1.10", "syrup", 15), "1", "5")
+			r.Evidence.Integer = true
+			return r
+		}()}, []string{"no whole numbers from 1 to 5 have this mean and SD"}, nil},
+		{"a lopsided interval is explained", []result.Result{mean("1.62", "1.12", "2.35", 30)},
+			[]string{"symmetric on the log scale", "if the bounds are quartiles of a median", `"use":"withheld"`, "not symmetric about the estimate"}, nil},
+		{"no level", []result.Result{func() result.Result { r := mean("12.4", "11.2", "13.6", 42); r.Level = 0; return r }()},
+			[]string{"if the level is 95%", "if the level is 90%", `"use":"withheld"`}, nil},
+		{"a difference of two means", []result.Result{difference},
+			[]string{"n₁ + n₂ − 2 = 56", "pooled SD of the two arms", `"sd":null`, `"method":"se-from-ci"`}, nil},
+		{"a proportion", []result.Result{{Statistic: result.Proportion, GivenAs: result.CI, Estimate: "22.5", Lower: "9.6", Upper: "35.4", Level: 95, N: 40, Unit: "%", Table: "Table 2"}},
+			[]string{"9 of 40 prints like this by: wald"}, nil},
+		{"a geometric mean", []result.Result{{Statistic: result.GeometricMean, GivenAs: result.CI, Estimate: "10.0", Lower: "8.1", Upper: "12.4", Level: 95, N: 30, Table: "Table 2"}},
+			[]string{"lognormal law", "SD of the logarithms 0.5702", `"scale":"log"`}, nil},
+		{"an SE that must be an SD", []result.Result{spread(result.SE, "0.36", "0.40", "syrup", 178)},
+			[]string{`sd-as-se`, `"use":"withheld"`, `"sd":null`}, nil},
+	}
+	for _, c := range cases {
+		t.Run(c.name, func(t *testing.T) {
+			got := trail(t, Work(Facts{Path: "hives.txt", SHA256: "00"}, c.results)[0])
+			for _, want := range c.want {
+				if !strings.Contains(got, want) {
+					t.Errorf("no %q in %s", want, got)
+				}
+			}
+			for _, not := range c.not {
+				if strings.Contains(got, not) {
+					t.Errorf("%q in %s", not, got)
+				}
+			}
+		})
+	}
+}
+
+// Working the same results again gives the same bytes, and changes none of them.
+func TestWorkIsRepeatable(t *testing.T) {
+	var results []result.Result
+	for _, name := range []string{"t-or-z", "se-as-sd", "skewed-summary", "described-alike", "mates-disagree", "no-reading-fits"} {
+		for _, r := range raisedByWorking()[name] {
+			r.Mates = nil
+			results = append(results, r)
+		}
+	}
+	before, err := json.Marshal(results)
+	if err != nil {
+		t.Fatal(err)
+	}
+	first, err := json.Marshal(Work(Facts{Path: "hives.txt", SHA256: "00"}, results))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for range 20 {
+		again, err := json.Marshal(Work(Facts{Path: "hives.txt", SHA256: "00"}, results))
+		if err != nil || string(again) != string(first) {
+			t.Fatalf("another working of the same results, %v", err)
+		}
+	}
+	after, err := json.Marshal(results)
+	if err != nil || string(after) != string(before) {
+		t.Errorf("the results were changed, %v", err)
+	}
+}
+
+// Every method that a record or a proposal names is in the table of methods.
+func TestMethodNamesAreExplained(t *testing.T) {
+	known := map[string]bool{}
+	for _, m := range convert.Methods() {
+		known[m.Name] = true
+	}
+	check := func(names string) {
+		for _, n := range strings.Split(names, " with ") {
+			if !known[n] {
+				t.Errorf("%q is not in the table of methods", n)
+			}
+		}
+	}
+	var all []Working
+	for _, results := range raisedByWorking() {
+		all = append(all, Work(Facts{}, results)...)
+	}
+	all = append(all, Work(Facts{}, []result.Result{
+		{Statistic: result.Median, GivenAs: result.IQR, Estimate: "12", Lower: "9", Upper: "16", N: 20},
+		{Statistic: result.Median, GivenAs: result.Range, Estimate: "12", GivenValue: "14.2", N: 8},
+		{Statistic: result.Ratio, GivenAs: result.CI, Estimate: "0.81", Lower: "0.70", Upper: "0.94", Level: 95},
+	})...)
+	proposals := 0
+	for _, w := range all {
+		if w.Record.Method != nil {
+			check(*w.Record.Method)
+		}
+		if w.Record.Statistic != nil && *w.Record.Statistic == "median" {
+			for _, a := range w.Trail.Alternatives {
+				check(a.Name)
+				proposals++
+			}
+		}
+	}
+	if proposals < 8 {
+		t.Errorf("only %d proposals seen", proposals)
+	}
+}
