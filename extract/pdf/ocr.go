@@ -31,14 +31,12 @@ type recogniser struct{ program string }
 // newRecogniser finds tesseract; its error says, as the end of a sentence, why
 // no page will be recognised.
 func newRecogniser(wanted bool) (*recogniser, error) {
+	if !wanted {
+		return nil, errors.New("give --ocr to have it read by tesseract, where that is installed")
+	}
 	path, err := exec.LookPath("tesseract")
-	switch {
-	case err != nil && wanted:
+	if err != nil {
 		return nil, errors.New("install tesseract to have it read")
-	case err != nil:
-		return nil, errors.New("install tesseract and give --ocr to have it read")
-	case !wanted:
-		return nil, errors.New("give --ocr to have it read by tesseract")
 	}
 	return &recogniser{path}, nil
 }
