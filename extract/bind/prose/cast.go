@@ -28,13 +28,14 @@ type arm struct {
 type cast struct {
 	arms  []arm
 	index map[string]int
-	total []size // sizes of the whole sample, each time it is stated
+	first map[string][]int // the arms by the first word of their key
+	total []size           // sizes of the whole sample, each time it is stated
 }
 
 // learn collects the arms and their sizes from running text and the column
 // headings of tables.
 func (f *finder) learn() {
-	f.cast.index = map[string]int{}
+	f.cast.index, f.cast.first = map[string]int{}, map[string][]int{}
 	for i := range f.doc.Blocks {
 		b := &f.doc.Blocks[i]
 		switch {
@@ -174,6 +175,7 @@ func (f *finder) addArm(name string, n *grammar.Item, run *paper.TextRun, from s
 	if !ok {
 		i = len(f.cast.arms)
 		f.cast.index[k] = i
+		f.cast.first[key[0]] = append(f.cast.first[key[0]], i)
 		f.cast.arms = append(f.cast.arms, arm{name: name, key: key})
 	}
 	a := &f.cast.arms[i]
@@ -306,6 +308,18 @@ type mention struct {
 // mentions finds the arms named between two bytes, the longest name first, in
 // order of place.
 func (p *para) mentions(from, to int) []mention {
+	if start, end := p.sentence(from); start == from && end == to {
+		if got, ok := p.arms[from]; ok {
+			return got
+		}
+		got := p.mentionsIn(from, to)
+		p.arms[from] = got
+		return got
+	}
+	return p.mentionsIn(from, to)
+}
+
+func (p *para) mentionsIn(from, to int) []mention {
 	toks := p.r.Tokens
 	var out []mention
 	for i := p.token(from); i < len(toks) && toks[i].Start < to; i++ {
@@ -313,7 +327,7 @@ func (p *para) mentions(from, to int) []mention {
 			continue
 		}
 		best, bestEnd, bestLen := -1, i, 0
-		for a := range p.f.cast.arms {
+		for _, a := range p.f.cast.first[toks[i].Value] {
 			arm := &p.f.cast.arms[a]
 			if len(arm.key) <= bestLen {
 				continue

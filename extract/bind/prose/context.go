@@ -1,6 +1,7 @@
 package prose
 
 import (
+	"sort"
 	"strings"
 
 	"halfspan/extract/grammar"
@@ -86,20 +87,20 @@ var part = pattern.MustCompile(`(?i)\b(?:drop-?outs?|adherers|completers|survivo
 // wholeArm reports that the sentence speaks of a whole arm and gives no count of
 // its own, so that the arm's size stated elsewhere may stand for it.
 func (p *para) wholeArm(m mention) bool {
-	from, to := p.sentence(m.start)
-	s := p.s[from:to]
+	_, to := p.sentence(m.start)
 	rest := strings.TrimLeft(p.s[m.end:to], " ")
 	for _, w := range [...]string{"with ", "who ", "without ", "whose "} {
 		if strings.HasPrefix(rest, w) {
 			return false
 		}
 	}
-	return p.block.Zone != paper.Methods && p.block.Zone != paper.Discussion && !part.MatchString(s) && !counted.MatchString(s)
+	return p.block.Zone != paper.Methods && p.block.Zone != paper.Discussion && !p.says(m.start, part) && !p.says(m.start, counted)
 }
 
 // behindName reads the n printed right behind an arm's name: "Syrup (n = 42)".
 func (p *para) behindName(m mention) (size, bool) {
-	for k := range p.r.Items {
+	i, j := p.items(m.end, m.end+4)
+	for k := i; k < j; k++ {
 		e := &p.r.Items[k]
 		if e.Start >= m.end && e.Start-m.end < 4 && e.Kind == grammar.KindSampleSize {
 			return p.sized(e)
@@ -136,7 +137,7 @@ func (p *para) armOf(c *cand, all []mention, from, to int) (mention, bool) {
 		end = max(end, p.r.Brackets[it.Bracket-1].End)
 	}
 	previous := from
-	for k := range p.cands {
+	for k, last := p.found(from, to); k < last; k++ {
 		if o := &p.cands[k]; o.est.Start < c.est.Start && o.est.Start >= from {
 			previous = max(previous, min(p.r.Items[o.item].End, c.est.Start))
 		}
@@ -194,8 +195,13 @@ func (p *para) alternate(c *cand, all []mention, from, previous int) (mention, b
 
 // shut reports that byte a stands in a bracket that is closed before byte b.
 func (p *para) shut(a, b int) bool {
-	for _, br := range p.r.Brackets {
-		if br.Start < a && a < br.End && br.End <= b {
+	from, _ := p.sentence(a)
+	for k := sort.Search(len(p.r.Brackets), func(k int) bool { return p.r.Brackets[k].Start >= a }) - 1; k >= 0; k-- {
+		br := p.r.Brackets[k]
+		if br.Start < from {
+			break
+		}
+		if a < br.End && br.End <= b {
 			return true
 		}
 	}
@@ -218,7 +224,7 @@ var linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|
 func (p *para) byOrder(c *cand, all []mention, from, to int) (mention, bool) {
 	var mine []int
 	at := -1
-	for k := range p.cands {
+	for k, last := p.found(from, to); k < last; k++ {
 		o := &p.cands[k]
 		if o.est.Start < from || o.est.Start >= to {
 			continue
@@ -230,7 +236,7 @@ func (p *para) byOrder(c *cand, all []mention, from, to int) (mention, bool) {
 			at = len(mine) - 1
 		}
 	}
-	if !inOrder.MatchString(p.s[from:to]) && !p.joined(mine) {
+	if !p.says(c.est.Start, inOrder) && !p.joined(mine) {
 		return mention{}, false
 	}
 	var distinct []mention
@@ -282,19 +288,25 @@ var (
 // before it in the sentence. "From baseline" names no time of a value.
 func (p *para) setTime(r *result.Result, c *cand) {
 	it := &p.r.Items[c.item]
-	from, to := p.sentence(it.Start)
+	_, to := p.sentence(it.Start)
 	end := it.End
 	if it.Bracket > 0 {
 		end = min(to, max(end, p.r.Brackets[it.Bracket-1].End))
 	}
-	if m := timeWords.FindStringIndex(p.s[end:to]); m != nil && m[0] < 50 && timeAfter.MatchString(p.s[end:end+m[0]]) && !strings.Contains(p.s[end:end+m[0]], " and ") && !strings.HasSuffix(p.s[:end+m[0]], "from ") {
-		p.setTimeAt(r, end+m[0], end+m[1])
-		return
+	all := p.matches(it.Start, timeWords)
+	for _, m := range all {
+		if m[0] < end {
+			continue
+		}
+		if between := p.s[end:m[0]]; len(between) < 50 && timeAfter.MatchString(between) && !strings.Contains(between, " and ") && !strings.HasSuffix(p.s[:m[0]], "from ") {
+			p.setTimeAt(r, m[0], m[1])
+			return
+		}
+		break
 	}
-	before := timeWords.FindAllStringIndex(p.s[from:c.est.Start], -1)
-	for k := len(before) - 1; k >= 0; k-- {
-		a, b := from+before[k][0], from+before[k][1]
-		if !strings.HasSuffix(p.s[:a], "from ") && !p.inSpread(a, b) {
+	for k := len(all) - 1; k >= 0; k-- {
+		a, b := all[k][0], all[k][1]
+		if b <= c.est.Start && !strings.HasSuffix(p.s[:a], "from ") && !p.inSpread(a, b) {
 			p.setTimeAt(r, a, b)
 			return
 		}
@@ -309,7 +321,8 @@ func (p *para) setTimeAt(r *result.Result, a, b int) {
 // inSpread reports that a stretch holds the estimate of a result: "35 min" is
 // then no time point.
 func (p *para) inSpread(a, b int) bool {
-	for k := range p.cands {
+	from, to := p.sentence(a)
+	for k, last := p.found(from, to); k < last; k++ {
 		if e := p.cands[k].est; e.Start < b && e.End > a {
 			return true
 		}
@@ -349,7 +362,8 @@ func (p *para) setOutcome(r *result.Result, c *cand) {
 // sentence, and its index; -1 where it is the first.
 func (p *para) previous(c *cand, from int) (end, index int) {
 	end, index = from, -1
-	for k := range p.cands {
+	_, to := p.sentence(c.est.Start)
+	for k, last := p.found(from, to); k < last; k++ {
 		o := &p.cands[k]
 		if o.item == c.item || o.est.Start > c.est.Start || o.est.Start < from || o.item > c.item {
 			continue
@@ -368,7 +382,7 @@ var sameOutcome = pattern.MustCompile(`(?i)^[)\]%]*(?:[^.;()\[\]]|\(n ?= ?[0-9]+
 // inherit copies the outcome of another candidate's result.
 func (p *para) inherit(r *result.Result, o *cand) {
 	at := p.run.Between(o.est.Start, o.est.End)
-	for i := len(p.f.out) - 1; i >= 0; i-- {
+	for i := len(p.f.out) - 1; i >= 0 && i > len(p.f.out)-30; i-- {
 		if place(&p.f.out[i], "estimate") != at {
 			continue
 		}
@@ -402,7 +416,8 @@ func wholeList(stretch string, start int, part string) (string, int) {
 
 // holdsSpread reports that words of an interval or spread stand in a stretch.
 func (p *para) holdsSpread(a, b int) bool {
-	for k := range p.r.Items {
+	from, _ := p.sentence(a)
+	for k, last := p.items(from, b); k < last; k++ {
 		if it := &p.r.Items[k]; it.Spread != "" && it.Start < b && it.End > a {
 			return true
 		}

@@ -105,25 +105,29 @@ func (p *para) byConvention(k int, c *cand) bool {
 // same two numbers elsewhere with a word for the spread: "56 ± 6" in the results
 // is the abstract's "56 (SD 6)".
 func (f *finder) repeats() {
+	type pair struct{ estimate, value string }
+	explained := map[pair]result.Source{}
+	kind := map[pair]result.GivenAs{}
 	for i := range f.out {
 		r := &f.out[i]
-		if r.GivenAs != result.Unstated {
+		k := pair{r.Estimate, r.GivenValue}
+		if r.GivenAs != result.SD && r.GivenAs != result.SE || kind[k] != "" {
 			continue
 		}
-		for j := range f.out {
-			o := &f.out[j]
-			if o.Estimate != r.Estimate || o.GivenValue != r.GivenValue || o.GivenAs != result.SD && o.GivenAs != result.SE {
-				continue
+		for _, s := range r.Sources {
+			if s.Field == "given_as" {
+				s.From = "the same numbers elsewhere in the text"
+				explained[k], kind[k] = s, r.GivenAs
+				break
 			}
-			for _, s := range o.Sources {
-				if s.Field == "given_as" {
-					s.From = "the same numbers elsewhere in the text"
-					r.GivenAs = o.GivenAs
-					r.Sources = append(r.Sources, s)
-					break
-				}
-			}
-			break
+		}
+	}
+	for i := range f.out {
+		r := &f.out[i]
+		k := pair{r.Estimate, r.GivenValue}
+		if r.GivenAs == result.Unstated && kind[k] != "" {
+			r.GivenAs = kind[k]
+			r.Sources = append(r.Sources, explained[k])
 		}
 	}
 }

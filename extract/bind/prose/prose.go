@@ -60,16 +60,19 @@ func decimalComma(doc *paper.Document) bool {
 
 // para is one block with what the grammar read in it.
 type para struct {
-	f     *finder
-	block *paper.Block
-	run   *paper.TextRun
-	s     string
-	r     grammar.Reading
-	ends  []int  // byte offsets at which sentences end
-	said  []said // words for a spread met so far
-	used  []bool // items that belong to a spread and are no estimate
-	cands []cand // spreads with their estimates
-	group []int  // of every item the run of intervals it belongs to
+	f      *finder
+	block  *paper.Block
+	run    *paper.TextRun
+	s      string
+	r      grammar.Reading
+	arms   map[int][]mention // by the start of their sentence, once looked for
+	facts  map[fact]bool
+	places map[fact][][]int
+	ends   []int  // byte offsets at which sentences end
+	said   []said // words for a spread met so far
+	used   []bool // items that belong to a spread and are no estimate
+	cands  []cand // spreads with their estimates
+	group  []int  // of every item the run of intervals it belongs to
 }
 
 func (f *finder) block(i int) {
@@ -79,7 +82,7 @@ func (f *finder) block(i int) {
 	}
 	text := convention.Text(&b.Text)
 	text.DecimalComma = f.comma
-	p := &para{f: f, block: b, run: &b.Text, s: b.Text.S, r: grammar.Read(text)}
+	p := &para{f: f, arms: map[int][]mention{}, facts: map[fact]bool{}, places: map[fact][][]int{}, block: b, run: &b.Text, s: b.Text.S, r: grammar.Read(text)}
 	p.sentences()
 	if !p.isProse() {
 		return
@@ -146,6 +149,7 @@ func (p *para) sentences() {
 		p.ends = append(p.ends, next.Start)
 	}
 	p.ends = append(p.ends, len(p.s))
+	p.cutLong()
 	p.joinItems()
 }
 

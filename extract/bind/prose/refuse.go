@@ -15,6 +15,8 @@ var (
 	norms     = pattern.MustCompile(`(?i)\bnorm(?:s|ed|ative|alis|aliz)?|\bt[- ]scores?\b|\bstandardi[sz]ed (?:to|with)|\bhas (?:a|the) mean\b|\bgeneral population\b`)
 	scaleText = pattern.MustCompile(`(?i)\bscor(?:e|es|ed|ing)\b|\bscales?\b|\bpoints?\b|\bquestionnaire|\brated\b|\blikert\b|\bpossible\b|\bitems?\b|\bnormal range|\breference range|\btarget`)
 	climate   = pattern.MustCompile(`(?i)\btemperature|\bhumidity|\bmaintained\b|\bkept\b|\bstored\b|\bincubat|\bhoused\b|\bcentrifug|\bambient\b|\badjusted to\b|\bset to\b|\bpH\b`)
+	ofBody    = pattern.MustCompile(`(?i)\b(?:body|core|skin|rectal|ear|brood|surface) temperature`)
+	humidity  = pattern.MustCompile(`(?i)\bhumidity\b`)
 	margins   = pattern.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
 	central   = pattern.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
 	limits    = pattern.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits)\s*$`)
@@ -29,11 +31,10 @@ func (p *para) sentenceText(b int) string {
 
 // planned reports that the sentence speaks of assumptions, not of results.
 func (p *para) planned(b int) bool {
-	s := p.sentenceText(b)
-	if !planning.MatchString(s) {
+	if !p.says(b, planning) {
 		return false
 	}
-	return p.block.Zone == paper.Methods || p.block.Zone == paper.Elsewhere || planned.MatchString(s)
+	return p.block.Zone == paper.Methods || p.block.Zone == paper.Elsewhere || p.says(b, planned)
 }
 
 // refusedPlusMinus reports visit windows, tolerances and assumptions.
@@ -60,12 +61,11 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 	if p.block.Zone == paper.Methods && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(c.est.End) && p.timeBehind(it.End) {
 		return true // "every 12 hours ± 15 minutes"
 	}
-	s := p.sentenceText(it.Start)
 	j := p.token(it.End)
-	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || climate.MatchString(s)) {
+	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || p.says(it.Start, climate) && !p.says(it.Start, ofBody)) {
 		return true
 	}
-	if climate.MatchString(s) && strings.Contains(s, "humidity") {
+	if p.says(it.Start, humidity) && p.says(it.Start, climate) {
 		return true
 	}
 	if i > 0 && p.r.Tokens[i-1].Value == "every" && whole(c.est.Value) && whole(it.Value.Value) {
@@ -103,8 +103,7 @@ func (p *para) unitBehind(b int, units ...string) bool {
 // refusedSpread reports norms ("mean 50, SD 10") and assumptions.
 func (p *para) refusedSpread(k int) bool {
 	it := &p.r.Items[k]
-	s := p.sentenceText(it.Start)
-	if norms.MatchString(s) && whole(it.Value.Value) {
+	if p.says(it.Start, norms) && whole(it.Value.Value) {
 		return true
 	}
 	return p.planned(it.Start)
@@ -116,15 +115,15 @@ func (p *para) refusedInterval(k int, given result.GivenAs) bool {
 	if p.planned(it.Start) {
 		return true
 	}
-	s := p.sentenceText(it.Start)
+	says := func(what *pattern.Pattern) bool { return p.says(it.Start, what) }
 	switch given {
 	case result.Range:
-		if limits.MatchString(p.s[max(0, it.Start-30):it.Start]) || strings.HasSuffix(p.s[:it.Start], "in the ") || climate.MatchString(s) && p.block.Zone == paper.Methods {
+		if limits.MatchString(p.s[max(0, it.Start-30):it.Start]) || strings.HasSuffix(p.s[:it.Start], "in the ") || p.block.Zone == paper.Methods && says(climate) {
 			return true
 		}
-		return p.block.Zone == paper.Methods && scaleText.MatchString(s) || scaleText.MatchString(s) && !central.MatchString(s)
+		return p.block.Zone == paper.Methods && says(scaleText) || says(scaleText) && !says(central)
 	case result.CI:
-		return margins.MatchString(s) && p.block.Zone == paper.Methods
+		return p.block.Zone == paper.Methods && says(margins)
 	}
 	return false
 }
@@ -149,12 +148,11 @@ func (p *para) refusedBracket(c *cand) bool {
 // the introduction or discussion beside a citation or words of other studies.
 func (p *para) quoted(c *cand) bool {
 	at := p.r.Items[c.item].Start
-	s := p.sentenceText(at)
 	switch p.block.Zone {
 	case paper.Introduction:
 		return true
 	case paper.Discussion:
-		return cited.MatchString(s) || bracketed.MatchString(s) || p.citedBy(at)
+		return p.says(at, cited) || p.says(at, bracketed) || p.citedBy(at)
 	}
 	return false
 }

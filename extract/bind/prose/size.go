@@ -38,9 +38,9 @@ func (p *para) beside(c *cand) (size, bool) {
 	var only, same *grammar.Item
 	count := 0
 	from, to := p.sentence(it.Start)
-	for k := range p.r.Items {
+	for k, last := p.items(from, to); k < last; k++ {
 		e := &p.r.Items[k]
-		if e.Kind != grammar.KindSampleSize || e.Start < from || e.Start >= to {
+		if e.Kind != grammar.KindSampleSize {
 			continue
 		}
 		if it.Bracket > 0 && e.Bracket == it.Bracket {
@@ -61,10 +61,10 @@ func (p *para) beside(c *cand) (size, bool) {
 	if c.meaning.Spread == grammar.SpreadCI && p.statistic(c).statistic == result.Ratio {
 		return size{}, false // a ratio's n is seldom the one count of its sentence
 	}
-	if p.alone(from, to) && count == 1 && only.Start < it.Start && it.Start-only.End < 80 {
+	if p.alone(it.Start) && count == 1 && only.Start < it.Start && it.Start-only.End < 80 {
 		return p.sized(only)
 	}
-	if count == 0 && p.alone(from, to) {
+	if count == 0 && p.alone(it.Start) {
 		return p.countedIn(from, it.Start)
 	}
 	return size{}, false
@@ -75,11 +75,8 @@ func (p *para) beside(c *cand) (size, bool) {
 func (p *para) wholeGroup(c *cand) (size, bool) {
 	const near = 120
 	from, _ := p.sentence(c.est.Start)
-	if groupWord.MatchString(p.s[from:c.est.Start]) || contrast.MatchString(p.s[from:c.est.Start]) {
-		return size{}, false
-	}
 	s, ok := p.countedIn(from, c.est.Start)
-	if !ok || s.at.End > c.est.Start || p.statistic(c).statistic == result.Ratio || c.est.Start-s.at.End > near || strings.ContainsAny(p.s[s.at.End:c.est.Start], ";") {
+	if !ok || groupWord.MatchString(p.s[from:c.est.Start]) || contrast.MatchString(p.s[from:c.est.Start]) || s.at.End > c.est.Start || p.statistic(c).statistic == result.Ratio || c.est.Start-s.at.End > near || strings.ContainsAny(p.s[s.at.End:c.est.Start], ";") {
 		return size{}, false
 	}
 	return s, true
@@ -92,9 +89,8 @@ func (p *para) sized(e *grammar.Item) (size, bool) {
 
 // alone reports that all results of the sentence are about one group: nothing
 // in it contrasts groups.
-func (p *para) alone(from, to int) bool {
-	s := p.s[from:to]
-	return !contrast.MatchString(s) && !groupWord.MatchString(s) && !strings.Contains(s, "respectively")
+func (p *para) alone(b int) bool {
+	return !p.says(b, contrast) && !p.says(b, groupWord) && !p.says(b, inOrder)
 }
 
 var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
@@ -102,19 +98,24 @@ var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|in
 // countedIn reads "the 61 included subjects", "Forty-two colonies" where it is
 // the only count before the result.
 func (p *para) countedIn(from, to int) (size, bool) {
-	found := counted.FindAllStringSubmatchIndex(p.s[from:to], -1)
+	var found [][]int
+	for _, m := range p.matches(from, counted) {
+		if m[1] <= to {
+			found = append(found, m)
+		}
+	}
 	if len(found) != 1 {
 		return size{}, false
 	}
-	a, b := from+found[0][2], from+found[0][3]
-	if !p.wholeCount(from, a, from+found[0][1]) {
+	a, b := found[0][2], found[0][3]
+	if !p.wholeCount(from, a, found[0][1]) {
 		return size{}, false
 	}
 	n, ok := wholeNumber(p.s[a:b])
 	if !ok || n < 2 {
 		return size{}, false
 	}
-	return size{n: n, at: grammar.Span{Start: a, End: from + found[0][1]}, text: p.s[a : from+found[0][1]]}, true
+	return size{n: n, at: grammar.Span{Start: a, End: found[0][1]}, text: p.s[a:found[0][1]]}, true
 }
 
 var (
@@ -171,11 +172,10 @@ func (p *para) wholeSample(r *result.Result, c *cand) {
 		return
 	}
 	from, to := p.sentence(c.est.Start)
-	s := p.s[from:to]
-	if groupWord.MatchString(s) || contrast.MatchString(s) || !sampleOf.MatchString(p.s[from:c.est.Start]) || p.block.Zone == paper.Discussion || len(p.mentions(from, to)) > 0 {
+	if p.says(c.est.Start, groupWord) || p.says(c.est.Start, contrast) || !sampleOf.MatchString(p.s[from:c.est.Start]) || p.block.Zone == paper.Discussion || len(p.mentions(from, to)) > 0 {
 		return
 	}
-	if counted.MatchString(s) || !ageLike.MatchString(p.s[from:c.est.Start]) {
+	if p.says(c.est.Start, counted) || !ageLike.MatchString(p.s[from:c.est.Start]) {
 		return
 	}
 	if t, ok := p.f.cast.allSubjects(); ok {

@@ -31,11 +31,8 @@ func (p *para) statistic(c *cand) named {
 	at := c.est.Start
 	from, to := p.sentence(at)
 	best := named{}
-	for k := range p.r.Items {
+	for k, last := p.items(from, it.Start); k < last; k++ {
 		e := &p.r.Items[k]
-		if e.Start >= it.Start || e.Start < from {
-			continue
-		}
 		if e.Statistic == "" || e.Kind != grammar.KindTerm || e.Start < at && at-e.End > 600 {
 			continue
 		}
@@ -160,7 +157,7 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		}
 		return n
 	}
-	compared := betterThan.MatchString(around) || contrast.MatchString(p.beforeFirst(c, from))
+	compared := p.says(at, betterThan) || contrast.MatchString(p.beforeFirst(c, from))
 	switch n.statistic {
 	case "":
 		switch {
@@ -186,7 +183,7 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 			n.statistic = result.MeanDifference
 		case p.changeNoun(n.at, at):
 			n.statistic = result.MeanChange
-		case percent && changeWords.MatchString(around):
+		case percent && p.says(at, changeWords):
 			n.statistic = result.MeanChange
 		}
 	case result.Rate:
@@ -208,9 +205,9 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 // sharesBeside reports that percentages stand in the sentence besides the
 // candidate's own: the difference is one of shares.
 func sharesBeside(p *para, c *cand, from, to int) bool {
-	for k := range p.r.Items {
+	for k, last := p.items(from, to); k < last; k++ {
 		e := &p.r.Items[k]
-		if e.Kind == grammar.KindNumber && e.Value.Percent && e.Start >= from && e.End <= to && k != c.estItem {
+		if e.Kind == grammar.KindNumber && e.Value.Percent && e.End <= to && k != c.estItem {
 			return true
 		}
 	}
@@ -263,7 +260,8 @@ func (p *para) changeNoun(term grammar.Span, est int) bool {
 // introduced reports that a term stands right before the candidate's estimate,
 // or right before an earlier result of the sentence.
 func (p *para) introduced(at grammar.Span, c *cand) bool {
-	for k := range p.cands {
+	from, to := p.sentence(c.est.Start)
+	for k, last := p.found(from, to); k < last; k++ {
 		if d := p.cands[k].est.Start - at.End; d >= 0 && d < 4 && p.cands[k].est.Start <= c.est.Start {
 			return true
 		}
@@ -274,7 +272,8 @@ func (p *para) introduced(at grammar.Span, c *cand) bool {
 // beforeFirst is the sentence up to its first result.
 func (p *para) beforeFirst(c *cand, from int) string {
 	end := c.est.Start
-	for k := range p.cands {
+	_, to := p.sentence(c.est.Start)
+	for k, last := p.found(from, to); k < last; k++ {
 		if s := p.cands[k].est.Start; s >= from && s < end {
 			end = s
 		}
