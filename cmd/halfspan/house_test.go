@@ -17,6 +17,8 @@ import (
 	"testing"
 
 	"os"
+
+	"halfspan/report/review"
 )
 
 const module = "halfspan"
@@ -195,5 +197,12 @@ func TestOneWayOut(t *testing.T) {
 	}
 	if exits != 1 {
 		t.Errorf("main leaves in %d places", exits)
+	}
+}
+
+// TestCautions holds that the help says what stands under the review table.
+func TestCautions(t *testing.T) {
+	if got, want := strings.Join(strings.Fields(cautionsHelp), " "), review.Cautions; got != want {
+		t.Errorf("got %q, want %q", got, want)
 	}
 }

@@ -10,8 +10,11 @@ import (
 	"halfspan/report/review"
 )
 
-// cautionsHelp stands in the help of the commands that give values.
-const cautionsHelp = review.Cautions
+// cautionsHelp stands in the help of the commands that give values: the cautions
+// of the review table, broken into lines.
+const cautionsHelp = `A converted SD is an estimate under stated assumptions: have a second person
+check it against the page, and use it under your review's protocol and your own
+judgement.`
 
 func newList(s *streams) *cobra.Command {
 	var flags ledgerFlags
