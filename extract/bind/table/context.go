@@ -234,7 +234,7 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	switch low := fold(capt); {
 	case scoreCaption.MatchString(low):
 		x.change, x.changeAll = true, true
-	case changeCaption.MatchString(low) && !f.someChange():
+	case changeCaption.MatchString(low) && !f.someChange() && !f.someTime():
 		x.change = true
 	}
 }

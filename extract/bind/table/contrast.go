@@ -6,7 +6,7 @@ import (
 	"halfspan/extract/pattern"
 )
 
-var vsForm = pattern.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] )\s*(.+)$`)
+var vsForm = pattern.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdifferences? (?:in means? )?|\bratio )\s*)?(.+?)\s*(?:\bvs\.?|\bversus|\bminus|\bcompared (?:with|to)|\brelative to| [-–−] |\s?—\s?)\s*(.+)$`)
 
 // parseVs splits "A vs B", "A minus B", "A − B" into its arms.
 func parseVs(s string) []string {

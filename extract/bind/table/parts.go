@@ -179,6 +179,8 @@ func unbalanced(s string) string {
 		} else if o > c {
 			if k := strings.LastIndex(s, pr[0]); k > 0 && len(s)-k < 4 {
 				s = s[:k]
+			} else if k > 0 {
+				return strings.Trim(s, edge) + pr[1]
 			}
 		}
 	}

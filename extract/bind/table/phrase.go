@@ -57,6 +57,7 @@ var variants = []struct {
 	as   string
 }{
 	{pattern.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
+	{pattern.MustCompile(`\b[uU]OR\b`), "OR "},
 	{pattern.MustCompile(`(?i)\bq1\s*(?:[-–—:;,/~]|to|and)\s*q3\b`), "IQR"},
 	{pattern.MustCompile(`(?i)\b(?:p|c)?25(?:th)?(?: ?%| percentile)?\s*(?:[-–—:;,/~]|to|and)\s*(?:p|c)?75(?:th)?(?: ?%| ?percentiles?| ?centiles?)`), "IQR"},
 	{pattern.MustCompile(`(?i)\b(?:lower|first|1st)\s*(?:[-–—:;,/~]|to|and)\s*(?:upper|third|3rd) quartiles?\b`), "IQR"},

@@ -12,6 +12,26 @@ var generalTime = map[string]bool{"time": true, "times": true, "time point": tru
 
 var baselineCaption = pattern.MustCompile(`(?i)\bbaseline\b|\bdemographics?\b|\bcharacteristics of\b|\b(?:patient|participant|subject|clinical|sociodemographic|demographic|general)s?['’]? characteristics\b`)
 
+// someTime reports that a heading or label of the table names a time: values at
+// time points, whatever the caption says of changes.
+func (f *frame) someTime() bool {
+	for c := f.stub; c < f.tab.Cols; c++ {
+		for _, l := range f.heads[c] {
+			if f.partOf(l).kind == partTime && !f.lex.change(l.text) {
+				return true
+			}
+		}
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		for _, l := range f.lines[r].labels {
+			if f.rowPart(l).kind == partTime && strings.Contains(fold(l.text), "baseline") {
+				return true
+			}
+		}
+	}
+	return false
+}
+
 // someChange reports that a heading or label of the table speaks of changes, so
 // that the rest prints values.
 func (f *frame) someChange() bool {
@@ -146,8 +166,11 @@ var (
 // isTimeHeading reports that a folded heading names a time or a period and
 // little else.
 func isTimeHeading(low string) bool {
-	if len(words(low)) == 0 || len(low) > 80 || ageWord.MatchString(low) {
+	if len(words(low)) == 0 || len(low) > 80 || ageWord.MatchString(low) || strings.IndexAny(low, "<>≤≥") == 0 {
 		return false
+	}
+	if strings.Trim(low, " .:()") == "bl" {
+		return true // baseline
 	}
 	if ws := words(low); len(ws) > 2 && len(ws) < 7 && unitOfTime[ws[0]] && (ws[1] == "after" || ws[1] == "before" || ws[1] == "post" || ws[1] == "since" || ws[1] == "from") {
 		return true

@@ -45,11 +45,23 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && !unitBracket.MatchString(l.text) {
 			continue // "Drug 100 mg": a dose
 		}
-		if u := f.lex.unit(l.text); u != "" {
+		if u := f.lex.unit(l.text); u != "" && !(u == "%" && f.countsBeside(l)) {
 			x.unit, x.unitAt = u, l
 			return
 		}
 	}
+}
+
+// countsBeside reports that the percent sign of a label belongs to its counts:
+// "mean (SD) or n (%)".
+func (f *frame) countsBeside(l label) bool {
+	p := f.lex.phrase(l.text)
+	for _, q := range p.pairs {
+		if q.Count && q.Percent {
+			return true
+		}
+	}
+	return p.onlyTerms && len(p.pairs) > 1
 }
 
 // unitIn finds the unit in a label: "Colony mass (kg)", "Flight time, min".
