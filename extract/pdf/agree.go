@@ -140,10 +140,9 @@ func alike(a, b string) bool { return a == b || telling(a) == telling(b) }
 
 // dispute is a number that the readers read differently.
 type dispute struct {
-	box      paper.Box
-	ours     string // "" where this reader sees nothing there
-	engine   string
-	inDigits bool // digits differ, not only a sign
+	box    paper.Box
+	ours   string // "" where this reader sees nothing there
+	engine string
 }
 
 // disputes lists the numbers of a page in which the readings differ, in
