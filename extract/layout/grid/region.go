@@ -111,6 +111,9 @@ func (s *sheet) regionOf(labels []label, k int, taken []box) (Region, bool) {
 	if n := len(caption); n > 0 {
 		bottom = caption[n-1].bot
 	}
+	if its, y, lines, ok := s.captionBeside(&l, labels); ok {
+		sides, caption, bottom = its, lines, y
+	}
 	limit := s.floor(labels, k, sides, bottom)
 	body, open, ok := s.bodyBelow(sides, bottom, limit, l.size)
 	if !ok {
