@@ -4,7 +4,7 @@ STATICCHECK ?= honnef.co/go/tools/cmd/staticcheck@v0.8.2
 FUZZTIME ?= 30s
 DEMO := $(or $(TMPDIR),/tmp)/halfspan-demo
 
-.PHONY: help build demo test short lint bench fuzz cover golden errors truth papers clean
+.PHONY: help build demo test short lint bench fuzz cover golden errors truth papers survey clean
 
 help: ## list the targets
 	@grep -hE '^[a-z]+:.*## ' $(MAKEFILE_LIST) | sed -E 's/:[^#]*## /\t/' | expand -t 10
@@ -29,6 +29,9 @@ lint: ## formatting, vet and a linter
 	@test -z "$$(gofmt -l cmd extract convert report | tee /dev/stderr)" || { echo "gofmt -w the files above" >&2; exit 1; }
 	$(GO) vet ./...
 	@if command -v golangci-lint >/dev/null; then golangci-lint run; else $(GO) run $(STATICCHECK) ./...; fi
+
+survey: ## tables seen and read in a folder of real papers, if it is here
+	$(GO) test ./extract -run TestSurveyTables -survey -v | grep -v '^===' | sed 's/^ *[a-z_]*test.go:[0-9]*: //'
 
 bench: ## benchmarks, with allocations
 	$(GO) test -run '^$$' -bench . -benchmem ./...

@@ -1,9 +1,10 @@
 package plain
 
 import (
-	"regexp"
 	"sort"
 	"strings"
+
+	"halfspan/extract/pattern"
 )
 
 // placeHeads finds the spans of the heading rows: a tiling of the columns in
@@ -251,7 +252,7 @@ func (s *headSearch) score(level, cell, from, width, height int) int {
 
 // groupWord is what a heading over several columns often says: whom they are
 // about, or when.
-var groupWord = regexp.MustCompile(`(?i)\b(?:groups?|arms?|treatments?|weeks?|months?|days?|years?|baseline|follow-?up|visit)\b`)
+var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|treatments?|weeks?|months?|days?|years?|baseline|follow-?up|visit)\b`)
 
 // wideScore says how well a heading suits being over several columns that have
 // headings of their own.
@@ -367,23 +368,23 @@ func sameLabel(a, b string) bool {
 	return a == b || len(a) > 2 && len(b)-len(a) <= 2 && strings.HasPrefix(b, a)
 }
 
-var bare = regexp.MustCompile(`[^\pL\pN]+`)
+var bare = pattern.MustCompile(`[^\pL\pN]+`)
 
-var pWord = regexp.MustCompile(`(?i)^\W*p[a-d]?\b|\bp[- ]?values?|^sig(?:nificance|\.)?$|^statistics?$`)
+var pWord = pattern.MustCompile(`(?i)^\W*p[a-d]?\b|\bp[- ]?values?|^sig(?:nificance|\.)?$|^statistics?$`)
 
 // headWords tie words of a heading to what its column holds.
 var headWords = []struct {
-	word  *regexp.Regexp
+	word  *pattern.Pattern
 	kinds []kind
 }{
 	{pWord, []kind{pvalue}},
-	{regexp.MustCompile(`±|\+/-`), []kind{spread}},
-	{regexp.MustCompile(`(?i)\([^)]*(?:CI|IQR|range|quartile|confidence)[^)]*\)|\w.*\d\d\s*%\s*CI`), []kind{estimate}},
-	{regexp.MustCompile(`(?i)^\W*(?:\d\d\s*%\s*)?(?:CI|confidence interval|IQR|range)\W*$`), []kind{interval}},
-	{regexp.MustCompile(`(?i)^(?:mean|median|n|no\.?|number).*\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|IQR|standard)[^)]*\)|\w\s*\(\s*(?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.)\s*\)`), []kind{bracket, estimate}},
-	{regexp.MustCompile(`(?i)\((?:n|no\.?)\)$`), []kind{whole}},
-	{regexp.MustCompile(`(?i)^\W*(?:total\s+)?(?:n|no\.?|number)\W*$`), []kind{whole}},
-	{regexp.MustCompile(`(?i)^\W*(?:mean|SD|s\.d\.|SEM?|s\.e\.|%|median|B|β|t|F|z|χ2|OR|RR|HR|MD|effect size|cohen.?s d)\W*$`), []kind{decimal, whole, percent, pvalue}},
+	{pattern.MustCompile(`±|\+/-`), []kind{spread}},
+	{pattern.MustCompile(`(?i)\([^)]*(?:CI|IQR|range|quartile|confidence)[^)]*\)|\w.*\d\d\s*%\s*CI`), []kind{estimate}},
+	{pattern.MustCompile(`(?i)^\W*(?:\d\d\s*%\s*)?(?:CI|confidence interval|IQR|range)\W*$`), []kind{interval}},
+	{pattern.MustCompile(`(?i)^(?:mean|median|n|no\.?|number).*\((?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.|%|IQR|standard)[^)]*\)|\w\s*\(\s*(?:±\s*)?(?:SDs?|s\.d\.|SEM?|s\.e\.)\s*\)`), []kind{bracket, estimate}},
+	{pattern.MustCompile(`(?i)\((?:n|no\.?)\)$`), []kind{whole}},
+	{pattern.MustCompile(`(?i)^\W*(?:total\s+)?(?:n|no\.?|number)\W*$`), []kind{whole}},
+	{pattern.MustCompile(`(?i)^\W*(?:mean|SD|s\.d\.|SEM?|s\.e\.|%|median|B|β|t|F|z|χ2|OR|RR|HR|MD|effect size|cohen.?s d)\W*$`), []kind{decimal, whole, percent, pvalue}},
 }
 
 // suits says how well a heading names what a column holds.
@@ -421,4 +422,4 @@ func (c *headCell) suitsAll(from, width int) int {
 }
 
 // trailingMark is a footnote mark behind a heading.
-var trailingMark = regexp.MustCompile(`[\s\x{00A0}]*(?:[*†‡§¶#]+|[\s\x{00A0}][a-e])$`)
+var trailingMark = pattern.MustCompile(`[\s\x{00A0}]*(?:[*†‡§¶#]+|[\s\x{00A0}][a-e])$`)

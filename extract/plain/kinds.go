@@ -1,8 +1,9 @@
 package plain
 
 import (
-	"regexp"
 	"strings"
+
+	"halfspan/extract/pattern"
 )
 
 // kind is what a cell looks like, as far as it tells which column it belongs
@@ -33,20 +34,20 @@ const (
 
 // kindForms tells kinds by form; the first that fits decides.
 var kindForms = []struct {
-	form *regexp.Regexp
+	form *pattern.Pattern
 	kind kind
 }{
-	{regexp.MustCompile(`^[-–—−_.]+$|^(?i:n/?a|nd|nr|ne|ref\.?|reference)$`), wild},
-	{regexp.MustCompile(`^(?:[tTFzZrHQU]|χ2?|X2|df)\s*=\s*[-−–]?[\d.]+` + marks + `$`), decimal}, // a test statistic
-	{regexp.MustCompile(`^(?i:p\s*)?[<>=≤]\s*0?[.·]\d+` + marks + `$|^(?i:ns|n\.s\.)$|^[01]?[.·]\d{2,4}` + marks + `$`), pvalue},
-	{regexp.MustCompile(`^[([]?` + number + `\s*(?:±|\+/?[-−–])\s*` + number), spread},
-	{regexp.MustCompile(`^` + number + marks + `[([]\s*` + number + sep + number + `\s*[)\]]`), estimate},
-	{regexp.MustCompile(`^[([]?\s*` + number + sep + number + `\s*[)\]]?` + marks + `$`), interval},
-	{regexp.MustCompile(`^` + number + marks + `[([]`), bracket},
-	{regexp.MustCompile(`^` + number + `%` + marks + `$|^[0-9.·]+\s*%` + marks + `$`), percent},
-	{regexp.MustCompile(`^[([]?\s*[<>]?\s*[-−–+‐]?\s*\d+\s*[)\]]?` + marks + `$`), whole},
-	{regexp.MustCompile(`^[([]?\s*` + number + `\s*[)\]]?` + marks + `$`), decimal},
-	{regexp.MustCompile(`^` + number + `\s*\pL\S*(?:\s\S+){0,3}$`), quantity},
+	{pattern.MustCompile(`^[-–—−_.]+$|^(?i:n/?a|nd|nr|ne|ref\.?|reference)$`), wild},
+	{pattern.MustCompile(`^(?:[tTFzZrHQU]|χ2?|X2|df)\s*=\s*[-−–]?[\d.]+` + marks + `$`), decimal}, // a test statistic
+	{pattern.MustCompile(`^(?i:p\s*)?[<>=≤]\s*0?[.·]\d+` + marks + `$|^(?i:ns|n\.s\.)$|^[01]?[.·]\d{2,4}` + marks + `$`), pvalue},
+	{pattern.MustCompile(`^[([]?` + number + `\s*(?:±|\+/?[-−–])\s*` + number), spread},
+	{pattern.MustCompile(`^` + number + marks + `[([]\s*` + number + sep + number + `\s*[)\]]`), estimate},
+	{pattern.MustCompile(`^[([]?\s*` + number + sep + number + `\s*[)\]]?` + marks + `$`), interval},
+	{pattern.MustCompile(`^` + number + marks + `[([]`), bracket},
+	{pattern.MustCompile(`^` + number + `%` + marks + `$|^[0-9.·]+\s*%` + marks + `$`), percent},
+	{pattern.MustCompile(`^[([]?\s*[<>]?\s*[-−–+‐]?\s*\d+\s*[)\]]?` + marks + `$`), whole},
+	{pattern.MustCompile(`^[([]?\s*` + number + `\s*[)\]]?` + marks + `$`), decimal},
+	{pattern.MustCompile(`^` + number + `\s*\pL\S*(?:\s\S+){0,3}$`), quantity},
 }
 
 // specialSpace makes the spaces of print plain ones.

@@ -1,12 +1,12 @@
 package plain
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 )
 
@@ -105,7 +105,7 @@ func (r *reader) furniture() {
 	}
 }
 
-var digits = regexp.MustCompile(`[0-9]+`)
+var digits = pattern.MustCompile(`[0-9]+`)
 
 func withoutDigits(s string) string {
 	return strings.Join(strings.Fields(digits.ReplaceAllString(s, "#")), " ")
@@ -115,12 +115,12 @@ func withoutDigits(s string) string {
 // that a hyphen at a line's end which belongs to the word is kept.
 func (r *reader) findHyphens() {
 	r.hyphened = map[string]bool{}
-	for _, m := range hyphenWord.FindAll(r.src.B, -1) {
-		r.hyphened[strings.ToLower(string(m))] = true
+	for _, m := range hyphenWord.FindAllIndex(r.src.B, -1) {
+		r.hyphened[strings.ToLower(string(r.src.B[m[0]:m[1]]))] = true
 	}
 }
 
-var hyphenWord = regexp.MustCompile(`\pL+[-‐]\pL+`)
+var hyphenWord = pattern.MustCompile(`\pL+[-‐]\pL+`)
 
 // run reads lines [i, j) as one stretch of text.
 func (r *reader) run(i, j int) paper.TextRun {

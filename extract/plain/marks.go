@@ -1,12 +1,14 @@
 package plain
 
 import (
-	"regexp"
+	"bytes"
+	"sort"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // In text a raised mark stands on the line like any letter: "0.65a", "meansa",
@@ -16,6 +18,9 @@ import (
 // raiseMarks marks the letters and symbols in caption and cells that a note of
 // the table explains as raised.
 func (r *reader) raiseMarks(t *paper.Table) {
+	for i := range t.Cells {
+		r.lower(&t.Cells[i].Text)
+	}
 	has := map[rune]bool{}
 	for _, n := range t.Notes {
 		for _, c := range n.Mark {
@@ -33,9 +38,28 @@ func (r *reader) raiseMarks(t *paper.Table) {
 	}
 }
 
+// runTogether is a name that ends in a lowered digit, with a small word printed
+// against it: the mark-up had no space after the digit ("NO2at night").
+var runTogether = pattern.MustCompile(`\b\pL+(\d+)(?:at|in|of|and|to|for|with|on|by|from)\b`)
+
+// lower marks the digit in such names as lowered, if the file also prints the
+// name by itself.
+func (r *reader) lower(run *paper.TextRun) {
+	for _, m := range runTogether.FindAllStringSubmatchIndex(run.S, -1) {
+		if bytes.Contains(r.src.B, []byte(run.S[m[0]:m[3]]+" ")) {
+			run.Styles = append(run.Styles, paper.Style{Start: m[2], End: m[3], Kind: paper.Lowered})
+		}
+	}
+}
+
+func sortStyles(run *paper.TextRun) {
+	sort.SliceStable(run.Styles, func(i, j int) bool { return run.Styles[i].Start < run.Styles[j].Start })
+}
+
 // raise marks what is raised in one text; times is how often the text itself
 // counts among the running text of the file.
 func (r *reader) raise(run *paper.TextRun, has map[rune]bool, times int) {
+	defer sortStyles(run)
 	s := run.S
 	for i := 0; i < len(s); {
 		c, w := utf8.DecodeRuneInString(s[i:])
@@ -56,9 +80,9 @@ func (r *reader) raise(run *paper.TextRun, has map[rune]bool, times int) {
 
 var (
 	// markList is one letter, or several with commas.
-	markList = regexp.MustCompile(`^[a-z](?:,\s?[a-z]\b)*`)
+	markList = pattern.MustCompile(`^[a-z](?:,\s?[a-z]\b)*`)
 	// namedByLetter is a word that a letter behind it names a case of.
-	namedByLetter = regexp.MustCompile(`(?i)(?:group|arm|type|model|class|grade|stage|hepatitis|vitamin|phase|category|part|panel|table|figure|level|study|or|and|versus|vs\.?)$`)
+	namedByLetter = pattern.MustCompile(`(?i)(?:group|arm|type|model|class|grade|stage|hepatitis|vitamin|phase|category|part|panel|table|figure|level|study|or|and|versus|vs\.?)$`)
 )
 
 // letterMark gives the end of the mark of letters that begins at i of s, i if

@@ -1,13 +1,13 @@
 package plain
 
 import (
-	"regexp"
 	"strconv"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 )
 
@@ -18,19 +18,19 @@ import (
 
 var (
 	// noteOpens begins nothing but a note, however long it is.
-	noteOpens = regexp.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
+	noteOpens = pattern.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
 	// noteForms are forms inside a paragraph that only a note has.
-	noteForms = regexp.MustCompile(`^[\w%()*†‡ .-]{1,14}\s?=\s|^[A-Z][\w-]*[A-Z0-9]\s(?:denotes?|indicates?|stands for|\pL[^.;,]+,\s[A-Z]\w*\s\pL)|\bin (?:parenthes[ei]s|brackets)\b|\b(?:in|of) (?:the|this) table\b|\b(?:are|is|were|was) (?:expressed|presented|given|shown|reported|displayed) as (?:the )?(?:mean|median|n\b|number|percent)`)
-	noteStat  = regexp.MustCompile(`^(?i:(?:mean|median|n)s? ?(?:±|\(|\+))`)
-	aDecimal  = regexp.MustCompile(`\d[.·]\d`)
-	noteWords = regexp.MustCompile(`^(?i:notes?\b|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
+	noteForms = pattern.MustCompile(`^[\w%()*†‡ .-]{1,14}\s?=\s|^[A-Z][\w-]*[A-Z0-9]\s(?:denotes?|indicates?|stands for|\pL[^.;,]+,\s[A-Z]\w*\s\pL)|\bin (?:parenthes[ei]s|brackets)\b|\b(?:in|of) (?:the|this) table\b|\b(?:are|is|were|was) (?:expressed|presented|given|shown|reported|displayed) as (?:the )?(?:mean|median|n\b|number|percent)`)
+	noteStat  = pattern.MustCompile(`^(?i:(?:mean|median|n)s? ?(?:±|\(|\+))`)
+	aDecimal  = pattern.MustCompile(`\d[.·]\d`)
+	noteWords = pattern.MustCompile(`^(?i:notes?\b|data\b|values?\b|numbers? (?:in|are)\b|numbers? \(|figures in|means?\b|medians?\b|results (?:are|were)|n\s*=|p\s*[<=>≤]|p[- ]values?\b|percentages\b|based on|adjusted\b|comparisons? (?:of|between)|statistically significant|source:|key:|legend|negative|positive|scores?\b|ns[,: ]|mann|wilcoxon|chi|fisher|kruskal|student|paired|independent|anova|ancova|cochran|[−+-]\s)`)
 	// expands is a list of what letters stand for.
-	expands = regexp.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
+	expands = pattern.MustCompile(`^[A-Z0-9\pL][\w\pL/&.%()αβγμ²₂ -]{0,24}?\s?(?:[,:=]|–|—)\s?\pL[^.]{2,}`)
 	// abbreviated is the same without a sign between letters and words.
-	abbreviated = regexp.MustCompile(`^[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL[^.;]+;\s[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL`)
+	abbreviated = pattern.MustCompile(`^[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL[^.;]+;\s[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL`)
 	// symbolMark is a mark that is no letter or digit.
-	symbolMark = regexp.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆△▲◊■●○•µ]{1,3})`)
-	plainMark  = regexp.MustCompile(`^(?:[a-z]|\d{1,2})[).]?`)
+	symbolMark = pattern.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆△▲◊■●○•µ]{1,3})`)
+	plainMark  = pattern.MustCompile(`^(?:[a-z]|\d{1,2})[).]?`)
 )
 
 const (
@@ -68,19 +68,19 @@ func (r *reader) notes(t *paper.Table, from int) int {
 // firstNumber and secondNumber begin notes whose marks are numbers; only both
 // below one another tell them from other text.
 var (
-	firstNumber  = regexp.MustCompile(`^1[).]?\s?\pL`)
-	secondNumber = regexp.MustCompile(`^2[).]?\s?\pL`)
+	firstNumber  = pattern.MustCompile(`^1[).]?\s?\pL`)
+	secondNumber = pattern.MustCompile(`^2[).]?\s?\pL`)
 )
 
 // below reports whether the text after line k begins like the form.
-func (r *reader) below(k int, form *regexp.Regexp) bool {
+func (r *reader) below(k int, form *pattern.Pattern) bool {
 	k = r.skipBlank(k)
 	return k < len(r.lines) && form.MatchString(strings.TrimSpace(r.text(r.lines[k])))
 }
 
 var (
-	endMarks  = regexp.MustCompile(`(?:[\d)%]|[\s\x{00A0}])[\s\x{00A0}]?((?:[*†‡§¶#]+,?\s?)*(?:[a-z](?:,\s?)?){1,4})$`)
-	oneLetter = regexp.MustCompile(`[a-z]`)
+	endMarks  = pattern.MustCompile(`(?:[\d)%]|[\s\x{00A0}])[\s\x{00A0}]?((?:[*†‡§¶#]+,?\s?)*(?:[a-z](?:,\s?)?){1,4})$`)
+	oneLetter = pattern.MustCompile(`[a-z]`)
 )
 
 // cellMarks collects the letters that end cells behind a digit, a bracket or a
@@ -135,7 +135,7 @@ func (r *reader) isNote(s string, next following, marks map[string]bool) bool {
 
 // runningText has what a note has not: it points to tables and figures, or
 // reports results.
-var runningText = regexp.MustCompile(`\((?:see )?(?:Tables?|Figures?|Figs?\.?)[\s\x{00A0}]*\d|\bTable \d|\d[.·]\d.*\d[.·]\d.*\d[.·]\d`)
+var runningText = pattern.MustCompile(`\((?:see )?(?:Tables?|Figures?|Figs?\.?)[\s\x{00A0}]*\d|\bTable \d|\d[.·]\d.*\d[.·]\d.*\d[.·]\d`)
 
 // betweenNotes reports whether s, no note by its look, stands above one with
 // little between: then it is one too, if it is short and no heading.
@@ -253,7 +253,7 @@ func (r *reader) markAt(s string, expected following, marks map[string]bool) int
 }
 
 // sampleSize begins a note that gives an n.
-var sampleSize = regexp.MustCompile(`^[nN][\s\x{00A0}\x{2009}]*=`)
+var sampleSize = pattern.MustCompile(`^[nN][\s\x{00A0}\x{2009}]*=`)
 
 // glued reports whether a word is a mark with another word before or behind it:
 // the file uses the other word, and the whole not more often than times in its
@@ -272,13 +272,13 @@ func (r *reader) countWords() {
 		if l.blank || r.tabbed(i) {
 			continue
 		}
-		for _, w := range anyWord.FindAll(r.src.B[l.start:l.end], -1) {
-			r.prose[strings.ToLower(string(w))]++
+		for _, w := range anyWord.FindAllString(r.text(l), -1) {
+			r.prose[strings.ToLower(w)]++
 		}
 	}
 }
 
-var anyWord = regexp.MustCompile(`\pL+`)
+var anyWord = pattern.MustCompile(`\pL+`)
 
 // splitNotes parts a paragraph into notes at the marks it holds: at its start
 // and after a full stop, comma or semicolon.

@@ -1,12 +1,12 @@
 package plain
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // sections follows the headings of a text: which zone it is in, and whether an
@@ -28,7 +28,7 @@ const (
 	done
 )
 
-var numberedHeading = regexp.MustCompile(`^(?:\d{1,2}(?:\.\d{1,2}){0,3}\.?|[IVX]{1,4}\.)[\s\x{00A0}]+\p{Lu}`)
+var numberedHeading = pattern.MustCompile(`^(?:\d{1,2}(?:\.\d{1,2}){0,3}\.?|[IVX]{1,4}\.)[\s\x{00A0}]+\p{Lu}`)
 
 // looksHeading reports whether a line can be a heading by its look: short, not
 // a sentence, beginning with a capital.
@@ -48,7 +48,7 @@ func looksHeading(s string) bool {
 }
 
 // resultLike is what a line of values holds and a heading does not.
-var resultLike = regexp.MustCompile(`±|\d\s*\(|\d[–-]\d.*\d[–-]\d|=`)
+var resultLike = pattern.MustCompile(`±|\d\s*\(|\d[–-]\d.*\d[–-]\d|=`)
 
 // heading takes s as a heading if it is one, and moves to its zone. Lines from
 // next on follow it.

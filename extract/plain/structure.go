@@ -1,19 +1,19 @@
 package plain
 
 import (
-	"regexp"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 var (
-	captionStart = regexp.MustCompile(`^\s*((?:Table|TABLE|Tab\.|Supplementary Table|Appendix Table|eTable)[\s\x{00A0}]*(?:S|A|E)?(?:\d{1,3}|[IVX]{1,5}|[A-Z])(?:\.\d+|[a-z])?)(?:[.:|\s\x{00A0}\x{2003}]|$)`)
-	figureStart  = regexp.MustCompile(`^\s*(?:Figure|FIGURE|Fig\.|FIG\.|Fig|Scheme|Box)[\s\x{00A0}]*(?:S|A)?\d{1,3}[a-z]?(?:[.:|\s\x{00A0}]|$)`)
+	captionStart = pattern.MustCompile(`^\s*((?:Table|TABLE|Tab\.|Supplementary Table|Appendix Table|eTable)[\s\x{00A0}]*(?:S|A|E)?(?:\d{1,3}|[IVX]{1,5}|[A-Z])(?:\.\d+|[a-z])?)(?:[.:|\s\x{00A0}\x{2003}]|$)`)
+	figureStart  = pattern.MustCompile(`^\s*(?:Figure|FIGURE|Fig\.|FIG\.|Fig|Scheme|Box)[\s\x{00A0}]*(?:S|A)?\d{1,3}[a-z]?(?:[.:|\s\x{00A0}]|$)`)
 	// refersTo is how a sentence about a table goes on, a caption does not.
-	refersTo = regexp.MustCompile(`^[\s\x{00A0}]*(?:[,;)]|and\b|also\b|shows?\b|presents?\b|summari[sz]es?\b|lists?\b|gives?\b|reports?\b|displays?\b|provides?\b|compares?\b|describes?\b|contains?\b|demonstrates?\b|illustrates?\b|depicts?\b|details?\b|includes?\b|outlines?\b|indicates?\b|reveals?\b|is\b|are\b|were\b|was\b|has\b)`)
+	refersTo = pattern.MustCompile(`^[\s\x{00A0}]*(?:[,;)]|and\b|also\b|shows?\b|presents?\b|summari[sz]es?\b|lists?\b|gives?\b|reports?\b|displays?\b|provides?\b|compares?\b|describes?\b|contains?\b|demonstrates?\b|illustrates?\b|depicts?\b|details?\b|includes?\b|outlines?\b|indicates?\b|reveals?\b|is\b|are\b|were\b|was\b|has\b)`)
 )
 
 // isCaption reports whether a line begins the caption of a table.
@@ -47,7 +47,7 @@ func (r *reader) findFront() {
 }
 
 // citationLine is the line that says where a paper was published.
-var citationLine = regexp.MustCompile(`(?i)\bdoi\b|\b(?:19|20)\d\d\s*[;:]|\bvol(?:ume|\.)`)
+var citationLine = pattern.MustCompile(`(?i)\bdoi\b|\b(?:19|20)\d\d\s*[;:]|\bvol(?:ume|\.)`)
 
 // read goes through the lines and makes the blocks.
 func (r *reader) read() {
@@ -273,7 +273,7 @@ func (r *reader) continues(k, widest int) bool {
 }
 
 // entryStart begins an entry of a numbered list or reference list.
-var entryStart = regexp.MustCompile(`^\s*(?:\[\d{1,3}\]|\d{1,3}\.|\(\d{1,3}\)|[•·▪–])\s+\S`)
+var entryStart = pattern.MustCompile(`^\s*(?:\[\d{1,3}\]|\d{1,3}\.|\(\d{1,3}\)|[•·▪–])\s+\S`)
 
 // paragraph reads lines [from, to) as a heading or as one paragraph.
 func (r *reader) paragraph(from, to int) {
@@ -303,7 +303,7 @@ func (r *reader) kindOfText(s string) paper.BlockKind {
 }
 
 // frontLine is a line of the front matter or of a page's foot.
-var frontLine = regexp.MustCompile(`^(?:Key ?words?\b|Received:? |Accepted:? |Published:? |Correspondence\b|©|Copyright\b|E-?mail:|https?://|doi:|Funding: |This (?:is an open|article is distributed|work is licensed)|\d{1,4}$)`)
+var frontLine = pattern.MustCompile(`^(?:Key ?words?\b|Received:? |Accepted:? |Published:? |Correspondence\b|©|Copyright\b|E-?mail:|https?://|doi:|Funding: |This (?:is an open|article is distributed|work is licensed)|\d{1,4}$)`)
 
 func (r *reader) headingLine(k int) bool {
 	s := strings.TrimSpace(r.text(r.lines[k]))

@@ -1,10 +1,10 @@
 package plain
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/source"
 	"halfspan/extract/tidy"
 )
@@ -151,7 +151,7 @@ func isAbbreviation(row []rowCell) bool {
 		!strings.ContainsAny(row[1].label, "0123456789")
 }
 
-var itemMark = regexp.MustCompile(`^(?:[\[(]?\d{1,3}[\]).]?|[•·*–-]|[a-z][.)])$`)
+var itemMark = pattern.MustCompile(`^(?:[\[(]?\d{1,3}[\]).]?|[•·*–-]|[a-z][.)])$`)
 
 // isList tells a list (numbers or bullets, a tab, running text) and a list of
 // abbreviations from a table.
@@ -172,8 +172,8 @@ func isList(rows [][]rowCell) bool {
 }
 
 var (
-	pipeRule = regexp.MustCompile(`^\s*\|?\s*:?-{2,}:?\s*(?:[|+]\s*:?-{2,}:?\s*)*\|?\s*$`)
-	gridRule = regexp.MustCompile(`^\s*\+(?:[-=]+\+)+\s*$`)
+	pipeRule = pattern.MustCompile(`^\s*\|?\s*:?-{2,}:?\s*(?:[|+]\s*:?-{2,}:?\s*)*\|?\s*$`)
+	gridRule = pattern.MustCompile(`^\s*\+(?:[-=]+\+)+\s*$`)
 )
 
 func (r *reader) piped(i int) bool {
