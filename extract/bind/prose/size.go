@@ -90,7 +90,7 @@ func (p *para) sized(e *grammar.Item) (size, bool) {
 // alone reports that all results of the sentence are about one group: nothing
 // in it contrasts groups.
 func (p *para) alone(b int) bool {
-	return !p.says(b, contrast) && !p.says(b, groupWord) && !p.says(b, inOrder)
+	return !p.says(b, contrast) && !p.says(b, groupWord)
 }
 
 var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
