@@ -9,7 +9,7 @@ func (s *sheet) captionBeside(l *label, labels []label) (sides box, top int, cap
 	near := box{l.box.x1, l.box.top - 2*l.size, s.bounds.x1, l.box.bot + l.size/2}
 	for _, r := range rulesIn(s.rules, near) {
 		left := r.x0 - l.box.x0
-		if r.x0 < l.box.x1+l.size || r.x1-r.x0 < 15*l.size || left*10 > width*4 || s.labelled(r, l, labels) {
+		if r.x0 < l.box.x1+l.size || r.x1-r.x0 < 12*l.size || left*10 > width*4 || s.labelled(r, l, labels) {
 			continue
 		}
 		bottom := 0
