@@ -117,7 +117,8 @@ func (f *ledgerFlags) look(args []string) (*ledger.Book, error) {
 		return nil, err
 	}
 	switch {
-	case checker != "" && len(checkers) > 0 && !slices.Contains(checkers, checker):
+	case f.checker != "" && len(checkers) > 0 && !slices.Contains(checkers, checker):
+		// Who is named in the environment may just not have begun.
 		return nil, usageError("%s has decided nothing here: there are decisions of %s", checker, strings.Join(checkers, ", "))
 	case checker == "" && len(checkers) > 1:
 		return nil, usageError("several people have decided here: name one of %s with --checker", strings.Join(checkers, ", "))

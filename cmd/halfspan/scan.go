@@ -101,7 +101,10 @@ func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) erro
 	}
 	if err := sc.read(ctx, g.papers); err != nil {
 		if errors.Is(err, context.Canceled) {
-			return fmt.Errorf("stopped: what had been read is kept, scan again to go on")
+			if sc.ledger == nil {
+				return errors.New("stopped")
+			}
+			return errors.New("stopped: what had been read is kept, scan again to go on")
 		}
 		return err
 	}
