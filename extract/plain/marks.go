@@ -38,15 +38,16 @@ func (r *reader) raiseMarks(t *paper.Table) {
 	}
 }
 
-// runTogether is a name that ends in a lowered digit, with a small word printed
+// runTogether is a name that ends in lowered digits or times, with a small word printed
 // against it: the mark-up had no space after the digit ("NO2at night").
-var runTogether = pattern.MustCompile(`\b\pL+(\d+)(?:at|in|of|and|to|for|with|on|by|from)\b`)
+var runTogether = pattern.MustCompile(`\b\pL[\pL\d–-]*?(\d[\d–-]*(?:h|min)?)(?:at|in|of|and|to|for|with|on|by|from)\b`)
 
 // lower marks the digit in such names as lowered, if the file also prints the
 // name by itself.
 func (r *reader) lower(run *paper.TextRun) {
 	for _, m := range runTogether.FindAllStringSubmatchIndex(run.S, -1) {
-		if bytes.Contains(r.src.B, []byte(run.S[m[0]:m[3]]+" ")) {
+		name := run.S[m[0]:m[3]]
+		if bytes.Contains(r.src.B, []byte(name+" ")) || bytes.Contains(r.src.B, []byte(name+",")) {
 			run.Styles = append(run.Styles, paper.Style{Start: m[2], End: m[3], Kind: paper.Lowered})
 		}
 	}
