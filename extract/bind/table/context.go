@@ -23,6 +23,49 @@ type context struct {
 	outcomeGuess                                      bool
 }
 
+// comparesFor reports that a heading makes an estimate a comparison. The short
+// names of ratios are names of much else (heart rate, physical role): they count
+// only where an interval is printed.
+func (f *frame) comparesFor(e *estimate, s string) bool {
+	if !f.lex.compares(s) {
+		return false
+	}
+	if e.hasInterval() {
+		return true
+	}
+	for _, q := range f.lex.phrase(s).pairs {
+		if q.Statistic == "mean difference" || q.Statistic == "risk difference" {
+			return true
+		}
+	}
+	return false
+}
+
+// hasInterval reports that an interval is printed with the estimate.
+func (e *estimate) hasInterval() bool {
+	for i := range e.spreads {
+		if e.spreads[i].shape == shapeInterval {
+			return true
+		}
+	}
+	return false
+}
+
+// nameless gives a heading its name back that was taken for the short form of a
+// ratio: "HR (bpm)" over means with SDs.
+func (f *frame) nameless(e *estimate, l label, p part) part {
+	if p.kind != partEmpty && p.kind != partContrast || isContrast(fold(l.text)) || e.hasInterval() || f.comparesFor(e, l.text) {
+		return p
+	}
+	for _, q := range f.lex.phrase(l.text).pairs {
+		if q.Statistic == "ratio" && q.Spread == "" {
+			p.kind, p.name = partOther, clean(nPhrase.ReplaceAllString(l.text, " "))
+			return p
+		}
+	}
+	return p
+}
+
 // aroundTime are names of outcomes that also say when: "Vigour after feeding".
 var aroundTime = pattern.MustCompile(`(?i)\b(?:before|after|prior to|pre-?|post-?)\s?(?:the )?(?:treatment|intervention|therapy|surgery|operation|training|exercise|feeding|study|trial|test|dose)\b`)
 
@@ -44,14 +87,14 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	var arms, others, times []string
 	path := f.path(e.row, e.col)
 	for i, l := range path {
-		p := f.partOf(l)
+		p := f.nameless(e, l, f.partOf(l))
 		if f.lex.change(l.text) {
 			x.change = true
 		}
 		if p.kind == partContrast && parseVs(p.name) == nil && f.armBelow(path[i+1:]) {
 			continue // "Between groups" over the arms themselves
 		}
-		if f.lex.compares(l.text) && !f.armBelow(path[i+1:]) {
+		if f.comparesFor(e, l.text) && !f.armBelow(path[i+1:]) {
 			x.contrast = true
 		}
 		switch p.kind {
@@ -130,8 +173,8 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	ln := &f.lines[e.row]
 	var outcome, subs []string
 	take := func(l label, own bool) {
-		p := f.rowPart(l)
-		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && f.lex.compares(l.text) {
+		p := f.nameless(e, l, f.rowPart(l))
+		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && f.comparesFor(e, l.text) {
 			x.contrast = true
 		}
 		if f.lex.change(l.text) {

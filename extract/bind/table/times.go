@@ -160,7 +160,7 @@ var (
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
 		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))\b` +
 		`)`)
-	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|loss|gain)\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
+	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|(?:weight|mass) (?:loss|gain))\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
 
 // isTimeHeading reports that a folded heading names a time or a period and
