@@ -19,7 +19,7 @@ var (
 	humidity  = pattern.MustCompile(`(?i)\bhumidity\b`)
 	margins   = pattern.MustCompile(`(?i)\bmargin|\bequivalence|\bbioequivalen|\bnon-?inferiority|\bacceptance|\bpre-?specified`)
 	central   = pattern.MustCompile(`(?i)\bmeans?\b|\bmedians?\b|\baverages?\b|\bM\s*=|\baged?\b`)
-	limits    = pattern.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits)\s*$`)
+	limits    = pattern.MustCompile(`(?i)\b(?:normal|reference|target|possible|therapeutic|score|which|limits|dose|dosage|concentration|wide|linear|frequency)\s*$`)
 	cited     = pattern.MustCompile(`(?i)\bet al\b|\bmeta-?analys|\bprevious(?:ly)?\b|\b(?:other|earlier|recent|another|similar) (?:study|studies|trial|trials|report|reports)\b|\bsystematic review|\breported (?:by|in)\b|\bpublished\b|\bliterature\b`)
 	bracketed = pattern.MustCompile(`\[[0-9]+(?:[-–,][ 0-9]+)*\]`)
 )
@@ -61,8 +61,11 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 	if p.block.Zone == paper.Methods && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(c.est.End) && p.timeBehind(it.End) {
 		return true // "every 12 hours ± 15 minutes"
 	}
+	if p.block.Zone == paper.Methods && it.Bracket == 0 && p.bracketEnd(it.End) && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(it.End+1) && !p.says(it.Start, central) {
+		return true // "at 365 (±60) days"
+	}
 	j := p.token(it.End)
-	if j < len(p.r.Tokens) && p.r.Tokens[j].Kind == grammar.TokDegree && (p.block.Zone == paper.Methods || p.says(it.Start, climate) && !p.says(it.Start, ofBody)) {
+	if j < len(p.r.Tokens) && degree(p.r.Tokens[j]) && (p.block.Zone == paper.Methods || p.says(it.Start, climate) && !p.says(it.Start, ofBody)) {
 		return true
 	}
 	if p.says(it.Start, humidity) && p.says(it.Start, climate) {
@@ -74,7 +77,14 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 	return p.planned(it.Start)
 }
 
+// degree reports a degree sign, which some papers raise by hand.
+func degree(t grammar.Token) bool {
+	return t.Kind == grammar.TokDegree || t.Kind == grammar.TokRaised && (t.Value == "∘" || t.Value == "°" || t.Value == "o" || t.Value == "◦")
+}
+
 var windowWords = map[string]bool{"after": true, "before": true, "prior": true, "post": true, "following": true, "postoperatively": true, "from": true}
+
+func (p *para) bracketEnd(b int) bool { return b < len(p.s) && (p.s[b] == ')' || p.s[b] == ']') }
 
 func (p *para) timeBehind(b int) bool {
 	i := p.token(b)

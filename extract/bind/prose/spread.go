@@ -118,6 +118,11 @@ func (p *para) rangeMisfit(c *cand) bool {
 	if !ok || c.est.Rel != "" || timeLike(p, c.estItem) >= 3 && p.r.Items[c.estItem].Kind == grammar.KindNumber {
 		return true
 	}
+	it := &p.r.Items[c.item]
+	verb := strings.HasPrefix(p.s[it.Start:], "rang") && !strings.HasPrefix(p.s[it.Start:], "range")
+	if near := p.gap(c, c.est); !near && (it.Follows || (verb || strings.HasPrefix(p.s[it.Start:], "ranged")) && !p.says(it.Start, central)) {
+		return true
+	}
 	lo, ok1 := c.lower.Float()
 	hi, ok2 := c.upper.Float()
 	if ok1 && ok2 && lo > hi && hi >= 0 {
