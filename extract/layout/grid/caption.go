@@ -55,7 +55,7 @@ func (s *sheet) labelAt(i, end int) (label, bool) {
 	for k < end && k < i+4 {
 		word += s.toks[k].text
 		k++
-		if k < end && s.toks[k].glued && s.toks[k].shift == 0 {
+		if k < end && s.toks[k].shift == 0 && (s.toks[k].glued || word == "T" && strings.HasPrefix(s.toks[k].text, "ABLE")) {
 			continue
 		}
 		break

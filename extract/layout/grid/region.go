@@ -69,6 +69,7 @@ func (s *sheet) find(open *Region) []Region {
 			out = append(out, r)
 		}
 	}
+	out = append(out, s.unlabelled(out)...)
 	for i := range out {
 		out[i].collect()
 	}
