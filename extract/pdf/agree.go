@@ -150,7 +150,7 @@ type dispute struct {
 // out as equal multisets and are none.
 func (m *matching) disputes() []dispute {
 	var out []dispute
-	doneA, doneB := make([]bool, len(m.a)), make([]bool, len(m.b))
+	doneA, doneB := repeats(m.a, m.toB), repeats(m.b, m.toA)
 	for i := range m.a {
 		j := m.toB[i]
 		if doneA[i] || j >= 0 && alike(m.a[i].Text, m.b[j].Text) || j < 0 && telling(m.a[i].Text) == "" {
@@ -174,6 +174,38 @@ func (m *matching) disputes() []dispute {
 	}
 	return unmoved(out)
 }
+
+// repeats marks the glyphs without a counterpart that print over another one of
+// the same text: one reader drops what is printed twice, the other may not.
+func repeats(all []paper.Glyph, to []int) []bool {
+	out := make([]bool, len(all))
+	var at map[place][]int
+	for i := range all {
+		if to[i] >= 0 || telling(all[i].Text) == "" {
+			continue
+		}
+		if at == nil {
+			at = make(map[place][]int, len(all))
+			for k := range all {
+				if to[k] >= 0 {
+					at[placeOf(all[k].Origin)] = append(at[placeOf(all[k].Origin)], k)
+				}
+			}
+		}
+		p := placeOf(all[i].Origin)
+		for dx := int32(-1); dx <= 1; dx++ {
+			for dy := int32(-1); dy <= 1; dy++ {
+				for _, k := range at[place{p.x + dx, p.y + dy}] {
+					out[i] = out[i] || all[k].Text == all[i].Text && within(all[i], all[k], overprint)
+				}
+			}
+		}
+	}
+	return out
+}
+
+// overprint is how far apart two prints of the same glyph are at most.
+const overprint = 60
 
 // unmoved drops the disputes that cancel out: the same numbers in both
 // readings, in another place.

@@ -129,6 +129,8 @@ func (r *reading) page(n int) {
 				r.keep(ours.GlyphPage, ours.Marks)
 				return
 			}
+		} else {
+			ours = nil // what was read up to the error is no reading
 		}
 	}
 	theirs, cut, err := r.doc.Page(n, ours == nil)

@@ -86,8 +86,7 @@ func TestWhoReads(t *testing.T) {
 	}
 }
 
-// TestReadersDiffer shows a font whose map to Unicode only one reader follows:
-// the codes of a simple font longer than a byte.
+// TestReadersDiffer sets readings against each other that are not the same.
 func TestReadersDiffer(t *testing.T) {
 	a := []paper.Glyph{glyphAt("1", 0), glyphAt("2", 600), glyphAt(".", 1200), glyphAt("4", 1500)}
 	cases := []struct {
@@ -102,6 +101,7 @@ func TestReadersDiffer(t *testing.T) {
 		{"a digit more", append([]paper.Glyph{glyphAt("9", 5000)}, a...), "/9"},
 		{"another dash", []paper.Glyph{glyphAt("−", -600), a[0], a[1], a[2], a[3]}, "/−12.4"},
 		{"a letter is nothing", append([]paper.Glyph{glyphAt("x", 5000)}, a...), ""},
+		{"a digit printed twice", append([]paper.Glyph{glyphAt("1", 20)}, a...), ""},
 		{"the same numbers elsewhere", []paper.Glyph{glyphAt("1", 9000), glyphAt("2", 9600), glyphAt(".", 10200), glyphAt("4", 10500)}, ""},
 	}
 	for _, c := range cases {
@@ -119,6 +119,20 @@ func TestReadersDiffer(t *testing.T) {
 
 func glyphAt(text string, x int32) paper.Glyph {
 	return paper.Glyph{Text: text, Origin: paper.Point{X: x}, Box: paper.Box{X0: x, Y0: -250, X1: x + 580, Y1: 750}, Size: 1000}
+}
+
+// TestPageOfOneReader has a page that only the engine can read: its content is
+// compressed in a way that our reader's library does not know.
+func TestPageOfOneReader(t *testing.T) {
+	doc := pdftest.Doc{Pages: []pdftest.Page{{Content: "/X1 Do BT /F1 10 Tf 72 700 Td (12.4) Tj ET"}}, XObjects: map[string]string{"X1": "5 0 R"},
+		Objects: []string{pdftest.Stream("/Type /XObject /Subtype /Form /BBox [0 0 600 800] /Filter /LZWDecode", "\x80\x0b\x60\x50\x22\x0c\x0c\x85\x01")}}
+	got, err := Read(doc.Bytes(), Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if readers(got) != "pdfium" || kinds(got) != "one-reader" || textOf(&got.Pages[0]) != "12.4" {
+		t.Errorf("got readers %q, problems %v, text %q", readers(got), got.Problems, textOf(&got.Pages[0]))
+	}
 }
 
 // scan is a page that is one picture.
