@@ -158,7 +158,8 @@ func TestSizes(t *testing.T) {
 	}
 }
 
-// TestOneWayOut holds that only main ends the process.
+// TestOneWayOut holds that only main ends the process, and that nothing slow is
+// done at every start.
 func TestOneWayOut(t *testing.T) {
 	root := filepath.Join("..", "..")
 	exits := 0
@@ -178,6 +179,9 @@ func TestOneWayOut(t *testing.T) {
 		lines := bufio.NewScanner(f)
 		for n := 1; lines.Scan(); n++ {
 			line := lines.Text()
+			if strings.Contains(line, "= regexp.MustCompile(") && strings.Contains(slash, "/extract/") && !strings.HasSuffix(slash, "paper/zone.go") {
+				t.Errorf("%s:%d: compiled at every start of the program: use extract/pattern", slash, n)
+			}
 			if strings.Contains(line, "log.Fatal") {
 				t.Errorf("%s:%d: %s", slash, n, strings.TrimSpace(line))
 			}

@@ -4,9 +4,9 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
-	"regexp"
 	"slices"
 	"strings"
+	"unicode"
 )
 
 // FileName is the name of the ledger beside the papers.
@@ -14,13 +14,24 @@ const FileName = "halfspan.ledger"
 
 const ending = ".ledger"
 
-var initials = regexp.MustCompile(`^[\p{L}\p{N}]{1,8}$`)
+const mostInitials = 8
+
+func areInitials(s string) bool {
+	n := 0
+	for _, r := range s {
+		if !unicode.IsLetter(r) && !unicode.IsNumber(r) {
+			return false
+		}
+		n++
+	}
+	return n > 0 && n <= mostInitials
+}
 
 // Initials checks and tidies a checker's initials: one to eight letters or
 // digits, in capitals, since not every file system tells ab from AB.
 func Initials(s string) (string, error) {
 	s = strings.ToUpper(strings.TrimSpace(s))
-	if !initials.MatchString(s) {
+	if !areInitials(s) {
 		return "", fmt.Errorf("%q cannot be a checker's initials: one to eight letters or digits", s)
 	}
 	return s, nil
@@ -37,7 +48,7 @@ func CheckerPath(path, checker string) string {
 func checkerOf(path string) string {
 	base := strings.TrimSuffix(filepath.Base(path), ending)
 	i := strings.LastIndexByte(base, '.')
-	if i < 0 || !initials.MatchString(base[i+1:]) {
+	if i < 0 || !areInitials(base[i+1:]) {
 		return ""
 	}
 	return base[i+1:]
