@@ -1,13 +1,13 @@
 package layout
 
 import (
-	"regexp"
 	"slices"
 	"strings"
 	"unicode"
 	"unicode/utf8"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // blocks classifies the drafts, joins what belongs together and writes the
@@ -15,6 +15,7 @@ import (
 func (a *arranger) blocks() []paper.Block {
 	a.classify()
 	a.clearFigures()
+	a.findPlainHeadings()
 	a.join()
 	z := &zoner{body: a.body, titleSize: a.titleSize(), parts: map[string]bool{}, ahead: a.headings()}
 	var out []paper.Block
@@ -41,7 +42,7 @@ func (a *arranger) blocks() []paper.Block {
 	return out
 }
 
-var entryStart = regexp.MustCompile(`^(?:\[[0-9]{1,3}\]|[0-9]{1,3}[.)]?)\s+[\p{L}“"]`)
+var entryStart = pattern.MustCompile(`^(?:\[[0-9]{1,3}\]|[0-9]{1,3}[.)]?)\s+[\p{L}“"]`)
 
 // entries cuts a stretch of the reference list where a numbered entry begins.
 func entries(d *draft) []draft {
@@ -91,7 +92,7 @@ var (
 		"data availability", "competing interests", "editor:", "issn", "publisher", "keyword", "key word"}
 	aboutHolds = []string{"@", "correspondence to", "correspondence should", "©", "creative commons", "all rights reserved"}
 	addresses  = []string{"department", "universit", "hospital", "institute", "school of", "faculty", "college", "division of", "center for", "centre for"}
-	resultLike = regexp.MustCompile(`±|[0-9]\s?%|\bCI\b|\bSD\b|\bp\s?[<=]`)
+	resultLike = pattern.MustCompile(`±|[0-9]\s?%|\bCI\b|\bSD\b|\bp\s?[<=]`)
 )
 
 // classify gives each draft its kind.
@@ -148,6 +149,29 @@ func (a *arranger) clearFigures() {
 	}
 }
 
+// findPlainHeadings makes headings of the short lines that stand alone above a
+// paragraph and are printed as the text is: capital first, no stop, not part of
+// a list.
+func (a *arranger) findPlainHeadings() {
+	for i := 0; i+1 < len(a.drafts); i++ {
+		d, next := &a.drafts[i], &a.drafts[i+1]
+		if d.kind != paper.Paragraph || len(d.lines) > 2 || next.kind != paper.Paragraph || len(next.lines) < 3 || next.page != d.page ||
+			abs(d.size-a.body)*100 > 12*a.body || !d.last().short() || i > 0 && !settled(&a.drafts[i-1]) {
+			continue
+		}
+		text := d.text()
+		words := strings.Count(text, " ") + 1
+		if words > 14 || words < 2 && len(text) < 5 || ended(text) || !startsUpper(text) || numbered.MatchString(text) || letterShare(text) < 85 ||
+			strings.ContainsAny(text, ":;,=<>±@") || bullet(text) || text[0] <= '9' || bullet(next.first().text()) || !startsUpper(next.first().text()) {
+			continue
+		}
+		d.kind = paper.Heading
+	}
+}
+
+// settled reports whether what stands before a heading has come to its end.
+func settled(d *draft) bool { return d.kind != paper.Paragraph || ended(d.last().text()) }
+
 // isFigureText reports whether a draft is the lettering of a figure: small
 // print in scattered pieces.
 func (a *arranger) isFigureText(d *draft, text string) bool {
@@ -195,18 +219,18 @@ func (a *arranger) isFootNote(d *draft, text string) bool {
 // inside one.
 func (a *arranger) join() {
 	gone := make([]bool, len(a.drafts))
-	for i := range a.drafts {
-		d := &a.drafts[i]
-		if d.kind != paper.Paragraph || gone[i] {
-			continue
-		}
-		for {
-			k := a.continuation(i, gone)
-			if k < 0 {
-				break
+	// What follows directly first, so that nobody takes it from further up.
+	for _, within := range []int{1, maxBetween} {
+		for i := range a.drafts {
+			d := &a.drafts[i]
+			for d.kind == paper.Paragraph && !gone[i] {
+				k := a.continuation(i, within, gone)
+				if k < 0 {
+					break
+				}
+				d.lines = append(d.lines[:len(d.lines):len(d.lines)], a.drafts[k].lines...)
+				gone[k] = true
 			}
-			d.lines = append(d.lines[:len(d.lines):len(d.lines)], a.drafts[k].lines...)
-			gone[k] = true
 		}
 	}
 	kept := a.drafts[:0]
@@ -224,16 +248,16 @@ const (
 	maxPages   = 8
 )
 
-// continuation is the draft that goes on with the sentence at the end of draft
-// i, or -1.
-func (a *arranger) continuation(i int, gone []bool) int {
+// continuation is the draft, no more than within blocks further on, that goes
+// on with the sentence at the end of draft i, or -1.
+func (a *arranger) continuation(i, within int, gone []bool) int {
 	d := &a.drafts[i]
 	prev := d.last().text()
 	if ended(prev) {
 		return -1
 	}
 	page := d.last().page
-	for k := i + 1; k < len(a.drafts) && k <= i+maxBetween; k++ {
+	for k := i + 1; k < len(a.drafts) && k <= i+within; k++ {
 		e := &a.drafts[k]
 		if gone[k] {
 			continue
@@ -257,10 +281,18 @@ func (a *arranger) continuation(i int, gone []bool) int {
 		if abs(e.size-d.size)*100 > 4*d.size {
 			continue
 		}
-		if text := e.text(); strings.Count(text, " ") < 3 && !ended(text) { // a piece of a figure
-			continue
-		}
 		next := e.first().text()
+		if k != i+1 {
+			switch {
+			case bullet(d.first().text()):
+				return -1
+			case bullet(next): // a box with a list
+				continue
+			}
+			if text := e.text(); strings.Count(text, " ") < 3 && !ended(text) { // a piece of a figure
+				continue
+			}
+		}
 		if goesOn(prev, next) || !opensBlock(next) && runsOver(d, e) {
 			return k
 		}

@@ -137,7 +137,7 @@ func (a *arranger) breaks(b []line, l *line) bool {
 		return true
 	case a.headingLine(p) != a.headingLine(l) && !(l.bold == p.bold && len(b) > 1):
 		return true
-	case bullet(text), p.short() && knownTitle(prev) && startsUpper(text):
+	case bullet(text), p.short() && knownTitle(prev) && startsUpper(text), numberedDeep.MatchString(text) && a.headingLine(p):
 		return true
 	}
 	indent, before := l.x0-l.edge, p.x0-p.edge

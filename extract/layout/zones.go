@@ -207,6 +207,9 @@ func partStarts(run *paper.TextRun) []part {
 		}
 		title := runInHeading(run.S[i:])
 		if title == "" {
+			if title = boldLabel(run, i); title != "" {
+				out = append(out, part{i, title})
+			}
 			continue
 		}
 		at := i + strings.Index(run.S[i:], title)
@@ -217,6 +220,19 @@ func partStarts(run *paper.TextRun) []part {
 		}
 	}
 	return out
+}
+
+// boldLabel is a known label that is printed in bold at i and goes over into
+// the text without a stop.
+func boldLabel(run *paper.TextRun, i int) string {
+	for _, s := range run.Styles {
+		if s.Kind == paper.Bold && s.Start == i {
+			if title := strings.TrimSpace(run.S[s.Start:s.End]); runInHeading(title+": x") == title {
+				return title
+			}
+		}
+	}
+	return ""
 }
 
 // styledStart is the heading that a paragraph begins with: a bold or italic
@@ -233,6 +249,9 @@ func styledStart(run *paper.TextRun) string {
 		next := strings.TrimSpace(run.S[s.End:min(len(run.S), s.End+3)])
 		if strings.HasSuffix(title, ".") || strings.HasSuffix(title, ":") || strings.HasPrefix(next, ":") || strings.HasPrefix(next, ".") {
 			return strings.TrimRight(title, ".: ")
+		}
+		if s.Kind == paper.Bold && s.Start == 0 && startsUpper(title) && startsUpper(next) && letterShare(title) >= 85 {
+			return title
 		}
 	}
 	return ""
