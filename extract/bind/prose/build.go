@@ -7,6 +7,7 @@ import (
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -271,9 +272,35 @@ func (p *para) setEvidence(r *result.Result, c *cand, st named) {
 	}
 	r.Evidence.Baseline = strings.Contains(s, "baseline") && !strings.Contains(s, "from baseline")
 	p.setAdjusted(r, s)
+	p.setScale(r, c)
 	if p.block.Zone == paper.Methods {
 		r.Raise("in-methods", "printed in the methods")
 	}
+}
+
+var scaleLimits = []*pattern.Pattern{
+	pattern.MustCompile(`(?i)\b(?:scale|score|VAS|NRS|index)s?,?\s*(?:of|from|ranging from|range|:|\(|\[)?\s*([0-9]+)\s*(?:-|–|to)\s*([0-9]+)\b`),
+	pattern.MustCompile(`(?i)\b([0-9]+)\s*(?:-|–|to)\s*([0-9]+)[- ](?:point |mm |cm )?(?:scale|VAS|NRS|visual analogue|numeric)`),
+}
+
+// setScale takes the limits of the outcome's scale where the sentence prints
+// them, and notes outcomes that are counted.
+func (p *para) setScale(r *result.Result, c *cand) {
+	for _, what := range scaleLimits {
+		for _, m := range p.matches(c.est.Start, what) {
+			low, high := p.s[m[2]:m[3]], p.s[m[4]:m[5]]
+			if e, ok := c.est.Float(); !ok || e < atof(low) || e > atof(high) || m[2] <= c.lower.Start && c.lower.Start < m[5] {
+				continue
+			}
+			r.Evidence.ScaleLow, r.Evidence.ScaleHigh = low, high
+			return
+		}
+	}
+}
+
+func atof(s string) float64 {
+	f, _ := strconv.ParseFloat(s, 64)
+	return f
 }
 
 type wordMeans struct{ word, means string }

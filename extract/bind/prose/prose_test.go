@@ -115,6 +115,9 @@ func dump(r *result.Result) string {
 	if r.N > 0 {
 		fmt.Fprintf(&b, "; n %d %s", r.N, r.NFrom)
 	}
+	if r.Evidence.ScaleHigh != "" {
+		fmt.Fprintf(&b, "; scale %s to %s", r.Evidence.ScaleLow, r.Evidence.ScaleHigh)
+	}
 	if r.N2 > 0 {
 		fmt.Fprintf(&b, "; n2 %d", r.N2)
 	}
