@@ -175,7 +175,7 @@ func isTimeHeading(low string) bool {
 	if ws := words(low); len(ws) > 2 && len(ws) < 7 && unitOfTime[ws[0]] && (ws[1] == "after" || ws[1] == "before" || ws[1] == "post" || ws[1] == "since" || ws[1] == "from") {
 		return true
 	}
-	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" {
+	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" && bareChange.MatchString(low) {
 		return true
 	}
 	rest := stripTerms(low)
@@ -204,6 +204,10 @@ func isTimeHeading(low string) bool {
 var unitOfTime = map[string]bool{"minutes": true, "minute": true, "min": true, "hours": true, "hour": true, "h": true, "days": true, "day": true, "weeks": true, "week": true, "months": true, "month": true, "years": true, "year": true, "time": true}
 
 var ageWord = pattern.MustCompile(`\bage[ds]?\b`)
+
+// bareChange is a heading that says change and nothing else: a column beside
+// those of the times.
+var bareChange = pattern.MustCompile(`changes?\b|[δ∆]|\bdelta\b`)
 
 // phaseWord begins headings of the time before, during or after something.
 var phaseWord = map[string]bool{"pre": true, "post": true, "before": true, "after": true, "during": true, "preoperative": true, "postoperative": true, "pretreatment": true, "posttreatment": true, "pretest": true, "posttest": true}
