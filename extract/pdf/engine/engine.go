@@ -7,6 +7,9 @@ import (
 	"io"
 	"os"
 	"path/filepath"
+	"runtime"
+	"runtime/debug"
+	"strings"
 	"sync"
 
 	pdfium "github.com/klippa-app/go-pdfium"
@@ -101,11 +104,16 @@ func New(cfg Config) (*Engine, error) {
 	if err != nil {
 		return nil, fmt.Errorf("starting the PDF reader: %w", err)
 	}
+	if cache != nil && !warm {
+		// Without the mark the next start only announces itself once more.
+		_ = os.WriteFile(readyMark(cfg.CacheDir), nil, 0o600)
+	}
 	return &Engine{pool: pool, cache: cache}, nil
 }
 
-// openCache opens the compilation cache; warm says whether it holds anything.
-// A folder that cannot be used costs time, not the run.
+// openCache opens the compilation cache; warm says whether it holds what this
+// build of the program needs. A folder that cannot be used costs time, not the
+// run.
 func openCache(dir string) (cache wazero.CompilationCache, warm bool) {
 	if dir == "" {
 		return nil, false
@@ -114,11 +122,26 @@ func openCache(dir string) (cache wazero.CompilationCache, warm bool) {
 		return nil, false
 	}
 	kept, _ := filepath.Glob(filepath.Join(dir, "wazero-*", "*"))
-	cache, err := wazero.NewCompilationCacheWithDir(dir)
-	if err != nil {
+	_, err := os.Stat(readyMark(dir))
+	cache, cacheErr := wazero.NewCompilationCacheWithDir(dir)
+	if cacheErr != nil {
 		return nil, false
 	}
-	return cache, len(kept) > 0
+	return cache, err == nil && len(kept) > 0
+}
+
+// readyMark is a file that says that the cache was filled by a program built
+// with the same versions of library and sandbox: others compile anew.
+func readyMark(dir string) string {
+	name := "ready-" + runtime.GOOS + "-" + runtime.GOARCH
+	if info, ok := debug.ReadBuildInfo(); ok {
+		for _, d := range info.Deps {
+			if strings.HasSuffix(d.Path, "/wazero") || strings.HasSuffix(d.Path, "/go-pdfium") {
+				name += "-" + d.Version
+			}
+		}
+	}
+	return filepath.Join(dir, name)
 }
 
 // Close frees the compiled library.

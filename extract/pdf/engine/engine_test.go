@@ -3,6 +3,9 @@ package engine
 import (
 	"errors"
 	"image"
+	"os"
+	"path/filepath"
+	"runtime"
 	"strings"
 	"testing"
 
@@ -140,5 +143,34 @@ func TestInstances(t *testing.T) {
 		if err != nil || textOf(g) != "12.4" {
 			t.Fatalf("reading %d: got %q, %v", i, textOf(g), err)
 		}
+	}
+}
+
+// TestCold starts an engine with an empty cache folder, then with the filled
+// one. It compiles the library, which takes some seconds.
+func TestCold(t *testing.T) {
+	if testing.Short() {
+		t.Skip("compiles the library")
+	}
+	dir := filepath.Join(t.TempDir(), "cache")
+	for i, want := range []int{1, 0} {
+		said := 0
+		e, err := New(Config{CacheDir: dir, Cold: func() { said++ }})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if said != want {
+			t.Errorf("start %d: said %d times that it compiles, want %d", i+1, said, want)
+		}
+		if err := e.Close(); err != nil {
+			t.Error(err)
+		}
+	}
+	info, err := os.Stat(dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if runtime.GOOS != "windows" && info.Mode().Perm() != 0o700 {
+		t.Errorf("got a cache folder with mode %v, want 0700", info.Mode().Perm())
 	}
 }

@@ -104,7 +104,7 @@ func (d *Document) Page(number int) (p *Page, err error) {
 	if number < 1 || number > len(d.pages) {
 		return nil, &Error{What: fmt.Sprintf("page %d is not in the page tree", number)}
 	}
-	defer caught(fmt.Sprintf("page %d", number), &err)
+	defer caught("its content or a font", &err)
 	node := d.pages[number-1]
 	p = &Page{}
 	p.GlyphPage.Page = paper.Page{Number: number, Reader: "own", Box: d.visible(node), Rotate: rotation(node.rotate)}
