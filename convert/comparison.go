@@ -194,5 +194,5 @@ func Hedges(a, b Group) (Standardised, error) {
 	if df > 2 {
 		out.SEExact = math.Sqrt(math.Max(j*j*df/(df-2)/q*(1+q*g*g)-g*g, 0))
 	}
-	return out, finite(d, g)
+	return out, finite(d, g, out.SETextbook, out.SEHandbook, out.SEExact)
 }

@@ -158,11 +158,11 @@ func TestSkewOfPositive(t *testing.T) {
 // FuzzNumbers: whatever goes in, out comes an error or finite values in order.
 func FuzzNumbers(f *testing.F) {
 	seeds := 0
-	for _, s := range [][5]float64{{11.2, 12.4, 13.6, 95, 42}, {0, 0, 0, 0, 0}, {-1e308, 1, 1e308, 99.9, 2}, {1e-300, 2e-300, 3e-300, 50, 1e6}, {math.NaN(), 1, math.Inf(1), -5, -3}, {17, 24, 31, 95, 40}} {
+	for _, s := range [][5]float64{{11.2, 12.4, 13.6, 95, 42}, {0, 0, 0, 0, 0}, {-1e308, 1, 1e308, 99.9, 2}, {1e-300, 2e-300, 3e-300, 50, 1e6}, {math.NaN(), 1, math.Inf(1), -5, -3}, {17, 24, 31, 95, 40}, {-2e307, 8, 1e308, 99.9, 9}, {-1e308, 72, 1e308, 99.9, 1}} {
 		f.Add(s[0], s[1], s[2], s[3], int(s[4]))
 		seeds++
 	}
-	if seeds < 6 {
+	if seeds < 8 {
 		f.Fatalf("only %d seeds", seeds)
 	}
 	f.Fuzz(func(t *testing.T, low, mid, high, level float64, n int) {

@@ -122,6 +122,9 @@ func QuantileEstimation(q Quantiles, n int) ([]Fit, error) {
 		return nil, err
 	}
 	fits := []Fit{fitNormal(p, x)}
+	if err := finite(fits[0].Mean, fits[0].SD, fits[0].Residual); err != nil {
+		return nil, fmt.Errorf("the values are too large to fit: %w", err)
+	}
 	if x[0] > 0 {
 		for _, law := range []struct {
 			name   string
