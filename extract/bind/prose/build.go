@@ -34,6 +34,8 @@ func (p *para) result(c *cand) result.Result {
 	r.Statistic, r.Measure = st.statistic, st.measure
 	if st.at.End > 0 {
 		p.source(&r, "statistic", st.at)
+	} else if c.given == result.CI || c.given == result.Range {
+		r.Raise("statistic-assumed", "no word of the sentence says what the estimate is")
 	}
 	if st.model != "" {
 		r.Evidence.Model = append(r.Evidence.Model, st.model)
