@@ -40,7 +40,7 @@ type rawRow struct {
 // tables gives several blocks under one label; parts of equal width without
 // headings of their own are put below one another.
 func (r *reader) tableWrap(n *node) {
-	label := strings.TrimRight(r.text(n.child("label")).S, " .:")
+	label := strings.TrimRight(strings.Join(strings.Fields(r.text(n.child("label")).S), " "), " .:")
 	caption, floats := r.caption(n)
 	var tables []*paper.Table
 	n.each(func(k *node) bool {

@@ -157,7 +157,7 @@ func (r *reader) spaced(b *source.Builder, start, end int) {
 }
 
 func layoutByte(c byte) bool {
-	return c == ' ' || c == '\t' || c == '\v' || c == '\r' || c == '\n'
+	return c == ' ' || c == '\t' || c == '\v' || c == '\r' || c == '\n' || c == 0
 }
 
 // joint parts what b holds from line k, or joins the halves of a word or of a

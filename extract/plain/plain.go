@@ -64,6 +64,9 @@ func Read(path string, content []byte) (*paper.Document, error) {
 	if src.Guessed {
 		r.problem("encoding-guessed", "the file is not UTF-8; it was read as "+src.Encoding+", so look at its special characters", false)
 	}
+	if zeros := bytes.Count(src.B, []byte{0}); zeros > 0 {
+		r.problem("bad-characters", fmt.Sprintf("%d zero bytes stand in the text and were read as spaces", zeros), false)
+	}
 	if src.Bad > 0 {
 		r.problem("bad-characters", fmt.Sprintf("%d characters are not valid in the file's encoding (%s)", src.Bad, src.Encoding), true)
 	}
@@ -98,12 +101,13 @@ func decode(path string, content []byte) (*source.Text, error) {
 	return t, nil
 }
 
-// looksBinary tells data from text: text has no zero bytes, and hardly any
+// looksBinary tells data from text: text has hardly any zero bytes, and hardly any
 // other control characters but white space, form feeds and the few that bad
 // converters leave for signs.
 func looksBinary(content []byte) bool {
 	head := content[:min(len(content), 1<<20)]
-	if bytes.IndexByte(content, 0) >= 0 {
+	const perZero = 1000 // bytes of text for each stray zero byte that a converter may have left
+	if zeros := bytes.Count(content, []byte{0}); zeros*perZero > len(content) {
 		return true
 	}
 	control := 0

@@ -106,6 +106,18 @@ func TestRefusals(t *testing.T) {
 	}
 }
 
+// A few zero bytes in a long text are read as spaces, and said.
+func TestStrayZeros(t *testing.T) {
+	content := []byte(strings.Repeat("Mass was 12.4 kg at night. ", 100) + "\x00and 11.1 kg")
+	d, err := Read("a.txt", content)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(d.Problems) != 1 || d.Problems[0].Kind != "bad-characters" || !strings.HasSuffix(d.Blocks[0].Text.S, "night. and 11.1 kg") {
+		t.Errorf("%v %q", d.Problems, d.Blocks[0].Text.S)
+	}
+}
+
 // Too many lines are cut, and said.
 func TestCutShort(t *testing.T) {
 	d, err := Read("long.txt", bytes.Repeat([]byte("Mass was 12.4 kg.\n\n"), maxLines/2+100))

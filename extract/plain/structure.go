@@ -10,7 +10,7 @@ import (
 )
 
 var (
-	captionStart = pattern.MustCompile(`^\s*((?:Table|TABLE|Tab\.|Supplementary Table|Appendix Table|eTable)[\s\x{00A0}]*(?:S|A|E)?(?:\d{1,3}|[IVX]{1,5}|[A-Z])(?:\.\d+|[a-z])?)(?:[.:|\s\x{00A0}\x{2003}]|$)`)
+	captionStart = pattern.MustCompile(`^\s*((?:Table|TABLE|Tab\.|Supplementary Table|Appendix Table|eTable)[\s\x{00A0}-]*(?:S|A|E)?(?:\d{1,3}|[IVX]{1,5}|[A-Z])(?:\.\d+|[a-z])?)(?:[.:|\s\x{00A0}\x{2003}]|$)`)
 	figureStart  = pattern.MustCompile(`^\s*(?:Figure|FIGURE|Fig\.|FIG\.|Fig|Scheme|Box)[\s\x{00A0}]*(?:S|A)?\d{1,3}[a-z]?(?:[.:|\s\x{00A0}]|$)`)
 	// refersTo is how a sentence about a table goes on, a caption does not.
 	refersTo = pattern.MustCompile(`^[\s\x{00A0}]*(?:[,;)]|and\b|also\b|shows?\b|presents?\b|summari[sz]es?\b|lists?\b|gives?\b|reports?\b|displays?\b|provides?\b|compares?\b|describes?\b|contains?\b|demonstrates?\b|illustrates?\b|depicts?\b|details?\b|includes?\b|outlines?\b|indicates?\b|reveals?\b|is\b|are\b|were\b|was\b|has\b)`)
