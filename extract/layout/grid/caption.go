@@ -49,8 +49,29 @@ func (s *sheet) labels() []label {
 	return out
 }
 
-// labelAt reads a label that begins at token i, before token end.
+// prefixes are words that may stand before "Table" in a caption's label.
+var prefixes = map[string]bool{
+	"Supplementary": true, "Supplemental": true, "SUPPLEMENTARY": true, "SUPPLEMENTAL": true, "Appendix": true, "APPENDIX": true,
+	"Additional": true, "Online": true, "Web": true, "Extended": true, "Data": true,
+}
+
+// labelAt reads a label that begins at token i, before token end: "Table 2",
+// also "Supplementary Table 2".
 func (s *sheet) labelAt(i, end int) (label, bool) {
+	k := i
+	for k < end && k < i+2 && prefixes[s.toks[k].text] {
+		k++
+	}
+	l, ok := s.plainLabel(k, end)
+	if ok && k > i {
+		l.text = s.textOf(i, k) + " " + l.text
+		l.tok, l.n = i, l.n+k-i
+	}
+	return l, ok
+}
+
+// plainLabel reads a label that begins with "Table" or "Figure" at token i.
+func (s *sheet) plainLabel(i, end int) (label, bool) {
 	word, k := "", i
 	for k < end && k < i+4 {
 		word += s.toks[k].text
