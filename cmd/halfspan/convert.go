@@ -107,7 +107,50 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 	}
 	facts := working.FactsOf(doc)
 	facts.Typed = true
-	return working.Work(facts, results), nil
+	assumed := opt.takeAsMeans(results)
+	if n := loneSize(text); n > 0 && len(results) == 1 && results[0].N == 0 {
+		results[0].N, results[0].NFrom = n, result.NBeside
+	}
+	found := working.Work(facts, results)
+	for _, i := range assumed {
+		found[i].Trail.Assumptions = append(found[i].Trail.Assumptions, "the estimate is a mean, which the text does not say: --statistic says what it is")
+	}
+	return found, nil
+}
+
+// takeAsMeans takes an interval of something that the text does not name for that of
+// a mean: whoever types it in knows what it is, and is told. It gives the indices.
+func (opt convertOptions) takeAsMeans(results []result.Result) []int {
+	var taken []int
+	for i := range results {
+		r := &results[i]
+		k := slices.IndexFunc(r.Flags, func(f result.Flag) bool { return f.Name == "statistic-assumed" })
+		if k < 0 {
+			continue
+		}
+		r.Flags = slices.Delete(slices.Clone(r.Flags), k, k+1)
+		if opt.statistic == "" && (r.Statistic == result.Mean || r.Statistic == result.MeanChange) {
+			taken = append(taken, i)
+		}
+	}
+	return taken
+}
+
+// loneSize is the only sample size of a typed text, wherever it stands; 0 where
+// there is none or more than one.
+func loneSize(text string) int {
+	size := 0
+	for _, it := range grammar.Read(grammar.Text{S: text}).Items {
+		if it.Kind != grammar.KindSampleSize {
+			continue
+		}
+		n, ok := it.Value.Float()
+		if !ok || n < 1 || n > 1e9 || size != 0 {
+			return 0
+		}
+		size = int(n)
+	}
+	return size
 }
 
 // bareSpread reads "12.4 (1.3)", "12.4 (11.2 to 13.6)": an estimate with a bracket

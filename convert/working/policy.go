@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strings"
 
+	"halfspan/convert"
 	"halfspan/extract/result"
 )
 
@@ -77,6 +78,12 @@ func withholdQuantiles(it *item) {
 	what := "quartiles"
 	if it.res.GivenAs == result.Range {
 		what = "a range"
+		if it.interval() && it.res.N > 1 {
+			low, high := it.bounds()
+			if span, err := convert.SDBoundsFromRange(high.Value-low.Value, it.res.N); err == nil {
+				it.note("whatever the values are, their SD lies between %s and %s", short(span.Low), short(span.High))
+			}
+		}
 	}
 	it.withhold(fmt.Sprintf("%s beside something that is not a median: no published method applies", what))
 }
