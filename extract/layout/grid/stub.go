@@ -161,8 +161,10 @@ func (rd *reader) indents(cells []gridCell, headRows int) {
 		flush := func(c *gridCell) bool { return rd.left(c)-xs[0] <= rd.em*35/100 }
 		inner := slices.DeleteFunc(slices.Clone(own), flush)
 		switch {
-		case rd.centredCells(inner):
-			if flushed := len(own) - len(inner); flushed == 1 && rd.centredCells(append(inner, own...)) {
+		case rd.centred(own) == len(own) && len(own) >= 3:
+			return
+		case len(inner) >= 3 && rd.centred(inner)*10 >= len(inner)*8:
+			if flushed := len(own) - len(inner); flushed == 1 && rd.centred(own)*10 >= len(own)*8 {
 				return // the longest of them
 			}
 			for _, c := range inner {
@@ -185,8 +187,8 @@ func (rd *reader) indents(cells []gridCell, headRows int) {
 // left is where the text of a cell begins.
 func (rd *reader) left(c *gridCell) int { return rd.s.toks[c.toks[0][0]].x0 }
 
-// centredCells reports whether most of the cells have one middle.
-func (rd *reader) centredCells(cells []*gridCell) bool {
+// centred counts the cells that share the most usual middle.
+func (rd *reader) centred(cells []*gridCell) int {
 	mids := make([]int, len(cells))
 	for i, c := range cells {
 		first := c.toks[0]
@@ -199,5 +201,5 @@ func (rd *reader) centredCells(cells []*gridCell) bool {
 			n++
 		}
 	}
-	return len(cells) >= 3 && n*10 >= len(cells)*8
+	return n
 }
