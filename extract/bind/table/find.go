@@ -42,6 +42,7 @@ type binder struct {
 	blocks []*paper.Block
 	arms   []armSize
 	flow   []flowSentence
+	back   background
 }
 
 func newBinder(doc *paper.Document) *binder {
@@ -66,6 +67,7 @@ func newBinder(doc *paper.Document) *binder {
 	}
 	b.findArmSizes()
 	b.findFlow()
+	b.findBackground()
 	return b
 }
 
@@ -126,6 +128,7 @@ func (b *binder) result(i int, f *frame, e *estimate, sp *spread, x *context, al
 	}
 	b.fill(&r, f, e, sp, x, &rd)
 	f.adjustedOf(&rd, &r, model, e, all)
+	b.setEvidence(&r, f, e, all)
 	b.size(&r, i, f, e, x)
 	f.rowTests(&r, e)
 	b.check(&r, f, e, sp, x)

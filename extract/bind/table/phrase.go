@@ -161,6 +161,9 @@ func isPHeading(low string) bool {
 			return pre != "p " || len(low) < 14
 		}
 	}
+	if strings.Contains(low, "ci)") || strings.Contains(low, "interval") || strings.Contains(low, "difference") || len(low) > 60 {
+		return false // "Difference (95% CI), p value"
+	}
 	return strings.HasSuffix(low, " p value") || strings.HasSuffix(low, " p-value") || strings.HasSuffix(low, "p-values") || len(low) == 2 && low[0] == 'p' && strings.IndexByte("0123456789*#", low[1]) >= 0
 }
 
