@@ -157,13 +157,13 @@ func (rd *reader) indents(cells []gridCell, headRows int) {
 			steps = append(steps, x)
 		}
 	}
-	if len(steps) > 2 {
+	if len(steps) > 1 {
 		flush := func(c *gridCell) bool { return rd.left(c)-xs[0] <= rd.em*35/100 }
 		inner := slices.DeleteFunc(slices.Clone(own), flush)
 		switch {
 		case rd.centred(own) == len(own) && len(own) >= 3:
 			return
-		case len(inner) >= 3 && rd.centred(inner)*10 >= len(inner)*8:
+		case len(steps) > 2 && len(inner) >= 3 && rd.centred(inner)*10 >= len(inner)*8:
 			if flushed := len(own) - len(inner); flushed == 1 && rd.centred(own)*10 >= len(own)*8 {
 				return // the longest of them
 			}
