@@ -222,6 +222,8 @@ func (p *parser) spreadWord(i int) int {
 	words := k
 	for steps := 0; steps < 3; steps++ {
 		switch {
+		case p.kind(k) == TokComma && p.kind(i-1) == TokPlusMinus:
+			// "mean ± SD, 42 colonies" announces; the number is another matter.
 		case p.kind(k) == TokColon, p.kind(k) == TokEquals, p.kind(k) == TokComma, p.kind(k) == TokPlusMinus,
 			p.word(k) == "of", p.word(k) == "was", p.word(k) == "is", p.kind(k) == TokPeriod && p.kind(k+1) == TokNumber:
 			k++

@@ -58,6 +58,9 @@ func (p *para) beside(c *cand) (size, bool) {
 	if same != nil {
 		return p.sized(same)
 	}
+	if s, ok := p.inEach(from, to); ok && count == 0 {
+		return s, true
+	}
 	if c.meaning.Spread == grammar.SpreadCI && p.statistic(c).statistic == result.Ratio {
 		return size{}, false // a ratio's n is seldom the one count of its sentence
 	}
@@ -80,6 +83,20 @@ func (p *para) wholeGroup(c *cand) (size, bool) {
 		return size{}, false
 	}
 	return s, true
+}
+
+var inEach = pattern.MustCompile(`(?i)\b([0-9]{1,5})\s+` + subjects + `\s+(?:per|in\s+(?:each|either|every)|for\s+each)\s+(?:arm|group)\b`)
+
+// inEach reads "21 colonies per arm" where the sentence says it once: it is the n
+// of each group's results there.
+func (p *para) inEach(from, to int) (size, bool) {
+	found := p.matches(from, inEach)
+	if len(found) != 1 || found[0][1] > to {
+		return size{}, false
+	}
+	m := found[0]
+	n, err := strconv.Atoi(p.s[m[2]:m[3]])
+	return size{n: n, at: grammar.Span{Start: m[0], End: m[1]}, text: p.s[m[0]:m[1]]}, err == nil && n > 0
 }
 
 func (p *para) sized(e *grammar.Item) (size, bool) {

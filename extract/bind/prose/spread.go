@@ -6,6 +6,7 @@ import (
 
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
@@ -358,16 +359,40 @@ func (p *para) declaredBracket(c *cand) bool {
 	if c.est.Percent || c.value.Percent || decimals(c.est.Value) == 0 || decimals(c.value.Value) == 0 || p.planned(c.est.Start) {
 		return false
 	}
-	from, _ := p.sentence(c.est.Start)
-	if !meanWord.MatchString(p.s[from:c.est.Start]) {
-		return false
-	}
 	a, ok := p.f.conv.Bracket(convention.Prose)
 	if !ok || a.Conflict || !a.Bracket && a.Sign {
 		return false
 	}
+	from, _ := p.sentence(c.est.Start)
+	if !meanWord.MatchString(p.s[from:c.est.Start]) && !p.plainPair(c, a) {
+		return false
+	}
 	c.given, c.conv = a.Spread, &conventionSource{a.Statement}
 	return true
+}
+
+// plainPair reports "12.4 (1.3) kg" among the results of a paper that says what
+// its brackets hold: both numbers printed alike, and a unit or the next such pair
+// behind them.
+func (p *para) plainPair(c *cand, a convention.Answer) bool {
+	if !a.Bracket || p.block.Zone != paper.Results && p.block.Zone != paper.Abstract || decimals(c.est.Value) != decimals(c.value.Value) {
+		return false
+	}
+	e, ok1 := c.est.Float()
+	v, ok2 := c.value.Float()
+	i := p.token(c.value.End)
+	if !ok1 || !ok2 || v <= 0 || v >= e || i >= len(p.r.Tokens) || p.r.Tokens[i].Kind != grammar.TokClose {
+		return false
+	}
+	for i++; i < len(p.r.Tokens); i++ {
+		t := &p.r.Tokens[i]
+		switch {
+		case t.Kind == grammar.TokComma, t.Value == "and", t.Value == "vs", t.Value == "versus", t.Value == "to":
+			continue
+		}
+		return t.Kind == grammar.TokNumber || unitWords[t.Value] || t.Kind == grammar.TokWord && i+1 < len(p.r.Tokens) && p.r.Tokens[i+1].Value == "/"
+	}
+	return false
 }
 
 var meanWord = pattern.MustCompile(`(?i)\b(?:means?|averaged?)\b`)
