@@ -240,5 +240,3 @@ func lastRune(s string) rune {
 	}
 	return last
 }
-
-func lowerLetter(r rune) bool { return unicode.IsLower(r) }

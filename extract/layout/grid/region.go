@@ -1,10 +1,6 @@
 package grid
 
-import (
-	"slices"
-
-	"halfspan/extract/layout/words"
-)
+import "slices"
 
 // Ref points to a word of a frame.
 type Ref struct{ Line, Word int32 }
@@ -27,15 +23,6 @@ type Region struct {
 	label            label
 	caption, noteLns []line
 	parts            []*Region
-}
-
-// Find gives the table regions of one frame from top to bottom. bodySize is the
-// paper's usual font size in 1/100 point, 0 where it is not known.
-func Find(f *words.Frame, bodySize int32) []Region {
-	if f.Oblique {
-		return nil
-	}
-	return newSheet(f, int(bodySize)).find(nil)
 }
 
 // find gives the regions of the sheet; open is a table of the page before that
