@@ -46,7 +46,11 @@ type binder struct {
 }
 
 func newBinder(doc *paper.Document) *binder {
-	b := &binder{doc: doc, conv: convention.Of(doc), vocab: newVocabulary(doc)}
+	b := &binder{doc: doc}
+	if !hasCells(doc) {
+		return b
+	}
+	b.conv, b.vocab = convention.Of(doc), newVocabulary(doc)
 	for i := range doc.Blocks {
 		bl := &doc.Blocks[i]
 		if bl.Kind != paper.TableBlock || bl.Table == nil {
@@ -69,6 +73,16 @@ func newBinder(doc *paper.Document) *binder {
 	b.findFlow()
 	b.findBackground()
 	return b
+}
+
+// hasCells reports that the document has a table with cells.
+func hasCells(doc *paper.Document) bool {
+	for i := range doc.Blocks {
+		if t := doc.Blocks[i].Table; t != nil && len(t.Cells) > 0 {
+			return true
+		}
+	}
+	return false
 }
 
 // nameArms puts the headings that carry an n into the paper's vocabulary.

@@ -10,6 +10,9 @@ import (
 // clean gives printed text for comparing and for records: every kind of space
 // and line break becomes one plain space, characters of no width vanish.
 func clean(s string) string {
+	if isClean(s) {
+		return s
+	}
 	var b strings.Builder
 	b.Grow(len(s))
 	gap := false
@@ -28,6 +31,26 @@ func clean(s string) string {
 		b.WriteRune(r)
 	}
 	return b.String()
+}
+
+// isClean reports plain text in which single spaces part the words.
+func isClean(s string) bool {
+	space := true
+	for i := 0; i < len(s); i++ {
+		c := s[i]
+		switch {
+		case c == ' ':
+			if space {
+				return false
+			}
+			space = true
+		case c < ' ' || c >= 0x80:
+			return false
+		default:
+			space = false
+		}
+	}
+	return !space || s == ""
 }
 
 // fold is clean in lower case, with typographic variants that carry no meaning
