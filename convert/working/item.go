@@ -15,6 +15,7 @@ type item struct {
 	res   *result.Result
 	w     *Working
 	mates []*item
+	row   []*item // the results of its table row, itself included
 
 	est, low, high, val *convert.Printed
 

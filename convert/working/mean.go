@@ -119,6 +119,9 @@ func (it *item) give(sd float64, span convert.Range, method string) {
 	rec.SDLow, rec.SDHigh = down(span.Low), up(span.High)
 	rec.SDOf = sdOf(it.res)
 	it.method(method)
+	if it.res.Adjusted == "unclear" {
+		it.assume("not adjusted: the table prints the adjusted difference in a column of its own")
+	}
 	it.step("the printed digits allow %s to %s: SD %s", short(span.Low), short(span.High), deserved(sd, span))
 }
 

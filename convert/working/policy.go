@@ -116,7 +116,7 @@ func obstacles() []obstacle {
 		{"log-scale", "analysed on the log scale: its interval belongs to that scale", design("log-scale")},
 		{"model-stated", "an analysis by a model is stated with the result", func(it *item) (string, bool) {
 			for _, t := range it.res.Evidence.Tests {
-				if t == "ancova" || t == "mixed model" {
+				if (t == "ancova" || t == "mixed model") && !rawBesideAdjusted(it) {
 					return t, true
 				}
 			}
@@ -135,7 +135,7 @@ func obstacles() []obstacle {
 			return "", it.has("spread-ambiguous")
 		}},
 		{"adjusted-unclear", "the paper leaves open whether the mean is adjusted or comes from a model", func(it *item) (string, bool) {
-			return "neither said nor ruled out", it.res.Adjusted == "unclear"
+			return "neither said nor ruled out", it.res.Adjusted == "unclear" && !rawBesideAdjusted(it)
 		}},
 	}
 }
@@ -151,6 +151,20 @@ func plainBaseline(it *item) bool {
 		}
 	}
 	return it.res.Evidence.Baseline && it.res.Heading != "" && isStatistic(result.Mean)(it)
+}
+
+// rawBesideAdjusted reports a result whose row prints a plain difference and, in
+// another column, the adjusted one: a table that tells the two apart says by that
+// which values are not adjusted.
+func rawBesideAdjusted(it *item) bool {
+	plain, adjusted := false, false
+	for _, x := range it.row {
+		if x.res.Statistic == result.MeanDifference && x.res.Outcome == it.res.Outcome {
+			plain = plain || x.res.Adjusted != "yes"
+			adjusted = adjusted || x.res.Adjusted == "yes"
+		}
+	}
+	return plain && adjusted && it.res.Adjusted != "yes" && len(it.res.Evidence.Model) == 0
 }
 
 func design(word string) func(*item) (string, bool) {

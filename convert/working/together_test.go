@@ -95,6 +95,18 @@ func TestTogether(t *testing.T) {
 			[]string{"9 of 40 prints like this by: wald"}, nil},
 		{"a geometric mean", []result.Result{{Statistic: result.GeometricMean, GivenAs: result.CI, Estimate: "10.0", Lower: "8.1", Upper: "12.4", Level: 95, N: 30, Table: "Table 2"}},
 			[]string{"lognormal law", "SD of the logarithms 0.5702", `"scale":"log"`}, nil},
+		{"a table that tells adjusted from plain", func() []result.Result {
+			change := mean("3.1", "2.3", "3.9", 24)
+			change.Statistic, change.Adjusted = result.MeanChange, "unclear"
+			adjusted := difference
+			adjusted.Estimate, adjusted.Lower, adjusted.Upper, adjusted.Adjusted = "1.7", "0.1", "3.3", "yes"
+			return []result.Result{change, difference, adjusted}
+		}(), []string{`"use":"converted"`, "in a column of its own"}, nil},
+		{"adjustment left open", func() []result.Result {
+			change := mean("3.1", "2.3", "3.9", 24)
+			change.Statistic, change.Adjusted = result.MeanChange, "unclear"
+			return []result.Result{change, difference}
+		}(), []string{`"use":"withheld"`, "adjusted-unclear"}, nil},
 		{"an SE that must be an SD", []result.Result{spread(result.SE, "0.36", "0.40", "syrup", 178)},
 			[]string{`sd-as-se`, `"use":"withheld"`, `"sd":null`}, nil},
 	}

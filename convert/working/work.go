@@ -37,6 +37,11 @@ func Work(doc Facts, results []result.Result) []Working {
 			}
 		}
 	}
+	for _, row := range rowsOf(items) {
+		for _, it := range row {
+			it.row = row
+		}
+	}
 	for _, it := range items {
 		run(checksOfReading(), it)
 		applyPolicy(it)
