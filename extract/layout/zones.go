@@ -134,11 +134,24 @@ func (z *zoner) inAbstract(d *draft, title string, zone paper.Zone, sure bool) b
 	if sure && (zone == paper.References || plain == "introduction" || numbered.MatchString(title)) {
 		return false
 	}
+	if sure && (zone == paper.Methods || zone == paper.Results) && d.size >= z.abstractSize && !z.comes(zone) {
+		return false // the paper's own methods or results: no other heading of them follows
+	}
 	if z.parts[plain] || d.size*100 > z.abstractSize*108 && z.abstractSize > 0 && sure {
 		return false
 	}
 	z.parts[plain] = true
 	return zone != paper.BackMatter || plain == "trial registration" || plain == "funding"
+}
+
+// comes reports that a heading that surely opens the zone is still ahead.
+func (z *zoner) comes(zone paper.Zone) bool {
+	for title, n := range z.ahead {
+		if got, sure := paper.ZoneOf(title); n > 0 && sure && got == zone {
+			return true
+		}
+	}
+	return false
 }
 
 func (z *zoner) take(d *draft, title string, zone paper.Zone) {
