@@ -8,7 +8,6 @@ import (
 	"path/filepath"
 	"slices"
 	"sort"
-	"strings"
 	"testing"
 
 	"halfspan/convert"
@@ -66,10 +65,10 @@ func TestTruthRows(t *testing.T) {
 		names = append(names, name)
 	}
 	sort.Strings(names)
-	t.Logf("%-44s %6s %6s %10s %10s %10s %14s", "what the row says", "rows", "papers", "in range", "within 5%", "converted", "of them right")
+	t.Logf("%-110s %6s %6s %10s %10s %10s %14s", "what the row says", "rows", "papers", "in range", "within 5%", "converted", "of them right")
 	for _, name := range names {
 		a := table[name]
-		t.Logf("%-44s %6d %6d %10d %10d %10d %14d", name, a.rows, len(a.papers), a.meets, a.close, a.converted, a.convertedMeets)
+		t.Logf("%-110s %6d %6d %10d %10d %10d %14d", name, a.rows, len(a.papers), a.meets, a.close, a.converted, a.convertedMeets)
 	}
 }
 
@@ -119,7 +118,7 @@ func compareTruth(table map[string]*agreement, name string, printed, other resul
 	}
 	key := fmt.Sprintf("%s, %s", other.GivenAs, says)
 	if as.Use == "withheld" {
-		key += ": " + strings.Join(as.Flags[:min(len(as.Flags), 1)], "")
+		key += "; " + as.Reason
 	}
 	a := table[key]
 	if a == nil {
