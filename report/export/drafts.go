@@ -196,13 +196,8 @@ func (d *drafting) amend(row *ledger.Row, draft *ledger.Draft, changed map[strin
 	// Cells are compared with what holds now; the working starts from what was read.
 	all := map[string]string{}
 	for _, name := range amendable {
-		text, ok := d.cell(name)
-		if !ok {
-			continue
-		}
-		if to, isChanged := changed[name]; isChanged {
-			text = to
-		} else {
+		text, isChanged := changed[name]
+		if !isChanged {
 			text = d.texts[name](row)
 		}
 		if read, _ := review.Field(&row.Working.Record, name); text != read {
