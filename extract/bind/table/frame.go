@@ -81,12 +81,16 @@ func (f *frame) findHead() {
 	}
 	// A row of data among the marked heading rows ends them.
 	for r := 0; r < f.head; r++ {
-		if f.dataCells(r) >= 2 && !f.blank(r, 0) && r > 0 || f.spreadCells(r) > 0 && !f.blank(r, 0) {
+		if f.labelled(r) && (f.dataCells(r) >= 2 && r > 0 || f.spreadCells(r) > 0) {
 			f.head = r
 			return
 		}
 	}
 }
+
+// labelled reports that the row has a label of its own: not one that reaches down
+// from a heading row above.
+func (f *frame) labelled(r int) bool { return f.cellAt(r, 0) != nil && !f.blank(r, 0) }
 
 // headLike reports a row just below the headings that goes on with them: its
 // stub is blank or repeats nothing new, and its cells hold no data.
