@@ -25,8 +25,7 @@ type rawCell struct {
 	head             bool
 	rowSpan, colSpan int
 	text             paper.TextRun
-	indent           int  // width of its indentation, in no unit
-	bold             bool // all of it is bold
+	indent           int // width of its indentation, in no unit
 }
 
 // rawRow is a row of cells with the part of the table it stands in.

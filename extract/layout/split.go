@@ -16,7 +16,6 @@ type draft struct {
 	page  int
 	side  bool // stands in a narrow side column
 	size  int  // of most of its glyphs
-	label int  // of a paragraph that begins with its heading: bytes of that heading
 }
 
 func (d *draft) first() *line { return &d.lines[0] }

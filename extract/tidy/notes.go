@@ -42,7 +42,7 @@ func SplitNotes(t paper.TextRun) []paper.FootNote {
 	if t.S == "" {
 		return nil
 	}
-	type begin struct{ at, text, end int } // mark [at, end), note from text on
+	type begin struct{ at, end int } // mark [at, end)
 	var begins []begin
 	for i := 0; i < len(t.S); {
 		if i == 0 || noteMayBegin(t.S[:i]) {

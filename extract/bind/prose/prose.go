@@ -72,7 +72,6 @@ type para struct {
 	said   []said // words for a spread met so far
 	used   []bool // items that belong to a spread and are no estimate
 	cands  []cand // spreads with their estimates
-	group  []int  // of every item the run of intervals it belongs to
 }
 
 func (f *finder) block(i int) {

@@ -24,7 +24,6 @@ type size struct {
 	text string
 	from string // where, in words, when it is not beside
 	run  *paper.TextRun
-	kind string
 }
 
 // beside finds the n printed with the result: n = … in its own bracket, right

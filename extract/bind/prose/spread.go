@@ -1,7 +1,6 @@
 package prose
 
 import (
-	"strconv"
 	"strings"
 
 	"halfspan/extract/bind/convention"
@@ -34,7 +33,6 @@ type cand struct {
 	level    string
 	levelAt  grammar.Span
 	givenAt  grammar.Span // the word that says what it is; zero where the convention says
-	from     string       // in words where it was read, where not beside
 	conv     *conventionSource
 	meaning  grammar.Meaning
 	value    grammar.Number
@@ -396,8 +394,3 @@ func (p *para) plainPair(c *cand, a convention.Answer) bool {
 }
 
 var meanWord = pattern.MustCompile(`(?i)\b(?:means?|averaged?)\b`)
-
-func number(v string) (float64, bool) {
-	f, err := strconv.ParseFloat(v, 64)
-	return f, err == nil
-}

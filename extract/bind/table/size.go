@@ -19,7 +19,6 @@ type size struct {
 	place  paper.Place
 	shared bool // from one column of n's for all arms of the row
 	total  bool // it may be the total of several arms
-	base   bool // said to be the number at baseline
 }
 
 // number reads an n as printed.

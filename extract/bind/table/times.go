@@ -66,16 +66,6 @@ func captionOutcome(s string) string {
 	return nameOf(s)
 }
 
-// timeIn finds the time point named in a longer text, with a number in it or
-// one of the fixed names.
-func timeIn(s string) string {
-	ts := timesIn(s)
-	if len(ts) == 0 {
-		return ""
-	}
-	return ts[0]
-}
-
 var pointInTime = pattern.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
 
 // rowTime finds a time point in a row label that also names an outcome. A

@@ -27,7 +27,6 @@ func (t *tok) mid() int { return (t.x0 + t.x1) / 2 }
 // box is an area of the frame, y growing downwards.
 type box struct{ x0, top, x1, bot int }
 
-func (b box) empty() bool       { return b.x1 <= b.x0 }
 func (b box) width() int        { return b.x1 - b.x0 }
 func (b box) holdsX(x int) bool { return x >= b.x0 && x <= b.x1 }
 

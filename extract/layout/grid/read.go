@@ -84,21 +84,6 @@ func (rd *reader) full(r rule) bool {
 	return (min(r.x1, rd.area.x1)-max(r.x0, rd.area.x0))*10 >= rd.area.width()*8
 }
 
-// ruleBetween gives the rule between lines i-1 and i that covers the most.
-func (rd *reader) ruleBetween(i int) (rule, bool) {
-	var best rule
-	found := false
-	for _, r := range rd.rules {
-		if i > 0 && r.y <= rd.lines[i-1].base-rd.em/4 || r.y > rd.lines[i].base-rd.em/4 {
-			continue
-		}
-		if !found || r.x1-r.x0 > best.x1-best.x0 {
-			best, found = r, true
-		}
-	}
-	return best, found
-}
-
 // fullBetween reports whether the table's lines i-1 and i are parted by rules
 // that together run over its width.
 func (rd *reader) fullBetween(i int) bool {

@@ -325,7 +325,7 @@ func unfinished(t string) bool {
 // isP reports whether a text is a p value that says so.
 func isP(t string) bool {
 	rest, ok := strings.CutPrefix(strings.ToLower(t), "p")
-	return ok && strings.IndexAny(strings.TrimLeft(rest, "  "), "=<>≤≥") == 0
+	return ok && strings.IndexAny(strings.TrimLeft(rest, " "), "=<>≤≥") == 0
 }
 
 func startsLow(t string) bool {

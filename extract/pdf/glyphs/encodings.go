@@ -74,7 +74,7 @@ func SymbolText(c byte) string { return nameText(symbolNames()[c]) }
 // as the pixel fonts of TeX are: their codes are ASCII's, with ligatures and
 // dashes in places of their own.
 func codeName(name string, code uint32) string {
-	digits := strings.TrimLeft(name, "acgCGhar")
+	digits := strings.TrimLeft(name, "acgCGhr")
 	if n, err := strconv.Atoi(digits); err != nil || digits == name || uint32(n) != code {
 		return ""
 	}
