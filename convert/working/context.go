@@ -129,6 +129,10 @@ var (
 	cutShort    = regexp.MustCompile(`\b(or|and|of|the|with|to|for|in|a|versus|vs)$`)
 )
 
+// longestArm is how many letters the name of an arm has at most; a longer one is a
+// phrase with words of the outcome in it.
+const longestArm = 45
+
 // wordsOfContext flags words that say too little: an outcome that is only an
 // abbreviation, that starts in the middle of a phrase, that is more than a name or
 // whose row group is another outcome (it has a unit of its own), and an arm that
@@ -149,6 +153,9 @@ func wordsOfContext(it *item) {
 	}
 	if cutShort.MatchString(it.res.Arm) {
 		it.raise("arm-cut-short", it.res.Arm)
+	}
+	if utf8.RuneCountInString(it.res.Arm) > longestArm {
+		it.raise("arm-a-phrase", it.res.Arm)
 	}
 }
 

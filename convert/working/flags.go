@@ -102,6 +102,7 @@ func Flags() []FlagInfo {
 		{"arm-unclear", None, "the arms of a comparison are not named where the result stands", "check the arm"},
 		{"arm-missing-here", AsksLook, "other results of this table name an arm, this one does not", "check the arm"},
 		{"arm-cut-short", AsksLook, "the name of the arm breaks off", "check the arm"},
+		{"arm-a-phrase", AsksLook, "the name of the arm is a whole phrase: words of the outcome may be in it", "check the arm and the outcome"},
 		{"time-unclear", AsksLook, "the time point rests on the caption", "check the time"},
 		{"time-missing-here", AsksLook, "other results of this table name a time, this one does not", "check the time"},
 		{"outcome-abbreviated", AsksLook, "the outcome is only an abbreviation", "look up what it stands for"},

@@ -152,6 +152,7 @@ func raisedByWorking() map[string][]result.Result {
 		"sentence-without-n":  one(as(plain, func(r *result.Result) { r.Table, r.N = "", 0 })),
 		"outcome-unclear":     {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Outcome = "colony mass, Queens" })},
 		"arm-cut-short":       one(as(plain, func(r *result.Result) { r.Arm = "syrup or" })),
+		"arm-a-phrase":        one(as(plain, func(r *result.Result) { r.Arm = "colonies that were weighed again in spring in the syrup group" })),
 		"in-running-text":     one(as(plain, func(r *result.Result) { r.Table = "" })),
 		"arm-not-named":       one(as(plain, func(r *result.Result) { r.Table, r.Arm = "", "" })),
 		"arm-missing-here":    {plain, ci("12.6", "11.4", "13.8", func(r *result.Result) { r.Arm = "" })},
