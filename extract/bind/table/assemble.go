@@ -61,6 +61,9 @@ func (a *assembly) read(r, c int) []spread {
 			own = col
 		}
 	}
+	if own.kind == roleSpread && own.label.cell == col.label.cell && own.wantsInterval() && a.intervalBelow(r, c) {
+		own = role{} // "GMC" over "(95% CI)": estimates and intervals take turns
+	}
 	if own.kind == roleSpread && len(ests) == 2 && len(ests[0].spreads)+len(ests[1].spreads) == 0 && own.wantsInterval() {
 		orphans = append(orphans, spread{shape: shapeInterval, lower: ests[0].value, upper: ests[1].value,
 			item: grammar.Item{Kind: grammar.KindInterval}, cell: ests[0].cell, row: r, col: c})
@@ -107,12 +110,16 @@ func (a *assembly) attach(sp spread) {
 			a.join(e, sp)
 			return
 		}
-		if e := a.under(sp); e != nil {
+		if e := a.under(sp, f.lines[sp.row].above); e != nil {
 			a.join(e, sp)
 			return
 		}
 	default:
 		if e := a.left(sp); e != nil {
+			a.join(e, sp)
+			return
+		}
+		if e := a.under(sp, f.stubTop(sp.row)); e != nil && sp.shape != shapePlain {
 			a.join(e, sp)
 			return
 		}
@@ -324,10 +331,10 @@ func sameGroups(y, x *line, r int) bool {
 	return true
 }
 
-// under finds the estimate in the same column of the row that a row with a
-// blank stub goes on with.
-func (a *assembly) under(sp spread) *estimate {
-	for r := sp.row - 1; r >= a.f.lines[sp.row].above; r-- {
+// under finds the estimate in the same column of the rows, from top on, that
+// the row of the spread goes on with.
+func (a *assembly) under(sp spread, top int) *estimate {
+	for r := sp.row - 1; r >= top; r-- {
 		for _, e := range a.at[spot{r, sp.col}] {
 			if len(e.spreads) == 0 {
 				return e
@@ -335,4 +342,29 @@ func (a *assembly) under(sp spread) *estimate {
 		}
 	}
 	return nil
+}
+
+// stubTop gives the first of the rows that the labels of row r span; r itself
+// where it has a label of its own.
+func (f *frame) stubTop(r int) int {
+	for c := 0; c < f.stub; c++ {
+		if f.cellAt(r, c) != nil && !f.blank(r, c) {
+			return r
+		}
+	}
+	if cell := f.grid[r][f.stub-1]; cell != nil {
+		return cell.Row
+	}
+	return r
+}
+
+// intervalBelow reports that the cell holds one bare number and the cell below
+// it, under the same label, nothing but an interval.
+func (a *assembly) intervalBelow(r, c int) bool {
+	f := a.f
+	if r+1 >= f.tab.Rows || f.cellAt(r+1, c) == nil || f.stubTop(r+1) != r && f.lines[r+1].kind != lineContinue {
+		return false
+	}
+	up, low := f.reads[f.grid[r][c]].cell.Values, f.reads[f.grid[r+1][c]].cell.Values
+	return len(up) == 1 && len(up[0].Parts) == 0 && len(low) == 1 && low[0].Estimate.IsZero() && low[0].Part(grammar.KindInterval) != nil
 }

@@ -114,9 +114,17 @@ var (
 	edge         = " ,;:-–—/.±"
 )
 
+// lettersPercent is a short name whose bracket holds only a percent sign: the
+// letters are what was measured, not the statistic they may stand for elsewhere.
+var lettersPercent = pattern.MustCompile(`^\s*(?:VE|AUC|ER|RR|HR|VR)\s*\(\s*%\s*\)\s*$`)
+
 // nameOf takes n's, statistics and levels out of a heading: what it names.
 func nameOf(s string) string {
-	t := stripTerms(clean(s))
+	if lettersPercent.MatchString(s) {
+		return clean(s)
+	}
+	t := stripTerms(clean(fixedMean.ReplaceAllString(s, "${1}\u2060${2}")))
+	t = strings.ReplaceAll(t, "\u2060", "")
 	t = worded.ReplaceAllString(t, " ")
 	for k := 0; k < 3; k++ {
 		t = spaceBracket.ReplaceAllString(t, " ")
@@ -200,7 +208,7 @@ func (f *frame) isArm(low string) bool {
 	return armWord.MatchString(low) && len(words(low)) <= 6 && f.lex.unit(low) == "" && !outcomeWord.MatchString(low)
 }
 
-var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect)\b`)
+var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect|(?:mental|motor|postural|balance|inhibitory|impulse|cognitive|executive|attention(?:al)?|emotional|glyca?emic|metabolic|diabetes|asthma|disease|symptom|weight|blood pressure|rate|birth|head|self|perceived|behaviou?ral) control)\b`)
 
 var onlyArmWord = pattern.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
 

@@ -147,6 +147,11 @@ func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 
 var nMention = pattern.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|for|in)\b`)
 
+var (
+	nOfNext  = pattern.MustCompile(`\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in)\s+(?:the )?$`)
+	nextName = pattern.MustCompile(`^\s+(?:for|in)\s+\w`)
+)
+
 // nForArm finds in a sentence the n that stands with an arm's name: "(n = 42)"
 // behind it, "42 colonies in the syrup arm", "Syrup (42)".
 func nForArm(s, arm string, others []string) (int, bool) {
@@ -172,9 +177,12 @@ func nForArm(s, arm string, others []string) (int, bool) {
 		}
 	}
 	end := at + len(name)
+	if m := nOfNext.FindStringSubmatchIndex(low[max(0, at-24):at]); m != nil {
+		return intAt(low[max(0, at-24):at], m) // "n = 42 for syrup"
+	}
 	// Behind: only a few words may stand between.
 	after := low[end:min(len(low), end+30)]
-	if m := nMention.FindStringSubmatchIndex(after); m != nil && m[0] <= 16 && !strings.ContainsAny(after[:m[0]], ".;") && m[6] < 0 {
+	if m := nMention.FindStringSubmatchIndex(after); m != nil && m[0] <= 16 && !strings.ContainsAny(after[:m[0]], ".;") && m[6] < 0 && !nextName.MatchString(after[m[1]:]) {
 		return intAt(after, m)
 	}
 	// Before: "42 colonies in the syrup group".
