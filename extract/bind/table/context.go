@@ -146,6 +146,9 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	if !x.contrast && len(arms) == 0 && f.colArms && f.columnStatistic(e) == "coefficient" && len(f.armNames()) == 2 {
 		x.contrast = true // a model's coefficient beside the columns of two arms
 	}
+	if len(others) == len(arms) {
+		others = f.measured(others)
+	}
 	if len(others) > 0 && len(others) < len(arms) && f.spannedBy(path) {
 		arms = others
 	} else if len(others) > 0 && len(others) < len(arms) {
@@ -167,6 +170,18 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		times = times[1:]
 	}
 	x.time = joinPath(times, ", ")
+}
+
+// measured gives those of several headings over a column that carry a unit: they
+// say what was measured in the arm that the rest names.
+func (f *frame) measured(names []string) []string {
+	var out []string
+	for _, n := range names {
+		if f.lex.unit(n) != "" || strings.HasPrefix(n, "%") {
+			out = append(out, n)
+		}
+	}
+	return out
 }
 
 func (f *frame) rowContext(e *estimate, x *context) {

@@ -106,7 +106,7 @@ func kindOfN(s string) string {
 // atBaseline reports that a result is about the time before treatment.
 func atBaseline(x *context) bool {
 	low := fold(x.time)
-	return low == "" && !x.change || strings.Contains(low, "baseline") && !strings.Contains(low, "change") && !strings.Contains(low, " to ") || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
+	return low == "" && !x.change || strings.Contains(low, "baseline") && !strings.Contains(low, "change") && !strings.Contains(low, " to ") && !strings.ContainsAny(low, "×→") || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
 }
 
 // baselineN reports that a note says the headings' n's are those at baseline:

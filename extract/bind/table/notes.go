@@ -38,13 +38,30 @@ func newNotes(t *paper.Table, v *vocabulary) *notes {
 			n.splitMarked(&fn.Text)
 			continue
 		}
-		n.list = append(n.list, note{mark, &fn.Text, from})
+		own, rest := splitGeneral(&fn.Text)
+		n.list = append(n.list, note{mark, own, from})
+		if rest != nil {
+			n.list = append(n.list, note{"", rest, "note below the table"})
+		}
 	}
 	if mark, run := captionNote(&t.Caption); mark != "" {
 		n.list = append(n.list, note{mark, run, "caption"})
 		n.known[mark] = true
 	}
 	return n
+}
+
+var generalSentence = pattern.MustCompile(`[.;]\s+((?:All )?(?:[Dd]ata|[Vv]alues|[Rr]esults|[Nn]umbers|[Ff]igures)\s+(?:are|were|is)\b[^.;]*\b(?:unless|except|otherwise|n ?\(%\)|frequenc|numbers? \(|percent))`)
+
+// splitGeneral parts "*Median. Values are mean ± SD unless otherwise stated",
+// where only the first sentence belongs to the mark.
+func splitGeneral(t *paper.TextRun) (*paper.TextRun, *paper.TextRun) {
+	m := generalSentence.FindStringSubmatchIndex(t.S)
+	if m == nil {
+		return t, nil
+	}
+	own, rest := slice(t, 0, m[2]), slice(t, m[2], len(t.S))
+	return &own, &rest
 }
 
 var markEquals = pattern.MustCompile(`^\s*([a-z]|[*†‡§#¶]{1,3})\s*(?:=|:)\s+`)

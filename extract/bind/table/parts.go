@@ -123,8 +123,7 @@ func nameOf(s string) string {
 	if lettersPercent.MatchString(s) {
 		return clean(s)
 	}
-	t := stripTerms(clean(fixedMean.ReplaceAllString(s, "${1}\u2060${2}")))
-	t = strings.ReplaceAll(t, "\u2060", "")
+	t := stripTerms(clean(s))
 	t = worded.ReplaceAllString(t, " ")
 	for k := 0; k < 3; k++ {
 		t = spaceBracket.ReplaceAllString(t, " ")

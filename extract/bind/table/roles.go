@@ -186,6 +186,9 @@ func partOfName(q grammar.Pair) bool {
 	return false
 }
 
+// fixedMean are quantities with mean in their name.
+var fixedMean = pattern.MustCompile(`(?i)^mean (?:arterial|blood|airway|corpuscular|cell|platelet|aortic|pulmonary|transvalvular|circulatory)\b`)
+
 // stripTerms takes n = 42, statistics and levels out of a heading.
 func stripTerms(s string) string {
 	s = normalise(s)
@@ -199,6 +202,9 @@ func stripTerms(s string) string {
 				continue // "No. of eggs" is a name
 			}
 			word := strings.ToLower(s[sp.Start:sp.End])
+			if sp == q.StatisticAt && fixedMean.MatchString(s[sp.Start:]) {
+				continue
+			}
 			if changeMark.MatchString(word) || strings.Contains(word, "change") || sp == q.StatisticAt && !all && partOfName(q) {
 				continue
 			}

@@ -202,7 +202,7 @@ func (f *frame) kindOf(r int, own []label) lineKind {
 		if cell == nil || isBlankText(cell.Text.S) {
 			continue
 		}
-		if cell.RowSpan > 1 || len(own) > 0 && f.pColumn(c) {
+		if cell.RowSpan > 1 || f.pColumn(c) && (len(own) > 0 || !f.reads[cell].headingLike) {
 			continue // it belongs to several rows, or is the p value of a group
 		}
 		filled++
@@ -460,6 +460,9 @@ func (f *frame) nest() {
 			stack = stack[:len(stack)-1]
 		}
 		for _, g := range stack {
+			if f.otherUnit(g, r) {
+				continue
+			}
 			if f.lines[g].kind == lineData && f.grid[g][0] != nil && f.grid[r][0] != nil && f.grid[g][0].Indent >= f.grid[r][0].Indent {
 				continue
 			}
@@ -467,6 +470,16 @@ func (f *frame) nest() {
 		}
 		stack = append(stack, r)
 	}
+}
+
+// otherUnit reports that g and r are rows of data of which each has a unit of
+// its own: "Mass (kg)" is no group for "Flight time (min)" printed further in.
+func (f *frame) otherUnit(g, r int) bool {
+	if f.lines[g].kind != lineData || len(f.lines[g].labels) != 1 || len(f.lines[r].labels) != 1 {
+		return false
+	}
+	u, v := f.lex.unit(f.lines[g].labels[0].text), f.lex.unit(f.lines[r].labels[0].text)
+	return u != "" && v != "" && u != v && v != "%" && u != "%"
 }
 
 func (f *frame) nextLine(r int) int {

@@ -177,6 +177,9 @@ func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *rea
 		if rd.given == result.SD || rd.given == result.SE {
 			return result.Mean
 		}
+		if x.contrast && x.arm2 != "" {
+			return result.RiskDifference // "Difference in prevalence (95% CI)"
+		}
 	}
 	return st
 }

@@ -55,7 +55,7 @@ func (f *frame) someChange() bool {
 var (
 	captionArm    = pattern.MustCompile(`(?i)\b(?:within|in) the ([A-Z][\w+/-]*(?:[ -][\w+/-]+){0,3}?)[- ](?:group|arm)\b`)
 	changeCaption = pattern.MustCompile(`(?i)\bchanges? (?:in|of)\b`)
-	scoreCaption  = pattern.MustCompile(`(?i)\bmeans?\s*(?:\((?:sd|se|sem|95% ci)\)|± ?(?:sd|sem?))\s*(?:changes?|reductions?)\b|\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b`)
+	scoreCaption  = pattern.MustCompile(`(?i)\bmeans?\s*(?:\((?:sd|se|sem|95% ci)\)|± ?(?:sd|sem?))\s*(?:changes?|reductions?)\b|\bmean changes?\b|\bchanges? (?:from|scores?)\b|\bchange scores?\b|\b(?:within|intra)[- ]?(?:groups?|subjects?|arms?) (?:mean )?(?:differences?|changes?)\b`)
 )
 
 func captionOutcome(s string) string {
@@ -150,7 +150,7 @@ var (
 		`intra-?operative(?:ly)?|before|after|pre|post|initial|final|end of (?:the )?(?:study|trial|treatment|intervention|programme|program|therapy|training|follow-?up)|` +
 		`start|entry|immediately|delivery|birth|(?:hours?|days?|weeks?|months?|years?) (?:before|after|prior to))\b` +
 		`)`)
-	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|(?:weight|mass) (?:loss|gain))\b(?: in\b| from\b| over time\b| of\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
+	changeMark = pattern.MustCompile(`(?i)(?:\b|^)(?:mean |average |absolute |relative |percent(?:age)? |% |net |adjusted |ls |least squares? mean )*(?:changes?\b|[Δ∆]|\bdelta\b|(?:reductions?|decreases?|increases?|declines?|improvements?|drops?|(?:weight|mass) (?:loss|gain))\b(?: in\b| from\b| over time\b| of\b| relative to\b| since\b|\s*\(|\s*$))(?: in score)?(?: from (?:the )?baseline| over time| vs\.? baseline| within groups?)?`)
 )
 
 // isTimeHeading reports that a folded heading names a time or a period and

@@ -45,6 +45,9 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && !unitBracket.MatchString(l.text) {
 			continue // "Drug 100 mg": a dose
 		}
+		if x.timeAt.cell != nil && l.cell == x.timeAt.cell && x.timeFrom != "row label" && hasDigit(l.text) && !unitBracket.MatchString(l.text) {
+			continue // "Week 0 to 6 weeks": the unit of the time
+		}
 		if u := f.lex.unit(l.text); u != "" && !(u == "%" && f.countsBeside(l)) {
 			x.unit, x.unitAt = u, l
 			return
