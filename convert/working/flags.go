@@ -33,7 +33,7 @@ type FlagInfo struct {
 func Flags() []FlagInfo {
 	return []FlagInfo{
 		// The sample size.
-		{"n-missing", None, "no sample size is printed for this result", "look for n in the paper; without it an interval gives the SE only"},
+		{"n-missing", AsksLook, "no sample size is printed for this result", "look for n in the paper; without it an interval gives the SE only"},
 		{"n-missing-here", AsksLook, "no n was found for this result, though other results of its table have one", "look at the table's headings and its n row"},
 		{"n-elsewhere", None, "n was read in another table or in the text, by the name of the arm", "check that this n is the one analysed here"},
 		{"n-kind-unclear", None, "whether n counts those analysed in this row is not said", "look for missing values; fewer analysed means a larger SE for the same SD"},
