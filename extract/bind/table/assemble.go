@@ -1,7 +1,10 @@
 package table
 
 import (
+	"strings"
+
 	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
 
@@ -145,11 +148,28 @@ func (a *assembly) join(e *estimate, sp spread) {
 	e.spreads = append(e.spreads, sp)
 }
 
+// parted reports that a heading spans two bounds and a column of the word or dash
+// between them: "0.95 | to | 1.32".
+func (a *assembly) parted(head *paper.Cell, row int) bool {
+	if head.ColSpan != 3 || head.Col+1 >= a.f.tab.Cols {
+		return false
+	}
+	middle := a.f.cellAt(row, head.Col+1)
+	if middle == nil {
+		return false
+	}
+	switch fold(strings.TrimSpace(middle.Text.S)) {
+	case "to", "-", "–", "—", "−", "‐", ",", ";":
+		return true
+	}
+	return false
+}
+
 // pairOfBounds reports that one heading of an interval spans the column of the
 // spread and a neighbour with single numbers.
 func (a *assembly) pairOfBounds(sp spread) bool {
 	cell := sp.own.label.cell
-	if cell == nil || cell.ColSpan != 2 || len(sp.own.pairs) == 0 {
+	if cell == nil || len(sp.own.pairs) == 0 || cell.ColSpan != 2 && !a.parted(cell, sp.row) {
 		return false
 	}
 	switch sp.own.pairs[0].Spread {

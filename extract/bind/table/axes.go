@@ -337,7 +337,31 @@ var generic = map[string]bool{"treatment group": true, "treatment groups": true,
 // general reports a heading over several columns that only says that arms
 // stand below it.
 func (f *frame) general(p part) bool {
+	if f.onlyOver(p) {
+		return true
+	}
 	return generic[fold(p.name)] && (p.l.cell == nil || p.l.cell.ColSpan > 1 || p.l.cell.Col < f.stub)
+}
+
+// onlyOver reports a general word that alone spans several columns with names of
+// their own: "Intervention" over "Syrup", "Pollen", "Water".
+func (f *frame) onlyOver(p part) bool {
+	cell := p.l.cell
+	if cell == nil || cell.ColSpan < 2 || cell.Row >= f.head-1 || !onlyArmWord.MatchString(p.name) {
+		return false
+	}
+	names := 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if o := f.cellAt(cell.Row, c); o != nil && o != cell && o.ColSpan > 1 && !isBlankText(o.Text.S) {
+			return false
+		}
+		if o := f.cellAt(cell.Row+1, c); o != nil && c >= cell.Col && c < cell.Col+cell.ColSpan && o.ColSpan == 1 {
+			if k := f.partOf(f.label(o)).kind; k == partArm || k == partOther {
+				names++
+			}
+		}
+	}
+	return names >= 2 && names == cell.ColSpan
 }
 
 func (f *frame) findArm(r, c int) string {

@@ -16,6 +16,7 @@ type context struct {
 	armFrom, timeFrom, outcomeFrom                    string
 	contrast                                          bool // between arms
 	change                                            bool
+	within                                            bool   // a difference inside one arm, by the layout
 	aside                                             string // what headings beside the arm's say
 	changeAll                                         bool   // the caption says that the table prints changes
 	timeGuess                                         bool   // the time rests on the caption
@@ -143,6 +144,9 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			x.armAt = l
 		}
 	}
+	if x.contrast && x.arm2 == "" && len(arms) > 0 && f.differsWithin(path) {
+		x.contrast, x.change, x.within = false, true, true
+	}
 	if !x.contrast && len(arms) == 0 && f.colArms && f.columnStatistic(e) == "coefficient" && len(f.armNames()) == 2 {
 		x.contrast = true // a model's coefficient beside the columns of two arms
 	}
@@ -207,7 +211,12 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			}
 		case p.kind == partContrast:
 			x.contrast = x.contrast || !f.colArms || strings.Contains(fold(p.name), "between") || strings.Contains(fold(p.name), "treatment difference")
-			outcome = append(outcome, p.name)
+			if t := f.lex.rowTime(p.name); t != "" && x.time == "" {
+				x.time, x.timeAt, x.timeFrom = t, l, "row label"
+			}
+			if own || !saysNothing(p.name) {
+				outcome = append(outcome, p.name)
+			}
 		case p.kind == partArm && (f.armRows || !f.colArms):
 			x.arm = joinPath([]string{x.arm, p.name}, ", ")
 			x.armAt, x.armFrom = l, "row label"
@@ -268,12 +277,15 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	x.subgroup = joinPath(subs, ", ")
 }
 
+// fromBaseline says what a change is measured from, not when.
+var fromBaseline = pattern.MustCompile(`(?i)\b(?:changes?|reductions?|decreases?|increases?|improvements?|differences?)(?: scores?)? (?:from|since|vs\.?|versus|relative to|compared (?:with|to)) (?:the )?baseline\b`)
+
 // captionContext fills in from the caption what rows and columns leave open.
 func (f *frame) captionContext(e *estimate, x *context) {
 	capt := f.tab.Caption.S
 	l := label{text: clean(capt), raw: clean(capt)}
 	if x.time == "" {
-		switch ts := f.lex.timesIn(capt); {
+		switch ts := f.lex.timesIn(fromBaseline.ReplaceAllString(capt, " change ")); {
 		case len(ts) == 1 && strings.Contains(fold(ts[0]), " and "):
 		case len(ts) == 1:
 			x.time, x.timeAt, x.timeFrom, x.timeGuess = ts[0], l, "caption", true

@@ -40,6 +40,20 @@ func beforeFor(s string) string {
 	return ""
 }
 
+var comparingWords = map[string]bool{"least": true, "square": true, "squares": true, "ls": true, "treatment": true, "difference": true, "differences": true, "effect": true,
+	"effects": true, "between": true, "group": true, "groups": true, "comparison": true, "comparisons": true, "arm": true, "arms": true, "treatments": true, "by": true, "at": true}
+
+// saysNothing reports that a group label of comparisons names no outcome:
+// "Estimated treatment differences at study end (least square means)".
+func saysNothing(name string) bool {
+	for _, w := range words(timeMark.ReplaceAllString(name, " ")) {
+		if low := strings.ToLower(w); !statFiller[low] && !timeFiller[low] && !comparingWords[low] {
+			return false
+		}
+	}
+	return true
+}
+
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
 	name := f.lex.name(l.text)
@@ -58,6 +72,46 @@ var (
 	controls  = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard care|vehicle|wait(?:ing)?[- ]?list|no (?:treatment|intervention)|natural course|comparator|saline|water)\b`)
 	overOne   = pattern.MustCompile(`(?i)\b(?:over|versus|vs\.?|minus|compared (?:with|to)|relative to|against)\s+(?:the )?(placebo|controls?|sham|usual care|vehicle|[A-Z][\w-]*)\b`)
 )
+
+// differsWithin reports that every arm has a column of differences of its own,
+// beside its values: they lie between its times, not between arms.
+func (f *frame) differsWithin(path []label) bool {
+	if len(path) < 2 {
+		return false
+	}
+	own, arm := path[len(path)-1], path[len(path)-2]
+	if own.cell == nil || arm.cell == nil || arm.cell.ColSpan < 2 || overOne.MatchString(own.text) || controls.MatchString(own.text) ||
+		strings.Contains(fold(own.text), "between") || parseVs(own.text) != nil {
+		return false
+	}
+	spans := 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		o := f.cellAt(arm.cell.Row, c)
+		if o == nil || isBlankText(o.Text.S) || o.ColSpan < 2 {
+			continue
+		}
+		same, values := 0, 0
+		for k := c; k < min(c+o.ColSpan, f.tab.Cols); k++ {
+			if len(f.heads[k]) == 0 || f.pColumn(k) {
+				continue
+			}
+			low := f.heads[k][len(f.heads[k])-1]
+			switch kind := f.partOf(low).kind; {
+			case low.text == own.text:
+				same++
+			case kind == partArm || kind == partOther || kind == partContrast:
+				return false
+			default:
+				values++
+			}
+		}
+		if same != 1 || values == 0 {
+			return false
+		}
+		spans++
+	}
+	return spans >= 2
+}
 
 // contrastArms fills in the arms of a difference that its heading leaves open:
 // from a note, from "over placebo", from the table's two arms.

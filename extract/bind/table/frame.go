@@ -76,6 +76,10 @@ func (f *frame) findHead() {
 	if f.head == f.tab.Rows && f.head > 1 {
 		f.head = 1
 	}
+	if f.head <= 1 && f.countsFirst() {
+		f.head = 0 // nothing stands over the columns
+		return
+	}
 	for f.head < f.tab.Rows-1 && f.headLike(f.head) {
 		f.head++
 	}
@@ -86,6 +90,28 @@ func (f *frame) findHead() {
 			return
 		}
 	}
+}
+
+// countsFirst reports that the first row is one of sample sizes: "N", and whole
+// numbers beside it.
+func (f *frame) countsFirst() bool {
+	first := f.cellAt(0, 0)
+	if first == nil || strings.Trim(fold(first.Text.S), " .:=") != "n" {
+		return false
+	}
+	found := 0
+	for c := 1; c < f.tab.Cols; c++ {
+		cell := f.cellAt(0, c)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		vs := f.reads[cell].cell.Values
+		if len(vs) != 1 || len(vs[0].Parts) > 0 || !isWhole(vs[0].Estimate.Value) {
+			return false
+		}
+		found++
+	}
+	return found > 0
 }
 
 // labelled reports that the row has a label of its own: not one that reaches down

@@ -85,10 +85,30 @@ func (f *frame) rowPart(l label) part {
 		if !f.armRows {
 			p.kind = partOther
 		}
-	case p.kind == partTime && !bareTime(low):
+	case p.kind == partTime && !bareTime(low) && !f.phasePair(low):
 		p.kind, p.name = partOther, f.lex.name(l.text)
 	}
 	return p
+}
+
+var phaseName = pattern.MustCompile(`^(pre|post|before|after)[- ](?:the )?([a-z]+?)s?$`)
+
+// phasePair reports that a label and another name the phases before and after
+// the same: "Pre-nectar", "Post-nectar".
+func (f *frame) phasePair(low string) bool {
+	m := phaseName.FindStringSubmatch(low)
+	if m == nil {
+		return false
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		for _, l := range f.lines[r].labels {
+			o := phaseName.FindStringSubmatch(fold(f.lex.name(l.text)))
+			if o != nil && o[2] == m[2] && o[1] != m[1] {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // overValues reports that estimates with spreads stand under a heading, so that
@@ -110,6 +130,7 @@ func hasArmShape(s string) bool { return len(s) < 120 }
 
 var (
 	spaceBracket = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
+	meanBracket  = pattern.MustCompile(`(?i)\(\s*(?:(?:adjusted|unadjusted|estimated|marginal|ls|least[- ]squares?)\s+)*(?:means?|medians?)[\s±,;]*\)`)
 	loneMark     = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
 	edge         = " ,;:-–—/.±"
 )
@@ -125,6 +146,7 @@ func nameOf(s string) string {
 	}
 	t := stripTerms(clean(s))
 	t = worded.ReplaceAllString(t, " ")
+	t = meanBracket.ReplaceAllString(t, " ")
 	for k := 0; k < 3; k++ {
 		t = spaceBracket.ReplaceAllString(t, " ")
 	}

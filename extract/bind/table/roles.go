@@ -171,6 +171,9 @@ func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
 
 var nPhrase = pattern.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
 
+// nBySex is a bracket with the n of each sex: (n = 9 M, 11 F).
+var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*\d+\s*(?:m|f|males?|females?|men|women)\s*[,;/&]\s*\d+\s*(?:m|f|males?|females?|men|women)\s*\)`)
+
 // onlyTerms reports that nothing but terms stands in a heading.
 func onlyTerms(s string, h grammar.Heading) bool { return len(restWords(s, h)) == 0 }
 
@@ -192,7 +195,7 @@ var fixedMean = pattern.MustCompile(`(?i)^mean (?:arterial|blood|airway|corpuscu
 // stripTerms takes n = 42, statistics and levels out of a heading.
 func stripTerms(s string) string {
 	s = normalise(s)
-	s = nPhrase.ReplaceAllString(s, " ")
+	s = nPhrase.ReplaceAllString(nBySex.ReplaceAllString(s, " "), " ")
 	h := grammar.ParsePhrase(grammar.Text{S: s})
 	b := []byte(s)
 	all := onlyTerms(s, h)

@@ -5,6 +5,7 @@ import (
 	"unicode"
 
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // lineKind says what a body row of a table is.
@@ -63,6 +64,9 @@ func (f *frame) findLines() {
 			lastData = -1
 			continue
 		}
+		if f.stub > 1 && len(own) > 1 && len(carried) > 0 && unitAlone.MatchString(own[0].text) {
+			own[0].text, own[0].raw = clean(carried[0].text+" "+own[0].text), clean(carried[0].raw+" "+own[0].raw)
+		}
 		switch {
 		case len(own) == 0 && ln.kind == lineData && lastData >= 0:
 			ln.kind, ln.above = lineContinue, lastData
@@ -89,6 +93,9 @@ func (f *frame) findLines() {
 	}
 	f.nest()
 }
+
+// unitAlone is the second line of a label that holds only its unit: "(mg/mL)".
+var unitAlone = pattern.MustCompile(`^[(\[][^()\[\]]{1,20}[)\]]$`)
 
 // spreadsUnder reports that row r prints, under a label that goes on with the
 // one above, only the spreads of the row above: "Flight time," over "12.4",

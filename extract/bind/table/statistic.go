@@ -145,7 +145,7 @@ var (
 // refine turns a plain mean into a change, a difference or a proportion where
 // the context says so.
 func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *reading, x *context, all []statement) result.Statistic {
-	if st == result.MeanDifference && !x.contrast && x.arm != "" && f.colArms && rd.given != result.CI {
+	if st == result.MeanDifference && !x.contrast && x.arm != "" && f.colArms && (rd.given != result.CI || x.within) {
 		return result.MeanChange // a "difference" inside one arm
 	}
 	switch st {
@@ -176,6 +176,9 @@ func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *rea
 	case result.Proportion:
 		if rd.given == result.SD || rd.given == result.SE {
 			return result.Mean
+		}
+		if x.contrast && x.arm2 != "" || strings.HasPrefix(e.value.Value, "-") {
+			return result.RiskDifference // a share is never below zero
 		}
 		if x.contrast && x.arm2 != "" {
 			return result.RiskDifference // "Difference in prevalence (95% CI)"
