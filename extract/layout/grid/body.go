@@ -15,6 +15,7 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 		return box{}, false, false
 	}
 	end := s.lastRule(lines, sides, top, limit, size)
+	ruled := end != noRule
 	last := -1
 	tabular := 0
 	for i := range lines {
@@ -26,13 +27,13 @@ func (s *sheet) bodyBelow(sides box, top, limit, size int) (body box, open, ok b
 			}
 			continue
 		}
-		if !s.goesOn(lines, i, last, end, sides, limit) {
+		if !s.goesOn(lines, i, last, max(end, top), sides, limit) {
 			break
 		}
 		last = i
 		tabular++
 	}
-	if last < 0 || tabular == 0 && end == 0 || end == 0 && !s.hasRows(lines[:last+1]) {
+	if last < 0 || !ruled && (tabular == 0 || !s.hasRows(lines[:last+1])) {
 		return box{}, false, false
 	}
 	if n := s.notesInside(lines[:last+1], sides); n > 0 && n <= last {
@@ -66,7 +67,7 @@ func (s *sheet) notesInside(lines []line, sides box) int {
 		ln := &lines[n-1]
 		text := s.join(ln.toks)
 		wide := ln.x1-ln.x0 >= sides.width()/2 && len(ln.toks) >= 7
-		if len(s.runs(ln, 90)) > 1 || !wide && !s.isNoteStart(ln) && !strings.HasPrefix(text, "http") && !strings.HasPrefix(text, "doi") {
+		if len(s.runs(ln, 90)) > 1 || s.figuresAtEnd(ln) >= 3 || !wide && !s.isNoteStart(ln) && !strings.HasPrefix(text, "http") && !strings.HasPrefix(text, "doi") {
 			break
 		}
 		n--
@@ -90,10 +91,13 @@ func (s *sheet) footTop() int {
 	return s.segs[n-1].bot
 }
 
-// lastRule is the height of the last rule that belongs to the table, 0 where
-// there is none: rules of the table's width, with no prose between them.
+// noRule is above everything that can be printed.
+const noRule = -1 << 30
+
+// lastRule is the height of the last rule that belongs to the table, noRule
+// where there is none: rules of the table's width, with no prose between them.
 func (s *sheet) lastRule(lines []line, sides box, top, limit, size int) int {
-	end, k := 0, 0
+	end, k := noRule, 0
 	for _, r := range rulesIn(s.rules, box{sides.x0, top - size, sides.x1, limit}) {
 		full := abs(r.x0-sides.x0) <= 3*size && abs(r.x1-sides.x1) <= 3*size
 		part := r.x0 >= sides.x0-size && r.x1 <= sides.x1+size
@@ -112,7 +116,7 @@ func (s *sheet) lastRule(lines []line, sides box, top, limit, size int) int {
 				bare++
 			}
 		}
-		if prose > 1 && prose*2 > plain || bare > 0 && end != 0 || k == start && r.y-max(end, top) > 4*size {
+		if prose > 1 && prose*2 > plain || bare > 0 && end != noRule || k == start && r.y-max(end, top) > 4*size {
 			break
 		}
 		if full || k > start {
@@ -135,9 +139,20 @@ func (s *sheet) isText(ln *line) bool {
 	return prose*3 > words*2
 }
 
-// isTabular reports whether a line has cells: at least two runs, not prose.
+// isTabular reports whether a line has cells, not prose: at least two runs, or
+// figures that follow one another a space apart.
 func (s *sheet) isTabular(ln *line) bool {
-	return len(s.runs(ln, 90)) >= 2 && !s.isText(ln)
+	return (len(s.runs(ln, 90)) >= 2 || s.figuresAtEnd(ln) >= 3) && !s.isText(ln)
+}
+
+// figuresAtEnd counts the figures that a line ends with.
+func (s *sheet) figuresAtEnd(ln *line) int {
+	cells := s.atoms(ln)
+	n := 0
+	for n < len(cells) && isFigure(s.join(cells[len(cells)-1-n].toks)) {
+		n++
+	}
+	return n
 }
 
 // goesOn reports whether line i, below the last rule, still belongs to the
@@ -205,7 +220,7 @@ func (s *sheet) figuresIn(ln *line) bool {
 			return true
 		}
 	}
-	return false
+	return s.figuresAtEnd(ln) >= 3
 }
 
 // cellsFollow reports whether after line i, which stands by itself (a row group,

@@ -215,6 +215,46 @@ func printTable(t *paper.Table) string {
 	return b.String()
 }
 
+func printAll(tables []paper.Table) string {
+	var b strings.Builder
+	for i := range tables {
+		b.WriteString(printTable(&tables[i]))
+	}
+	if b.Len() == 0 {
+		return "(none)\n"
+	}
+	return b.String()
+}
+
+// quarterTurned turns pages so that their text runs upwards. Heights in the
+// upright frame then have the other sign: nothing may depend on it.
+func quarterTurned(pages []paper.GlyphPage) []paper.GlyphPage {
+	f := words.Frame{Angle: 90}
+	turn := func(b paper.Box) paper.Box {
+		b = f.ToPage(b)
+		b.X0, b.X1 = b.X0+84000, b.X1+84000
+		return b
+	}
+	out := slices.Clone(pages)
+	for i := range out {
+		p := &out[i]
+		p.Page.Box = turn(p.Page.Box)
+		p.Glyphs, p.Rules, p.Images = slices.Clone(p.Glyphs), slices.Clone(p.Rules), slices.Clone(p.Images)
+		for k := range p.Glyphs {
+			g := &p.Glyphs[k]
+			o := turn(paper.Box{X0: g.Origin.X, Y0: g.Origin.Y, X1: g.Origin.X, Y1: g.Origin.Y})
+			g.Box, g.Origin, g.Angle = turn(g.Box), paper.Point{X: o.X0, Y: o.Y0}, 90
+		}
+		for k := range p.Rules {
+			p.Rules[k] = turn(p.Rules[k])
+		}
+		for k := range p.Images {
+			p.Images[k] = turn(p.Images[k])
+		}
+	}
+	return out
+}
+
 type gridCase struct{ head, picture, want string }
 
 func readCases(t testing.TB, path string) []gridCase {
@@ -257,21 +297,23 @@ func TestPictures(t *testing.T) {
 				t.Errorf("%s: number %s stands twice", file, number)
 			}
 			seen[number] = true
-			var got strings.Builder
-			for _, table := range readPages(drawPicture(c.picture)) {
-				checkTable(t, &table)
-				got.WriteString(printTable(&table))
+			pages := drawPicture(c.picture)
+			tables := readPages(pages)
+			for i := range tables {
+				checkTable(t, &tables[i])
 			}
-			if got.Len() == 0 {
-				got.WriteString("(none)\n")
-			}
-			fmt.Fprintf(&out, "=== %s\n%s\n---\n%s\n", c.head, c.picture, got.String())
+			got := printAll(tables)
+			turned := printAll(readPages(quarterTurned(pages)))
+			fmt.Fprintf(&out, "=== %s\n%s\n---\n%s\n", c.head, c.picture, got)
 			if *update {
 				continue
 			}
 			t.Run(filepath.Base(file)+"/"+number, func(t *testing.T) {
-				if diff := cmp.Diff(c.want, got.String()); diff != "" {
+				if diff := cmp.Diff(c.want, got); diff != "" {
 					t.Errorf("%s\n%s\n%s", c.head, c.picture, diff)
+				}
+				if diff := cmp.Diff(c.want, turned); diff != "" {
+					t.Errorf("%s, printed upwards\n%s\n%s", c.head, c.picture, diff)
 				}
 			})
 		}

@@ -192,7 +192,39 @@ func (rd *reader) goesOnAbove(i int, r *run) bool {
 // stubOnly reports whether a line has only one run, at the left edge.
 func (rd *reader) stubOnly(i int) bool {
 	rs := rd.s.runs(&rd.lines[i], 100)
-	return len(rs) == 1 && rs[0].x0 < rd.area.x0+rd.area.width()/4
+	return len(rs) == 1 && rs[0].x0 < rd.area.x0+rd.area.width()/4 && !rd.wordPerColumn(i)
+}
+
+// wordPerColumn reports whether the words of line i stand one over each of the
+// cells of a line below it, as narrow headings a space apart do: "n Mean SD n
+// Mean SD".
+func (rd *reader) wordPerColumn(i int) bool {
+	toks := rd.lines[i].toks
+	if len(toks) < 3 {
+		return false
+	}
+	for k := i + 1; k < len(rd.lines) && k <= i+3; k++ {
+		cells := rd.s.atoms(&rd.lines[k])
+		if len(cells) < len(toks) || !rd.isData(k) {
+			continue
+		}
+		c, over := 0, 0
+		for _, t := range toks {
+			w := &rd.s.toks[t]
+			for c < len(cells) && cells[c].x1 <= w.x0 {
+				c++
+			}
+			if c == len(cells) {
+				break
+			}
+			if cells[c].x0 < w.x1 {
+				over++
+				c++
+			}
+		}
+		return over == len(toks)
+	}
+	return false
 }
 
 // headLines counts the lines of the column headings: down to the last rule of
