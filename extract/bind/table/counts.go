@@ -49,7 +49,7 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	return g
 }
 
-var percentThenN = pattern.MustCompile(`(?i)(?:%|\bper ?cent(?:age)?)[^(\[]{0,20}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|\bn\s*[(\[]\s*rate\b`)
+var percentThenN = pattern.MustCompile(`(?i)(?:%|\bper ?cent(?:age)?)[^(\[]{0,20}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|^\s*%[^(\[]{1,80}[(\[]\s*(?:n|no\.?|number)\s*[)\]]|\bn\s*[(\[]\s*rate\b`)
 
 // percentWithCount reports a heading, label, caption or note that announces a
 // percentage with its count in brackets: "% (n)".
@@ -88,6 +88,7 @@ func isWhole(v string) bool { return v != "" && !strings.ContainsAny(v, ".-") }
 type pairCell struct {
 	a, b float64
 	n    int // of its column; 0 unknown
+	aDec int // decimals printed in a
 	bDec int // decimals printed in b
 }
 
@@ -96,6 +97,9 @@ func (f *frame) rowEvidence(r int) countGrade {
 	cells, whole := f.pairsOf(r)
 	if len(cells) == 0 {
 		return countOpen
+	}
+	if sharesOf(cells) {
+		return countSure
 	}
 	if !whole {
 		return countNever // small means with small SDs fit by chance
@@ -146,6 +150,19 @@ func (f *frame) rowEvidence(r int) countGrade {
 	return countOpen
 }
 
+// sharesOf reports percentages with their counts, "75.9 (22)": every b is whole
+// and every a is its share of the column's n to the last digit printed.
+func sharesOf(cells []pairCell) bool {
+	some := false
+	for _, p := range cells {
+		if p.n == 0 || p.bDec > 0 || p.aDec == 0 && p.a != 0 || p.b > float64(p.n) || math.Abs(100*p.b/float64(p.n)-p.a) > 0.51*math.Pow(10, -float64(p.aDec)) {
+			return false
+		}
+		some = some || p.a > 0 && p.a < 100
+	}
+	return some && len(cells) > 1
+}
+
 // pairsOf gathers the "a (b)" cells of a row, and whether every a is whole.
 func (f *frame) pairsOf(r int) (cells []pairCell, whole bool) {
 	whole = true
@@ -168,6 +185,9 @@ func (f *frame) pairsOf(r int) (cells []pairCell, whole bool) {
 			}
 			p := pairCell{a: a, b: b}
 			p.n = f.denominator(e)
+			if _, frac, ok := strings.Cut(e.value.Value, "."); ok {
+				p.aDec = len(frac)
+			}
 			if _, frac, ok := strings.Cut(e.spreads[0].value.Value, "."); ok {
 				p.bDec = len(frac)
 			}

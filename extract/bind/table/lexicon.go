@@ -1,6 +1,8 @@
 package table
 
 import (
+	"strings"
+
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
@@ -20,6 +22,7 @@ type lexicon struct {
 	changes  map[string]bool
 	found    map[patternKey]bool
 	marked   map[noteKey][]statement
+	never    map[string]bool // short forms that mean no statistic in this paper
 }
 
 type noteKey struct {
@@ -42,6 +45,7 @@ func (x *lexicon) phrase(s string) *phrase {
 	p, ok := x.phrases[s]
 	if !ok {
 		v := parsePhrase(grammar.Text{S: s})
+		v.unname(x.never)
 		p = &v
 		x.phrases[s] = p
 	}
@@ -52,10 +56,28 @@ func (x *lexicon) phrase(s string) *phrase {
 func (x *lexicon) name(s string) string {
 	n, ok := x.names[s]
 	if !ok {
-		n = nameOf(s)
+		n = x.keep(s)
 		x.names[s] = n
 	}
 	return n
+}
+
+// keep is nameOf with the short forms that mean no statistic left in.
+func (x *lexicon) keep(s string) string {
+	t := s
+	for _, sh := range shorts {
+		if x.never[sh.form] {
+			t = sh.word.ReplaceAllString(t, "x"+sh.form)
+		}
+	}
+	if t == s {
+		return nameOf(s)
+	}
+	t = nameOf(t)
+	for _, sh := range shorts {
+		t = strings.ReplaceAll(t, "x"+sh.form, sh.form)
+	}
+	return t
 }
 
 // isTime reports that a folded heading names a time: see isTimeHeading.

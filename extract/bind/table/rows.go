@@ -307,14 +307,31 @@ func (f *frame) findPath(r, c int) []label {
 		if m.cells[c].empty() && len(m.cells[c].marks) == 0 {
 			continue
 		}
-		if i > 0 && f.mid[i-1].row == m.row-1 && !f.mid[i-1].cells[c].empty() {
-			path = []label{f.mid[i-1].cells[c], m.cells[c]} // a whole new head
+		if f.onlyN(m.cells[c]) {
+			if k := len(path) - 1; k >= 0 && f.onlyN(path[k]) {
+				path = path[:k]
+			}
+			path = append(append([]label{}, path...), m.cells[c]) // below what the columns hold
+			continue
+		}
+		last := label{}
+		if i > 0 && f.mid[i-1].row == m.row-1 {
+			last = f.mid[i-1].cells[c]
+		}
+		if !last.empty() && !f.onlyN(last) {
+			path = []label{last, m.cells[c]} // a whole new head
 			continue
 		}
 		path = f.overlay(f.heads[c], m.cells[c])
+		if !last.empty() {
+			path = append(path, last)
+		}
 	}
 	return path
 }
+
+// onlyN reports a heading that gives a sample size and nothing else.
+func (f *frame) onlyN(l label) bool { return l.cell != nil && f.reads[l.cell].phrase.onlyN }
 
 // covering keeps the headings that stand over all columns of a wide cell.
 func covering(path []label, cell *paper.Cell) []label {

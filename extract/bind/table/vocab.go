@@ -18,6 +18,7 @@ type vocabulary struct {
 
 func newVocabulary(doc *paper.Document) *vocabulary {
 	v := &vocabulary{lex: newLexicon(), text: map[string]bool{}, arms: map[string]bool{}, groups: map[string]bool{}}
+	v.lex.never = shortForms(doc)
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		if b.Kind == paper.TableBlock && b.Table != nil {
@@ -74,3 +75,66 @@ var noGroup = map[string]bool{"age": true, "study": true, "both": true, "each": 
 	"income": true, "gender": true, "sex": true, "weight": true, "symptom": true, "pain": true, "outcome": true, "time": true, "baseline": true, "not": true, "homogeneous": true, "randomized": true, "randomised": true}
 
 func (v *vocabulary) knows(word string) bool { return v.text[word] }
+
+// shorts are short forms of ratios that are as often something else.
+var shorts = []struct {
+	form        string
+	word        *pattern.Pattern
+	other       *pattern.Pattern // what else it is short for
+	asStatistic *pattern.Pattern // where the paper speaks of the ratio
+}{
+	{"HR", pattern.MustCompile(`\bHR\b`), pattern.MustCompile(`(?i)\bheart[- ]rates?\b`), pattern.MustCompile(`(?i)\bhazard`)},
+	{"RR", pattern.MustCompile(`\bRR\b`), pattern.MustCompile(`(?i)\brespirat(?:ory|ion) rates?\b|\bRR intervals?\b`), pattern.MustCompile(`(?i)\brelative risks?\b|\brisk ratios?\b|\brate ratios?\b`)},
+}
+
+// shortForms gives the short forms that the paper uses for something else than
+// a ratio, and nowhere for the ratio.
+func shortForms(doc *paper.Document) map[string]bool {
+	out := map[string]bool{}
+	for _, sh := range shorts {
+		other, ratio := false, false
+		look := func(s string) {
+			other = other || sh.other.MatchString(s)
+			ratio = ratio || sh.asStatistic.MatchString(s)
+		}
+		for i := range doc.Blocks {
+			b := &doc.Blocks[i]
+			if b.Kind == paper.Reference {
+				continue
+			}
+			if b.Table == nil {
+				look(b.Text.S)
+				continue
+			}
+			look(b.Table.Caption.S)
+			for k := range b.Table.Notes {
+				look(b.Table.Notes[k].Text.S)
+			}
+			for k := range b.Table.Cells {
+				look(b.Table.Cells[k].Text.S)
+			}
+		}
+		if other && !ratio {
+			out[sh.form] = true
+		}
+	}
+	return out
+}
+
+// unname takes the statistic from short forms that mean none in the paper.
+func (p *phrase) unname(never map[string]bool) {
+	if len(never) == 0 {
+		return
+	}
+	for i := range p.pairs {
+		q := &p.pairs[i]
+		if q.Statistic != "ratio" || !never[strings.TrimSpace(q.text[q.StatisticAt.Start:q.StatisticAt.End])] {
+			continue
+		}
+		q.Statistic, q.Measure, q.Model = "", "", ""
+		if q.Spread == "" {
+			p.terms--
+			p.onlyTerms = false
+		}
+	}
+}
