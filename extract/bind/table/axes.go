@@ -85,7 +85,7 @@ func (f *frame) findAxes() {
 	if f.armRows && stubArm && stubCol == f.stub-1 {
 		f.nameRows()
 	}
-	f.outcomeCols = !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows || f.unitColumns())
+	f.outcomeCols = !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows && !f.measuredGroups() || f.unitColumns())
 	if f.outcomeCols {
 		if 5*f.timeRows() < 4*rows {
 			f.nameRows()
@@ -94,6 +94,17 @@ func (f *frame) findAxes() {
 		return
 	}
 	f.colArms = !f.armRows && (colArm || f.namedColumns() >= 2)
+}
+
+// measuredGroups reports that the labels over the rows name what was measured,
+// with its unit, so that the columns do not.
+func (f *frame) measuredGroups() bool {
+	for r := f.head; r < f.tab.Rows; r++ {
+		if ln := &f.lines[r]; ln.kind == lineGroup && len(ln.labels) > 0 && f.lex.unit(ln.labels[0].text) != "" {
+			return true
+		}
+	}
+	return false
 }
 
 // timeRows counts the data rows that a time labels and nothing else.

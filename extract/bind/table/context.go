@@ -289,7 +289,7 @@ func (f *frame) captionContext(e *estimate, x *context) {
 		case len(ts) == 1 && strings.Contains(fold(ts[0]), " and "):
 		case len(ts) == 1:
 			x.time, x.timeAt, x.timeFrom, x.timeGuess = ts[0], l, "caption", true
-		case baselineCaption.MatchString(capt) && len(ts) == 0:
+		case baselineCaption.MatchString(fromBaseline.ReplaceAllString(capt, " change ")) && len(ts) == 0:
 			x.time, x.timeAt, x.timeFrom, x.timeGuess = "baseline", l, "caption", true
 		}
 	}

@@ -101,7 +101,7 @@ func (f *frame) differsWithin(path []label) bool {
 				same++
 			case kind == partArm || kind == partOther || kind == partContrast:
 				return false
-			default:
+			case kind == partTime || f.columnRole(f.head, k).kind == roleBoth:
 				values++
 			}
 		}

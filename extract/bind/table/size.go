@@ -32,6 +32,9 @@ func number(n grammar.Number) int {
 
 // lastN gives the last n = 42 of a label.
 func (x *lexicon) lastN(l label) (int, bool) {
+	if nBySex.MatchString(l.raw) {
+		return 0, false // two numbers
+	}
 	p := x.phrase(l.raw)
 	for i := len(p.ns) - 1; i >= 0; i-- {
 		if end := p.ns[i].End; end < len(l.raw) && (l.raw[end] == 'M' || l.raw[end] == 'F') {

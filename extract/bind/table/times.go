@@ -66,7 +66,7 @@ func captionOutcome(s string) string {
 	return nameOf(s)
 }
 
-var pointInTime = pattern.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\bstudy end\b|\bendpoint\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
+var pointInTime = pattern.MustCompile(`(?i)(?:\b(?:at|after|by|from|post)\s+(?:the )?(?:\d|one|two|three|four|five|six|seven|eight|nine|ten|twelve)|\b(?:weeks?|months?|days?|years?|hours?|visits?)\s+\d|\bbaseline\b|\bfollow-?up\b|\bend of\b|\bstudy end\b|\b\d+[- ](?:weeks?|months?|days?|years?|hours?)[- ](?:follow|post|after))`)
 
 // rowTime finds a time point in a row label that also names an outcome. A
 // period that belongs to the outcome ("pain in the previous 7 days", "costs in
@@ -99,7 +99,7 @@ func timesIn(s string) []string {
 		low := fold(m)
 		if !hasDigit(low) {
 			switch low {
-			case "baseline", "screening", "follow-up", "followup", "discharge", "admission", "study end", "endpoint":
+			case "baseline", "screening", "follow-up", "followup", "discharge", "admission", "study end", "at study end":
 			default:
 				if !strings.HasPrefix(low, "end of") && !strings.HasPrefix(low, "pre") && !strings.HasPrefix(low, "post") || len(low) < 6 {
 					continue
