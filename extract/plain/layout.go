@@ -238,11 +238,40 @@ func (p *bodyPlacer) row(row []rowCell) []spot {
 				spots[k] = spot{k, 1, 1}
 			}
 		}
+	case p.underEstimates(row, spots):
 	default:
 		p.short(row, spots)
 	}
 	p.below(row, spots)
 	return spots
+}
+
+// underEstimates places a row of intervals alone below the estimates of the row
+// above: "219 | 99.5 | 4.34" over "(97.5 – 100) | (3.95 – 4.76)". Columns that
+// hold nothing but whole numbers are counts, which have no interval.
+func (p *bodyPlacer) underEstimates(row []rowCell, spots []spot) bool {
+	for _, c := range row {
+		if c.kind != interval {
+			return false
+		}
+	}
+	var under []int
+	for c := 1; p.above != nil && c < p.cols; c++ {
+		if p.above[c] == nil || p.above[c].width != 1 {
+			continue
+		}
+		body := &p.body[c]
+		if k := p.kinds[c]; (k == whole || k == decimal || k == percent || k == pvalue) && body[decimal]+body[percent]+body[pvalue] > 0 {
+			under = append(under, c)
+		}
+	}
+	if len(row) == 0 || len(under) != len(row) {
+		return false
+	}
+	for k, c := range under {
+		spots[k] = spot{c, 1, 1}
+	}
+	return true
 }
 
 // below lets the cells of the row above reach down over the columns that this
