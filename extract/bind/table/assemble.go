@@ -133,7 +133,7 @@ func (a *assembly) attach(sp spread) {
 // join hangs the spread on the estimate; a lower and an upper bound in columns
 // of their own make one interval.
 func (a *assembly) join(e *estimate, sp spread) {
-	if sp.shape == shapePlain && (sp.own.kind == roleBound || a.pairOfBounds(sp)) {
+	if sp.shape == shapePlain && (sp.own.kind == roleBound || a.pairOfBounds(sp)) || sp.shape == shapeBracket && a.pairOfBounds(sp) {
 		for i := range e.spreads {
 			o := &e.spreads[i]
 			if o.shape == shapeInterval && o.own.label.cell == sp.own.label.cell && o.upper.IsZero() || o.own.kind == roleBound && o.upper.IsZero() && o.shape == shapeInterval {

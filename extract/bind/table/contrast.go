@@ -14,6 +14,10 @@ func parseVs(s string) []string {
 	if m == nil {
 		return nil
 	}
+	if k := strings.LastIndexByte(m[1], '('); k >= 0 && !strings.Contains(m[1][k:], ")") && k+1 < len(m[1]) {
+		m[1] = m[1][k+1:] // "Mass difference (syrup − water), kg"
+		m[2] = cutAt(m[2], ")")
+	}
 	a, b := strings.Trim(m[1], edge+"()"), strings.Trim(m[2], edge)
 	b = strings.Trim(cutAt(b, " (", " for ", " at ", ", "), edge+"()")
 	if !hasLetter(a) && !hasDigit(a) || !hasLetter(b) && !hasDigit(b) || len(a) > 80 || len(b) > 80 {

@@ -300,13 +300,14 @@ func (f *frame) headCell(r, c int) *paper.Cell {
 	if f.blank(r+1, c) && !f.headBelow(r+1, c) {
 		return cell
 	}
-	if f.standsAlone(r+1, c) {
-		return cell
-	}
+	alone := f.standsAlone(r+1, c)
 	for k := c - 1; k >= f.stub; k-- {
 		left := f.grid[r][k]
 		if left == nil || isBlankText(left.Text.S) {
 			continue
+		}
+		if alone && !f.standsAlone(r+1, k) {
+			return cell
 		}
 		if left.ColSpan > 1 && f.aloneInRow(r, left) {
 			return left

@@ -57,7 +57,7 @@ func (f *frame) classify(l label) part {
 		p.kind, p.name = partEmpty, ""
 	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
 		p.kind, p.name = partEmpty, ""
-	case isContrast(low) || f.lex.compares(l.text) && !f.isArm(low):
+	case isContrast(low) || f.lex.compares(l.text) && !f.isArm(low) || f.armMinusArm(p.name):
 		p.kind = partContrast
 	case f.lex.isTime(low):
 		p.kind, p.name = partTime, tidyTime(l.text)
@@ -73,6 +73,14 @@ func (f *frame) classify(l label) part {
 	return p
 }
 
+var dashed = pattern.MustCompile(`^(.{3,40}?)(?: ?[—−] ?| [-–] )(.{3,40})$`)
+
+// armMinusArm reports one arm less another: "Syrup − control".
+func (f *frame) armMinusArm(name string) bool {
+	m := dashed.FindStringSubmatch(name)
+	return m != nil && f.isArm(fold(m[1])) && f.isArm(fold(m[2])) && fold(m[1]) != fold(m[2])
+}
+
 var countOf = pattern.MustCompile(`^\s*(?:no\.?|number|nr\.?|n\.?) of `)
 
 // rowPart classifies a label before a row: there an n does not make an arm, and
@@ -85,7 +93,7 @@ func (f *frame) rowPart(l label) part {
 		if !f.armRows {
 			p.kind = partOther
 		}
-	case p.kind == partTime && !bareTime(low) && !f.phasePair(low):
+	case p.kind == partTime && (measuredTime.MatchString(low) || !bareTime(low) && !f.phasePair(low)):
 		p.kind, p.name = partOther, f.lex.name(l.text)
 	}
 	return p
@@ -111,6 +119,9 @@ func (f *frame) phasePair(low string) bool {
 	return false
 }
 
+// measuredTime is a time that was measured: "Time (s)" before a row.
+var measuredTime = pattern.MustCompile(`^(?:total |mean )?times?(?:,| \()\s*(?:ms|s|secs?|seconds?|mins?|minutes?)\b`)
+
 // overValues reports that estimates with spreads stand under a heading, so that
 // "Men" names a group and no number of men.
 func (f *frame) overValues(l label) bool {
@@ -129,10 +140,11 @@ func (f *frame) overValues(l label) bool {
 func hasArmShape(s string) bool { return len(s) < 120 }
 
 var (
-	spaceBracket = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
-	meanBracket  = pattern.MustCompile(`(?i)\(\s*(?:(?:adjusted|unadjusted|estimated|marginal|ls|least[- ]squares?)\s+)*(?:means?|medians?)[\s±,;]*\)`)
-	loneMark     = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
-	edge         = " ,;:-–—/.±"
+	spaceBracket   = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
+	meanBracket    = pattern.MustCompile(`(?i)\(\s*(?:(?:adjusted|unadjusted|estimated|marginal|ls|least[- ]squares?)\s+)*(?:means?|medians?)[\s±,;]*\)`)
+	percentBracket = pattern.MustCompile(`[(]\s*%\s*[)]`)
+	loneMark       = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
+	edge           = " ,;:-–—/.±"
 )
 
 // lettersPercent is a short name whose bracket holds only a percent sign: the
@@ -147,6 +159,9 @@ func nameOf(s string) string {
 	t := stripTerms(clean(s))
 	t = worded.ReplaceAllString(t, " ")
 	t = meanBracket.ReplaceAllString(t, " ")
+	if nPhrase.MatchString(s) {
+		t = percentBracket.ReplaceAllString(t, " ") // of the counts below
+	}
 	for k := 0; k < 3; k++ {
 		t = spaceBracket.ReplaceAllString(t, " ")
 	}

@@ -58,6 +58,9 @@ var variants = []struct {
 }{
 	{pattern.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
 	{pattern.MustCompile(`\b[uU]OR\b`), "OR "},
+	// The mean as a letter with a bar over it; s beside it is the sample's SD.
+	{pattern.MustCompile("[xXχ][\u0304\u0305\u00af\u02c9]\\s*±\\s*(?:[sS]\\b|SD\\b|S[.]D[.])"), "mean±SD"},
+	{pattern.MustCompile("[xXχ][\u0304\u0305\u00af\u02c9]\\s*±\\s*(?:[sS]\\b|SD\\b|S[.]D[.])"), "M±SD"},
 	{pattern.MustCompile(`(?i)\bq1\s*(?:[-–—:;,/~]|to|and)\s*q3\b`), "IQR"},
 	{pattern.MustCompile(`(?i)\b(?:p|c)?25(?:th)?(?: ?%| percentile)?\s*(?:[-–—:;,/~]|to|and)\s*(?:p|c)?75(?:th)?(?: ?%| ?percentiles?| ?centiles?)`), "IQR"},
 	{pattern.MustCompile(`(?i)\b(?:lower|first|1st)\s*(?:[-–—:;,/~]|to|and)\s*(?:upper|third|3rd) quartiles?\b`), "IQR"},

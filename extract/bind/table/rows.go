@@ -58,14 +58,14 @@ func (f *frame) findLines() {
 		}
 		if ln.kind == lineHead {
 			f.addMidHead(r)
-			if len(own) > 0 {
+			if len(own) > 0 && !(len(own) == 1 && overLabels.MatchString(own[0].text)) {
 				ln.labels = own
 			}
 			lastData = -1
 			continue
 		}
-		if f.stub > 1 && len(own) > 1 && len(carried) > 0 && unitAlone.MatchString(own[0].text) {
-			own[0].text, own[0].raw = clean(carried[0].text+" "+own[0].text), clean(carried[0].raw+" "+own[0].raw)
+		if len(own) > 1 {
+			own[0] = f.outerLabel(r, own[0], carried)
 		}
 		switch {
 		case len(own) == 0 && ln.kind == lineData && lastData >= 0:
@@ -94,8 +94,43 @@ func (f *frame) findLines() {
 	f.nest()
 }
 
+// overLabels is a heading over the labels of the rows.
+var overLabels = pattern.MustCompile(`(?i)^(?:outcomes?|variables?|characteristics?|parameters?|items?|factors?|measures?)(?: variables?| measures?)?:?$`)
+
 // unitAlone is the second line of a label that holds only its unit: "(mg/mL)".
 var unitAlone = pattern.MustCompile(`^[(\[][^()\[\]]{1,20}[)\]]$`)
+
+// outerLabel completes the label of several rows that is printed in their first
+// column piece by piece: "Protein" over "(mg/mL)", "All colonies" over "(N = 42)".
+func (f *frame) outerLabel(r int, l label, carried []label) label {
+	if len(carried) > 0 && unitAlone.MatchString(l.text) {
+		if strings.HasSuffix(carried[0].text, l.text) {
+			return carried[0]
+		}
+		return joinTwo(carried[0], l)
+	}
+	if next := f.pieceBelow(r); next != nil {
+		return joinTwo(l, f.label(next))
+	}
+	return l
+}
+
+func joinTwo(a, b label) label {
+	a.text, a.raw = clean(a.text+" "+b.text), clean(a.raw+" "+b.raw)
+	return a
+}
+
+// pieceBelow gives the cell below the outer label of row r where it only adds a
+// unit or an n in brackets.
+func (f *frame) pieceBelow(r int) *paper.Cell {
+	if r+1 >= f.tab.Rows || f.cellAt(r, 0) == nil || f.cellAt(r, 0).RowSpan > 1 || f.blank(r+1, 1) {
+		return nil
+	}
+	if below := f.cellAt(r+1, 0); below != nil && unitAlone.MatchString(f.label(below).text) {
+		return below
+	}
+	return nil
+}
 
 // spreadsUnder reports that row r prints, under a label that goes on with the
 // one above, only the spreads of the row above: "Flight time," over "12.4",
@@ -104,8 +139,7 @@ func (f *frame) spreadsUnder(r, above int, own []label) bool {
 	if above != r-1 || len(own) != 1 || len(f.lines[above].labels) == 0 {
 		return false
 	}
-	first := []rune(own[0].text)
-	if len(first) == 0 || !unicode.IsLower(first[0]) {
+	if !goesOn(own[0].text) {
 		return false
 	}
 	found := 0
@@ -127,6 +161,13 @@ func (f *frame) spreadsUnder(r, above int, own []label) bool {
 	return found > 0
 }
 
+// goesOn reports a text that begins in the middle of a sentence, and not with a
+// name such as pO2 or mRNA.
+func goesOn(s string) bool {
+	first := []rune(s)
+	return len(first) > 0 && unicode.IsLower(first[0]) && (len(first) < 2 || !unicode.IsUpper(first[1]) && !unicode.IsDigit(first[1]))
+}
+
 // wraps reports that row r only goes on with the label of the row above, beside
 // second lines of its p values.
 func (f *frame) wraps(r, above int, own []label) bool {
@@ -141,9 +182,8 @@ func (f *frame) wraps(r, above int, own []label) bool {
 			return false
 		}
 	}
-	first := []rune(own[0].text)
 	last := f.lines[above].labels[len(f.lines[above].labels)-1].text
-	return len(first) > 0 && unicode.IsLower(first[0]) || strings.HasSuffix(last, ",") || strings.HasSuffix(last, "-")
+	return goesOn(own[0].text) && f.grid[r][0].ColSpan <= f.stub || strings.HasSuffix(last, ",") || strings.HasSuffix(last, "-")
 }
 
 // underP reports that the column beside p values, under their heading or next
@@ -273,7 +313,7 @@ func (f *frame) realHeading(r int, own []label) bool {
 		}
 		p := f.reads[cell].phrase
 		switch {
-		case p.onlyTerms || p.onlyN || p.terms > 0:
+		case p.onlyTerms || p.onlyN || p.terms > 0 || p.armLike:
 			terms++
 		case f.lex.isTime(fold(cell.Text.S)):
 			times++

@@ -207,6 +207,9 @@ func (f *frame) labelSize(e *estimate, x *context) (size, bool) {
 			if _, _, inHead := f.headingN(e.row, e.col); inHead && f.armsInColumns() {
 				continue // a total beside arms with n's of their own
 			}
+			if f.armRows && i < len(ln.labels)-1 && f.rowPart(ln.labels[len(ln.labels)-1]).kind == partArm {
+				continue // of all arms in the rows of one outcome
+			}
 			s.total = x.contrast || f.armsInColumns()
 			return s, true
 		}

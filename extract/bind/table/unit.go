@@ -48,6 +48,9 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if x.timeAt.cell != nil && l.cell == x.timeAt.cell && x.timeFrom != "row label" && hasDigit(l.text) && !unitBracket.MatchString(l.text) {
 			continue // "Week 0 to 6 weeks": the unit of the time
 		}
+		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && nPhrase.MatchString(l.text) && percentBracket.MatchString(l.text) {
+			continue // "Syrup n = 42 (%)": of the counts below
+		}
 		if u := f.lex.unit(l.text); u != "" && !(u == "%" && f.countsBeside(l)) {
 			x.unit, x.unitAt = u, l
 			return
@@ -79,6 +82,9 @@ func unitIn(s string) string {
 		}
 	}
 	t := nameOf(s)
+	if m := unitBracket.FindStringSubmatch(t); m != nil && isUnit(clean(m[1])) {
+		return clean(m[1]) // "Flight time (min ± SEM)"
+	}
 	if m := unitComma.FindStringSubmatch(t); m != nil && isUnit(clean(m[1])) {
 		return clean(m[1])
 	}
