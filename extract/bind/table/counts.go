@@ -246,7 +246,7 @@ func (f *frame) sameDenominator(cells []pairCell) bool {
 		if p.n == 0 || p.b == 0 {
 			continue
 		}
-		half := 0.5 * math.Pow(10, -float64(p.bDec))
+		half := 0.51 * math.Pow(10, -float64(p.bDec)) // 46.049 is printed as 46.1 too
 		lo, hi := 100*p.a/(p.b+half), 100*p.a/math.Max(p.b-half, 1e-9)
 		if lo > float64(p.n)+0.5 || math.Floor(hi) < math.Ceil(lo) || lo < 0.75*float64(p.n) {
 			return false

@@ -295,6 +295,9 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		s := &all[i]
 		fits := fitting(s, sp, hint)
 		isCount, strong := countStatement(s)
+		if strong && sp.shape == shapeBracket && counts > countImpossible && allSigned(fits) {
+			fits = nil // "mean ± SD or n (%)": the bracket holds the percentage
+		}
 		if isCount && sp.shape == shapeBracket {
 			switch {
 			case len(fits) == 0 && strong && counts == countImpossible && s.rank <= rankGroup:
@@ -329,6 +332,16 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		return rd
 	}
 	return reading{given: result.Unstated}
+}
+
+// allSigned reports spreads that a statement prints behind ± only.
+func allSigned(fits []pair) bool {
+	for _, q := range fits {
+		if !q.Sign {
+			return false
+		}
+	}
+	return len(fits) > 0
 }
 
 // fitting gives the pairs of a statement whose kind of spread can be printed in

@@ -149,6 +149,7 @@ var nMention = pattern.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[
 
 var (
 	nOfNext  = pattern.MustCompile(`\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in)\s+(?:the )?$`)
+	noCount  = pattern.MustCompile(`(?:[-–—/.<>=≤≥+±]|\b(?:weeks?|days?|months?|years?|hours?|visits?|phases?|periods?|times?|tables?|figures?|figs?\.?|grades?|stages?|to|and|versus|than|score))\s*$`) // before a number that counts nobody: "weeks 1–3 for syrup"
 	nextName = pattern.MustCompile(`^\s+(?:for|in)\s+\w`)
 )
 
@@ -191,11 +192,20 @@ func nForArm(s, arm string, others []string) (int, bool) {
 	ms := nMention.FindAllStringSubmatchIndex(before, -1)
 	if len(ms) > 0 {
 		m := ms[len(ms)-1]
-		if m[6] >= 0 && !strings.ContainsAny(before[m[1]:], ".;,0123456789") {
+		if m[6] >= 0 && !strings.ContainsAny(before[m[1]:], ".;,0123456789") && !countsNobody(before, m, start) {
 			return intAt(before, m)
 		}
 	}
 	return 0, false
+}
+
+// countsNobody reports a bare "3 for" whose number belongs to words before it.
+func countsNobody(before string, m []int, start int) bool {
+	said := before[m[0]:m[1]]
+	if !strings.HasSuffix(said, " for") && !strings.HasSuffix(said, " in") {
+		return false
+	}
+	return m[0] == 0 && start > 0 || noCount.MatchString(before[:m[0]])
 }
 
 // wordIndex finds name in low as whole words.

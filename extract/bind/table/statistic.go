@@ -12,7 +12,7 @@ import (
 // such a spread is usually printed with.
 func (f *frame) statisticOf(e *estimate, rd *reading, x *context, all []statement) (st result.Statistic, measure, model string, assumed bool) {
 	st, measure, model = result.Statistic(rd.pair.Statistic), rd.pair.Measure, rd.pair.Model
-	if s, m, mo := nearStatistic(all, rankGroup); s != "" && outranks(s, st) {
+	if s, m, mo := nearStatistic(all, rankGroup); s != "" && outranks(s, st) && !(s == result.Median && st == result.Mean && (rd.given == result.SD || rd.given == result.SE)) {
 		st = s
 		if m != "" {
 			measure = m
