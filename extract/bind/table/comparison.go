@@ -167,31 +167,31 @@ func (b *binder) categorySize(r *result.Result, f *frame, e *estimate, x *contex
 	if n == 0 {
 		return false
 	}
+	ref := f.referenceRow(e)
+	if ref < 0 {
+		return false // counts of events, not of the compared
+	}
 	b.setN(r, s, f, x)
+	if n2, s2 := f.countAt(ref, col); n2 > 0 {
+		r.N2 = n2
+		r.Sources = append(r.Sources, result.Source{Field: "n2", Place: s2.place, Text: s2.text, From: "the reference row"})
+	}
+	return true
+}
+
+// referenceRow finds the row that the categories of an estimate's group are
+// compared with; -1 where there is none.
+func (f *frame) referenceRow(e *estimate) int {
 	for q := f.head; q < f.tab.Rows; q++ {
 		ln := &f.lines[q]
 		if q == e.row || ln.kind != lineData || len(ln.groups) != len(f.lines[e.row].groups) || !prefix(ln.groups, f.lines[e.row].groups) {
 			continue
 		}
-		cell := f.grid[q][e.col]
-		if cell == nil || !isReference(f.reads[cell]) {
-			continue
+		if cell := f.grid[q][e.col]; cell != nil && isReference(f.reads[cell]) {
+			return q
 		}
-		if n2, s2 := f.countAt(q, col); n2 > 0 {
-			r.N2 = n2
-			r.Sources = append(r.Sources, result.Source{Field: "n2", Place: s2.place, Text: s2.text, From: "the reference row"})
-		}
-		break
 	}
-	return true
-}
-
-func joinLabels(ls []label) string {
-	var out []string
-	for _, l := range ls {
-		out = append(out, l.text)
-	}
-	return strings.Join(out, " ")
+	return -1
 }
 
 // countAt reads a count, alone or with its percentage, from a cell.
@@ -219,4 +219,12 @@ func isReference(rd *cellReading) bool {
 	}
 	v, ok := vs[0].Estimate.Float()
 	return ok && v == 1
+}
+
+func joinLabels(ls []label) string {
+	var out []string
+	for _, l := range ls {
+		out = append(out, l.text)
+	}
+	return strings.Join(out, " ")
 }

@@ -113,6 +113,10 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if f.general(p) {
 				continue
 			}
+			if p.kind == partOther && modelHead.MatchString(p.name) {
+				x.aside = joinPath([]string{x.aside, p.name}, ", ")
+				continue
+			}
 			if (f.armRows || f.outcomeCols) && len(times) > 0 && !hasLetter(p.name) {
 				times[len(times)-1] += " " + p.name
 				continue
@@ -158,7 +162,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	} else if len(others) > 0 && len(others) < len(arms) {
 		// One heading is an arm by name: the others say what it is about.
 		arms = without(arms, others)
-		x.aside = joinPath(others, ", ")
+		x.aside = joinPath(append([]string{x.aside}, others...), ", ")
 	}
 	if !f.colArms && !x.contrast && len(arms) > 0 {
 		x.outcome = joinPath(append([]string{x.outcome}, arms...), ", ")
@@ -218,6 +222,11 @@ func (f *frame) rowContext(e *estimate, x *context) {
 				outcome = append(outcome, p.name)
 			}
 		case p.kind == partArm && (f.armRows || !f.colArms):
+			if m := armBehind.FindStringSubmatch(p.name); m != nil {
+				outcome = append(outcome, clean(m[1]))
+				x.outcomeAt, x.outcomeFrom = l, "row label"
+				p.name = clean(m[2])
+			}
 			x.arm = joinPath([]string{x.arm, p.name}, ", ")
 			x.armAt, x.armFrom = l, "row label"
 		case p.kind == partArm && own && len(ln.groups) > 0 && nPhrase.MatchString(l.text):
@@ -276,6 +285,13 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	}
 	x.subgroup = joinPath(subs, ", ")
 }
+
+// modelHead is a heading over the estimates of one analysis, which names no arm.
+var modelHead = pattern.MustCompile(`(?i)^(?:(?:un|non-?)?adjusted |crude )?(?:uni|bi|multi)(?:ple |-)?varia(?:te|ble)\b|^(?:(?:un)?adjusted |crude )?(?:models?|analys[ei]s)(?: [a-z\d])?$|^(?:(?:logistic|linear|cox|poisson|multiple|ordinal|proportional|hazards?)[ -])+regression(?: analys[ei]s| models?)?$|^(?:per[- ]protocol|intention[- ]to[- ]treat)(?: analysis)?$`)
+
+// armBehind is a row label that names the arm in brackets behind what was
+// measured: "Colony mass (syrup group)".
+var armBehind = pattern.MustCompile(`(?i)^([^()]*[a-z][^()]*)[(]([^()]+? (?:groups?|arms?))[)]$`)
 
 // fromBaseline says what a change is measured from, not when.
 var fromBaseline = pattern.MustCompile(`(?i)\b(?:changes?|reductions?|decreases?|increases?|improvements?|differences?)(?: scores?)? (?:from|since|vs\.?|versus|relative to|compared (?:with|to)) (?:the )?baseline\b`)

@@ -202,8 +202,12 @@ var bareChange = pattern.MustCompile(`changes?\b|[δ∆]|\bdelta\b`)
 // phaseWord begins headings of the time before, during or after something.
 var phaseWord = map[string]bool{"pre": true, "post": true, "before": true, "after": true, "during": true, "preoperative": true, "postoperative": true, "pretreatment": true, "posttreatment": true, "pretest": true, "posttest": true}
 
+// abbreviated is a short form in brackets: "baseline (bl)".
+var abbreviated = pattern.MustCompile(`[(](?:[a-z]{2,3}|[a-z]\d)[)]`)
+
 // bareTime reports that nothing but a time stands in a folded label.
 func bareTime(low string) bool {
+	low = abbreviated.ReplaceAllString(low, " ")
 	rest := changeMark.ReplaceAllString(timeMark.ReplaceAllString(stripTerms(low), " "), " ")
 	for _, w := range words(rest) {
 		if !timeFiller[w] && hasLetter(w) {
@@ -217,4 +221,4 @@ var timeFiller = map[string]bool{"at": true, "after": true, "of": true, "the": t
 	"values": true, "score": true, "scores": true, "treatment": true, "intervention": true, "study": true, "week": true, "weeks": true, "month": true, "months": true, "day": true, "days": true, "year": true,
 	"years": true, "visit": true, "measurement": true, "assessment": true, "period": true, "time": true, "point": true, "start": true, "end": true, "h": true, "min": true, "hour": true, "hours": true,
 	"m": true, "w": true, "d": true, "vs": true, "versus": true, "minus": true, "mean": true, "results": true, "test": true, "data": true, "no": true, "only": true, "surgery": true, "operation": true,
-	"therapy": true, "exercise": true, "dose": true, "during": true, "within": true, "between": true, "infusion": true, "training": true, "follow": true, "up": true, "st": true, "nd": true, "rd": true, "th": true, "a": true, "b": true, "since": true, "randomisation": true, "randomization": true, "recruitment": true, "p": true, "for": true, "by": true, "one": true}
+	"therapy": true, "exercise": true, "dose": true, "during": true, "within": true, "between": true, "infusion": true, "training": true, "follow": true, "up": true, "st": true, "nd": true, "rd": true, "th": true, "a": true, "b": true, "bl": true, "since": true, "randomisation": true, "randomization": true, "recruitment": true, "p": true, "for": true, "by": true, "one": true}
