@@ -107,7 +107,10 @@ func obstacles() []obstacle {
 			return strings.Join(it.res.Evidence.Model, ", "), len(it.res.Evidence.Model) > 0 && !plainBaseline(it)
 		}},
 		{"clustered", "clustered data: SE·√n is not the SD", design("clustered")},
-		{"crossover", "a crossover design: the interval may rest on differences within the same units", design("crossover")},
+		{"crossover", "a crossover design: the interval may rest on differences within the same units", func(it *item) (string, bool) {
+			detail, yes := design("crossover")(it)
+			return detail, yes && it.res.GivenAs == result.CI // the SE of one arm's plain mean is SD/√n all the same
+		}},
 		{"bootstrap-interval", "a bootstrap interval: t and z do not apply", design("bootstrap")},
 		{"bayesian-interval", "a credible interval: t and z do not apply", design("bayesian")},
 		{"simultaneous-interval", "a simultaneous interval: wider than t for one mean", design("simultaneous")},
