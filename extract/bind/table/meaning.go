@@ -295,7 +295,7 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		s := &all[i]
 		fits := fitting(s, sp, hint)
 		isCount, strong := countStatement(s)
-		if strong && sp.shape == shapeBracket && counts > countImpossible && allSigned(fits) {
+		if strong && sp.shape == shapeBracket && counts > countImpossible && (allSigned(fits) || s.rank >= rankCaption && f.printsSigns()) {
 			fits = nil // "mean ± SD or n (%)": the bracket holds the percentage
 		}
 		if isCount && sp.shape == shapeBracket {
@@ -332,6 +332,18 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 		return rd
 	}
 	return reading{given: result.Unstated}
+}
+
+// printsSigns reports that spreads stand behind ± in the table.
+func (f *frame) printsSigns() bool {
+	for _, rd := range f.reads {
+		for i := range rd.cell.Values {
+			if rd.cell.Values[i].Part(grammar.KindPlusMinus) != nil {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // allSigned reports spreads that a statement prints behind ± only.

@@ -151,11 +151,15 @@ var (
 // letters are what was measured, not the statistic they may stand for elsewhere.
 var lettersPercent = pattern.MustCompile(`^\s*(?:VE|AUC|ER|RR|HR|VR)\s*\(\s*%\s*\)\s*$`)
 
+// spreadAndN is a bracket that announces the n behind a spread: "mean ± SD (n)".
+var spreadAndN = pattern.MustCompile(`(?i)(\b(?:sds?|sem?|ci)\b\)?)[,;]?\s*[(\[]\s*n\s*[)\]]`)
+
 // nameOf takes n's, statistics and levels out of a heading: what it names.
 func nameOf(s string) string {
 	if lettersPercent.MatchString(s) {
 		return clean(s)
 	}
+	s = spreadAndN.ReplaceAllString(s, "$1")
 	t := stripTerms(clean(s))
 	t = worded.ReplaceAllString(t, " ")
 	t = meanBracket.ReplaceAllString(t, " ")
@@ -231,7 +235,7 @@ func unbalanced(s string) string {
 	return strings.Trim(s, edge)
 }
 
-var contrastWord = pattern.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\btreatment effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
+var contrastWord = pattern.MustCompile(`(?i)\bdiff(?:erences?|s)?\b|\b(?:treatment|intervention|group) effects?\b|\beffect of\b|\bvs\.?\b|\bversus\b|\bcompared (?:with|to)\b|\bbetween[- ]groups?\b|\best\.? of (?:the )?effect\b|\bestimates? of (?:the )?(?:treatment )?effect\b|\beffect estimates?\b|\bminus\b`)
 
 func isContrast(low string) bool { return contrastWord.MatchString(low) }
 
@@ -244,7 +248,7 @@ func (f *frame) isArm(low string) bool {
 	return armWord.MatchString(low) && len(words(low)) <= 6 && f.lex.unit(low) == "" && !outcomeWord.MatchString(low)
 }
 
-var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect|(?:mental|motor|postural|balance|inhibitory|impulse|cognitive|executive|attention(?:al)?|emotional|glyca?emic|metabolic|diabetes|asthma|disease|symptom|weight|blood pressure|rate|birth|head|self|perceived|behaviou?ral) control)\b`)
+var outcomeWord = pattern.MustCompile(`(?i)\b(?:rate|score|duration|time|days|number|level|index|satisfaction|success|failure|adherence|compliance|cost|response|locus|pain|symptom|sessions?|received|effect|(?:mental|motor|postural|balance|inhibitory|impulse|cognitive|executive|attention(?:al)?|emotional|glyca?emic|metabolic|diabetes|asthma|disease|symptom|weight|blood pressure|rate|birth|head|self|perceived|behaviou?ral) control|age groups?|average)\b`)
 
 var onlyArmWord = pattern.MustCompile(`(?i)^(?:the )?(?:interventions?|treatments?|groups?|arms?|study groups?|regimens?|conditions?)$`)
 

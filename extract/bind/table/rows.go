@@ -37,7 +37,7 @@ type midHead struct {
 // findLines classifies every body row and nests the groups.
 func (f *frame) findLines() {
 	f.lines = make([]line, f.tab.Rows)
-	var carried []label
+	var carried, byCol []label
 	lastData := -1
 	for r := f.head; r < f.tab.Rows; r++ {
 		if f.rowBlank(r) {
@@ -76,6 +76,9 @@ func (f *frame) findLines() {
 		default:
 			ln.labels = own
 		}
+		if f.stub > 2 && ln.kind == lineData && len(own) > 0 {
+			ln.labels, byCol = f.deepLabels(r, own, byCol)
+		}
 		if ln.kind == lineData {
 			lastData = r
 		} else if ln.kind == lineGroup {
@@ -92,6 +95,40 @@ func (f *frame) findLines() {
 		}
 	}
 	f.nest()
+}
+
+// deepLabels gives the labels of row r in a table with three columns of them or
+// more: what is blank in front of its own goes on from the rows above, and an
+// outer label that closes the bracket of the one above is its second piece. It
+// also gives the labels by column, for the next row.
+func (f *frame) deepLabels(r int, own, above []label) (labels, byCol []label) {
+	byCol = make([]label, f.stub)
+	last, k := -1, 0
+	var seen *paper.Cell
+	for c := 0; c < f.stub && k < len(own); c++ {
+		if cell := f.grid[r][c]; cell != nil && cell != seen && !isBlankText(cell.Text.S) {
+			byCol[c], seen, last = own[k], cell, c
+			k++
+		}
+	}
+	if above != nil && !byCol[0].empty() {
+		switch a, l := above[0].text, byCol[0].text; {
+		case a == l:
+		case strings.Count(a, "(") > strings.Count(a, ")") && strings.Count(l, ")") > strings.Count(l, "("):
+			byCol[0] = joinTwo(above[0], byCol[0])
+		default:
+			above = nil // a new outer label
+		}
+	}
+	for c := 0; c <= last; c++ {
+		if byCol[c].empty() && above != nil {
+			byCol[c] = above[c]
+		}
+		if !byCol[c].empty() {
+			labels = append(labels, byCol[c])
+		}
+	}
+	return labels, byCol
 }
 
 // overLabels is a heading over the labels of the rows.
@@ -243,7 +280,7 @@ func (f *frame) ownLabels(r int) []label {
 
 // kindOf says what row r is, by what stands in its data columns.
 func (f *frame) kindOf(r int, own []label) lineKind {
-	filled, headings, ns := 0, 0, 0
+	filled, headings, ns, bare := 0, 0, 0, 0
 	for c := f.stub; c < f.tab.Cols; c++ {
 		cell := f.cellAt(r, c)
 		if cell == nil || isBlankText(cell.Text.S) {
@@ -257,6 +294,8 @@ func (f *frame) kindOf(r int, own []label) lineKind {
 		switch {
 		case rd.phrase.onlyN:
 			ns++
+		case len(own) == 0 && bareP(rd):
+			bare++
 		case rd.headingLike && !rd.isData():
 			headings++
 		}
@@ -269,12 +308,23 @@ func (f *frame) kindOf(r int, own []label) lineKind {
 		return lineGroup
 	case filled == 0:
 		return lineNone
+	case bare == 1 && ns >= 2 && ns+bare == filled:
+		return lineHead // n's with the p value of the row below
 	case len(own) > 0 && ns == filled:
 		return lineGroup
 	case headings+ns == filled && (filled >= 2 || f.tab.Cols-f.stub <= 2) && f.realHeading(r, own):
 		return lineHead
 	}
 	return lineData
+}
+
+// bareP reports a cell that can be a p value: one number of at most 1.
+func bareP(rd *cellReading) bool {
+	if len(rd.cell.Values) != 1 || len(rd.cell.Values[0].Parts) > 0 {
+		return false
+	}
+	v, ok := rd.cell.Values[0].Estimate.Float()
+	return ok && v >= 0 && v <= 1
 }
 
 // spansOnly reports that a filled cell of the row spans several rows.
@@ -328,7 +378,7 @@ func (f *frame) realHeading(r int, own []label) bool {
 func (f *frame) addMidHead(r int) {
 	m := midHead{row: r, cells: make([]label, f.tab.Cols)}
 	for c := f.stub; c < f.tab.Cols; c++ {
-		if cell := f.grid[r][c]; cell != nil && cell.Row == r && !isBlankText(cell.Text.S) {
+		if cell := f.grid[r][c]; cell != nil && cell.Row == r && !isBlankText(cell.Text.S) && !bareP(f.reads[cell]) {
 			m.cells[c] = f.label(cell)
 		}
 	}

@@ -134,6 +134,13 @@ func (f *frame) bracketIsN(e *estimate) bool {
 			return true
 		}
 	}
+	for _, g := range f.lines[e.row].groups {
+		for _, l := range f.lines[g].labels {
+			if nInBracket.MatchString(l.text) {
+				return true
+			}
+		}
+	}
 	if nInBracket.MatchString(f.tab.Caption.S) {
 		return true
 	}

@@ -139,13 +139,15 @@ func usual(g result.GivenAs) result.Statistic {
 }
 
 var (
+	sensitivityAnalysis = pattern.MustCompile(`(?i)\bsensitivity analys[ie]s\b`)
+
 	strictShare = pattern.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|%\s*[≥≤<>]|\bpatients with\b|\bpatients \(%\)`)
 )
 
 // refine turns a plain mean into a change, a difference or a proportion where
 // the context says so.
 func (f *frame) refine(st result.Statistic, measure string, e *estimate, rd *reading, x *context, all []statement) result.Statistic {
-	if st == result.MeanDifference && !x.contrast && x.arm != "" && f.colArms && (rd.given != result.CI || x.within) {
+	if st == result.MeanDifference && !x.contrast && x.arm != "" && (x.within || f.colArms && rd.given != result.CI) {
 		return result.MeanChange // a "difference" inside one arm
 	}
 	switch st {
@@ -204,7 +206,7 @@ func (f *frame) namedPoint(x *context) bool {
 // shares reports that the outcome is a share of subjects.
 func (f *frame) shares(x *context, all []statement) bool {
 	for _, s := range []string{x.outcome, x.heading} {
-		if strictShare.MatchString(s) && !strings.Contains(fold(s), "heart rate") {
+		if strictShare.MatchString(sensitivityAnalysis.ReplaceAllString(s, " ")) && !strings.Contains(fold(s), "heart rate") {
 			return true
 		}
 	}

@@ -156,13 +156,14 @@ var (
 // isTimeHeading reports that a folded heading names a time or a period and
 // little else.
 func isTimeHeading(low string) bool {
+	low = noCovariates(low)
 	if len(words(low)) == 0 || len(low) > 80 || ageWord.MatchString(low) || strings.IndexAny(low, "<>≤≥") == 0 {
 		return false
 	}
 	if strings.Trim(low, " .:()") == "bl" {
 		return true // baseline
 	}
-	if ws := words(low); len(ws) > 2 && len(ws) < 7 && unitOfTime[ws[0]] && (ws[1] == "after" || ws[1] == "before" || ws[1] == "post" || ws[1] == "since" || ws[1] == "from") {
+	if ws := words(low); len(ws) > 2 && (len(ws) < 7 || len(ws) < 14 && ws[0] != "day") && unitOfTime[ws[0]] && (ws[1] == "after" || ws[1] == "before" || ws[1] == "post" || ws[1] == "since" || ws[1] == "from") {
 		return true
 	}
 	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" && bareChange.MatchString(low) {
