@@ -242,6 +242,10 @@ func (s *sheet) cellsFollow(lines []line, i int) bool {
 var noteWords = []string{
 	"note", "abbreviation", "data are", "data is", "data were", "values are", "values were", "value are", "key:", "legend",
 	"source:", "all values", "results are", "plus-minus", "unless", "figures are", "numbers are",
+	"values expressed", "values represent", "values shown", "values given", "values presented", "values reported", "values in ",
+	"value represent", "values with", "data expressed", "data represent", "data shown", "data presented", "data given",
+	"results expressed", "results represent", "results shown", "results were", "each value", "expressed as", "presented as",
+	"statistical significance", "statistically significant", "significant at",
 	"*", "†", "‡", "§", "¶", "#", "||", "‖",
 }
 

@@ -34,6 +34,8 @@ func (s *sheet) pieces(ln *line, at int, cs []corridor, em int, head bool) []pie
 			prev := &s.toks[ln.toks[k-1]]
 			near := (t.x0-prev.x1)*100 < wideGap*em
 			switch {
+			case depth > 0 && near && opensAgain(prev.text, t.text):
+				cut = column(cs, prev.mid()) != column(cs, t.mid())
 			case depth > 0 && near:
 			case near && bracketsMeet(s.toks[out[len(out)-1].toks[0]].text, prev.text, t.text):
 				cut = column(cs, prev.mid()) != column(cs, t.mid())
@@ -73,6 +75,12 @@ func (s *sheet) crossesInWord(ln *line, cs []corridor) bool {
 		}
 	}
 	return false
+}
+
+// opensAgain reports whether word b opens a bracket where word a breaks off
+// inside one, as intervals do that go on in the next line of narrow cells.
+func opensAgain(a, b string) bool {
+	return b[0] == '(' && (strings.HasSuffix(a, "–") || strings.HasSuffix(a, "-") || strings.HasSuffix(a, ",") || a == "to")
 }
 
 // bracketsMeet reports whether a piece that begins with a bracket and has come

@@ -6,7 +6,7 @@ import "slices"
 // next column holds row headings too: down from its row or, where headings are
 // set in the middle of their rows, both ways.
 func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
-	if len(rd.cs) < 2 || !rd.labels(1) {
+	if len(rd.cs) < 2 || !rd.labels(1) && !rd.cycle(1) {
 		return
 	}
 	var stubs, open []int // cells of the stub; rows without one
@@ -51,6 +51,34 @@ func (rd *reader) spanStubs(g *cellGrid, rows [][]int, head int) {
 	flush()
 }
 
+// cycle reports whether the cells of column c come again in the same order, as
+// "Mean ± SD, 25%, 75%" or the same doses beside each of several row headings.
+func (rd *reader) cycle(c int) bool {
+	var texts []string
+	for i := rd.head; i < len(rd.lines); i++ {
+		for k := range rd.cells[i] {
+			if p := &rd.cells[i][k]; p.c0 == c {
+				texts = append(texts, p.text)
+			}
+		}
+	}
+	for period := 2; period <= 6 && len(texts) >= 2*period; period++ {
+		same, plain := 0, 0
+		for i := period; i < len(texts); i++ {
+			if texts[i] != texts[i-1] && texts[i] == texts[i-period] && !isBlankMark(texts[i]) {
+				same++
+			}
+			if texts[i] == texts[i-1] {
+				plain++
+			}
+		}
+		if n := len(texts) - period; same*10 >= n*7 && plain*10 <= n {
+			return true
+		}
+	}
+	return false
+}
+
 // sameStub reports whether two row headings below one another are one that is
 // set beside several rows.
 func (rd *reader) sameStub(up, down *gridCell) bool {
@@ -62,7 +90,10 @@ func (rd *reader) sameStub(up, down *gridCell) bool {
 // the rows that it stands in the middle of or, where that does not come out
 // even, those from its own down.
 func (rd *reader) spanMiddle(g *cellGrid, stubs, stretch []int, rows [][]int, head int) {
-	from, ok := rd.middles(g, stubs, stretch, rows, head)
+	from, ok := rd.rounds(g, stubs, stretch, head)
+	if !ok {
+		from, ok = rd.middles(g, stubs, stretch, rows, head)
+	}
 	if !ok {
 		from = nil
 		for _, c := range stubs {
@@ -80,6 +111,52 @@ func (rd *reader) spanMiddle(g *cellGrid, stubs, stretch []int, rows [][]int, he
 		}
 		cell.Row, cell.RowSpan = head+from[n], to-from[n]+1
 	}
+}
+
+// rounds gives the first row of each row heading where the cells beside come
+// again in the same order: each round begins with the same text and has one
+// heading, wherever beside its rows that stands.
+func (rd *reader) rounds(g *cellGrid, stubs, stretch []int, head int) (from []int, ok bool) {
+	text := func(k int) string {
+		if c, ok := g.at[[2]int{head + k, 1}]; ok {
+			return rd.s.joinLines(g.cells[c].toks)
+		}
+		return ""
+	}
+	if len(stubs) < 2 {
+		return nil, false
+	}
+	for _, start := range stretch {
+		if start > g.cells[stubs[0]].Row-head {
+			break
+		}
+		first := text(start)
+		if first == "" || isBlankMark(first) {
+			continue
+		}
+		from = from[:0]
+		for _, k := range stretch {
+			if k >= start && text(k) == first {
+				from = append(from, k)
+			}
+		}
+		if len(from) == len(stubs) && rd.oneEach(g, stubs, from, head) {
+			return from, true
+		}
+	}
+	return nil, false
+}
+
+// oneEach reports whether row heading n stands in round n, and every round has
+// two rows or more.
+func (rd *reader) oneEach(g *cellGrid, stubs, from []int, head int) bool {
+	for n, c := range stubs {
+		k := g.cells[c].Row - head
+		if k < from[n] || n+1 < len(from) && (k >= from[n+1] || from[n+1]-from[n] < 2) {
+			return false
+		}
+	}
+	return true
 }
 
 // middles gives the first row of each row heading if all of them stand in the
