@@ -165,6 +165,12 @@ func bareSpread(text string) []result.Result {
 	r := result.Result{Snippet: text, Estimate: v.Estimate.Value, GivenAs: result.Unstated, Zone: paper.Results, Unit: v.Unit}
 	for _, part := range v.Parts {
 		switch part.Kind {
+		case grammar.KindNumber, grammar.KindPlusMinus, grammar.KindSpread, grammar.KindInterval:
+			if _, ok := grammar.CommonPower(v.Estimate, part.Value, part.Lower, part.Upper); !ok {
+				return nil // digits of different powers of ten do not belong together
+			}
+		}
+		switch part.Kind {
 		case grammar.KindNumber, grammar.KindPlusMinus:
 			if r.GivenValue == "" {
 				r.GivenValue = part.Value.Value
@@ -182,6 +188,10 @@ func bareSpread(text string) []result.Result {
 	}
 	if r.GivenValue != "" {
 		r.Statistic = result.Mean
+	}
+	if power := v.Estimate.Power; power != "" {
+		r.Unit = strings.TrimSpace("×" + power + " " + r.Unit)
+		r.Raise("power-of-ten", "the digits are printed with the factor ×"+power+", which stands in the unit")
 	}
 	return []result.Result{r}
 }

@@ -121,7 +121,7 @@ func Flags() []FlagInfo {
 		{"conventions-differ", AsksLook, "the paper declares more than one meaning of its spreads", "decide which one this sentence follows"},
 		{"interval-unnamed", AsksLook, "nothing says that these bounds are a confidence interval", "decide whether they are an interval, quartiles or a range"},
 		{"scale-differs", AsksLook, "the estimate fits its bounds only as a percentage", "look at the page: fraction or percent"},
-		{"powers-differ", AsksLook, "estimate and spread are printed with different powers of ten", "look at the page; put them on one power"},
+		{"power-of-ten", AsksLook, "the numbers are printed with a power of ten, which was put into the unit", "look whether one power holds for all of them"},
 		{"readers-differ", MakesIt, "the two readers of the PDF read different digits here", "compare the digits with the page"},
 	}
 }

@@ -72,10 +72,15 @@ func (p *parser) signed(i int) (Number, int, bool) {
 		n.End = p.toks[i].End
 		i++
 	}
-	if p.kind(i) == TokTimes && p.kind(i+1) == TokNumber && p.toks[i+1].Value == "10" && p.kind(i+2) == TokRaised {
-		n.Power = "10^" + p.toks[i+2].Value
-		n.End = p.toks[i+2].End
-		i += 3
+	if t.Value == "10" && p.caret(i) {
+		if exponent, end := p.exponent(i + 1); exponent != "" {
+			n.Value, n.Word, n.End = "", "10^"+exponent, p.toks[end-1].End
+			return n, end, true // a power alone has no digits of its own
+		}
+	}
+	if power, at, end := p.power(i); end > i {
+		n.Power, n.PowerAt, n.End = power, at, at.End
+		i = end
 	}
 	return n, i, true
 }
@@ -166,6 +171,7 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 	if !p.fits(&lower, &upper, sep, k, end, in) {
 		return it, i, false
 	}
+	lower.give(upper.Power, upper.PowerAt) // "1.9 to 2.3 × 10^5"
 	it.Lower, it.Upper, it.Sep = lower, upper, sep
 	it.Span = Span{lower.Start, upper.End}
 	return it, end, true

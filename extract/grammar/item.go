@@ -37,7 +37,8 @@ type Number struct {
 	Word    string // of such a bound its print: "NE", "∞", "not reached"
 	Rel     string // "<" or ">" printed before it
 	Percent bool
-	Power   string // of "2.1 × 10^5" the factor "10^5"
+	Power   string // of "2.1 × 10^5" the factor "10^5"; also one that stands once for several numbers
+	PowerAt Span   // where that factor is printed
 	Mended  bool   // printed with a slip (1..42, 0. 92)
 	Plus    bool   // printed with a plus sign
 }

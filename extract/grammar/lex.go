@@ -87,6 +87,10 @@ func (l *lexer) next() {
 		l.emit(TokRaised, end, strings.TrimSpace(l.s[l.pos:end]))
 		return
 	}
+	if middleDot(r) && len(l.toks) > 0 && l.toks[len(l.toks)-1].Kind == TokNumber && tenPower(l.s, l.pos+size, l.stop(), false) {
+		l.emit(TokTimes, l.pos+size, "×")
+		return
+	}
 	if isDigit(r) || isPoint(r) && l.digitAt(l.pos+size) && !l.afterDigit() {
 		l.number()
 		return

@@ -101,6 +101,8 @@ func (n *numberReader) fraction() bool {
 	}
 	r, size := utf8.DecodeRuneInString(n.s[n.pos:])
 	switch {
+	case middleDot(r) && tenPower(n.s, n.pos+size, n.stop, true):
+		return false
 	case isPoint(r) && n.digitAt(n.pos+size):
 	case r == ',' && n.comma && n.digitAt(n.pos+size):
 	case isPoint(r) && n.value.Len() > 0 && strings.HasPrefix(n.s[n.pos+size:], string(r)) && n.digitAt(n.pos+2*size):
@@ -133,7 +135,7 @@ func (n *numberReader) another() bool {
 		return false
 	}
 	r, size := utf8.DecodeRuneInString(n.s[n.pos:])
-	return isPoint(r) && n.digitAt(n.pos+size)
+	return isPoint(r) && n.digitAt(n.pos+size) && !(middleDot(r) && tenPower(n.s, n.pos+size, n.stop, false))
 }
 
 // exponent reads E-notation: 2.1E-5.

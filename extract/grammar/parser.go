@@ -16,6 +16,8 @@ type parser struct {
 	out   Reading
 	stack []int // 1-based indices of the open brackets
 
+	lastOpen int // 1-based index of the bracket that was closed last
+
 	looking bool // hasValue is at work
 }
 
@@ -67,6 +69,7 @@ func (p *parser) brackets(i int) {
 		}
 		open := p.stack[len(p.stack)-1]
 		p.out.Brackets[open-1].End = p.toks[i].End
+		p.lastOpen = open
 		p.stack = p.stack[:len(p.stack)-1]
 	}
 }
@@ -102,6 +105,9 @@ func (p *parser) lone() {
 //
 //	item = interval | spread | sample-size | p-value | test | plus-minus | number | term
 func (p *parser) item(i int) int {
+	if next := p.outer(i); next > i {
+		return next
+	}
 	switch p.toks[i].Kind {
 	case TokWord:
 		for _, rule := range [...]func(int) int{p.labelled, p.spreadWord, p.sampleSize, p.pValue, p.test, p.term} {
@@ -126,6 +132,11 @@ func (p *parser) item(i int) int {
 		p.add(Item{Kind: KindTerm, Span: p.toks[i].Span, Meaning: Meaning{Percent: true}, Name: "%"})
 		return i + 1
 	case TokOther:
+		if p.caret(i) {
+			if v, end := p.exponent(i + 1); v != "" {
+				return end // an exponent is no value
+			}
+		}
 		if v := p.toks[i].Value; v == "Δ" || v == "χ" {
 			return p.test(i)
 		}

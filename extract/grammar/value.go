@@ -11,8 +11,12 @@ func value(v string) float64 {
 	return f
 }
 
-// Float is the number behind the print; false for a bound that is no number.
+// Float is the number behind the print, its power of ten included; false for a bound that is no number.
 func (n Number) Float() (float64, bool) {
-	f, err := strconv.ParseFloat(n.Value, 64)
+	v := n.Value
+	if e, ok := n.Decade(); ok {
+		v += "e" + strconv.Itoa(e)
+	}
+	f, err := strconv.ParseFloat(v, 64)
 	return f, err == nil
 }

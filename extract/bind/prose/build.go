@@ -124,6 +124,9 @@ func (p *para) setUnit(r *result.Result, c *cand) {
 		ends = append(ends, p.r.Brackets[b-1].End)
 	}
 	ends = append([]int{c.est.End}, ends...)
+	if c.est.Power != "" {
+		ends = append(ends, c.est.PowerAt.End, c.value.PowerAt.End, c.upper.PowerAt.End)
+	}
 	for _, end := range ends {
 		if u, ok := p.unitAt(end); ok {
 			r.Unit = p.s[u.Start:u.End]
@@ -220,8 +223,8 @@ func (p *para) slips(r *result.Result, c *cand) {
 	if c.est.Mended || c.lower.Mended || c.upper.Mended || c.value.Mended {
 		r.Raise("misprint", "a number is printed with a slip and was read as meant")
 	}
-	if c.value.Value != "" && c.est.Power != c.value.Power && c.value.Power != "" {
-		r.Raise("powers-differ", "the estimate and its spread are printed with different powers of ten")
+	if c.est.Power != "" {
+		r.Raise("power-of-ten", "the digits are printed with the factor ×"+c.est.Power+", which stands in the unit")
 	}
 	lo, ok1 := c.lower.Float()
 	hi, ok2 := c.upper.Float()

@@ -93,7 +93,7 @@ func (f *finder) block(i int) {
 	p.lists()
 	first := len(f.out)
 	for k := range p.cands {
-		if c := &p.cands[k]; p.inSentence(c.est.Start) {
+		if c := &p.cands[k]; p.inSentence(c.est.Start) && c.onePower() && !p.cut(c) {
 			f.out = append(f.out, p.result(c))
 		}
 	}

@@ -179,3 +179,44 @@ func (p *para) citedBy(b int) bool {
 	}
 	return false
 }
+
+// onePower reports that estimate and spread are printed with the same power of
+// ten: their digits do not belong together otherwise.
+func (c *cand) onePower() bool {
+	_, ok := grammar.CommonPower(c.est, c.value, c.lower, c.upper)
+	return ok
+}
+
+// cut reports that a number of the candidate is half of one with a decimal
+// comma, which the grammar could not tell from a list: the 1 of "8,1".
+func (p *para) cut(c *cand) bool {
+	for _, n := range []grammar.Number{c.est, c.value, c.lower, c.upper} {
+		if n.Value == "" || strings.ContainsAny(n.Value, ".e") || strings.ContainsAny(p.s[n.Start:n.End], ",") {
+			continue
+		}
+		pair := p.r.Items[c.item].Sep == ","
+		if p.commaBefore(n.Start) && !(pair && n.Span == c.upper.Span) || p.commaBehind(n.End) && !(pair && n.Span == c.lower.Span) {
+			return true
+		}
+	}
+	return false
+}
+
+// commaBefore reports a whole number and a comma right before byte i.
+func (p *para) commaBefore(i int) bool {
+	if i < 2 || p.s[i-1] != ',' {
+		return false
+	}
+	k := p.token(i-1) - 1
+	return k >= 0 && p.r.Tokens[k].End == i-1 && p.r.Tokens[k].Kind == grammar.TokNumber && whole(p.r.Tokens[k].Value)
+}
+
+// commaBehind reports a comma and a whole number of one or two digits right
+// behind byte i.
+func (p *para) commaBehind(i int) bool {
+	if i+1 >= len(p.s) || p.s[i] != ',' {
+		return false
+	}
+	k := p.token(i + 1)
+	return k < len(p.r.Tokens) && p.r.Tokens[k].Start == i+1 && p.r.Tokens[k].Kind == grammar.TokNumber && whole(p.r.Tokens[k].Value) && len(p.r.Tokens[k].Value) < 3
+}

@@ -121,6 +121,10 @@ func (p *para) combine(a, b named) named {
 	return b
 }
 
+// joinedValues is a word that joins the values of two groups, "12.4 (SD 1.3) vs
+// 11.1": it makes no difference of the second.
+var joinedValues = pattern.MustCompile(`(?i)(?:[0-9%)\]]\s*|[0-9]\s*[a-zµμ%/°]{1,8}\s*)[,;]?\s*(?:vs\.?|versus|compared with|compared to)\s*$`)
+
 var (
 	fromTo  = pattern.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
 	byMuch  = pattern.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
@@ -129,7 +133,7 @@ var (
 
 // settle decides where no term, or one that is too general, was found.
 func (p *para) settle(c *cand, n named, from, at, to int) named {
-	before := p.s[max(from, at-110):at]
+	before := joinedValues.ReplaceAllString(p.s[max(from, at-110):at], "; ")
 	around := p.s[from:to]
 	percent := c.est.Percent || c.lower.Percent
 	switch c.given {
