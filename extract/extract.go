@@ -7,6 +7,7 @@ import (
 	"encoding/hex"
 	"fmt"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"halfspan/extract/bind/prose"
@@ -28,6 +29,9 @@ type Options struct {
 	Recognising func(int) // called with the number of a page before tesseract reads it (up to two minutes), may be nil
 }
 
+// xmlEndings are the file name endings of article XML.
+var xmlEndings = []string{".xml", ".nxml"}
+
 // Read turns the content of the file at path into a Document. The format is
 // told by content, not by name. An error says what is wrong with the file and
 // what to do; what could be read in part comes back with Document.Problems.
@@ -36,8 +40,9 @@ func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 	case pdf.IsPDF(content), strings.EqualFold(filepath.Ext(path), ".pdf"):
 		// What only its name calls a PDF is told so by the PDF reader.
 		return readPDF(path, content, opt)
-	case jats.Is(content), bytes.HasPrefix(content, []byte("<?xml")):
-		// XML that is no article is told so by the article reader.
+	case jats.Is(content), bytes.HasPrefix(content, []byte("<?xml")), len(content) > 0 && slices.Contains(xmlEndings, strings.ToLower(filepath.Ext(path))):
+		// XML that is no article, or XML by its name only, is told so by the
+		// article reader.
 		return jats.Read(path, content)
 	}
 	return plain.Read(path, content)

@@ -81,25 +81,41 @@ type namedPath struct {
 	folder bool
 }
 
+// notAFileReason is why pipes, sockets and devices are not opened: reading one
+// may never end.
+const notAFileReason = "it is a pipe, a socket or a device, not a file: name a file or a folder"
+
+// namedOf takes a path as it is named: it must lead to a file or a folder.
+func namedOf(path string) (namedPath, error) {
+	info, err := os.Stat(path)
+	if err != nil {
+		return namedPath{}, pathError(path, err)
+	}
+	if special(info) {
+		return namedPath{}, fmt.Errorf("%s: %s", path, notAFileReason)
+	}
+	return namedPath{filepath.Clean(path), info.IsDir()}, nil
+}
+
 // expand resolves patterns, which some shells leave to the program.
 func expand(paths []string) ([]namedPath, error) {
 	var named []namedPath
 	for _, p := range paths {
-		info, err := os.Stat(p)
+		one, err := namedOf(p)
 		if err == nil {
-			named = append(named, namedPath{filepath.Clean(p), info.IsDir()})
+			named = append(named, one)
 			continue
 		}
 		matches, globErr := filepath.Glob(p)
 		if !strings.ContainsAny(p, "*?[") || globErr != nil || len(matches) == 0 {
-			return nil, pathError(p, err)
+			return nil, err
 		}
 		for _, m := range matches {
-			info, err := os.Stat(m)
+			one, err := namedOf(m)
 			if err != nil {
-				return nil, pathError(m, err)
+				return nil, err
 			}
-			named = append(named, namedPath{filepath.Clean(m), info.IsDir()})
+			named = append(named, one)
 		}
 	}
 	return named, nil
@@ -181,16 +197,24 @@ func (g *gathered) walk(folder string, seen map[string]bool) {
 				return fs.SkipDir
 			}
 		case entry.IsDir() || ownFile(entry.Name()):
+		case notAFile(path) && hasPaperEnding(path):
+			g.failed = append(g.failed, unread{g.name(path), notAFileReason})
+		case notAFile(path):
+			g.pass(path, seen)
 		case isPaper(path):
 			g.add(path, seen)
 		default:
-			if name := g.name(path); !seen[name] {
-				seen[name] = true
-				g.passed = append(g.passed, name)
-			}
+			g.pass(path, seen)
 		}
 		return nil
 	})
+}
+
+func (g *gathered) pass(path string, seen map[string]bool) {
+	if name := g.name(path); !seen[name] {
+		seen[name] = true
+		g.passed = append(g.passed, name)
+	}
 }
 
 // ownFile tells the program's own files, which are not worth a word.
@@ -198,9 +222,23 @@ func ownFile(name string) bool {
 	return strings.HasSuffix(name, ".ledger") || strings.HasSuffix(name, ".ledger-journal")
 }
 
+// special tells pipes, sockets and devices.
+func special(info fs.FileInfo) bool { return !info.IsDir() && !info.Mode().IsRegular() }
+
+// notAFile tells what path leads to; what cannot be told is left to the reader,
+// who says why.
+func notAFile(path string) bool {
+	info, err := os.Stat(path)
+	return err == nil && special(info)
+}
+
+func hasPaperEnding(path string) bool {
+	return paperEndings[strings.ToLower(filepath.Ext(path))] && !strings.HasPrefix(filepath.Base(path), ".")
+}
+
 // isPaper tells a paper by its ending, or by the mark that begins every PDF.
 func isPaper(path string) bool {
-	if paperEndings[strings.ToLower(filepath.Ext(path))] && !strings.HasPrefix(filepath.Base(path), ".") {
+	if hasPaperEnding(path) {
 		return true
 	}
 	f, err := os.Open(path)

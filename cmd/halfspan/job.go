@@ -121,9 +121,12 @@ func work(request []byte, alive worker.Alive) ([]byte, error) {
 
 // readFile reads a paper's file, or says in plain words why not.
 func readFile(path string) ([]byte, error) {
+	if notAFile(path) {
+		return nil, errors.New(notAFileReason)
+	}
 	f, err := os.Open(path)
 	if errors.Is(err, fs.ErrPermission) {
-		return nil, errors.New("no permission to read it")
+		return nil, errors.New("no permission to read it: change its permissions")
 	}
 	if err != nil {
 		return nil, fmt.Errorf("opening it: %w", bare(err))

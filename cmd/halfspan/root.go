@@ -51,6 +51,8 @@ func run(args []string, in io.Reader, out, errOut io.Writer) int {
 	root.SetErr(errOut)
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	// A second signal ends the program even where it waits for the system.
+	context.AfterFunc(ctx, stop)
 	err := root.ExecuteContext(ctx)
 	if err == nil {
 		return statusDone

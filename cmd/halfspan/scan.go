@@ -77,9 +77,17 @@ type scanning struct {
 }
 
 func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) error {
-	g, err := gather(paths)
+	g, err := until(ctx, func() (*gathered, error) { return gather(paths) })
+	if ctx.Err() != nil {
+		return errors.New("stopped")
+	}
 	if err != nil {
 		return err
+	}
+	if len(g.papers) == 0 {
+		if err := closedFolder(paths); err != nil {
+			return err
+		}
 	}
 	if len(g.papers) == 0 && len(g.failed) == 0 {
 		return noPapers(paths, g)
@@ -109,6 +117,17 @@ func scan(ctx context.Context, s *streams, paths []string, opt scanOptions) erro
 		return err
 	}
 	return sc.finish()
+}
+
+// closedFolder says where nothing was found because a folder that was named
+// cannot be opened.
+func closedFolder(paths []string) error {
+	for _, p := range paths {
+		if _, err := os.ReadDir(p); errors.Is(err, fs.ErrPermission) {
+			return fmt.Errorf("%s: this folder cannot be opened: no permission; change its permissions, or copy the papers into a folder of your own", p)
+		}
+	}
+	return nil
 }
 
 func noPapers(paths []string, g *gathered) error {
@@ -179,7 +198,11 @@ func (sc *scanning) read(ctx context.Context, papers []paperFile) error {
 	var jobs []job
 	sums := make([]string, len(papers))
 	for i, f := range papers {
-		sums[i] = hashFile(f.path)
+		// Opening a file on a disk far away may take any time.
+		var err error
+		if sums[i], err = until(ctx, func() (string, error) { return hashFile(f.path), nil }); err != nil {
+			return ctx.Err()
+		}
 	}
 	holder := sc.holders(papers, sums)
 	for i, f := range papers {

@@ -34,11 +34,18 @@ func Down(v float64) Number { return outward(v, -1) }
 // Up rounds v to 9 significant digits towards plus infinity.
 func Up(v float64) Number { return outward(v, +1) }
 
+// sameNumber is the relative difference up to which a computed number is taken
+// for the decimal with 9 digits beside it.
+const sameNumber = 1e-12
+
 func outward(v float64, side int) Number {
 	if v == 0 || math.IsInf(v, 0) || math.IsNaN(v) {
 		return Number(v)
 	}
 	r, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'e', 8, 64), 64)
+	if math.Abs(r-v) <= sameNumber*math.Abs(v) {
+		return Number(r) // 8.850000000000001 is the 8.85 that sums of binary fractions miss
+	}
 	if side < 0 && r > v || side > 0 && r < v {
 		step := math.Pow(10, math.Floor(math.Log10(math.Abs(v)))-8)
 		r, _ = strconv.ParseFloat(strconv.FormatFloat(r+float64(side)*step, 'e', 8, 64), 64)

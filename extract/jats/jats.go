@@ -35,6 +35,13 @@ func Is(content []byte) bool {
 		bytes.Contains(head, []byte("<article>")) || bytes.Contains(head, []byte(":article ")))
 }
 
+// isWebPage tells HTML, which publishers' sites hand out under any name.
+func isWebPage(content []byte) bool {
+	head := bytes.ToLower(bytes.TrimLeft(content[:min(len(content), 1024)], "\xEF\xBB\xBF \t\r\n"))
+	return bytes.HasPrefix(head, []byte("<!doctype html")) || bytes.HasPrefix(head, []byte("<html")) ||
+		bytes.HasPrefix(head, []byte("<?xml")) && (bytes.Contains(head, []byte("<!doctype html")) || bytes.Contains(head, []byte("<html")))
+}
+
 // Read turns the article XML in content, the file at path, into a Document:
 // title, abstracts, sections with their zones, lists, boxes, captions,
 // footnotes, and tables wherever they stand. References are kept as blocks of
@@ -47,6 +54,9 @@ func Read(path string, content []byte) (*paper.Document, error) {
 	if len(content) > maxBytes {
 		return nil, fmt.Errorf("%s: %d MB of XML; files above %d MB are not read", path, len(content)>>20, maxBytes>>20)
 	}
+	if isWebPage(content) {
+		return nil, fmt.Errorf("%s: not article XML but a web page (HTML), whatever its name; get the article XML or the PDF", path)
+	}
 	src := decode(content)
 	r := &reader{path: path, src: src, known: entities(src.B), refs: map[string]bool{}}
 	root, err := parse(path, src, r.known)
@@ -55,7 +65,7 @@ func Read(path string, content []byte) (*paper.Document, error) {
 	}
 	article := root.find("article")
 	if article == nil {
-		return nil, fmt.Errorf("%s: this XML holds no <article> element, so it is no article in JATS form; get the article XML or the PDF", path)
+		return nil, fmt.Errorf("%s: not article XML: it holds no <article> element, so it is no article in JATS form; get the article XML or the PDF", path)
 	}
 	sum := sha256.Sum256(content)
 	r.doc = &paper.Document{Path: path, SHA256: hex.EncodeToString(sum[:]), Format: paper.JATS}

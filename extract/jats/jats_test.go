@@ -108,7 +108,7 @@ func TestRefusals(t *testing.T) {
 	for _, c := range []struct{ name, content, want string }{
 		{"not closed", "<article><body>\n<p>12.4</body></article>", "bad.xml: line 2: the XML is not well-formed: element <p> closed by </body>; download the file again or mend this line"},
 		{"cut off", "<article>\n<body>\n<p>12.4", "bad.xml: line 3: the XML is not well-formed: unexpected EOF; download the file again or mend this line"},
-		{"no article", "<book><p>12.4</p></book>", "bad.xml: this XML holds no <article> element, so it is no article in JATS form; get the article XML or the PDF"},
+		{"no article", "<book><p>12.4</p></book>", "bad.xml: not article XML: it holds no <article> element, so it is no article in JATS form; get the article XML or the PDF"},
 		{"too deep", "<article>" + deep + "</article>", "bad.xml: line 1: elements nested more than 256 deep; this is no article"},
 		{"unknown entity", "<article><body>\n\n<p>&honeycomb;</p></body></article>", "bad.xml: line 3: the XML is not well-formed: invalid character entity &honeycomb;; download the file again or mend this line"},
 		{"entities of entities", "<!DOCTYPE article [<!ENTITY a \"&b;&b;\"><!ENTITY b \"bee\">]>\n<article><body><p>&b;</p><p>&a;</p></body></article>", "bad.xml: line 2: the XML is not well-formed: invalid character entity &a;; download the file again or mend this line"},

@@ -123,6 +123,11 @@ func (d *drafting) row() *ledger.Draft {
 	draft.Token, _ = d.cell(colSeen)
 	draft.Reason, _ = d.cell(colReason)
 	draft.Note, _ = d.cell(colNote)
+	if note := strings.TrimSpace(d.texts[colNote](row)); note != draft.Note {
+		if _, err := habit(note, draft.Note); err != nil && madeDate.MatchString(draft.Note) {
+			d.fail(colNote, "%v", err)
+		}
+	}
 	if len(d.wrong) > before || !d.decided(row, draft, changed, take) {
 		return nil
 	}
@@ -273,6 +278,7 @@ const months = `(jan|feb|mar|apr|may|jun|jul|aug|sep|oct|nov|dec|mär|mai|okt|de
 
 var (
 	monthDate = regexp.MustCompile(`(?i)^(\d{1,4}[-. /]?` + months + `|` + months + `[-. /]?\d{1,4})$`)
+	madeDate  = regexp.MustCompile(`(?i)^(\d{1,2}(-|\. ?)` + months + `|` + months + `-\d{2,4}|\d{4}-\d{2}-\d{2}[T ]00:00(:00.*)?)$`) // no person writes it so
 	fullDate  = regexp.MustCompile(`^\d{4}-\d{2}-\d{2}([T ].*)?$|^\d{1,2}[./]\d{1,2}[./]\d{2,4}$`)
 	rangeText = regexp.MustCompile(`^\d{1,4}\s*[-–/.]\s*\d{1,4}$`)
 )
@@ -281,6 +287,9 @@ var (
 // returns what was done where the value is the same all the same, an error where
 // what was meant cannot be told, and nothing where a person changed the cell.
 func habit(now, cell string) (string, error) {
+	if madeDate.MatchString(cell) && !rangeText.MatchString(now) {
+		return "", fmt.Errorf("%q looks like a date that the spreadsheet program made of a range such as 1-5: give the cell the format text and write it anew", cell)
+	}
 	if rangeText.MatchString(now) && (monthDate.MatchString(cell) || fullDate.MatchString(cell) || isSerial(cell)) {
 		return "", fmt.Errorf("%q looks like a date that the spreadsheet program made of %q: put back what was there", cell, now)
 	}

@@ -75,8 +75,13 @@ func TestFilesThatAreNoLedger(t *testing.T) {
 	if _, err := Create(filepath.Join(dir, "no", "such", "x.ledger")); !errors.Is(err, ErrReadOnly) {
 		t.Errorf("no folder: got %v", err)
 	}
-	// Left empty by a process that was killed while making it.
-	l, err := Open(write("empty.ledger", ""))
+	// Left empty by a process that was killed while making it, or cut off: to look at
+	// it is an error, a scan fills it.
+	empty := write("empty.ledger", "")
+	if _, err := Open(empty); !errors.Is(err, ErrDamaged) || !strings.Contains(err.Error(), "it is empty: scan again") {
+		t.Errorf("empty file: got %v", err)
+	}
+	l, err := Create(empty)
 	if err != nil {
 		t.Fatalf("empty file: %v", err)
 	}

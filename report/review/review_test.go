@@ -5,6 +5,7 @@ import (
 	"flag"
 	"os"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"testing"
 	"time"
@@ -96,6 +97,12 @@ func TestTable(t *testing.T) {
 		t.Fatal(err)
 	}
 	golden(t, "table-colour", coloured.String())
+	for line := range strings.Lines(coloured.String()) {
+		shown := regexp.MustCompile("\x1b\\[[0-9]*m").ReplaceAllString(strings.TrimSuffix(line, "\n"), "")
+		if n := runewidth.StringWidth(shown); n > 80 && !strings.HasPrefix(line, "gone:") || strings.HasSuffix(shown, " ") {
+			t.Errorf("in colour, width 80: a line of %d: %q", n, line)
+		}
+	}
 	var tsv bytes.Buffer
 	if err := TSV(&tsv, hives()); err != nil {
 		t.Fatal(err)

@@ -3,6 +3,7 @@ package review
 import (
 	"fmt"
 	"io"
+	"regexp"
 	"slices"
 	"strings"
 
@@ -255,9 +256,11 @@ func tableOf(w io.Writer, all []column, cells [][]string, rows []ledger.Row, wid
 			if widths[k] == 0 {
 				continue
 			}
-			cell := pad(runewidth.Truncate(cells[i][k], widths[k], "…"), widths[k], c.right)
-			if colour {
-				cell = paint(c.title, cell, &rows[i])
+			text := runewidth.Truncate(cells[i][k], widths[k], "…")
+			cell := pad(text, widths[k], c.right)
+			if colour && text != "" {
+				// The text alone: coloured spaces at the end of a line would stay there.
+				cell = strings.Replace(cell, text, paint(c.title, text, &rows[i]), 1)
 			}
 			line = append(line, cell)
 		}
@@ -298,9 +301,14 @@ func plainTable(w io.Writer, aligned []tw.Align) *tablewriter.Table {
 		}))
 }
 
+// needlessReset is the end of a colour that the table writer puts behind the
+// padding of a cell: paint has ended it already.
+var needlessReset = regexp.MustCompile(`( )\x1b\[0m`)
+
 // writeTrimmed writes lines without the white space at their ends.
 func writeTrimmed(w io.Writer, text string) error {
 	for line := range strings.Lines(text) {
+		line = needlessReset.ReplaceAllString(line, "$1")
 		if _, err := fmt.Fprintln(w, strings.TrimRight(line, " \n")); err != nil {
 			return err
 		}
