@@ -3,6 +3,8 @@ package table
 import (
 	"strconv"
 	"strings"
+
+	"halfspan/extract/pattern"
 )
 
 // findArmRows marks the heading rows in which some heading names an arm by its
@@ -83,12 +85,12 @@ func (f *frame) findAxes() {
 		f.armRows = false
 	}
 	if f.armRows && stubArm && stubCol == f.stub-1 {
-		f.nameRows()
+		f.nameRows(true)
 	}
 	f.outcomeCols = !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows && !f.measuredGroups() || f.unitColumns())
 	if f.outcomeCols {
 		if 5*f.timeRows() < 4*rows {
-			f.nameRows()
+			f.nameRows(false)
 			f.armRows = len(f.rowArms) > 0
 		}
 		return
@@ -148,8 +150,9 @@ func (f *frame) unitColumns() bool {
 	return true
 }
 
-// nameRows takes the innermost labels of the data rows for arms.
-func (f *frame) nameRows() {
+// nameRows takes the innermost labels of the data rows for arms; bare numbers
+// too where a heading over them says that they are groups.
+func (f *frame) nameRows(numbers bool) {
 	f.rowArms = map[string]bool{}
 	for r := f.head; r < f.tab.Rows; r++ {
 		ln := &f.lines[r]
@@ -157,7 +160,7 @@ func (f *frame) nameRows() {
 			continue
 		}
 		p := f.partOf(ln.labels[len(ln.labels)-1])
-		if p.kind == partOther && !subgroupName.MatchString(p.name) && f.rowRole(r).kind == roleNone {
+		if p.kind == partOther && (!subgroupName.MatchString(p.name) || numbers && isWhole(p.name)) && f.rowRole(r).kind == roleNone {
 			f.rowArms[fold(p.name)] = true
 		}
 	}
@@ -354,11 +357,14 @@ func (f *frame) general(p part) bool {
 	return generic[fold(p.name)] && (p.l.cell == nil || p.l.cell.ColSpan > 1 || p.l.cell.Col < f.stub)
 }
 
+// kindOfArm says what kind of arms the headings below name: "Feeding condition".
+var kindOfArm = pattern.MustCompile(`(?i)^(?:[\w-]+ ){1,2}(?:conditions|condition|treatments?|groups|arms|regimens?|diets)$`)
+
 // onlyOver reports a general word that alone spans several columns with names of
 // their own: "Intervention" over "Syrup", "Pollen", "Water".
 func (f *frame) onlyOver(p part) bool {
 	cell := p.l.cell
-	if cell == nil || cell.ColSpan < 2 || cell.Row >= f.head-1 || !onlyArmWord.MatchString(p.name) {
+	if cell == nil || cell.ColSpan < 2 || cell.Row >= f.head-1 || !onlyArmWord.MatchString(p.name) && (!kindOfArm.MatchString(p.name) || controls.MatchString(p.name)) {
 		return false
 	}
 	names := 0

@@ -105,7 +105,12 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		case partContrast:
 			x.contrast = true
 			f.parseContrast(l, x)
-			if t := f.lex.timeIn(l.text); t != "" {
+			ts := f.lex.timesIn(noCovariates(l.text))
+			if x.within && len(ts) > 1 {
+				ts = ts[len(ts)-1:] // what lies between two times stands at the later one
+			}
+			if len(ts) > 0 {
+				t := ts[0]
 				times = append(times, t)
 				x.timeAt, x.timeFrom = l, f.columnName(e.col)
 			}
@@ -195,6 +200,10 @@ func (f *frame) measured(names []string) []string {
 func (f *frame) rowContext(e *estimate, x *context) {
 	ln := &f.lines[e.row]
 	var outcome, subs []string
+	named := false // some label names an arm by its words
+	for _, l := range ln.labels {
+		named = named || f.isArm(fold(f.lex.name(l.text)))
+	}
 	take := func(l label, own bool) {
 		p := f.nameless(e, l, f.rowPart(l))
 		if m := overOne.FindStringSubmatch(l.text); m != nil && controls.MatchString(m[1]) || own && f.comparesFor(e, l.text) {
@@ -202,6 +211,9 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		}
 		if f.lex.change(l.text) {
 			x.change = true
+		}
+		if p.kind == partArm && named && !f.isArm(fold(p.name)) {
+			p.kind = partOther // "Mass (N = 133)" before the arms
 		}
 		switch {
 		case p.kind == partTime:
@@ -260,7 +272,9 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	}
 	for _, g := range ln.groups {
 		for _, l := range f.lines[g].labels {
-			take(l, false)
+			if !f.onlyCounts(l) || len(ln.labels) == 0 || f.subgroupLike(f.lex.name(ln.labels[len(ln.labels)-1].text)) {
+				take(l, false)
+			}
 		}
 	}
 	for _, l := range ln.labels {
@@ -286,6 +300,17 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	x.subgroup = joinPath(subs, ", ")
 }
 
+var covariates = pattern.MustCompile(`(?i)\b(?:adjust(?:ed|ing|ment)|controll(?:ed|ing)|correct(?:ed|ing)|accounting) for (?:the )?[^;:)\]]*`)
+
+// noCovariates takes out of a heading what its estimates are adjusted for:
+// "Effect adjusted for baseline" says no time.
+func noCovariates(s string) string {
+	if !strings.Contains(s, "for") {
+		return s
+	}
+	return covariates.ReplaceAllString(s, " ")
+}
+
 // modelHead is a heading over the estimates of one analysis, which names no arm.
 var modelHead = pattern.MustCompile(`(?i)^(?:(?:un|non-?)?adjusted |crude )?(?:uni|bi|multi)(?:ple |-)?varia(?:te|ble)\b|^(?:(?:un)?adjusted |crude )?(?:models?|analys[ei]s)(?: [a-z\d])?$|^(?:(?:logistic|linear|cox|poisson|multiple|ordinal|proportional|hazards?)[ -])+regression(?: analys[ei]s| models?)?$|^(?:per[- ]protocol|intention[- ]to[- ]treat)(?: analysis)?$`)
 
@@ -295,6 +320,19 @@ var armBehind = pattern.MustCompile(`(?i)^([^()]*[a-z][^()]*)[(]([^()]+? (?:grou
 
 // fromBaseline says what a change is measured from, not when.
 var fromBaseline = pattern.MustCompile(`(?i)\b(?:changes?|reductions?|decreases?|increases?|improvements?|differences?)(?: scores?)? (?:from|since|vs\.?|versus|relative to|compared (?:with|to)) (?:the )?baseline\b`)
+
+// onlyCounts reports a group label over counts, "Colour, n (%)": a row with a
+// spread that follows its rows is no longer under it.
+func (f *frame) onlyCounts(l label) bool {
+	counts := false
+	for _, q := range f.lex.phrase(l.text).pairs {
+		if q.Spread != "" {
+			return false
+		}
+		counts = counts || q.Count && q.Percent
+	}
+	return counts
+}
 
 // captionContext fills in from the caption what rows and columns leave open.
 func (f *frame) captionContext(e *estimate, x *context) {

@@ -58,9 +58,15 @@ func saysNothing(name string) bool {
 	return true
 }
 
+var betweenTwo = pattern.MustCompile(`(?i)\bdifferences?\b.*? between (.+?) and (.+)$`)
+
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
 	name := f.lex.name(l.text)
+	if m := betweenTwo.FindStringSubmatch(l.text); m != nil && f.lex.isTime(fold(m[1])) && f.lex.isTime(fold(f.lex.name(m[2]))) {
+		x.contrast, x.change, x.within = false, true, true
+		return
+	}
 	if ab := parseVs(name); ab != nil && (f.lex.isTime(fold(ab[1])) || f.lex.timeIn(ab[1]) != "" && !f.isArm(fold(ab[1]))) {
 		x.contrast, x.change = false, true // against baseline: a change inside one arm
 		return
