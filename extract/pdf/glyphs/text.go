@@ -153,6 +153,9 @@ func (in *interpreter) show(b []byte) {
 		if !hidden && len(p.Glyphs) < maxPageGlyphs {
 			out := style
 			out.Text, out.Repaired = g.text, g.repaired
+			if out.Text == "" {
+				out.Text = unknown // printed, but the file does not say what it is
+			}
 			out.Origin = paper.Point{X: geom.Hundredth(m[4]), Y: geom.Hundredth(m[5])}
 			out.Box = m.Box(0, geom.Descent*f.scale, g.width, geom.Ascent*f.scale)
 			out.Invisible = out.Invisible || !in.shows(out.Box)
