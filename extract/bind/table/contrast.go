@@ -12,7 +12,10 @@ var vsForm = pattern.MustCompile(`(?i)^(?:.*?(?:\bfor |\bof |\bbetween |: ?|\bdi
 func parseVs(s string) []string {
 	m := vsForm.FindStringSubmatch(clean(s))
 	if m == nil {
-		return nil
+		m = colonPair.FindStringSubmatch(clean(s))
+		if m == nil || !controls.MatchString(m[2]) || isContrast(fold(m[1])) {
+			return nil
+		}
 	}
 	if k := strings.LastIndexByte(m[1], '('); k >= 0 && !strings.Contains(m[1][k:], ")") && k+1 < len(m[1]) {
 		m[1] = m[1][k+1:] // "Mass difference (syrup − water), kg"
@@ -60,9 +63,16 @@ func saysNothing(name string) bool {
 
 var betweenTwo = pattern.MustCompile(`(?i)\bdifferences?\b.*? between (.+?) and (.+)$`)
 
+// againstTime is a difference from an earlier time.
+var againstTime = pattern.MustCompile(`(?i)\bdifferences?\b.*?\b(?:compared (?:with|to)|vs\.?|versus|relative to|from|since) (?:the )?(?:baseline|pre-?(?:treatment|intervention|test|feeding)|(?:week|day|month|visit) \d+)(?: values?)?\b`)
+
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {
 	name := f.lex.name(l.text)
+	if againstTime.MatchString(l.text) && !overOne.MatchString(againstTime.ReplaceAllString(l.text, " ")) {
+		x.contrast, x.change, x.within = false, true, true
+		return
+	}
 	if m := betweenTwo.FindStringSubmatch(l.text); m != nil && f.lex.isTime(fold(m[1])) && f.lex.isTime(fold(f.lex.name(m[2]))) {
 		x.contrast, x.change, x.within = false, true, true
 		return

@@ -75,9 +75,25 @@ func (f *frame) classify(l label) part {
 
 var dashed = pattern.MustCompile(`^(.{3,40}?)(?: ?[—−] ?| [-–] )(.{3,40})$`)
 
+// colonPair is a pair of names with a colon, as ratios are headed.
+var colonPair = pattern.MustCompile(`^([^:;,()]{2,40}?)\s*: ?([^:;,()]{2,40})$`)
+
+// captionRatio reports that the caption announces ratios.
+func (f *frame) captionRatio() bool {
+	for _, q := range f.lex.phrase(f.tab.Caption.S).pairs {
+		if q.Statistic == "ratio" {
+			return true
+		}
+	}
+	return false
+}
+
 // armMinusArm reports one arm less another: "Syrup − control".
 func (f *frame) armMinusArm(name string) bool {
 	m := dashed.FindStringSubmatch(name)
+	if c := colonPair.FindStringSubmatch(name); m == nil && c != nil && f.captionRatio() {
+		m = c // "Syrup:Control" below "Ratio of geometric means"
+	}
 	return m != nil && f.isArm(fold(m[1])) && f.isArm(fold(m[2])) && fold(m[1]) != fold(m[2])
 }
 
@@ -89,6 +105,8 @@ func (f *frame) rowPart(l label) part {
 	p := f.partOf(l)
 	low := fold(p.name)
 	switch {
+	case p.kind == partOther && !hasLetter(p.name) && hasDigit(p.name) && f.timeStub(l) != "":
+		p.kind, p.name = partTime, f.timeStub(l)
 	case p.kind == partArm && !f.isArm(low):
 		if !f.armRows {
 			p.kind = partOther
@@ -97,6 +115,25 @@ func (f *frame) rowPart(l label) part {
 		p.kind, p.name = partOther, f.lex.name(l.text)
 	}
 	return p
+}
+
+var timeHead = pattern.MustCompile(`(?i)^(?:time(?: ?points?)?|weeks?|days?|months?|hours?|minutes?)(?: (?:after|since|post)[^()]*)?(?:\s*(?:[(\[]|, )(h|hrs?|hours?|min|mins?|minutes?|s|sec|d|days?|w|wks?|weeks?|months?|y|yrs?|years?)[)\]]?)?$`)
+
+// timeStub gives the time that a bare number in the stub stands for, where the
+// heading over it names times: 4 under "Week", 0.5 under "Time (h)".
+func (f *frame) timeStub(l label) string {
+	if l.cell == nil || l.cell.Col >= f.stub || l.cell.Row < f.head || len(f.heads[l.cell.Col]) == 0 {
+		return ""
+	}
+	head := f.heads[l.cell.Col][len(f.heads[l.cell.Col])-1].text
+	m := timeHead.FindStringSubmatch(head)
+	switch {
+	case m == nil:
+		return ""
+	case m[1] != "":
+		return l.text + " " + m[1]
+	}
+	return strings.TrimSuffix(cutAt(head, " "), "s") + " " + l.text
 }
 
 var phaseName = pattern.MustCompile(`^(pre|post|before|after)[- ](?:the )?([a-z]+?)s?$`)
@@ -142,6 +179,7 @@ func hasArmShape(s string) bool { return len(s) < 120 }
 var (
 	spaceBracket   = pattern.MustCompile(`\(\s*\)|\[\s*\]`)
 	meanBracket    = pattern.MustCompile(`(?i)\(\s*(?:(?:adjusted|unadjusted|estimated|marginal|ls|least[- ]squares?)\s+)*(?:means?|medians?)[\s±,;]*\)`)
+	levelBracket   = pattern.MustCompile(`[(\[]\s*9\d(?:[.]\d)?\s*%\s*[)\]]`)
 	percentBracket = pattern.MustCompile(`[(]\s*%\s*[)]`)
 	loneMark       = pattern.MustCompile(`\s*[,;:]\s*(?:[,;:]\s*)*([)\]])`)
 	edge           = " ,;:-–—/.±"
@@ -162,7 +200,7 @@ func nameOf(s string) string {
 	s = spreadAndN.ReplaceAllString(s, "$1")
 	t := stripTerms(clean(s))
 	t = worded.ReplaceAllString(t, " ")
-	t = meanBracket.ReplaceAllString(t, " ")
+	t = meanBracket.ReplaceAllString(levelBracket.ReplaceAllString(t, " "), " ")
 	if nPhrase.MatchString(s) {
 		t = percentBracket.ReplaceAllString(t, " ") // of the counts below
 	}

@@ -58,6 +58,7 @@ var variants = []struct {
 }{
 	{pattern.MustCompile(`(?i)\bmin(?:imum)?\.?\s*(?:[-–—:;,/~]|to|and)\s*max(?:imum)?\b\.?`), "range"},
 	{pattern.MustCompile(`\b[uU]OR\b`), "OR "},
+	{pattern.MustCompile(`(?i)\bratios? of (?:the )?(?:adjusted )?(?:gm[ct]s?|geometric mean (?:tit(?:re|er)s?|concentrations?))\b|\b(?:gm[ct]s?|geometric mean (?:tit(?:re|er)|concentration)) ratios?\b`), "GMR"},
 	// The mean as a letter with a bar over it; s beside it is the sample's SD.
 	{pattern.MustCompile("[xXχ][\u0304\u0305\u00af\u02c9]\\s*±\\s*(?:[sS]\\b|SD\\b|S[.]D[.])"), "mean±SD"},
 	{pattern.MustCompile("[xXχ][\u0304\u0305\u00af\u02c9]\\s*±\\s*(?:[sS]\\b|SD\\b|S[.]D[.])"), "M±SD"},
@@ -73,7 +74,11 @@ func normalise(s string) string {
 			if len(m) < len(v.as) {
 				return m
 			}
-			return v.as + strings.Repeat(" ", len(m)-len(v.as))
+			pad := strings.Repeat(" ", len(m)-len(v.as))
+			if v.as == "GMR" {
+				return pad + v.as // what follows tells its spread
+			}
+			return v.as + pad
 		})
 	}
 	return s
