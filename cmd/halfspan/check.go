@@ -72,6 +72,9 @@ func check(ctx context.Context, s *streams, args []string, flags *ledgerFlags, f
 		return err
 	}
 	defer book.Close()
+	if err := book.Decisions().Writable(); err != nil {
+		return err
+	}
 	all, err := book.Rows()
 	if err != nil {
 		return err

@@ -31,7 +31,9 @@ func newConvert(s *streams) *cobra.Command {
 		Short: "work out one printed result step by step",
 		Long: `Work out a result as a paper prints it: the steps with the numbers put in, the
 range that the printed digits allow, what it assumes, and other values beside it.
-What the text does not say can be added by the flags; nothing is guessed.
+What the text does not say can be added by the flags. One thing is assumed, and
+said so: an estimate that no word explains is taken for a mean, since whoever
+types it knows what it is; a scan withholds the SD of such a result in a paper.
 
 With --pair two groups are compared: pooled SD, tests, Hedges' g; with --p the
 pooled SD behind the p value of their difference. With --combine two or more
@@ -100,7 +102,7 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 			"write it as a paper would: \"12.4 (95%% CI 11.2 to 13.6), n = 42\", \"24.6 ± 3.1\", \"24 (IQR 17-31)\"", text)
 	}
 	for i := range results {
-		results[i].Snippet = strings.TrimPrefix(results[i].Snippet, lead)
+		forgetLead(&results[i], text)
 		if err := opt.complete(&results[i]); err != nil {
 			return nil, err
 		}
@@ -116,6 +118,37 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 		found[i].Trail.Assumptions = append(found[i].Trail.Assumptions, "the estimate is a mean, which the text does not say: --statistic says what it is")
 	}
 	return found, nil
+}
+
+// forgetLead takes out of a result what only the paper made of a typed text says.
+func forgetLead(r *result.Result, typed string) {
+	r.Snippet = strings.TrimPrefix(r.Snippet, lead)
+	r.Section = ""
+	for _, f := range []struct {
+		field string
+		value *string
+	}{{"outcome", &r.Outcome}, {"arm", &r.Arm}, {"arm2", &r.Arm2}, {"time", &r.Time}, {"subgroup", &r.Subgroup}} {
+		if *f.value == "" || !strings.Contains(strings.ToLower(lead), strings.ToLower(*f.value)) || strings.Contains(strings.ToLower(typed), strings.ToLower(*f.value)) {
+			continue
+		}
+		*f.value = ""
+		r.Sources = slices.DeleteFunc(r.Sources, func(s result.Source) bool { return s.Field == f.field })
+	}
+}
+
+// textArguments keeps typed results that begin with a minus from being taken for
+// flags: a space before them, which the reading drops, tells the two apart.
+func textArguments(args []string) []string {
+	if len(args) == 0 || args[0] != "convert" {
+		return args
+	}
+	out := slices.Clone(args)
+	for i, a := range out {
+		if len(a) > 1 && a[0] == '-' && (a[1] == '.' || a[1] >= '0' && a[1] <= '9') {
+			out[i] = " " + a
+		}
+	}
+	return out
 }
 
 // takeAsMeans takes an interval of something that the text does not name for that of
@@ -278,6 +311,7 @@ func convertGroups(s *streams, texts []string, opt convertOptions) error {
 
 // groupOf reads one group. With --p a mean and its n are enough.
 func groupOf(name, text string, opt convertOptions) (working.Arm, error) {
+	text = strings.TrimSpace(text)
 	found, err := understand(text, opt)
 	if err == nil && len(found) > 1 {
 		return working.Arm{}, fmt.Errorf("%s: %q holds %d results, one is needed", name, text, len(found))

@@ -73,6 +73,9 @@ func runDesk(ctx context.Context, s *streams, args []string, f *deskFlags) error
 		return err
 	}
 	defer book.Close()
+	if err := book.Decisions().Writable(); err != nil {
+		return err
+	}
 	pool := worker.NewPool(worker.Options{Workers: 2})
 	defer pool.Close()
 	opt := desk.Options{Book: book, Papers: &deskPapers{pool: pool}, ReadTyped: readTyped, Flags: flagMeanings(), Filter: f.filter}

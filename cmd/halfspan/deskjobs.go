@@ -247,7 +247,10 @@ func wordsOf(s string) func(yield func(int, string) bool) {
 		for from := 0; from < len(s); {
 			rest := strings.TrimLeft(s[from:], " \n\t\u00a0\u2009")
 			from = len(s) - len(rest)
-			word, _, _ := strings.Cut(rest, " ")
+			word := rest
+			if end := strings.IndexAny(rest, " \n\t"); end >= 0 {
+				word = rest[:end]
+			}
 			if word == "" {
 				return
 			}

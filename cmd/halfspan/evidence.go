@@ -247,10 +247,11 @@ func passageText(r working.Record) string {
 	return b.String()
 }
 
-// writeMarked writes copies of the PDFs with the results highlighted.
-func (e *evidenceWriter) writeMarked(ctx context.Context, rows []export.Row) (wrote int, missing []string, err error) {
+// writeMarked writes copies of the PDFs with the results highlighted. Papers of
+// formats without pages are named in passed: nothing of them is missing.
+func (e *evidenceWriter) writeMarked(ctx context.Context, rows []export.Row) (wrote int, missing, passed []string, err error) {
 	if err := os.MkdirAll(e.dir, 0o777); err != nil {
-		return 0, nil, fmt.Errorf("making the folder for the marked copies: %w", err)
+		return 0, nil, nil, fmt.Errorf("making the folder for the marked copies: %w", err)
 	}
 	var names outNames
 	for _, papers := range byPaper(rows) {
@@ -262,8 +263,12 @@ func (e *evidenceWriter) writeMarked(ctx context.Context, rows []export.Row) (wr
 			}
 		}
 		first := papers[0].Current().Working.Record
+		if len(notes) == 0 && first.Page == nil {
+			passed = append(passed, first.Paper)
+			continue
+		}
 		if len(notes) == 0 {
-			missing = append(missing, first.Paper+": it has no pages to mark")
+			missing = append(missing, first.Paper+": its results have no place on a page")
 			continue
 		}
 		var got marked
@@ -276,11 +281,11 @@ func (e *evidenceWriter) writeMarked(ctx context.Context, rows []export.Row) (wr
 			continue
 		}
 		if err := os.WriteFile(filepath.Join(e.dir, names.of(first.Paper, ".pdf")), got.PDF, 0o666); err != nil {
-			return wrote, missing, err
+			return wrote, missing, passed, err
 		}
 		wrote++
 	}
-	return wrote, missing, nil
+	return wrote, missing, passed, nil
 }
 
 // noteText is what a highlighted result says in the PDF.
@@ -336,19 +341,25 @@ func writeEvidence(ctx context.Context, s *streams, args []string, opt *exportOp
 	var missing []string
 	for _, kind := range []struct {
 		dir, what string
-		write     func(*evidenceWriter, context.Context, []export.Row) (int, []string, error)
+		write     func(*evidenceWriter, context.Context, []export.Row) (int, []string, []string, error)
 	}{
-		{opt.evidence, "cut-outs and passages", (*evidenceWriter).writeCutouts},
+		{opt.evidence, "cut-outs and passages", func(e *evidenceWriter, ctx context.Context, rows []export.Row) (int, []string, []string, error) {
+			wrote, missing, err := e.writeCutouts(ctx, rows)
+			return wrote, missing, nil, err
+		}},
 		{opt.marked, "marked copies", (*evidenceWriter).writeMarked},
 	} {
 		if kind.dir == "" {
 			continue
 		}
-		wrote, not, err := kind.write(&evidenceWriter{pool: pool, root: root, dir: kind.dir}, ctx, rows)
+		wrote, not, passed, err := kind.write(&evidenceWriter{pool: pool, root: root, dir: kind.dir}, ctx, rows)
 		if err != nil {
 			return err
 		}
 		fmt.Fprintf(s.err, "%d %s in %s.\n", wrote, kind.what, kind.dir)
+		if len(passed) > 0 {
+			fmt.Fprintf(s.err, "Without a marked copy, as files without pages: %s.\n", strings.Join(passed, ", "))
+		}
 		missing = append(missing, not...)
 	}
 	for _, m := range missing {

@@ -45,7 +45,7 @@ type streams struct {
 func run(args []string, in io.Reader, out, errOut io.Writer) int {
 	s := &streams{in: in, out: out, err: errOut}
 	root := newRoot(s)
-	root.SetArgs(args)
+	root.SetArgs(textArguments(args))
 	root.SetIn(in)
 	root.SetOut(out)
 	root.SetErr(errOut)

@@ -8,6 +8,7 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"path/filepath"
 	"time"
 )
 
@@ -86,6 +87,27 @@ func (d *Decisions) Checker() string { return d.checker }
 
 // Path is the file's path; the file may not be there yet.
 func (d *Decisions) Path() string { return d.path }
+
+// Writable says beforehand whether decisions can be kept: whoever has looked at a
+// page is not to learn it afterwards.
+func (d *Decisions) Writable() error {
+	// SQLite keeps a journal beside the file, so the folder counts as well.
+	probe, err := os.CreateTemp(filepath.Dir(d.path), ".halfspan-*.ledger-journal")
+	if err != nil {
+		return &FileError{d.path, ErrReadOnly, "make the folder writable, or copy it with its ledger to a place of your own: nothing that you decide could be kept"}
+	}
+	if err := errors.Join(probe.Close(), os.Remove(probe.Name())); err != nil {
+		return &FileError{Path: d.path, Err: err}
+	}
+	f, err := os.OpenFile(d.path, os.O_RDWR, 0)
+	if errors.Is(err, os.ErrNotExist) {
+		return nil
+	}
+	if err != nil {
+		return &FileError{d.path, ErrReadOnly, "make the file writable: nothing that you decide could be kept"}
+	}
+	return f.Close()
+}
 
 // All lists every decision after the one numbered after, in the order in which
 // they were taken, those taken back and the taking back included.

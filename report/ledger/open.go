@@ -92,10 +92,12 @@ func checkHeader(path string, how access) error {
 		return &FileError{path, ErrDamaged, "it is a folder"}
 	case !info.Mode().IsRegular():
 		return &FileError{path, ErrDamaged, "it is a pipe, a socket or a device"}
-	case info.Size() == 0 && how != creating:
-		return &FileError{path, ErrDamaged, "it is empty: " + emptyHint(path)}
+	case info.Size() == 0 && how != creating && checkerOf(path) == "":
+		return &FileError{path, ErrDamaged, "it is empty: scan again; decisions are kept in files of their own"}
 	case info.Size() == 0:
-		return nil // as SQLite leaves it when it is killed while making the file
+		// As SQLite leaves it when it is killed while making the file, and for a
+		// moment when a checker takes the first decision.
+		return nil
 	}
 	f, err := os.Open(path)
 	if err != nil {
@@ -107,14 +109,6 @@ func checkHeader(path string, how access) error {
 		return damagedError(path)
 	}
 	return nil
-}
-
-// emptyHint is what to do about a file that was made and never filled.
-func emptyHint(path string) string {
-	if checkerOf(path) != "" {
-		return "put back a copy, or move it away to begin anew"
-	}
-	return "scan again; decisions are kept in files of their own"
 }
 
 // migrate takes the steps that the file has not seen, all or none. It leaves a
