@@ -1,6 +1,7 @@
 package grid
 
 import (
+	"strconv"
 	"strings"
 
 	"halfspan/extract/paper"
@@ -66,7 +67,7 @@ func newReader(s *sheet, body box) *reader {
 		}
 	}
 	rd.head = rd.headLines()
-	for rd.head > 0 && rd.head+1 < len(rd.lines) && rd.statisticLine(rd.head) {
+	for rd.head > 0 && rd.head+1 < len(rd.lines) && (rd.statisticLine(rd.head) || rd.stepsLine(rd.head)) {
 		rd.head++
 	}
 	rd.cs = s.findColumns(rd.lines[rd.head:], rd.lines[:rd.head], rd.em)
@@ -122,6 +123,36 @@ func (rd *reader) statisticLine(i int) bool {
 		}
 	}
 	return true
+}
+
+// stepsLine reports whether a line below the rule of the heading gives the steps
+// of a scale that the heading names, as "24 48 72" under "Hours": no row heading,
+// bare numbers that grow, over cells that hold more than one number.
+func (rd *reader) stepsLine(i int) bool {
+	rs := rd.s.runs(&rd.lines[i], wideGap)
+	if len(rs) < 2 || rs[0].x0 < rd.area.x0+rd.area.width()/6 {
+		return false
+	}
+	last := -1.0
+	for k := range rs {
+		v, err := strconv.ParseFloat(rd.s.join(rs[k].toks), 64)
+		if err != nil || v <= last {
+			return false
+		}
+		last = v
+	}
+	for n := i + 1; n < len(rd.lines) && n <= i+4; n++ {
+		down, more := rd.s.runs(&rd.lines[n], wideGap), 0
+		for k := range down {
+			if t := rd.s.join(down[k].toks); down[k].x1 > rs[0].x0 && isFigure(t) && strings.ContainsAny(t, "±([") {
+				more++
+			}
+		}
+		if more >= len(rs) {
+			return true
+		}
+	}
+	return false
 }
 
 // boldLines counts the lines at the top that are bold throughout, if others

@@ -113,14 +113,17 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 			parts[at].figure = parts[at].figure || p.figure
 		}
 	}
-	if p := &parts[0]; len(parts) == 2 && p.c0 > 0 && !p.figure && parts[1].figure && rd.wordShare(p.c0) < 50 {
-		p.c0 = 0 // a row group set in the middle, with its p value
+	group := false // set in the middle, with its p value
+	if p := &parts[0]; len(parts) == 2 && !p.figure && parts[1].figure && rd.wordShare(p.c0) < 50 && rd.offStub(p.c0, p.x0, parts[1].c0) {
+		p.c0, p.c1, group = 0, parts[1].c0-1, true
 	}
 	label := len(parts) == 1 && !parts[0].figure
 	heading := rd.headingRow(lines)
 	for _, p := range parts {
 		c := paper.Cell{Row: row, Col: p.c0, RowSpan: 1, ColSpan: p.c1 - p.c0 + 1, Head: heading || p.c0 == 0}
-		if label {
+		if group && p.c0 == 0 {
+			c.Head = true
+		} else if label {
 			c.Head = true
 			if rd.groupInMiddle(p.c0, p.c1, p.x0, p.x1) {
 				c.Col, c.ColSpan = 0, len(rd.cs)+1
@@ -132,6 +135,12 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 		}
 		g.put(c, p.toks)
 	}
+}
+
+// offStub reports whether words that begin at x, in column c, with a figure in
+// column next, stand right of the row headings.
+func (rd *reader) offStub(c, x, next int) bool {
+	return c > 0 || next > 2 && x >= rd.cs[0].x0
 }
 
 // finishFigures takes the second part of a figure that a cell breaks over two
