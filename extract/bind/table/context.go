@@ -105,7 +105,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		case partContrast:
 			x.contrast = true
 			f.parseContrast(l, x)
-			ts := f.lex.timesIn(noCovariates(l.text))
+			ts := f.lex.timesIn(noCovariates(againstTime.ReplaceAllString(l.text, " ")))
 			if x.within && len(ts) > 1 {
 				ts = ts[len(ts)-1:] // what lies between two times stands at the later one
 			}

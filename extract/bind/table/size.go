@@ -169,11 +169,11 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	for _, c := range nCols {
 		other := f.path(e.row, c)
 		shared := 0
-		for i := 0; i < min(len(path), len(other))-1 && path[i].cell == other[i].cell; i++ {
+		for i := 0; i < min(len(path), len(other)-1) && path[i].cell == other[i].cell; i++ {
 			shared++
 		}
 		switch {
-		case len(path) > 1 && len(other) > 1 && shared == 0:
+		case len(other) > 1 && shared == 0 && (len(path) > 1 || f.overNames(other[0])):
 			continue
 		case shared > best || shared == best && c < e.col:
 			pick, best = c, shared
@@ -203,6 +203,12 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	}
 	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast,
 		shared: len(nCols) == 1 && best == 0 && len(f.armNames()) > 1}, true
+}
+
+// overNames reports that a heading names a group of its own.
+func (f *frame) overNames(l label) bool {
+	k := f.partOf(l).kind
+	return k == partArm || k == partOther
 }
 
 // labelSize reads an n in the labels of the row.
