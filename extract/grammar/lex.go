@@ -13,6 +13,7 @@ import (
 // skipped space rebuild the text.
 func Lex(in Text) []Token {
 	l := lexer{in: in, s: in.S, comma: in.DecimalComma || leavesNoChoice(in.S)}
+	l.mixed = !l.comma && commasBesidePoints(in.S)
 	l.toks = make([]Token, 0, len(in.S)/4+4)
 	for l.pos < len(l.s) {
 		l.next()
@@ -26,6 +27,7 @@ type lexer struct {
 	pos    int
 	spaced bool // space was skipped since the last token
 	comma  bool // a comma between digits is a decimal mark
+	mixed  bool // one may be, beside points
 	raised int  // index of the first raised span that may still come
 	low    int
 	toks   []Token

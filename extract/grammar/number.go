@@ -1,6 +1,7 @@
 package grammar
 
 import (
+	"halfspan/extract/pattern"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -10,7 +11,7 @@ import (
 // an exponent. Two misprints that are common are read and marked as mended: a
 // doubled point and a space after the point of "0. 92".
 func (l *lexer) number() {
-	n := numberReader{s: l.s, pos: l.pos, stop: l.stop(), comma: l.comma}
+	n := numberReader{s: l.s, pos: l.pos, stop: l.stop(), comma: l.comma, mixed: l.mixed && !l.inList()}
 	kind := n.read(len(l.toks) == 0 || l.spaced)
 	l.emit(kind, n.pos, n.value.String())
 	l.toks[len(l.toks)-1].Mended = n.mended
@@ -20,6 +21,7 @@ type numberReader struct {
 	s         string
 	pos, stop int
 	comma     bool
+	mixed     bool
 	value     strings.Builder
 	mended    bool
 }
@@ -105,6 +107,8 @@ func (n *numberReader) fraction() bool {
 		return false
 	case isPoint(r) && n.digitAt(n.pos+size):
 	case r == ',' && n.comma && n.digitAt(n.pos+size):
+	case r == ',' && n.mixed && n.loneFraction(n.pos+size):
+		n.mended = true
 	case isPoint(r) && n.value.Len() > 0 && strings.HasPrefix(n.s[n.pos+size:], string(r)) && n.digitAt(n.pos+2*size):
 		size *= 2
 		n.mended = true
@@ -189,6 +193,50 @@ func leavesNoChoice(s string) bool {
 		}
 	}
 	return outside > 0 && spread
+}
+
+// besides is a value with a decimal comma and one more in the spread behind it:
+// "8,1 mg/mL (95% CI 7,2 to 9,0", "8,1 ± 1,3".
+var besides = pattern.MustCompile(`(?:^|[\s=])[0-9]{1,3},[0-9]{1,2}(?:\s?[A-Za-zµμ%°]+(?:/[A-Za-z]+)?)?\s*(?:±\s*|[(\[](?:[^()\[\]]{0,30}[^()\[\],.0-9])?)[0-9]{1,3},[0-9]{1,2}(?:[^0-9,.]|[,.](?:\s|$)|$)`)
+
+// commasBesidePoints reports that a text prints decimal commas though it has
+// decimal points too.
+func commasBesidePoints(s string) bool {
+	for i := 1; i+1 < len(s); i++ {
+		if s[i] == ',' && isDigit(rune(s[i-1])) && isDigit(rune(s[i+1])) && !threeDigits(s[i+1:]) {
+			return besides.MatchString(s)
+		}
+	}
+	return false
+}
+
+// inList reports that the number to come is a further one of a list without
+// spaces, or the degrees of freedom of a test: "12,14,17", "F(2,58)".
+func (l *lexer) inList() bool {
+	k := len(l.toks) - 1
+	if k < 0 || l.spaced {
+		return false
+	}
+	switch l.toks[k].Kind {
+	case TokComma:
+		return true
+	case TokOpen:
+		return k > 0 && l.toks[k-1].Kind == TokWord && len(l.toks[k-1].Value) == 1
+	}
+	return false
+}
+
+// loneFraction reports one or two digits at i that end the number, and no list.
+func (n *numberReader) loneFraction(i int) bool {
+	if n.value.Len() > 3 || strings.Contains(n.value.String(), ".") || !n.digitAt(i) {
+		return false
+	}
+	for i++; n.digitAt(i); i++ {
+		if n.digitAt(i - 2) {
+			return false
+		}
+	}
+	return !(i+1 < n.stop && (n.s[i] == ',' || n.s[i] == '.') && n.digitAt(i+1))
 }
 
 func threeDigits(s string) bool {

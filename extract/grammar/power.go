@@ -74,7 +74,8 @@ func (p *parser) power(i int) (string, Span, int) {
 	end, exponent := i, ""
 	switch {
 	case len(glued) == 3 || len(glued) == 4 && glued[2] != '0':
-		if cross {
+		small := p.kind(start-1) != TokNumber || value(p.toks[start-1].Value) < 10
+		if cross && glued[2] != '0' && small { // "12 × 105 cm" has two sides
 			exponent = glued[2:]
 		}
 	case glued != "10":
@@ -89,6 +90,28 @@ func (p *parser) power(i int) (string, Span, int) {
 		return "", none, start
 	}
 	return "10^" + exponent, Span{p.toks[start].Start, p.toks[end-1].End}, end
+}
+
+// smallP puts the power of a p value at token k into its value: "2.1 × 10^-5",
+// "10⁻⁵". It gives the token behind.
+func (p *parser) smallP(n *Number, k int) int {
+	exponent, end := "", k+1
+	if power, at, next := p.power(k + 1); next > k+1 {
+		exponent, end, n.End = strings.TrimPrefix(power, "10^"), next, at.End
+	} else if n.Value == "10" {
+		if p.caret(k + 1) {
+			exponent, end = p.exponent(k + 2)
+		} else if p.kind(k+1) == TokRaised {
+			exponent, end = raisedDigits.Replace(p.toks[k+1].Value), k+2
+		}
+		n.Value, n.End = "1", p.toks[end-1].End
+	}
+	if e, err := strconv.Atoi(exponent); err == nil && e < 0 && e > -300 {
+		n.Value += "e" + strconv.Itoa(e)
+		return end
+	}
+	n.Value, n.End = p.toks[k].Value, p.toks[k].End
+	return k + 1
 }
 
 func (p *parser) caret(i int) bool {

@@ -352,8 +352,9 @@ func (p *parser) pValue(i int) int {
 	}
 	t := p.toks[k]
 	n := Number{Span: t.Span, Value: t.Value, Rel: rel, Mended: t.Mended}
-	p.add(Item{Kind: KindPValue, Span: Span{p.toks[i].Start, t.End}, Value: n, Name: "p"})
-	return k + 1
+	end := p.smallP(&n, k)
+	p.add(Item{Kind: KindPValue, Span: Span{p.toks[i].Start, n.End}, Value: n, Name: "p"})
+	return end
 }
 
 // test reads a test statistic or degrees of freedom: "t(41) = 2.3",

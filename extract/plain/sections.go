@@ -48,7 +48,7 @@ func looksHeading(s string) bool {
 }
 
 // resultLike is what a line of values holds and a heading does not.
-var resultLike = pattern.MustCompile(`±|\d\s*\(|\d[–-]\d.*\d[–-]\d|=`)
+var resultLike = pattern.MustCompile(`±|\d\s*\(|\d[–-]\d.*\d[–-]\d|=|\d.*[(\[](?:\d\d ?% ?CI|SDs?|SE|SEM|IQR|range)[:,]? ?\d`)
 
 // heading takes s as a heading if it is one, and moves to its zone. Lines from
 // next on follow it.

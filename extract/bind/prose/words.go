@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
 )
 
 // functionWords are what sentences have and rows of a table have not.
@@ -58,8 +59,17 @@ func worded(it *grammar.Item) bool {
 // took for a paragraph do not: their results have lost their headings.
 func (p *para) isProse() bool {
 	t := p.tally(0, len(p.s))
-	return t.words >= 6 && t.function >= 2 && (t.numbers <= t.words || t.function >= 4 && 2*t.numbers <= 3*t.words)
+	return t.words >= 6 && t.function >= 2 && (t.numbers <= t.words || t.function >= 4 && 2*t.numbers <= 3*t.words) || p.shortSentence(t)
 }
+
+// shortSentence reports a block that is one short sentence, from a capital over
+// a verb to the full stop: "Mean mass was 12.1 kg (SD 1.2; n = 9)."
+func (p *para) shortSentence(t tally) bool {
+	s := strings.TrimSpace(p.s)
+	return t.words >= 4 && t.numbers <= t.words && capital(s) && strings.HasSuffix(s, ".") && len(p.ends) == 1 && verb.MatchString(s)
+}
+
+var verb = pattern.MustCompile(`[\pL)] (?:was|were|is|are|had|has|averaged|rose|fell|weighed) (?:[\pL ]{0,20})[0-9<>−-]`)
 
 // inSentence reports that the sentence around byte b has words enough for its
 // numbers.

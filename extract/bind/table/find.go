@@ -186,6 +186,9 @@ func (f *frame) rowKey(e *estimate) string {
 
 // settleSpread fills in the spread; false where it is none after all.
 func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *spread, rd *reading, all []statement, x *context) bool {
+	if _, ok := grammar.CommonPower(e.value, sp.value, sp.lower, sp.upper); !ok {
+		return false // digits of different powers of ten do not belong together
+	}
 	if rd.given == result.Unstated && !rd.contrary {
 		st, _, _ := nearStatistic(all, rankNote)
 		b.fromPaper(r, sp, rd, string(st))
@@ -294,6 +297,10 @@ func printed(n grammar.Number) string {
 func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *context, rd *reading) {
 	r.Arm, r.Arm2, r.Time, r.Subgroup = x.arm, x.arm2, x.time, x.subgroup
 	r.Outcome, r.Unit, r.Heading = x.outcome, x.unit, x.heading
+	if power := e.value.Power; power != "" {
+		r.Unit = strings.TrimSpace("×" + power + " " + r.Unit)
+		r.Raise("power-of-ten", "the digits are printed with the factor ×"+power+", which stands in the unit")
+	}
 	r.Page = e.cell.Text.At(e.value.Start).Page
 	src := func(field string, l label, text, from string) {
 		if text != "" && from != "" {
