@@ -276,6 +276,25 @@ func TestNothingIsLostWhenTheServerGoes(t *testing.T) {
 	b.until("seen here", `document.getElementById('progress').textContent.startsWith('1 of')`)
 }
 
+func TestSettlingByHand(t *testing.T) {
+	b := tab{t, browser(t)}
+	r, book := disagreement(t)
+	b.open(r.address)
+	b.until("both sides", `document.querySelectorAll('.two section').length === 2 && document.querySelectorAll('.two .differs').length > 0`)
+	b.shot("settle")
+	b.run("take without a reason", chromedp.Click(`//button[contains(., 'CD holds')]`))
+	b.until("asked why", `document.activeElement.id === 'settle-why'`)
+	b.run("why", chromedp.KeyEvent("the heading says 22"), chromedp.Click(`//button[contains(., 'CD holds')]`))
+	b.until("settled", `document.getElementById('progress').textContent.startsWith('1 of 1')`)
+	rows, err := book.Rows()
+	if err != nil {
+		t.Fatal(err)
+	}
+	if d := rows[0].Decision; d == nil || d.Extra["take"] != "CD" || *d.Decided.Working.Record.N != 22 {
+		t.Errorf("settled as %+v", d)
+	}
+}
+
 func TestTextOfPapersIsNeverMarkup(t *testing.T) {
 	b := tab{t, browser(t)}
 	dir := t.TempDir()

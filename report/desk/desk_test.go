@@ -443,7 +443,10 @@ func TestTypeFirstHidesAndCompares(t *testing.T) {
 	}
 }
 
-func TestSettling(t *testing.T) {
+// disagreement has two checkers decide the first result otherwise, and gives a
+// desk for a third who settles it.
+func disagreement(t *testing.T) (*running, *ledger.Book) {
+	t.Helper()
 	dir := t.TempDir()
 	decide := func(checker string, n string) {
 		book := newBook(t, dir, checker)
@@ -471,7 +474,11 @@ func TestSettling(t *testing.T) {
 		t.Cleanup(func() { file.Close() })
 		opt.Sides[i] = file
 	}
-	r := start(t, opt)
+	return start(t, opt), book
+}
+
+func TestSettling(t *testing.T) {
+	r, book := disagreement(t)
 	r.enter()
 	a := r.rows()
 	if len(a.Rows) != 1 || len(a.Rows[0].Cells) != 1 {
