@@ -156,6 +156,9 @@ func (f *frame) findRowRole(r int) role {
 	case roleBound:
 		return role
 	case roleSpread:
+		if f.otherShortForm(l) {
+			return roleNoneOf(role)
+		}
 		if len(p.rest) <= 1 || len(p.pairs) == 1 && p.pairs[0].Start == 0 {
 			return role
 		}
@@ -165,6 +168,35 @@ func (f *frame) findRowRole(r int) role {
 		}
 	}
 	return roleNoneOf(role)
+}
+
+var (
+	shortSpread   = pattern.MustCompile(`^(?:SD|SE)$`)
+	shortFormNote = pattern.MustCompile(`\b(SD|SE)\s*[,:=]\s*([a-z]+)`)
+	tumourLabel   = pattern.MustCompile(`^(?:CR|PR|PD)$`)
+)
+
+// otherShortForm reports a row labelled SD that is no standard deviation: a note
+// says what else it stands for, or it stands among the grades of response, where
+// it is stable disease.
+func (f *frame) otherShortForm(l label) bool {
+	if !shortSpread.MatchString(l.text) {
+		return false
+	}
+	for _, n := range f.notes.list {
+		for _, m := range shortFormNote.FindAllStringSubmatch(clean(n.run.S), -1) {
+			if m[1] == l.text && m[2] != "standard" {
+				return true
+			}
+		}
+	}
+	grades := 0
+	for r := f.head; r < f.tab.Rows; r++ {
+		if cell := f.cellAt(r, f.stub-1); cell != nil && tumourLabel.MatchString(clean(cell.Text.S)) {
+			grades++
+		}
+	}
+	return grades >= 2
 }
 
 func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
