@@ -113,8 +113,14 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 			parts[at].figure = parts[at].figure || p.figure
 		}
 	}
-	group := false // set in the middle, with its p value
-	if p := &parts[0]; len(parts) == 2 && !p.figure && parts[1].figure && rd.wordShare(p.c0) < 50 && rd.offStub(p.c0, p.x0, parts[1].c0) {
+	figures := 0
+	for _, p := range parts[1:] {
+		if p.figure {
+			figures++
+		}
+	}
+	group := false // set in the middle, with its p value or those of a few comparisons
+	if p := &parts[0]; !p.figure && figures > 0 && figures == len(parts)-1 && (figures == 1 || figures*3 <= len(rd.cs)+1) && rd.offStub(p.c0, p.x0, parts[1].c0) {
 		p.c0, p.c1, group = 0, parts[1].c0-1, true
 	}
 	label := len(parts) == 1 && !parts[0].figure
@@ -140,7 +146,7 @@ func (rd *reader) writeRow(g *cellGrid, row int, lines []int) {
 // offStub reports whether words that begin at x, in column c, with a figure in
 // column next, stand right of the row headings.
 func (rd *reader) offStub(c, x, next int) bool {
-	return c > 0 || next > 2 && x >= rd.cs[0].x0
+	return c > 0 && rd.wordShare(c) < 50 || c == 0 && next > 2 && x >= rd.cs[0].x0
 }
 
 // finishFigures takes the second part of a figure that a cell breaks over two
