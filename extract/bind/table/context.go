@@ -272,7 +272,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 	}
 	for _, g := range ln.groups {
 		for _, l := range f.lines[g].labels {
-			if !f.onlyCounts(l) || len(ln.labels) == 0 || f.subgroupLike(f.lex.name(ln.labels[len(ln.labels)-1].text)) {
+			if !f.onlyCounts(l) || len(ln.labels) == 0 || f.furtherIn(e.row, g) || f.subgroupLike(f.lex.name(ln.labels[len(ln.labels)-1].text)) {
 				take(l, false)
 			}
 		}
@@ -320,6 +320,13 @@ var armBehind = pattern.MustCompile(`(?i)^([^()]*[a-z][^()]*)[(]([^()]+? (?:grou
 
 // fromBaseline says what a change is measured from, not when.
 var fromBaseline = pattern.MustCompile(`(?i)\b(?:changes?|reductions?|decreases?|increases?|improvements?|differences?)(?: scores?)? (?:from|since|vs\.?|versus|relative to|compared (?:with|to)) (?:the )?baseline\b`)
+
+// furtherIn reports that the label of row r is printed further in than that of
+// its group g.
+func (f *frame) furtherIn(r, g int) bool {
+	a, b := f.grid[r][0], f.grid[g][0]
+	return a != nil && b != nil && a.Indent > b.Indent
+}
 
 // onlyCounts reports a group label over counts, "Colour, n (%)": a row with a
 // spread that follows its rows is no longer under it.

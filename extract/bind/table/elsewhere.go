@@ -188,7 +188,25 @@ func (b *binder) otherSize(i int, arm string) (size, bool) {
 		return size{}, false
 	}
 	a := b.arms[best]
+	if b.otherN(a) {
+		return size{}, false
+	}
 	return sizeOfLabel(a.n, a.l, result.NElsewhere, "heading in "+tableName(b.frames[a.table])), true
+}
+
+// otherN reports that further down in its table the arm is headed with another
+// n, so that neither is the one of another table.
+func (b *binder) otherN(a armSize) bool {
+	f := b.frames[a.table]
+	if a.l.cell == nil || len(f.mid) == 0 {
+		return false
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		if n, l, ok := f.headingN(r, a.l.cell.Col); ok && n != a.n && l.cell != nil && armWords(b.vocab.lex.name(l.text)) == a.name {
+			return true
+		}
+	}
+	return false
 }
 
 // within reports that all words of the short name stand in the long one.
