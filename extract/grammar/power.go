@@ -81,6 +81,8 @@ func (p *parser) power(i int) (string, Span, int) {
 	case glued != "10":
 	case p.caret(i):
 		exponent, end = p.exponent(i + 1)
+	case p.kind(i) == TokMark && p.kind(i+1) == TokMark && p.toks[i].Value == "*" && p.toks[i+1].Value == "*":
+		exponent, end = p.exponent(i + 2)
 	case p.kind(i) == TokRaised && !p.toks[i].Spaced:
 		exponent, end = raisedDigits.Replace(p.toks[i].Value), i+1
 	case cross && p.kind(i) == TokDash && !p.toks[i].Spaced && p.kind(i+1) == TokNumber && !p.toks[i+1].Spaced && whole(p.toks[i+1].Value):
@@ -150,6 +152,17 @@ func (n *Number) give(power string, at Span) {
 	}
 }
 
+// giveAll puts a power on an estimate and its spread.
+func (it *Item) giveAll(power string, at Span) {
+	switch it.Kind {
+	case KindNumber, KindInterval, KindPlusMinus, KindSpread:
+		it.Value.give(power, at)
+		it.Of.give(power, at)
+		it.Lower.give(power, at)
+		it.Upper.give(power, at)
+	}
+}
+
 // outer reads a power behind a closing bracket, which holds for all that stands
 // in the bracket, and for the number right before it: "(2.1 ± 0.4) × 10^5",
 // "2.1 (0.4) × 10^5".
@@ -157,6 +170,12 @@ func (p *parser) outer(i int) int {
 	power, at, end := p.power(i)
 	if end == i {
 		return i
+	}
+	if n := len(p.out.Items); p.kind(i-1) == TokOpen && p.kind(end) == TokClose && n > 0 {
+		if last := &p.out.Items[n-1]; strings.TrimSpace(p.src[last.End:p.toks[i-1].Start]) == "" {
+			last.giveAll(power, at) // "2.1 ± 0.4 (×10^5)"
+		}
+		return end
 	}
 	if p.kind(i-1) != TokClose || p.lastOpen == 0 {
 		return end
@@ -169,13 +188,7 @@ func (p *parser) outer(i int) int {
 		if !inside && !before {
 			break
 		}
-		switch it.Kind {
-		case KindNumber, KindInterval, KindPlusMinus, KindSpread:
-			it.Value.give(power, at)
-			it.Of.give(power, at)
-			it.Lower.give(power, at)
-			it.Upper.give(power, at)
-		}
+		it.giveAll(power, at)
 		if before {
 			break
 		}

@@ -113,6 +113,7 @@ func (p *para) setUnit(r *result.Result, c *cand) {
 	defer func() {
 		if c.est.Power != "" {
 			r.Unit = strings.TrimSpace("×" + c.est.Power + " " + r.Unit)
+			p.source(r, "unit", c.est.PowerAt)
 		}
 	}()
 	if c.est.Percent || c.value.Percent || c.lower.Percent {

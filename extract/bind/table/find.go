@@ -334,6 +334,9 @@ func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *co
 	}
 	r.Snippet = snippet(x, e, sp)
 	r.Evidence.Baseline = strings.Contains(fold(x.time), "baseline") || fold(x.time) == "pre" || strings.HasPrefix(fold(x.time), "before")
+	if at := e.value.PowerAt; at.End > 0 && at.End <= len(e.cell.Text.S) {
+		r.Sources = append(r.Sources, result.Source{Field: "unit", Place: e.cell.Text.Between(at.Start, at.End), Text: e.cell.Text.S[at.Start:at.End]})
+	}
 	if e.value.Mended || first.Mended {
 		r.Raise(FlagMended, "printed with a slip; kept as printed")
 	}
