@@ -22,8 +22,9 @@ import (
 
 // Options say how a paper is to be read.
 type Options struct {
-	OCR      bool      // read page images without text through tesseract, where it is on PATH
-	Progress func(int) // called after each page with its number, may be nil: the sign of life
+	OCR       bool      // read page images without text through tesseract, where it is on PATH
+	OneReader bool      // read a PDF by the sandboxed engine alone: for one over which a process was lost
+	Progress  func(int) // called after each page with its number, may be nil: the sign of life
 
 	Preparing   func()    // called once if the PDF reader must first be compiled (some seconds), may be nil
 	Recognising func(int) // called with the number of a page before tesseract reads it (up to two minutes), may be nil
@@ -50,7 +51,7 @@ func Read(path string, content []byte, opt Options) (*paper.Document, error) {
 
 // readPDF reads the glyphs of a PDF and lays them out.
 func readPDF(path string, content []byte, opt Options) (*paper.Document, error) {
-	glyphs, err := pdf.Read(content, pdf.Options{OCR: opt.OCR, Progress: opt.Progress, Preparing: opt.Preparing, Recognising: opt.Recognising})
+	glyphs, err := pdf.Read(content, pdf.Options{OCR: opt.OCR, OneReader: opt.OneReader, Progress: opt.Progress, Preparing: opt.Preparing, Recognising: opt.Recognising})
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", path, err)
 	}

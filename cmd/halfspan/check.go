@@ -52,6 +52,7 @@ page. ` + cautionsHelp,
 	flags.add(cmd)
 	addFilter(cmd, &filter)
 	cmd.Flags().StringVar(&order, "order", "doubt", "doubt (the doubtful first) or paper")
+	complete(cmd, "order", review.Orders())
 	return cmd
 }
 

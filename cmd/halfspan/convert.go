@@ -73,6 +73,8 @@ groups are taken together.`,
 	f.Float64Var(&opt.level, "level", 0, "level of the interval in percent, where the text does not say it")
 	f.StringVar(&opt.statistic, "statistic", "", "what the estimate is: "+strings.Join(working.Statistics(), ", "))
 	f.StringVar(&opt.as, "as", "", "what its spread is: "+strings.Join(working.GivenAs(), ", "))
+	complete(cmd, "statistic", working.Statistics())
+	complete(cmd, "as", working.GivenAs())
 	return cmd
 }
 

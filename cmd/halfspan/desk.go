@@ -17,7 +17,6 @@ import (
 
 	"halfspan/convert/working"
 	"halfspan/extract"
-	"halfspan/extract/worker"
 	"halfspan/report/desk"
 	"halfspan/report/ledger"
 )
@@ -76,7 +75,7 @@ func runDesk(ctx context.Context, s *streams, args []string, f *deskFlags) error
 	if err := book.Decisions().Writable(); err != nil {
 		return err
 	}
-	pool := worker.NewPool(worker.Options{Workers: 2})
+	pool := newPool(2)
 	defer pool.Close()
 	opt := desk.Options{Book: book, Papers: &deskPapers{pool: pool}, ReadTyped: readTyped, Flags: flagMeanings(), Filter: f.filter}
 	switch {

@@ -336,7 +336,7 @@ func writeEvidence(ctx context.Context, s *streams, args []string, opt *exportOp
 	if err != nil {
 		return err
 	}
-	pool := worker.NewPool(worker.Options{})
+	pool := newPool(0)
 	defer pool.Close()
 	var missing []string
 	for _, kind := range []struct {

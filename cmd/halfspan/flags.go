@@ -15,7 +15,16 @@ func newFlags(s *streams) *cobra.Command {
 		Long: `Every flag that reading or working may raise, in order: its name, what it does to
 the rating of the reading (none, look, doubtful), what it means and what to do. A
 reading is as good as its worst flag; a reading without such flags is clear.`,
+		Example: `  halfspan flags
+  halfspan flags n-missing`,
 		Args: cobra.MaximumNArgs(1),
+		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
+			var names []string
+			for _, f := range working.Flags() {
+				names = append(names, f.Name)
+			}
+			return names, cobra.ShellCompDirectiveNoFileComp
+		},
 		RunE: func(_ *cobra.Command, args []string) error {
 			p := printer{out: s.out, width: min(terminalWidth(s.out), 80)}
 			shown := 0

@@ -24,10 +24,32 @@ type job struct {
 	Path     string          `json:"path"` // to open it
 	Name     string          `json:"name"` // as it is to stand in the records
 	OCR      bool            `json:"ocr,omitempty"`
+	Again    bool            `json:"again,omitempty"`    // a worker was lost over it: read with more care
 	Page     int             `json:"page,omitempty"`     // only this page, for the tasks that show a paper; 0 all
 	Width    int             `json:"width,omitempty"`    // of a picture, in pixels
 	Evidence json.RawMessage `json:"evidence,omitempty"` // what to show of it, for the tasks that write evidence
 	Form     string          `json:"form,omitempty"`     // of the output, for the tasks that have several
+}
+
+// newPool makes the pool of worker processes, as many as there are cores where
+// workers is 0.
+func newPool(workers int) *worker.Pool {
+	return worker.NewPool(worker.Options{Workers: workers, Again: secondTry})
+}
+
+// secondTry is the job to run after a worker was lost over it: our own PDF
+// reader may have been why, so it is left out.
+func secondTry(request []byte) []byte {
+	var j job
+	if err := json.Unmarshal(request, &j); err != nil {
+		return request // the worker says what is wrong with it
+	}
+	j.Again = true
+	again, err := json.Marshal(j)
+	if err != nil {
+		return request
+	}
+	return again
 }
 
 // A task makes something of a document, in the worker process.
@@ -101,6 +123,7 @@ func work(request []byte, alive worker.Alive) ([]byte, error) {
 	}
 	doc, err := extract.Read(j.Path, content, extract.Options{
 		OCR:       j.OCR,
+		OneReader: j.Again,
 		Progress:  func(page int) { alive(fmt.Sprintf("page %d", page), 0) },
 		Preparing: func() { alive("preparing the PDF reader, once", preparing) },
 		Recognising: func(page int) {

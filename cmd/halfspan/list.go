@@ -57,6 +57,17 @@ func addFilter(cmd *cobra.Command, f *review.Filter) {
 	cmd.Flags().StringVar(&f.Time, "time", "", "part of the time point")
 	cmd.Flags().StringVar(&f.Statistic, "statistic", "", "mean, mean difference, median, ratio, ...")
 	cmd.Flags().StringVar(&f.Use, "use", "", "printed, converted or withheld")
+	for flag, words := range review.FilterWords() {
+		complete(cmd, flag, words)
+	}
+}
+
+// complete offers words for a flag to the shell.
+func complete(cmd *cobra.Command, flag string, words []string) {
+	// It fails only for a flag that the command does not have.
+	if err := cmd.RegisterFlagCompletionFunc(flag, cobra.FixedCompletions(words, cobra.ShellCompDirectiveNoFileComp)); err != nil {
+		panic(err)
+	}
 }
 
 func list(s *streams, args []string, flags *ledgerFlags, filter *review.Filter, tsv bool) error {

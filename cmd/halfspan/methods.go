@@ -13,7 +13,19 @@ func newMethods(s *streams) *cobra.Command {
 	return &cobra.Command{
 		Use:   "methods [NAME]",
 		Short: "the methods: formula, conditions, source, how each was checked",
-		Args:  cobra.MaximumNArgs(1),
+		Long: `List the methods, or explain the ones that a record names: formula, conditions,
+source, and how each was checked.`,
+		Example: `  halfspan methods
+  halfspan methods sd-from-ci
+  halfspan methods "luo-quartiles with wan-quartiles"`,
+		Args: cobra.MaximumNArgs(1),
+		ValidArgsFunction: func(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
+			var names []string
+			for _, m := range convert.Methods() {
+				names = append(names, m.Name)
+			}
+			return names, cobra.ShellCompDirectiveNoFileComp
+		},
 		RunE: func(_ *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				return listMethods(s)

@@ -15,7 +15,6 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"halfspan/extract/worker"
 	"halfspan/report/ledger"
 	"halfspan/report/review"
 )
@@ -219,7 +218,7 @@ func (sc *scanning) read(ctx context.Context, papers []paperFile) error {
 		}
 		jobs = append(jobs, job{Task: "results", Path: f.path, Name: f.name, OCR: sc.opt.ocr})
 	}
-	pool := worker.NewPool(worker.Options{})
+	pool := newPool(0)
 	defer pool.Close()
 	watch, clear := newWatcher(sc.s.err, len(jobs))
 	defer clear()

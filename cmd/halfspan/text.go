@@ -12,7 +12,6 @@ import (
 	"github.com/spf13/cobra"
 
 	"halfspan/extract/paper"
-	"halfspan/extract/worker"
 )
 
 func newText(s *streams) *cobra.Command {
@@ -82,7 +81,7 @@ func (w *showing) run(cmd *cobra.Command, s *streams, files []string) error {
 	for i, f := range g.papers {
 		jobs[i] = job{Task: w.task, Path: f.path, Name: f.name, Page: w.page, Form: w.form, OCR: w.ocr}
 	}
-	pool := worker.NewPool(worker.Options{})
+	pool := newPool(0)
 	defer pool.Close()
 	trouble := len(g.failed) > 0
 	for _, u := range g.failed {

@@ -14,6 +14,10 @@ type Options struct {
 	Silence time.Duration // longest time between signs of life; 0: 10 s
 	Limit   time.Duration // longest time of one job; 0: 60 s
 
+	// Again, where it is not nil, makes of a job the one that is run in its place
+	// after a worker was lost over it.
+	Again func(job []byte) []byte
+
 	command []string // in tests: what to start instead of the program itself
 	env     []string // in tests: added to the worker's environment
 }
@@ -82,6 +86,9 @@ func (p *Pool) Do(ctx context.Context, name string, job []byte, sign func(text s
 	}
 	p.alone.Lock()
 	defer p.alone.Unlock()
+	if p.opt.Again != nil {
+		job = p.opt.Again(job)
+	}
 	return p.attempt(ctx, name, job, sign)
 }
 

@@ -121,6 +121,17 @@ func TestDo(t *testing.T) {
 	}
 }
 
+// TestAgain: after a worker was lost the job made of it runs; after a refusal none.
+func TestAgain(t *testing.T) {
+	p := newTestPool(t, Options{Workers: 1, Again: func(job []byte) []byte { return append([]byte("echo "), job...) }})
+	if got, err := p.Do(context.Background(), "hive.txt", []byte("leave"), nil); err != nil || string(got) != "leave" {
+		t.Errorf("got %q, %v", got, err)
+	}
+	if _, err := p.Do(context.Background(), "hive.txt", []byte("refuse"), nil); err == nil {
+		t.Error("a refusal was run again")
+	}
+}
+
 func TestMemoryIsBounded(t *testing.T) {
 	p := newTestPool(t, Options{Workers: 1})
 	_, err := p.Do(context.Background(), "hive.txt", []byte("eat"), nil)

@@ -22,23 +22,26 @@ type Filter struct {
 	Time      string // part of the time
 }
 
-// Check says what is wrong with a filter's words.
-func (f *Filter) Check() error {
+// FilterWords lists the words that a filter of a closed set may use, by its flag.
+func FilterWords() map[string][]string {
 	states := make([]string, 0, 6)
 	for _, s := range ledger.States() {
 		states = append(states, string(s))
 	}
-	for _, w := range []struct {
-		flag, value string
-		allowed     []string
-	}{
-		{"reading", f.Reading, []string{"clear", "look", "doubtful"}},
-		{"state", f.State, states},
-		{"use", f.Use, []string{"printed", "converted", "withheld"}},
-	} {
+	return map[string][]string{
+		"reading": {"clear", "look", "doubtful"},
+		"state":   states,
+		"use":     {"printed", "converted", "withheld"},
+	}
+}
+
+// Check says what is wrong with a filter's words.
+func (f *Filter) Check() error {
+	allowed := FilterWords()
+	for _, w := range []struct{ flag, value string }{{"reading", f.Reading}, {"state", f.State}, {"use", f.Use}} {
 		for _, word := range words(w.value) {
-			if !slices.Contains(w.allowed, word) {
-				return fmt.Errorf("--%s: %q is none of: %s", w.flag, word, strings.Join(w.allowed, ", "))
+			if !slices.Contains(allowed[w.flag], word) {
+				return fmt.Errorf("--%s: %q is none of: %s", w.flag, word, strings.Join(allowed[w.flag], ", "))
 			}
 		}
 	}
