@@ -124,7 +124,7 @@ func againstHeading(it *item) {
 // the whole or the right ones.
 var (
 	inBrackets  = regexp.MustCompile(`\([^)]*\)`)
-	lowerRun    = regexp.MustCompile(`\p{Ll}{4,}`)
+	lowerRun    = regexp.MustCompile(`\p{Ll}{4,}|(?i)\b(?:age|mass|time|size|dose|body|pain|load|gain|loss|rate|mood|diet)\b`)
 	stackedUnit = regexp.MustCompile(`(\([^)]*[/%°][^)]*\)|,\s*%),`)
 	cutShort    = regexp.MustCompile(`\b(or|and|of|the|with|to|for|in|a|versus|vs)$`)
 )
