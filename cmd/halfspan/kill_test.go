@@ -9,10 +9,14 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"regexp"
+	"strconv"
 	"strings"
 	"sync"
 	"testing"
 	"time"
+
+	"halfspan/report/ledger"
 )
 
 // program prepares the program itself, as a process of its own.
@@ -152,31 +156,55 @@ func TestTwoAtOnce(t *testing.T) {
 	for i := range 6 {
 		writePaper(t, dir, fmt.Sprintf("hives%02d.txt", i), hivePaper(10+i))
 	}
-	both := func(input string, args ...string) {
+	both := func(input string, args ...string) (said [2]string) {
 		t.Helper()
 		var wait sync.WaitGroup
-		for range 2 {
+		for i := range said {
 			cmd := program(t, dir, args...)
 			cmd.Stdin = strings.NewReader(input)
 			wait.Go(func() {
-				if out, err := cmd.CombinedOutput(); err != nil {
+				out, err := cmd.CombinedOutput()
+				if err != nil {
 					t.Errorf("halfspan %s: %v\n%s", strings.Join(args, " "), err, out)
 				}
+				said[i] = string(out)
 			})
 		}
 		wait.Wait()
+		return said
 	}
 	both("", "scan", ".")
 	if out := runProgram(t, dir, "", "scan", "."); !strings.Contains(out, "6 unchanged") {
 		t.Errorf("got %s", out)
 	}
-	// Both see the same open results; what one has decided the other is refused.
-	both(strings.Repeat("c", 30)+"x", "check", "--order", "paper")
-	rows := strings.Count(runProgram(t, dir, "", "list", "--tsv", "--state", "confirmed"), "\tconfirmed")
-	if rows < 30 || rows > 60 {
-		t.Errorf("%d results are confirmed", rows)
+	// Both see the same open results; what one has decided the other is refused,
+	// sees anew and may confirm again. Every decision that they say they took is in
+	// the ledger.
+	took := 0
+	for _, out := range both(strings.Repeat("c", 30)+"x", "check", "--order", "paper") {
+		if m := tookConfirmed.FindStringSubmatch(out); m != nil {
+			n, err := strconv.Atoi(m[1])
+			if err != nil {
+				t.Fatal(err)
+			}
+			took += n
+		}
+	}
+	book, err := ledger.OpenDecisions(filepath.Join(dir, ledger.FileName), "AB")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer book.Close()
+	kept, err := book.All(0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if took < 30 || len(kept) != took {
+		t.Errorf("the ledger holds %d decisions, the two sessions took %d", len(kept), took)
 	}
 }
+
+var tookConfirmed = regexp.MustCompile(`(\d+) confirmed[^\n]*kept in`)
 
 // TestSameWhateverTheLoad: the records do not depend on the order in which the
 // workers are done.
