@@ -14,7 +14,7 @@ build: ## build the program into ./halfspan
 	@$(GO) build -o halfspan ./cmd/halfspan
 
 demo: build ## scan the invented papers and print the review table
-	@mkdir -p $(DEMO)
+	@rm -rf $(DEMO) && mkdir -p $(DEMO)
 	@echo "Reading the demo papers; one of them is a picture without text, to show how that is said." >&2
 	@./halfspan scan --ledger $(DEMO)/halfspan.ledger testdata/papers/*.pdf testdata/papers/*.xml testdata/papers/*.txt || test $$? -eq 3
 	@echo "Next: ./halfspan check --ledger $(DEMO)/halfspan.ledger --checker ME" >&2
