@@ -26,7 +26,7 @@ short: ## the tests that take no time
 	$(GO) test -short ./...
 
 lint: ## formatting, vet and a linter
-	@test -z "$$(gofmt -l cmd extract convert report | tee /dev/stderr)" || { echo "gofmt -w the files above" >&2; exit 1; }
+	@files=$$(gofmt -l cmd extract convert report); test -z "$$files" || { echo "gofmt -w $$files" >&2; exit 1; }
 	$(GO) vet ./...
 	@if command -v golangci-lint >/dev/null; then golangci-lint run; else $(GO) run $(STATICCHECK) ./...; fi
 
