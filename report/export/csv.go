@@ -51,26 +51,32 @@ func printedKey(r *working.Record) string {
 // CSV writes results as RFC 4180 says, in UTF-8, with one line of names.
 func CSV(w io.Writer, rows []Row) error {
 	columns := allColumns()
+	names := make([]string, len(columns))
+	for k, c := range columns {
+		names[k] = c.name
+	}
+	return writeCSV(w, "the CSV", names, len(rows), func(row, column int) string { return columns[column].value(&rows[row]) })
+}
+
+// writeCSV writes a table as CSV; what names it in errors.
+func writeCSV(w io.Writer, what string, names []string, rows int, text func(row, column int) string) error {
 	out := csv.NewWriter(w)
 	out.UseCRLF = true
-	line := make([]string, len(columns))
-	for k, c := range columns {
-		line[k] = c.name
+	if err := out.Write(names); err != nil {
+		return fmt.Errorf("writing %s: %w", what, err)
 	}
-	if err := out.Write(line); err != nil {
-		return fmt.Errorf("writing the CSV: %w", err)
-	}
+	line := make([]string, len(names))
 	for i := range rows {
-		for k, c := range columns {
-			line[k] = harmless(c.value(&rows[i]))
+		for k := range names {
+			line[k] = harmless(text(i, k))
 		}
 		if err := out.Write(line); err != nil {
-			return fmt.Errorf("writing the CSV: %w", err)
+			return fmt.Errorf("writing %s: %w", what, err)
 		}
 	}
 	out.Flush()
 	if err := out.Error(); err != nil {
-		return fmt.Errorf("writing the CSV: %w", err)
+		return fmt.Errorf("writing %s: %w", what, err)
 	}
 	return nil
 }

@@ -1,7 +1,6 @@
 package export
 
 import (
-	"encoding/csv"
 	"fmt"
 	"io"
 	"slices"
@@ -107,28 +106,11 @@ func WriteSheet(w io.Writer, format string, rows []ledger.Row) error {
 
 func writeSheetCSV(w io.Writer, rows []ledger.Row) error {
 	columns := sheetColumns()
-	out := csv.NewWriter(w)
-	out.UseCRLF = true
-	line := make([]string, len(columns))
+	names := make([]string, len(columns))
 	for k, c := range columns {
-		line[k] = c.name
+		names[k] = c.name
 	}
-	if err := out.Write(line); err != nil {
-		return fmt.Errorf("writing the sheet: %w", err)
-	}
-	for i := range rows {
-		for k, c := range columns {
-			line[k] = harmless(c.text(&rows[i]))
-		}
-		if err := out.Write(line); err != nil {
-			return fmt.Errorf("writing the sheet: %w", err)
-		}
-	}
-	out.Flush()
-	if err := out.Error(); err != nil {
-		return fmt.Errorf("writing the sheet: %w", err)
-	}
-	return nil
+	return writeCSV(w, "the sheet", names, len(rows), func(row, column int) string { return columns[column].text(&rows[row]) })
 }
 
 const sheetName = "results"

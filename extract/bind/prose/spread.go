@@ -74,26 +74,10 @@ func (p *para) spread(k int) {
 	}
 }
 
-func givenAs(spread string) result.GivenAs {
-	switch spread {
-	case grammar.SpreadCI:
-		return result.CI
-	case grammar.SpreadSD:
-		return result.SD
-	case grammar.SpreadSE:
-		return result.SE
-	case grammar.SpreadIQR:
-		return result.IQR
-	case grammar.SpreadRange:
-		return result.Range
-	}
-	return ""
-}
-
 // wordInterval takes an interval whose word stands with it.
 func (p *para) wordInterval(k int) {
 	it := &p.r.Items[k]
-	c := cand{item: k, given: givenAs(it.Spread), level: it.Level, levelAt: it.LevelAt, givenAt: it.WordAt, meaning: it.Meaning,
+	c := cand{item: k, given: convention.GivenAs(it.Spread), level: it.Level, levelAt: it.LevelAt, givenAt: it.WordAt, meaning: it.Meaning,
 		lower: it.Lower, upper: it.Upper, start: it.Lower.Start, oneSided: it.OneSided, estItem: -1}
 	if third, ok := p.thirdQuartile(k); ok {
 		c.est, c.estItem, c.upper, c.quartile = it.Upper, k, third, true
@@ -188,7 +172,7 @@ func (p *para) explain(k int, c *cand) bool {
 }
 
 func (p *para) take(c *cand, w *said) {
-	c.given, c.level, c.levelAt, c.givenAt, c.meaning, c.oneSided = givenAs(w.Spread), w.level, w.levelAt, w.at, w.Meaning, w.oneSided
+	c.given, c.level, c.levelAt, c.givenAt, c.meaning, c.oneSided = convention.GivenAs(w.Spread), w.level, w.levelAt, w.at, w.Meaning, w.oneSided
 }
 
 // behind finds a word for the interval later in its own bracket: "(0.9–2.8, 95% CI)".
@@ -196,7 +180,7 @@ func (p *para) behind(k int) *said {
 	it := &p.r.Items[k]
 	if k+1 < len(p.r.Items) {
 		n := &p.r.Items[k+1]
-		if n.Kind == grammar.KindTerm && n.Spread != "" && n.Bracket == it.Bracket && n.Start-it.End < 12 && givenAs(n.Spread) != result.SD && givenAs(n.Spread) != result.SE {
+		if n.Kind == grammar.KindTerm && n.Spread != "" && n.Bracket == it.Bracket && n.Start-it.End < 12 && convention.GivenAs(n.Spread) != result.SD && convention.GivenAs(n.Spread) != result.SE {
 			return &said{Meaning: n.Meaning, level: n.Level, levelAt: n.LevelAt, at: n.WordAt}
 		}
 	}
@@ -283,7 +267,7 @@ func (p *para) plusMinus(k int) {
 			return
 		}
 	default:
-		c.given = givenAs(it.Spread)
+		c.given = convention.GivenAs(it.Spread)
 	}
 	p.cands = append(p.cands, c)
 }
@@ -298,13 +282,13 @@ func (p *para) explainSign(k int, c *cand) bool {
 			n := &p.r.Items[j]
 			if n.Kind == grammar.KindTerm && (n.Spread == grammar.SpreadSD || n.Spread == grammar.SpreadSE) && n.Start-it.End < 30 &&
 				p.sentenceNo(n.Start) == p.sentenceNo(it.Start) {
-				c.given, c.givenAt = givenAs(n.Spread), n.WordAt
+				c.given, c.givenAt = convention.GivenAs(n.Spread), n.WordAt
 				return true
 			}
 		}
 	}
 	if w := p.shared(k, grammar.SpreadSD, grammar.SpreadSE); w != nil && p.sentenceNo(w.at.Start) == p.sentenceNo(it.Start) {
-		c.given, c.givenAt = givenAs(w.Spread), w.at
+		c.given, c.givenAt = convention.GivenAs(w.Spread), w.at
 		return true
 	}
 	p.signConvention(c)
@@ -314,7 +298,7 @@ func (p *para) explainSign(k int, c *cand) bool {
 // wordSpread takes "SD 1.3" with the number it is about.
 func (p *para) wordSpread(k int) {
 	it := &p.r.Items[k]
-	c := cand{item: k, given: givenAs(it.Spread), value: it.Value, start: it.Value.Start, meaning: it.Meaning, givenAt: it.WordAt, estItem: -1}
+	c := cand{item: k, given: convention.GivenAs(it.Spread), value: it.Value, start: it.Value.Start, meaning: it.Meaning, givenAt: it.WordAt, estItem: -1}
 	if c.given == "" || p.refusedSpread(k) {
 		return
 	}

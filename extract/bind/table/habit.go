@@ -1,5 +1,7 @@
 package table
 
+import "halfspan/extract/bind/convention"
+
 // markHabit takes what notes say of the same form where only some values carry
 // the mark that leads there, as long as all such notes agree.
 func (f *frame) markHabit(sp *spread, hint string) (pair, label, bool) {
@@ -64,5 +66,5 @@ func (f *frame) habit(sp *spread, hint string) (reading, bool) {
 		return reading{}, false
 	}
 	s := f.lex.labelStatement(from, rankNote, "label of another row")
-	return reading{given: givenAs(found.Spread), pair: found, at: s, level: level(found.Level), habit: true}, true
+	return reading{given: convention.GivenAs(found.Spread), pair: found, at: s, level: level(found.Level), habit: true}, true
 }

@@ -1,6 +1,7 @@
 package table
 
 import (
+	"halfspan/extract/bind/convention"
 	"strings"
 
 	"halfspan/extract/grammar"
@@ -254,14 +255,14 @@ func (f *frame) meaningOf(e *estimate, sp *spread, all []statement) reading {
 		return reading{none: true}
 	}
 	if sp.item.Spread != "" && sp.item.Kind != grammar.KindNumber {
-		if g := givenAs(sp.item.Spread); g != "" {
+		if g := convention.GivenAs(sp.item.Spread); g != "" {
 			return f.withLevel(reading{given: g, level: level(sp.item.Level), at: statement{rank: rankCell, from: "the cell"}}, all)
 		}
 		return reading{none: true}
 	}
 	if sp.own.kind == roleSpread {
 		for _, q := range sp.own.pairs {
-			if g := givenAs(q.Spread); g != "" {
+			if g := convention.GivenAs(q.Spread); g != "" {
 				s := f.lex.labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
 				if sp.own.label.cell != nil && sp.own.label.cell.Row == sp.row {
 					s.rank, s.from = rankRow, "row label"
@@ -274,7 +275,7 @@ func (f *frame) meaningOf(e *estimate, sp *spread, all []statement) reading {
 	if sp.own.kind == roleBound {
 		s := f.lex.labelStatement(sp.own.label, rankColumn, f.columnName(sp.col))
 		for _, q := range sp.own.pairs {
-			if g := givenAs(q.Spread); g != "" {
+			if g := convention.GivenAs(q.Spread); g != "" {
 				return f.withLevel(reading{given: g, pair: q, level: level(q.Level), at: s}, all)
 			}
 		}
@@ -317,7 +318,7 @@ func (f *frame) lookUp(e *estimate, sp *spread, all []statement) reading {
 			return reading{count: true}
 		}
 		q := fits[0]
-		rd := reading{given: givenAs(q.Spread), pair: q, at: *s, level: level(q.Level)}
+		rd := reading{given: convention.GivenAs(q.Spread), pair: q, at: *s, level: level(q.Level)}
 		for _, o := range fits[1:] {
 			if o.Spread != q.Spread {
 				rd.ambiguous = true

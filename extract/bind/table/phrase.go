@@ -7,7 +7,6 @@ import (
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
-	"halfspan/extract/result"
 )
 
 // phrase is what a heading, a label or a note says about the values under it.
@@ -244,21 +243,4 @@ func level(s string) float64 {
 		return 0
 	}
 	return v
-}
-
-// givenAs is the record's word for a spread of the grammar; empty for others.
-func givenAs(spread string) result.GivenAs {
-	switch spread {
-	case grammar.SpreadCI:
-		return result.CI
-	case grammar.SpreadSD:
-		return result.SD
-	case grammar.SpreadSE:
-		return result.SE
-	case grammar.SpreadIQR:
-		return result.IQR
-	case grammar.SpreadRange:
-		return result.Range
-	}
-	return ""
 }
