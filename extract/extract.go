@@ -10,6 +10,7 @@ import (
 	"slices"
 	"strings"
 
+	"halfspan/extract/bind/background"
 	"halfspan/extract/bind/prose"
 	"halfspan/extract/bind/table"
 	"halfspan/extract/jats"
@@ -73,7 +74,8 @@ func readPDF(path string, content []byte, opt Options) (*paper.Document, error) 
 
 // Find gives every result that is printed in the document, in reading order.
 func Find(doc *paper.Document) []result.Result {
-	found := merge(prose.Find(doc), table.Find(doc))
+	back := background.Of(doc)
+	found := merge(prose.Find(doc, back), table.Find(doc, back))
 	raiseDoubts(doc, found)
 	return found
 }

@@ -44,6 +44,12 @@ func (p *Pictures) Page(number int, scale float64) (*image.RGBA, error) {
 	return p.doc.Render(number, scale)
 }
 
+// PageWide draws a page as [Pictures.Page] does, width pixels wide. The page is
+// parsed once: asking [Pictures.Facts] for the scale would parse it twice.
+func (p *Pictures) PageWide(number, width int) (*image.RGBA, error) {
+	return p.doc.RenderWide(number, width)
+}
+
 // OnPicture gives where a box of a page stands in the picture that
 // [Pictures.Page] draws of it at the scale.
 func OnPicture(page paper.Page, scale float64, b paper.Box) image.Rectangle {

@@ -23,13 +23,11 @@ type arm struct {
 	sizes []size   // every n printed right behind its name
 }
 
-// cast is who takes part in the paper: its arms with their sizes, and the
-// number of all subjects.
+// cast is who takes part in the paper: its arms with their sizes.
 type cast struct {
 	arms  []arm
 	index map[string]int
 	first map[string][]int // the arms by the first word of their key
-	total []size           // sizes of the whole sample, each time it is stated
 }
 
 // learn collects the arms and their sizes from running text and the column
@@ -73,12 +71,6 @@ func (f *finder) learnText(b *paper.Block) {
 	for _, m := range groupNamed.FindAllStringSubmatch(s, -1) {
 		f.addArm(nameBefore(m[1]), nil, nil, "")
 	}
-	for _, m := range wholeSample.FindAllStringSubmatchIndex(s, -1) {
-		n, ok := wholeNumber(s[m[2]:m[3]])
-		if ok && n > 9 && !strings.HasSuffix(s[:m[2]], "of the ") && (b.Zone == paper.Abstract || b.Zone == paper.Results || b.Zone == paper.Methods) {
-			f.cast.total = append(f.cast.total, size{n: n, at: grammar.Span{Start: m[2], End: m[1]}, text: s[m[2]:m[1]], run: &b.Text, from: "elsewhere in the text"})
-		}
-	}
 }
 
 // pairedWithin is how many bytes apart two sizes may stand to name the arms of
@@ -107,10 +99,9 @@ func (f *finder) learnSizes(b *paper.Block) {
 }
 
 var (
-	groupNamed  = pattern.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
-	wholeSample = pattern.MustCompile(`(?i)\b([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{2,6}|` + numberWords + `)\s+(?:[a-z-]+\s+){0,3}?` + subjects + `\s+(?:[a-z()=0-9 ]{0,40}\s)?(?:were|was)\s+(?:then\s+|finally\s+)?(?:randomi[sz]ed|enrolled|included|recruited)\b`)
-	stopName    = map[string]bool{}
-	weakName    = map[string]bool{}
+	groupNamed = pattern.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
+	stopName   = map[string]bool{}
+	weakName   = map[string]bool{}
 )
 
 func init() {
@@ -283,20 +274,6 @@ func holds(a, b []string) bool {
 		}
 	}
 	return true
-}
-
-// allSubjects gives the size of the whole sample where the paper states one
-// only.
-func (c *cast) allSubjects() (size, bool) {
-	for _, s := range c.total {
-		if s.n != c.total[0].n {
-			return size{}, false
-		}
-	}
-	if len(c.total) == 0 {
-		return size{}, false
-	}
-	return c.total[0], true
 }
 
 // mention is an arm named in a sentence.

@@ -3,6 +3,7 @@ package prose
 import (
 	"sort"
 
+	"halfspan/extract/bind/background"
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
@@ -10,11 +11,10 @@ import (
 )
 
 // Find gives the results printed in the running text of a paper, in reading
-// order. Tables are not its business.
-func Find(doc *paper.Document) []result.Result {
-	f := &finder{doc: doc, conv: convention.Of(doc), comma: decimalComma(doc)}
+// order, with the paper's background. Tables are not its business.
+func Find(doc *paper.Document, back *background.Background) []result.Result {
+	f := &finder{doc: doc, back: back, conv: back.Conventions, comma: decimalComma(doc)}
 	f.learn()
-	f.learnModels()
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		switch b.Kind {
@@ -34,13 +34,11 @@ func Find(doc *paper.Document) []result.Result {
 // finder holds what is known of the whole paper while its blocks are read.
 type finder struct {
 	doc   *paper.Document
-	conv  *convention.Conventions
-	comma bool // the paper prints decimal commas
-	cast  cast // its arms and their sizes
+	back  *background.Background
+	conv  *convention.Conventions // of the background
+	comma bool                    // the paper prints decimal commas
+	cast  cast                    // its arms and their sizes
 	out   []result.Result
-
-	models, leastMeans model    // what the methods say of models
-	designs            []string // of the whole trial: "clustered", "crossover"
 }
 
 // decimalComma reports whether the paper prints decimal commas: most numbers

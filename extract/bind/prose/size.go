@@ -4,18 +4,14 @@ import (
 	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
-// subjects are the words for what a trial counts.
-const subjects = `(?:participants?|patients?|subjects?|women|men|children|adults?|adolescents?|girls?|boys?|infants?|individuals?|people|persons?|volunteers?|students?|colonies|colony|bees?|animals?|mothers?|workers?|employees|respondents|pupils|cases|newborns?|neonates?|residents?|eyes|teeth|couples|families)`
-
-var counted = pattern.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + numberWords + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + subjects + `\b`)
-
-const numberWords = `(?:(?:one|two|three|four|five|six|seven|eight|nine) hundred(?: and)? )?(?:(?:twenty|thirty|forty|fifty|sixty|seventy|eighty|ninety)(?:[- ](?:one|two|three|four|five|six|seven|eight|nine))?|ten|eleven|twelve|thirteen|fourteen|fifteen|sixteen|seventeen|eighteen|nineteen|two|three|four|five|six|seven|eight|nine)|(?:one|two|three|four|five|six|seven|eight|nine) hundred`
+var counted = pattern.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + census.Words + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + census.Subjects + `\b`)
 
 // size is a sample size with the place it was read from.
 type size struct {
@@ -84,7 +80,7 @@ func (p *para) wholeGroup(c *cand) (size, bool) {
 	return s, true
 }
 
-var inEach = pattern.MustCompile(`(?i)\b([0-9]{1,5})\s+` + subjects + `\s+(?:per|in\s+(?:each|either|every)|for\s+each)\s+(?:arm|group)\b`)
+var inEach = pattern.MustCompile(`(?i)\b([0-9]{1,5})\s+` + census.Subjects + `\s+(?:per|in\s+(?:each|either|every)|for\s+each)\s+(?:arm|group)\b`)
 
 // inEach reads "21 colonies per arm" where the sentence says it once: it is the n
 // of each group's results there.
@@ -127,7 +123,7 @@ func (p *para) countedIn(from, to int) (size, bool) {
 	if !p.wholeCount(from, a, found[0][1]) {
 		return size{}, false
 	}
-	n, ok := wholeNumber(p.s[a:b])
+	n, ok := census.Number(p.s[a:b])
 	if !ok || n < 2 {
 		return size{}, false
 	}
@@ -146,31 +142,6 @@ func (p *para) wholeCount(from, a, end int) bool {
 	return !otherCount.MatchString(p.s[from:a]) && !loose.MatchString(p.s[a:end])
 }
 
-var units = map[string]int{"one": 1, "two": 2, "three": 3, "four": 4, "five": 5, "six": 6, "seven": 7, "eight": 8, "nine": 9, "ten": 10,
-	"eleven": 11, "twelve": 12, "thirteen": 13, "fourteen": 14, "fifteen": 15, "sixteen": 16, "seventeen": 17, "eighteen": 18, "nineteen": 19,
-	"twenty": 20, "thirty": 30, "forty": 40, "fifty": 50, "sixty": 60, "seventy": 70, "eighty": 80, "ninety": 90}
-
-// wholeNumber reads a count in digits or in words below one thousand.
-func wholeNumber(s string) (int, bool) {
-	s = strings.ToLower(strings.ReplaceAll(s, ",", ""))
-	if n, err := strconv.Atoi(s); err == nil {
-		return n, true
-	}
-	total := 0
-	for _, w := range strings.FieldsFunc(s, func(r rune) bool { return r == ' ' || r == '-' || r == '\u00a0' }) {
-		switch {
-		case w == "and":
-		case w == "hundred":
-			total *= 100
-		case units[w] > 0:
-			total += units[w]
-		default:
-			return 0, false
-		}
-	}
-	return total, total > 0
-}
-
 // setSize fills the result's n.
 func (p *para) setSize(r *result.Result, c *cand) {
 	if s, ok := p.beside(c); ok {
@@ -181,21 +152,30 @@ func (p *para) setSize(r *result.Result, c *cand) {
 
 var sampleOf = pattern.MustCompile(`(?i)\b(?:participants|patients|subjects|sample|women|men|children|colonies|respondents|all|overall|age|aged|BMI)\b`)
 
-// wholeSample gives the number of all subjects to a baseline mean that names no
-// arm.
+// wholeSample gives the number of all subjects to a mean or median that names no
+// arm and is about all of them at the start, and to any in a study that has the
+// same subjects under every condition.
 func (p *para) wholeSample(r *result.Result, c *cand) {
-	if r.N > 0 || r.Arm != "" || !sizeTold(r) && r.GivenAs != result.Range || between(r) || r.Statistic == result.MeanChange {
+	if r.N > 0 || !sizeTold(r) && r.GivenAs != result.Range || between(r) || p.block.Zone == paper.Discussion || p.block.Zone == paper.Introduction {
 		return
 	}
 	from, to := p.sentence(c.est.Start)
-	if p.says(c.est.Start, groupWord) || p.says(c.est.Start, contrast) || !sampleOf.MatchString(p.s[from:c.est.Start]) || p.block.Zone == paper.Discussion || len(p.mentions(from, to)) > 0 {
+	if !p.f.back.Census.Within {
+		switch {
+		case r.Arm != "" || r.Statistic == result.MeanChange:
+			return
+		case p.says(c.est.Start, groupWord) || p.says(c.est.Start, contrast) || len(p.mentions(from, to)) > 0:
+			return
+		case p.says(c.est.Start, counted) || !sampleOf.MatchString(p.s[from:c.est.Start]) || !ageLike.MatchString(p.s[from:c.est.Start]):
+			return
+		}
+	} else if p.says(c.est.Start, counted) {
 		return
 	}
-	if p.says(c.est.Start, counted) || !ageLike.MatchString(p.s[from:c.est.Start]) {
-		return
-	}
-	if t, ok := p.f.cast.allSubjects(); ok {
-		p.elsewhere(r, "n", &r.N, t)
+	if n, ok := p.f.back.Census.Whole(p.f.back.Census.Within && !r.Evidence.Baseline); ok {
+		r.N, r.NFrom, r.NKind = n.N, result.NElsewhere, result.NUnclear
+		r.Raise("n-elsewhere", "the sample size is that of all who took part, not stated beside the result")
+		r.Sources = append(r.Sources, result.Source{Field: "n", Place: n.Place, Text: n.Text, From: "the text's count of those who took part"})
 	}
 }
 

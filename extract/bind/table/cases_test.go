@@ -11,6 +11,7 @@ import (
 	"strings"
 	"testing"
 
+	"halfspan/extract/bind/background"
 	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
@@ -283,7 +284,7 @@ func TestCases(t *testing.T) {
 }
 
 func (c *oneCase) check(t *testing.T, file string) {
-	found := Find(c.doc)
+	found := Find(c.doc, background.Of(c.doc))
 	var got []string
 	for i := range found {
 		got = append(got, written(&found[i]))
@@ -365,7 +366,7 @@ func caseDocuments(t testing.TB) []*paper.Document {
 // TestSame finds the same results twice, in the same order.
 func TestSame(t *testing.T) {
 	for _, doc := range caseDocuments(t) {
-		a, b := fmt.Sprint(Find(doc)), fmt.Sprint(Find(doc))
+		a, b := fmt.Sprint(Find(doc, background.Of(doc))), fmt.Sprint(Find(doc, background.Of(doc)))
 		if a != b {
 			t.Fatalf("two readings differ:\n%s\n%s", a, b)
 		}
@@ -406,7 +407,8 @@ func FuzzFind(f *testing.F) {
 				t.Skip()
 			}
 		}
-		for _, r := range Find(buildDocument(lines)) {
+		doc := buildDocument(lines)
+		for _, r := range Find(doc, background.Of(doc)) {
 			if r.Estimate == "" || r.GivenValue == "" && r.Lower == "" && r.Upper == "" {
 				t.Errorf("a result without estimate or spread: %+v", r)
 			}
@@ -421,7 +423,7 @@ func BenchmarkFind(b *testing.B) {
 	b.ReportAllocs()
 	for i := 0; i < b.N; i++ {
 		for _, d := range docs {
-			Find(d)
+			Find(d, background.Of(d))
 		}
 	}
 }

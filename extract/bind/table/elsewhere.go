@@ -4,6 +4,7 @@ import (
 	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/result"
 )
 
@@ -69,11 +70,13 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 	}
 	if !ok {
 		s, ok = b.otherSize(i, x.arm)
-		if !ok {
-			return
-		}
 	}
-	b.setN(r, s, f, x)
+	if !ok {
+		s, ok = b.countedSize(r, f, x)
+	}
+	if ok {
+		b.setN(r, s, f, x)
+	}
 }
 
 func (b *binder) setN(r *result.Result, s size, f *frame, x *context) {
@@ -107,6 +110,35 @@ func kindOfN(s string) string {
 func atBaseline(x *context) bool {
 	low := fold(x.time)
 	return low == "" && !x.change || strings.Contains(low, "baseline") && !strings.Contains(low, "change") && !strings.Contains(low, " to ") && !strings.ContainsAny(low, "×→") || strings.HasPrefix(low, "pre") || strings.HasPrefix(low, "before") || strings.Contains(low, "screening") || strings.Contains(low, "week 0")
+}
+
+// countedSize falls back on what the text counts: all subjects for a result that
+// is about all of them or, where the same subjects stand under every condition,
+// about any; else the number in each group, where the text gives one for all.
+func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool) {
+	if x.contrast || x.subgroup != "" || !aboutSubjects(r.Statistic) {
+		return size{}, false
+	}
+	c := b.back.Census
+	named := f.armsInColumns() || f.armRows || x.arm != "" && !totals[armWords(x.arm)]
+	var n census.Count
+	var ok bool
+	switch {
+	case !named || c.Within && len(b.arms) == 0:
+		n, ok = c.Whole(!atBaseline(x))
+	case x.arm != "" && f.aboutArms(x.arm):
+		n, ok = c.Each()
+	}
+	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place}, ok
+}
+
+// aboutSubjects reports a statistic of subjects, which their number belongs to.
+func aboutSubjects(s result.Statistic) bool {
+	switch s {
+	case result.Mean, result.MeanChange, result.GeometricMean, result.Median:
+		return true
+	}
+	return false
 }
 
 // baselineN reports that a note says the headings' n's are those at baseline:

@@ -1,62 +1,9 @@
 package table
 
 import (
-	"halfspan/extract/grammar"
-	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
-
-// said is the first place where the methods speak of something.
-type said struct {
-	run *paper.TextRun
-	at  grammar.Span
-}
-
-// background is what the methods, abstract and title say of models and designs
-// whose intervals are no plain intervals of a mean.
-type background struct {
-	model   *said // a model that intervals of means may come from
-	least   *said // least-squares or marginal means
-	designs []string
-}
-
-var (
-	modelMethods = pattern.MustCompile(`(?i)\bmixed[- ](?:effects? )?(?:linear |regression )?models?\b|\blinear mixed\b|\bancovas?\b|\banalys[ei]s of covariance\b|\bMMRM\b|\bGEEs?\b|\bgenerali[sz]ed estimating\b|\bmultilevel\b|\bhierarchical (?:linear|model)|\brandom[- ](?:effects?|intercepts?)\b|\badjust(?:ed|ing|ment) for\b|\bcontrolling for\b|\bmultiple imputation\b`)
-	leastMethods = pattern.MustCompile(`(?i)\bleast[- ]squares? means?\b|\bLS[- ]?means?\b|\bmarginal means?\b|\badjusted means?\b`)
-	clustered    = pattern.MustCompile(`(?i)\bcluster[- ]+(?:level )?randomi[sz]|\bclusters were (?:randomi|allocated|assigned)|\brandomi[sz]ed clusters?\b|\bcluster (?:trial|design)`)
-	crossover    = pattern.MustCompile(`(?i)\bcross-?over (?:trial|study|design|fashion|manner|randomi)|\brandomi[sz]ed,? (?:[a-z-]+,? )*cross-?over\b`)
-)
-
-// findBackground reads title, abstract and methods once.
-func (b *binder) findBackground() {
-	design := func(s string) {
-		if clustered.MatchString(s) {
-			b.back.designs = addOnce(b.back.designs, "clustered")
-		}
-		if crossover.MatchString(s) {
-			b.back.designs = addOnce(b.back.designs, "crossover")
-		}
-	}
-	design(b.doc.Title)
-	for i := range b.doc.Blocks {
-		bl := &b.doc.Blocks[i]
-		if bl.Kind != paper.Paragraph || bl.Zone != paper.Methods && bl.Zone != paper.Abstract {
-			continue
-		}
-		design(bl.Text.S)
-		first := func(p *pattern.Pattern, at **said) {
-			if *at != nil {
-				return
-			}
-			if m := p.FindStringIndex(bl.Text.S); m != nil {
-				*at = &said{&bl.Text, grammar.Span{Start: m[0], End: m[1]}}
-			}
-		}
-		first(modelMethods, &b.back.model)
-		first(leastMethods, &b.back.least)
-	}
-}
 
 func addOnce(list []string, s string) []string {
 	for _, x := range list {
@@ -113,21 +60,21 @@ func (b *binder) setEvidence(r *result.Result, f *frame, e *estimate, all []stat
 			r.Evidence.Design = addOnce(r.Evidence.Design, d.means)
 		}
 	}
-	for _, d := range b.back.designs {
+	for _, d := range b.back.Designs {
 		r.Evidence.Design = addOnce(r.Evidence.Design, d)
 	}
 	if r.Adjusted != "no" || f.lex.anyHas(unadjustedWord, near) || plainTest(r.Evidence.Tests) {
 		return
 	}
-	from := b.back.least
+	from := b.back.LeastMeans
 	if r.GivenAs == result.CI {
-		from = b.back.model
+		from = b.back.Model
 	}
 	if from == nil {
 		return
 	}
 	r.Adjusted = "unclear"
-	r.Sources = append(r.Sources, result.Source{Field: "adjusted", Place: from.run.Between(from.at.Start, from.at.End), Text: from.run.S[from.at.Start:from.at.End], From: "the methods"})
+	r.Sources = append(r.Sources, from.Source("adjusted"))
 }
 
 // plainTest reports a test that compares means as they are.

@@ -4,6 +4,7 @@ import (
 	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/background"
 	"halfspan/extract/bind/convention"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
@@ -12,9 +13,10 @@ import (
 )
 
 // Find gives every result that is printed in the tables of the document, in
-// their order. Mates are indices in the slice it returns.
-func Find(doc *paper.Document) []result.Result {
-	b := newBinder(doc)
+// their order, with the paper's background. Mates are indices in the slice it
+// returns.
+func Find(doc *paper.Document, back *background.Background) []result.Result {
+	b := newBinder(doc, back)
 	var out []result.Result
 	for i, f := range b.frames {
 		if f == nil {
@@ -36,21 +38,20 @@ func Find(doc *paper.Document) []result.Result {
 // in another table or in the text.
 type binder struct {
 	doc    *paper.Document
-	conv   *convention.Conventions
 	vocab  *vocabulary
 	frames []*frame
 	blocks []*paper.Block
 	arms   []armSize
 	flow   []flowSentence
-	back   background
+	back   *background.Background
 }
 
-func newBinder(doc *paper.Document) *binder {
-	b := &binder{doc: doc}
+func newBinder(doc *paper.Document, back *background.Background) *binder {
+	b := &binder{doc: doc, back: back}
 	if !hasCells(doc) {
 		return b
 	}
-	b.conv, b.vocab = convention.Of(doc), newVocabulary(doc)
+	b.vocab = newVocabulary(doc)
 	for i := range doc.Blocks {
 		bl := &doc.Blocks[i]
 		if bl.Kind != paper.TableBlock || bl.Table == nil {
@@ -71,7 +72,6 @@ func newBinder(doc *paper.Document) *binder {
 	}
 	b.findArmSizes()
 	b.findFlow()
-	b.findBackground()
 	return b
 }
 
@@ -222,7 +222,7 @@ func (b *binder) settleSpread(r *result.Result, f *frame, e *estimate, sp *sprea
 		r.Level = rd.level
 		switch {
 		case rd.level == 0:
-			if lv, ok := b.conv.Level(); ok {
+			if lv, ok := b.back.Conventions.Level(); ok {
 				r.Level = lv
 				r.Raise(FlagLevelElsewhere, "the level is said elsewhere in the paper")
 				r.Sources = append(r.Sources, result.Source{Field: "level", Text: strconv.FormatFloat(lv, 'g', -1, 64) + "% CI", From: "the paper's other intervals"})
@@ -257,18 +257,18 @@ func (b *binder) fromPaper(r *result.Result, sp *spread, rd *reading, near strin
 	var ok bool
 	switch sp.shape {
 	case shapeSign:
-		a, ok = b.conv.PlusMinus(convention.Tables)
+		a, ok = b.back.Conventions.PlusMinus(convention.Tables)
 	case shapeBracket:
-		a, ok = b.conv.Bracket(convention.Tables)
+		a, ok = b.back.Conventions.Bracket(convention.Tables)
 	case shapeInterval:
-		a, ok = b.conv.Bounds(convention.Tables, result.Mean)
+		a, ok = b.back.Conventions.Bounds(convention.Tables, result.Mean)
 		if !ok {
-			a, ok = b.conv.Bounds(convention.Tables, result.Median)
+			a, ok = b.back.Conventions.Bounds(convention.Tables, result.Median)
 		}
 		if st := result.Statistic(near); st == result.Ratio || st == result.Coefficient || st == result.MeanDifference {
-			if a, ok = b.conv.Bounds(convention.Tables, st); !ok {
+			if a, ok = b.back.Conventions.Bounds(convention.Tables, st); !ok {
 				var lv float64
-				if lv, ok = b.conv.Level(); ok {
+				if lv, ok = b.back.Conventions.Level(); ok {
 					a = convention.Answer{Statement: convention.Statement{Spread: result.CI, Level: lv, Text: "intervals of the paper"}}
 				}
 			}

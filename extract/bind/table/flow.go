@@ -1,9 +1,9 @@
 package table
 
 import (
-	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
@@ -41,7 +41,7 @@ func (b *binder) findFlow() {
 			}
 			fs := flowSentence{text: s, place: bl.Text.Between(sp.Start, sp.End)}
 			if m := inEach.FindStringSubmatch(s); m != nil && strings.Contains(strings.ToLower(m[0]), "each") {
-				fs.each = smallNumber(m[1])
+				fs.each, _ = census.Number(m[1])
 			}
 			for _, t := range timesIn(s) {
 				if hasDigit(t) {
@@ -143,22 +143,4 @@ func digitsOf(s string) string {
 		}
 	}
 	return strings.TrimSpace(b.String())
-}
-
-var smallWords = map[string]int{"one": 1, "two": 2, "three": 3, "four": 4, "five": 5, "six": 6, "seven": 7, "eight": 8, "nine": 9, "ten": 10, "eleven": 11, "twelve": 12, "thirteen": 13, "fourteen": 14, "fifteen": 15, "sixteen": 16, "seventeen": 17, "eighteen": 18, "nineteen": 19, "twenty": 20, "thirty": 30, "forty": 40, "fifty": 50, "sixty": 60, "seventy": 70, "eighty": 80, "ninety": 90}
-
-// smallNumber reads a number below one hundred in digits or words.
-func smallNumber(s string) int {
-	if v, err := strconv.Atoi(s); err == nil {
-		return v
-	}
-	n := 0
-	for _, w := range words(s) {
-		v, ok := smallWords[w]
-		if !ok {
-			return 0
-		}
-		n += v
-	}
-	return n
 }

@@ -106,6 +106,10 @@ func TestRender(t *testing.T) {
 		if got := img.Bounds().Size(); got != want {
 			t.Errorf("turn %d: got size %v, want %v", turn, got, want)
 		}
+		wide, err := d.RenderWide(1, 333)
+		if err != nil || wide.Bounds().Dx() != 333 {
+			t.Errorf("turn %d: a picture 333 pixels wide: got %v, %v", turn, wide.Bounds(), err)
+		}
 		page := paper.Page{Box: paper.Box{X0: 5000, Y0: 5000, X1: 55000, Y1: 75000}, Rotate: turn}
 		box := paper.Box{X0: 10000, Y0: 60000, X1: 15000, Y1: 62000}
 		at := OnPicture(page, 1, box)

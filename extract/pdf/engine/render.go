@@ -21,17 +21,36 @@ func (d *Document) Render(number int, scale float64) (*image.RGBA, error) {
 	if !(scale > 0) {
 		return nil, fmt.Errorf("scale %v: must be above 0", scale)
 	}
+	return d.render(number, func(float64) float64 { return scale })
+}
+
+// RenderWide draws a page as [Document.Render] does, width pixels wide.
+func (d *Document) RenderWide(number, width int) (*image.RGBA, error) {
+	if width < 1 {
+		return nil, fmt.Errorf("width %d: must be above 0", width)
+	}
+	return d.render(number, func(points float64) float64 { return float64(width) / points })
+}
+
+// render draws a page at the scale that fits its width in points.
+func (d *Document) render(number int, scaleOf func(points float64) float64) (*image.RGBA, error) {
 	page, err := d.loadPage(number)
 	if err != nil {
 		return nil, err
 	}
 	r := d.r
 	defer r.call("FPDF_ClosePage", page)
-	w := int(math.Ceil(float64(math.Float32frombits(uint32(r.call("FPDF_GetPageWidthF", page)))) * scale))
-	h := int(math.Ceil(float64(math.Float32frombits(uint32(r.call("FPDF_GetPageHeightF", page)))) * scale))
+	width := float64(math.Float32frombits(uint32(r.call("FPDF_GetPageWidthF", page))))
+	height := float64(math.Float32frombits(uint32(r.call("FPDF_GetPageHeightF", page))))
 	if r.err != nil {
 		return nil, r.err
 	}
+	if !(width > 0 && height > 0) {
+		return nil, fmt.Errorf("page %d has no width or no height", number)
+	}
+	// A width asked for in whole pixels must not become one more by rounding.
+	scale := scaleOf(width)
+	w, h := int(math.Ceil(width*scale-1e-6)), int(math.Ceil(height*scale-1e-6))
 	if w < 1 || h < 1 || w > maxPixels/h {
 		return nil, fmt.Errorf("page %d at scale %v: %w", number, scale, ErrTooLarge)
 	}
