@@ -66,6 +66,12 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 		}
 	}
 	if !ok {
+		s, ok = b.captionOfAll(f, x)
+	}
+	if !ok {
+		s, ok = f.ownGroupSize(e, x, r.Statistic)
+	}
+	if !ok {
 		s, ok = b.flowSize(i, f, x)
 	}
 	if !ok {
@@ -124,7 +130,7 @@ func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool
 	var n census.Count
 	var ok bool
 	switch {
-	case !named || c.Within && len(b.arms) == 0:
+	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
 	case x.arm != "" && f.aboutArms(x.arm):
 		n, ok = c.Each()

@@ -204,7 +204,7 @@ func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
 var nPhrase = pattern.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
 
 // nBySex is a bracket with the n of each sex: (n = 9 M, 11 F).
-var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*\d+\s*(?:m|f|males?|females?|men|women)\s*[,;/&]\s*\d+\s*(?:m|f|males?|females?|men|women)\s*\)`)
+var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*\d*\s*(?:m|f|males?|females?|men|women)\s*[,;/&]\s*\d+\s*(?:m|f|males?|females?|men|women)\s*\)`)
 
 // onlyTerms reports that nothing but terms stands in a heading.
 func onlyTerms(s string, h grammar.Heading) bool { return len(restWords(s, h)) == 0 }

@@ -85,7 +85,7 @@ func sizeOfLabel(n int, l label, from, words string) size {
 // nearSize finds the n of an estimate inside its own table.
 func (f *frame) nearSize(e *estimate, x *context) (size, bool) {
 	for _, find := range []func(*estimate, *context) (size, bool){
-		f.cellSize, f.columnSize, f.labelSize, f.rowNote, f.rowSize, f.markSize, f.headSize, f.noteSize, f.captionSize, f.loneSize,
+		f.cellSize, f.columnSize, f.labelSize, f.rowNote, f.rowSize, f.markSize, f.sexSize, f.headSize, f.noteSize, f.captionSize, f.loneSize, f.declaredSize,
 	} {
 		if s, ok := find(e, x); ok {
 			return s, true
@@ -264,7 +264,56 @@ func (f *frame) rowSize(e *estimate, x *context) (size, bool) {
 			}
 		}
 	}
-	return f.keptN(e)
+	if s, ok := f.keptN(e); ok {
+		return s, true
+	}
+	return f.blockN(e)
+}
+
+// blockN reads the n's of the last row above that holds nothing else: they open
+// a block, "Colonies fed to the end | n = 31 | n = 29", and replace those of the
+// headings down to the next such row: past the next group only where the block
+// has the same rows as the one before it.
+func (f *frame) blockN(e *estimate) (size, bool) {
+	past := false
+	for r := e.row - 1; r >= f.head; r-- {
+		switch {
+		case !f.onlyNs(r):
+			past = past || f.lines[r].kind == lineGroup
+		case past && !f.rowAbove(r, f.lines[e.row].labels):
+			return size{}, false
+		default:
+			return f.nCell(r, e.col)
+		}
+	}
+	return size{}, false
+}
+
+// rowAbove reports that a row above r is labelled the same.
+func (f *frame) rowAbove(r int, labels []label) bool {
+	for k := f.head; k < r; k++ {
+		own := f.lines[k].labels
+		if len(own) > 0 && len(labels) > 0 && own[len(own)-1].text == labels[len(labels)-1].text {
+			return true
+		}
+	}
+	return false
+}
+
+// onlyNs reports a row with a label whose cells, two or more, all print n = ...
+func (f *frame) onlyNs(r int) bool {
+	count := 0
+	for c := f.stub; c < f.tab.Cols; c++ {
+		cell := f.cellAt(r, c)
+		if cell == nil || isBlankText(cell.Text.S) {
+			continue
+		}
+		if p := f.reads[cell].phrase; !p.onlyN || len(p.ns) == 0 {
+			return false
+		}
+		count++
+	}
+	return count >= 2 && len(f.lines[r].labels) > 0
 }
 
 // nRow finds the row of n's under exactly these groups: the nearest above, or,

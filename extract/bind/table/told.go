@@ -1,0 +1,135 @@
+package table
+
+import (
+	"strings"
+
+	"halfspan/extract/bind/census"
+	"halfspan/extract/grammar"
+	"halfspan/extract/pattern"
+	"halfspan/extract/result"
+)
+
+var (
+	sexN   = pattern.MustCompile(`(?i)\(\s*n\s*=\s*(\d*)\s*(m|f|males?|females?|men|women)\s*[,;/&]\s*(\d+)\s*(m|f|males?|females?|men|women)\s*\)`)
+	maleIs = pattern.MustCompile(`(?i)^(?:m|males?|men|boys)\b`)
+	femIs  = pattern.MustCompile(`(?i)^(?:f|females?|women|girls)\b`)
+)
+
+// sexSize reads the n of each sex out of a heading, "Syrup (n = 9 M, 11 F)": that
+// of the row's own sex, or both together.
+func (f *frame) sexSize(e *estimate, x *context) (size, bool) {
+	if x.contrast {
+		return size{}, false
+	}
+	path := f.path(e.row, e.col)
+	for i := len(path) - 1; i >= 0; i-- {
+		m := sexN.FindStringSubmatch(path[i].raw)
+		if m == nil {
+			continue
+		}
+		first, okFirst := census.Number(m[1])
+		second, okSecond := census.Number(m[3])
+		if maleIs.MatchString(m[4]) {
+			first, second, okFirst, okSecond = second, first, okSecond, okFirst
+		}
+		own := x.subgroup
+		if labels := f.lines[e.row].labels; own == "" && len(labels) > 0 {
+			own = labels[len(labels)-1].text
+		}
+		n, ok := first+second, okFirst && okSecond
+		switch {
+		case femIs.MatchString(own):
+			n, ok = second, okSecond
+		case maleIs.MatchString(own):
+			n, ok = first, okFirst
+		}
+		return sizeOfLabel(n, path[i], result.NHeading, f.columnName(e.col)), ok
+	}
+	return size{}, false
+}
+
+var (
+	perGroup  = pattern.MustCompile(`(?i)\b(?:per|each|every)\s+(?:\w+\s+){0,2}?(?:groups?|arms?|treatments?|feeds?|conditions?|doses?|cells?|values?)\b|\b(?:replicates?|independent (?:experiments?|samples?))\b`)
+	ofMean    = pattern.MustCompile(`(?i)\b(?:means?|averages?|medians?)\b|±|\bs\.?d\.?\b|\bs\.?e\.?m?\.?\b|\bstandard (?:deviation|error)`)
+	samePhase = pattern.MustCompile(`(?i)\b(?:phase|period|session|condition|visit)s?\b`)
+)
+
+// declaredSize reads the n that a note gives with its declaration of what every
+// value is, "values are mean ± SD, n = 6", or for each group, where no heading
+// gives another.
+func (f *frame) declaredSize(e *estimate, x *context) (size, bool) {
+	if x.contrast || x.subgroup != "" && f.armRows {
+		return size{}, false
+	}
+	for c := f.stub; c < f.tab.Cols; c++ {
+		if _, _, ok := f.headingN(e.row, c); ok {
+			return size{}, false
+		}
+	}
+	read := func(s string, declared bool) (int, bool) {
+		for _, sp := range segments(s) {
+			seg := s[sp.Start:sp.End]
+			if !perGroup.MatchString(seg) && !(declared && ofMean.MatchString(seg)) {
+				continue
+			}
+			if h := grammar.ParsePhrase(grammar.Text{S: seg}); len(h.N) == 1 {
+				if n := number(h.N[0].Value); n > 1 {
+					return n, true
+				}
+			}
+		}
+		return 0, false
+	}
+	for _, nt := range f.notes.general() {
+		if n, ok := read(nt.run.S, true); ok {
+			return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(0)}, true
+		}
+	}
+	if n, ok := read(f.tab.Caption.S, false); ok {
+		return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(f.tab.Caption.S), 200), place: f.tab.Caption.At(0)}, true
+	}
+	return size{}, false
+}
+
+// sameSubjects reports that the table's arms are conditions of the same subjects.
+func (b *binder) sameSubjects(f *frame) bool {
+	if b.back.Census.Within && len(b.arms) == 0 {
+		return true
+	}
+	names := f.armNames()
+	for _, a := range names {
+		if !samePhase.MatchString(a) {
+			return false
+		}
+	}
+	return len(names) > 1
+}
+
+// captionOfAll reads the caption's only n where the same subjects stand under
+// every condition of the table.
+func (b *binder) captionOfAll(f *frame, x *context) (size, bool) {
+	if x.contrast || x.subgroup != "" || !b.sameSubjects(f) {
+		return size{}, false
+	}
+	c := &f.tab.Caption
+	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
+		if n := number(p.ns[0].Value); n > 0 {
+			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, true
+		}
+	}
+	return size{}, false
+}
+
+// ownGroupSize gives a ratio or coefficient the n of the heading over its column
+// where that heading names one group and the numbers under it are an analysis
+// inside that group.
+func (f *frame) ownGroupSize(e *estimate, x *context, s result.Statistic) (size, bool) {
+	if !x.contrast || x.arm2 != "" || s != result.Ratio && s != result.Coefficient {
+		return size{}, false
+	}
+	n, l, ok := f.headingN(e.row, e.col)
+	if !ok || l.cell == nil || l.cell.ColSpan < 2 || strings.Contains(fold(l.text), " vs") || f.lex.compares(l.text) {
+		return size{}, false
+	}
+	return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+}
