@@ -6,10 +6,7 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"encoding/json"
-	"errors"
 	"fmt"
-	"image"
-	"image/draw"
 	"image/png"
 	"strings"
 	"sync"
@@ -37,10 +34,11 @@ type readPaper struct {
 // keepRead is how many papers' words stay in memory.
 const keepRead = 4
 
-// pageFacts is the answer to the task "pages".
+// pageFacts is the answer to the task "page".
 type pageFacts struct {
 	SHA256 string
-	Pages  []paper.Page
+	Page   paper.Page
+	Of     int // pages in all; 0 where the paper has none
 }
 
 // drawn is the answer to the task "picture".
@@ -78,13 +76,13 @@ func stale(p desk.Paper, sha string) error {
 	return nil
 }
 
-// Pages implements [desk.Papers].
-func (d *deskPapers) Pages(ctx context.Context, p desk.Paper) ([]paper.Page, error) {
+// Page implements [desk.Papers].
+func (d *deskPapers) Page(ctx context.Context, p desk.Paper, number int) (paper.Page, int, error) {
 	var facts pageFacts
-	if err := d.ask(ctx, p, job{Task: "pages"}, &facts); err != nil {
-		return nil, err
+	if err := d.ask(ctx, p, job{Task: "page", Page: number}, &facts); err != nil {
+		return paper.Page{}, 0, err
 	}
-	return facts.Pages, stale(p, facts.SHA256)
+	return facts.Page, facts.Of, stale(p, facts.SHA256)
 }
 
 // Picture implements [desk.Papers].
@@ -137,8 +135,9 @@ func (d *deskPapers) readOnce(ctx context.Context, p desk.Paper) (readPaper, err
 	return r, nil
 }
 
-// showPages gives the boxes of a paper's pages, in the worker.
-func showPages(_ *job, content []byte) (any, error) {
+// showPage gives the geometry of one page, in the worker: only that page is
+// parsed, for the first page of a paper is waited for.
+func showPage(j *job, content []byte) (any, error) {
 	facts := pageFacts{SHA256: sum(content)}
 	if !pdf.IsPDF(content) {
 		return facts, nil
@@ -148,14 +147,9 @@ func showPages(_ *job, content []byte) (any, error) {
 		return nil, err
 	}
 	defer pictures.Close()
-	for n := 1; n <= pictures.NumPage(); n++ {
-		page, err := pictures.Facts(n)
-		if err != nil {
-			return nil, err
-		}
-		facts.Pages = append(facts.Pages, page)
-	}
-	return facts, nil
+	facts.Of = pictures.NumPage()
+	facts.Page, err = pictures.Facts(j.Page)
+	return facts, err
 }
 
 // showPicture draws a page, in the worker.
@@ -165,18 +159,7 @@ func showPicture(j *job, content []byte) (any, error) {
 		return nil, err
 	}
 	defer pictures.Close()
-	page, err := pictures.Facts(j.Page)
-	if err != nil {
-		return nil, err
-	}
-	wide := page.Box.X1 - page.Box.X0
-	if page.Rotate%180 != 0 {
-		wide = page.Box.Y1 - page.Box.Y0
-	}
-	if wide <= 0 {
-		return nil, errors.New("the page has no width")
-	}
-	picture, err := pictures.Page(j.Page, float64(j.Width)*100/float64(wide))
+	picture, err := pictures.PageWide(j.Page, j.Width)
 	if err != nil {
 		return nil, err
 	}
@@ -186,19 +169,6 @@ func showPicture(j *job, content []byte) (any, error) {
 		return nil, err
 	}
 	return drawn{sum(content), b.Bytes()}, nil
-}
-
-// thin turns a picture without colours into grey: most pages are, and a quarter
-// of the bytes are drawn, packed and sent.
-func thin(picture *image.RGBA) image.Image {
-	for i := 0; i+3 < len(picture.Pix); i += 4 {
-		if picture.Pix[i] != picture.Pix[i+1] || picture.Pix[i] != picture.Pix[i+2] {
-			return picture
-		}
-	}
-	grey := image.NewGray(picture.Bounds())
-	draw.Draw(grey, grey.Bounds(), picture, picture.Bounds().Min, draw.Src)
-	return grey
 }
 
 func sum(content []byte) string {

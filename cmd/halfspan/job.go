@@ -72,7 +72,7 @@ type glance func(j *job, content []byte) (any, error)
 // glances lists the tasks for which a paper is not read.
 func glances() map[string]glance {
 	return map[string]glance{
-		"pages":   showPages,   // pageFacts
+		"page":    showPage,    // pageFacts
 		"picture": showPicture, // drawn
 		"cutouts": showCutouts, // cutouts
 		"marked":  showMarked,  // marked

@@ -173,7 +173,7 @@ func TestCheckingByKeyboard(t *testing.T) {
 	b.press("a")
 	b.until("the form", `document.querySelector('form.amend') !== null`)
 	b.fill("f-n", "12")
-	b.until("worked again", `document.querySelector('#cell p.changed') !== null`)
+	b.until("worked again", `document.querySelector('#cell .summary').textContent.includes('→')`)
 	b.shot("amend")
 	// A reload in the middle keeps what was typed.
 	b.run("reload", chromedp.Reload(), chromedp.WaitVisible(".cells button"))

@@ -122,7 +122,7 @@ func (d *Desk) warm(ctx context.Context) {
 		return
 	}
 	if p, ok := d.papers[paperKey(rows[0].Working.Record.PaperSHA256)]; ok {
-		_, _ = d.opt.Papers.Pages(ctx, p)
+		_, _, _ = d.opt.Papers.Page(ctx, p, max(rows[0].Working.Anchor.Page, 1))
 	}
 }
 
@@ -164,7 +164,7 @@ func (d *Desk) handler() (http.Handler, error) {
 		"GET /api/rows":     d.rows,
 		"GET /api/row":      d.row,
 		"GET /api/version":  d.version,
-		"GET /api/paper":    d.paper,
+		"GET /api/leaf":     d.leaf,
 		"GET /api/words":    d.words,
 		"GET /api/passage":  d.passage,
 		"POST /api/work":    d.work,

@@ -59,8 +59,8 @@ func demoResults() []result.Result {
 
 type fakePapers struct{ fail error }
 
-func (f fakePapers) Pages(context.Context, Paper) ([]paper.Page, error) {
-	return []paper.Page{{Number: 1, Box: paper.Box{X1: 59500, Y1: 84200}}}, f.fail
+func (f fakePapers) Page(context.Context, Paper, int) (paper.Page, int, error) {
+	return paper.Page{Number: 1, Box: paper.Box{X1: 59500, Y1: 84200}}, 1, f.fail
 }
 
 func (f fakePapers) Picture(_ context.Context, _ Paper, page, width int) ([]byte, error) {
@@ -254,7 +254,7 @@ func TestWhoMayTalkToTheDesk(t *testing.T) {
 		{"unknown field", "POST", "/api/decide", map[string]any{"path": "/etc"}, write, 400},
 		{"path traversal in assets", "GET", "/assets/..%2fdesk.go", nil, nil, 404},
 		{"template itself", "GET", "/assets/desk.html", nil, nil, 404},
-		{"paper by path", "GET", "/api/paper?paper=../../etc/passwd", nil, nil, 404},
+		{"paper by path", "GET", "/api/leaf?page=1&paper=../../etc/passwd", nil, nil, 404},
 		{"picture by path", "GET", "/page?paper=%2fetc%2fpasswd&page=1&width=800", nil, nil, 404},
 		{"huge picture", "GET", "/page?paper=" + sha[:16] + "&page=1&width=90000", nil, nil, 400},
 		{"page nought", "GET", "/page?paper=" + sha[:16] + "&page=0&width=800", nil, nil, 400},

@@ -25,8 +25,9 @@ type Word struct {
 // so that no paper can crash or hang the desk. Each method fails with a reason
 // in plain words, also where the file's content is no longer what was scanned.
 type Papers interface {
-	// Pages gives the pages' boxes and rotation; none for a paper without pages.
-	Pages(ctx context.Context, p Paper) ([]paper.Page, error)
+	// Page gives the box and the rotation of one page, 1-based, and how many there
+	// are: none for a paper without pages.
+	Page(ctx context.Context, p Paper, number int) (page paper.Page, of int, err error)
 	// Picture draws one page, width pixels wide, as PNG.
 	Picture(ctx context.Context, p Paper, page, width int) ([]byte, error)
 	// Words gives the words of one page.

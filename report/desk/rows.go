@@ -28,7 +28,8 @@ func (f Filter) fits(r working.Record) bool {
 		(holds(r.Section, f.Section) || holds(r.Table, f.Section))
 }
 
-// group is one unit of work: the cells of a table row, or one result of the text.
+// group is one unit of work: the cells of a table row, or what one sentence says
+// of one outcome.
 type group struct {
 	key   string
 	rows  []ledger.Row
@@ -55,6 +56,10 @@ func (d *Desk) groups() ([]group, error) {
 			} else if !differ {
 				continue
 			}
+		}
+		if last := len(out) - 1; last >= 0 && oneSentence(out[last].rows[0], row) {
+			out[last].rows = append(out[last].rows, row)
+			continue
 		}
 		key := paperKey(row.Working.Record.PaperSHA256) + " " + row.Working.Row
 		if row.Working.Row == "" {
@@ -89,6 +94,19 @@ func (d *Desk) groups() ([]group, error) {
 		return 1
 	})
 	return out, nil
+}
+
+// oneSentence says whether two results that follow one another are printed in one
+// sentence of the running text and are of one kind and outcome: "24.3 (5.1) with
+// syrup and 28.5 (6.2) with water".
+func oneSentence(a, b ledger.Row) bool {
+	p, q := a.Working.Record, b.Working.Record
+	if a.Working.Row != "" || b.Working.Row != "" || a.ByHand != "" || b.ByHand != "" || p.Snippet == "" {
+		return false
+	}
+	same := func(x, y *string) bool { return x == y || x != nil && y != nil && *x == *y }
+	return p.PaperSHA256 == q.PaperSHA256 && p.Snippet == q.Snippet && same(p.Section, q.Section) && same(p.Outcome, q.Outcome) &&
+		same(p.Statistic, q.Statistic) && same(p.GivenAs, q.GivenAs)
 }
 
 type cellBrief struct {

@@ -2,6 +2,7 @@ package desk
 
 import (
 	"net/http"
+	"slices"
 
 	"halfspan/extract/paper"
 )
@@ -11,9 +12,12 @@ const (
 	minWidth = 200
 	maxWidth = 3000
 	maxPages = 1 << 20
+
+	maxOffset = 1 << 40 // of a byte in a file
 )
 
-type pageView struct {
+type leafView struct {
+	Of     int     `json:"of"` // pages of the paper; 0 where it has none
 	Number int     `json:"number"`
 	Rotate int     `json:"rotate"`
 	X0     float64 `json:"x0"`
@@ -22,21 +26,22 @@ type pageView struct {
 	Y1     float64 `json:"y1"`
 }
 
-func (d *Desk) paper(r *http.Request) (any, error) {
+// leaf answers with the geometry of one page.
+func (d *Desk) leaf(r *http.Request) (any, error) {
 	p, err := d.paperOf(r)
 	if err != nil {
 		return nil, err
 	}
-	pages, err := d.opt.Papers.Pages(r.Context(), p)
+	number, err := numberOf(r, "page", 1, maxPages)
 	if err != nil {
 		return nil, err
 	}
-	out := make([]pageView, 0, len(pages))
-	for _, page := range pages {
-		b := page.Box
-		out = append(out, pageView{page.Number, page.Rotate, float64(b.X0) / 100, float64(b.Y0) / 100, float64(b.X1) / 100, float64(b.Y1) / 100})
+	page, of, err := d.opt.Papers.Page(r.Context(), p, number)
+	if err != nil {
+		return nil, err
 	}
-	return map[string]any{"name": p.Name, "pages": out}, nil
+	b := page.Box
+	return leafView{of, page.Number, page.Rotate, float64(b.X0) / 100, float64(b.Y0) / 100, float64(b.X1) / 100, float64(b.Y1) / 100}, nil
 }
 
 func (d *Desk) words(r *http.Request) (any, error) {
@@ -105,7 +110,8 @@ type blockView struct {
 }
 
 // passage shows where a result stands in a paper without pages: its block as
-// read, with the blocks before and after it.
+// read, with the blocks before and after it, and the offsets of the places that
+// are in them.
 func (d *Desk) passage(r *http.Request) (any, error) {
 	p, err := d.paperOf(r)
 	if err != nil {
@@ -120,30 +126,43 @@ func (d *Desk) passage(r *http.Request) (any, error) {
 		return nil, err
 	}
 	marks := marksOf(row.Current().Working)
-	at := blockAt(doc, row.Working.Anchor.Offset)
+	offset := row.Working.Anchor.Offset
+	if r.URL.Query().Has("at") { // another place that the result was read from
+		if offset, err = numberOf(r, "at", 0, maxOffset); err != nil {
+			return nil, err
+		}
+	}
+	at := blockAt(doc, offset)
 	if at < 0 {
 		return nil, fail(http.StatusNotFound, "this place is not found in the paper any more: scan it again")
 	}
-	blocks := make([]blockView, 0, 3)
+	blocks, holds := make([]blockView, 0, 3), make([]int, 0, len(marks))
 	for i := max(at-1, 0); i <= min(at+1, len(doc.Blocks)-1); i++ {
 		if b := &doc.Blocks[i]; i == at || b.Kind != paper.TableBlock && b.Kind != paper.Reference && b.Kind != paper.Furniture {
 			blocks = append(blocks, viewBlock(b, marks)...)
-		}
-	}
-	return map[string]any{"heading": doc.Blocks[at].Section, "page": doc.Blocks[at].Page, "blocks": blocks}, nil
-}
-
-func blockAt(doc *paper.Document, offset int) int {
-	for i := range doc.Blocks {
-		for _, t := range textsOf(&doc.Blocks[i]) {
-			for _, run := range t.Runs {
-				if start := run.Place.Offset; offset >= start && offset < start+run.End-run.Start {
-					return i
+			for _, m := range marks {
+				if holdsOffset(b, m.offset) {
+					holds = append(holds, m.offset)
 				}
 			}
 		}
 	}
-	return -1
+	return map[string]any{"heading": doc.Blocks[at].Section, "page": doc.Blocks[at].Page, "blocks": blocks, "holds": holds}, nil
+}
+
+func blockAt(doc *paper.Document, offset int) int {
+	return slices.IndexFunc(doc.Blocks, func(b paper.Block) bool { return holdsOffset(&b, offset) })
+}
+
+func holdsOffset(b *paper.Block, offset int) bool {
+	for _, t := range textsOf(b) {
+		for _, run := range t.Runs {
+			if start := run.Place.Offset; offset >= start && offset < start+run.End-run.Start {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // textsOf lists the stretches of text of a block.

@@ -1,7 +1,7 @@
 // The forms of the desk: amend, drop, query, add by hand, find, keys.
 import { get, post } from './api.js';
 import { ask, el, replace } from './dom.js';
-import { CHOICES, FIELDS, KEYS, REASONS, SOURCES } from './words.js';
+import { CHOICES, FIELDS, KEYS, REASONS, SOURCES, spread } from './words.js';
 import { workingView } from './row.js';
 
 function control(field, value, oninput) {
@@ -10,6 +10,7 @@ function control(field, value, oninput) {
     ? el('select', props, CHOICES[field].map((c) => el('option', { value: c, selected: c === (value ?? '') }, c || 'not said')))
     : el('input', { ...props, value: value ?? '', inputmode: ['arm', 'arm2', 'time', 'subgroup', 'outcome', 'unit'].includes(field) ? 'text' : 'decimal' });
   node.addEventListener('input', oninput);
+  node.addEventListener('focus', () => node.select?.()); // what is typed takes the place of what was read
   return node;
 }
 
@@ -19,7 +20,7 @@ export function amendForm(cell, draft, { onsave, onleave, onfocus }) {
   const r = cell.working.record;
   const start = Object.fromEntries(FIELDS.map(([f]) => [f, r[f] === null || r[f] === undefined ? '' : String(r[f])]));
   const now = { ...start, ...draft.fields };
-  const result = el('div', { 'aria-live': 'polite' });
+  const result = el('div'), summary = el('p', { role: 'status', class: 'summary' });
   let turn = 0, timer = 0;
   const changed = () => Object.fromEntries(Object.entries(now).filter(([f, v]) => v !== start[f]));
   const work = async () => {
@@ -27,14 +28,15 @@ export function amendForm(cell, draft, { onsave, onleave, onfocus }) {
     try {
       const { working } = await post('work', { id: r.id, amended: changed() });
       if (mine !== turn) return;
-      const before = r.sd, after = working.record.sd;
-      replace(result, before !== after && el('p', { class: 'changed' }, `SD ${before ?? 'none'} → ${after ?? 'none'}`), workingView(working));
+      const was = spread(r), is = spread(working.record);
+      replace(summary, was === is ? is : [was, ' → ', el('b', {}, is)]);
+      replace(result, workingView(working));
     } catch (e) {
-      if (mine === turn) replace(result, el('p', { class: 'changed' }, e.message));
+      if (mine === turn) replace(summary, el('b', {}, e.message));
     }
   };
   const labels = new Map();
-  const note = el('textarea', { name: 'note', rows: 2, id: 'f-note' }, draft.note ?? '');
+  const note = el('input', { name: 'note', id: 'f-note', autocomplete: 'off', value: draft.note ?? '' });
   const reason = el('select', { name: 'reason', id: 'f-reason' }, REASONS.map((x) => el('option', { value: x, selected: x === (draft.reason ?? 'misread') }, x)));
   const keep = () => draft.keep({ fields: changed(), note: note.value, reason: reason.value });
   const rows = FIELDS.map(([f, label]) => {
@@ -60,10 +62,10 @@ export function amendForm(cell, draft, { onsave, onleave, onfocus }) {
     onsubmit: (e) => { e.preventDefault(); onsave({ amended: changed(), reason: reason.value, note: note.value, take: form.elements.take?.value ?? '' }); },
     onkeydown: (e) => { if (e.key === 'Escape') { e.preventDefault(); onleave(); } },
   }, rows, take, [el('label', { for: 'f-reason' }, 'reason'), reason, el('label', { for: 'f-note' }, 'note'), note],
-  el('span'), el('div', {}, el('button', { type: 'submit' }, 'Save the amended cell ', el('kbd', {}, 'Enter')), ' ',
+  el('div', { class: 'wide' }, el('button', { type: 'submit' }, 'Save the amended cell ', el('kbd', {}, 'Enter')), ' ',
     el('button', { type: 'button', onclick: onleave }, 'Leave ', el('kbd', {}, 'Esc'))));
   work();
-  return [el('h3', {}, 'Amend. A click on a number of the page puts it into the field in focus.'), form, result];
+  return [el('h3', {}, 'Amend. A click on a number of the page puts it into the field in focus.'), summary, form, result];
 }
 
 // typeForm asks for what the person sees before anything read is shown.
@@ -75,7 +77,7 @@ export function typeForm(cell, onsave, onfocus) {
       const input = el('input', { name: f, id: `t-${f}`, autocomplete: 'off', inputmode: 'decimal' });
       input.addEventListener('focus', () => onfocus(input));
       return [el('label', { for: `t-${f}` }, label), input];
-    }), el('span'), el('button', { type: 'submit' }, 'Compare with what the program read ', el('kbd', {}, 'Enter')));
+    }), el('button', { type: 'submit', class: 'wide' }, 'Compare with what the program read ', el('kbd', {}, 'Enter')));
   return [el('h3', {}, 'Type what you see on the page'), form];
 }
 

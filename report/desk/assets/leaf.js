@@ -1,177 +1,265 @@
 // The leaf: the page of the paper as a picture with outlines, or, for papers
 // without pages, the passage or table as read.
 import { get } from './api.js';
-import { $, el, svg, replace, say } from './dom.js';
+import { $, el, replace, say, svg } from './dom.js';
+import { passageView } from './passage.js';
+import { Sheet, uprightTurn } from './sheet.js';
+import { Ink, place } from './tags.js';
+import { OWN, TAGS } from './words.js';
 
-const TAGS = { n: 'n', n2: 'n', arm: 'arm', arm2: 'arm', time: 'time', level: 'level', given_as: '±', unit: 'unit', outcome: 'what', statistic: 'kind' };
-const OWN = new Set(['estimate', 'lower', 'upper', 'given_value']);
+const LEGIBLE = 1.3; // pixels a point: print of 8 points can be read
+const MARGIN = 26; // of the view beside the page
+const SHARP = 1000; // pixels; a picture that is wider takes longer to draw
+const near = (a, b) => Math.abs(a.x - b.x) < 1 && Math.abs(a.y - b.y) < 1 && Math.abs(a.x1 - b.x1) < 1;
 
 export class Leaf {
   constructor() {
     this.view = $('view');
-    this.zoom = Number(sessionStorage.getItem('zoom') ?? 1);
-    this.shown = null; // { paper, page } on the screen
-    this.papers = new Map();
+    this.zoom = JSON.parse(sessionStorage.getItem('zoom') ?? '"legible"'); // or "width", or pixels a point
+    this.shown = null; // { paper, page, sheet, node, scale } on the screen
+    this.leaves = new Map();
+    this.turns = new Map(); // of pages turned by hand
+    this.ready = new Set(); // addresses of pictures that were drawn
     this.onpick = null;
     this.onarea = null;
     this.#drag();
   }
 
-  async show(paper, working, mates) {
-    const facts = await this.#facts(paper);
-    const page = working.record.page;
-    if (facts.pages?.length && page) {
-      this.#page(paper, facts, page, working, mates);
-    } else {
-      await this.#passage(paper, working);
+  // show shows where a working was read; with place, the page of one of its
+  // sources, which may be another.
+  async show(paper, working, mates, place = null) {
+    const turn = (this.last ?? 0) + 1;
+    this.last = turn;
+    const page = place?.page ?? working.record.page;
+    const leaf = page ? await this.#leaf(paper, page) : null;
+    if (this.last !== turn) return; // moved on meanwhile
+    this.now = { paper, working, mates, place };
+    if (leaf?.of) this.#page(leaf, page);
+    else await this.#passage(place);
+  }
+
+  again() { if (this.now) return this.show(this.now.paper, this.now.working, this.now.mates, this.now.place); }
+
+  #leaf(paper, page) {
+    const key = `${paper} ${page}`;
+    if (!this.leaves.has(key)) {
+      const asked = get('leaf', { paper, page });
+      this.leaves.set(key, asked);
+      asked.catch(() => this.leaves.delete(key));
     }
+    return this.leaves.get(key);
   }
 
-  async #facts(paper) {
-    if (!this.papers.has(paper)) this.papers.set(paper, await get('paper', { paper }));
-    return this.papers.get(paper);
+  // #address is that of a picture of the page, wide pixels of the screen wide.
+  #address(paper, page, wide) {
+    return `/page?${new URLSearchParams({ paper, page, width: Math.min(Math.max(100 * Math.ceil(wide / 100), 600), 3000) })}`;
   }
 
-  picture(paper, page) {
-    const width = Math.round(this.width() * Math.min(devicePixelRatio || 1, 3) / 100) * 100;
-    return `/page?${new URLSearchParams({ paper, page, width: Math.min(Math.max(width, 600), 3000) })}`;
+  #scale(sheet) {
+    const whole = Math.max(320, this.view.clientWidth - MARGIN) / sheet.w;
+    if (this.zoom === 'width') return whole;
+    return this.zoom === 'legible' ? Math.max(whole, LEGIBLE) : this.zoom;
   }
 
-  width() { return Math.max(320, (this.view.clientWidth - 26) * this.zoom); }
+  #sheet(leaf, page) {
+    const { paper, working } = this.now;
+    const here = (working.record.places ?? []).filter((p) => p.page === page && p.box);
+    const own = here.filter((p) => OWN.has(p.field));
+    const byHand = this.turns.get(`${paper} ${page}`);
+    const before = own.length ? here.find((p) => p.field === 'outcome') : null;
+    return new Sheet(leaf, byHand ?? uprightTurn(leaf, own.length ? own : here, before));
+  }
 
-  #page(paper, facts, number, working, mates) {
-    const geometry = facts.pages.find((p) => p.number === number);
-    if (!geometry) { replace(this.view, el('p', {}, `Page ${number} cannot be shown.`)); return; }
-    const turned = geometry.rotate % 180 !== 0;
-    const w = turned ? geometry.y1 - geometry.y0 : geometry.x1 - geometry.x0;
-    const h = turned ? geometry.x1 - geometry.x0 : geometry.y1 - geometry.y0;
-    const width = this.width();
-    const image = el('img', { src: this.picture(paper, number), alt: `Page ${number} of the paper`, draggable: 'false' });
-    image.addEventListener('error', () => say(`Page ${number} could not be drawn. The file may have changed or moved since the scan.`, true));
-    const wait = el('p', { class: 'wait' }, 'The page is being drawn …');
-    image.addEventListener('load', () => wait.remove());
-    const over = svg('svg', { viewBox: `0 0 ${w} ${h}`, 'aria-hidden': 'true' });
-    const sheet = el('div', { class: 'page' }, wait, image, over);
-    sheet.style.width = `${width}px`;
-    sheet.style.height = `${width * h / w}px`;
-    const same = this.shown?.paper === paper && this.shown?.page === number;
+  #page(leaf, page) {
+    const { paper, place: focus } = this.now;
+    const sheet = this.#sheet(leaf, page), scale = this.#scale(sheet);
+    const wide = sheet.drawn.w * scale, high = sheet.drawn.h * scale;
+    const over = svg('svg', { viewBox: `0 0 ${sheet.w} ${sheet.h}`, 'aria-hidden': 'true' });
+    const node = el('div', { class: 'page' });
+    Object.assign(node.style, { width: `${sheet.w * scale}px`, height: `${sheet.h * scale}px` });
+    const same = this.shown?.paper === paper && this.shown?.page === page && this.shown.sheet.turn === sheet.turn && this.shown.scale === scale;
     const scroll = [this.view.scrollLeft, this.view.scrollTop];
-    this.shown = { paper, page: number, geometry, w, h, sheet };
-    const first = this.#outline(over, geometry, working, mates, number);
-    replace(this.view, sheet);
-    if (same) [this.view.scrollLeft, this.view.scrollTop] = scroll;
-    if (first) this.#reveal(first, width / w);
-    $('page-number').textContent = `page ${number} of ${facts.pages.length}`;
-    this.#ahead(paper, facts, number);
+    const boxes = this.#outline(over, sheet, page);
+    const tag = (image) => { if (over.isConnected) this.#tag(over, sheet, scale, boxes, image); };
+    // A page seen before is one node still: the picture does not blink.
+    const pictures = same && this.shown.pictures.isConnected ? this.shown.pictures : this.#pictures(paper, page, wide, high, sheet.turn);
+    this.shown = { paper, page, sheet, node, scale, pictures, of: leaf.of };
+    node.append(pictures, over);
+    replace(this.view, node);
+    [this.view.scrollLeft, this.view.scrollTop] = same ? scroll : [0, 0];
+    const main = focus ? boxes.sources.find((s) => s.places.includes(focus)) ?? boxes.result[0] : boxes.result[0];
+    if (main) this.#reveal(main, [...boxes.result, ...boxes.sources], scale);
+    pictures.onready(tag);
+    $('page-number').textContent = `page ${page} of ${leaf.of}${sheet.turn ? ', turned' : ''}`;
+    this.#legend();
+    if (page < leaf.of) this.prepare(paper, page + 1);
   }
 
-  #ahead(paper, facts, number) {
-    if (facts.pages.some((p) => p.number === number + 1)) this.prepare(paper, number + 1);
+  // #pictures is the page's picture; a coarse one first where the sharp one will
+  // take a while.
+  #pictures(paper, page, wide, high, turn) {
+    const density = Math.min(devicePixelRatio || 1, 3);
+    const sharp = this.#address(paper, page, wide * density);
+    const group = el('div', { class: 'pictures' }, el('p', { class: 'wait' }, 'The page is being drawn …'));
+    const heard = [];
+    let best = null;
+    group.onready = (f) => { if (best) f(best); else heard.push(f); };
+    const add = (src, cls, alt) => {
+      const image = el('img', { class: cls, src, alt, draggable: 'false' });
+      Object.assign(image.style, { width: `${wide}px`, height: `${high}px`, transform: `translate(-50%, -50%) rotate(${turn}deg)` });
+      image.addEventListener('load', () => {
+        this.ready.add(src);
+        group.querySelector('.wait')?.remove();
+        if (cls === 'sharp') group.querySelector('.coarse')?.remove();
+        else if (best) { image.remove(); return; }
+        if (!best) { best = image; for (const f of heard.splice(0)) requestAnimationFrame(() => f(image)); }
+      });
+      if (cls === 'sharp') image.addEventListener('error', () => say(`Page ${page} could not be drawn. The file may have changed or moved since the scan.`, true));
+      group.append(image);
+    };
+    if (wide * density > SHARP && !this.ready.has(sharp)) add(this.#address(paper, page, wide * density / 2), 'coarse', '');
+    add(sharp, 'sharp', `Page ${page} of the paper`);
+    return group;
   }
 
   // prepare has a page drawn before it is asked for.
-  prepare(paper, page) { new Image().src = this.picture(paper, page); }
-
-  #outline(over, g, working, mates, number) {
-    const seen = new Set();
-    for (const mate of mates) for (const p of mate.record.places ?? []) {
-      if (p.page === number && p.box && OWN.has(p.field)) over.append(this.#rect(this.#box(p.box, g), 'at-mate', 1.5));
-    }
-    const places = (working.record.places ?? []).filter((p) => p.page === number && p.box);
-    for (const p of places.filter((p) => !OWN.has(p.field))) {
-      const box = this.#box(p.box, g);
-      over.append(this.#rect(box, 'at-source', 2));
-      const key = `${box.x},${box.y}`;
-      if (!seen.has(key)) over.append(svg('text', { class: 'at-tag', x: box.x, y: box.y - 4, 'font-size': 9 }, TAGS[p.field] ?? p.field));
-      seen.add(key);
-    }
-    // One outline for each printed line that the result stands on.
-    const lines = [];
-    for (const p of places.filter((p) => OWN.has(p.field))) {
-      const b = this.#box(p.box, g);
-      const line = lines.find((l) => Math.min(l.y1, b.y1) - Math.max(l.y, b.y) > 0.5 * Math.min(l.y1 - l.y, b.y1 - b.y));
-      if (line) Object.assign(line, { x: Math.min(line.x, b.x), y: Math.min(line.y, b.y), x1: Math.max(line.x1, b.x1), y1: Math.max(line.y1, b.y1) });
-      else lines.push({ ...b });
-    }
-    for (const line of lines) over.append(this.#rect(line, 'at-result', 3));
-    replace($('legend'), el('li', {}, '▭ solid: the result'), el('li', {}, '┄ dashed: where the rest was read'));
-    return lines[0] ?? null;
+  async prepare(paper, page) {
+    const leaf = await this.#leaf(paper, page).catch(() => null);
+    if (!leaf?.of) return;
+    const sheet = new Sheet(leaf, this.turns.get(`${paper} ${page}`) ?? 0);
+    const src = this.#address(paper, page, sheet.drawn.w * this.#scale(sheet) * Math.min(devicePixelRatio || 1, 3));
+    if (this.ready.has(src)) return;
+    const image = new Image();
+    image.onload = () => this.ready.add(src);
+    image.src = src;
   }
 
-  // #box turns a box of the unrotated page (points, y upwards) into the shown
-  // page (points, y downwards).
-  #box([x0, y0, x1, y1], g) {
-    const w = g.x1 - g.x0, h = g.y1 - g.y0;
-    const turn = (x, y) => {
-      const u = x - g.x0, v = y - g.y0;
-      switch (((g.rotate % 360) + 360) % 360) {
-        case 90: return [v, u];
-        case 180: return [w - u, v];
-        case 270: return [h - v, w - u];
-        default: return [u, h - v];
+  // #outline draws where the result and the rest were read on this page, and
+  // gives their boxes.
+  #outline(over, sheet, page) {
+    const { working, mates } = this.now;
+    const on = (w) => (w.record.places ?? []).filter((p) => p.page === page && p.box).map((p) => ({ ...sheet.box(p.box), place: p }));
+    const own = (w) => lines(on(w).filter((b) => OWN.has(b.place.field)), w.record.table ? 1.5 : Infinity);
+    const result = own(working);
+    const inside = (b) => result.some((r) => b.x >= r.x - 1 && b.x1 <= r.x1 + 1 && b.y >= r.y - 2 && b.y1 <= r.y1 + 2);
+    const sources = [];
+    for (const b of on(working).filter((s) => !OWN.has(s.place.field) && !inside(s))) {
+      const same = sources.find((s) => near(s, b));
+      const tag = TAGS[b.place.field] ?? b.place.field;
+      if (!same) sources.push({ ...b, tags: [tag], places: [b.place] });
+      else { same.places.push(b.place); if (!same.tags.includes(tag)) same.tags.push(tag); }
+    }
+    for (const mate of mates) {
+      for (const b of own(mate)) over.append(frame(b, 'at-mate', 1.5));
+      for (const b of on(mate)) if (!OWN.has(b.place.field) && !sources.some((s) => near(s, b))) over.append(bracket(b, 'at-source mate'));
+    }
+    for (const s of sources) over.append(bracket(s, 'at-source'));
+    for (const r of result) over.append(frame(r, 'at-result', 2.5));
+    return { result, sources };
+  }
+
+  #tag(over, sheet, scale, { result, sources }, image) {
+    const size = 11 / scale;
+    const taken = [...result, ...sources];
+    const tags = sources.map((s) => ({ text: s.tags.join(', '), box: s }));
+    try {
+      if (this.ink?.of !== image.src || this.ink.turn !== sheet.turn) this.ink = { of: image.src, turn: sheet.turn, on: new Ink(image, sheet.turn) };
+      for (const t of place(tags, this.ink.on, { w: sheet.w, h: sheet.h, size, taken })) {
+        over.append(svg('text', { class: 'at-tag', x: t.x + 0.2 * size, y: t.y + 0.82 * size, 'font-size': size }, t.text));
       }
-    };
-    const [a, b] = [turn(x0, y0), turn(x1, y1)];
-    return { x: Math.min(a[0], b[0]), y: Math.min(a[1], b[1]), x1: Math.max(a[0], b[0]), y1: Math.max(a[1], b[1]) };
+    } catch { /* a picture too large to look into: the outlines stand without names */ }
   }
 
-  // back turns a point of the shown page into the unrotated page.
-  back(x, y) {
-    const g = this.shown.geometry, w = g.x1 - g.x0, h = g.y1 - g.y0;
-    switch (((g.rotate % 360) + 360) % 360) {
-      case 90: return [g.x0 + y, g.y0 + x];
-      case 180: return [g.x0 + w - x, g.y0 + y];
-      case 270: return [g.x0 + w - y, g.y0 + h - x];
-      default: return [g.x0 + x, g.y0 + h - y];
+  // #reveal scrolls as little as shows the result with as many of its sources as
+  // the view holds.
+  #reveal(main, all, scale) {
+    const v = this.view, room = { w: v.clientWidth - 60, h: v.clientHeight - 60 };
+    let want = main;
+    const distance = (b) => Math.abs(b.y - main.y) + Math.abs(b.x - main.x);
+    for (const b of [...all].sort((p, q) => distance(p) - distance(q))) {
+      const more = { x: Math.min(want.x, b.x), y: Math.min(want.y, b.y), x1: Math.max(want.x1, b.x1), y1: Math.max(want.y1, b.y1) };
+      if ((more.x1 - more.x) * scale <= room.w && (more.y1 - more.y) * scale <= room.h) want = more;
     }
+    const node = this.shown.node, top = node.offsetTop, left = node.offsetLeft;
+    const into = (low, high, at, size) => (low < at + 30 ? low - 30 : high > at + size - 30 ? high - size + 30 : at);
+    v.scrollTop = into(top + want.y * scale, top + want.y1 * scale, v.scrollTop, v.clientHeight);
+    v.scrollLeft = into(left + want.x * scale, left + want.x1 * scale, v.scrollLeft, v.clientWidth);
   }
 
-  #rect(b, cls, pad) {
-    return svg('rect', { class: cls, x: b.x - pad, y: b.y - pad, width: b.x1 - b.x + 2 * pad, height: b.y1 - b.y + 2 * pad, rx: 1 });
-  }
-
-  #reveal(box, scale) {
-    const top = box.y * scale, left = box.x * scale, v = this.view;
-    if (top < v.scrollTop + 60 || top > v.scrollTop + v.clientHeight - 90) v.scrollTop = top - v.clientHeight / 3;
-    if (left < v.scrollLeft || box.x1 * scale > v.scrollLeft + v.clientWidth) v.scrollLeft = left - 40;
-  }
-
-  async #passage(paper, working) {
-    this.shown = { paper, page: null };
-    const p = await get('passage', { paper, id: working.record.id });
-    const parts = [];
-    if (p.heading) parts.push(el('h2', {}, p.heading));
-    for (const block of p.blocks) parts.push(block.rows ? this.#table(block) : el('p', { class: block.note ? 'note' : '' }, this.#spans(block.spans)));
-    replace(this.view, el('article', { class: 'passage' }, parts));
-    $('page-number').textContent = p.page ? `page ${p.page}` : 'text as read';
-    replace($('legend'), el('li', {}, 'boxed: the result'), el('li', {}, 'dashed underline: where the rest was read'));
-    this.view.querySelector('mark:not(.src)')?.scrollIntoView({ block: 'center' });
-  }
-
-  #spans(spans) {
-    return (spans ?? []).map((s) => {
-      if (!s.field) return s.text;
-      const own = OWN.has(s.field) || s.field === 'result';
-      return el('mark', { class: own ? '' : 'src', title: own ? 'the result' : `${s.field} was read here`, 'data-text': s.text }, s.text);
+  // away lists the places of the working that cannot be seen now: on another page
+  // or scrolled out of view.
+  away() {
+    const places = (this.now?.working.record.places ?? []).filter((p) => !OWN.has(p.field));
+    if (!this.shown?.page) return places.filter((p) => !this.inPassage?.has(p.byte_offset));
+    const v = this.view, { node, scale, sheet, page } = this.shown;
+    return places.filter((p) => {
+      if (!p.box) return false;
+      if (p.page !== page) return true;
+      const b = sheet.box(p.box);
+      const x = node.offsetLeft + b.x * scale - v.scrollLeft, y = node.offsetTop + b.y * scale - v.scrollTop;
+      return x < 0 || y < 0 || x > v.clientWidth || y > v.clientHeight;
     });
   }
 
-  #table(block) {
-    return el('table', {}, el('caption', {}, this.#spans(block.spans)), block.rows.map((row) => el('tr', {},
-      row.map((c) => el(c.head ? 'th' : 'td', { rowspan: c.rows > 1 ? c.rows : null, colspan: c.cols > 1 ? c.cols : null }, this.#spans(c.spans))))));
+  // elsewhere shows, one after the other, the places that the result was read
+  // from and that are out of view; after the last the result again.
+  async elsewhere() {
+    if (!this.now) return;
+    const { paper, working, mates } = this.now;
+    this.tour ??= this.away();
+    const p = this.tour.shift();
+    if (!p) {
+      this.tour = null;
+      if (!this.now.place) { say('All that this result was read from is in view.'); return; }
+      await this.show(paper, working, mates);
+      say('Back at the result.');
+      return;
+    }
+    await this.show(paper, working, mates, p);
+    say(`${TAGS[p.field] ?? p.field} was read here: “${p.text.slice(0, 80)}”. v goes on.`);
   }
 
-  setZoom(z) {
-    this.zoom = Math.min(4, Math.max(0.4, z));
-    sessionStorage.setItem('zoom', this.zoom);
+  async #passage(focus) {
+    const { paper, working } = this.now;
+    const ask = { paper, id: working.record.id };
+    if (focus) ask.at = focus.byte_offset;
+    const p = await get('passage', ask);
+    this.shown = { paper, page: null };
+    this.inPassage = new Set(p.holds);
+    replace(this.view, passageView(p));
+    $('page-number').textContent = p.page ? `page ${p.page}` : 'text as read';
+    this.#legend();
+    this.view.querySelector(focus ? 'mark.src' : 'mark:not(.src)')?.scrollIntoView({ block: 'center' });
+  }
+
+  #legend() {
+    const away = this.now.place ? 0 : this.away().length;
+    replace($('legend'), el('li', {}, el('span', { class: 'key own' }), 'the result'), el('li', {}, el('span', { class: 'key src' }), 'where the rest was read'),
+      away > 0 && el('li', {}, `${away} elsewhere `, el('kbd', {}, 'v')));
+  }
+
+  // turn turns the page a quarter clockwise.
+  turn() {
+    if (!this.shown?.page) return;
+    const { paper, page, sheet } = this.shown;
+    this.turns.set(`${paper} ${page}`, (sheet.turn + 90) % 360);
+    return this.again();
+  }
+
+  // magnify multiplies the scale, or shows the whole width.
+  magnify(by) {
+    const now = this.shown?.scale ?? LEGIBLE;
+    this.zoom = by ? Math.min(6, Math.max(0.4, now * by)) : this.zoom === 'width' ? 'legible' : 'width';
+    sessionStorage.setItem('zoom', JSON.stringify(this.zoom));
+    return this.again();
   }
 
   // point gives the place under the pointer in points of the unrotated page.
   point(event) {
-    if (!this.shown?.sheet) return null;
-    const r = this.shown.sheet.getBoundingClientRect();
-    const x = (event.clientX - r.left) * this.shown.w / r.width, y = (event.clientY - r.top) * this.shown.h / r.height;
-    return { shown: [x, y], page: this.back(x, y) };
+    if (!this.shown?.node) return null;
+    const { node, sheet } = this.shown;
+    const r = node.getBoundingClientRect();
+    return sheet.back((event.clientX - r.left) * sheet.w / r.width, (event.clientY - r.top) * sheet.h / r.height);
   }
 
   #drag() {
@@ -180,13 +268,13 @@ export class Leaf {
     v.addEventListener('pointerdown', (e) => {
       if (e.button !== 0 || (e.offsetX > v.clientWidth)) return;
       from = { x: e.clientX, y: e.clientY, left: v.scrollLeft, top: v.scrollTop, moved: false, start: this.point(e) };
-      if (this.onarea && from.start) { area = el('div', { class: 'draw' }); this.shown.sheet.append(area); }
+      if (this.onarea && from.start) { area = el('div', { class: 'draw' }); this.shown.node.append(area); }
     });
     addEventListener('pointermove', (e) => {
       if (!from) return;
       from.moved ||= Math.hypot(e.clientX - from.x, e.clientY - from.y) > 4;
       if (area) {
-        const r = this.shown.sheet.getBoundingClientRect();
+        const r = this.shown.node.getBoundingClientRect();
         Object.assign(area.style, {
           left: `${Math.min(e.clientX, from.x) - r.left}px`, top: `${Math.min(e.clientY, from.y) - r.top}px`,
           width: `${Math.abs(e.clientX - from.x)}px`, height: `${Math.abs(e.clientY - from.y)}px`,
@@ -199,13 +287,37 @@ export class Leaf {
     });
     addEventListener('pointerup', (e) => {
       if (!from) return;
-      const { moved, start } = from;
-      from = null;
+      const { moved, start } = from, drawn = area;
+      from = area = null;
       v.classList.remove('drag');
-      area?.remove();
-      if (area && moved) { area = null; this.onarea?.(start.page, this.point(e).page); return; }
-      area = null;
-      if (!moved && v.contains(e.target)) this.onpick?.(e);
+      drawn?.remove();
+      if (drawn && moved) this.onarea?.(start, this.point(e));
+      else if (!moved && v.contains(e.target)) this.onpick?.(e);
     });
   }
+}
+
+// lines joins boxes that stand on one printed line no further apart than gap
+// times their height: what stands between two columns of a table is not theirs.
+function lines(boxes, gap) {
+  const out = [];
+  const level = (a, b) => Math.min(a.y1, b.y1) - Math.max(a.y, b.y) > 0.5 * Math.min(a.y1 - a.y, b.y1 - b.y);
+  const close = (a, b) => Math.max(a.x, b.x) - Math.min(a.x1, b.x1) <= gap * (a.y1 - a.y);
+  for (const b of boxes) {
+    const line = out.find((l) => level(l, b) && close(l, b));
+    if (line) Object.assign(line, { x: Math.min(line.x, b.x), y: Math.min(line.y, b.y), x1: Math.max(line.x1, b.x1), y1: Math.max(line.y1, b.y1) });
+    else out.push({ x: b.x, y: b.y, x1: b.x1, y1: b.y1 });
+  }
+  return out;
+}
+
+function frame(b, cls, pad) {
+  return svg('rect', { class: cls, x: b.x - pad, y: b.y - pad, width: b.x1 - b.x + 2 * pad, height: b.y1 - b.y + 2 * pad, rx: 1 });
+}
+
+// bracket is a dashed line under a place with a short end up at either side: it
+// crosses no print and is told from a frame by its form.
+function bracket(b, cls) {
+  const foot = b.y1 + 1, up = Math.max(b.y, foot - 4);
+  return svg('path', { class: cls, d: `M${b.x - 1} ${up}V${foot}H${b.x1 + 1}V${up}` });
 }

@@ -16,7 +16,7 @@ const visible = () => state.rows.filter((r) => state.aside || !r.aside);
 const cellNow = () => state.row?.cells[state.cell];
 const hidden = (cell) => state.mode === 'type-first' && cell.type_first && !state.typed.has(cell.working.record.id);
 
-async function load(keep) {
+async function list() {
   const data = await get('rows');
   state.rows = data.rows;
   state.version = data.version;
@@ -24,6 +24,10 @@ async function load(keep) {
   const c = data.counts;
   $('progress').textContent = `${c.decided} of ${c.all} decided · ${c.doubtful} doubtful open`;
   $('aside-count').textContent = String(c.aside);
+}
+
+async function load(keep) {
+  await list();
   const rows = visible();
   const want = keep ?? decodeURIComponent(location.hash.slice(1)).split('|')[0];
   const found = rows.findIndex((r) => r.key === want);
@@ -34,10 +38,13 @@ async function load(keep) {
 async function show(at, id) {
   const rows = visible();
   if (!rows.length) { replace($('row'), el('h2', {}, 'Nothing to check here'), el('p', {}, 'No result fits. Show what is set aside with s, or start the desk without filters.')); replace($('cell')); return; }
-  state.at = Math.min(Math.max(at, 0), rows.length - 1);
-  const listed = rows[state.at];
-  const row = await get('row', { key: listed.key });
-  if (visible()[state.at]?.key !== listed.key) return; // moved on meanwhile
+  if (at < 0 || at >= rows.length) { say(at < 0 ? 'This is the first row.' : 'This is the last row.'); return; }
+  const listed = rows[at];
+  take(at, await get('row', { key: listed.key }), id);
+}
+
+function take(at, row, id) {
+  state.at = at;
   state.row = row;
   const byID = row.cells.findIndex((c) => c.working.record.id === id);
   const firstOpen = row.cells.findIndex((c) => c.state === 'open');
@@ -50,17 +57,20 @@ function draw() {
   const cell = cellNow(), r = cell.working.record;
   history.replaceState(null, '', `#${encodeURIComponent(`${state.row.key}|${r.id}`)}`);
   $('where').textContent = `${state.row.paper_name} — row ${state.at + 1} of ${visible().length}`;
+  leaf.tour = null;
   replace($('row'), rowView(state.row, state.cell, (i) => { state.cell = i; state.form = null; draw(); }, state.mode === 'type-first' && state.row.cells.some(hidden)));
   drawCell();
   leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch(fail);
   state.shownAt = performance.now();
-  for (const row of visible().slice(state.at + 1, state.at + 3)) if (row.page && (row.page !== state.row.page || row.paper !== state.row.paper)) leaf.prepare(row.paper, row.page);
+  const ahead = visible().slice(state.at + 1, state.at + 4).filter((row) => row.page && (row.page !== state.row.page || row.paper !== state.row.paper));
+  for (const key of new Set(ahead.map((row) => `${row.paper} ${row.page}`))) leaf.prepare(...key.split(' '));
 }
 
 function drawCell() {
   const cell = cellNow();
   state.field = null;
   leaf.onarea = null;
+  replace($('choices'));
   $('view').classList.toggle('pick', state.form === 'amend' || hidden(cell));
   if (state.mode === 'settle') { replace($('cell'), settleView(cell, settle)); return; }
   if (hidden(cell)) { replace($('cell'), typeForm(cell, compare, (input) => { state.field = input; })); $('cell').querySelector('input')?.focus(); return; }
@@ -74,11 +84,19 @@ function drawCell() {
   const typed = state.typed.get(cell.working.record.id);
   const d = cell.decision;
   replace($('cell'),
-    el('h3', {}, 'As read'), fieldsView(cell), typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
-    flagsView(cell.working, state.flags), workingView(cell.working),
-    d && el('p', {}, `${d.decision} by ${d.checker}, ${d.decided_at}${d.reason ? `: ${d.reason}` : ''}${d.note ? ` (${d.note})` : ''}`),
-    el('div', { class: 'choices', role: 'group', 'aria-label': 'Decide' }, [['Enter', 'Confirm row', 'confirm-row'], ['c', 'Confirm cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']]
-      .map(([k, label, what]) => el('button', { type: 'button', 'data-do': what }, label, ' ', el('kbd', {}, k)))));
+    flagsView(state.row.cells.filter((c) => c === cell || c.state === 'open'), state.flags),
+    el('h3', {}, 'As read'), fieldsView(cell, state.row), typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
+    workingView(cell.working),
+    d && el('p', {}, `${d.decision} by ${d.checker}, ${d.decided_at}${d.reason ? `: ${d.reason}` : ''}${d.note ? ` (${d.note})` : ''}`));
+  drawChoices();
+}
+
+// drawChoices says what each key does now: how many cells Enter would confirm.
+function drawChoices() {
+  if (state.mode === 'settle' || state.form || hidden(cellNow())) return;
+  const go = toConfirm().length;
+  const choices = [['Enter', go > 1 ? `Confirm ${go} cells` : 'Confirm', 'confirm-row'], go > 1 && ['c', 'Only this cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']];
+  replace($('choices'), choices.filter(Boolean).map(([k, label, what]) => el('button', { type: 'button', 'data-do': what }, label, ' ', el('kbd', {}, k))));
 }
 
 function fail(error) {
@@ -86,14 +104,24 @@ function fail(error) {
   if (!(error instanceof Refused)) throw error;
 }
 
-async function refresh(advance) {
-  const key = state.row.key, id = cellNow()?.working.record.id;
-  await load(key);
-  if (!advance) return;
-  if (state.row.cells.some((c) => c.state === 'open')) {
-    state.cell = state.row.cells.findIndex((c) => c.state === 'open');
-    draw();
-  } else if (id) await next((r) => r.cells.some((c) => c.state === 'open'), 'That was the last open row.');
+const isOpen = (cell) => cell.state === 'open';
+
+// advance goes on after a decision: to the next open cell of the row, else to the
+// next row that has one. The list is read again meanwhile, not first.
+async function advance(decided, newState) {
+  const ids = new Set(decided.map((c) => c.working.record.id));
+  for (const r of state.rows) for (const c of r.cells) if (ids.has(c.id)) c.state = newState;
+  const rows = visible();
+  let at = -1;
+  for (let k = 0; k < rows.length && at < 0; k++) {
+    const i = (state.at + k) % rows.length;
+    if (rows[i].cells.some(isOpen)) at = i;
+  }
+  const stay = at < 0;
+  if (stay) at = state.at;
+  const [row] = await Promise.all([get('row', { key: rows[at].key }), list()]);
+  take(at, row, stay ? decided[0].working.record.id : undefined);
+  if (stay) say('That was the last open row.');
 }
 
 async function decide(cells, decision, more = {}) {
@@ -104,35 +132,43 @@ async function decide(cells, decision, more = {}) {
   });
   try {
     await post('decide', { drafts });
-    say(`${decision}: ${cells.map((c) => printed(c.working.record)).join('; ')}`);
   } catch (e) {
     say(e.message, true);
-    await refresh(false);
+    await load(state.row.key);
     return false;
   }
-  await refresh(true);
+  say(`${decision}: ${cells.map((c) => printed({ ...c.working.record, ...more.amended })).join('; ')}`);
+  await advance(cells, decision);
   return true;
 }
 
 // onScreen are the cells of the row whose cards can be seen whole right now.
 function onScreen() {
-  const side = $('side').getBoundingClientRect();
+  const side = $('under').getBoundingClientRect();
   return state.row.cells.filter((c) => {
     const card = $('row').querySelector(`[data-id="${c.working.record.id}"]`)?.getBoundingClientRect();
     return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1;
   });
 }
 
+// toConfirm are the open cells that Enter confirms: those on the screen, but a
+// doubtful one only when it is stepped into.
+function toConfirm(held = []) {
+  return onScreen().filter((c) => {
+    if (!isOpen(c) || hidden(c)) return false;
+    const skip = c.working.record.reading === 'doubtful' && c !== cellNow();
+    if (skip) held.push(c);
+    return !skip;
+  });
+}
+
 const act = {
   'confirm-row': () => {
-    const cells = onScreen().filter((c) => c.state === 'open' && !hidden(c));
-    const held = cells.filter((c) => c.working.record.reading === 'doubtful' && c !== cellNow());
-    const go = cells.filter((c) => !held.includes(c));
-    if (!go.length) { say('Nothing open in this row can be seen. Step into a cell, or go on with ↓.'); return; }
-    if (held.length) say(`${held.length} doubtful cells stay open: step into each.`);
-    return decide(go, 'confirmed');
+    const held = [], go = toConfirm(held);
+    if (!go.length) { say(cellNow().state === 'open' ? 'No open cell of this row is in view.' : `This row is decided: go on with ↓, to the next open one with o, or take it back with u.`); return; }
+    return decide(go, 'confirmed').then((done) => { if (done && held.length) say(`${go.length} confirmed. ${held.length} doubtful left: each is decided by itself.`); });
   },
-  confirm: () => decide([cellNow()], 'confirmed'),
+  confirm: () => (isOpen(cellNow()) ? decide([cellNow()], 'confirmed') : say('This cell is decided already: take it back with u first.')),
   amend: () => { state.form = 'amend'; drawCell(); },
   drop: async () => { const a = await askReason('Drop this cell: why?'); if (a) await decide([cellNow()], 'dropped', a); },
   query: async () => { const note = await askQuery(); if (note) await decide([cellNow()], 'queried', { note }); },
@@ -143,11 +179,12 @@ const act = {
   keys: showKeys,
   add: addByHand,
   close: async () => { await post('close'); document.body.replaceChildren(el('main', { class: 'passage' }, el('h2', {}, 'The desk is closed'), el('p', {}, 'Every decision is in the ledger. This page can be closed.'))); },
-  'zoom-in': () => zoom(1.25), 'zoom-out': () => zoom(0.8), 'zoom-fit': () => zoom(0),
+  'zoom-in': () => leaf.magnify(1.25), 'zoom-out': () => leaf.magnify(0.8), 'zoom-fit': () => leaf.magnify(0), turn: () => leaf.turn(), elsewhere: () => leaf.elsewhere(),
   next: () => show(state.at + 1), before: () => show(state.at - 1),
   right: () => step(1), left: () => step(-1),
   doubtful: () => next((r) => r.cells.some((c) => c.state === 'open' && c.reading === 'doubtful'), 'No doubtful result is open.'),
   open: () => next((r) => r.cells.some((c) => c.state === 'open'), 'No result is open.'),
+  down: () => $('under').scrollBy(0, 0.8 * $('under').clientHeight), up: () => $('under').scrollBy(0, -0.8 * $('under').clientHeight),
   page: () => (document.activeElement === $('view') ? $('side') : $('view')).focus(),
 };
 
@@ -165,7 +202,7 @@ function next(fits, none) {
   const rows = visible();
   for (let k = 1; k <= rows.length; k++) {
     const i = (state.at + k) % rows.length;
-    if (fits(rows[i])) return show(i);
+    if (fits(rows[i])) return show(i).then(() => true);
   }
   say(none);
 }
@@ -177,8 +214,6 @@ function step(by) {
   state.form = null;
   draw();
 }
-
-function zoom(by) { leaf.setZoom(by ? leaf.zoom * by : 1); draw(); }
 
 async function amend(cell, d, key) {
   if (!Object.keys(d.amended).length && !d.take) { say('Nothing is changed yet.'); return; }
@@ -197,7 +232,8 @@ async function compare(values) {
 async function settle(choice) {
   const cell = cellNow();
   await post('settle', { id: cell.working.record.id, hash: cell.hash, ...choice });
-  await refresh(true);
+  await list();
+  await next((r) => r.cells.some(isOpen), 'That was the last to settle.') ?? load(state.row.key);
 }
 
 async function addByHand() {
@@ -224,7 +260,7 @@ leaf.onpick = async (event) => {
   const field = state.field;
   if (!field) return;
   let text = event.target.closest?.('mark')?.dataset.text ?? '';
-  if (leaf.shown?.page) text = await wordAt(leaf.shown.paper, leaf.shown.page, leaf.point(event).page).catch(() => '');
+  if (leaf.shown?.page) text = await wordAt(leaf.shown.paper, leaf.shown.page, leaf.point(event)).catch(() => '');
   else if (!text) text = String(getSelection());
   const number = /[-−–]?\d[\d,.·]*\d|[-−–]?\d/.exec(text.replace(/[()[\]]/g, ''));
   if (!number) { say('No number there.'); return; }
@@ -233,7 +269,7 @@ leaf.onpick = async (event) => {
   field.focus();
 };
 
-const BY_KEY = { ArrowDown: 'next', j: 'next', ArrowUp: 'before', k: 'before', ArrowRight: 'right', ArrowLeft: 'left', Enter: 'confirm-row', c: 'confirm', a: 'amend', x: 'drop', q: 'query', u: 'undo', d: 'doubtful', o: 'open', '/': 'find', s: 'aside', w: 'star', m: 'add', '+': 'zoom-in', '=': 'zoom-in', '-': 'zoom-out', 0: 'zoom-fit', p: 'page', '?': 'keys' };
+const BY_KEY = { ArrowDown: 'next', j: 'next', ArrowUp: 'before', k: 'before', ArrowRight: 'right', ArrowLeft: 'left', Enter: 'confirm-row', c: 'confirm', a: 'amend', x: 'drop', q: 'query', u: 'undo', d: 'doubtful', o: 'open', '/': 'find', s: 'aside', w: 'star', m: 'add', '+': 'zoom-in', '=': 'zoom-in', '-': 'zoom-out', 0: 'zoom-fit', p: 'page', PageDown: 'down', PageUp: 'up', v: 'elsewhere', t: 'turn', '?': 'keys' };
 
 let busy = Promise.resolve();
 function run(name) {
@@ -263,6 +299,7 @@ setInterval(async () => {
   const { version } = await get('version').catch(() => ({}));
   if (version && version !== state.version) await load(state.row?.key).catch(fail);
 }, 1500);
-addEventListener('resize', () => state.row && state.form !== 'amend' && draw());
+addEventListener('resize', () => { leaf.again()?.catch(fail); if (state.row && !state.form) drawChoices(); });
+$('under').addEventListener('scroll', () => { if (state.row && $('choices').childElementCount) drawChoices(); });
 
 load().catch(fail);

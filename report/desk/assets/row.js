@@ -1,41 +1,44 @@
 // Draws the row under check: what its cells share, the cells, and the cell in
 // focus with its fields, its working and its flags.
 import { el } from './dom.js';
-import { FIELDS, STATES, printed, spread, who } from './words.js';
+import { FIELDS, OWN, STATES, inWords, printed, spread, who } from './words.js';
 
-const SHARED = [['given_as', 'the spread is'], ['level', 'level'], ['n', 'n'], ['unit', 'unit'], ['outcome', 'outcome'], ['adjusted', 'adjusted']];
-const GIVEN = { ci: 'a confidence interval', sd: 'an SD', se: 'an SE', iqr: 'quartiles', range: 'a range', unstated: 'not said in the paper' };
+// What may hold for all cells of a row, and so is looked at once.
+const SHARED = ['statistic', 'given_as', 'level', 'n', 'n2', 'unit', 'time', 'subgroup', 'adjusted'];
+const CONTEXT = FIELDS.filter(([f]) => !OWN.has(f));
 
 const source = (w, field) => (w.record.places ?? []).find((p) => p.field === field);
 
-export function fromWords(w, field) {
+// fromWords says where a field was read, as far as the value does not say it.
+export function fromWords(w, field, value) {
   const p = source(w, field);
   if (!p) return '';
-  const at = p.page ? `page ${p.page}` : '';
-  return [p.from, at, p.text && `“${p.text.slice(0, 80)}”`].filter(Boolean).join(', ');
+  const elsewhere = p.page && p.page !== w.record.page ? `page ${p.page}` : '';
+  const same = (s) => s.toLowerCase().replace(/\W/g, '');
+  const text = p.text && same(p.text) !== same(value) ? `“${p.text.slice(0, 80)}”` : '';
+  return [p.from, elsewhere, text].filter(Boolean).join(', ');
 }
 
-// shared gives the facts that hold for every cell of the row.
+function facts(list) {
+  return el('dl', { class: 'fields' }, list.map(([label, value, from]) => el('div', {}, el('dt', {}, label), el('dd', {}, value, ' ', el('span', { class: 'from' }, from)))));
+}
+
+// shared names the fields that hold for every cell of the row.
 export function shared(cells) {
-  const out = [];
-  for (const [field, label] of SHARED) {
-    const values = new Set(cells.map((c) => String(c.working.record[field] ?? '')));
-    if (values.size !== 1) continue;
-    const [value] = values;
-    if (value === '' && field !== 'n') continue;
-    const text = field === 'given_as' ? (GIVEN[value] ?? value) : field === 'level' ? `${value}%` : value || 'not stated';
-    out.push([label, text, fromWords(cells[0].working, field)]);
-  }
-  return out;
+  if (cells.length < 2) return [];
+  return SHARED.filter((f) => new Set(cells.map((c) => inWords(f, c.working.record))).size === 1);
 }
 
 export function rowView(row, current, choose, hidden) {
   const where = [row.paper_name, row.page && `page ${row.page}`, row.table ?? row.section].filter(Boolean).join(' · ');
+  const first = row.cells[0].working, all = shared(row.cells).filter((f) => inWords(f, first.record) !== '' || f === 'n');
   return [
-    el('p', {}, where),
-    el('h2', {}, row.star ? '★ ' : '', row.cells[0].working.record.outcome ?? row.cells[0].working.record.heading ?? 'Result in the text'),
-    row.cells.length > 1 && !hidden && el('h3', {}, 'Holds for all cells of this row'),
-    row.cells.length > 1 && !hidden && el('dl', { class: 'shared' }, shared(row.cells).map(([k, v, f]) => [el('dt', {}, k), el('dd', {}, v, ' ', el('span', { class: 'from' }, f))])),
+    el('p', { class: 'where' }, where),
+    el('h2', {}, row.star ? '★ ' : '', first.record.outcome ?? first.record.heading ?? 'Result in the text'),
+    all.length > 0 && !hidden && [el('h3', {}, 'Holds for all cells'), facts(all.map((f) => {
+      const value = inWords(f, first.record) || 'not stated';
+      return [FIELDS.find(([g]) => g === f)[1], value, fromWords(first, f, value)];
+    }))],
     el('ol', { class: 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
   ];
 }
@@ -43,17 +46,20 @@ export function rowView(row, current, choose, hidden) {
 function cellCard(cell, current, choose, hidden) {
   const r = cell.working.record;
   const veil = hidden && cell.state === 'open';
+  const more = [r.use !== 'printed' && spread(r), r.n && `n ${r.n}${r.n2 ? ` and ${r.n2}` : ''}`].filter(Boolean).join(', ');
   return el('button', { type: 'button', 'data-id': r.id, 'aria-current': current ? 'true' : 'false', onclick: choose },
     el('span', { class: 'who' }, who(r)),
     el('span', { class: 'print' }, veil ? 'see the page' : printed(r)),
-    el('span', { class: 'sd' }, veil ? '' : spread(r), !veil && r.n ? `, n ${r.n}` : ''),
+    el('span', { class: 'sd' }, veil ? '' : more),
     el('span', { class: 'state' }, el('b', {}, STATES[cell.state] ?? cell.state), ` · reading ${r.reading}`));
 }
 
-export function fieldsView(cell) {
-  const r = cell.working.record;
-  return el('dl', { class: 'fields' }, FIELDS.filter(([f]) => r[f] !== null && r[f] !== undefined && r[f] !== '').map(([f, label]) => [
-    el('dt', {}, label), el('dd', {}, String(r[f]), ' ', el('span', { class: 'from' }, cell.changed?.includes(f) ? 'amended by hand' : fromWords(cell.working, f)))]));
+// fieldsView shows what was read beside the numbers, but for what is said of the
+// whole row; numbers only where a person amended them.
+export function fieldsView(cell, row) {
+  const r = cell.working.record, said = new Set(shared(row.cells));
+  const list = FIELDS.filter(([f]) => (CONTEXT.some(([g]) => g === f) && !said.has(f)) || cell.changed?.includes(f));
+  return facts(list.map(([f, label]) => [label, inWords(f, r), cell.changed?.includes(f) ? 'amended by hand' : fromWords(cell.working, f, inWords(f, r))]).filter(([, v]) => v !== ''));
 }
 
 export function workingView(w) {
@@ -63,7 +69,7 @@ export function workingView(w) {
     el('p', {}, r.use === 'withheld' ? `SD withheld: ${r.reason}` : `${spread(r)}${r.sd_of ? ` of ${r.sd_of}` : ''}${r.use === 'printed' ? ', as printed' : ''}`),
     t.steps?.length > 0 && el('pre', { class: 'steps' }, t.steps.join('\n')),
     t.assumptions?.length > 0 && el('p', {}, 'Assumes: ', t.assumptions.join('; '), '.'),
-    t.notes?.length > 0 && el('ul', { class: 'notes' }, t.notes.map((n) => el('li', {}, n))),
+    notes(w).length > 0 && el('ul', { class: 'notes' }, notes(w).map((n) => el('li', {}, n))),
     t.alternatives?.length > 0 && [el('h3', {}, 'Beside it'), altTable(t.alternatives)],
   ];
 }
@@ -75,8 +81,35 @@ function altTable(alternatives) {
       el('td', {}, a.name), el('td', {}, num(a.mean)), el('td', {}, num(a.sd)), el('td', {}, a.struck ? 'impossible: ' : '', a.note ?? '')))));
 }
 
-export function flagsView(w, meanings) {
-  if (!w.flags?.length) return null;
-  return [el('h3', {}, 'To look at'), el('ul', { class: 'flags' }, w.flags.map((f) => el('li', {},
-    meanings[f.name]?.meaning ?? f.name, f.detail ? ` (${f.detail})` : '', meanings[f.name]?.todo && el('span', { class: 'todo' }, ` ${meanings[f.name].todo}`))))];
+// notes are those of the trail that the page does not show: where each field was
+// read is outlined there.
+function notes(w) {
+  const read = (w.record.places ?? []).map((p) => `${p.field.replaceAll('_', ' ')} read as `);
+  return (w.trail?.notes ?? []).filter((n) => !read.some((r) => n.startsWith(r)));
+}
+
+// flagsView lists what to look at in the whole row, since one key confirms it:
+// each flag once, with the cells that have it where not all do.
+export function flagsView(cells, meanings) {
+  const flags = new Map();
+  for (const cell of cells) for (const f of cell.working.flags ?? []) {
+    if (!flags.has(f.name)) flags.set(f.name, []);
+    flags.get(f.name).push({ detail: f.detail ?? '', name: who(cell.working.record) });
+  }
+  if (!flags.size) return null;
+  return [el('h3', {}, 'To look at'), el('ul', { class: 'flags' }, [...flags].map(([name, raised]) => {
+    const { meaning, todo } = meanings[name] ?? { meaning: name };
+    const details = new Set(raised.map((f) => particular(meaning, f.detail)));
+    const all = raised.length === cells.length && details.size === 1;
+    const said = all ? [...details][0] : raised.map((f) => [f.name, particular(meaning, f.detail)].filter(Boolean).join(': ')).join('; ');
+    return el('li', {}, meaning, said && ` (${said})`, todo && el('span', { class: 'todo' }, ` → ${todo}`));
+  }))];
+}
+
+// particular is what a flag's detail adds to its meaning: nothing where it says
+// the same in other words.
+function particular(meaning, detail) {
+  const words = (s) => s.toLowerCase().match(/[\p{L}\d.]{3,}/gu) ?? [];
+  const said = new Set(words(meaning)), own = words(detail ?? '');
+  return own.filter((w) => !said.has(w)).length > 0.5 * own.length ? detail : '';
 }

@@ -6,9 +6,17 @@ export const STATES = {
 export const REASONS = ['misread', 'wrong arm or time', 'misprint in the paper', 'not needed', 'printed twice', 'other'];
 export const FIELDS = [
   ['estimate', 'estimate'], ['lower', 'lower bound'], ['upper', 'upper bound'], ['given_value', 'printed spread'],
-  ['given_as', 'given as'], ['level', 'level, %'], ['statistic', 'statistic'], ['n', 'n'], ['n2', 'n of the comparator'],
+  ['given_as', 'given as'], ['level', 'level'], ['statistic', 'statistic'], ['n', 'n'], ['n2', 'n of the comparator'],
   ['arm', 'arm'], ['arm2', 'comparator'], ['time', 'time'], ['subgroup', 'subgroup'], ['outcome', 'outcome'], ['unit', 'unit'], ['adjusted', 'adjusted'],
 ];
+// OWN are the fields that are the result itself; TAGS name the others where they
+// are outlined on the page.
+export const OWN = new Set(['estimate', 'lower', 'upper', 'given_value']);
+export const TAGS = {
+  n: 'n', n2: 'n', arm: 'arm', arm2: 'arm', time: 'time', subgroup: 'subgroup', level: 'level', given_as: 'spread', unit: 'unit',
+  outcome: 'outcome', statistic: 'kind', adjusted: 'adjusted', p: 'p',
+};
+const GIVEN = { ci: 'a confidence interval', sd: 'an SD', se: 'an SE', iqr: 'quartiles', range: 'a range', unstated: 'not said in the paper' };
 export const CHOICES = {
   given_as: ['ci', 'sd', 'se', 'iqr', 'range', 'unstated'],
   statistic: ['mean', 'mean difference', 'mean change', 'median', 'geometric mean', 'ratio', 'proportion', 'risk difference', 'rate', 'coefficient', 'other'],
@@ -19,18 +27,31 @@ export const KEYS = [
   ['↓ or j', 'next row'], ['↑ or k', 'row before'], ['← →', 'cell of the row'], ['Enter', 'confirm the open cells of this row that are on the screen'],
   ['c', 'confirm this cell only'], ['a', 'amend this cell'], ['x', 'drop this cell, with a reason'], ['q', 'query this cell'], ['u', 'take the last decision back'],
   ['d', 'next doubtful'], ['o', 'next open'], ['/', 'find'], ['s', 'show or hide what is set aside'], ['w', 'star this outcome: starred ones come first'],
-  ['m', 'add a result the program missed'], ['+ − 0', 'zoom the page'], ['p', 'to the page and back'], ['Esc', 'leave a form'], ['?', 'this overview'],
+  ['m', 'add a result the program missed'], ['+ −', 'larger and smaller page'], ['0', 'whole width of the page, or legible size'], ['v', 'show where the rest was read that is out of view: other pages too'], ['t', 'turn the page'], ['p', 'to the page, which the arrows scroll, and back'], ['Page ↑ ↓', 'scroll what stands beside the page'], ['Esc', 'leave a form'], ['?', 'this overview'],
 ];
+
+// inWords says the value of a field as a person would.
+export function inWords(field, r) {
+  const v = r[field];
+  if (v === null || v === undefined || v === '') return '';
+  switch (field) {
+    case 'given_as': return GIVEN[v] ?? v;
+    case 'level': return `${v}%`;
+    case 'statistic': return r.measure && r.measure !== v ? `${v} (${r.measure})` : v;
+    default: return String(v);
+  }
+}
+
+const minus = (v) => String(v ?? '').replace(/^-/, '−');
 
 // printed writes a record's result as the paper prints it.
 export function printed(r) {
-  const level = r.level ? `${r.level}% ` : '';
-  const unit = r.unit === '%' ? '%' : '';
-  const e = `${r.estimate ?? ''}${unit}`;
+  const e = `${minus(r.estimate)}${r.unit === '%' ? '%' : ''}`;
+  const bounds = `${r.lower === null ? '…' : minus(r.lower)} to ${r.upper === null ? '…' : minus(r.upper)}`;
   switch (r.given_as) {
-    case 'ci': return `${e} (${level}CI ${r.lower ?? '…'} to ${r.upper ?? '…'})`;
-    case 'iqr': return r.lower ? `${e} (IQR ${r.lower} to ${r.upper})` : `${e} (IQR ${r.given_value})`;
-    case 'range': return r.lower ? `${e} (range ${r.lower} to ${r.upper})` : `${e} (range ${r.given_value})`;
+    case 'ci': return `${e} (${r.level ? `${r.level}% ` : ''}CI ${bounds})`;
+    case 'iqr': return r.lower ? `${e} (IQR ${bounds})` : `${e} (IQR ${r.given_value})`;
+    case 'range': return r.lower ? `${e} (range ${bounds})` : `${e} (range ${r.given_value})`;
     case 'sd': return `${e} (SD ${r.given_value})`;
     case 'se': return `${e} (SE ${r.given_value})`;
     default: return `${e} ± ${r.given_value} (meaning unstated)`;
