@@ -115,9 +115,11 @@ func Amendable() []string {
 // of the working's own proposals (Trail.Alternatives) whose mean and SD the
 // person takes.
 //
-// The id, the anchor, the mates and the places stay; what compares the result
-// with others of its paper is not worked again. An error names the field and says
-// what is wrong with it. Neither r nor w is changed.
+// A field that a person gave says so in its place (result.FromPerson), with what
+// the program had read; the doubts of reading that the field settles are gone. The
+// id, the anchor and the mates stay; what compares the result with others of its
+// paper is not worked again. An error names the field and says what is wrong with
+// it. Neither r nor w is changed.
 func Amend(r result.Result, w Working, changed map[string]string, take string) (result.Result, Working, error) {
 	r.Flags = slices.Clone(r.Flags)
 	r.Mates = nil
@@ -130,16 +132,98 @@ func Amend(r result.Result, w Working, changed map[string]string, take string) (
 		if err := set(&r, strings.TrimSpace(changed[field])); err != nil {
 			return result.Result{}, Working{}, fmt.Errorf("%s: %w", field, err)
 		}
+		givenByPerson(&r, field, strings.TrimSpace(changed[field]))
 	}
-	out := Work(Facts{Path: w.Record.Paper, SHA256: w.Record.PaperSHA256}, []result.Result{r})[0]
-	out.Record.ID, out.Record.Mates, out.Record.Places = w.Record.ID, w.Record.Mates, w.Record.Places
-	out.Row, out.Anchor = w.Row, w.Anchor
+	out := w
+	out.Trail.Notes = slices.Clone(w.Trail.Notes)
+	if len(changed) > 0 {
+		keepComparisons(&r, w, changed)
+		out = Work(Facts{Path: w.Record.Paper, SHA256: w.Record.PaperSHA256}, []result.Result{r})[0]
+		out.Record.ID, out.Record.Mates = w.Record.ID, w.Record.Mates
+		out.Row, out.Anchor = w.Row, w.Anchor
+	}
 	if take != "" {
 		if err := takeProposal(&out, take); err != nil {
 			return result.Result{}, Working{}, err
 		}
 	}
 	return r, out, nil
+}
+
+// keepComparisons hands on what the comparison with other results of the paper
+// found wrong with the spread, where nothing that went into it was changed.
+func keepComparisons(r *result.Result, w Working, changed map[string]string) {
+	for _, field := range append([]string{"given_as", "level", "n", "statistic"}, ownNumbers...) {
+		if _, yes := changed[field]; yes {
+			return
+		}
+	}
+	for _, f := range w.Flags {
+		if slices.Contains([]string{"mates-disagree", "sd-as-se", "se-as-sd"}, f.Name) {
+			r.Raise(f.Name, f.Detail)
+		}
+	}
+}
+
+// settledBy are the doubts of reading that end where a person gives a field.
+func settledBy() map[string][]string {
+	numbers := []string{"mates-disagree", "sd-as-se", "se-as-sd", "sign-differs", "scale-differs", "open-bound", "bound-not-a-number"}
+	return map[string][]string{
+		"n":           {"mates-disagree", "sd-as-se", "se-as-sd", "n-total", "n-conflict", "n-kind-unclear", "n-elsewhere"},
+		"given_as":    {"mates-disagree", "sd-as-se", "se-as-sd", "spread-conflict", "spread-ambiguous", "conventions-differ", "spread-from-methods", "spread-from-rows", "interval-unnamed", "count-or-spread"},
+		"level":       {"mates-disagree", "level-assumed", "level-elsewhere"},
+		"statistic":   {"statistic-assumed", "count-or-spread"},
+		"estimate":    numbers,
+		"lower":       numbers,
+		"upper":       numbers,
+		"given_value": numbers,
+		"arm":         {"arm-unclear"},
+		"time":        {"time-unclear"},
+		"outcome":     {"outcome-unclear"},
+		"unit":        {"scale-differs", "power-of-ten"},
+	}
+}
+
+// ownNumbers are the fields that are the printed result itself: their place on the
+// page is that of the result, whatever digits stand there.
+var ownNumbers = []string{"estimate", "lower", "upper", "given_value"}
+
+// givenByPerson marks a field as given by a person and drops what was true of the
+// value read only: where it was read, what its n counts, the doubts it settles.
+func givenByPerson(r *result.Result, field, typed string) {
+	source, was := result.Source{Field: field, Text: typed, From: result.FromPerson}, ""
+	kept := make([]result.Source, 0, len(r.Sources)+1)
+	for _, s := range r.Sources {
+		if s.Field != field {
+			kept = append(kept, s)
+			continue
+		}
+		if s.ByPerson() || was != "" {
+			continue
+		}
+		was = s.Text
+		if slices.Contains(ownNumbers, field) {
+			source.Place = s.Place
+		}
+		source.From += fmt.Sprintf("; the program read %q%s", s.Text, whereRead(s))
+	}
+	if typed != "" {
+		kept = append(kept, source)
+	}
+	r.Sources = kept
+	r.Flags = slices.DeleteFunc(r.Flags, func(f result.Flag) bool { return slices.Contains(settledBy()[field], f.Name) })
+	switch field {
+	case "n":
+		r.NFrom, r.NKind = "", ""
+		if typed != "" {
+			r.NFrom = result.NPerson
+		}
+	case "adjusted":
+		if typed == "no" {
+			r.Evidence.Model = nil
+			r.Evidence.Tests = slices.DeleteFunc(slices.Clone(r.Evidence.Tests), func(t string) bool { return t == "ancova" || t == "mixed model" })
+		}
+	}
 }
 
 // takeProposal fills mean and SD from the proposal of that name.

@@ -1,9 +1,13 @@
 package working
 
 import (
+	"slices"
 	"strings"
 	"testing"
 
+	"github.com/google/go-cmp/cmp"
+
+	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
 
@@ -48,6 +52,97 @@ func TestAmendWorksTheResultThroughAgain(t *testing.T) {
 	}
 	if *back.Record.SD != *w.Record.SD || strings.Join(back.Record.Flags, " ") != strings.Join(w.Record.Flags, " ") {
 		t.Errorf("n taken away and put back: SD %v flags %v, want %v %v", *back.Record.SD, back.Record.Flags, *w.Record.SD, w.Record.Flags)
+	}
+}
+
+// What a person gives is marked as such: where the old value was read and what was
+// said of it is no longer true.
+func TestAmendMarksWhatAPersonGave(t *testing.T) {
+	r := colonyMass()
+	r.NKind = result.NRandomised
+	r.Raise("n-total", "the n may be that of both arms")
+	r.Raise("level-assumed", "from the other intervals")
+	r.Sources = []result.Source{
+		{Field: "n", Place: paper.Place{Offset: 40, Line: 3}, Text: "n = 42", From: "heading of column 2"},
+		{Field: "lower", Place: paper.Place{Offset: 120, Line: 9}, Text: "11.8"},
+		{Field: "arm", Place: paper.Place{Offset: 30}, Text: "syrup"},
+	}
+	w := Work(Facts{Path: "colonies.txt", SHA256: "ab"}, []result.Result{r})[0]
+	if w.Record.SD != nil {
+		t.Fatal("an n that may be that of both arms gave an SD")
+	}
+	amended, got, err := Amend(r, w, map[string]string{"n": "21", "lower": "11.9", "upper": "12.9"}, "")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rec := got.Record
+	if rec.SD == nil || slices.Contains(rec.Flags, "n-total") || !slices.Contains(rec.Flags, "level-assumed") {
+		t.Errorf("SD %v, flags %v: the doubt of n is settled, that of the level is not", rec.SD, rec.Flags)
+	}
+	if rec.NFrom == nil || *rec.NFrom != result.NPerson || rec.NKind != nil {
+		t.Errorf("n_from %v, n_kind %v", rec.NFrom, rec.NKind)
+	}
+	want := []Place{
+		{Field: "arm", Offset: &r.Sources[2].Place.Offset, Text: "syrup"},
+		{Field: "lower", Offset: &r.Sources[1].Place.Offset, Text: "11.9", From: `a person; the program read "11.8" (byte 120)`},
+		{Field: "n", Text: "21", From: `a person; the program read "n = 42" (heading of column 2, byte 40)`},
+		{Field: "upper", Text: "12.9", From: "a person"},
+	}
+	if diff := cmp.Diff(want, rec.Places); diff != "" {
+		t.Errorf("places (-want +got):\n%s", diff)
+	}
+	if len(r.Sources) != 3 || r.Sources[0].Text != "n = 42" || len(r.Flags) != 2 {
+		t.Errorf("the result that was read was changed: %+v", r)
+	}
+	_, cleared, err := Amend(amended, got, map[string]string{"n": ""}, "")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, p := range cleared.Record.Places {
+		if p.Field == "n" {
+			t.Errorf("n was taken away, its place is still %+v", p)
+		}
+	}
+	if cleared.Record.NFrom != nil {
+		t.Errorf("n was taken away, n_from is %s", *cleared.Record.NFrom)
+	}
+}
+
+// What the other results of the row say against a spread stands until a number that
+// went into it is changed.
+func TestAmendKeepsWhatOthersSay(t *testing.T) {
+	spread := func(kind result.GivenAs, value string, mate int) result.Result {
+		r := colonyMass()
+		r.GivenAs, r.Lower, r.Upper, r.Level, r.GivenValue, r.Table, r.Mates = kind, "", "", 0, value, "Table 2", []int{mate}
+		return r
+	}
+	results := []result.Result{spread(result.SE, "0.40", 1), spread(result.SD, "3.9", 0)}
+	w := Work(Facts{Path: "colonies.txt"}, results)[0]
+	for _, c := range []struct {
+		field, value string
+		given        bool
+	}{{"arm", "water", false}, {"n", "95", true}, {"given_value", "0.60", true}} {
+		_, got, err := Amend(results[0], w, map[string]string{c.field: c.value}, "")
+		if err != nil || (got.Record.SD != nil) != c.given || slices.Contains(got.Record.Flags, "mates-disagree") == c.given {
+			t.Errorf("%s = %s: SD %v, flags %v, %v", c.field, c.value, got.Record.SD, got.Record.Flags, err)
+		}
+	}
+}
+
+// Saying that a mean is not adjusted ends what the words around it said of a model.
+func TestAmendNotAdjusted(t *testing.T) {
+	r := colonyMass()
+	r.Adjusted, r.Evidence.Model, r.Evidence.Tests = "yes", []string{"least-squares"}, []string{"ancova", "t test"}
+	w := Work(Facts{Path: "colonies.txt"}, []result.Result{r})[0]
+	_, got, err := Amend(r, w, map[string]string{"adjusted": "no"}, "")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if w.Record.SD != nil || got.Record.SD == nil {
+		t.Errorf("SD %v before, %v after: %s", w.Record.SD, got.Record.SD, got.Record.Reason)
+	}
+	if len(r.Evidence.Model) != 1 || len(r.Evidence.Tests) != 2 {
+		t.Error("the result that was read was changed")
 	}
 }
 

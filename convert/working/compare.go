@@ -169,12 +169,7 @@ func compareSpreads(a, b *item) {
 		small.raise("se-as-sd", detail)
 		return
 	}
-	large.raise("sd-as-se", detail)
-	if rec := large.rec(); rec.Use == useConverted {
-		rec.SD, rec.SDLow, rec.SDHigh, rec.SDNormal, rec.SDOf, rec.Method = nil, nil, nil, nil, nil, nil
-		large.w.Trail = Trail{}
-		large.withhold("printed as an SE, but its size beside the others says that it is an SD")
-	}
+	large.raise("sd-as-se", detail) // holdBacks takes the SD back
 }
 
 // testedLevel compares the interval of a difference with its p value.

@@ -3,6 +3,7 @@ package working
 import (
 	"fmt"
 
+	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
 
@@ -62,6 +63,9 @@ func newRecord(doc Facts, r *result.Result) Record {
 
 func newPlace(s result.Source) Place {
 	p := Place{Field: s.Field, Text: s.Text, From: s.From}
+	if s.ByPerson() && s.Place == (paper.Place{}) {
+		return p
+	}
 	if s.Place.Page == 0 {
 		offset := s.Place.Offset
 		p.Offset = &offset

@@ -193,7 +193,12 @@ func (it *item) traceInputs() {
 			if s.Field != field || s.Text == "" {
 				continue
 			}
-			it.note("%s read as %q%s", strings.ReplaceAll(field, "_", " "), s.Text, whereRead(s))
+			name := strings.ReplaceAll(field, "_", " ")
+			if s.ByPerson() {
+				it.note("%s %q given by %s", name, s.Text, s.From)
+				break
+			}
+			it.note("%s read as %q%s", name, s.Text, whereRead(s))
 			break
 		}
 	}

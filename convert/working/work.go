@@ -54,6 +54,7 @@ func Work(doc Facts, results []result.Result) []Working {
 	out := make([]Working, len(items))
 	for i, it := range items {
 		run(checksOfWorking(), it)
+		holdBackGuesses(it)
 		it.finish(effects)
 		out[i] = *it.w
 	}

@@ -1,6 +1,10 @@
 package result
 
-import "halfspan/extract/paper"
+import (
+	"strings"
+
+	"halfspan/extract/paper"
+)
 
 // Statistic says what kind of estimate a result is.
 type Statistic string
@@ -39,6 +43,7 @@ const (
 	NHeading   = "heading"
 	NCaption   = "caption"
 	NElsewhere = "elsewhere"
+	NPerson    = "person" // not read: a person gave it
 )
 
 // What an n counts (Result.NKind).
@@ -90,6 +95,13 @@ type Source struct {
 	Text  string      `json:"text"`           // as printed there
 	From  string      `json:"from,omitempty"` // in words: "heading of column 3", "footnote a", "the methods"
 }
+
+// FromPerson begins Source.From where a person said what stands there, in place of
+// what was read.
+const FromPerson = "a person"
+
+// ByPerson reports that a person said what stands there.
+func (s *Source) ByPerson() bool { return strings.HasPrefix(s.From, FromPerson) }
 
 // Flag is one thing to look at, raised while reading or working.
 type Flag struct {

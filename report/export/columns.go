@@ -44,7 +44,7 @@ func recordColumns() []column {
 		{name: "level", kind: "number", unit: "percent", describe: "Level of the interval."},
 		{name: "n", kind: "integer", unit: "those counted", describe: "Sample size behind the estimate."},
 		{name: "n2", kind: "integer", unit: "those counted", describe: "Sample size of the comparator arm of a result between groups."},
-		{name: "n_from", kind: "string", describe: "Where n was read: beside, heading, caption, elsewhere."},
+		{name: "n_from", kind: "string", describe: "Where n was read: beside, heading, caption, elsewhere; person: not read, a person gave it."},
 		{name: "n_kind", kind: "string", describe: "What n counts: randomised, analysed, completers, unclear."},
 		{name: "arm", kind: "string", describe: "The group it is about."},
 		{name: "arm2", kind: "string", describe: "The comparator of a result between groups."},
