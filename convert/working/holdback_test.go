@@ -20,6 +20,11 @@ func TestGuessesAreHeldBack(t *testing.T) {
 	row := func(kind result.GivenAs, value string, mate int) result.Result {
 		return result.Result{Statistic: result.Mean, GivenAs: kind, Estimate: "12.4", GivenValue: value, N: 20, Table: "Table 2", Row: "1", Arm: "syrup", Outcome: "colony mass", Mates: []int{mate}}
 	}
+	baseline := func(note string) result.Result {
+		r := sentence(result.SE, "footnote a")
+		r.Table, r.Heading, r.Adjusted, r.Evidence.Baseline, r.Sources[0].Text = "Table 2", "Syrup", "yes", true, note
+		return r
+	}
 	for _, c := range []struct {
 		name    string
 		results []result.Result
@@ -34,6 +39,8 @@ func TestGuessesAreHeldBack(t *testing.T) {
 		{"printed SD, no arm", []result.Result{armless(sentence(result.SD, "the methods"))}, ""},
 		{"n in two versions", []result.Result{raised(sentence(result.SE, ""), "n-conflict")}, "different n"},
 		{"SE and SD of another n", []result.Result{row(result.SE, "0.40", 1), row(result.SD, "3.9", 0)}, "do not belong to one n"},
+		{"baseline, adjusted by its own footnote", []result.Result{baseline("Adjusted means, apiary as a covariate (SE)")}, "adjusted"},
+		{"baseline, not adjusted by its own footnote", []result.Result{baseline("Unadjusted means (SE)")}, ""},
 		{"SE and SD of this n", []result.Result{row(result.SE, "0.87", 1), row(result.SD, "3.9", 0)}, ""},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -46,6 +53,9 @@ func TestGuessesAreHeldBack(t *testing.T) {
 			}
 			if w.Record.SD != nil || w.Record.Use != useWithheld || !strings.Contains(w.Record.Reason, c.reason) || w.Record.Method != nil {
 				t.Fatalf("SD %v, use %s, reason %q", w.Record.SD, w.Record.Use, w.Record.Reason)
+			}
+			if c.results[0].Adjusted == "yes" {
+				return // refused before an SD was worked out
 			}
 			i := slices.IndexFunc(w.Trail.Alternatives, func(a Alternative) bool { return strings.HasPrefix(a.Name, "if it is an") })
 			if i < 0 {

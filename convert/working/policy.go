@@ -143,17 +143,29 @@ func obstacles() []obstacle {
 	}
 }
 
-// plainBaseline reports a baseline mean whose own heading says nothing of a model:
-// what the caption says of adjustment concerns the values after it. Such a reading
-// asks for a look (adjusted-baseline).
+// plainBaseline reports a baseline mean whose own heading and footnote say nothing
+// of a model: what the caption says of adjustment concerns the values after it.
+// Such a reading asks for a look (adjusted-baseline).
 func plainBaseline(it *item) bool {
-	heading := strings.ToLower(it.res.Heading)
-	for _, word := range []string{"adj", "least", "ls mean", "marginal", "model", "estimated", "predicted", "ancova"} {
-		if strings.Contains(heading, word) {
+	if speaksOfModel(it.res.Heading) {
+		return false
+	}
+	for _, s := range it.res.Sources {
+		if s.Field == "given_as" && strings.HasPrefix(s.From, "footnote") && speaksOfModel(s.Text) {
 			return false
 		}
 	}
 	return it.res.Evidence.Baseline && it.res.Heading != "" && isStatistic(result.Mean)(it)
+}
+
+func speaksOfModel(words string) bool {
+	words = strings.NewReplacer("unadjusted", "", "not adjusted", "").Replace(strings.ToLower(words))
+	for _, word := range []string{"adj", "covariate", "least", "ls mean", "marginal", "model", "estimated", "predicted", "ancova"} {
+		if strings.Contains(words, word) {
+			return true
+		}
+	}
+	return false
 }
 
 // rawBesideAdjusted reports a result whose row prints a plain difference and, in
