@@ -75,7 +75,8 @@ func readPDF(path string, content []byte, opt Options) (*paper.Document, error) 
 // Find gives every result that is printed in the document, in reading order.
 func Find(doc *paper.Document) []result.Result {
 	back := background.Of(doc)
-	found := merge(prose.Find(doc, back), table.Find(doc, back))
+	tables := table.Find(doc, back)
+	found := merge(prose.Find(doc, back, tables), tables)
 	raiseDoubts(doc, found)
 	return found
 }

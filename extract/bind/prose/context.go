@@ -4,6 +4,7 @@ import (
 	"sort"
 	"strings"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
@@ -13,9 +14,9 @@ import (
 // setContext fills arm, time and outcome from the sentence where they are
 // plain.
 func (p *para) setContext(r *result.Result, c *cand) {
-	p.setArms(r, c)
 	p.setTime(r, c)
 	p.setOutcome(r, c)
+	p.setArms(r, c)
 }
 
 // between reports that the result compares two arms.
@@ -54,13 +55,13 @@ func (p *para) setArm(r *result.Result, field string, m mention) {
 		if field == "arm2" {
 			n, name = &r.N2, "n2"
 		}
-		if s, ok := p.behindName(m); ok {
+		if s, ok := p.besideName(m); ok {
 			*n = s.n
 			if name == "n" {
 				r.NFrom, r.NKind = result.NBeside, result.NUnclear
 			}
 			p.source(r, name, s.at)
-		} else if s, ok := p.f.cast.sized(m.arm, r.Evidence.Baseline); ok && sizeTold(r) && p.wholeArm(m) {
+		} else if s, ok := p.f.cast.sized(m.arm, ask(r)); ok && sizeTold(r) && p.wholeArm(m) {
 			p.elsewhere(r, name, n, s)
 		}
 	}
@@ -73,13 +74,24 @@ func (p *para) setArm(r *result.Result, field string, m mention) {
 }
 
 // sizeTold reports whether an arm's size, stated elsewhere, is the n behind the
-// result: of a mean or a difference of means; events and doses have their own.
+// result: coefficients and rates have their own.
 func sizeTold(r *result.Result) bool {
 	switch r.Statistic {
-	case result.Mean, result.MeanChange, result.MeanDifference, result.GeometricMean:
-		return !r.Evidence.Quoted
+	case result.Coefficient, result.Rate, result.Other, "":
+		return false
 	}
-	return false
+	return !r.Evidence.Quoted && !doses.MatchString(r.Outcome)
+}
+
+var doses = pattern.MustCompile(`(?i)\b(?:doses?|consumption) of\b`)
+
+func ask(r *result.Result) asked {
+	q := asked{baseline: r.Evidence.Baseline || startTime.MatchString(r.Time), outcome: r.Outcome}
+	switch r.Statistic {
+	case result.Ratio, result.RiskDifference, result.Proportion:
+		q.events = true
+	}
+	return q
 }
 
 var part = pattern.MustCompile(`(?i)\b(?:drop-?outs?|adherers|completers|survivors|non-?survivors|(?:non-?)?responders|subgroups?|subset|smokers|males?|females?|of whom|per[- ]protocol|stratum|strata)\b`)
@@ -97,6 +109,24 @@ func (p *para) wholeArm(m mention) bool {
 	return p.block.Zone != paper.Methods && p.block.Zone != paper.Discussion && !p.says(m.start, part) && !p.says(m.start, counted)
 }
 
+// besideName reads the n printed with an arm's name, there or where the sentence
+// names the arm once more: "Syrup (n = 42)", "42 colonies in the syrup group".
+func (p *para) besideName(m mention) (size, bool) {
+	if s, ok := p.behindName(m); ok {
+		return s, true
+	}
+	from, to := p.sentence(m.start)
+	var found []size
+	for _, o := range p.mentions(from, to) {
+		if o.arm == m.arm {
+			if s, ok := p.beforeName(from, o); ok {
+				found = append(found, s)
+			}
+		}
+	}
+	return agreed(found)
+}
+
 // behindName reads the n printed right behind an arm's name: "Syrup (n = 42)".
 func (p *para) behindName(m mention) (size, bool) {
 	i, j := p.items(m.end, m.end+4)
@@ -107,6 +137,19 @@ func (p *para) behindName(m mention) (size, bool) {
 		}
 	}
 	return size{}, false
+}
+
+var countBefore = pattern.MustCompile(`(?i)(?:^|[^\w.,–/-])([0-9]{1,5}|` + census.Words + `)\s+(?:` + census.Subjects + `\s+)?` + intoGroup + `(?:the\s+)?$`)
+
+// beforeName reads the count right before an arm's name: "42 colonies in the
+// syrup group". Who was lost from it is no size.
+func (p *para) beforeName(from int, m mention) (size, bool) {
+	at := countBefore.FindStringSubmatchIndex(p.s[from:m.start])
+	if at == nil || lost.MatchString(around(p.s, m.start)) {
+		return size{}, false
+	}
+	n, ok := census.Number(p.s[from+at[2] : from+at[3]])
+	return size{n: n, at: grammar.Span{Start: from + at[2], End: m.end}, text: p.s[from+at[2] : m.end]}, ok && n > 3
 }
 
 // twoArms gives the two arms of a sentence that names exactly two.

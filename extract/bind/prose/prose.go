@@ -11,10 +11,11 @@ import (
 )
 
 // Find gives the results printed in the running text of a paper, in reading
-// order, with the paper's background. Tables are not its business.
-func Find(doc *paper.Document, back *background.Background) []result.Result {
+// order, with the paper's background. Tables are not its business, but the
+// results that were read there tell it the arms of the study and their sizes.
+func Find(doc *paper.Document, back *background.Background, tables []result.Result) []result.Result {
 	f := &finder{doc: doc, back: back, conv: back.Conventions, comma: decimalComma(doc)}
-	f.learn()
+	f.learn(tables)
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		switch b.Kind {

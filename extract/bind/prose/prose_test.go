@@ -137,7 +137,7 @@ func dump(r *result.Result) string {
 func findAll(lines []string) string {
 	doc := document(lines)
 	var out []string
-	for _, r := range Find(doc, background.Of(doc)) {
+	for _, r := range Find(doc, background.Of(doc), nil) {
 		out = append(out, dump(&r))
 	}
 	if len(out) == 0 {
@@ -186,7 +186,7 @@ func TestFind(t *testing.T) {
 func TestSources(t *testing.T) {
 	lines := []string{"In the syrup group (n = 42) colony mass fell by 1.2 kg (95% CI −1.9 to −0.5, p = 0.003) at week 6."}
 	doc := document(lines)
-	found := Find(doc, background.Of(doc))
+	found := Find(doc, background.Of(doc), nil)
 	if len(found) != 1 {
 		t.Fatalf("got %d results, want 1", len(found))
 	}
@@ -218,7 +218,7 @@ func TestSources(t *testing.T) {
 func TestReferencesAreNotSearched(t *testing.T) {
 	doc := document([]string{"@References 1. Mass of hives was 12.4 ± 1.3 kg in all of the apiaries."})
 	doc.Blocks = append(doc.Blocks, paper.Block{Kind: paper.Furniture, Text: paper.TextRun{S: "The hives of the station had 12.4 ± 1.3 kg"}})
-	if found := Find(doc, background.Of(doc)); len(found) != 0 {
+	if found := Find(doc, background.Of(doc), nil); len(found) != 0 {
 		t.Errorf("got %d results from references and page furniture", len(found))
 	}
 }
@@ -227,7 +227,7 @@ func BenchmarkFind(b *testing.B) {
 	line := "Colony mass rose by 1.84 kg (95% CI 0.92 to 2.76; p = 0.003) with syrup and was 12.4 ± 1.3 kg at week 6. "
 	doc := document([]string{strings.Repeat(line, 10), strings.Repeat(line, 10)})
 	for b.Loop() {
-		if len(Find(doc, background.Of(doc))) != 40 {
+		if len(Find(doc, background.Of(doc), nil)) != 40 {
 			b.Fatal("results lost")
 		}
 	}
@@ -249,7 +249,7 @@ func FuzzFind(f *testing.F) {
 	f.Fuzz(func(t *testing.T, s string) {
 		doc := &paper.Document{Blocks: []paper.Block{{Kind: paper.Paragraph, Zone: paper.Results,
 			Text: paper.TextRun{S: s, Runs: []paper.Run{{Start: 0, End: len(s)}}}}}}
-		for _, r := range Find(doc, background.Of(doc)) {
+		for _, r := range Find(doc, background.Of(doc), nil) {
 			if r.Estimate == "" || len(r.Snippet) > 300 {
 				t.Fatalf("%q: result %+v", s, r)
 			}

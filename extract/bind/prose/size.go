@@ -13,15 +13,6 @@ import (
 
 var counted = pattern.MustCompile(`(?i)(?:^|[^\w.,])([0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + census.Words + `)\s+(?:(?:[a-z-]+)\s+){0,3}?` + census.Subjects + `\b`)
 
-// size is a sample size with the place it was read from.
-type size struct {
-	n    int
-	at   grammar.Span
-	text string
-	from string // where, in words, when it is not beside
-	run  *paper.TextRun
-}
-
 // beside finds the n printed with the result: n = … in its own bracket, right
 // behind the bracket, or the one count of subjects in the sentence where the
 // sentence holds one group only.
@@ -188,5 +179,5 @@ func (p *para) elsewhere(r *result.Result, field string, n *int, s size) {
 		r.NFrom, r.NKind = result.NElsewhere, result.NUnclear
 		r.Raise("n-elsewhere", "the sample size is stated "+s.from+", not beside the result")
 	}
-	r.Sources = append(r.Sources, result.Source{Field: field, Place: s.run.Between(s.at.Start, s.at.End), Text: s.text, From: s.from})
+	r.Sources = append(r.Sources, result.Source{Field: field, Place: s.place, Text: s.text, From: s.from})
 }
