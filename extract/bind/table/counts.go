@@ -2,6 +2,7 @@ package table
 
 import (
 	"math"
+	"strconv"
 	"strings"
 
 	"halfspan/extract/pattern"
@@ -40,6 +41,9 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	}
 	if f.percentWithCount(e) {
 		return countSure
+	}
+	if v, err := strconv.ParseFloat(sp.value.Value, 64); err == nil && v <= 1 && isWhole(e.value.Value) && f.headsCount(e) {
+		return countSure // headed n (%) with the share as a fraction: 138 (0.97)
 	}
 	if g, ok := f.counts[e.row]; ok {
 		return g

@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"halfspan/extract/bind/census"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -78,6 +79,9 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 		s, ok = b.otherSize(i, x.arm)
 	}
 	if !ok {
+		s, ok = b.toldSize(f, x)
+	}
+	if !ok {
 		s, ok = b.countedSize(r, f, x)
 	}
 	if ok {
@@ -130,12 +134,32 @@ func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool
 	var n census.Count
 	var ok bool
 	switch {
+	case !named && !f.describesSubjects():
+		// A table about the feed or the room has other numbers of its own.
 	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
 	case x.arm != "" && f.aboutArms(x.arm):
 		n, ok = c.Each()
 	}
 	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place}, ok
+}
+
+var subjectWord = pattern.MustCompile(`(?i)\b(?:` + census.Subjects + `|demographic\w*|baseline|sample|cohort|age|sex|gender|bmi|body mass|weight|height)\b`)
+
+// describesSubjects reports that the caption or a label of the table speaks of
+// those who took part.
+func (f *frame) describesSubjects() bool {
+	if subjectWord.MatchString(f.tab.Caption.S) {
+		return true
+	}
+	for r := range f.lines {
+		for _, l := range f.lines[r].labels {
+			if subjectWord.MatchString(l.text) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // aboutSubjects reports a statistic of subjects, which their number belongs to.

@@ -43,6 +43,7 @@ type binder struct {
 	blocks []*paper.Block
 	arms   []armSize
 	flow   []flowSentence
+	told   []toldSentence
 	back   *background.Background
 }
 
@@ -72,6 +73,7 @@ func newBinder(doc *paper.Document, back *background.Background) *binder {
 	}
 	b.findArmSizes()
 	b.findFlow()
+	b.findTold()
 	return b
 }
 

@@ -96,6 +96,17 @@ func (f *frame) captionSize(_ *estimate, x *context) (size, bool) {
 			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(0)}, true
 		}
 	}
+	// "fed with syrup (n = 13) or water (n = 13)": the same for every arm.
+	if p := parsePhrase(textOf(c)); len(p.ns) > 1 && (len(f.armNames()) == 0 || len(p.ns) == len(f.armNames())) && !x.contrast {
+		for _, n := range p.ns {
+			if n.Value.Value != p.ns[0].Value.Value {
+				return size{}, false
+			}
+		}
+		if n := number(p.ns[0].Value); n > 0 {
+			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, true
+		}
+	}
 	return size{}, false
 }
 
@@ -226,7 +237,7 @@ func wordIndex(low, name string) int {
 }
 
 // totals are names of a column for all arms together.
-var totals = map[string]bool{"total": true, "all": true, "overall": true, "all patients": true, "all participants": true, "all subjects": true, "entire cohort": true, "whole group": true, "total sample": true}
+var totals = map[string]bool{"total": true, "all": true, "overall": true, "all patients": true, "all participants": true, "all subjects": true, "entire cohort": true, "whole group": true, "total sample": true, "combined": true, "combined groups": true, "both groups": true, "pooled": true, "whole sample": true, "all groups": true, "total group": true, "study population": true, "entire group": true, "all arms": true}
 
 var totalMention = pattern.MustCompile(`\b(\d[\d,]*) (?:patients|subjects|participants|women|men|children|colonies|persons|people|individuals|cases)\b`)
 

@@ -158,7 +158,7 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	path := f.path(e.row, e.col)
 	var nCols []int
 	for c := f.stub; c < f.tab.Cols; c++ {
-		if f.columnRole(e.row, c).kind == roleN {
+		if f.columnRole(e.row, c).kind == roleN || f.analysedColumn(c) {
 			nCols = append(nCols, c)
 		}
 	}
@@ -203,6 +203,19 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	}
 	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast,
 		shared: len(nCols) == 1 && best == 0 && len(f.armNames()) > 1}, true
+}
+
+// analysedN is a heading over the numbers of those analysed in a row, with or
+// without their share.
+var analysedN = pattern.MustCompile(`(?i)^\W*(?:(?:no\.?|number|n) (?:of )?)?(?:(?:patients|subjects|participants|colonies|cases|observations)\s+)?(?:analy[sz]ed|evaluated|assessed|measured|included|with data|completed)\b[^(]{0,20}(?:\bn\b)?\s*(?:[,;]?\s*n?\s*\(\s*%?\s*\))?\W*$`)
+
+// analysedColumn reports that a column is headed as the number of those analysed.
+func (f *frame) analysedColumn(c int) bool {
+	if len(f.heads[c]) == 0 {
+		return false
+	}
+	text := f.heads[c][len(f.heads[c])-1].text
+	return analysedN.MatchString(text) && (strings.Contains(text, "n") || strings.Contains(text, "N"))
 }
 
 // overNames reports that a heading names a group of its own.

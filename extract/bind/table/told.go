@@ -5,6 +5,7 @@ import (
 
 	"halfspan/extract/bind/census"
 	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
@@ -38,6 +39,9 @@ func (f *frame) sexSize(e *estimate, x *context) (size, bool) {
 		}
 		n, ok := first+second, okFirst && okSecond
 		switch {
+		case totals[fold(own)]:
+		case own != "" && (x.subgroup != "" || len(f.lines[e.row].groups) > 0) && !femIs.MatchString(own) && !maleIs.MatchString(own):
+			return size{}, false // a part that the heading does not count
 		case femIs.MatchString(own):
 			n, ok = second, okSecond
 		case maleIs.MatchString(own):
@@ -132,4 +136,105 @@ func (f *frame) ownGroupSize(e *estimate, x *context, s result.Statistic) (size,
 		return size{}, false
 	}
 	return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+}
+
+// toldSentence is a sentence of the text that counts subjects by group.
+type toldSentence struct {
+	text  string
+	place paper.Place
+	last  bool // it counts those who stayed to the end
+}
+
+// findTold gathers the sentences of abstract, methods and results with more than
+// one count of subjects.
+func (b *binder) findTold() {
+	for i := range b.doc.Blocks {
+		bl := &b.doc.Blocks[i]
+		if bl.Kind != paper.Paragraph || bl.Zone != paper.Results && bl.Zone != paper.Abstract && bl.Zone != paper.Methods {
+			continue
+		}
+		if !strings.ContainsAny(bl.Text.S, "0123456789") {
+			continue
+		}
+		for _, sp := range segments(bl.Text.S) {
+			s := clean(bl.Text.S[sp.Start:sp.End])
+			if len(s) > 600 || planWord.MatchString(s) || leftWord.MatchString(s) || len(nMention.FindAllStringIndex(fold(s), 3)) < 2 {
+				continue
+			}
+			b.told = append(b.told, toldSentence{text: s, place: bl.Text.Between(sp.Start, sp.End), last: flowWord.MatchString(s)})
+		}
+	}
+}
+
+var leftWord = pattern.MustCompile(`(?i)\b(?:drop(?:ped)?[- ]?outs?|withdr[ae]w\w*|lost to|excluded|discontinu\w+|died|deaths?|adverse|missing|declined|refused|events?|developed|experienced|failed)\b`)
+
+// toldSize reads the n of an arm in the text's sentences that count two or more
+// arms of the table: at the start those that enrolled, later those that stayed.
+// Sentences that differ give nothing.
+func (b *binder) toldSize(f *frame, x *context) (size, bool) {
+	if x.contrast || x.subgroup != "" || x.arm == "" || !f.aboutArms(x.arm) {
+		return size{}, false
+	}
+	later := !atBaseline(x)
+	var first, last toldN
+	for _, s := range b.told {
+		n, ok := f.told(s.text, x.arm)
+		if !ok || !f.othersTold(s.text, x.arm) {
+			continue
+		}
+		at := &first
+		if s.last {
+			at = &last
+		}
+		at.add(n, s)
+	}
+	pick := first
+	if later && last.n > 0 || first.n == 0 {
+		pick = last
+	}
+	if pick.n == 0 || pick.differ || last.n > 0 && first.n > 0 && last.n > first.n {
+		return size{}, false
+	}
+	return size{n: pick.n, from: result.NElsewhere, words: "the text", text: shorten(pick.from.text, 200), place: pick.from.place}, true
+}
+
+// toldN is the n that sentences give an arm.
+type toldN struct {
+	n      int
+	differ bool
+	from   toldSentence
+}
+
+func (t *toldN) add(n int, s toldSentence) {
+	if t.n == 0 {
+		t.n, t.from = n, s
+	}
+	t.differ = t.differ || t.n != n
+}
+
+// told reads the n that a sentence gives an arm by its name, by the part of its
+// name before a colon, or by the words that tell it from the other arms.
+func (f *frame) told(s, arm string) (int, bool) {
+	for _, name := range []string{arm, cutAt(arm, ":"), f.distinct(arm)} {
+		if name == "" {
+			continue
+		}
+		if n, ok := nForArm(s, name, f.otherArms(arm)); ok && n > 1 {
+			return n, true
+		}
+	}
+	return 0, false
+}
+
+// othersTold reports that the sentence gives another arm of the table an n, too.
+func (f *frame) othersTold(s, arm string) bool {
+	for _, o := range f.armNames() {
+		if armWords(o) == armWords(arm) {
+			continue
+		}
+		if _, ok := f.told(s, o); ok {
+			return true
+		}
+	}
+	return false
 }
