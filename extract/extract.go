@@ -12,6 +12,7 @@ import (
 
 	"halfspan/extract/bind/background"
 	"halfspan/extract/bind/prose"
+	"halfspan/extract/bind/scale"
 	"halfspan/extract/bind/table"
 	"halfspan/extract/jats"
 	"halfspan/extract/layout"
@@ -77,6 +78,8 @@ func Find(doc *paper.Document) []result.Result {
 	back := background.Of(doc)
 	tables := table.Find(doc, back)
 	found := merge(prose.Find(doc, back, tables), tables)
+	echoes(found)
+	scale.Set(doc, found)
 	raiseDoubts(doc, found)
 	return found
 }

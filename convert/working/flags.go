@@ -97,6 +97,7 @@ func Flags() []FlagInfo {
 		// What it is about.
 		{"described-alike", AsksLook, "two results of one table, or of the text, are described by the same words and differ", "look what tells them apart: arm, time, subgroup or outcome"},
 		{"in-running-text", AsksLook, "read from a sentence: arm, time, outcome and n are less sure than in a table", "read the sentence"},
+		{"from-the-table", None, "a table prints the same numbers, and what the sentence does not say was taken from there", "check that both are the same result"},
 		{"arm-not-named", MakesIt, "read from a sentence that names no arm", "read the sentence: which arm, or all together"},
 		{"sentence-without-n", MakesIt, "read from a sentence that gives no n, nor an arm whose n is known", "read the sentence: what it is about is often read wrongly"},
 		{"arm-unclear", None, "the arms of a comparison are not named where the result stands", "check the arm"},

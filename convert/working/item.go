@@ -185,7 +185,7 @@ func (it *item) finish(effects map[string]Effect) {
 }
 
 // inputs are the fields whose origin a reader of the trail wants to see.
-var inputs = []string{"estimate", "lower", "upper", "given_value", "given_as", "level", "n", "n2", "p", "t", "f", "df"}
+var inputs = []string{"estimate", "lower", "upper", "given_value", "given_as", "level", "n", "n2", "p", "t", "f", "df", "limits"}
 
 func (it *item) traceInputs() {
 	for _, field := range inputs {
