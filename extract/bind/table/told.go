@@ -40,7 +40,7 @@ func (f *frame) sexSize(e *estimate, x *context) (size, bool) {
 		n, ok := first+second, okFirst && okSecond
 		switch {
 		case totals[fold(own)]:
-		case own != "" && (x.subgroup != "" || len(f.lines[e.row].groups) > 0) && !femIs.MatchString(own) && !maleIs.MatchString(own):
+		case own != "" && (x.subgroup != "" || len(f.lines[e.row].groups) > 0 || len(f.lines[e.row].labels) > 1) && !femIs.MatchString(own) && !maleIs.MatchString(own):
 			return size{}, false // a part that the heading does not count
 		case femIs.MatchString(own):
 			n, ok = second, okSecond
