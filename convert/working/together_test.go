@@ -85,6 +85,36 @@ func TestTogether(t *testing.T) {
 			r.Evidence.Integer = true
 			return r
 		}()}, []string{"no whole numbers from 1 to 5 have this mean and SD"}, nil},
+		// The log-likelihoods are those of the reference file: -9.29, -0.98, -5.36.
+		{"known coefficients of variation weigh the readings", func() []result.Result {
+			all := []result.Result{spread(result.Unstated, "50.2", "2.1", "syrup", 30)}
+			for i, sd := range []string{"10.5", "12.5", "9.5", "14.0", "11.5"} {
+				r := spread(result.SD, "50.0", sd, "station "+sd, 20+i)
+				r.Row = "other"
+				all = append(all, r)
+			}
+			return all
+		}(), []string{"coefficient of variation 4%; log-likelihood -9.3", "log-likelihood -1.0", "log-likelihood -5.4", "as an SE is the likelier reading", "it leads by 4.4", "it is not applied", `"sd":null`}, nil},
+		{"a varied outcome decides nothing", func() []result.Result {
+			all := []result.Result{spread(result.Unstated, "50.2", "9.0", "syrup", 4)}
+			for i, sd := range []string{"7.5", "17.5", "11.0", "24.0", "13.5"} {
+				all = append(all, spread(result.SD, "50.0", sd, "station "+sd, 20+i))
+			}
+			return all
+		}(), []string{"log-likelihood -1.4", "log-likelihood -1.2", "log-likelihood -2.5", "undecided by the coefficient of variation"}, []string{"likelier"}},
+		{"spreads that fall with n are no SDs", []result.Result{spread(result.Unstated, "24.6", "2.6", "syrup", 12), spread(result.Unstated, "24.9", "1.3", "water", 50), spread(result.Unstated, "25.2", "0.8", "pollen", 140)},
+			[]string{"log-likelihood -7.6", "log-likelihood -0.0", "how the spreads of 3 arms go with their n, 12 to 140", `it speaks against \"as an SD\", which is behind by 7.6`}, []string{"likelier"}},
+		{"spreads that do not fall with n are SDs", []result.Result{spread(result.Unstated, "24.6", "8.1", "syrup", 12), spread(result.Unstated, "24.9", "8.9", "water", 50), spread(result.Unstated, "25.2", "7.7", "pollen", 140)},
+			[]string{"as an SD is the likelier reading", "it is not applied"}, nil},
+		{"sizes too near to tell", []result.Result{spread(result.Unstated, "24.6", "1.9", "syrup", 20), spread(result.Unstated, "24.9", "2.1", "water", 22), spread(result.Unstated, "25.2", "2.0", "pollen", 19)},
+			nil, []string{"log-likelihood"}},
+		{"nothing fits", func() []result.Result {
+			all := []result.Result{spread(result.Unstated, "50.2", "0.01", "syrup", 30)}
+			for i, sd := range []string{"10.5", "12.5", "9.5", "14.0", "11.5", "11.9", "10.9", "12.1", "10.1", "11.3", "11.2", "12.2", "10.3"} {
+				all = append(all, spread(result.SD, "50.0", sd, "station "+sd, 20+i))
+			}
+			return all
+		}(), []string{"no reading fits what is known by the coefficient of variation"}, nil},
 		{"a lopsided interval is explained", []result.Result{mean("1.62", "1.12", "2.35", 30)},
 			[]string{"symmetric on the log scale", "if the bounds are quartiles of a median", `"use":"withheld"`, "not symmetric about the estimate"}, nil},
 		{"no level", []result.Result{func() result.Result { r := mean("12.4", "11.2", "13.6", 42); r.Level = 0; return r }()},

@@ -52,9 +52,12 @@ func Work(doc Facts, results []result.Result) []Working {
 	}
 	effects := effectOf(Flags())
 	out := make([]Working, len(items))
-	for i, it := range items {
+	for _, it := range items {
 		run(checksOfWorking(), it)
 		holdBackGuesses(it)
+	}
+	weighTogether(items)
+	for i, it := range items {
 		it.finish(effects)
 		out[i] = *it.w
 	}
