@@ -90,15 +90,27 @@ func (b tab) open(address string) {
 	b.run("open", chromedp.Navigate(address), chromedp.WaitVisible(".cells button"))
 }
 
-// press sends keys as a keyboard does: a key whose keydown is handled by the page
-// leaves no character behind.
+// press waits, as a person does, until what is shown may be decided, and sends
+// keys as a keyboard does.
 func (b tab) press(keys ...string) {
+	b.t.Helper()
+	b.until("what is shown can be decided", `document.getElementById('choices').getAttribute('aria-busy') === 'false'`)
+	b.strike(keys...)
+}
+
+// strike sends keys at once: a key whose keydown is handled by the page leaves no
+// character behind.
+func (b tab) strike(keys ...string) {
 	b.t.Helper()
 	for _, k := range keys {
 		down := input.DispatchKeyEventParams{Type: input.DispatchKeyEventTypeKeyDown, Key: k, Text: k}
 		switch k {
 		case "Enter":
 			down.Text, down.Code, down.WindowsVirtualKeyCode = "\r", k, 13
+		case "ArrowDown":
+			down.Text, down.Code, down.WindowsVirtualKeyCode = "", k, 40
+		case "Shift+X":
+			down.Text, down.Key, down.Modifiers = "X", "X", 8
 		case "Escape":
 			down.Text, down.Code, down.WindowsVirtualKeyCode = "", k, 27
 		}
@@ -200,6 +212,36 @@ func TestCheckingByKeyboard(t *testing.T) {
 	}
 	if states["confirmed"] != 2 || states["dropped"] != 1 || states["queried"] != 1 || states["open"] != 1 {
 		t.Errorf("the ledger holds %v", states)
+	}
+}
+
+func TestNoKeyDecidesWhatWasNotLookedAt(t *testing.T) {
+	b := tab{t, browser(t)}
+	book := newBook(t, t.TempDir(), "AB")
+	r := start(t, Options{Book: book, Papers: fakePapers{}, ReadTyped: readTyped})
+	b.open(r.address)
+	b.press("Enter", "Enter", "c", "Enter") // in haste: the first is meant, the others hit what has just appeared
+	b.until("the next row", `document.querySelector('#row h2').textContent === 'frames of brood'`)
+	b.strike("Enter")
+	b.until("told so", said+`.startsWith('Not ')`)
+	if all, err := book.Decisions().All(0); err != nil || len(all) != 2 {
+		t.Errorf("%d decisions (%v), want those of the two cells that were looked at", len(all), err)
+	}
+	// A key held down decides once.
+	held := input.DispatchKeyEventParams{Type: input.DispatchKeyEventTypeKeyDown, Key: "Enter", Code: "Enter", Text: "\r", WindowsVirtualKeyCode: 13, AutoRepeat: new(true)}
+	b.press("ArrowDown")
+	b.until("the third row", `document.querySelector('#row h2').textContent === 'gain'`)
+	b.until("it can be decided", `document.getElementById('choices').getAttribute('aria-busy') === 'false'`)
+	b.run("hold Enter", chromedp.Func(func(ctx context.Context, t *chromedp.Target) error {
+		_, err := cdp.Call(ctx, t, input.DispatchKeyEvent, held)
+		return err
+	}))
+	b.press("Shift+X")
+	b.until("asked why", `document.getElementById('dialog').open`)
+	b.strike("4")
+	b.until("the row is dropped", said+`.startsWith('dropped')`)
+	if all, err := book.Decisions().All(0); err != nil || len(all) != 3 {
+		t.Errorf("%d decisions (%v), want three", len(all), err)
 	}
 }
 

@@ -1,13 +1,13 @@
 // The forms of the desk: amend, drop, query, add by hand, find, keys.
 import { get, post } from './api.js';
 import { ask, el, replace } from './dom.js';
-import { CHOICES, FIELDS, KEYS, REASONS, SOURCES, spread } from './words.js';
+import { CHOICES, FIELDS, KEYS, REASONS, SOURCES, inWords, spread } from './words.js';
 import { workingView } from './row.js';
 
 function control(field, value, oninput) {
   const props = { name: field, id: `f-${field}`, autocomplete: 'off' };
   const node = CHOICES[field]
-    ? el('select', props, CHOICES[field].map((c) => el('option', { value: c, selected: c === (value ?? '') }, c || 'not said')))
+    ? el('select', props, CHOICES[field].map((c) => el('option', { value: c, selected: c === (value ?? '') }, inWords(field, { [field]: c }) || 'not said')))
     : el('input', { ...props, value: value ?? '', inputmode: ['arm', 'arm2', 'time', 'subgroup', 'outcome', 'unit'].includes(field) ? 'text' : 'decimal' });
   node.addEventListener('input', oninput);
   node.addEventListener('focus', () => node.select?.()); // what is typed takes the place of what was read
@@ -83,7 +83,7 @@ export function typeForm(cell, onsave, onfocus) {
 
 export function askReason(title) {
   return ask(title, (finish) => {
-    const text = el('input', { 'aria-label': 'in words', placeholder: 'in words (needed for "other")' });
+    const text = el('input', { 'aria-label': 'in words', placeholder: 'in words; needed for "other"' });
     const pick = (reason) => {
       if (reason === 'other' && !text.value.trim()) { text.focus(); return; }
       finish({ reason, note: text.value.trim() });

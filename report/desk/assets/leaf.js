@@ -10,7 +10,7 @@ import { OWN, TAGS } from './words.js';
 const LEGIBLE = 1.3; // pixels a point: print of 8 points can be read
 const MARGIN = 26; // of the view beside the page
 const SHARP = 1000; // pixels; a picture that is wider takes longer to draw
-const near = (a, b) => Math.abs(a.x - b.x) < 1 && Math.abs(a.y - b.y) < 1 && Math.abs(a.x1 - b.x1) < 1;
+const within = (a, b) => a.x > b.x - 1 && a.x1 < b.x1 + 1 && a.y > b.y - 2 && a.y1 < b.y1 + 2;
 
 export class Leaf {
   constructor() {
@@ -26,16 +26,18 @@ export class Leaf {
   }
 
   // show shows where a working was read; with place, the page of one of its
-  // sources, which may be another.
+  // sources, which may be another. It ends when it can be seen, or cannot be
+  // drawn, and says whether it is still what is wanted.
   async show(paper, working, mates, place = null) {
     const turn = (this.last ?? 0) + 1;
     this.last = turn;
     const page = place?.page ?? working.record.page;
     const leaf = page ? await this.#leaf(paper, page) : null;
-    if (this.last !== turn) return; // moved on meanwhile
+    if (this.last !== turn) return false; // moved on meanwhile
     this.now = { paper, working, mates, place };
-    if (leaf?.of) this.#page(leaf, page);
+    if (leaf?.of) await this.#page(leaf, page);
     else await this.#passage(place);
+    return this.last === turn;
   }
 
   again() { if (this.now) return this.show(this.now.paper, this.now.working, this.now.mates, this.now.place); }
@@ -89,10 +91,11 @@ export class Leaf {
     [this.view.scrollLeft, this.view.scrollTop] = same ? scroll : [0, 0];
     const main = focus ? boxes.sources.find((s) => s.places.includes(focus)) ?? boxes.result[0] : boxes.result[0];
     if (main) this.#reveal(main, [...boxes.result, ...boxes.sources], scale);
-    pictures.onready(tag);
+    pictures.seen.then((image) => image && tag(image));
     $('page-number').textContent = `page ${page} of ${leaf.of}${sheet.turn ? ', turned' : ''}`;
     this.#legend();
     if (page < leaf.of) this.prepare(paper, page + 1);
+    return pictures.seen;
   }
 
   // #pictures is the page's picture; a coarse one first where the sharp one will
@@ -101,9 +104,8 @@ export class Leaf {
     const density = Math.min(devicePixelRatio || 1, 3);
     const sharp = this.#address(paper, page, wide * density);
     const group = el('div', { class: 'pictures' }, el('p', { class: 'wait' }, 'The page is being drawn …'));
-    const heard = [];
-    let best = null;
-    group.onready = (f) => { if (best) f(best); else heard.push(f); };
+    let see;
+    group.seen = new Promise((resolve) => { see = resolve; });
     const add = (src, cls, alt) => {
       const image = el('img', { class: cls, src, alt, draggable: 'false' });
       Object.assign(image.style, { width: `${wide}px`, height: `${high}px`, transform: `translate(-50%, -50%) rotate(${turn}deg)` });
@@ -111,10 +113,14 @@ export class Leaf {
         this.ready.add(src);
         group.querySelector('.wait')?.remove();
         if (cls === 'sharp') group.querySelector('.coarse')?.remove();
-        else if (best) { image.remove(); return; }
-        if (!best) { best = image; for (const f of heard.splice(0)) requestAnimationFrame(() => f(image)); }
+        requestAnimationFrame(() => see(image)); // painted
       });
-      if (cls === 'sharp') image.addEventListener('error', () => say(`Page ${page} could not be drawn. The file may have changed or moved since the scan.`, true));
+      if (cls === 'sharp') {
+        image.addEventListener('error', () => {
+          say(`Page ${page} could not be drawn. The file may have changed or moved since the scan.`, true);
+          see(null);
+        });
+      }
       group.append(image);
     };
     if (wide * density > SHARP && !this.ready.has(sharp)) add(this.#address(paper, page, wide * density / 2), 'coarse', '');
@@ -141,17 +147,18 @@ export class Leaf {
     const on = (w) => (w.record.places ?? []).filter((p) => p.page === page && p.box).map((p) => ({ ...sheet.box(p.box), place: p }));
     const own = (w) => lines(on(w).filter((b) => OWN.has(b.place.field)), w.record.table ? 1.5 : Infinity);
     const result = own(working);
-    const inside = (b) => result.some((r) => b.x >= r.x - 1 && b.x1 <= r.x1 + 1 && b.y >= r.y - 2 && b.y1 <= r.y1 + 2);
+    const inside = (b) => result.some((r) => within(b, r));
     const sources = [];
-    for (const b of on(working).filter((s) => !OWN.has(s.place.field) && !inside(s))) {
-      const same = sources.find((s) => near(s, b));
+    const area = (b) => (b.x1 - b.x) * (b.y1 - b.y);
+    for (const b of on(working).filter((s) => !OWN.has(s.place.field) && !inside(s)).sort((p, q) => area(q) - area(p))) {
+      const holder = sources.find((s) => within(b, s));
       const tag = TAGS[b.place.field] ?? b.place.field;
-      if (!same) sources.push({ ...b, tags: [tag], places: [b.place] });
-      else { same.places.push(b.place); if (!same.tags.includes(tag)) same.tags.push(tag); }
+      if (!holder) sources.push({ ...b, tags: [tag], places: [b.place] });
+      else { holder.places.push(b.place); if (!holder.tags.includes(tag)) holder.tags.push(tag); }
     }
     for (const mate of mates) {
       for (const b of own(mate)) over.append(frame(b, 'at-mate', 1.5));
-      for (const b of on(mate)) if (!OWN.has(b.place.field) && !sources.some((s) => near(s, b))) over.append(bracket(b, 'at-source mate'));
+      for (const b of on(mate)) if (!OWN.has(b.place.field) && !sources.some((s) => within(b, s))) over.append(bracket(b, 'at-source mate'));
     }
     for (const s of sources) over.append(bracket(s, 'at-source'));
     for (const r of result) over.append(frame(r, 'at-result', 2.5));

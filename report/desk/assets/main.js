@@ -12,6 +12,11 @@ import { printed } from './words.js';
 const leaf = new Leaf();
 const state = { rows: [], order: [], at: 0, row: null, cell: 0, aside: false, form: null, field: null, flags: {}, version: '', mode: document.body.dataset.mode, shownAt: 0, typed: new Map() };
 
+// GLANCE is the least time, in ms, that a result is in view before a key may
+// confirm it: a key pressed sooner was aimed at what stood there before.
+const GLANCE = 300;
+const looked = () => state.shownAt !== null && performance.now() - state.shownAt >= GLANCE;
+
 const visible = () => state.rows.filter((r) => state.aside || !r.aside);
 const cellNow = () => state.row?.cells[state.cell];
 const hidden = (cell) => state.mode === 'type-first' && cell.type_first && !state.typed.has(cell.working.record.id);
@@ -60,8 +65,13 @@ function draw() {
   leaf.tour = null;
   replace($('row'), rowView(state.row, state.cell, (i) => { state.cell = i; state.form = null; draw(); }, state.mode === 'type-first' && state.row.cells.some(hidden)));
   drawCell();
-  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch(fail);
-  state.shownAt = performance.now();
+  state.shownAt = null;
+  $('choices').setAttribute('aria-busy', 'true');
+  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch((e) => { fail(e); return true; }).then((seen) => {
+    if (!seen) return;
+    state.shownAt = performance.now();
+    setTimeout(() => { if (looked()) $('choices').setAttribute('aria-busy', 'false'); }, GLANCE + 1);
+  });
   const ahead = visible().slice(state.at + 1, state.at + 4).filter((row) => row.page && (row.page !== state.row.page || row.paper !== state.row.paper));
   for (const key of new Set(ahead.map((row) => `${row.paper} ${row.page}`))) leaf.prepare(...key.split(' '));
 }
@@ -72,12 +82,12 @@ function drawCell() {
   leaf.onarea = null;
   replace($('choices'));
   $('view').classList.toggle('pick', state.form === 'amend' || hidden(cell));
-  if (state.mode === 'settle') { replace($('cell'), settleView(cell, settle)); return; }
-  if (hidden(cell)) { replace($('cell'), typeForm(cell, compare, (input) => { state.field = input; })); $('cell').querySelector('input')?.focus(); return; }
+  if (state.mode === 'settle') { replace($('cell'), settleView(cell, (choice) => after(() => settle(cell, choice)))); return; }
+  if (hidden(cell)) { replace($('cell'), typeForm(cell, (values) => after(() => compare(cell, values)), (input) => { state.field = input; })); $('cell').querySelector('input')?.focus(); return; }
   if (state.form === 'amend') {
     const key = `draft:${cell.working.record.id}`;
     const draft = { fields: {}, ...JSON.parse(sessionStorage.getItem(key) ?? '{}'), keep: (d) => sessionStorage.setItem(key, JSON.stringify(d)) };
-    replace($('cell'), amendForm(cell, draft, { onsave: (d) => amend(cell, d, key), onleave: () => { state.form = null; sessionStorage.removeItem(key); drawCell(); $('side').focus(); }, onfocus: (i) => { state.field = i; } }));
+    replace($('cell'), amendForm(cell, draft, { onsave: (d) => after(() => amend(cell, d, key)), onleave: () => { state.form = null; sessionStorage.removeItem(key); drawCell(); $('side').focus(); }, onfocus: (i) => { state.field = i; } }));
     $('cell').querySelector('input')?.focus();
     return;
   }
@@ -95,7 +105,7 @@ function drawCell() {
 function drawChoices() {
   if (state.mode === 'settle' || state.form || hidden(cellNow())) return;
   const go = toConfirm().length;
-  const choices = [['Enter', go > 1 ? `Confirm ${go} cells` : 'Confirm', 'confirm-row'], go > 1 && ['c', 'Only this cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']];
+  const choices = [['Enter', go > 1 ? `Confirm ${go} cells` : 'Confirm', 'confirm-row'], go > 1 && ['c', 'Only this cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], state.row.cells.filter(isOpen).length > 1 && ['X', 'Drop row', 'drop-row'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']];
   replace($('choices'), choices.filter(Boolean).map(([k, label, what]) => el('button', { type: 'button', 'data-do': what }, label, ' ', el('kbd', {}, k))));
 }
 
@@ -125,7 +135,7 @@ async function advance(decided, newState) {
 }
 
 async function decide(cells, decision, more = {}) {
-  const seen = Math.round((performance.now() - state.shownAt) / cells.length);
+  const seen = Math.round((performance.now() - (state.shownAt ?? performance.now())) / cells.length);
   const drafts = cells.map((cell) => {
     const { id } = cell.working.record;
     return { id, hash: cell.hash, decision, mode: state.typed.has(id) ? 'typed first' : 'shown', seen_ms: seen, ...more };
@@ -162,15 +172,28 @@ function toConfirm(held = []) {
   });
 }
 
+const TOO_SOON = 'Not confirmed: this has only just appeared. Look at it, then press again.';
+
 const act = {
   'confirm-row': () => {
+    if (!looked()) { say(TOO_SOON); return; }
     const held = [], go = toConfirm(held);
     if (!go.length) { say(cellNow().state === 'open' ? 'No open cell of this row is in view.' : `This row is decided: go on with ↓, to the next open one with o, or take it back with u.`); return; }
     return decide(go, 'confirmed').then((done) => { if (done && held.length) say(`${go.length} confirmed. ${held.length} doubtful left: each is decided by itself.`); });
   },
-  confirm: () => (isOpen(cellNow()) ? decide([cellNow()], 'confirmed') : say('This cell is decided already: take it back with u first.')),
+  confirm: () => {
+    if (!looked()) { say(TOO_SOON); return; }
+    if (!isOpen(cellNow())) { say('This cell is decided already: take it back with u first.'); return; }
+    return decide([cellNow()], 'confirmed');
+  },
   amend: () => { state.form = 'amend'; drawCell(); },
   drop: async () => { const a = await askReason('Drop this cell: why?'); if (a) await decide([cellNow()], 'dropped', a); },
+  'drop-row': async () => {
+    const cells = onScreen().filter(isOpen);
+    if (!cells.length) { say('No open cell of this row is in view.'); return; }
+    const a = await askReason(cells.length > 1 ? `Drop these ${cells.length} cells: why?` : 'Drop this cell: why?');
+    if (a) await decide(cells, 'dropped', a);
+  },
   query: async () => { const note = await askQuery(); if (note) await decide([cellNow()], 'queried', { note }); },
   undo: async () => { const { id, decision, taken } = await post('undo'); await load(); say(id ? `Taken back: ${decision}${taken > 1 ? `, ${taken} cells` : ''}.` : 'There is nothing to take back.'); if (id) jump(id); },
   find: async () => { const key = await find(state.rows); if (key) { const i = indexOf(key); await show(i); } },
@@ -221,19 +244,18 @@ async function amend(cell, d, key) {
   if (await decide([cell], 'amended', d)) sessionStorage.removeItem(key);
 }
 
-async function compare(values) {
-  const r = cellNow().working.record;
+async function compare(cell, values) {
+  const r = cell.working.record;
   const { same, differs } = await post('compare', { id: r.id, typed: values });
   state.typed.set(r.id, { same, text: differs.map((d) => `${d.field}: you ${d.typed || 'nothing'}, the program ${d.read || 'nothing'}`).join('; ') });
   draw();
   say(same ? 'The same as the program read.' : 'Not the same: look at the page again.', !same);
 }
 
-async function settle(choice) {
-  const cell = cellNow();
+async function settle(cell, choice) {
   await post('settle', { id: cell.working.record.id, hash: cell.hash, ...choice });
   await list();
-  await next((r) => r.cells.some(isOpen), 'That was the last to settle.') ?? load(state.row.key);
+  if (!(await next((r) => r.cells.some(isOpen), 'That was the last to settle.'))) await load(state.row.key);
 }
 
 async function addByHand() {
@@ -269,11 +291,20 @@ leaf.onpick = async (event) => {
   field.focus();
 };
 
-const BY_KEY = { ArrowDown: 'next', j: 'next', ArrowUp: 'before', k: 'before', ArrowRight: 'right', ArrowLeft: 'left', Enter: 'confirm-row', c: 'confirm', a: 'amend', x: 'drop', q: 'query', u: 'undo', d: 'doubtful', o: 'open', '/': 'find', s: 'aside', w: 'star', m: 'add', '+': 'zoom-in', '=': 'zoom-in', '-': 'zoom-out', 0: 'zoom-fit', p: 'page', PageDown: 'down', PageUp: 'up', v: 'elsewhere', t: 'turn', '?': 'keys' };
+const BY_KEY = { ArrowDown: 'next', j: 'next', ArrowUp: 'before', k: 'before', ArrowRight: 'right', ArrowLeft: 'left', Enter: 'confirm-row', c: 'confirm', a: 'amend', x: 'drop', X: 'drop-row', q: 'query', u: 'undo', d: 'doubtful', o: 'open', '/': 'find', s: 'aside', w: 'star', m: 'add', '+': 'zoom-in', '=': 'zoom-in', '-': 'zoom-out', 0: 'zoom-fit', p: 'page', PageDown: 'down', PageUp: 'up', v: 'elsewhere', t: 'turn', '?': 'keys' };
 
-let busy = Promise.resolve();
+// One thing is done at a time. A decision that comes while another thing is
+// still being done was aimed at what stood there before: it is not taken.
+const DECISIONS = new Set(['confirm-row', 'confirm', 'amend', 'drop', 'drop-row', 'query', 'undo']);
+let busy = 0, last = Promise.resolve();
+function after(work) {
+  busy++;
+  last = last.then(work).catch(fail).finally(() => { busy--; });
+  return last;
+}
 function run(name) {
-  busy = busy.then(() => act[name]?.()).catch(fail);
+  if (busy && DECISIONS.has(name)) { say('Not taken: the desk was still busy with the last key. Look, then press again.'); return; }
+  after(() => act[name]?.());
 }
 
 addEventListener('keydown', (e) => {
@@ -289,6 +320,7 @@ addEventListener('keydown', (e) => {
   const name = BY_KEY[e.key];
   if (!name) return;
   e.preventDefault();
+  if (e.repeat && DECISIONS.has(name)) return; // a key held down decides once
   run(name);
 });
 document.addEventListener('click', (e) => { const name = e.target.closest?.('[data-do]')?.dataset.do; if (name) run(name); });

@@ -31,13 +31,16 @@ export function shared(cells) {
 
 export function rowView(row, current, choose, hidden) {
   const where = [row.paper_name, row.page && `page ${row.page}`, row.table ?? row.section].filter(Boolean).join(' · ');
-  const first = row.cells[0].working, all = shared(row.cells).filter((f) => inWords(f, first.record) !== '' || f === 'n');
+  const first = row.cells[0].working, common = shared(row.cells), all = common.filter((f) => inWords(f, first.record) !== '' || f === 'n');
+  const outcome = first.record.outcome ?? first.record.heading ?? 'Result in the text';
+  const when = ['subgroup', 'time'].filter((f) => common.includes(f) && first.record[f] && !outcome.includes(first.record[f])).map((f) => first.record[f]);
   return [
     el('p', { class: 'where' }, where),
-    el('h2', {}, row.star ? '★ ' : '', first.record.outcome ?? first.record.heading ?? 'Result in the text'),
+    el('h2', {}, row.star ? '★ ' : '', [outcome, ...when].join(' · ')),
     all.length > 0 && !hidden && [el('h3', {}, 'Holds for all cells'), facts(all.map((f) => {
       const value = inWords(f, first.record) || 'not stated';
-      return [FIELDS.find(([g]) => g === f)[1], value, fromWords(first, f, value)];
+      const from = new Set(row.cells.map((c) => fromWords(c.working, f, value)));
+      return [FIELDS.find(([g]) => g === f)[1], value, from.size === 1 ? [...from][0] : 'read for each cell'];
     }))],
     el('ol', { class: 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
   ];
@@ -49,7 +52,7 @@ function cellCard(cell, current, choose, hidden) {
   const more = [r.use !== 'printed' && spread(r), r.n && `n ${r.n}${r.n2 ? ` and ${r.n2}` : ''}`].filter(Boolean).join(', ');
   return el('button', { type: 'button', 'data-id': r.id, 'aria-current': current ? 'true' : 'false', onclick: choose },
     el('span', { class: 'who' }, who(r)),
-    el('span', { class: 'print' }, veil ? 'see the page' : printed(r)),
+    el('span', { class: 'print' }, veil ? 'see the page' : [printed(r), r.unit && r.unit !== '%' && el('span', { class: 'unit' }, ` ${r.unit}`)]),
     el('span', { class: 'sd' }, veil ? '' : more),
     el('span', { class: 'state' }, el('b', {}, STATES[cell.state] ?? cell.state), ` · reading ${r.reading}`));
 }

@@ -38,37 +38,43 @@ export class Ink {
 const meets = (a, b) => a.x < b.x1 && b.x < a.x1 && a.y < b.y1 && b.y < a.y1;
 
 // place finds for each tag (its text and the box that it names, in points) where
-// it can stand on a page of w by h points: beside the box, else further along its
-// line, pointing at it. size is the tags' height.
+// it can stand on a page of w by h points: beside the box, else where its line of
+// print ends, pointing at it. Where there is no white the outline alone has to do:
+// a tag further off would seem to belong to something else. size is the height.
 export function place(tags, ink, { w, h, size, taken }) {
   const used = [...taken];
+  const white = (b) => b.x >= 0 && b.y >= 0 && b.x1 <= w && b.y1 <= h && ink.covered(b.x / w, b.y / h, b.x1 / w, b.y1 / h) === 0;
   return tags.map(({ text, box }) => {
-    let best = null;
-    for (const spot of spots(text, box, size, w)) {
-      const wide = 0.62 * size * spot.text.length + 0.4 * size;
-      const b = { x: spot.end ? spot.x - wide : spot.x, y: spot.y, y1: spot.y + size };
+    for (const spot of [...beside(text, box, size), ...lineEnds(text, box, size, w, white)]) {
+      const wide = size * (0.68 * spot.text.length + 0.3);
+      const b = { text: spot.text, x: spot.end ? spot.x - wide : spot.x, y: spot.y, y1: spot.y + size };
       b.x1 = b.x + wide;
-      if (b.x < 0 || b.y < 0 || b.x1 > w || b.y1 > h || used.some((u) => meets(u, b))) continue;
-      const cost = ink.covered(b.x / w, b.y / h, b.x1 / w, b.y1 / h);
-      if (!best || cost < best.cost - 0.01) best = { ...b, text: spot.text, cost };
-      if (cost === 0) break;
+      if (used.some((u) => meets(u, b)) || !white(b)) continue;
+      used.push(b);
+      return b;
     }
-    if (!best || best.cost > 0.04) return null; // no white near: the outline alone has to do
-    used.push(best);
-    return best;
+    return null;
   }).filter(Boolean);
 }
 
-function* spots(text, box, size, w) {
+function beside(text, box, size) {
   const above = box.y - size - 1.5, below = box.y1 + 1.5, level = (box.y + box.y1 - size) / 2;
-  yield { text, x: box.x, y: above };
-  yield { text, x: box.x, y: below };
-  yield { text, x: box.x1, y: above, end: true };
-  yield { text, x: box.x1, y: below, end: true };
-  yield { text, x: box.x1 + 2, y: level };
-  yield { text, x: box.x - 2, y: level, end: true };
-  for (let far = size; far < w; far += size / 2) {
-    yield { text: `◂ ${text}`, x: box.x1 + far, y: level };
-    yield { text: `${text} ▸`, x: box.x - far, y: level, end: true };
-  }
+  return [
+    { text, x: box.x, y: above }, { text, x: box.x, y: below },
+    { text, x: box.x1, y: above, end: true }, { text, x: box.x1, y: below, end: true },
+    { text, x: box.x1 + 2, y: level }, { text, x: box.x - 2, y: level, end: true },
+  ];
+}
+
+// lineEnds are where the column of print that holds the box ends to its right and
+// to its left: the first white as wide as the one between two columns.
+function lineEnds(text, box, size, w, white) {
+  const level = (box.y + box.y1 - size) / 2, gap = 0.8 * size, out = [];
+  const free = (x) => white({ x, y: level, x1: x + gap, y1: level + size });
+  let right = box.x1, left = box.x;
+  while (right < w - gap && !free(right)) right += size / 5;
+  while (left > gap && !free(left - gap)) left -= size / 5;
+  if (box.x - left <= right - box.x1) out.push({ text: `${text} ▸`, x: left - 1, y: level, end: true }, { text: `◂ ${text}`, x: right + 1, y: level });
+  else out.push({ text: `◂ ${text}`, x: right + 1, y: level }, { text: `${text} ▸`, x: left - 1, y: level, end: true });
+  return out;
 }

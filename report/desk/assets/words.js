@@ -25,7 +25,7 @@ export const CHOICES = {
 export const SOURCES = ['table', 'text', 'figure', 'supplement', "author's reply"];
 export const KEYS = [
   ['↓ or j', 'next row'], ['↑ or k', 'row before'], ['← →', 'cell of the row'], ['Enter', 'confirm the open cells of this row that are on the screen'],
-  ['c', 'confirm this cell only'], ['a', 'amend this cell'], ['x', 'drop this cell, with a reason'], ['q', 'query this cell'], ['u', 'take the last decision back'],
+  ['c', 'confirm this cell only'], ['a', 'amend this cell'], ['x', 'drop this cell, with a reason'], ['X', 'drop the open cells of this row that are on the screen, with one reason'], ['q', 'query this cell'], ['u', 'take the last decision back'],
   ['d', 'next doubtful'], ['o', 'next open'], ['/', 'find'], ['s', 'show or hide what is set aside'], ['w', 'star this outcome: starred ones come first'],
   ['m', 'add a result the program missed'], ['+ −', 'larger and smaller page'], ['0', 'whole width of the page, or legible size'], ['v', 'show where the rest was read that is out of view: other pages too'], ['t', 'turn the page'], ['p', 'to the page, which the arrows scroll, and back'], ['Page ↑ ↓', 'scroll what stands beside the page'], ['Esc', 'leave a form'], ['?', 'this overview'],
 ];
@@ -67,7 +67,8 @@ export function spread(r) {
   const lo = r.sd_digits_low, hi = r.sd_digits_high;
   if (lo === null || hi === null || lo === undefined || hi === undefined || hi <= lo) return `SD ${short(r.sd)}`;
   const k = Math.max(0, Math.min(8, Math.ceil(-Math.log10(hi - lo))));
-  return `SD ${Number(r.sd).toFixed(k)} (${short(lo)} to ${short(hi)})`;
+  const unit = 10 ** k, outwards = (round, v) => (round(Number((v * unit).toPrecision(9))) / unit).toFixed(k);
+  return `SD ${Number(r.sd).toFixed(k)} (${outwards(Math.floor, lo)} to ${outwards(Math.ceil, hi)})`;
 }
 
 export const who = (r) => [r.arm, r.arm2 && `against ${r.arm2}`, r.time, r.subgroup].filter(Boolean).join(', ') || 'arm not read';
