@@ -38,6 +38,7 @@ func raisedByReading() map[string]string {
 		"open-bound":          invented("", "The median homing time of the foragers was 24 min (95% CI 19 to not reached) in the syrup arm.", ""),
 		"bounds-reversed":     invented("", "", "Table 1. Colonies at week 6\n\nOutcome\tSyrup (n = 42)\tWater (n = 40)\tDifference (95% CI)\nColony mass, kg\t12.4\t12.1\t0.3 (1.8 to -1.2)\nFlight time, min\t24.6\t22.8\t1.8 (0.1 to 3.5)"),
 		"estimate-outside":    invented("", "", "Table 1. Colonies at week 6\n\nOutcome\tSyrup (n = 42)\tWater (n = 40)\tDifference (95% CI)\nColony mass, kg\t12.4\t12.1\t0.3 (1.2 to 1.8)\nFlight time, min\t24.6\t22.8\t1.8 (0.1 to 3.5)"),
+		"from-the-table":      invented("", "The mean mass of the colonies fed with syrup was 12.43 kg (SD 1.32) when they were weighed.", "Table 1. Colonies at week 6, mean (SD)\n\n"+heads+"Colony mass, kg\t12.43 (1.32)\t12.12 (1.21)\nFlight time, min\t24.6 (3.1)\t22.8 (3.4)"),
 		"arm-unclear":         invented("", "", "Table 1. Colonies at week 6\n\nOutcome\tMean difference (95% CI)\nColony mass, kg\t0.3 (-1.2 to 1.8)\nFlight time, min\t1.8 (0.1 to 3.5)"),
 		"time-unclear":        invented("", "", "Table 1. Colonies at week 6, mean (SD)\n\n"+heads+"Colony mass, kg\t12.4 (1.3)\t12.1 (1.2)\nFlight time, min\t24.6 (3.1)\t22.8 (3.4)"),
 		"statistic-assumed":   invented("", "", "Table 1. Colonies at week 6 (95% CI)\n\n"+heads+"Colony mass, kg\t12.4 (11.2 to 13.6)\t12.1 (11.0 to 13.2)\nFlight time, min\t24.6 (22.1 to 27.1)\t22.8 (20.2 to 25.4)"),

@@ -18,7 +18,7 @@ func (f *finder) enlist(tables []result.Result) {
 
 func (f *finder) fromTable(t *result.Result, name string, n int, field string) {
 	const most = 6
-	if name == "" {
+	if name == "" || n == 0 && !ofGroups(t) {
 		return
 	}
 	a := f.arm(name, most)
@@ -39,6 +39,16 @@ func (f *finder) fromTable(t *result.Result, name string, n int, field string) {
 		}
 	}
 	a.sizes = append(a.sizes, s)
+}
+
+// ofGroups reports that a table's arms are groups for sure although no size is
+// printed: it has their means; columns of models are called by all sorts of names.
+func ofGroups(t *result.Result) bool {
+	switch t.Statistic {
+	case result.Mean, result.MeanChange, result.Median, result.GeometricMean:
+		return true
+	}
+	return false
 }
 
 // shorten lets the arms of tables be named as sentences do: "syrup" for "Syrup

@@ -147,7 +147,7 @@ var sampleOf = pattern.MustCompile(`(?i)\b(?:participants|patients|subjects|samp
 // arm and is about all of them at the start, and to any in a study that has the
 // same subjects under every condition.
 func (p *para) wholeSample(r *result.Result, c *cand) {
-	if r.N > 0 || !sizeTold(r) && r.GivenAs != result.Range || between(r) || p.block.Zone == paper.Discussion || p.block.Zone == paper.Introduction {
+	if r.N > 0 || !sizeTold(r) && r.GivenAs != result.Range || between(r) || p.block.Zone != paper.Results && p.block.Zone != paper.Abstract || methodsPart.MatchString(p.block.Section) {
 		return
 	}
 	from, to := p.sentence(c.est.Start)
@@ -169,6 +169,9 @@ func (p *para) wholeSample(r *result.Result, c *cand) {
 		r.Sources = append(r.Sources, result.Source{Field: "n", Place: n.Place, Text: n.Text, From: "the text's count of those who took part"})
 	}
 }
+
+// methodsPart are headings of parts, of an abstract too, that report no results.
+var methodsPart = pattern.MustCompile(`(?i)\b(?:methods?|design|interventions?|exposure|procedures?|background|setting)\b`)
 
 var ageLike = pattern.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline)\b`)
 

@@ -59,14 +59,23 @@ func (a *arm) sizeOf(q asked) (size, bool) {
 	}
 	for _, list := range [][]size{
 		pick(rows, func(s *size) bool { return alike(s.outcome, q.outcome) && (s.baseline || !q.baseline) }),
-		pick(rows, func(s *size) bool { return s.baseline == q.baseline }),
-		rows, heads, text,
+		rows, heads, text, largest(rows),
 	} {
 		if s, ok := agreed(list); ok {
 			return s, true
 		}
 	}
 	return commonest(rows)
+}
+
+func largest(list []size) []size {
+	var out []size
+	for _, s := range list {
+		if len(out) == 0 || s.n > out[0].n {
+			out = []size{s}
+		}
+	}
+	return out
 }
 
 func pick(list []size, keep func(*size) bool) []size {
