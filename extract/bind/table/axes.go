@@ -386,7 +386,7 @@ func (f *frame) findArm(r, c int) string {
 	for _, l := range f.path(r, c) {
 		p := f.partOf(l)
 		if p.kind == partArm || p.kind == partOther {
-			if f.general(p) || p.kind == partOther && modelHead.MatchString(p.name) {
+			if f.general(p) || p.kind == partOther && (modelHead.MatchString(p.name) || analysisName.MatchString(p.name)) {
 				continue
 			}
 			names = append(names, p.name)

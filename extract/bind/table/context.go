@@ -118,7 +118,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if f.general(p) {
 				continue
 			}
-			if p.kind == partOther && modelHead.MatchString(p.name) {
+			if p.kind == partOther && (modelHead.MatchString(p.name) || analysisName.MatchString(p.name)) {
 				x.aside = joinPath([]string{x.aside, p.name}, ", ")
 				continue
 			}
@@ -216,7 +216,12 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			p.kind = partOther // "Mass (N = 133)" before the arms
 		}
 		switch {
+		case analysisName.MatchString(p.name):
+			subs = append(subs, p.name)
 		case p.kind == partTime:
+			if own {
+				x.time = joinPath([]string{x.time, f.changeUnder(e.row)}, ", ")
+			}
 			x.time = joinPath([]string{x.time, p.name}, ", ")
 			x.timeAt, x.timeFrom = l, "row label"
 		case p.kind == partContrast && parseVs(p.name) != nil:
@@ -247,6 +252,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		case p.kind == partEmpty:
 		default:
 			switch {
+			case own && f.partOfScale(e.row, p.name):
 			case own && f.subgroupLike(p.name):
 				if n := len(ln.groups); n > 0 && len(ln.labels) == 1 {
 					for _, g := range f.lines[ln.groups[n-1]].labels {
@@ -264,11 +270,18 @@ func (f *frame) rowContext(e *estimate, x *context) {
 				subs = append(subs, p.name)
 			}
 			outcome = append(outcome, p.name)
-			if t := f.lex.rowTime(p.name); t != "" && x.time == "" {
+			t := f.lex.rowTime(p.name)
+			if t == "" {
+				t = f.phaseInBracket(p.name)
+			}
+			if t != "" && x.time == "" {
 				x.time, x.timeAt, x.timeFrom = t, l, "row label"
 			}
 			x.outcomeAt, x.outcomeFrom = l, "row label"
 		}
+	}
+	if l, ok := f.firstAnalysis(e.row); ok {
+		subs = append(subs, f.lex.name(l.text))
 	}
 	for _, g := range ln.groups {
 		for _, l := range f.lines[g].labels {
@@ -370,20 +383,21 @@ func (f *frame) captionContext(e *estimate, x *context) {
 	}
 }
 
-// headingText joins the headings as printed, columns first.
+// headingText joins the headings as printed, without the marks that lead to
+// notes, columns first.
 func (f *frame) headingText(e *estimate) string {
 	var parts []string
 	for _, l := range f.path(e.row, e.col) {
-		parts = append(parts, l.raw)
+		parts = append(parts, l.text)
 	}
 	ln := &f.lines[e.row]
 	for _, g := range ln.groups {
 		for _, l := range f.lines[g].labels {
-			parts = append(parts, l.raw)
+			parts = append(parts, l.text)
 		}
 	}
 	for _, l := range ln.labels {
-		parts = append(parts, l.raw)
+		parts = append(parts, l.text)
 	}
 	return joinPath(parts, " | ")
 }

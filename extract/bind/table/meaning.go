@@ -65,6 +65,9 @@ func (f *frame) statements(e *estimate) []statement {
 	}
 	for i := len(ln.groups) - 1; i >= 0; i-- {
 		for _, l := range f.lines[ln.groups[i]].labels {
+			if f.namesAnalysis(ln.groups[i]) {
+				continue // "Per protocol (70% of feeds)" says nothing of the values
+			}
 			byLabel(l, rankGroup, "label of the row group")
 		}
 	}

@@ -123,6 +123,13 @@ func (f *frame) nest() {
 			case f.weight(next, mixed) <= w:
 				ln.level = 4*w + 1
 			}
+			if f.analysisBlock(r) {
+				ln.level = 4*w - 1
+				if f.countsBesideLabel(r) {
+					ln.level = -1 // subjects of its own: whatever stands above it has ended
+				}
+				popFrom = ln.level
+			}
 		}
 		for len(stack) > 0 && f.lines[stack[len(stack)-1]].level >= popFrom {
 			stack = stack[:len(stack)-1]

@@ -61,6 +61,8 @@ func (f *frame) classify(l label) part {
 		p.kind = partContrast
 	case f.lex.isTime(low):
 		p.kind, p.name = partTime, tidyTime(l.text)
+	case analysisName.MatchString(p.name):
+		p.kind = partOther
 	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
 		p.kind = partArm
 	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.timeRow[l.cell.Row]:
@@ -159,11 +161,14 @@ func (f *frame) phasePair(low string) bool {
 // measuredTime is a time that was measured: "Time (s)" before a row.
 var measuredTime = pattern.MustCompile(`^(?:total |mean )?times?(?:,| \()\s*(?:ms|s|secs?|seconds?|mins?|minutes?)\b`)
 
-// overValues reports that estimates with spreads stand under a heading, so that
-// "Men" names a group and no number of men.
+// overValues reports that estimates with spreads stand under a heading or beside
+// a label, so that "Men" names a group and no number of men.
 func (f *frame) overValues(l label) bool {
-	if l.cell == nil || l.cell.Row >= f.head {
+	switch {
+	case l.cell == nil:
 		return false
+	case l.cell.Row >= f.head:
+		return l.cell.Col < f.stub && f.spreadCells(l.cell.Row) > 0
 	}
 	for c := max(l.cell.Col, f.stub); c < min(l.cell.Col+l.cell.ColSpan, f.tab.Cols); c++ {
 		if f.anySpread(c) {

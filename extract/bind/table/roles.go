@@ -141,8 +141,8 @@ func (f *frame) findRowRole(r int) role {
 	role := roleOf(l, p)
 	switch role.kind {
 	case roleN:
-		if !p.countHead {
-			return roleNoneOf(role)
+		if !p.countHead || f.spreadCells(r) > 0 {
+			return roleNoneOf(role) // "All colonies" before values names whose they are
 		}
 		switch strings.Trim(fold(l.text), " *.:") {
 		case "no", "number", "nr", "total", "count":
