@@ -72,6 +72,7 @@ func sentenceEnd(s string) int {
 var (
 	counted = pattern.MustCompile(`(?i)(?:^|[^\w.,–-])((?:[0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + Words + `))\s+(?:(?:[a-z][a-z-]*|\([^()]{0,40}\)|,)\s+){0,4}?` + Subjects + `\b(?:\s*\([^()]{0,60}\))?`)
 	nEach   = pattern.MustCompile(`(?i)\bn\s*=\s*([0-9]{1,6})\s*(?:` + Subjects + `\s*)?(?:,\s*)?(?:(?:for|in|per|from)\s+)?(?:each|every|per)\s+(?:\w+\s+){0,2}?(?:groups?|arms?|treatments?|conditions?)\b`)
+	groupOf = pattern.MustCompile(`(?i)\b(?:two|three|four|five|six|both|all|each|equal)\b[^.;]{0,50}?\b(?:groups?|arms?)\s+(?:of|with|reached[^.;]{0,30}? of|consisted of|comprised|included|contained|had)\s+([0-9]{1,5}|` + Words + `)\s+(?:\w+\s+)?` + Subjects + `\b`)
 	equal   = pattern.MustCompile(`(?i)\b(?:divided|allocated|assigned|randomi[sz]ed|distributed|split|separated|classified)\b[^.;]{0,60}?\b(two|three|four|five|six|seven|eight|2|3|4|5|6|7|8)\s+(?:\w+\s+)?equal(?:ly sized)?\s+(?:\w+\s+)?groups\b|\bequally\b[^.;]{0,30}?\binto\s+(two|three|four|five|six|seven|eight|2|3|4|5|6|7|8)\s+(?:\w+\s+){0,2}groups\b`)
 
 	planned  = pattern.MustCompile(`(?i)\bpower\b|\bsample size\b|\brequired?\b|\bneeded\b|\bplanned\b|\bcalculat|\bdetect\b|\bwould\b|\bestimated that\b|\baimed? to\b|\btarget\b|\bscreened\b|\bapproached\b|\binvited\b|\bassessed for eligib|\bresponded\b|\bpilot\b|\bprevious(?:ly)? (?:stud|trial|report)|\bet al\b|\bin (?:this|these|their) stud(?:y|ies) of\b`)
@@ -98,14 +99,14 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 	if planned.MatchString(s) {
 		return
 	}
-	c.groups(b, from, s)
+	taken := c.groups(b, from, s)
 	done, began := finished.MatchString(s), enrolled.MatchString(s)
 	if !done && !began {
 		return
 	}
 	for _, m := range counted.FindAllStringSubmatchIndex(s, -1) {
 		n, ok := Number(s[m[2]:m[3]])
-		if !ok || n < fewest || joined.MatchString(s[m[3]:m[1]]) {
+		if !ok || n < fewest || inside(taken, m[2]) || joined.MatchString(s[m[3]:m[1]]) {
 			continue
 		}
 		k := Count{N: n, Kind: Enrolled, Text: strings.TrimSpace(s[m[2]:m[1]]), Place: b.Text.Between(from+m[2], from+m[1])}
@@ -133,25 +134,42 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 }
 
 // groups takes what a sentence says of the size of every group: "n = 40 for each
-// group", "divided into four equal groups".
-func (c *Census) groups(b *paper.Block, from int, s string) {
-	for _, m := range nEach.FindAllStringSubmatchIndex(s, -1) {
-		if n, ok := Number(s[m[2]:m[3]]); ok && n >= 2 {
-			c.Counts = append(c.Counts, Count{N: n, Each: true, Text: s[m[0]:m[1]], Place: b.Text.Between(from+m[0], from+m[1])})
+// group", "two groups of 25 colonies", "divided into four equal groups". It gives
+// the bytes that it has read.
+func (c *Census) groups(b *paper.Block, from int, s string) (taken [][]int) {
+	each := func(n, start, end int) {
+		taken = append(taken, []int{start, end})
+		c.Counts = append(c.Counts, Count{N: n, Each: true, Text: strings.TrimSpace(s[start:end]), Place: b.Text.Between(from+start, from+end)})
+	}
+	for _, p := range []*pattern.Pattern{nEach, groupOf} {
+		for _, m := range p.FindAllStringSubmatchIndex(s, -1) {
+			if n, ok := Number(s[m[2]:m[3]]); ok && n >= 2 {
+				each(n, m[0], m[1])
+			}
 		}
 	}
 	m := equal.FindStringSubmatchIndex(s)
 	if m == nil {
-		return
+		return taken
 	}
-	k := max(m[2], m[4])
-	parts, _ := Number(s[k:max(m[3], m[5])])
+	parts, _ := Number(s[max(m[2], m[4]):max(m[3], m[5])])
 	for _, w := range counted.FindAllStringSubmatchIndex(s, -1) {
 		if n, ok := Number(s[w[2]:w[3]]); ok && w[1] <= m[0]+len("divided") && parts > 1 && n%parts == 0 && n > parts {
-			c.Counts = append(c.Counts, Count{N: n / parts, Each: true, Text: strings.TrimSpace(s[w[2]:m[1]]), Place: b.Text.Between(from+w[2], from+m[1])})
-			return
+			each(n/parts, w[2], m[1])
+			return taken[:len(taken)-1] // the whole is counted there, too
 		}
 	}
+	return taken
+}
+
+// inside reports that byte i lies in one of the spans.
+func inside(spans [][]int, i int) bool {
+	for _, sp := range spans {
+		if sp[0] <= i && i < sp[1] {
+			return true
+		}
+	}
+	return false
 }
 
 // armOf reports that the words behind a count name one group: "to the syrup

@@ -24,6 +24,8 @@ func TestWhole(t *testing.T) {
 		{"a plan", []string{"A sample size of 80 colonies was needed to detect a difference of 2 kg."}, want{0, 0, 0}},
 		{"in each group", []string{"Sixty colonies were randomised, 20 colonies in each group."}, want{60, 60, 20}},
 		{"n in each group", []string{"Colonies were randomly allocated to two feeds (n = 40 for each group)."}, want{0, 0, 40}},
+		{"two groups of", []string{"Colonies were divided into two groups of 25 colonies."}, want{0, 0, 25}},
+		{"both groups reached", []string{"Feeding went on until both study groups reached the size of 50 colonies."}, want{0, 0, 50}},
 		{"equal groups", []string{"Thirty-two colonies were randomly divided into four equal groups."}, want{32, 32, 8}},
 		{"of one group", []string{"We randomised 31 colonies to the syrup group."}, want{0, 0, 0}},
 		{"a study of others", []string{"In this study of 90 colonies by Vane et al, feed was given daily."}, want{0, 0, 0}},

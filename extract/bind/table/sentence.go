@@ -130,7 +130,7 @@ func (f *frame) otherNames(arm string) []string {
 
 // loneSize reads the only n of caption or notes where the table has one arm.
 func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
-	if x.contrast || f.armsInColumns() || f.armRows || x.subgroup != "" {
+	if x.contrast || (f.armsInColumns() || f.armRows) && len(f.armNames()) != 1 || x.subgroup != "" {
 		return size{}, false
 	}
 	for k := 0; k < f.stub; k++ {

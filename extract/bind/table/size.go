@@ -85,7 +85,7 @@ func sizeOfLabel(n int, l label, from, words string) size {
 // nearSize finds the n of an estimate inside its own table.
 func (f *frame) nearSize(e *estimate, x *context) (size, bool) {
 	for _, find := range []func(*estimate, *context) (size, bool){
-		f.cellSize, f.columnSize, f.labelSize, f.rowNote, f.rowSize, f.markSize, f.sexSize, f.headSize, f.noteSize, f.captionSize, f.loneSize, f.declaredSize,
+		f.cellSize, f.columnSize, f.labelSize, f.rowNote, f.rowSize, f.markSize, f.sexSize, f.headSize, f.noteSize, f.captionSize, f.loneSize, f.declaredSize, f.shareSize,
 	} {
 		if s, ok := find(e, x); ok {
 			return s, true

@@ -95,6 +95,41 @@ func (f *frame) declaredSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
+// shareSize takes the denominator that the column prints with its counts,
+// "18/50", where two rows or more agree on the largest.
+func (f *frame) shareSize(e *estimate, x *context) (size, bool) {
+	if x.contrast || x.subgroup != "" {
+		return size{}, false
+	}
+	top, seen := 0, 0
+	var at *paper.Cell
+	for r := f.head; r < f.tab.Rows; r++ {
+		cell := f.cellAt(r, e.col)
+		if cell == nil {
+			continue
+		}
+		m := shareOf.FindStringSubmatch(cell.Text.S)
+		if m == nil {
+			continue
+		}
+		n, ok := census.Number(m[2])
+		k, _ := census.Number(m[1])
+		switch {
+		case !ok || k > n:
+		case n > top:
+			top, seen, at = n, 1, cell
+		case n == top:
+			seen++
+		}
+	}
+	if seen < 2 || top < 5 {
+		return size{}, false
+	}
+	return size{n: top, from: result.NHeading, words: "denominators of " + f.columnName(e.col), text: clean(at.Text.S), place: at.Text.At(0)}, true
+}
+
+var shareOf = pattern.MustCompile(`(?:^|[^0-9.,/])([0-9]{1,5})\s*/\s*([0-9]{1,5})(?:$|[^0-9.,/])`)
+
 // sameSubjects reports that the table's arms are conditions of the same subjects.
 func (b *binder) sameSubjects(f *frame) bool {
 	if b.back.Census.Within && len(b.arms) == 0 {
