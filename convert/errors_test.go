@@ -198,6 +198,15 @@ func FuzzNumbers(f *testing.F) {
 		for _, fit := range fits {
 			pair(fit.Family, fit.MeanSD, err)
 		}
+		if limits := (Bounded{math.Floor(low), math.Ceil(high) + level}); finite(limits.High-limits.Low) == nil {
+			fits, err = QuantileEstimation(Quantiles{Q1: low, Median: mid, Q3: high, HasQuartiles: true, Limits: &limits}, n)
+			for _, fit := range fits {
+				pair(fit.Family, fit.MeanSD, err)
+				if slack := 1e-9 * (limits.High - limits.Low); fit.Family == "beta" && (fit.Mean < limits.Low-slack || fit.Mean > limits.High+slack || fit.SD > (limits.High-limits.Low)/2+slack) {
+					t.Errorf("beta between %v: %+v", limits, fit)
+				}
+			}
+		}
 		g, err := Combine(Group{n, low, high}, Group{3, mid, 1})
 		one("Combine", g.SD, err)
 		g, err = Split(Group{n, low, high}, Group{3, mid, 1})

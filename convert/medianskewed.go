@@ -12,8 +12,9 @@ import (
 // extremes, or both.
 type Quantiles struct {
 	Min, Q1, Median, Q3, Max float64
-	HasQuartiles             bool // Q1 and Q3 are printed
-	HasRange                 bool // Min and Max are printed
+	HasQuartiles             bool     // Q1 and Q3 are printed
+	HasRange                 bool     // Min and Max are printed
+	Limits                   *Bounded // of the outcome by its nature; nil where none are known
 }
 
 // points gives the printed quantiles and their probabilities for n values, the
@@ -96,26 +97,28 @@ func LogNormalFromFive(minimum, q1, median, q3, maximum float64, n int) (MeanSD,
 
 // Fit is one law fitted to printed quantiles.
 type Fit struct {
-	Family   string  // normal, lognormal, gamma, Weibull
+	Family   string  // normal, lognormal, gamma, Weibull, beta
 	MeanSD           // of the fitted law
 	Residual float64 // sum of squared differences between fitted and printed quantiles
 }
 
-// QuantileEstimation fits a normal, lognormal, gamma and Weibull law to printed
-// quantiles and gives all fits, the closest first.
+// QuantileEstimation fits a normal, lognormal, gamma and Weibull law, and between
+// known limits a beta law, to printed quantiles and gives all fits, the closest
+// first.
 //
 // Formula: least squares of fitted minus printed quantiles at 1/n, 1/4, 1/2, 3/4
 // and 1 - 1/n (those printed).
-// Arguments: q in the units of the outcome; n ≥ 5. Other laws than the normal
-// need positive values.
+// Arguments: q in the units of the outcome; n ≥ 5. Lognormal, gamma and Weibull need
+// positive values, beta needs q.Limits that hold all of them.
 // Assumes: one of the laws holds. With three numbers one degree of freedom is
 // left, so the choice of the law is weak.
 // Errors: ErrSize, ErrOrder, ErrSpread, ErrNotFinite.
 // Limits: errors of 50% and more at n = 25 when the law is wrong.
 // Rounding: not carried through.
-// Source: McGrath, Zhao, Steele, Thombs & Benedetti 2020 (recalled from memory;
-// there also the beta law).
-// Checked: the lognormal fit against R; error by simulation.
+// Source: McGrath, Zhao, Steele, Thombs & Benedetti 2020 (recalled from memory; the
+// beta law there on 0 to 1, here between any limits).
+// Checked: the lognormal and the beta fit against R; error by simulation without
+// limits.
 func QuantileEstimation(q Quantiles, n int) ([]Fit, error) {
 	p, x, err := q.points(n)
 	if err != nil {
@@ -146,7 +149,12 @@ func QuantileEstimation(q Quantiles, n int) ([]Fit, error) {
 			}
 		}
 	}
-	for i := 1; i < len(fits); i++ { // insertion: four at most, ties keep their order
+	if q.Limits != nil {
+		if f, ok := fitBeta(p, x, *q.Limits); ok {
+			fits = append(fits, f)
+		}
+	}
+	for i := 1; i < len(fits); i++ { // insertion: five at most, ties keep their order
 		for k := i; k > 0 && fits[k].Residual < fits[k-1].Residual; k-- {
 			fits[k], fits[k-1] = fits[k-1], fits[k]
 		}

@@ -22,7 +22,7 @@ func medianMethods() []Method {
 		median("lognormal-quartiles", "mean and SD from quartiles of lognormal values", "luo-quartiles and wan-quartiles on the logarithms, then lognormal", "Higgins, White & Anzures-Cabrera 2008 with the above (recalled from memory)", "LogNormalFromQuartiles", "values near lognormal: far off where they are not"),
 		median("lognormal-five", "mean and SD from five numbers of lognormal values", "luo-five and shi-five on the logarithms, then lognormal", "as lognormal-quartiles", "LogNormalFromFive", "values near lognormal: far off where they are not"),
 		median("box-cox-quartiles", "mean and SD from quartiles through a power", "the power that makes the quartiles symmetric; luo and wan there; back through the normal law", "Box & Cox 1964; McGrath et al. 2020 (recalled from memory)", "BoxCoxFromQuartiles", "some power makes the values near normal", "negative powers: the law is cut at 4 SDs"),
-		median("quantile-estimation-quartiles", "mean and SD of the law that fits the quartiles best", "least squares of normal, lognormal, gamma and Weibull quantiles", "McGrath, Zhao, Steele, Thombs & Benedetti 2020 (recalled from memory)", "QuantileEstimation", "one of the laws holds; with three numbers the choice is weak"),
+		median("quantile-estimation-quartiles", "mean and SD of the law that fits the quartiles best", "least squares of normal, lognormal, gamma and Weibull quantiles, of a scored outcome also beta between the limits of its scale", "McGrath, Zhao, Steele, Thombs & Benedetti 2020 (recalled from memory)", "QuantileEstimation", "one of the laws holds; with three numbers the choice is weak"),
 		median("quantile-estimation-five", "mean and SD of the law that fits five numbers best", "as quantile-estimation-quartiles, extremes at 1/n and 1−1/n", "as quantile-estimation-quartiles", "QuantileEstimation", "one of the laws holds"),
 	}
 	for i := range all {
@@ -33,7 +33,7 @@ func medianMethods() []Method {
 			all[i].Checks = []string{byErrors}
 		}
 		if all[i].Functions[0] == "QuantileEstimation" {
-			all[i].Checks = []string{"the lognormal fit against R", byErrors}
+			all[i].Checks = []string{"the lognormal and the beta fit against R", byErrors}
 		}
 	}
 	return append(all, Method{"skewness", "test of symmetry from printed quantiles",

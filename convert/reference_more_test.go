@@ -86,10 +86,41 @@ func medianCases() []checkCase {
 				v.pair(fits[i].MeanSD, nil)
 			}
 		}},
+		{name: "c7-beta", tolerance: 1e-6, got: func(v *values) {
+			betaFit(v, Quantiles{Q1: .31, Median: .52, Q3: .64, HasQuartiles: true, Limits: &Bounded{0, 1}}, 40, 0, 1)
+			betaFit(v, Quantiles{Min: .02, Q1: .11, Median: .19, Q3: .34, Max: .71, HasQuartiles: true, HasRange: true, Limits: &Bounded{0, 1}}, 40, 0, 1)
+		}},
 		{name: "c7-box-cox-power", figures: "-0.243862941 0.143926943", got: func(v *values) {
 			v.add(BoxCoxPower(3.1, 5.2, 9.4))
 			v.add(BoxCoxPower(0.8, 1.9, 4.1))
 		}},
+	}
+}
+
+// betaFit adds mean and SD of the fitted beta law, and holds that a shifted and
+// stretched scale only shifts and stretches them.
+func betaFit(v *values, q Quantiles, n int, low, high float64) {
+	v.t.Helper()
+	fit := func(q Quantiles) MeanSD {
+		fits, err := QuantileEstimation(q, n)
+		if err != nil {
+			v.t.Fatal(err)
+		}
+		i := slices.IndexFunc(fits, func(f Fit) bool { return f.Family == "beta" })
+		if i < 0 {
+			v.t.Fatal("no beta law was fitted")
+		}
+		return fits[i].MeanSD
+	}
+	m := fit(q)
+	v.pair(m, nil)
+	scaled := q
+	scaled.Limits = &Bounded{3 + 60*low, 3 + 60*high}
+	for _, x := range []*float64{&scaled.Min, &scaled.Q1, &scaled.Median, &scaled.Q3, &scaled.Max} {
+		*x = 3 + 60**x
+	}
+	if s := fit(scaled); math.Abs(s.Mean-3-60*m.Mean) > 1e-4 || math.Abs(s.SD-60*m.SD) > 1e-4 {
+		v.t.Errorf("on another scale %v, on 0 to 1 %v", s, m)
 	}
 }
 

@@ -84,7 +84,7 @@ func simulatedMethods() []simulated {
 			return best(Quantiles{Q1: q1, Median: m, Q3: q3, HasQuartiles: true}, n)
 		}},
 		{"quantile-estimation-five", true, func(a, q1, m, q3, b float64, n int) (MeanSD, error) {
-			return best(Quantiles{a, q1, m, q3, b, true, true}, n)
+			return best(Quantiles{a, q1, m, q3, b, true, true, nil}, n)
 		}},
 		{"lognormal-quartiles", true, func(_, q1, m, q3, _ float64, n int) (MeanSD, error) {
 			return LogNormalFromQuartiles(q1, m, q3, n)

@@ -108,6 +108,12 @@ qln <- function(q, p) {
   s <- uniroot(g, c(.05, 3), tol = 1e-15)$root; m <- A(s) * exp(s^2 / 2); c(m, m * sqrt(exp(s^2) - 1))
 }
 put("c7-quantile-estimation", qln(c(3.1, 5.2, 9.4), c(.25, .5, .75)), qln(c(0.8, 1.9, 4.1), c(.25, .5, .75)))
+# Least squares of beta quantiles between 0 and 1, by repeated searches.
+qbe <- function(q, p) {
+  t <- c(0, 0); for (i in 1:12) t <- optim(t, function(t) sum((qbeta(p, exp(t[1]), exp(t[2])) - q)^2), control = list(reltol = 1e-16, abstol = 0, maxit = 5000))$par
+  a <- exp(t[1]); b <- exp(t[2]); c(a / (a + b), sqrt(a * b / (a + b + 1)) / (a + b))
+}
+put("c7-beta", qbe(c(.31, .52, .64), c(.25, .5, .75)), qbe(c(.02, .11, .19, .34, .71), c(1 / 40, .25, .5, .75, 39 / 40)))
 bcpow <- function(a, m, b) uniroot(function(k) { f <- function(x) if (abs(k) < 1e-9) log(x) else (x^k - 1) / k; f(a) + f(b) - 2 * f(m) }, c(-3, 3), tol = 1e-15)$root
 put("c7-box-cox-power", bcpow(3.1, 5.2, 9.4), bcpow(0.8, 1.9, 4.1))
 

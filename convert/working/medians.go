@@ -190,11 +190,18 @@ func (it *item) proposeFive(q convert.Quantiles, n int) {
 }
 
 func (it *item) proposeFit(q convert.Quantiles, n int, name string) {
+	if low, high, ok := it.scale(); ok {
+		q.Limits = &convert.Bounded{Low: low, High: high}
+	}
 	fits, err := convert.QuantileEstimation(q, n)
 	if err != nil {
 		return
 	}
-	it.propose(name, fits[0].MeanSD, nil, 0, 0, "closest law: "+fits[0].Family)
+	closest := fits[0].Family
+	if closest == "beta" {
+		closest = fmt.Sprintf("beta between the limits of the scale, %s and %s", short(q.Limits.Low), short(q.Limits.High))
+	}
+	it.propose(name, fits[0].MeanSD, nil, 0, 0, "closest law: "+closest)
 }
 
 // proposeFromWidth offers the SD where only the width is printed.

@@ -54,7 +54,7 @@ var (
 // onValues reports that the values of the outcome themselves are summarised, so that
 // the limits of its scale apply.
 func onValues(r *result.Result) bool {
-	return (r.Statistic == result.Mean || r.Statistic == result.MeanChange) && !measured.MatchString(r.Outcome)
+	return (r.Statistic == result.Mean || r.Statistic == result.MeanChange || r.Statistic == result.Median) && !measured.MatchString(r.Outcome)
 }
 
 func setOne(found []result.Result, these []int, said []statement) {
