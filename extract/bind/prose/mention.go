@@ -34,6 +34,10 @@ func (p *para) mentionsIn(from, to int) []mention {
 		if toks[i].Kind != grammar.TokWord && toks[i].Kind != grammar.TokNumber {
 			continue
 		}
+		if a, ok := p.sharedDose(i); ok {
+			out = append(out, mention{a, toks[i].Start, toks[i].End})
+			continue
+		}
 		best, bestEnd, bestLen := -1, i, 0
 		for _, k := range p.f.cast.first[toks[i].Value] {
 			name := p.f.cast.names[k]
@@ -82,4 +86,27 @@ func (p *para) named(i int, key []string, a *arm) (int, bool) {
 	}
 	printed := p.s[toks[i].Start:toks[i].End]
 	return k, strings.ToUpper(printed) == printed && len(printed) > 1
+}
+
+func isNumber(t grammar.Token) bool { return t.Kind == grammar.TokNumber }
+
+// sharedDose reads the first of "the 10- and 15-mg groups": a dose whose unit
+// stands behind the next one.
+func (p *para) sharedDose(i int) (arm int, ok bool) {
+	toks := p.r.Tokens
+	if !isNumber(toks[i]) {
+		return 0, false
+	}
+	const far = 8
+	for k := i + 1; k < len(toks) && k < i+far; k++ {
+		switch t := toks[k]; {
+		case isNumber(t), t.Kind == grammar.TokDash, t.Kind == grammar.TokComma, t.Value == "and", t.Value == "or":
+		case t.Kind == grammar.TokWord && unitWords[t.Value] && k > i+2:
+			a, ok := p.f.cast.names[toks[i].Value+" "+t.Value]
+			return a.arm, ok
+		default:
+			return 0, false
+		}
+	}
+	return 0, false
 }

@@ -32,7 +32,7 @@ func init() {
 		including included completed analysed analyzed patients participants subjects women men children followed not also those who either control's remaining
 		mean median value values difference differences change total number score scores showed in between-group within-group between-groups i.e e.g after before during`)
 	fill(weakName, `group groups arm arms patients participants subjects women men children individuals cohort users`)
-	fill(noArm, `baseline week follow percent total post overall pooled whole`)
+	fill(noArm, `baseline week follow percent total post overall pooled whole studied parallel respective different various matched ethnic following`)
 	fill(notAlone, `once twice high low early late usual standard new old single double long short active delayed male female first second third pre no non yes
 		present absent other none daily normal good poor group change age sex treatment dose effect time visit intervention's mild moderate severe`)
 	delete(stopName, "patients")
