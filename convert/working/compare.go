@@ -93,6 +93,28 @@ func impliedN(it, m *item) {
 	}
 }
 
+// plainByMate reports an interval that the printed SD of the same mean explains: by
+// t and n, within rounding, it is the plain interval of a mean, adjusted for
+// nothing.
+func plainByMate(it *item) bool {
+	if it.res.GivenAs != result.CI || it.res.Level <= 0 || it.lopside != nil || it.margin.Low <= 0 || it.res.N < 2 || !isMean(it) {
+		return false
+	}
+	t, err := convert.TwoSided(it.res.Level, float64(it.res.N-1))
+	if err != nil {
+		return false
+	}
+	root := math.Sqrt(float64(it.res.N))
+	for _, m := range it.mates {
+		if m.res.GivenAs == result.SD && m.val != nil && m.val.Low() > 0 &&
+			(convert.Range{Low: it.margin.Low * root / m.val.High(), High: it.margin.High * root / m.val.Low()}).Holds(t) {
+			it.note("SD %s beside it shows that this is the plain interval of the mean", m.res.GivenValue)
+			return true
+		}
+	}
+	return false
+}
+
 func isMean(it *item) bool {
 	return it.res.Statistic == result.Mean || it.res.Statistic == result.MeanChange
 }

@@ -138,7 +138,7 @@ func obstacles() []obstacle {
 			return "", it.has("spread-ambiguous")
 		}},
 		{"adjusted-unclear", "the paper leaves open whether the mean is adjusted or comes from a model", func(it *item) (string, bool) {
-			return "neither said nor ruled out", it.res.Adjusted == "unclear" && !rawBesideAdjusted(it)
+			return "neither said nor ruled out", it.res.Adjusted == "unclear" && !rawBesideAdjusted(it) && !plainByMate(it)
 		}},
 	}
 }

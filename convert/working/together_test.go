@@ -38,6 +38,10 @@ func TestTogether(t *testing.T) {
 		r.Evidence.ScaleLow, r.Evidence.ScaleHigh = low, high
 		return r
 	}
+	unclear := func(r result.Result) result.Result {
+		r.Adjusted = "unclear"
+		return r
+	}
 	difference := result.Result{Statistic: result.MeanDifference, GivenAs: result.CI, Estimate: "1.8", Lower: "0.1", Upper: "3.5", Level: 95, N: 30, N2: 28, Table: "Table 2", Row: "1", Outcome: "colony mass"}
 	cases := []struct {
 		name    string
@@ -56,6 +60,11 @@ func TestTogether(t *testing.T) {
 			[]string{"belong to n from 38 to 39", `"use":"withheld"`}, nil},
 		{"SD and interval say what n is", []result.Result{mean("32.1", "30.0", "34.2", 0, 1), spread(result.SD, "32.1", "5.09", "syrup", 0, 0)},
 			[]string{"belong to n from 24 to 26, by t"}, nil},
+		// 1.2·√20/t(19) = 2.56
+		{"an SD beside shows a plain interval", []result.Result{unclear(mean("12.40", "11.20", "13.60", 20, 1)), spread(result.SD, "12.40", "2.56", "syrup", 20, 0)},
+			[]string{`plain interval of the mean`, `"use":"converted"`}, []string{"adjusted-unclear"}},
+		{"an SD beside that does not fit leaves it open", []result.Result{unclear(mean("12.40", "11.20", "13.60", 20, 1)), spread(result.SD, "12.40", "3.10", "syrup", 20, 0)},
+			[]string{`adjusted-unclear`, `"use":"withheld"`}, nil},
 		{"quartiles and range are five numbers", []result.Result{median(result.IQR, "9", "16", 40, 1), median(result.Range, "4", "31", 40, 0)},
 			[]string{"luo-five with shi-five", `"mean":12.9709748,"sd":5.91783357`, "bland-five", "read from the result printed beside", `"sd":null`}, []string{"luo-quartiles with"}},
 		{"quartiles alone", []result.Result{median(result.IQR, "9", "16", 40)},
