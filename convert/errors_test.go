@@ -68,6 +68,8 @@ func TestImpossibleInput(t *testing.T) {
 		{"two values have no quartiles", pair(WanFromQuartiles(1, 2, 3, 2)), ErrSize},
 		{"logarithm of 0", pair(LogNormalFromQuartiles(0, 2, 3, 20)), ErrDomain},
 		{"power of a negative", one(BoxCoxPower(-1, 2, 3)), ErrDomain},
+		{"log odds of 0", func() error { _, err := LogitSEFromInterval(0, .2, 95); return err }(), ErrDomain},
+		{"log odds of 1", func() error { _, err := LogitSEFromInterval(.8, 1, 95); return err }(), ErrDomain},
 		{"median alone", func() error { _, err := QuantileEstimation(Quantiles{Median: 2}, 20); return err }(), ErrSize},
 		{"ratio with a bound of 0", one(LogSEFromInterval(0, 2, 95, Normal)), ErrDomain},
 		{"reduction by 100%", one(RatioFromPercentChange(-100)), ErrDomain},

@@ -124,6 +124,28 @@ func logitWald(x, n, z, _ float64) (Range, error) {
 	return Range{back(centre - w), back(centre + w)}, nil
 }
 
+// LogitSEFromInterval is the standard error of the log odds of a proportion from its
+// interval.
+//
+// Formula: (logit upper - logit lower)/(2·z), logit p = ln(p/(1 - p)).
+// Arguments: bounds as fractions in (0, 1); percent the level.
+// Assumes: Wald interval on the logit scale: its centre there is the logit of the
+// proportion within rounding (Margin with Logit). For Wilson, exact and other
+// intervals it is an approximation. It is never the SD of an outcome.
+// Errors: ErrDomain for bounds outside (0, 1); those of SEFromInterval.
+// Limits: none.
+// Rounding: Margin with Logit over z.
+// Source: definition; the logit interval of methods section D3.
+// Checked: against R to 1e-9.
+func LogitSEFromInterval(lower, upper, percent float64) (float64, error) {
+	for _, p := range []float64{lower, upper} {
+		if !(p > 0 && p < 1) {
+			return 0, fmt.Errorf("%w: the log odds of %v", ErrDomain, p)
+		}
+	}
+	return SEFromInterval(math.Log(lower)-math.Log1p(-lower), math.Log(upper)-math.Log1p(-upper), percent, Normal)
+}
+
 // SDOfBinary is the sample SD of a 0/1 variable.
 //
 // Formula: √(p·(1 - p)·n/(n - 1)), p = x/n.

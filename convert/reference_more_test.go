@@ -206,6 +206,10 @@ func ratioCases() []checkCase {
 			v.add(LogHazardRatioSE(63, 2, 1))
 			v.add(LogSEFromP(1.48, .009))
 		}},
+		{name: "d3-logit-se", got: func(v *values) {
+			v.add(LogitSEFromInterval(.045, .148, 95))
+			v.add(LogitSEFromInterval(.255, .366, 90))
+		}},
 		{name: "d3-zero", figures: "0 0.168433471 0.161125158", published: "0 .1684 .1611", source: "Newcombe 1998, 0/20, recalled from memory", got: func(v *values) {
 			v.both(intervalOf("exact")(0, 20, 95))
 			r, err := intervalOf("wilson")(0, 20, 95)

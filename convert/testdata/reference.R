@@ -136,6 +136,7 @@ ci <- list(wald = function(x, n, p = x / n) p + c(-1, 1) * z95 * sqrt(p * (1 - p
   agresti = function(x, n, m = n + z95^2, q = (x + z95^2 / 2) / m) q + c(-1, 1) * z95 * sqrt(q * (1 - q) / m),
   jeffreys = function(x, n) qbeta(c(.025, .975), x + .5, n - x + .5))
 for (k in names(ci)) put(paste0("d3-", k), ci[[k]](81, 263), ci[[k]](15, 148), ci[[k]](1, 29), ci[[k]](39, 40))
+put("d3-logit-se", (qlogis(.148) - qlogis(.045)) / (2 * qnorm(.975)), (qlogis(.366) - qlogis(.255)) / (2 * qnorm(.95)))
 put("d3-zero", ci$exact(0, 20), ci$wilson(0, 20)[2], ci$exact(20, 20))
 put("d3-sd-binary", sd(c(rep(1, 9), rep(0, 31))))
 rec <- function(p, l, u, d, N, meth = c("wald", "wilson", "exact")) {

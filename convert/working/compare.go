@@ -16,9 +16,11 @@ func compare(items []*item) {
 		}
 		testedLevel(it)
 		testedDF(it)
+		dfAgainstN(it)
 	}
 	for _, row := range rowsOf(items) {
 		supportReading(row)
+		sameMargins(row)
 		for i, a := range row {
 			for _, b := range row[i+1:] {
 				compareSpreads(a, b)
@@ -236,6 +238,49 @@ func testedDF(it *item) {
 		return
 	}
 	it.raise("t-and-p-disagree", fmt.Sprintf("t %s with %s degrees of freedom gives p from %s to %s, printed is %s", it.res.T, it.res.DF, short(2*least), short(2*greatest), it.res.P))
+}
+
+// dfAgainstN compares printed degrees of freedom with the sizes of the two arms:
+// beyond n₁ + n₂ − 2 the test counts something else than the units.
+func dfAgainstN(it *item) {
+	df := read(it.res.DF)
+	if df == nil || it.res.Statistic != result.MeanDifference || it.res.N < 2 || it.res.N2 < 2 || it.res.T == "" {
+		return
+	}
+	if most := it.res.N + it.res.N2 - 2; df.Low() > float64(most) {
+		it.raise("df-above-n", fmt.Sprintf("%s degrees of freedom, n₁ + n₂ − 2 is %d", it.res.DF, most))
+	}
+}
+
+// leastSameArms is how many arms of one row must share n and margin before that
+// looks like one SD for all.
+const leastSameArms = 3
+
+// sameMargins notes that the intervals of a row's arms, of one n, are all equally
+// wide: they may rest on the pooled SD of an analysis of variance.
+func sameMargins(row []*item) {
+	var arms []*item
+	estimates := map[string]bool{}
+	for _, it := range row {
+		if it.res.GivenAs == result.CI && isMean(it) && it.lopside == nil && it.margin.High > 0 && it.res.N > 1 {
+			arms = append(arms, it)
+			estimates[it.res.Estimate] = true
+		}
+	}
+	if len(arms) < leastSameArms || len(estimates) < 2 {
+		return
+	}
+	for _, it := range arms[1:] {
+		if it.res.N != arms[0].res.N || it.res.Time != arms[0].res.Time || !it.margin.Meets(arms[0].margin) || math.Abs(it.halfWidth()-arms[0].halfWidth()) > it.margin.High-it.margin.Low {
+			return
+		}
+	}
+	if width := arms[0].margin; width.High-width.Low > 0.05*width.High {
+		return // too few digits to tell
+	}
+	for _, it := range arms {
+		it.note("the intervals of all %d arms of this row are equally wide: they may be made from the pooled SD of an analysis of variance, whose t has N − k degrees of freedom", len(arms))
+	}
 }
 
 // repeats flags results of one table that print the same estimate and spread, to

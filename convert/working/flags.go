@@ -67,11 +67,12 @@ func Flags() []FlagInfo {
 		{"coarse-digits", None, "the printed digits leave the SD open by more than 10%", "use the range; look for the same result with more digits"},
 		{"p-disagrees", None, "interval and p value of one comparison belong to different levels", "an adjusted or rank test, another level than printed, or a p of another row"},
 		{"t-and-p-disagree", None, "t, degrees of freedom and p do not belong together", "a misprint, or another test"},
+		{"df-above-n", None, "the degrees of freedom of the t test exceed n₁ + n₂ − 2", "repeated measures, or units counted more than once: n or the test is not what it seems"},
 		{"mates-disagree", AsksLook, "two spreads of one estimate do not belong to one n and level", "n, the level or what the spread is was misread, or the paper misprints"},
 		{"repeated-values", None, "the same estimate and spread stand twice in one table for different arms, times or outcomes", "look whether the paper repeats itself or the wrong cell was read"},
 		// How the estimate was made.
 		{"statistic-unclear", MakesIt, "the paper does not say what the estimate is", "decide whether it is a mean, a median or something else"},
-		{"statistic-assumed", AsksLook, "mean, median or other is not said and was taken from the kind of spread", "check the table's heading and the methods"},
+		{"statistic-assumed", None, "mean, median or other is not said and was taken from the kind of spread", "check the table's heading and the methods"},
 		{"adjusted", None, "the mean or difference is adjusted", "its interval reflects a model: the SD is withheld"},
 		{"statistic-against-heading", AsksLook, "a word of the heading contradicts the statistic that was read", "decide which of them holds"},
 		{"adjusted-baseline", AsksLook, "a baseline value is called adjusted", "the word may belong to other columns; if so, its SD can be worked out"},

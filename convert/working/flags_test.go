@@ -118,6 +118,7 @@ func raisedByWorking() map[string][]result.Result {
 		"coarse-digits":             one(ci("12", "11", "13", nil)),
 		"p-disagrees":               one(ci("4.2", "0.9", "7.5", func(r *result.Result) { r.Statistic, r.N2, r.P = result.MeanDifference, 40, "0.40" })),
 		"t-and-p-disagree":          one(as(plain, func(r *result.Result) { r.T, r.DF, r.P = "2.31", "40", "0.500" })),
+		"df-above-n":                one(ci("4.2", "0.9", "7.5", func(r *result.Result) { r.Statistic, r.N2, r.T, r.DF = result.MeanDifference, 40, "2.53", "162" })),
 		"mates-disagree":            {as(sd("12.4", "8.6", "syrup", 40), func(r *result.Result) { r.Mates = []int{1} }), se},
 		"repeated-values":           {sd("12.43", "1.31", "syrup", 40), sd("12.43", "1.31", "water", 40)},
 		"statistic-unclear":         one(as(plain, func(r *result.Result) { r.Statistic = "" })),

@@ -33,7 +33,10 @@ func deserved(v float64, r convert.Range) string {
 	return strconv.FormatFloat(v, 'f', d, 64)
 }
 
-// percent writes a share in percent with two significant digits.
+// percent writes a share in percent with two significant digits, large ones whole.
 func percent(share float64) string {
+	if math.Abs(share) >= 0.995 {
+		return strconv.FormatFloat(100*share, 'f', 0, 64)
+	}
 	return strconv.FormatFloat(100*share, 'g', 2, 64)
 }

@@ -224,12 +224,15 @@ func minus(s string) string {
 	return s
 }
 
+// usualLevels are the levels of intervals in use, the usual one first.
+var usualLevels = []float64{95, 90, 99}
+
 // offerLevels shows what the SD would be at the usual levels.
 func (it *item) offerLevels(width float64, n int) {
 	if n < 2 {
 		return
 	}
-	for _, level := range []float64{95, 90, 99} {
+	for _, level := range usualLevels {
 		t, err := convert.TwoSided(level, float64(n-1))
 		if err != nil {
 			continue

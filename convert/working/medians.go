@@ -112,6 +112,9 @@ func (it *item) verdict(s convert.SkewTest, err error) {
 	if err != nil {
 		return
 	}
+	if s.Statistic < 1e-9 {
+		s.Statistic = 0 // what is left of equal distances after subtracting
+	}
 	if s.Skewed() {
 		it.raise("skewed-summary", fmt.Sprintf("skewness %s, critical %s at 5%%", short(s.Statistic), short(s.Critical)))
 		it.note("the printed quantiles are skewed (%s > %s): the methods for near-normal data mislead", short(s.Statistic), short(s.Critical))

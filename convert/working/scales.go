@@ -28,6 +28,9 @@ func (it *item) explainLopside() {
 	}
 	low, high := it.bounds()
 	scales, err := convert.Scales(*it.est, low, high)
+	if err == nil && len(scales) == 0 {
+		it.note("symmetric on neither the raw, the log nor the logit scale: an exact, profile or bootstrap interval, numbers that do not belong together, or a misprint")
+	}
 	if err == nil {
 		for _, s := range scales {
 			switch s {
@@ -120,7 +123,7 @@ func (it *item) seOfDifference() {
 // means of known size.
 func (it *item) twoMeans() bool {
 	e := it.res.Evidence
-	return it.res.Statistic == result.MeanDifference && it.res.N > 1 && it.res.N2 > 1 &&
+	return it.res.Statistic == result.MeanDifference && !strings.Contains(it.res.Measure, "standardi") && it.res.N > 1 && it.res.N2 > 1 &&
 		it.res.Adjusted != "yes" && it.res.Adjusted != "unclear" && len(e.Design) == 0 && len(e.Model) == 0
 }
 
@@ -145,18 +148,27 @@ func ownScaleLog(it *item) {
 	if it.res.GivenAs != result.CI || !it.interval() {
 		return
 	}
-	if it.res.Level == 0 {
-		it.raise("level-missing", "the level of the interval is not printed")
-		return
-	}
 	low, high := it.bounds()
 	if low.Value <= 0 {
 		it.raise("bounds-not-positive", "a ratio needs bounds above 0")
 		return
 	}
+	if it.res.Level == 0 {
+		it.raise("level-missing", "the level of the interval is not printed")
+		for _, level := range usualLevels {
+			if se, err := convert.LogSEFromInterval(low.Value, high.Value, level, convert.Normal); err == nil {
+				it.offer(Alternative{Name: fmt.Sprintf("if the level is %s%%", short(level)), SE: number(se), Note: "SE of the logarithm, by z"})
+			}
+		}
+		return
+	}
 	df, symbol := convert.Normal, "z"
-	if it.res.Statistic == result.GeometricMean && it.res.N > 1 {
+	ofMeans := it.res.Statistic == result.Ratio && it.res.Measure == "ratio of means" && it.res.N > 1 && it.res.N2 > 1
+	switch {
+	case it.res.Statistic == result.GeometricMean && it.res.N > 1:
 		df, symbol = float64(it.res.N-1), "t"
+	case ofMeans:
+		df, symbol = float64(it.res.N+it.res.N2-2), "t"
 	}
 	factor, err := convert.TwoSided(it.res.Level, df)
 	if err != nil {
@@ -183,6 +195,9 @@ func ownScaleLog(it *item) {
 	if it.res.Statistic == result.GeometricMean && it.res.N > 1 && it.est != nil {
 		it.offerLog(low, high)
 	}
+	if pooled, err := convert.PooledSDFromSE(se, it.res.N, it.res.N2); ofMeans && err == nil {
+		it.offer(Alternative{Name: "pooled SD of the logarithms of the two arms", SD: number(pooled), SE: number(se), Note: "if it is an unadjusted ratio of two geometric means, by t with n₁ + n₂ − 2 degrees of freedom"})
+	}
 }
 
 // ownScaleProportion gives the SE of a proportion or rate on the raw scale where
@@ -199,8 +214,11 @@ func ownScaleProportion(it *item) {
 		return
 	}
 	low, high := it.bounds()
-	if it.res.Statistic == result.Proportion {
+	switch it.res.Statistic {
+	case result.Proportion:
 		it.nameProportion(low, high)
+	case result.Rate:
+		it.countEvents(low, high)
 	}
 	z, err := convert.TwoSided(it.res.Level, convert.Normal)
 	if err != nil {
@@ -212,8 +230,10 @@ func ownScaleProportion(it *item) {
 		it.rec().SE, it.rec().Scale = number(it.halfWidth()/z), text("raw")
 		it.step("SE = margin/z = %s/%s = %s", short(it.halfWidth()), short(z), short(it.halfWidth()/z))
 		it.method("se-from-ci")
+	case it.res.Statistic == result.Proportion:
+		it.logitSE(low, high, z)
 	case it.est != nil && low.Value > 0 && high.Value > low.Value && !it.outsideInterval():
-		if _, err := convert.Margin(low, high, it.est, convert.Log); err != nil || it.res.Statistic != result.Rate {
+		if _, err := convert.Margin(low, high, it.est, convert.Log); err != nil {
 			return
 		}
 		se := math.Log(high.Value/low.Value) / (2 * z)
@@ -221,6 +241,58 @@ func ownScaleProportion(it *item) {
 		it.rec().SE, it.rec().Scale = number(se), text("log")
 		it.method("log-se-from-ci")
 	}
+}
+
+// logitSE gives the SE of the log odds behind the interval of a percentage that is
+// symmetric on the logit scale.
+func (it *item) logitSE(low, high convert.Printed, z float64) {
+	if it.est == nil || it.res.Unit != "%" || low.Low() <= 0 || high.High() >= 100 || it.outsideInterval() {
+		return
+	}
+	share := func(p convert.Printed) convert.Printed {
+		return convert.Printed{Value: p.Value / 100, Half: p.Half / 100}
+	}
+	est := share(*it.est)
+	if _, err := convert.Margin(share(low), share(high), &est, convert.Logit); err != nil {
+		return
+	}
+	se, err := convert.LogitSEFromInterval(low.Value/100, high.Value/100, it.res.Level)
+	if err != nil {
+		return
+	}
+	it.step("symmetric on the logit scale: SE of the log odds = (logit %s%% − logit %s%%)/(2·%s) = %s", short(high.Value), short(low.Value), short(z), short(se))
+	it.rec().SE, it.rec().Scale = number(se), text("logit")
+	it.method("logit-se-from-ci")
+}
+
+// countEvents notes how many events the interval of a rate belongs to, if it is a
+// Poisson interval made in either usual way.
+func (it *item) countEvents(low, high convert.Printed) {
+	if low.Low() <= 0 || high.Low() <= low.High() {
+		return
+	}
+	for _, way := range []struct {
+		exact bool
+		name  string
+	}{{false, "made on the log scale"}, {true, "exact"}} {
+		least, err1 := convert.CountFromRateInterval(low.Low(), high.High(), it.res.Level, way.exact)
+		most, err2 := convert.CountFromRateInterval(low.High(), high.Low(), it.res.Level, way.exact)
+		if err1 != nil || err2 != nil {
+			continue
+		}
+		if first, last := math.Ceil(least), math.Floor(most); first <= last {
+			it.note("as a Poisson interval, %s, it belongs to %s", way.name, countText(first, last))
+		} else {
+			it.note("as a Poisson interval, %s, it belongs to no whole number of events", way.name)
+		}
+	}
+}
+
+func countText(first, last float64) string {
+	if first == last {
+		return fmt.Sprintf("%.0f events", first)
+	}
+	return fmt.Sprintf("%.0f to %.0f events", first, last)
 }
 
 // nameProportion says by which method the interval of a percentage was made, and

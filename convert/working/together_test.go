@@ -97,7 +97,7 @@ func TestTogether(t *testing.T) {
 			r := scaled(spread(result.Unstated, "2.93", "1.10", "syrup", 15), "1", "5")
 			r.Evidence.Integer = true
 			return r
-		}()}, []string{"no whole numbers from 1 to 5 have this mean and SD"}, nil},
+		}()}, []string{"no 15 whole numbers from 1 to 5 have this mean and SD"}, nil},
 		// The log-likelihoods are those of the reference file: -9.29, -0.98, -5.36.
 		{"known coefficients of variation weigh the readings", func() []result.Result {
 			all := []result.Result{spread(result.Unstated, "50.2", "2.1", "syrup", 30)}
@@ -136,6 +136,38 @@ func TestTogether(t *testing.T) {
 			[]string{"n₁ + n₂ − 2 = 56", "pooled SD of the two arms", `"sd":null`, `"method":"se-from-ci"`}, nil},
 		{"a proportion", []result.Result{{Statistic: result.Proportion, GivenAs: result.CI, Estimate: "22.5", Lower: "9.6", Upper: "35.4", Level: 95, N: 40, Unit: "%", Table: "Table 2"}},
 			[]string{"9 of 40 prints like this by: wald"}, nil},
+		{"a lopsided interval that no scale explains", []result.Result{mean("12.4", "11.9", "13.6", 42)}, []string{"symmetric on neither the raw, the log nor the logit scale"}, nil},
+		{"equal margins of all arms", func() []result.Result {
+			all := []result.Result{mean("12.43", "11.22", "13.64", 20), mean("14.10", "12.89", "15.31", 20), mean("11.75", "10.54", "12.96", 20)}
+			all[1].Arm, all[2].Arm = "pollen", "water"
+			return all
+		}(), []string{"equally wide", `"use":"converted"`}, nil},
+		{"unequal margins", func() []result.Result {
+			all := []result.Result{mean("12.43", "11.22", "13.64", 20), mean("14.10", "12.89", "15.31", 20), mean("11.75", "10.44", "13.06", 20)}
+			all[1].Arm, all[2].Arm = "pollen", "water"
+			return all
+		}(), nil, []string{"equally wide"}},
+		{"a percentage symmetric on the logit scale", []result.Result{{Statistic: result.Proportion, GivenAs: result.CI, Estimate: "8.3", Lower: "4.5", Upper: "14.8", Level: 95, N: 120, Unit: "%", Table: "Table 2"}},
+			[]string{`"scale":"logit"`, "SE of the log odds"}, nil},
+		{"a rate says its events", []result.Result{{Statistic: result.Rate, GivenAs: result.CI, Estimate: "4.9", Lower: "3.2", Upper: "7.3", Level: 95, Table: "Table 2"}},
+			[]string{"made on the log scale, it belongs to 22 to 23 events", "exact, it belongs to 24 to 26 events"}, nil},
+		{"a ratio without a level", []result.Result{{Statistic: result.Ratio, GivenAs: result.CI, Estimate: "1.8", Lower: "1.1", Upper: "2.9", Table: "Table 2"}},
+			[]string{"level-missing", "if the level is 95%", "SE of the logarithm, by z"}, nil},
+		{"a ratio of geometric means", []result.Result{{Statistic: result.Ratio, Measure: "ratio of means", GivenAs: result.CI, Estimate: "1.30", Lower: "1.05", Upper: "1.62", Level: 95, N: 24, N2: 22, Table: "Table 2"}},
+			[]string{"pooled SD of the logarithms of the two arms", `"sd":0.364484528`}, nil},
+		{"a standardised difference has no pooled SD", []result.Result{func() result.Result { r := difference; r.Measure = "standardised difference"; return r }()}, []string{`"se"`}, []string{"pooled SD"}},
+		{"an impossible mean strikes out nothing", []result.Result{func() result.Result {
+			r := spread(result.Unstated, "5.19", "1.10", "syrup", 28)
+			r.Evidence.Integer = true
+			return r
+		}()},
+			[]string{"mean-impossible", "n or the mean is in doubt"}, []string{"struck"}},
+		{"bounds unexplained, n not known", []result.Result{func() result.Result {
+			r := mean("12.4", "11.2", "13.6", 0)
+			r.GivenAs, r.Level = result.Unstated, 0
+			return r
+		}()},
+			[]string{"as a 95% interval", "SE by z"}, nil},
 		{"a geometric mean", []result.Result{{Statistic: result.GeometricMean, GivenAs: result.CI, Estimate: "10.0", Lower: "8.1", Upper: "12.4", Level: 95, N: 30, Table: "Table 2"}},
 			[]string{"lognormal law", "SD of the logarithms 0.5702", `"scale":"log"`}, nil},
 		{"a table that tells adjusted from plain", func() []result.Result {

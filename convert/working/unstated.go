@@ -68,6 +68,9 @@ func (it *item) weighBounds() {
 	n := it.res.N
 	if n < 3 {
 		it.raise("n-missing", "no sample size is printed for this result")
+		if z, err := convert.TwoSided(readingLevel, convert.Normal); err == nil && it.lopside == nil && it.halfWidth() > 0 && it.est != nil {
+			it.offer(Alternative{Name: "as a 95% interval", Mean: number(it.est.Value), SE: number(it.halfWidth() / z), Note: "SE by z; the other readings need n"})
+		}
 		return
 	}
 	if it.outsideInterval() || it.est == nil {
@@ -115,10 +118,15 @@ func (it *item) strikeReadings(sds [3]float64) (why [3]string) {
 	if !it.res.Evidence.Integer {
 		return why
 	}
+	// What whole numbers can have hangs on n and on the mean: neither may be in doubt.
+	if _, no := meanImpossible(it); no || it.res.NFrom == result.NElsewhere {
+		it.note("the readings are not held against what whole numbers can have: n or the mean is in doubt")
+		return why
+	}
 	fits, scale := it.attainable(sds)
 	for r, fit := range fits {
 		if why[r] == "" && !fit {
-			why[r] = "impossible: no whole numbers" + scale + " have this mean and SD"
+			why[r] = fmt.Sprintf("impossible: no %d whole numbers%s have this mean and SD", n, scale)
 		}
 	}
 	return why
