@@ -22,13 +22,21 @@ func echoes(found []result.Result) {
 			tables[k] = append(tables[k], i)
 		}
 	}
+	twins := make([]*result.Result, len(found))
 	for i := range found {
-		r := &found[i]
-		if r.Table != "" || r.Evidence.Quoted {
+		if r := &found[i]; r.Table == "" && !r.Evidence.Quoted {
+			twins[i] = twin(found, tables, r)
+		}
+	}
+	for i, t := range twins {
+		if t == nil {
 			continue
 		}
-		if t := twin(found, tables, r); t != nil {
-			takeFrom(r, t)
+		takeFrom(&found[i], t)
+		for _, m := range found[i].Mates { // its range beside its SD
+			if r := &found[m]; r.Table == "" && twins[m] == nil && r.Statistic == found[i].Statistic {
+				takeFrom(r, t)
+			}
 		}
 	}
 }
@@ -190,8 +198,10 @@ func takeFrom(r, t *result.Result) {
 		drop(r, "outcome")
 		r.Outcome = ""
 	}
-	take("arm", &r.Arm, t.Arm)
-	take("arm2", &r.Arm2, t.Arm2)
+	if t.N > 0 || !between(t) { // the columns of models are no arms
+		take("arm", &r.Arm, t.Arm)
+		take("arm2", &r.Arm2, t.Arm2)
+	}
 	take("time", &r.Time, t.Time)
 	take("subgroup", &r.Subgroup, t.Subgroup)
 	take("outcome", &r.Outcome, t.Outcome)

@@ -221,6 +221,11 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 	if at > 0 {
 		previous = max(previous, min(units[at-1].end, u.start))
 	}
+	for _, m := range all {
+		if m.start > u.start && m.end < u.end {
+			return m, true // "12.4 ± 1.3 kg in the syrup group (range 10 to 15)"
+		}
+	}
 	if m, ok := p.justBehind(u, all); ok {
 		return m, true
 	}

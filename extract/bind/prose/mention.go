@@ -78,8 +78,11 @@ func (p *para) named(i int, key []string, a *arm) (int, bool) {
 	if k < len(toks) && (weakName[toks[k].Value]) {
 		return k + 1, true
 	}
-	if len(key) > 1 || len(a.sizes) > 0 && a.group {
+	if len(key) > 1 || len(a.sizes) > 0 && a.group && !ofGroup[key[0]] {
 		return k, true
+	}
+	if ofGroup[key[0]] {
+		return k, p.groupAhead(k)
 	}
 	if k+1 < len(toks) && toks[k].Kind == grammar.TokOpen && toks[k+1].Value == "n" {
 		return k, true // "syrup (n = 42)"
@@ -109,4 +112,19 @@ func (p *para) sharedDose(i int) (arm int, ok bool) {
 		}
 	}
 	return 0, false
+}
+
+// groupAhead reports that the word group follows within a list of names: "the
+// study and control groups", "treatment vs. control arms".
+func (p *para) groupAhead(k int) bool {
+	const far = 6
+	for i := k; i < len(p.r.Tokens) && i < k+far; i++ {
+		switch t := p.r.Tokens[i]; {
+		case groupNoun[t.Value]:
+			return true
+		case t.Kind == grammar.TokNumber, t.Kind == grammar.TokPeriod:
+			return false
+		}
+	}
+	return false
 }

@@ -64,6 +64,9 @@ func nameKey(name string) []string {
 	if len(all) > 1 && lettered[all[0]] && len(all[1]) <= 3 && label.MatchString(all[1]) {
 		return []string{"group", all[1]}
 	}
+	if len(all) == 2 && all[0] == "study" && lettered[all[1]] {
+		return all[:1]
+	}
 	var out []string
 	for _, w := range all {
 		if !weakName[w] && !stopName[w] {
@@ -72,6 +75,9 @@ func nameKey(name string) []string {
 	}
 	return out
 }
+
+// ofGroup are names that mean an arm only where the word group is near.
+var ofGroup = map[string]bool{"study": true, "treatment": true, "treated": true, "test": true, "intervention": true, "standard": true, "case": true, "exercise": true, "training": true, "diet": true}
 
 var (
 	lettered = map[string]bool{"group": true, "arm": true, "cohort": true, "groups": true, "arms": true}

@@ -82,8 +82,14 @@ func (f *finder) shorten() {
 		}
 	}
 	for _, k := range order {
-		if i, ok := c.oneArm(short[k]); ok {
+		i, ok := c.oneArm(short[k])
+		if !ok {
+			continue
+		}
+		if a, known := c.names[k]; !known {
 			c.call(strings.Fields(k), i)
+		} else if len(c.arms[a.arm].sizes) == 0 && !c.arms[a.arm].table {
+			c.rename(strings.Fields(k), i)
 		}
 	}
 }

@@ -103,7 +103,7 @@ var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|in
 func (p *para) countedIn(from, to int) (size, bool) {
 	var found [][]int
 	for _, m := range p.matches(from, counted) {
-		if m[1] <= to {
+		if m[1] <= to && (len(found) == 0 || !p.shut(m[2], to)) { // "sixteen colonies (12 strong, 4 weak)"
 			found = append(found, m)
 		}
 	}

@@ -148,8 +148,7 @@ func contentWords(s string) []string {
 }
 
 // sized gives the size of arm i behind a result: its own, or, where it was never
-// printed with one, that of the only arm with a size whose name holds all its
-// words. A paper that gives a size for one arm only is not trusted with it.
+// printed with one, that of the arm with a size whose name holds all its words. A paper that gives a size for one arm only is not trusted with it.
 func (c *cast) sized(i int, q asked) (size, bool) {
 	with, found := 0, i
 	for k := range c.arms {
@@ -161,21 +160,31 @@ func (c *cast) sized(i int, q asked) (size, bool) {
 		return size{}, false
 	}
 	if len(c.arms[i].sizes) == 0 {
-		found = -1
-		for k := range c.arms {
-			if len(c.arms[k].sizes) == 0 || !holds(c.arms[k].key, c.arms[i].key) {
-				continue
-			}
-			if found >= 0 {
-				return size{}, false
-			}
-			found = k
-		}
-		if found < 0 {
+		if found = c.bearer(c.arms[i].key); found < 0 {
 			return size{}, false
 		}
 	}
 	return c.arms[found].sizeOf(q)
+}
+
+// bearer gives the arm with a size that has the shortest name with all the words:
+// "Pollen cake" for "pollen", beside "No pollen cake"; -1 where two are as short.
+func (c *cast) bearer(key []string) int {
+	found, tied := -1, false
+	for k := range c.arms {
+		a := &c.arms[k]
+		switch {
+		case len(a.sizes) == 0 || !holds(a.key, key):
+		case found < 0 || len(a.key) < len(c.arms[found].key):
+			found, tied = k, false
+		case len(a.key) == len(c.arms[found].key):
+			tied = true
+		}
+	}
+	if tied {
+		return -1
+	}
+	return found
 }
 
 // holds reports whether all words of b stand in a.

@@ -128,6 +128,7 @@ var joinedValues = pattern.MustCompile(`(?i)(?:[0-9%)\]]\s*|[0-9]\s*[a-zµμ%/°
 var (
 	fromTo  = pattern.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
 	byMuch  = pattern.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
+	points  = pattern.MustCompile(`(?i)^\s*(?:percent(?:age)?|%)?[- ]?points?\b`)
 	moreish = pattern.MustCompile(`(?i)^[^).;]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
 )
 
@@ -159,6 +160,10 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		if percent {
 			n.statistic = result.Proportion
 		}
+		return n
+	}
+	if percent && points.MatchString(p.s[c.est.End:to]) {
+		n.statistic = result.RiskDifference // "rose by 12 percentage points"
 		return n
 	}
 	compared := p.says(at, betterThan) || contrast.MatchString(p.beforeFirst(c, from))
