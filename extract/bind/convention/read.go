@@ -18,6 +18,8 @@ var (
 	figures   = pattern.MustCompile(`(?i)\bfigures?\b(?: [0-9]|s\b)|\berror bars?\b|\bgraphs?\b|\bplots?\b|\bbars\b`)
 	inText    = pattern.MustCompile(`(?i)\b(?:in|throughout) the text\b`)
 	plan      = pattern.MustCompile(`(?i)\bsample size\b|\bpower\b|\bassum|\bdetect|\bexpected\b|\bprevious(?:ly)?\b|\bnorm(?:s|ative|ed)?\b`)
+	reckoning = pattern.MustCompile(`(?i)\bdivided by\b|\bratio of\b|\beffect sizes?\b|\bcohen|\bhedges|\bpooled\b|\bz[- ]?scores?\b|\bstandardi[sz]ed (?:mean|difference)|\bcoefficients? of variation\b|\b(?:half a|one|two|three|[0-9.]+) (?:sds?|standard deviations?)\b`) // an SD in a formula, not in print
+	others    = pattern.MustCompile(`(?i)\bliterature\b|\bet al\b|\b(?:earlier|other|another|prior) (?:stud|trial|work|report)|\bpilot\b`)
 	meaningOf = pattern.MustCompile(`(?i)(?:±|\bplus[- ]minus\b|\bparenthes[ei]s|\bbrackets?|\berror bars?|\bbars|\bwhiskers)`)
 )
 
@@ -55,7 +57,7 @@ func sentenceEnd(s string, start int) int {
 func sentence(run *paper.TextRun, start, end int) []Statement {
 	s := run.S[start:end]
 	h := grammar.ParsePhrase(grammar.Text{S: s})
-	if len(h.Pairs) == 0 {
+	if len(h.Pairs) == 0 || reckoning.MatchString(s) {
 		return nil
 	}
 	declared := declaring.MatchString(s) && !plan.MatchString(s)
@@ -76,7 +78,7 @@ func sentence(run *paper.TextRun, start, end int) []Statement {
 		st.Bracket = strings.ContainsAny(between, "([")
 		valued := valuedPair(h.Items, p)
 		switch {
-		case valued && !st.Sign:
+		case valued && (!st.Sign || plan.MatchString(s) || others.MatchString(s)):
 			continue
 		case valued:
 			st.Declared = false
