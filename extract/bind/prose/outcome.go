@@ -4,37 +4,302 @@ import (
 	"strings"
 
 	"halfspan/extract/grammar"
+	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
 var (
-	leadWords  = pattern.MustCompile(`(?i)^(?:kg|mg|min|the|a|an|and|or|but|while|whereas|in|of|for|on|with|by|was|were|is|are|that|there|had|has|have|also|both|then|however|overall|similarly|moreover|average|mean|median|respectively|to|from|than|at|as|i\.e)\s+`)
-	trailWords = pattern.MustCompile(`(?i)\s+(?:was|were|is|are|of|by|to|from|averaged|approximately|about|had|has|have|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|significantly|statistically|only|=|:|OR|HR|RR|M|MD|score of)$`)
-	// what is no outcome by itself
-	emptyWords = pattern.MustCompile(`(?i)^(?:[^\p{L}]*|(?:mean|median|average|adjusted|unadjusted|odds ratio|hazard ratio|relative risk|risk ratio|rate ratio|difference|mean difference|change|mean change|OR|HR|RR|MD|aOR|range|p|n|95|CI|confidence interval|and|or|vs|versus|than|compared with|compared to|respectively|in|for|the|group|arm|at|baseline|to|from|M|SD|β|B|b|risk difference|effect size|years?|age range|was|were|is|are|modelled|model|modeled|between|means|groups?|no|significant|significantly|differences|similar trends|respective|we|observed|it|this|there|estimated|estimate|values?|decrease|increase|reduction|treatment|effect|by|on average|of|that|kg|months?|weeks?)[\s=:,.]*)+$`)
+	// parting are the marks and verbs that part the pieces of a clause.
+	parting = pattern.MustCompile(`(?i)[,;:()\[\]]|\b(?:was|were|is|are|be|been|rose|fell|had|has|have|show(?:ed|s)|shown|did|does|do|can|could|would|will|may|might|must|differed|remained|averaged|reached|` +
+		`increas(?:ed|es)|decreas(?:ed|es)|improved|declined|dropped|reduc(?:ed|es)|chang(?:ed|es)|reveal(?:ed|s)|demonstrat(?:ed|es)|indicat(?:ed|es)|suggest(?:ed|s)|resulted|led|gave|gained|lost|peaked|ranged|that|which|who|while|whereas|but|although|when)\b`)
+	leadWords = pattern.MustCompile(`(?i)^(?:(?:±|\+/-)\s*(?:SD|SEM?|standard deviation|standard error)|kg|mg|min|the|a|an|and|or|but|in|of|for|on|with|by|to|from|than|at|as|not|no|there|also|both|then|however|overall|similarly|moreover|furthermore|i\.e|we|it|this|these|those|their|its|our|` +
+		`average|mean|median|means|medians|adjusted|unadjusted|respectively|significant|significantly|statistically|slightly|higher|lower|greater|smaller|largest|larger|level of|levels of|value of|values of|terms of|` +
+		`associated with|associated to|related to|described as|accompanied by|experienced by|identified with|found|observed|noted|seen|increas(?:e|es|ing|ed)|decreas(?:e|es|ing|ed)|reduc(?:e|tion|tions|ed)|improv(?:e|ement|ements|ed)|difference|differences|changes?|declines?|rise|fall|drop in|` +
+		`primary|secondary|outcome measure|outcome measures|outcome|outcomes|end ?points?|evidence of|trend|effect on|effects on|amounts? of|similar|comparable|patients|participants|subjects|women|men)\s+`)
+	trailWords = pattern.MustCompile(`(?i)(?:^|\s+)(?:of|by|to|from|approximately|about|on|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|averages?|significantly|statistically|only|also|=|:|OR|HR|RR|M|MD|AOR|CI|score of|until|as|not|no|between|among|respectively|compared)$`)
+	// saysNothing are the words that are no outcome, alone or together.
+	saysNothing = map[string]bool{}
+	comparing   = pattern.MustCompile(`(?i)^(?:compared|versus|vs|than|relative to|as opposed)\b`)
+	// listMarks part the names of a list: "mass, protein and flight time".
+	listMarks = pattern.MustCompile(`(?i)\s*,\s*(?:and\s+)?|\s+and\s+`)
 )
+
+func init() {
+	for _, w := range strings.Fields(`mean means median medians average adjusted unadjusted odds hazard relative risk ratio ratios rate difference differences change changes changed or hr rr md aor rd ci p n sd se sem iqr range
+		confidence interval compared respectively group groups arm arms baseline standard deviation effect size effects year years age range no not significant significantly values value decrease decreased increase increased
+		reduction reduced treatment trends trend respective observed estimated estimate estimates we it this there similar similarly equal comparable higher lower greater less more fewer larger smaller largest smallest high low
+		analysis analyses multivariate multivariable univariate bivariate regression model models modelled modeled unadjusted crude results result data study trial findings table figure fig post-hoc intention intention-to-treat per-protocol itt treat test tests kaplan-meier curves
+		based principle showing shows both all overall total patients participants subjects women men children people individuals whole sample least square squares ls least-squares received given those who that which what
+		statistic statistics statistical statistically absolute mm cm kg g mg ml min h s days day weeks week months month gm times points point percentage percent units unit b β beta interaction evidence increments
+		associated according about around approximately only even still again first second third also main coefficient slope intercept however furthermore moreover only main described reached reaching value values current previous
+		favour favor experienced reported described seen noted found antagonistic greatest pronounced`) {
+		saysNothing[w] = true
+	}
+}
 
 // setOutcome takes the words before the estimate, back to a mark or to the
 // result before, as what was measured. A result that is only joined to the one
-// before ("12.4 kg with syrup and 11.1 kg with water") is about the same.
+// before ("12.4 kg with syrup and 11.1 kg with water") is about the same; so is
+// one whose own words name nothing, and one of a sentence that goes on about the
+// sentence before.
 func (p *para) setOutcome(r *result.Result, c *cand) {
 	from, _ := p.sentence(c.est.Start)
 	previous, k := p.previous(c, from)
-	if k >= 0 && c.quartile || k >= 0 && previous < c.est.Start && sameOutcome.MatchString(p.s[previous:c.est.Start]) {
+	if k >= 0 && (c.quartile || p.cands[k].est.Start == c.est.Start) {
 		p.inherit(r, &p.cands[k])
 		return
 	}
-	if k >= 0 && p.cands[k].est.Start == c.est.Start {
+	if at, ok := p.fromList(c, from); ok {
+		p.outcomeAt(r, at)
+		return
+	}
+	if k >= 0 && previous < c.est.Start && sameOutcome.MatchString(p.s[previous:c.est.Start]) {
 		p.inherit(r, &p.cands[k])
 		return
 	}
-	from = max(from, min(previous, c.est.Start))
-	if at, ok := p.nounBefore(from, c.est.Start); ok {
-		r.Outcome = p.s[at.Start:at.End]
-		p.source(r, "outcome", at)
+	if at, ok := p.nounBefore(max(from, min(previous, c.est.Start)), c.est.Start); ok {
+		p.outcomeAt(r, at)
+		return
+	}
+	if at, ok := p.nounBehind(c); ok {
+		p.outcomeAt(r, at)
+		return
+	}
+	if k >= 0 {
+		p.inherit(r, &p.cands[k])
+	}
+	if r.Outcome == "" && from > 0 {
+		p.goesOn(r, from)
 	}
 }
+
+func (p *para) outcomeAt(r *result.Result, at grammar.Span) {
+	r.Outcome = p.s[at.Start:at.End]
+	p.source(r, "outcome", at)
+}
+
+// goesOn takes the outcome of the last result in the sentence before.
+func (p *para) goesOn(r *result.Result, from int) {
+	before, _ := p.sentence(from - 1)
+	if _, last := p.found(before, from); last > 0 && p.cands[last-1].est.Start >= before {
+		p.inherit(r, &p.cands[last-1])
+	}
+}
+
+// nounBefore finds the last piece between two bytes that names something: between
+// marks and verbs, without words of statistics and joining words at its ends and
+// without the arms and times that stand there. What only says how something was
+// ("was higher with syrup", "fell in the winter") names nothing.
+func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
+	end := to
+	for _, m := range reversed(parting.FindAllStringIndex(p.s[from:to], -1)) {
+		a, b := from+m[0], from+m[1]
+		if piece := p.s[b:end]; !intransitive.MatchString(p.s[a:b]) || !adverbial.MatchString(piece) && (!linkedTo.MatchString(piece) || linkedChange.MatchString(piece)) {
+			if at, ok := p.noun(b, end); ok {
+				return p.wholeList(from, at), true
+			}
+		}
+		end = a
+	}
+	return p.noun(from, end)
+}
+
+var (
+	intransitive = pattern.MustCompile(`(?i)^(?:was|were|is|are|be|been|rose|fell|differed|remained|increased|decreased|improved|declined|dropped|changed|reduced|peaked|ranged|did|does|do|who|gained|lost)$`)
+	// "loss was associated with cold" is about loss, "syrup was associated with a
+	// reduction in loss" too.
+	linkedTo     = pattern.MustCompile(`(?i)^[^,;()]{0,20}\b(?:associated|related|correlated|linked) (?:with|to)\b`)
+	linkedChange = pattern.MustCompile(`(?i)^[^,;()]{0,20}\b(?:associated|related|correlated|linked) (?:with|to)\s+(?:an?\s+|the\s+)?(?:\w+ly\s+)?(?:significant\s+|large\s+|small\s+)?(?:increas|decreas|reduc|higher|lower|greater|improve|change|risk|more|less|fewer)`)
+	// adverbial is how a piece begins that says how, where or when.
+	adverbial = pattern.MustCompile(`(?i)^\s*(?:(?:also|not|no|only|significantly|statistically|slightly|then|further|more|less|most|least|similarly|much|all|both)\s+)*` +
+		`(?:(?:in|at|during|after|before|with|by|from|to|on|for|among|under|over|until|between|within|than|vs|versus|compared)\b|` +
+		`(?:higher|lower|greater|more|less|longer|shorter|larger|smaller|better|worse|younger|older|heavier|lighter|faster|slower|different|similar|equal|comparable|high|low)\s*(?:$|(?:in|at|with|for|among|than|vs|versus|compared|between|after|from|to|by|and|but)\b)|` +
+		`[\p{L}-]+\s*$|(?:described|administered|used|given|measured|performed|removed|reported|reached|observed|found|noted|seen|recorded|achieved|obtained|calculated|estimated|required|received|treated|included|assessed|evaluated|detected|identified|predicted)\b)`)
+)
+
+// wholeList takes the names before "protein and flight time" in, which a
+// "respectively" sentence shares out: "mass, protein and flight time".
+func (p *para) wholeList(from int, at grammar.Span) grammar.Span {
+	const most = 6 // words of one name
+	if !strings.Contains(p.s[at.Start:at.End], " and ") || !p.says(at.Start, inOrder) {
+		return at
+	}
+	for at.Start > from {
+		head := strings.TrimRight(p.s[from:at.Start], " ")
+		if !strings.HasSuffix(head, ",") {
+			break
+		}
+		i := strings.LastIndexAny(head[:len(head)-1], ",;:()[]") + 1
+		piece := strings.TrimSpace(head[i : len(head)-1])
+		if len(strings.Fields(piece)) > most || strings.ContainsAny(piece, "0123456789") {
+			break
+		}
+		at.Start = from + i + len(head[i:]) - len(strings.TrimLeft(head[i:], " "))
+	}
+	return at
+}
+
+func reversed(list [][]int) [][]int {
+	out := make([][]int, len(list))
+	for i, m := range list {
+		out[len(list)-1-i] = m
+	}
+	return out
+}
+
+// noun is what a piece names: without what stands at its ends; false where
+// nothing is left.
+func (p *para) noun(a, b int) (grammar.Span, bool) {
+	const most = 90
+	a, b = p.trimWords(a, b)
+	for {
+		x, y := p.trimArms(a, b)
+		x, y = p.trimTimes(x, y)
+		x, y = p.trimWords(x, y)
+		if x == a && y == b {
+			break
+		}
+		a, b = x, y
+	}
+	for b-a > most {
+		cut := strings.IndexByte(p.s[a:b], ' ')
+		if cut < 0 {
+			break
+		}
+		a += cut + 1
+	}
+	if b-a < 2 || strings.ContainsAny(p.s[a:b], "±<=") || comparing.MatchString(p.s[a:b]) || p.holdsSpread(a, b) || !p.namesSomething(a, b) {
+		return grammar.Span{}, false
+	}
+	return grammar.Span{Start: a, End: b}, true
+}
+
+func (p *para) trimWords(a, b int) (int, int) {
+	const blank = " \u00a0\u2009\n-–—‘’\"“”"
+	for a < b {
+		x, y := a, b
+		x += len(p.s[x:y]) - len(strings.TrimLeft(p.s[x:y], blank+"=:"))
+		y -= len(p.s[x:y]) - len(strings.TrimRight(p.s[x:y], blank+"=:."))
+		if m := leadWords.FindStringIndex(p.s[x:y]); m != nil {
+			x += m[1]
+		}
+		if m := trailWords.FindStringIndex(p.s[x:y]); m != nil {
+			y = x + m[0]
+		}
+		if x == a && y == b {
+			break
+		}
+		a, b = x, max(x, y)
+	}
+	return a, b
+}
+
+// trimArms takes arms off both ends: "mass in the syrup group", "syrup group the
+// median age".
+func (p *para) trimArms(a, b int) (int, int) {
+	for _, m := range p.mentions(p.sentence(a)) {
+		switch {
+		case m.start < a || m.end > b || m.start == a && m.end == b:
+		case b-m.end < 2 && groupWord.MatchString(p.s[m.start:m.end]):
+			b = m.start
+		case m.start == a && groupWord.MatchString(p.s[m.start:m.end]):
+			a = m.end
+		}
+	}
+	return a, b
+}
+
+// trimTimes takes times off both ends.
+func (p *para) trimTimes(a, b int) (int, int) {
+	for _, m := range p.matches(a, timeWords) {
+		switch {
+		case m[0] < a || m[1] > b || m[0] == a && m[1] == b:
+		case m[1] == b:
+			b = m[0]
+		case m[0] == a:
+			a = m[1]
+		}
+	}
+	return a, b
+}
+
+// namesSomething reports that a word of a piece is neither an arm, nor a time, nor
+// one that says nothing of what was measured.
+func (p *para) namesSomething(a, b int) bool {
+	arms := p.mentions(p.sentence(a))
+	for i := p.token(a); i < len(p.r.Tokens) && p.r.Tokens[i].Start < b; i++ {
+		t := p.r.Tokens[i]
+		if t.Kind != grammar.TokWord || saysNothing[t.Value] || functionWords[t.Value] || weakName[t.Value] || len(t.Value) < 2 {
+			continue
+		}
+		inArm := false
+		for _, m := range arms {
+			inArm = inArm || m.start <= t.Start && t.End <= m.end
+		}
+		if !inArm {
+			return true
+		}
+	}
+	return false
+}
+
+var countedNoun = pattern.MustCompile(`^[)\]]?\s+((?:[\p{L}-]+ ){0,3}?[\p{L}-]{3,})\s*(?:[,;.)(]|\b(?:in|per|for|from|at|was|were|and|on|of|to|with|the|during)\b)`)
+
+// nounBehind is what is counted: "a mean of 3.5 (4.0) visits per colony".
+func (p *para) nounBehind(c *cand) (grammar.Span, bool) {
+	_, to := p.sentence(c.est.Start)
+	units, at := p.unitsOf(c, c.est.Start, to)
+	if at < 0 {
+		return grammar.Span{}, false
+	}
+	m := countedNoun.FindStringSubmatchIndex(p.s[units[at].end:to])
+	if m == nil || p.block.Zone == paper.Methods || functionWords[firstWord(p.s[units[at].end+m[2]:])] {
+		return grammar.Span{}, false
+	}
+	return p.noun(units[at].end+m[2], units[at].end+m[3])
+}
+
+func firstWord(s string) string {
+	w, _, _ := strings.Cut(strings.ToLower(s), " ")
+	return w
+}
+
+// fromList shares out a list of names among as many results that follow one
+// another: "mass, protein and flight time were 12.4 ± 1.3, 8.1 ± 1.0 and 24 ± 3,
+// respectively".
+func (p *para) fromList(c *cand, from int) (grammar.Span, bool) {
+	_, to := p.sentence(c.est.Start)
+	if !p.says(c.est.Start, inOrder) {
+		return grammar.Span{}, false
+	}
+	units, at := p.unitsOf(c, from, to)
+	if at < 0 || len(units) < 2 || !p.joined(units) {
+		return grammar.Span{}, false
+	}
+	if _, ok := p.byOrder(units, at, p.mentions(from, to)); ok {
+		return grammar.Span{}, false
+	}
+	verbs := listVerb.FindAllStringIndex(p.s[from:units[0].start], -1)
+	if len(verbs) == 0 {
+		return grammar.Span{}, false
+	}
+	a, b := p.trimWords(from, from+verbs[len(verbs)-1][0])
+	marks := listMarks.FindAllStringIndex(p.s[a:b], -1)
+	if len(marks) != len(units)-1 {
+		return grammar.Span{}, false
+	}
+	x, y := a, b
+	if at > 0 {
+		x = a + marks[at-1][1]
+	}
+	if at < len(marks) {
+		y = a + marks[at][0]
+	}
+	return p.noun(x, y)
+}
+
+var listVerb = pattern.MustCompile(`(?i)\b(?:was|were|averaged|rose|fell|increased|decreased)\b`)
 
 // previous gives the end of the last result before the candidate in its
 // sentence, and its index; -1 where it is the first.
@@ -74,24 +339,6 @@ func (p *para) inherit(r *result.Result, o *cand) {
 	}
 }
 
-// subject is what stands before the verb of a stretch: "Mass was higher in".
-var subject = pattern.MustCompile(`(?i)^(.*?)\s(?:was|were|is|are|rose|fell|(?:significantly |also )?(?:decreased|increased|improved|declined|dropped|differed|changed|reduced)|remained|did|had|has|showed)\b`)
-
-// wholeList takes the names before "protein and flight time" in, which a
-// "respectively" sentence shares out: "mass, protein and flight time".
-func wholeList(stretch string, start int, part string) (string, int) {
-	end := start + len(part)
-	for start > 0 {
-		i := strings.LastIndexAny(strings.TrimRight(stretch[:start], ", "), ",;:()[]")
-		piece := strings.TrimSpace(stretch[i+1 : start])
-		if !strings.HasSuffix(piece, ",") || len(strings.Fields(piece)) > 6 || strings.ContainsAny(piece, "0123456789") {
-			break
-		}
-		start = i + 1 + len(stretch[i+1:start]) - len(strings.TrimLeft(stretch[i+1:start], " "))
-	}
-	return stretch[start:end], start
-}
-
 // holdsSpread reports that words of an interval or spread stand in a stretch.
 func (p *para) holdsSpread(a, b int) bool {
 	from, _ := p.sentence(a)
@@ -101,59 +348,4 @@ func (p *para) holdsSpread(a, b int) bool {
 		}
 	}
 	return false
-}
-
-var comparing = pattern.MustCompile(`(?i)^(?:compared|versus|vs|than|relative to|as opposed)\b`)
-
-// onlyArm reports that a stretch is nothing but an arm's name.
-func (p *para) onlyArm(a, b int) bool {
-	for _, m := range p.mentions(a, b) {
-		if m.start-a < 5 && b-m.end < 3 {
-			return true
-		}
-	}
-	return false
-}
-
-// nounBefore finds the last stretch between two bytes that names something:
-// between marks, without words of statistics, verbs and joining words at its
-// ends.
-func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
-	stretch := p.s[from:to]
-	end := len(stretch)
-	for end > 0 {
-		i := strings.LastIndexAny(stretch[:end], ",;:()[]")
-		part := stretch[i+1 : end]
-		start := i + 1 + len(part) - len(strings.TrimLeft(part, " \u00a0"))
-		part = strings.TrimSpace(part)
-		for {
-			short := leadWords.ReplaceAllString(part, "")
-			start += len(part) - len(short)
-			short = trailWords.ReplaceAllString(short, "")
-			short = strings.TrimRight(short, " =:\u00a0")
-			if short == part {
-				break
-			}
-			part = short
-		}
-		if m := subject.FindStringSubmatch(part); m != nil && len(m[1]) > 2 && !groupWord.MatchString(m[1]) && !emptyWords.MatchString(m[1]) {
-			part = strings.TrimSpace(m[1])
-		}
-		if len(part) > 2 && !emptyWords.MatchString(part) && !strings.ContainsAny(part, "±<=") && !comparing.MatchString(part) && !p.onlyArm(from+start, from+start+len(part)) && !p.holdsSpread(from+start, from+start+len(part)) {
-			if strings.Contains(part, " and ") && inOrder.MatchString(p.s[to:min(len(p.s), to+250)]) {
-				part, start = wholeList(stretch, start, part)
-			}
-			const most = 90
-			for len(part) > most {
-				cut := strings.IndexByte(part, ' ')
-				if cut < 0 {
-					break
-				}
-				part, start = part[cut+1:], start+cut+1
-			}
-			return grammar.Span{Start: from + start, End: from + start + len(part)}, true
-		}
-		end = max(i, 0)
-	}
-	return grammar.Span{}, false
 }
