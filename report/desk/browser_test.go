@@ -322,11 +322,13 @@ func TestSettlingByHand(t *testing.T) {
 	b := tab{t, browser(t)}
 	r, book := disagreement(t)
 	b.open(r.address)
-	b.until("both sides", `document.querySelectorAll('.two section').length === 2 && document.querySelectorAll('.two .differs').length > 0`)
+	b.until("both sides", `document.querySelectorAll('.two thead td').length === 2 && document.querySelectorAll('.two .differs').length > 0`)
 	b.shot("settle")
-	b.run("take without a reason", chromedp.Click(`//button[contains(., 'CD holds')]`))
-	b.until("asked why", `document.activeElement.id === 'settle-why'`)
-	b.run("why", chromedp.KeyEvent("the heading says 22"), chromedp.Click(`//button[contains(., 'CD holds')]`))
+	b.strike("Enter")
+	b.until("no key decides here but the choice", said+`.startsWith('Press 1')`)
+	b.strike("2", "Enter")
+	b.until("asked why", said+`.startsWith('Say why') && document.activeElement.id === 'settle-why'`)
+	b.run("why", chromedp.KeyEvent("the heading says 22"+kb.Enter))
 	b.until("settled", `document.getElementById('progress').textContent.startsWith('1 of 1')`)
 	rows, err := book.Rows()
 	if err != nil {
@@ -364,6 +366,10 @@ func TestNarrowAndDark(t *testing.T) {
 	b.open(r.address)
 	if value[bool](b, `document.documentElement.scrollWidth > 1024`) {
 		t.Error("at 1024 pixels the page scrolls sideways")
+	}
+	if value[bool](b, `document.querySelector('#leaf').scrollWidth > document.querySelector('#leaf').clientWidth ||
+		document.getElementById('view').getBoundingClientRect().right > document.getElementById('side').getBoundingClientRect().left + 1`) {
+		t.Error("at 1024 pixels the page covers what stands beside it")
 	}
 	b.shot("narrow")
 	b.run("dark", scheme("dark"))

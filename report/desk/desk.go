@@ -44,6 +44,7 @@ type Desk struct {
 	papers   map[string]Paper // by the key in addresses
 	pictures *pictures
 	guard    *guard
+	settling []*side // the two checkers whose differences are settled; empty otherwise
 	closed   chan struct{}
 }
 
@@ -63,6 +64,9 @@ func New(opt Options) (*Desk, error) {
 	d := &Desk{opt: opt, root: root, papers: map[string]Paper{}, closed: make(chan struct{})}
 	for _, p := range papers {
 		d.papers[paperKey(p.SHA256)] = Paper{Name: p.Name, File: filepath.Join(root, filepath.FromSlash(p.Name)), SHA256: p.SHA256}
+	}
+	if opt.Settle[0] != "" {
+		d.settling = []*side{{file: opt.Sides[0]}, {file: opt.Sides[1]}}
 	}
 	d.pictures = newPictures(pictureBytes, func(ctx context.Context, key pictureKey) ([]byte, error) {
 		return opt.Papers.Picture(ctx, d.papers[key.sha], key.page, key.width)

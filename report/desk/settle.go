@@ -2,6 +2,7 @@ package desk
 
 import (
 	"net/http"
+	"sync"
 
 	"halfspan/convert/working"
 	"halfspan/report/ledger"
@@ -16,25 +17,53 @@ type sideView struct {
 	Note     string          `json:"note"`
 }
 
-// standing finds a checker's standing decision about a row.
-func standing(file *ledger.Decisions, row ledger.Row) (*ledger.Decision, error) {
-	all, err := file.All(0)
+// side keeps one checker's decisions as far as they were read: a file of
+// decisions only grows, so each is read once.
+type side struct {
+	file *ledger.Decisions
+
+	mu      sync.Mutex
+	last    int64
+	undone  map[int64]bool
+	byPaper map[string][]ledger.Decision // by content hash, in order
+}
+
+func (s *side) refresh() error {
+	fresh, err := s.file.All(s.last)
 	if err != nil {
-		return nil, err
+		return err
 	}
-	undone := map[int64]bool{}
-	for _, d := range all {
+	if s.byPaper == nil {
+		s.byPaper, s.undone = map[string][]ledger.Decision{}, map[int64]bool{}
+	}
+	for _, d := range fresh {
+		s.last = d.Seq
 		if d.Verdict == ledger.Undone {
-			undone[d.Undoes] = true
-		}
-	}
-	for i := len(all) - 1; i >= 0; i-- {
-		d := &all[i]
-		if d.Verdict == ledger.Undone || undone[d.Seq] || d.Seen.Working.Record.PaperSHA256 != row.Working.Record.PaperSHA256 {
+			s.undone[d.Undoes] = true
 			continue
 		}
-		if _, ok := d.Anchor.Meets(row.Working.Anchor); ok {
-			return d, nil
+		sha := d.Seen.Working.Record.PaperSHA256
+		s.byPaper[sha] = append(s.byPaper[sha], d)
+	}
+	return nil
+}
+
+// standing finds the checker's standing decision about a row; nil where there is
+// none.
+func (s *side) standing(row ledger.Row) (*ledger.Decision, error) {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	if err := s.refresh(); err != nil {
+		return nil, err
+	}
+	of := s.byPaper[row.Working.Record.PaperSHA256]
+	for i := len(of) - 1; i >= 0; i-- {
+		if s.undone[of[i].Seq] {
+			continue
+		}
+		if _, ok := of[i].Anchor.Meets(row.Working.Anchor); ok {
+			found := of[i]
+			return &found, nil
 		}
 	}
 	return nil, nil
@@ -42,42 +71,38 @@ func standing(file *ledger.Decisions, row ledger.Row) (*ledger.Decision, error) 
 
 func (d *Desk) sides(row ledger.Row) ([]sideView, error) {
 	var out []sideView
-	for i, file := range d.opt.Sides {
-		side := sideView{Checker: d.opt.Settle[i], Decision: "not decided"}
-		dec, err := standing(file, row)
+	for i, side := range d.settling {
+		view := sideView{Checker: d.opt.Settle[i], Decision: "not decided"}
+		dec, err := side.standing(row)
 		if err != nil {
 			return nil, err
 		}
 		if dec != nil {
-			side.Decision, side.Reason, side.Note = string(dec.Verdict), dec.Reason, dec.Note
-			side.Record = &dec.Decided.Working.Record
+			view.Decision, view.Reason, view.Note = string(dec.Verdict), dec.Reason, dec.Note
+			view.Record = &dec.Decided.Working.Record
 		}
-		out = append(out, side)
+		out = append(out, view)
 	}
 	return out, nil
 }
 
-// toSettle says whether the two checkers differ about a row: in what they
-// decided, or in what they hold the values to be.
+// toSettle says whether the two checkers have both decided about a row and
+// differ: in what they decided, or in what they hold the values to be.
 func (d *Desk) toSettle(row ledger.Row) (bool, error) {
 	sides, err := d.sides(row)
 	if err != nil {
 		return false, err
 	}
-	a, b := sides[0], sides[1]
-	if a.Record == nil && b.Record == nil {
-		return false, nil
+	for _, s := range sides {
+		if s.Record == nil || s.Decision == string(ledger.Queried) {
+			return false, nil
+		}
 	}
-	if a.Record == nil || b.Record == nil {
+	keeps := func(s sideView) bool { return s.Decision != string(ledger.Dropped) }
+	if keeps(sides[0]) != keeps(sides[1]) {
 		return true, nil
 	}
-	keeps := func(s sideView) bool {
-		return s.Decision == string(ledger.Confirmed) || s.Decision == string(ledger.Amended)
-	}
-	if keeps(a) != keeps(b) {
-		return true, nil
-	}
-	return keeps(a) && len(ledger.Differs(*a.Record, *b.Record)) > 0, nil
+	return keeps(sides[0]) && len(ledger.Differs(*sides[0].Record, *sides[1].Record)) > 0, nil
 }
 
 // settle records which of the two decisions holds, who says so and why, as a
@@ -122,11 +147,11 @@ func (d *Desk) settle(r *http.Request) (any, error) {
 }
 
 func (d *Desk) decisionOf(checker string, row ledger.Row) (*ledger.Decision, error) {
-	for i, file := range d.opt.Sides {
+	for i, side := range d.settling {
 		if d.opt.Settle[i] != checker {
 			continue
 		}
-		dec, err := standing(file, row)
+		dec, err := side.standing(row)
 		if err != nil {
 			return nil, err
 		}

@@ -3,6 +3,7 @@ package desk
 import (
 	"net/http"
 	"slices"
+	"strings"
 
 	"halfspan/extract/paper"
 )
@@ -104,10 +105,14 @@ type cellText struct {
 }
 
 type blockView struct {
+	Head  bool         `json:"head,omitempty"`
 	Note  bool         `json:"note,omitempty"`
 	Spans []spanView   `json:"spans,omitempty"` // of a table: its caption
 	Rows  [][]cellText `json:"rows,omitempty"`
 }
+
+// around is how many blocks before and after a result are shown with it.
+const around = 3
 
 // passage shows where a result stands in a paper without pages: its block as
 // read, with the blocks before and after it, and the offsets of the places that
@@ -125,7 +130,11 @@ func (d *Desk) passage(r *http.Request) (any, error) {
 	if err != nil {
 		return nil, err
 	}
-	marks := marksOf(row.Current().Working)
+	marks, err := d.mateMarks(r.URL.Query().Get("mates"))
+	if err != nil {
+		return nil, err
+	}
+	marks = append(marks, marksOf(row.Current().Working)...)
 	offset := row.Working.Anchor.Offset
 	if r.URL.Query().Has("at") { // another place that the result was read from
 		if offset, err = numberOf(r, "at", 0, maxOffset); err != nil {
@@ -137,8 +146,10 @@ func (d *Desk) passage(r *http.Request) (any, error) {
 		return nil, fail(http.StatusNotFound, "this place is not found in the paper any more: scan it again")
 	}
 	blocks, holds := make([]blockView, 0, 3), make([]int, 0, len(marks))
-	for i := max(at-1, 0); i <= min(at+1, len(doc.Blocks)-1); i++ {
-		if b := &doc.Blocks[i]; i == at || b.Kind != paper.TableBlock && b.Kind != paper.Reference && b.Kind != paper.Furniture {
+	for i := max(at-around, 0); i <= min(at+around, len(doc.Blocks)-1); i++ {
+		b := &doc.Blocks[i]
+		heading := b.Kind == paper.Heading && b.Text.S == doc.Blocks[at].Section // stands above already
+		if i == at || !heading && b.Kind != paper.TableBlock && b.Kind != paper.Reference && b.Kind != paper.Furniture {
 			blocks = append(blocks, viewBlock(b, marks)...)
 			for _, m := range marks {
 				if holdsOffset(b, m.offset) {
@@ -148,6 +159,23 @@ func (d *Desk) passage(r *http.Request) (any, error) {
 		}
 	}
 	return map[string]any{"heading": doc.Blocks[at].Section, "page": doc.Blocks[at].Page, "blocks": blocks, "holds": holds}, nil
+}
+
+// mateMarks are the numbers of the other results of a row, by their ids.
+func (d *Desk) mateMarks(ids string) ([]mark, error) {
+	var out []mark
+	for _, id := range strings.Fields(ids) {
+		row, err := d.opt.Book.Row(id)
+		if err != nil {
+			return nil, err
+		}
+		for _, m := range marksOf(row.Current().Working) {
+			if slices.Contains(own, m.field) {
+				out = append(out, mark{m.offset, m.text, "mate"})
+			}
+		}
+	}
+	return out, nil
 }
 
 func blockAt(doc *paper.Document, offset int) int {
@@ -183,7 +211,7 @@ func textsOf(b *paper.Block) []*paper.TextRun {
 
 func viewBlock(b *paper.Block, marks []mark) []blockView {
 	if b.Table == nil {
-		return []blockView{{Spans: spans(&b.Text, marks, "")}}
+		return []blockView{{Head: b.Kind == paper.Heading, Spans: spans(&b.Text, marks, "")}}
 	}
 	t := b.Table
 	label := t.Label

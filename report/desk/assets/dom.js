@@ -29,8 +29,9 @@ export function say(text, bad = false) {
 
 // ask opens the one dialog of the desk and resolves with what build's finish
 // was called with, or null when it was left.
-export function ask(title, build) {
+export function ask(title, build, look = '') {
   const dialog = $('dialog');
+  dialog.className = look;
   const back = document.activeElement;
   $('dialog-title').textContent = title;
   return new Promise((resolve) => {

@@ -1,13 +1,13 @@
 // The forms of the desk: amend, drop, query, add by hand, find, keys.
 import { get, post } from './api.js';
 import { ask, el, replace } from './dom.js';
-import { CHOICES, FIELDS, KEYS, REASONS, SOURCES, inWords, spread } from './words.js';
+import { CHOICES, FIELDS, KEYS, REASONS, SHORT, SOURCES, spread } from './words.js';
 import { workingView } from './row.js';
 
 function control(field, value, oninput) {
   const props = { name: field, id: `f-${field}`, autocomplete: 'off' };
   const node = CHOICES[field]
-    ? el('select', props, CHOICES[field].map((c) => el('option', { value: c, selected: c === (value ?? '') }, inWords(field, { [field]: c }) || 'not said')))
+    ? el('select', props, CHOICES[field].map((c) => el('option', { value: c, selected: c === (value ?? '') }, SHORT[c] ?? (c || 'not said'))))
     : el('input', { ...props, value: value ?? '', inputmode: ['arm', 'arm2', 'time', 'subgroup', 'outcome', 'unit'].includes(field) ? 'text' : 'decimal' });
   node.addEventListener('input', oninput);
   node.addEventListener('focus', () => node.select?.()); // what is typed takes the place of what was read
@@ -72,13 +72,13 @@ export function amendForm(cell, draft, { onsave, onleave, onfocus }) {
 export function typeForm(cell, onsave, onfocus) {
   const two = ['ci'].includes(cell.working.record.given_as) || cell.working.record.lower !== null;
   const fields = [['estimate', 'estimate'], ...(two ? [['lower', 'lower bound'], ['upper', 'upper bound']] : [['given_value', 'printed spread']]), ['n', 'n (leave empty if not stated)']];
-  const form = el('form', { class: 'amend', 'aria-label': 'Type what you see', onsubmit: (e) => { e.preventDefault(); onsave(Object.fromEntries(new FormData(form))); } },
+  const form = el('form', { class: 'amend', 'aria-label': 'Type what you see', onsubmit: (e) => { e.preventDefault(); onsave(Object.fromEntries(new FormData(form))); }, onkeydown: (e) => { if (e.key === 'Escape') e.target.blur(); } },
     fields.map(([f, label]) => {
       const input = el('input', { name: f, id: `t-${f}`, autocomplete: 'off', inputmode: 'decimal' });
       input.addEventListener('focus', () => onfocus(input));
       return [el('label', { for: `t-${f}` }, label), input];
     }), el('button', { type: 'submit', class: 'wide' }, 'Compare with what the program read ', el('kbd', {}, 'Enter')));
-  return [el('h3', {}, 'Type what you see on the page'), form];
+  return [el('h3', {}, 'Type what you see on the page'), form, el('p', { class: 'notes' }, el('kbd', {}, 'Esc'), ' leaves the fields: then the other keys work, such as ↓ or x.')];
 }
 
 export function askReason(title) {
@@ -103,7 +103,8 @@ export function askQuery() {
 }
 
 export function showKeys() {
-  return ask('Keys', () => [el('table', {}, KEYS.map(([k, what]) => el('tr', {}, el('td', {}, el('kbd', {}, k)), el('td', {}, what)))), el('button', {}, 'Close')]);
+  return ask('Keys', () => [el('p', {}, el('button', {}, 'Close ', el('kbd', {}, 'Esc'))),
+    el('dl', { class: 'keys' }, KEYS.map(([k, what]) => el('div', {}, el('dt', {}, el('kbd', {}, k)), el('dd', {}, what))))], 'broad');
 }
 
 export function find(rows) {

@@ -8,6 +8,7 @@ import { Ink, place } from './tags.js';
 import { OWN, TAGS } from './words.js';
 
 const LEGIBLE = 1.3; // pixels a point: print of 8 points can be read
+const LEAST = 1; // the same, for a row that is wider than the view
 const MARGIN = 26; // of the view beside the page
 const SHARP = 1000; // pixels; a picture that is wider takes longer to draw
 const within = (a, b) => a.x > b.x - 1 && a.x1 < b.x1 + 1 && a.y > b.y - 2 && a.y1 < b.y1 + 2;
@@ -16,6 +17,7 @@ export class Leaf {
   constructor() {
     this.view = $('view');
     this.zoom = JSON.parse(sessionStorage.getItem('zoom') ?? '"legible"'); // or "width", or pixels a point
+    this.text = Number(sessionStorage.getItem('text') ?? 16); // pixels, of papers without pages
     this.shown = null; // { paper, page, sheet, node, scale } on the screen
     this.leaves = new Map();
     this.turns = new Map(); // of pages turned by hand
@@ -26,21 +28,22 @@ export class Leaf {
   }
 
   // show shows where a working was read; with place, the page of one of its
-  // sources, which may be another. It ends when it can be seen, or cannot be
-  // drawn, and says whether it is still what is wanted.
-  async show(paper, working, mates, place = null) {
+  // sources, which may be another; blind, the numbers only, for one who is to find
+  // the rest alone. It ends when it can be seen, or cannot be drawn, and says
+  // whether it is still what is wanted.
+  async show(paper, working, mates, { place = null, blind = false } = {}) {
     const turn = (this.last ?? 0) + 1;
     this.last = turn;
     const page = place?.page ?? working.record.page;
     const leaf = page ? await this.#leaf(paper, page) : null;
     if (this.last !== turn) return false; // moved on meanwhile
-    this.now = { paper, working, mates, place };
+    this.now = { paper, working, mates, place, blind };
     if (leaf?.of) await this.#page(leaf, page);
     else await this.#passage(place);
     return this.last === turn;
   }
 
-  again() { if (this.now) return this.show(this.now.paper, this.now.working, this.now.mates, this.now.place); }
+  again() { if (this.now) return this.show(this.now.paper, this.now.working, this.now.mates, this.now); }
 
   #leaf(paper, page) {
     const key = `${paper} ${page}`;
@@ -57,10 +60,20 @@ export class Leaf {
     return `/page?${new URLSearchParams({ paper, page, width: Math.min(Math.max(100 * Math.ceil(wide / 100), 600), 3000) })}`;
   }
 
-  #scale(sheet) {
-    const whole = Math.max(320, this.view.clientWidth - MARGIN) / sheet.w;
+  #scale(sheet, row = 0) {
+    const room = Math.max(320, this.view.clientWidth - MARGIN), whole = room / sheet.w;
     if (this.zoom === 'width') return whole;
-    return this.zoom === 'legible' ? Math.max(whole, LEGIBLE) : this.zoom;
+    if (this.zoom !== 'legible') return this.zoom;
+    // A wide row is shown whole where that leaves it legible.
+    const fits = row > 0 ? (room - 40) / row : Infinity;
+    return Math.max(whole, fits < LEGIBLE && fits >= LEAST ? fits : LEGIBLE);
+  }
+
+  // #rowWidth is how wide the row's numbers with their label stand on the page.
+  #rowWidth(sheet, page) {
+    const { working, mates } = this.now;
+    const boxes = [working, ...mates].flatMap((w) => (w.record.places ?? []).filter((p) => p.page === page && p.box && (OWN.has(p.field) || (p.field === 'outcome' && w.record.table))).map((p) => sheet.box(p.box)));
+    return boxes.length ? Math.max(...boxes.map((b) => b.x1)) - Math.min(...boxes.map((b) => b.x)) : 0;
   }
 
   #sheet(leaf, page) {
@@ -74,7 +87,7 @@ export class Leaf {
 
   #page(leaf, page) {
     const { paper, place: focus } = this.now;
-    const sheet = this.#sheet(leaf, page), scale = this.#scale(sheet);
+    const sheet = this.#sheet(leaf, page), scale = this.#scale(sheet, this.#rowWidth(sheet, page));
     const wide = sheet.drawn.w * scale, high = sheet.drawn.h * scale;
     const over = svg('svg', { viewBox: `0 0 ${sheet.w} ${sheet.h}`, 'aria-hidden': 'true' });
     const node = el('div', { class: 'page' });
@@ -90,9 +103,10 @@ export class Leaf {
     replace(this.view, node);
     [this.view.scrollLeft, this.view.scrollTop] = same ? scroll : [0, 0];
     const main = focus ? boxes.sources.find((s) => s.places.includes(focus)) ?? boxes.result[0] : boxes.result[0];
-    if (main) this.#reveal(main, [...boxes.result, ...boxes.sources], scale);
+    if (main) this.#reveal(main, [[...boxes.result, ...boxes.mates], boxes.sources], scale);
     pictures.seen.then((image) => image && tag(image));
     $('page-number').textContent = `page ${page} of ${leaf.of}${sheet.turn ? ', turned' : ''}`;
+    for (const b of document.querySelectorAll('[data-do=turn], [data-do=zoom-fit]')) b.hidden = false;
     this.#legend();
     if (page < leaf.of) this.prepare(paper, page + 1);
     return pictures.seen;
@@ -143,8 +157,8 @@ export class Leaf {
   // #outline draws where the result and the rest were read on this page, and
   // gives their boxes.
   #outline(over, sheet, page) {
-    const { working, mates } = this.now;
-    const on = (w) => (w.record.places ?? []).filter((p) => p.page === page && p.box).map((p) => ({ ...sheet.box(p.box), place: p }));
+    const { working, mates, blind } = this.now;
+    const on = (w) => (w.record.places ?? []).filter((p) => p.page === page && p.box && !(blind && !OWN.has(p.field))).map((p) => ({ ...sheet.box(p.box), place: p }));
     const own = (w) => lines(on(w).filter((b) => OWN.has(b.place.field)), w.record.table ? 1.5 : Infinity);
     const result = own(working);
     const inside = (b) => result.some((r) => within(b, r));
@@ -156,18 +170,19 @@ export class Leaf {
       if (!holder) sources.push({ ...b, tags: [tag], places: [b.place] });
       else { holder.places.push(b.place); if (!holder.tags.includes(tag)) holder.tags.push(tag); }
     }
+    const others = mates.flatMap(own);
     for (const mate of mates) {
       for (const b of own(mate)) over.append(frame(b, 'at-mate', 1.5));
       for (const b of on(mate)) if (!OWN.has(b.place.field) && !sources.some((s) => within(b, s))) over.append(bracket(b, 'at-source mate'));
     }
     for (const s of sources) over.append(bracket(s, 'at-source'));
     for (const r of result) over.append(frame(r, 'at-result', 2.5));
-    return { result, sources };
+    return { result, sources, mates: others };
   }
 
-  #tag(over, sheet, scale, { result, sources }, image) {
+  #tag(over, sheet, scale, { result, sources, mates }, image) {
     const size = 11 / scale;
-    const taken = [...result, ...sources];
+    const taken = [...result, ...sources, ...mates];
     const tags = sources.map((s) => ({ text: s.tags.join(', '), box: s }));
     try {
       if (this.ink?.of !== image.src || this.ink.turn !== sheet.turn) this.ink = { of: image.src, turn: sheet.turn, on: new Ink(image, sheet.turn) };
@@ -177,42 +192,54 @@ export class Leaf {
     } catch { /* a picture too large to look into: the outlines stand without names */ }
   }
 
-  // #reveal scrolls as little as shows the result with as many of its sources as
-  // the view holds.
-  #reveal(main, all, scale) {
+  // #reveal scrolls as little as shows the result with as much of the rest of its
+  // row, and then of its sources, as the view holds.
+  #reveal(main, [row, sources], scale) {
     const v = this.view, room = { w: v.clientWidth - 60, h: v.clientHeight - 60 };
     let want = main;
     const distance = (b) => Math.abs(b.y - main.y) + Math.abs(b.x - main.x);
-    for (const b of [...all].sort((p, q) => distance(p) - distance(q))) {
+    const nearest = (list) => [...list].sort((p, q) => distance(p) - distance(q));
+    for (const b of [...nearest(row), ...nearest(sources)]) {
       const more = { x: Math.min(want.x, b.x), y: Math.min(want.y, b.y), x1: Math.max(want.x1, b.x1), y1: Math.max(want.y1, b.y1) };
       if ((more.x1 - more.x) * scale <= room.w && (more.y1 - more.y) * scale <= room.h) want = more;
     }
     const node = this.shown.node, top = node.offsetTop, left = node.offsetLeft;
-    const into = (low, high, at, size) => (low < at + 30 ? low - 30 : high > at + size - 30 ? high - size + 30 : at);
-    v.scrollTop = into(top + want.y * scale, top + want.y1 * scale, v.scrollTop, v.clientHeight);
-    v.scrollLeft = into(left + want.x * scale, left + want.x1 * scale, v.scrollLeft, v.clientWidth);
+    const y = top + want.y * scale, y1 = top + want.y1 * scale, x = left + want.x * scale, x1 = left + want.x1 * scale;
+    // Down the page with what stands around it, across no further than needed.
+    if (y < v.scrollTop + 30 || y1 > v.scrollTop + v.clientHeight - 60) v.scrollTop = (y + y1 - v.clientHeight) / 2;
+    if (x < v.scrollLeft + 30) v.scrollLeft = x - 30;
+    else if (x1 > v.scrollLeft + v.clientWidth - 30) v.scrollLeft = x1 - v.clientWidth + 30;
   }
 
   // away lists the places of the working that cannot be seen now: on another page
   // or scrolled out of view.
   away() {
     const places = (this.now?.working.record.places ?? []).filter((p) => !OWN.has(p.field));
-    if (!this.shown?.page) return places.filter((p) => !this.inPassage?.has(p.byte_offset));
-    const v = this.view, { node, scale, sheet, page } = this.shown;
-    return places.filter((p) => {
-      if (!p.box) return false;
-      if (p.page !== page) return true;
-      const b = sheet.box(p.box);
-      const x = node.offsetLeft + b.x * scale - v.scrollLeft, y = node.offsetTop + b.y * scale - v.scrollTop;
-      return x < 0 || y < 0 || x > v.clientWidth || y > v.clientHeight;
-    });
+    if (!this.shown?.page) return places.filter((p) => p.byte_offset !== null && !this.inPassage?.has(p.byte_offset));
+    return places.filter((p) => p.box && !this.#inView(p));
+  }
+
+  #inView(p) {
+    const { node, scale, sheet, page } = this.shown, v = this.view;
+    if (p.page !== page) return false;
+    const b = sheet.box(p.box), left = node.offsetLeft - v.scrollLeft, top = node.offsetTop - v.scrollTop;
+    return left + b.x * scale >= 0 && top + b.y * scale >= 0 && left + b.x1 * scale <= v.clientWidth && top + b.y1 * scale <= v.clientHeight;
+  }
+
+  // sees says whether the numbers of a working are in view. What has no place, as
+  // what was typed by hand, cannot be looked for.
+  sees(working) {
+    const own = (working.record.places ?? []).filter((p) => OWN.has(p.field));
+    if (!this.shown?.page) return own.every((p) => p.byte_offset === null || this.inPassage?.has(p.byte_offset));
+    return own.every((p) => !p.box || this.#inView(p));
   }
 
   // elsewhere shows, one after the other, the places that the result was read
   // from and that are out of view; after the last the result again.
   async elsewhere() {
     if (!this.now) return;
-    const { paper, working, mates } = this.now;
+    const { paper, working, mates, blind } = this.now;
+    if (blind) { say('First type what you see; then all that it rests on is shown.'); return; }
     this.tour ??= this.away();
     const p = this.tour.shift();
     if (!p) {
@@ -222,27 +249,30 @@ export class Leaf {
       say('Back at the result.');
       return;
     }
-    await this.show(paper, working, mates, p);
+    await this.show(paper, working, mates, { place: p });
     say(`${TAGS[p.field] ?? p.field} was read here: “${p.text.slice(0, 80)}”. v goes on.`);
   }
 
   async #passage(focus) {
-    const { paper, working } = this.now;
-    const ask = { paper, id: working.record.id };
+    const { paper, working, mates, blind } = this.now;
+    const ask = { paper, id: working.record.id, mates: mates.map((m) => m.record.id).join(' ') };
     if (focus) ask.at = focus.byte_offset;
     const p = await get('passage', ask);
     this.shown = { paper, page: null };
     this.inPassage = new Set(p.holds);
-    replace(this.view, passageView(p));
+    const passage = passageView(p, blind);
+    passage.style.fontSize = `${this.text}px`;
+    replace(this.view, passage);
+    for (const b of document.querySelectorAll('[data-do=turn], [data-do=zoom-fit]')) b.hidden = true;
     $('page-number').textContent = p.page ? `page ${p.page}` : 'text as read';
     this.#legend();
     this.view.querySelector(focus ? 'mark.src' : 'mark:not(.src)')?.scrollIntoView({ block: 'center' });
   }
 
   #legend() {
-    const away = this.now.place ? 0 : this.away().length;
-    replace($('legend'), el('li', {}, el('span', { class: 'key own' }), 'the result'), el('li', {}, el('span', { class: 'key src' }), 'where the rest was read'),
-      away > 0 && el('li', {}, `${away} elsewhere `, el('kbd', {}, 'v')));
+    const away = this.now.place || this.now.blind ? 0 : this.away().length;
+    replace($('legend'), away > 0 && el('li', {}, `${away} elsewhere `, el('kbd', {}, 'v')),
+      el('li', {}, el('span', { class: 'key own' }), 'the result'), el('li', {}, el('span', { class: 'key src' }), 'what it rests on'));
   }
 
   // turn turns the page a quarter clockwise.
@@ -255,6 +285,11 @@ export class Leaf {
 
   // magnify multiplies the scale, or shows the whole width.
   magnify(by) {
+    if (this.shown && !this.shown.page) {
+      this.text = Math.min(40, Math.max(11, this.text * (by || 1)));
+      sessionStorage.setItem('text', this.text);
+      return this.again();
+    }
     const now = this.shown?.scale ?? LEGIBLE;
     this.zoom = by ? Math.min(6, Math.max(0.4, now * by)) : this.zoom === 'width' ? 'legible' : 'width';
     sessionStorage.setItem('zoom', JSON.stringify(this.zoom));

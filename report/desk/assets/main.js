@@ -6,7 +6,7 @@ import { $, el, replace, say } from './dom.js';
 import { Leaf } from './leaf.js';
 import { addForm, amendForm, askQuery, askReason, find, showKeys, typeForm, wordAt, wordsIn } from './forms.js';
 import { fieldsView, flagsView, rowView, workingView } from './row.js';
-import { settleView } from './settle.js';
+import { choose, settleView } from './settle.js';
 import { printed } from './words.js';
 
 const leaf = new Leaf();
@@ -67,9 +67,10 @@ function draw() {
   drawCell();
   state.shownAt = null;
   $('choices').setAttribute('aria-busy', 'true');
-  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working)).catch((e) => { fail(e); return true; }).then((seen) => {
+  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working), { blind: hidden(cell) }).catch((e) => { fail(e); return true; }).then((seen) => {
     if (!seen) return;
     state.shownAt = performance.now();
+    drawChoices(); // how many cells are in view is known only now
     setTimeout(() => { if (looked()) $('choices').setAttribute('aria-busy', 'false'); }, GLANCE + 1);
   });
   const ahead = visible().slice(state.at + 1, state.at + 4).filter((row) => row.page && (row.page !== state.row.page || row.paper !== state.row.paper));
@@ -86,7 +87,7 @@ function drawCell() {
   if (hidden(cell)) { replace($('cell'), typeForm(cell, (values) => after(() => compare(cell, values)), (input) => { state.field = input; })); $('cell').querySelector('input')?.focus(); return; }
   if (state.form === 'amend') {
     const key = `draft:${cell.working.record.id}`;
-    const draft = { fields: {}, ...JSON.parse(sessionStorage.getItem(key) ?? '{}'), keep: (d) => sessionStorage.setItem(key, JSON.stringify(d)) };
+    const draft = { fields: state.typed.get(cell.working.record.id)?.fields ?? {}, ...JSON.parse(sessionStorage.getItem(key) ?? '{}'), keep: (d) => sessionStorage.setItem(key, JSON.stringify(d)) };
     replace($('cell'), amendForm(cell, draft, { onsave: (d) => after(() => amend(cell, d, key)), onleave: () => { state.form = null; sessionStorage.removeItem(key); drawCell(); $('side').focus(); }, onfocus: (i) => { state.field = i; } }));
     $('cell').querySelector('input')?.focus();
     return;
@@ -94,8 +95,9 @@ function drawCell() {
   const typed = state.typed.get(cell.working.record.id);
   const d = cell.decision;
   replace($('cell'),
+    typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
     flagsView(state.row.cells.filter((c) => c === cell || c.state === 'open'), state.flags),
-    el('h3', {}, 'As read'), fieldsView(cell, state.row), typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
+    el('h3', {}, 'As read'), fieldsView(cell, state.row),
     workingView(cell.working),
     d && el('p', {}, `${d.decision} by ${d.checker}, ${d.decided_at}${d.reason ? `: ${d.reason}` : ''}${d.note ? ` (${d.note})` : ''}`));
   drawChoices();
@@ -105,7 +107,7 @@ function drawCell() {
 function drawChoices() {
   if (state.mode === 'settle' || state.form || hidden(cellNow())) return;
   const go = toConfirm().length;
-  const choices = [['Enter', go > 1 ? `Confirm ${go} cells` : 'Confirm', 'confirm-row'], go > 1 && ['c', 'Only this cell', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], state.row.cells.filter(isOpen).length > 1 && ['X', 'Drop row', 'drop-row'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']];
+  const choices = [go > 0 && ['Enter', go > 1 ? `Confirm ${go} cells` : 'Confirm', 'confirm-row'], go > 1 && ['c', 'Only this', 'confirm'], ['a', 'Amend', 'amend'], ['x', 'Drop', 'drop'], state.row.cells.filter(isOpen).length > 1 && ['X', 'Drop row', 'drop-row'], ['q', 'Query', 'query'], ['u', 'Undo', 'undo']];
   replace($('choices'), choices.filter(Boolean).map(([k, label, what]) => el('button', { type: 'button', 'data-do': what }, label, ' ', el('kbd', {}, k))));
 }
 
@@ -152,12 +154,13 @@ async function decide(cells, decision, more = {}) {
   return true;
 }
 
-// onScreen are the cells of the row whose cards can be seen whole right now.
+// onScreen are the cells of the row whose cards can be seen whole right now, and
+// their numbers on the page.
 function onScreen() {
   const side = $('under').getBoundingClientRect();
   return state.row.cells.filter((c) => {
     const card = $('row').querySelector(`[data-id="${c.working.record.id}"]`)?.getBoundingClientRect();
-    return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1;
+    return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1 && leaf.sees(c.working);
   });
 }
 
@@ -247,9 +250,9 @@ async function amend(cell, d, key) {
 async function compare(cell, values) {
   const r = cell.working.record;
   const { same, differs } = await post('compare', { id: r.id, typed: values });
-  state.typed.set(r.id, { same, text: differs.map((d) => `${d.field}: you ${d.typed || 'nothing'}, the program ${d.read || 'nothing'}`).join('; ') });
+  state.typed.set(r.id, { same, fields: Object.fromEntries(differs.filter((d) => d.typed).map((d) => [d.field, d.typed])), text: differs.map((d) => `${d.field}: you ${d.typed || 'nothing'}, the program ${d.read || 'nothing'}`).join('; ') });
   draw();
-  say(same ? 'The same as the program read.' : 'Not the same: look at the page again.', !same);
+  say(same ? 'The same as the program read.' : 'Not the same: look at the page again. a amends with what you typed.', !same);
 }
 
 async function settle(cell, choice) {
@@ -281,7 +284,7 @@ async function addByHand() {
 leaf.onpick = async (event) => {
   const field = state.field;
   if (!field) return;
-  let text = event.target.closest?.('mark')?.dataset.text ?? '';
+  let text = event.target.closest?.('[data-text]')?.dataset.text ?? '';
   if (leaf.shown?.page) text = await wordAt(leaf.shown.paper, leaf.shown.page, leaf.point(event)).catch(() => '');
   else if (!text) text = String(getSelection());
   const number = /[-−–]?\d[\d,.·]*\d|[-−–]?\d/.exec(text.replace(/[()[\]]/g, ''));
@@ -303,6 +306,7 @@ function after(work) {
   return last;
 }
 function run(name) {
+  if (state.mode === 'settle' && DECISIONS.has(name) && name !== 'undo') { say('Press 1 or 2 for the one that holds, 3 for neither.'); return; }
   if (busy && DECISIONS.has(name)) { say('Not taken: the desk was still busy with the last key. Look, then press again.'); return; }
   after(() => act[name]?.());
 }
@@ -317,6 +321,7 @@ addEventListener('keydown', (e) => {
   }
   if (e.target === $('view') && e.key.startsWith('Arrow')) return;
   if (e.key === 'Enter' && e.target.matches?.('button:not(.cells button), a')) return;
+  if (state.mode === 'settle' && '123'.includes(e.key)) { e.preventDefault(); choose(e.key); return; }
   const name = BY_KEY[e.key];
   if (!name) return;
   e.preventDefault();
@@ -332,6 +337,6 @@ setInterval(async () => {
   if (version && version !== state.version) await load(state.row?.key).catch(fail);
 }, 1500);
 addEventListener('resize', () => { leaf.again()?.catch(fail); if (state.row && !state.form) drawChoices(); });
-$('under').addEventListener('scroll', () => { if (state.row && $('choices').childElementCount) drawChoices(); });
+for (const id of ['under', 'view']) $(id).addEventListener('scroll', () => { if (state.row && state.shownAt) drawChoices(); });
 
 load().catch(fail);

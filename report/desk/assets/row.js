@@ -40,7 +40,7 @@ export function rowView(row, current, choose, hidden) {
     all.length > 0 && !hidden && [el('h3', {}, 'Holds for all cells'), facts(all.map((f) => {
       const value = inWords(f, first.record) || 'not stated';
       const from = new Set(row.cells.map((c) => fromWords(c.working, f, value)));
-      return [FIELDS.find(([g]) => g === f)[1], value, from.size === 1 ? [...from][0] : 'read for each cell'];
+      return [FIELDS.find(([g]) => g === f)[1], value, from.size === 1 ? [...from][0] : ''];
     }))],
     el('ol', { class: 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
   ];
@@ -97,7 +97,7 @@ export function flagsView(cells, meanings) {
   const flags = new Map();
   for (const cell of cells) for (const f of cell.working.flags ?? []) {
     if (!flags.has(f.name)) flags.set(f.name, []);
-    flags.get(f.name).push({ detail: f.detail ?? '', name: who(cell.working.record) });
+    flags.get(f.name).push({ detail: f.detail ?? '', name: cell.working.record.estimate });
   }
   if (!flags.size) return null;
   return [el('h3', {}, 'To look at'), el('ul', { class: 'flags' }, [...flags].map(([name, raised]) => {

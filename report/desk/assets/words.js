@@ -6,7 +6,7 @@ export const STATES = {
 export const REASONS = ['misread', 'wrong arm or time', 'misprint in the paper', 'not needed', 'printed twice', 'other'];
 export const FIELDS = [
   ['estimate', 'estimate'], ['lower', 'lower bound'], ['upper', 'upper bound'], ['given_value', 'printed spread'],
-  ['given_as', 'given as'], ['level', 'level'], ['statistic', 'statistic'], ['n', 'n'], ['n2', 'n of the comparator'],
+  ['given_as', 'given as'], ['level', 'level'], ['statistic', 'statistic'], ['n', 'n'], ['n2', 'comparator n'],
   ['arm', 'arm'], ['arm2', 'comparator'], ['time', 'time'], ['subgroup', 'subgroup'], ['outcome', 'outcome'], ['unit', 'unit'], ['adjusted', 'adjusted'],
 ];
 // OWN are the fields that are the result itself; TAGS name the others where they
@@ -17,6 +17,8 @@ export const TAGS = {
   outcome: 'outcome', statistic: 'kind', adjusted: 'adjusted', p: 'p',
 };
 const GIVEN = { ci: 'a confidence interval', sd: 'an SD', se: 'an SE', iqr: 'quartiles', range: 'a range', unstated: 'not said in the paper' };
+// SHORT are the same where there is little room.
+export const SHORT = { ci: 'interval (CI)', sd: 'SD', se: 'SE', iqr: 'quartiles', range: 'range', unstated: 'not said' };
 export const CHOICES = {
   given_as: ['ci', 'sd', 'se', 'iqr', 'range', 'unstated'],
   statistic: ['mean', 'mean difference', 'mean change', 'median', 'geometric mean', 'ratio', 'proportion', 'risk difference', 'rate', 'coefficient', 'other'],
