@@ -66,13 +66,16 @@ func (f *frame) percentWithCount(e *estimate) bool {
 	ln := &f.lines[e.row]
 	for _, g := range ln.groups {
 		for _, l := range f.lines[g].labels {
-			if percentThenN.MatchString(l.text) {
+			if percentThenN.MatchString(l.text) || numberOf.MatchString(l.text) {
 				return true
 			}
 		}
 	}
 	return false
 }
+
+// numberOf is the label of a group of counts: "No of attempts (%)".
+var numberOf = pattern.MustCompile(`(?i)^\W*(?:no\.?|nr\.?|number|frequency) of\b.*[(\[,;]\s*%\s*[)\]]?\W*$`)
 
 // headsCount reports a heading or label that announces numbers of subjects.
 func (f *frame) headsCount(e *estimate) bool {

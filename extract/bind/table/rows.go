@@ -352,6 +352,9 @@ func (f *frame) allRowSpansData(r int) bool {
 	return true
 }
 
+// headsP is a heading over p values, whatever test it names.
+var headsP = pattern.MustCompile(`(?i)^\W*p[- \x{2010}\x{2011}]?values?\b`)
+
 // realHeading keeps words in the body (yes, none, ns) from being taken for
 // headings: a heading row announces a statistic, an n or a time.
 func (f *frame) realHeading(r int, own []label) bool {
@@ -363,7 +366,7 @@ func (f *frame) realHeading(r int, own []label) bool {
 		}
 		p := f.reads[cell].phrase
 		switch {
-		case p.onlyTerms || p.onlyN || p.terms > 0 || p.armLike:
+		case p.onlyTerms || p.onlyN || p.terms > 0 || p.armLike || headsP.MatchString(cell.Text.S):
 			terms++
 		case f.lex.isTime(fold(cell.Text.S)):
 			times++

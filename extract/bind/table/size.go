@@ -264,17 +264,14 @@ func (f *frame) rowSize(e *estimate, x *context) (size, bool) {
 			}
 		}
 		if cell := f.grid[g][e.col]; cell != nil && f.reads[cell].phrase.onlyN {
-			if s, ok := f.nCell(g, e.col); ok {
+			if s, ok := f.nCell(max(g, f.midN(e)), e.col); ok {
 				return s, true
 			}
 		}
 	}
-	for i := len(f.mid) - 1; i >= 0; i-- {
-		m := f.mid[i]
-		if m.row < e.row && m.cells[e.col].cell != nil && f.reads[m.cells[e.col].cell].phrase.onlyN {
-			if s, ok := f.nCell(m.row, e.col); ok {
-				return s, true
-			}
+	if r := f.midN(e); r >= 0 {
+		if s, ok := f.nCell(r, e.col); ok {
+			return s, true
 		}
 	}
 	if s, ok := f.keptN(e); ok {
@@ -327,6 +324,18 @@ func (f *frame) onlyNs(r int) bool {
 		count++
 	}
 	return count >= 2 && len(f.lines[r].labels) > 0
+}
+
+// midN is the last heading row inside the body, above the estimate, that prints
+// nothing but n's; -1 where there is none.
+func (f *frame) midN(e *estimate) int {
+	for i := len(f.mid) - 1; i >= 0; i-- {
+		m := f.mid[i]
+		if m.row < e.row && m.cells[e.col].cell != nil && f.reads[m.cells[e.col].cell].phrase.onlyN {
+			return m.row
+		}
+	}
+	return -1
 }
 
 // nRow finds the row of n's under exactly these groups: the nearest above, or,
