@@ -31,6 +31,7 @@ func newConvert(s *streams) *cobra.Command {
 		Short: "work out one printed result step by step",
 		Long: `Work out a result as a paper prints it: the steps with the numbers put in, the
 range that the printed digits allow, what it assumes, and other values beside it.
+A ratio, or a difference with both n, may have a p value in place of an interval.
 What the text does not say can be added by the flags. One thing is assumed, and
 said so: an estimate that no word explains is taken for a mean, since whoever
 types it knows what it is; a scan withholds the SD of such a result in a paper.
@@ -41,6 +42,7 @@ groups are taken together.`,
 		Example: `  halfspan convert "12.4 kg (95% CI 11.2 to 13.6), n = 42"
   halfspan convert "median flight time 24 min (IQR 17-31), n = 40"
   halfspan convert "24.6 ± 3.1" --n 30
+  halfspan convert "odds ratio 1.48, p = 0.009"
   halfspan convert --pair "12.4 (SD 1.3), n = 42" "11.1 (SD 1.2), n = 40"
   halfspan convert --pair --p 0.03 "12.4, n = 42" "11.1, n = 40"
   halfspan convert --combine "12.4 (SD 1.3), n = 42" "11.1 (SD 1.2), n = 40"`,
@@ -105,6 +107,7 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 	}
 	for i := range results {
 		forgetLead(&results[i], text)
+		sayKind(&results[i], text)
 		if err := opt.complete(&results[i]); err != nil {
 			return nil, err
 		}
@@ -112,9 +115,7 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 	facts := working.FactsOf(doc)
 	facts.Typed = true
 	assumed := opt.takeAsMeans(results)
-	if n := loneSize(text); n > 0 && len(results) == 1 && results[0].N == 0 {
-		results[0].N, results[0].NFrom = n, result.NBeside
-	}
+	saySizes(results, text)
 	found := working.Work(facts, results)
 	for _, i := range assumed {
 		found[i].Trail.Assumptions = append(found[i].Trail.Assumptions, "the estimate is a mean, which the text does not say: --statistic says what it is")
@@ -138,6 +139,9 @@ func forgetLead(r *result.Result, typed string) {
 	}
 }
 
+// valued are the flags that take the next argument as their value.
+var valued = []string{"--n", "--n2", "--level", "--p", "--statistic", "--as"}
+
 // textArguments keeps typed results that begin with a minus from being taken for
 // flags: a space before them, which the reading drops, tells the two apart.
 func textArguments(args []string) []string {
@@ -146,6 +150,9 @@ func textArguments(args []string) []string {
 	}
 	out := slices.Clone(args)
 	for i, a := range out {
+		if value := i > 1 && slices.Contains(valued, out[i-1]); value {
+			continue // of the flag before it
+		}
 		if len(a) > 1 && a[0] == '-' && (a[1] == '.' || a[1] >= '0' && a[1] <= '9') {
 			out[i] = " " + a
 		}
@@ -169,66 +176,6 @@ func (opt convertOptions) takeAsMeans(results []result.Result) []int {
 		}
 	}
 	return taken
-}
-
-// loneSize is the only sample size of a typed text, wherever it stands; 0 where
-// there is none or more than one.
-func loneSize(text string) int {
-	size := 0
-	for _, it := range grammar.Read(grammar.Text{S: text}).Items {
-		if it.Kind != grammar.KindSampleSize {
-			continue
-		}
-		n, ok := it.Value.Float()
-		if !ok || n < 1 || n > 1e9 || size != 0 {
-			return 0
-		}
-		size = int(n)
-	}
-	return size
-}
-
-// bareSpread reads "12.4 (1.3)", "12.4 (11.2 to 13.6)": an estimate with a bracket
-// that no word explains, which running text does not offer as a result. What the
-// bracket is stays unstated unless --as says it.
-func bareSpread(text string) []result.Result {
-	cell := grammar.ParseCell(grammar.Text{S: text})
-	if len(cell.Values) != 1 || cell.Values[0].Estimate.Value == "" {
-		return nil
-	}
-	v := cell.Values[0]
-	r := result.Result{Snippet: text, Estimate: v.Estimate.Value, GivenAs: result.Unstated, Zone: paper.Results, Unit: v.Unit}
-	for _, part := range v.Parts {
-		switch part.Kind {
-		case grammar.KindNumber, grammar.KindPlusMinus, grammar.KindSpread, grammar.KindInterval:
-			if _, ok := grammar.CommonPower(v.Estimate, part.Value, part.Lower, part.Upper); !ok {
-				return nil // digits of different powers of ten do not belong together
-			}
-		}
-		switch part.Kind {
-		case grammar.KindNumber, grammar.KindPlusMinus:
-			if r.GivenValue == "" {
-				r.GivenValue = part.Value.Value
-			}
-		case grammar.KindInterval:
-			r.Lower, r.Upper = part.Lower.Value, part.Upper.Value
-		case grammar.KindSampleSize:
-			if n, ok := part.Value.Float(); ok && n >= 1 && n < 1e9 {
-				r.N, r.NFrom = int(n), result.NBeside
-			}
-		}
-	}
-	if r.GivenValue == "" && (r.Lower == "" || r.Upper == "") {
-		return nil
-	}
-	if r.GivenValue != "" {
-		r.Statistic = result.Mean
-	}
-	if power := v.Estimate.Power; power != "" {
-		r.Unit = strings.TrimSpace("×" + power + " " + r.Unit)
-		r.Raise("power-of-ten", "the digits are printed with the factor ×"+power+", which stands in the unit")
-	}
-	return []result.Result{r}
 }
 
 // complete puts in what the flags say where the text does not.
@@ -266,6 +213,9 @@ func (opt convertOptions) complete(r *result.Result) error {
 func convertOne(s *streams, text string, opt convertOptions) error {
 	found, err := understand(text, opt)
 	if err != nil {
+		if joint, ok, why := onlyP(text, opt); ok {
+			return showJoint(s, joint, why, opt)
+		}
 		return err
 	}
 	if opt.json {
@@ -300,6 +250,10 @@ func convertGroups(s *streams, texts []string, opt convertOptions) error {
 	} else {
 		joint, err = working.Union(arms)
 	}
+	return showJoint(s, joint, err, opt)
+}
+
+func showJoint(s *streams, joint working.Joint, err error, opt convertOptions) error {
 	if err != nil {
 		return err
 	}

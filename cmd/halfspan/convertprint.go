@@ -129,6 +129,9 @@ func readBack(r working.Record) string {
 		b.WriteString(", " + name + " ")
 	}
 	if r.GivenValue != nil {
+		if r.GivenAs != nil && *r.GivenAs == "iqr" {
+			b.WriteString("as one number ")
+		}
 		b.WriteString(*r.GivenValue)
 	} else {
 		b.WriteString(orNone(r.Lower) + " to " + orNone(r.Upper))
@@ -196,6 +199,8 @@ func alternative(a working.Alternative) string {
 			text += fmt.Sprintf(" (%s to %s)", sixDigits(*a.Low), sixDigits(*a.High))
 		}
 		parts = append(parts, text)
+	} else if a.SE != nil {
+		parts = append(parts, "SE "+sixDigits(*a.SE))
 	}
 	text := a.Name
 	if len(parts) > 0 {
@@ -235,4 +240,5 @@ func (p *printer) joint(j working.Joint) {
 		p.item(label, text)
 	}
 	p.items("assumes", j.Trail.Assumptions)
+	p.items("notes", j.Trail.Notes)
 }

@@ -3,6 +3,8 @@ package working
 import (
 	"fmt"
 	"math"
+	"strconv"
+	"strings"
 
 	"halfspan/convert"
 )
@@ -92,6 +94,11 @@ func Pair(a, b Arm, p string) (Joint, error) {
 		}
 		return j, nil
 	}
+	if p != "" {
+		if err := j.againstP(a, b, convert.Printed{Value: d, Half: slack}, p); err != nil {
+			return Joint{}, err
+		}
+	}
 	return j, j.fromSDs(a, b)
 }
 
@@ -106,16 +113,7 @@ func (j *Joint) fromP(a, b Arm, d convert.Printed, printed string) error {
 	}
 	df := a.N + b.N - 2
 	note := "by a two-sided pooled t test of unadjusted means; too small after adjustment for a covariate"
-	v := JointValue{Name: "pooled SD from p", Low: down(span.Low), Note: note}
-	switch {
-	case math.IsInf(span.High, 1):
-		v.Note = "a lower limit only; " + note
-	case span.Low == 0:
-		v.High, v.Low = up(span.High), nil
-		v.Note = "an upper limit only; " + note
-	default:
-		v.High = up(span.High)
-	}
+	v := limited("pooled SD from p", span, note)
 	if x, err := convert.ReadPrinted(printed); err == nil && p.Exact && x.Value > 0 && x.Value < 1 {
 		t, err := convert.TFromP(x.Value, 2, float64(df))
 		if err != nil {
@@ -201,9 +199,16 @@ func Union(arms []Arm) (Joint, error) {
 	if err != nil {
 		return Joint{}, err
 	}
-	j.step("N = Σn = %d", all.N)
-	j.step("M = Σn·m/N = %s", short(all.Mean))
-	j.step("SD = √((Σ(n−1)·SD² + Σn·(m−M)²)/(N−1)) = %s", short(all.SD))
+	var sizes, sums, within, between []string
+	for _, g := range groups {
+		n, m := strconv.Itoa(g.N), minus(short(g.Mean))
+		sizes, sums = append(sizes, n), append(sums, n+"·"+m)
+		within = append(within, fmt.Sprintf("%d·%s²", g.N-1, short(g.SD)))
+		between = append(between, fmt.Sprintf("%s·(%s − %s)²", n, short(g.Mean), minus(short(all.Mean))))
+	}
+	j.step("N = Σn = %s = %d", strings.Join(sizes, " + "), all.N)
+	j.step("M = Σn·m/N = (%s)/%d = %s", strings.Join(sums, " + "), all.N, short(all.Mean))
+	j.step("SD = √((Σ(n−1)·SD² + Σn·(m−M)²)/(N−1)) = √((%s + %s)/%d) = %s", strings.Join(within, " + "), strings.Join(between, " + "), all.N-1, short(all.SD))
 	j.add("n", float64(all.N), "")
 	j.addRange("mean", all.Mean, mean, "")
 	j.addRange("SD", all.SD, sd, "")

@@ -291,8 +291,11 @@ func (p *parser) sampleSize(i int) int {
 		return i
 	}
 	k := i + 1
-	if p.kind(k) == TokNumber && p.toks[k].Lowered || p.kind(k) == TokWord && p.toks[k].Lowered {
+	switch {
+	case p.kind(k) == TokNumber && p.toks[k].Lowered || p.kind(k) == TokWord && p.toks[k].Lowered:
 		k++
+	case p.kind(k) == TokNumber && p.toks[k].End-p.toks[k].Start == 1 && p.kind(k+1) == TokEquals:
+		k++ // "n1 = 42": the 1 names the arm
 	}
 	link := k
 	for p.kind(k) == TokEquals || p.kind(k) == TokColon || p.kind(k) == TokApprox {
