@@ -122,7 +122,7 @@ func (p *para) groupAhead(k int) bool {
 		switch t := p.r.Tokens[i]; {
 		case groupNoun[t.Value]:
 			return true
-		case t.Kind == grammar.TokNumber, t.Kind == grammar.TokPeriod:
+		case t.Kind == grammar.TokNumber, t.Kind == grammar.TokPeriod, t.Value == "in", t.Value == "of", t.Value == "the", t.Value == "with", t.Value == "by", t.Value == "to":
 			return false
 		}
 	}

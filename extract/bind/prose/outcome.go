@@ -12,8 +12,8 @@ import (
 var (
 	// parting are the marks and verbs that part the pieces of a clause.
 	parting = pattern.MustCompile(`(?i)[,;:()\[\]]|\b(?:was|were|is|are|be|been|rose|fell|had|has|have|show(?:ed|s)|shown|did|does|do|can|could|would|will|may|might|must|differed|remained|averaged|reached|` +
-		`increas(?:ed|es)|decreas(?:ed|es)|improved|declined|dropped|reduc(?:ed|es)|chang(?:ed|es)|reveal(?:ed|s)|demonstrat(?:ed|es)|indicat(?:ed|es)|suggest(?:ed|s)|resulted|led|gave|gained|lost|peaked|ranged|that|which|who|while|whereas|but|although|when)\b`)
-	leadWords = pattern.MustCompile(`(?i)^(?:(?:±|\+/-)\s*(?:SD|SEM?|standard deviation|standard error)|kg|mg|min|the|a|an|and|or|but|in|of|for|on|with|by|to|from|than|at|as|not|no|there|also|both|then|however|overall|similarly|moreover|furthermore|i\.e|we|it|this|these|those|their|its|our|` +
+		`increas(?:ed|es)|decreas(?:ed|es)|improved|declined|dropped|reduc(?:ed|es)|chang(?:ed|es)|reveal(?:ed|s)|demonstrat(?:ed|es)|indicat(?:ed|es)|suggest(?:ed|s)|resulted|led|gave|gained|lost|peaked|ranged|we|there|means?|medians?|averages?|that|which|who|while|whereas|but|although|when)\b`)
+	leadWords = pattern.MustCompile(`(?i)^(?:within|among|during|regarding|concerning|less|more|fewer|worse|better|(?:±|\+/-)\s*(?:SD|SEM?|standard deviation|standard error)|kg|mg|min|the|a|an|and|or|but|in|of|for|on|with|by|to|from|than|at|as|not|no|there|also|both|then|however|overall|similarly|moreover|furthermore|i\.e|we|it|this|these|those|their|its|our|` +
 		`average|mean|median|means|medians|adjusted|unadjusted|respectively|significant|significantly|statistically|slightly|higher|lower|greater|smaller|largest|larger|level of|levels of|value of|values of|terms of|` +
 		`associated with|associated to|related to|described as|accompanied by|experienced by|identified with|found|observed|noted|seen|increas(?:e|es|ing|ed)|decreas(?:e|es|ing|ed)|reduc(?:e|tion|tions|ed)|improv(?:e|ement|ements|ed)|difference|differences|changes?|declines?|rise|fall|drop in|` +
 		`primary|secondary|outcome measure|outcome measures|outcome|outcomes|end ?points?|evidence of|trend|effect on|effects on|amounts? of|similar|comparable|patients|participants|subjects|women|men)\s+`)
@@ -27,13 +27,13 @@ var (
 
 func init() {
 	for _, w := range strings.Fields(`mean means median medians average adjusted unadjusted odds hazard relative risk ratio ratios rate difference differences change changes changed or hr rr md aor rd ci p n sd se sem iqr range
-		confidence interval compared respectively group groups arm arms baseline standard deviation effect size effects year years age range no not significant significantly values value decrease decreased increase increased
+		confidence interval compared respectively group groups arm arms baseline standard deviation effect size effects year years range no not significant significantly values value decrease decreased increase increased
 		reduction reduced treatment trends trend respective observed estimated estimate estimates we it this there similar similarly equal comparable higher lower greater less more fewer larger smaller largest smallest high low
 		analysis analyses multivariate multivariable univariate bivariate regression model models modelled modeled unadjusted crude results result data study trial findings table figure fig post-hoc intention intention-to-treat per-protocol itt treat test tests kaplan-meier curves
 		based principle showing shows both all overall total patients participants subjects women men children people individuals whole sample least square squares ls least-squares received given those who that which what
 		statistic statistics statistical statistically absolute mm cm kg g mg ml min h s days day weeks week months month gm times points point percentage percent units unit b β beta interaction evidence increments
 		associated according about around approximately only even still again first second third also main coefficient slope intercept however furthermore moreover only main described reached reaching value values current previous
-		favour favor experienced reported described seen noted found antagonistic greatest pronounced`) {
+		favour favor receiving given taking randomized randomised assigned allocated male males female females experienced reported described seen noted found antagonistic greatest pronounced`) {
 		saysNothing[w] = true
 	}
 }
@@ -115,7 +115,7 @@ var (
 	adverbial = pattern.MustCompile(`(?i)^\s*(?:(?:also|not|no|only|significantly|statistically|slightly|then|further|more|less|most|least|similarly|much|all|both)\s+)*` +
 		`(?:(?:in|at|during|after|before|with|by|from|to|on|for|among|under|over|until|between|within|than|vs|versus|compared)\b|` +
 		`(?:higher|lower|greater|more|less|longer|shorter|larger|smaller|better|worse|younger|older|heavier|lighter|faster|slower|different|similar|equal|comparable|high|low)\s*(?:$|(?:in|at|with|for|among|than|vs|versus|compared|between|after|from|to|by|and|but)\b)|` +
-		`[\p{L}-]+\s*$|(?:described|administered|used|given|measured|performed|removed|reported|reached|observed|found|noted|seen|recorded|achieved|obtained|calculated|estimated|required|received|treated|included|assessed|evaluated|detected|identified|predicted)\b)`)
+		`(?:the|an?) (?:most|only|main|best|first)\b|[\p{L}-]+(?:\s+[\p{L}-]+)?\s*$|(?:described|administered|used|given|measured|performed|removed|reported|reached|achieved|obtained|calculated|estimated|required|received|treated|included|assessed|evaluated|detected|identified|predicted)\b)`)
 )
 
 // wholeList takes the names before "protein and flight time" in, which a
