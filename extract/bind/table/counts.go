@@ -45,6 +45,9 @@ func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	if v, err := strconv.ParseFloat(sp.value.Value, 64); err == nil && v <= 1 && isWhole(e.value.Value) && f.headsCount(e) {
 		return countSure // headed n (%) with the share as a fraction: 138 (0.97)
 	}
+	if labels := f.lines[e.row].labels; len(labels) > 0 && yesOrNo.MatchString(labels[len(labels)-1].text) && f.sharesNearN(e.row) {
+		return countSure
+	}
 	if g, ok := f.counts[e.row]; ok {
 		return g
 	}
@@ -72,6 +75,24 @@ func (f *frame) percentWithCount(e *estimate) bool {
 		}
 	}
 	return false
+}
+
+// yesOrNo labels a row of those who are or have something.
+var yesOrNo = pattern.MustCompile(`(?i)^\W*(?:yes|no|present|absent)\W*$`)
+
+// sharesNearN reports whole numbers whose percentages are of nearly the column's n:
+// a few values are missing, or a digit is misprinted.
+func (f *frame) sharesNearN(r int) bool {
+	cells, whole := f.pairsOf(r)
+	for _, p := range cells {
+		if p.n == 0 || p.b <= 0 || p.b > 100 {
+			return false
+		}
+		if of := 100 * p.a / p.b; of > 1.02*float64(p.n) || of < 0.85*float64(p.n) {
+			return false
+		}
+	}
+	return whole && len(cells) > 0
 }
 
 // numberOf is the label of a group of counts: "No of attempts (%)".
@@ -134,6 +155,9 @@ func (f *frame) rowEvidence(r int) countGrade {
 	}
 	if known > 0 && fit > 0 && miss <= (known-1)/3 {
 		return countLikely
+	}
+	if fit > 0 && miss > 0 && f.sameDenominator(cells) {
+		return countLikely // some values are missing in one column
 	}
 	if len(cells) > 1 && sum > 0 && (rowPercents(cells, sum) || oneTotal(cells)) {
 		return countLikely
