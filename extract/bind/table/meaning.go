@@ -49,6 +49,11 @@ func (f *frame) statements(e *estimate) []statement {
 		byMarks(l.marks, rk)
 	}
 	byMarks(e.marks, rankCell)
+	if rd := f.reads[e.cell]; rd != nil && hasLetter(e.cell.Text.S) {
+		if s, ok := cellStatement(e.cell, rd.phrase); ok {
+			out = append(out, s)
+		}
+	}
 	ln := &f.lines[e.row]
 	path := f.path(e.row, e.col)
 	if k := len(path) - 1; k >= 0 && f.ownMeaning(path[k].text) {
@@ -78,6 +83,17 @@ func (f *frame) statements(e *estimate) []statement {
 	}
 	out = append(out, f.tableStatements()...)
 	return out
+}
+
+// cellStatement is what the words inside a cell of values say: "Mean: 61 Range: 19–92".
+func cellStatement(cell *paper.Cell, p phrase) (statement, bool) {
+	s := statement{rank: rankCell, text: clean(cell.Text.S), from: "the cell", place: cell.Text.Between(0, len(cell.Text.S))}
+	for _, q := range p.pairs {
+		if q.Statistic != "" && q.StatisticAt.End > q.StatisticAt.Start {
+			s.pairs = append(s.pairs, q)
+		}
+	}
+	return s, len(s.pairs) > 0
 }
 
 // ownMeaning reports a column heading of a comparison that names its spread.
