@@ -4,7 +4,7 @@ STATICCHECK ?= honnef.co/go/tools/cmd/staticcheck@v0.8.2
 FUZZTIME ?= 30s
 DEMO := $(or $(TMPDIR),/tmp)/halfspan-demo
 
-.PHONY: help build demo test short lint bench fuzz cover golden errors truth papers survey clean
+.PHONY: help build demo test short lint bench fuzz cover golden errors truth calibrate papers survey clean
 
 help: ## list the targets
 	@grep -hE '^[a-z]+:.*## ' $(MAKEFILE_LIST) | sed -E 's/:[^#]*## /\t/' | expand -t 10
@@ -57,6 +57,9 @@ errors: ## make the table of the methods' typical errors anew (minutes)
 
 truth: ## compare SDs worked out with those printed in the same row, over real papers (minutes)
 	$(GO) test -run 'TestTruthRows$$' -timeout 30m -v ./cmd/halfspan -truth
+
+calibrate: ## how often readings of each rating are wholly right, over labelled papers (minutes; HALFSPAN_LABELS=FOLDER=LABELS,... adds sets)
+	$(GO) test -run 'TestCalibration$$' -timeout 30m -v ./cmd/halfspan -calibrate | grep -v '^===' | sed 's/^ *[a-z_]*test.go:[0-9]*: //'
 
 papers: ## rebuild the demo papers from their sources
 	testdata/papers/sources/build.sh
