@@ -5,6 +5,7 @@ import (
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 )
 
 // cellReading is what the grammar finds in one cell, read both as values and as
@@ -17,10 +18,15 @@ type cellReading struct {
 
 func readCell(c *paper.Cell) *cellReading {
 	in := textOf(&c.Text)
+	in.DecimalComma = in.DecimalComma || loneComma.MatchString(in.S)
 	rd := &cellReading{cell: grammar.ParseCell(in), phrase: parsePhrase(in)}
 	rd.headingLike = (hasLetter(c.Text.S) || rd.phrase.terms > 0) && !rd.hasSpread() && !rd.cell.Missing
 	return rd
 }
+
+// loneComma is a cell that prints one number with a comma and one or two digits:
+// 41,8 is no list, and no thousands have so few.
+var loneComma = pattern.MustCompile(`^\s*[-−–]?[0-9]{1,3},[0-9]{1,2}\s*%?\s*$`)
 
 // hasSpread reports a value with something that may be a spread beside it.
 func (rd *cellReading) hasSpread() bool {
