@@ -46,6 +46,8 @@ func (f *frame) findArmRows() {
 // axes settles which of rows and columns name the arms.
 func (f *frame) findAxes() {
 	defer f.forgetParts()
+	f.findCrossed()
+	f.forgetParts()
 	f.findArmRows()
 	arms, rows := 0, 0
 	for r := f.head; r < f.tab.Rows; r++ {
@@ -87,9 +89,10 @@ func (f *frame) findAxes() {
 	if f.armRows && stubArm && stubCol == f.stub-1 {
 		f.nameRows(true)
 	}
-	f.outcomeCols = !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows && !f.measuredGroups() || f.unitColumns())
+	f.modelCols = !colArm && !f.armRows && f.modelColumns()
+	f.outcomeCols = f.modelCols || !colArm && !f.armRows && (rows > 0 && 5*f.timeRows() >= 4*rows && !f.measuredGroups() || f.unitColumns()) && !f.measuredHead() && !f.doseColumns()
 	if f.outcomeCols {
-		if 5*f.timeRows() < 4*rows {
+		if 5*f.timeRows() < 4*rows && !f.modelCols {
 			f.nameRows(false)
 			f.armRows = len(f.rowArms) > 0
 		}
@@ -400,6 +403,8 @@ func (f *frame) findArm(r, c int) string {
 	}
 	if len(known) > 0 {
 		names = known
+	} else if m := f.measured(names); len(m) < len(names) {
+		names = without(names, m)
 	}
 	return joinPath(names, ", ")
 }

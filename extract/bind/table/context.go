@@ -18,6 +18,7 @@ type context struct {
 	change                                            bool
 	within                                            bool   // a difference inside one arm, by the layout
 	aside                                             string // what headings beside the arm's say
+	measured                                          string // what such headings say was measured
 	changeAll                                         bool   // the caption says that the table prints changes
 	timeGuess                                         bool   // the time rests on the caption
 	armGuess                                          bool
@@ -76,6 +77,9 @@ func (f *frame) contextOf(e *estimate) *context {
 	f.columnContext(e, x)
 	f.rowContext(e, x)
 	f.captionContext(e, x)
+	if a := f.correctedCaption(); a != "" && x.arm2 == "" {
+		x.contrast, x.arm2 = true, a
+	}
 	if x.contrast {
 		f.contrastArms(e, x)
 	}
@@ -97,6 +101,9 @@ func (f *frame) columnContext(e *estimate, x *context) {
 		}
 		if f.comparesFor(e, l.text) && !f.armBelow(path[i+1:]) {
 			x.contrast = true
+		}
+		if a := f.correctedFor(l.text); a != "" {
+			x.contrast, x.arm2 = true, a
 		}
 		switch p.kind {
 		case partTime:
@@ -126,6 +133,14 @@ func (f *frame) columnContext(e *estimate, x *context) {
 				times[len(times)-1] += " " + p.name
 				continue
 			}
+			if l.cell != nil && f.crossSub[l.cell.Row] || f.outcomeCols && f.subgroupLike(p.name) {
+				x.aside = joinPath([]string{x.aside, f.rawName(l)}, ", ")
+				continue
+			}
+			if t := f.lex.rowTime(p.name); t != "" && len(times) == 0 && f.outcomeCols {
+				times = append(times, t)
+				x.timeAt, x.timeFrom = l, f.columnName(e.col)
+			}
 			if f.armRows || f.outcomeCols {
 				x.outcome = joinPath([]string{x.outcome, p.name}, ", ")
 				x.outcomeAt, x.outcomeFrom = l, f.columnName(e.col)
@@ -149,6 +164,10 @@ func (f *frame) columnContext(e *estimate, x *context) {
 			if p.kind == partOther {
 				others = append(others, name)
 			}
+			if p.measured != "" {
+				x.measured = joinPath([]string{x.measured, p.measured}, ", ")
+				x.outcomeAt, x.outcomeFrom = l, f.columnName(e.col)
+			}
 			arms = append(arms, name)
 			x.armAt = l
 		}
@@ -167,7 +186,14 @@ func (f *frame) columnContext(e *estimate, x *context) {
 	} else if len(others) > 0 && len(others) < len(arms) {
 		// One heading is an arm by name: the others say what it is about.
 		arms = without(arms, others)
-		x.aside = joinPath(append([]string{x.aside}, others...), ", ")
+		for _, o := range others {
+			if len(f.measured([]string{o})) > 0 {
+				x.measured = joinPath([]string{x.measured, o}, ", ")
+				x.outcomeAt, x.outcomeFrom = path[len(path)-1], f.columnName(e.col)
+				continue
+			}
+			x.aside = joinPath([]string{x.aside, o}, ", ")
+		}
 	}
 	if !f.colArms && !x.contrast && len(arms) > 0 {
 		x.outcome = joinPath(append([]string{x.outcome}, arms...), ", ")
@@ -190,7 +216,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 func (f *frame) measured(names []string) []string {
 	var out []string
 	for _, n := range names {
-		if f.lex.unit(n) != "" || strings.HasPrefix(n, "%") {
+		if f.lex.unit(n) != "" && !doseName.MatchString(n) || strings.HasPrefix(n, "%") {
 			out = append(out, n)
 		}
 	}
@@ -238,7 +264,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			if own || !saysNothing(p.name) {
 				outcome = append(outcome, p.name)
 			}
-		case p.kind == partArm && (f.armRows || !f.colArms):
+		case p.kind == partArm && (f.armRows || !f.colArms) && !f.modelCols:
 			if m := armBehind.FindStringSubmatch(p.name); m != nil {
 				outcome = append(outcome, clean(m[1]))
 				x.outcomeAt, x.outcomeFrom = l, "row label"
@@ -297,6 +323,9 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			}
 		}
 		take(l, true)
+	}
+	if x.measured != "" {
+		outcome = append([]string{x.measured}, outcome...)
 	}
 	if len(outcome) > 0 {
 		if x.outcome == "" {

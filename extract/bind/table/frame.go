@@ -29,9 +29,12 @@ type frame struct {
 	colArms     bool               // column headings name the arms
 	rowArms     map[string]bool    // row labels found to be arms by repetition
 	outcomeCols bool               // column headings name outcomes
+	modelCols   bool               // they are the outcomes of models, and rows name predictors
 	outerSub    bool               // group labels name analyses or subgroups of the same outcomes
 	timeRow     map[int]bool       // heading rows that name times
 	armRow      map[int]bool       // heading rows that name arms
+	crossTime   map[int]bool       // heading rows of times over the same arms, whatever their words
+	crossSub    map[int]bool       // heading rows of conditions, with and without, below each outcome
 	armList     []string
 }
 

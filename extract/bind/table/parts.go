@@ -19,9 +19,10 @@ const (
 
 // part is one heading or label with what it is taken for.
 type part struct {
-	l    label
-	name string // without n, statistics and marks
-	kind partKind
+	l        label
+	name     string // without n, statistics and marks
+	measured string // what a heading of an arm says of the outcome
+	kind     partKind
 }
 
 var armWord = pattern.MustCompile(`(?i)\b(?:placebo|controls?|sham|usual care|standard (?:care|treatment|therapy)|intervention|treatment|experimental|vehicle|wait(?:ing)?[- ]?list|arms?|groups?|comparator|active|exposed|unexposed|treated|untreated|cases)\b`)
@@ -57,6 +58,12 @@ func (f *frame) classify(l label) part {
 		p.kind, p.name = partEmpty, ""
 	case isPHeading(low) || isCountHeading(low) && !nPhrase.MatchString(l.text) && !f.overValues(l):
 		p.kind, p.name = partEmpty, ""
+	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.crossTime[l.cell.Row]:
+		p.kind, p.name = partTime, tidyTime(l.text)
+	case f.namesReference(p.name):
+		p.kind = partOther
+	case f.deltaOfArms(p.name):
+		p.kind = partContrast
 	case isContrast(low) || f.lex.compares(l.text) && !f.isArm(low) || f.armMinusArm(p.name):
 		p.kind = partContrast
 	case f.lex.isTime(low):
@@ -65,6 +72,9 @@ func (f *frame) classify(l label) part {
 		p.kind = partOther
 	case f.isArm(low) || nPhrase.MatchString(l.text) && hasArmShape(l.text):
 		p.kind = partArm
+		if l.cell != nil && l.cell.Row < f.head {
+			p.measured, p.name = splitMeasured(p.name)
+		}
 	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.timeRow[l.cell.Row]:
 		p.kind, p.name = partTime, tidyTime(l.text)
 	case l.cell != nil && l.cell.Row < f.head && l.cell.Col >= f.stub && f.armRow[l.cell.Row]:
@@ -217,7 +227,7 @@ func nameOf(s string) string {
 	t = spaceBracket.ReplaceAllString(t, " ")
 	t = clean(t)
 	t = strings.ReplaceAll(strings.ReplaceAll(t, " )", ")"), "( ", "(")
-	t = strings.Trim(t, edge)
+	t = strings.TrimSuffix(strings.Trim(t, edge), " for") // "Mass (kg) for:" over the arms
 	t = unbalanced(dropStatParts(t))
 	if !hasLetter(t) && !hasDigit(t) {
 		return ""
@@ -357,4 +367,6 @@ func comparesArms(p *phrase) bool {
 
 var subgroupName = pattern.MustCompile(`(?i)^(?:all|total|overall|males?|females?|men|women|boys?|girls?|yes|no|low|medium|moderate|high|easy|difficult|insufficient|good|poor|normal|overweight|obese|underweight|single|married|present|absent|combined|[<>≤≥]?\s*\d+(?:\.\d+)?\s*(?:[-–]\s*\d+(?:\.\d+)?)?(?:\s*(?:years?|yrs?|y))?(?:\s*or (?:more|less|older|younger))?)$`)
 
-func (f *frame) subgroupLike(name string) bool { return subgroupName.MatchString(name) }
+func (f *frame) subgroupLike(name string) bool {
+	return subgroupName.MatchString(name) || strings.HasPrefix(fold(name), "all ") && isCountHeading(fold(name))
+}

@@ -166,7 +166,7 @@ func isTimeHeading(low string) bool {
 	if ws := words(low); len(ws) > 2 && (len(ws) < 7 || len(ws) < 14 && ws[0] != "day") && unitOfTime[ws[0]] && (ws[1] == "after" || ws[1] == "before" || ws[1] == "post" || ws[1] == "since" || ws[1] == "from") {
 		return true
 	}
-	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || strings.Trim(changeMark.ReplaceAllString(low, ""), " ,;:*-") == "" && bareChange.MatchString(low) {
+	if ws := words(low); len(ws) <= 3 && phaseWord[ws[0]] || bareChange.MatchString(low) && onlyFiller(changeMark.ReplaceAllString(low, "")) {
 		return true
 	}
 	rest := stripTerms(low)
@@ -190,6 +190,16 @@ func isTimeHeading(low string) bool {
 		}
 	}
 	return left == 0 || left == 1 && len(t) > 0 && len(words(low)) >= 3 && strings.ContainsAny(low, "0123456789")
+}
+
+// onlyFiller reports that no word of s names anything: "Change in score, mean".
+func onlyFiller(s string) bool {
+	for _, w := range words(s) {
+		if !statFiller[w] {
+			return false
+		}
+	}
+	return true
 }
 
 var unitOfTime = map[string]bool{"minutes": true, "minute": true, "min": true, "hours": true, "hour": true, "h": true, "days": true, "day": true, "weeks": true, "week": true, "months": true, "month": true, "years": true, "year": true, "time": true}
