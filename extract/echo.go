@@ -140,6 +140,15 @@ func between(r *result.Result) bool {
 	return false
 }
 
+// ofGroups reports that a result is a value of one group.
+func ofGroups(t *result.Result) bool {
+	switch t.Statistic {
+	case result.Mean, result.MeanChange, result.Median, result.GeometricMean:
+		return true
+	}
+	return false
+}
+
 // shares reports that a word of b stands in a.
 func shares(a, b string) bool {
 	have := map[string]bool{}
@@ -198,7 +207,7 @@ func takeFrom(r, t *result.Result) {
 		drop(r, "outcome")
 		r.Outcome = ""
 	}
-	if t.N > 0 || !between(t) { // the columns of models are no arms
+	if t.N > 0 || ofGroups(t) { // the columns of models are no arms
 		take("arm", &r.Arm, t.Arm)
 		take("arm2", &r.Arm2, t.Arm2)
 	}

@@ -11,7 +11,8 @@ var (
 	inOrder = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
 	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
 	// linked is what may stand between a result and its arm's name behind it.
-	linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+	linked  = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+	inGroup = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under|at)\s+(?:the\s+)?$`)
 	// inBracket is the same for a name in brackets: "12.4 ± 1.3 kg (syrup group)".
 	inBracket = pattern.MustCompile(`^[^0-9;.,()]{0,14}\((?:the )?$`)
 	// toNext joins the two values of one arm: "from 12.4 ± 1.3 to 13.1 ± 1.2".
@@ -222,7 +223,7 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 		previous = max(previous, min(units[at-1].end, u.start))
 	}
 	for _, m := range all {
-		if m.start > u.start && m.end < u.end {
+		if m.start > u.start && m.end < u.end && inGroup.MatchString(p.s[u.start:m.start]) {
 			return m, true // "12.4 ± 1.3 kg in the syrup group (range 10 to 15)"
 		}
 	}

@@ -73,7 +73,7 @@ func sizeTold(r *result.Result) bool {
 	return !r.Evidence.Quoted && !doses.MatchString(r.Outcome)
 }
 
-var doses = pattern.MustCompile(`(?i)\b(?:doses?|consumption) of\b`)
+var doses = pattern.MustCompile(`(?i)\bdoses? of\b`)
 
 func ask(r *result.Result) asked {
 	q := asked{baseline: r.Evidence.Baseline || startTime.MatchString(r.Time), outcome: r.Outcome}

@@ -59,21 +59,48 @@ func (a *arm) sizeOf(q asked) (size, bool) {
 	}
 	for _, list := range [][]size{
 		pick(rows, func(s *size) bool { return alike(s.outcome, q.outcome) && (s.baseline || !q.baseline) }),
-		rows, heads, text, largest(rows),
+		rows, agreeing(heads, text), largest(rows), largest(append(one(heads), one(text)...)),
 	} {
 		if s, ok := agreed(list); ok {
 			return s, true
 		}
 	}
-	return commonest(rows)
+	return size{}, false
 }
 
+// agreeing is one of two lists where they do not contradict each other.
+func agreeing(a, b []size) []size {
+	x, okX := agreed(a)
+	y, okY := agreed(b)
+	switch {
+	case okX && okY && x.n != y.n:
+		return nil
+	case okX:
+		return a
+	case len(a) == 0:
+		return b
+	}
+	return nil
+}
+
+// one is the size that a list agrees on, alone.
+func one(list []size) []size {
+	if s, ok := agreed(list); ok {
+		return []size{s}
+	}
+	return nil
+}
+
+// largest is the largest size alone: of all who were in the arm.
 func largest(list []size) []size {
 	var out []size
 	for _, s := range list {
 		if len(out) == 0 || s.n > out[0].n {
 			out = []size{s}
 		}
+	}
+	if len(out) > 0 && len(list) > 1 {
+		out[0].from += ", the largest that is printed for the arm"
 	}
 	return out
 }
@@ -99,20 +126,6 @@ func agreed(list []size) (size, bool) {
 		return size{}, false
 	}
 	return list[0], true
-}
-
-// commonest gives the size of at least two in three.
-func commonest(list []size) (size, bool) {
-	count := map[int]int{}
-	for i := range list {
-		count[list[i].n]++
-	}
-	for i := range list {
-		if 3*count[list[i].n] >= 2*len(list) {
-			return list[i], true
-		}
-	}
-	return size{}, false
 }
 
 // alike reports that two outcomes share the most of the shorter one's words.

@@ -52,7 +52,10 @@ func (p *para) statistic(c *cand) named {
 // a ± behind it is a heart rate, not a hazard ratio.
 func (p *para) heartRate(c *cand, at grammar.Span) bool {
 	switch c.given {
-	case result.SD, result.SE, result.Unstated:
+	case result.SD, result.SE, result.Unstated, result.CI:
+		if c.given == result.CI && !beats.MatchString(p.s[c.est.End:]) {
+			return false
+		}
 		return !strings.Contains(strings.ToLower(p.s[at.Start:at.End]), "ratio")
 	}
 	return false
@@ -75,6 +78,16 @@ func (p *para) noContrastOf(c *cand, at grammar.Span) bool {
 	}
 	return strings.HasSuffix(p.s[at.Start:at.End], "s") || len(between) > 50 || strings.ContainsAny(between, ",;") ||
 		denied.MatchString(p.s[max(0, at.Start-50):at.Start])
+}
+
+// resultBetween reports that another result stands between two bytes.
+func (p *para) resultBetween(a, b int) bool {
+	for k, last := p.found(a, b); k < last; k++ {
+		if p.cands[k].est.Start >= a {
+			return true
+		}
+	}
+	return false
 }
 
 // termBehind looks for a term just behind the spread: "12.4 ± 1.3 (mean ± SD)",
@@ -126,10 +139,8 @@ func (p *para) combine(a, b named) named {
 var joinedValues = pattern.MustCompile(`(?i)(?:[0-9%)\]]\s*|[0-9]\s*[a-zµμ%/°]{1,8}\s*)[,;]?\s*(?:vs\.?|versus|compared with|compared to)\s*$`)
 
 var (
-	fromTo  = pattern.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
-	byMuch  = pattern.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
-	points  = pattern.MustCompile(`(?i)^\s*(?:percent(?:age)?|%)?[- ]?points?\b`)
-	moreish = pattern.MustCompile(`(?i)^[^).;]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
+	fromTo = pattern.MustCompile(`(?i)(?:\bfrom|\bto|\buntil)\s+(?:[\w-]+\s+){0,2}?\(?$`)
+	byMuch = pattern.MustCompile(`(?i)\b(?:by|of|was|were|averaged)\b[^0-9]{0,25}$`)
 )
 
 // settle decides where no term, or one that is too general, was found.
@@ -137,6 +148,10 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 	before := joinedValues.ReplaceAllString(p.s[max(from, at-110):at], "; ")
 	around := p.s[from:to]
 	percent := c.est.Percent || c.lower.Percent
+	if st, ok := p.contrasted(c, n, from, at, to); ok && c.given != result.IQR && c.given != result.Range {
+		n.statistic = st
+		return n
+	}
 	switch c.given {
 	case result.IQR:
 		if c.quartile || n.statistic != result.Mean {
@@ -160,10 +175,6 @@ func (p *para) settle(c *cand, n named, from, at, to int) named {
 		if percent {
 			n.statistic = result.Proportion
 		}
-		return n
-	}
-	if percent && points.MatchString(p.s[c.est.End:to]) {
-		n.statistic = result.RiskDifference // "rose by 12 percentage points"
 		return n
 	}
 	compared := p.says(at, betterThan) || contrast.MatchString(p.beforeFirst(c, from))
@@ -227,7 +238,17 @@ func sharesBeside(p *para, c *cand, from, to int) bool {
 // change or difference is said right before it.
 func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 	switch n.statistic {
-	case result.Coefficient, result.GeometricMean, result.Median, result.Ratio:
+	case result.Ratio:
+		if n.measure != "" {
+			return n
+		}
+		n.statistic = result.Mean // "a ratio of 0.72 ± 0.08" of the values of one group
+	case result.Median:
+		if !p.resultBetween(n.at.End, c.est.Start) {
+			return n
+		}
+		n.statistic, n.measure = result.Mean, ""
+	case result.Coefficient, result.GeometricMean:
 		return n
 	}
 	clause := before
