@@ -1,6 +1,7 @@
 package desk
 
 import (
+	"context"
 	"net/http"
 	"slices"
 	"strings"
@@ -27,7 +28,8 @@ type leafView struct {
 	Y1     float64 `json:"y1"`
 }
 
-// leaf answers with the geometry of one page.
+// leaf answers with the geometry of one page, and begins to draw the picture that
+// will be asked for next where the browser foresees its width.
 func (d *Desk) leaf(r *http.Request) (any, error) {
 	p, err := d.paperOf(r)
 	if err != nil {
@@ -36,6 +38,11 @@ func (d *Desk) leaf(r *http.Request) (any, error) {
 	number, err := numberOf(r, "page", 1, maxPages)
 	if err != nil {
 		return nil, err
+	}
+	if soon, err := numberOf(r, "soon", minWidth, maxWidth); err == nil {
+		go func(ctx context.Context) {
+			_, _ = d.pictures.get(ctx, pictureKey{paperKey(p.SHA256), number, soon}) // asked for again, it says what failed
+		}(context.WithoutCancel(r.Context()))
 	}
 	page, of, err := d.opt.Papers.Page(r.Context(), p, number)
 	if err != nil {

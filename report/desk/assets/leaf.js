@@ -22,6 +22,7 @@ export class Leaf {
     this.leaves = new Map();
     this.turns = new Map(); // of pages turned by hand
     this.ready = new Set(); // addresses of pictures that were drawn
+    this.soon = ''; // pixels, of the picture that was asked for first last time
     this.onpick = null;
     this.onarea = null;
     this.#drag();
@@ -48,7 +49,7 @@ export class Leaf {
   #leaf(paper, page) {
     const key = `${paper} ${page}`;
     if (!this.leaves.has(key)) {
-      const asked = get('leaf', { paper, page });
+      const asked = get('leaf', { paper, page, soon: this.soon });
       this.leaves.set(key, asked);
       asked.catch(() => this.leaves.delete(key));
     }
@@ -57,7 +58,7 @@ export class Leaf {
 
   // #address is that of a picture of the page, wide pixels of the screen wide.
   #address(paper, page, wide) {
-    return `/page?${new URLSearchParams({ paper, page, width: Math.min(Math.max(100 * Math.ceil(wide / 100), 600), 3000) })}`;
+    return `/page?${new URLSearchParams({ paper, page, width: pixels(wide) })}`;
   }
 
   #scale(sheet, row = 0) {
@@ -124,12 +125,14 @@ export class Leaf {
       const image = el('img', { class: cls, src, alt, draggable: 'false' });
       Object.assign(image.style, { width: `${wide}px`, height: `${high}px`, transform: `translate(-50%, -50%) rotate(${turn}deg)` });
       image.addEventListener('load', () => {
+        if (cls === 'coarse') add(sharp, 'sharp', name);
         this.ready.add(src);
         group.querySelector('.wait')?.remove();
         if (cls === 'sharp') group.querySelector('.coarse')?.remove();
         requestAnimationFrame(() => see(image)); // painted
       });
-      if (cls === 'sharp') {
+      if (cls === 'coarse') image.addEventListener('error', () => add(sharp, 'sharp', name));
+      else {
         image.addEventListener('error', () => {
           say(`Page ${page} could not be drawn. The file may have changed or moved since the scan.`, true);
           see(null);
@@ -137,8 +140,11 @@ export class Leaf {
       }
       group.append(image);
     };
-    if (wide * density > SHARP && !this.ready.has(sharp)) add(this.#address(paper, page, wide * density / 2), 'coarse', '');
-    add(sharp, 'sharp', `Page ${page} of the paper`);
+    const name = `Page ${page} of the paper`;
+    const coarse = wide * density > SHARP && !this.ready.has(sharp);
+    this.soon = pixels(coarse ? wide * density / 2 : wide * density);
+    if (coarse) add(this.#address(paper, page, wide * density / 2), 'coarse', name);
+    else add(sharp, 'sharp', name);
     return group;
   }
 
@@ -338,6 +344,10 @@ export class Leaf {
     });
   }
 }
+
+// pixels rounds a width up, so that few widths of a page are drawn and none is
+// stretched.
+const pixels = (wide) => Math.min(Math.max(100 * Math.ceil(wide / 100), 600), 3000);
 
 // lines joins boxes that stand on one printed line no further apart than gap
 // times their height: what stands between two columns of a table is not theirs.

@@ -5,7 +5,7 @@ import { get, post, Refused } from './api.js';
 import { $, el, replace, say } from './dom.js';
 import { Leaf } from './leaf.js';
 import { addForm, amendForm, askQuery, askReason, find, showKeys, typeForm, wordAt, wordsIn } from './forms.js';
-import { fieldsView, flagsView, rowView, workingView } from './row.js';
+import { fieldsView, flagsView, many, rowView, workingView } from './row.js';
 import { choose, settleView } from './settle.js';
 import { printed } from './words.js';
 
@@ -63,8 +63,9 @@ function draw() {
   history.replaceState(null, '', `#${encodeURIComponent(`${state.row.key}|${r.id}`)}`);
   $('where').textContent = `${state.row.paper_name} — row ${state.at + 1} of ${visible().length}`;
   leaf.tour = null;
-  replace($('row'), rowView(state.row, state.cell, (i) => { state.cell = i; state.form = null; draw(); }, state.mode === 'type-first' && state.row.cells.some(hidden)));
+  replace($('row'), rowView(state.row, state.cell, (i) => { state.cell = i; state.form = null; draw(); }, state.mode === 'type-first' && state.row.cells.some(hidden), flags()));
   drawCell();
+  showCard();
   state.shownAt = null;
   $('choices').setAttribute('aria-busy', 'true');
   leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working), { blind: hidden(cell) }).catch((e) => { fail(e); return true; }).then((seen) => {
@@ -75,6 +76,21 @@ function draw() {
   });
   const ahead = visible().slice(state.at + 1, state.at + 4).filter((row) => row.page && (row.page !== state.row.page || row.paper !== state.row.paper));
   for (const key of new Set(ahead.map((row) => `${row.paper} ${row.page}`))) leaf.prepare(...key.split(' '));
+}
+
+// flags lists what to look at in the cells that a key may confirm now.
+function flags() {
+  if (state.mode === 'settle' || hidden(cellNow())) return null;
+  return flagsView(state.row.cells.filter((c) => c === cellNow() || isOpen(c)), state.flags);
+}
+
+// showCard scrolls to the cell under check, with those after it below; the first
+// is shown with what the row shares.
+function showCard() {
+  const under = $('under'), cards = [...$('row').querySelectorAll('.cells button')];
+  under.scrollTop = 0;
+  const bottom = under.getBoundingClientRect().bottom;
+  if (state.cell > 0 && cards.slice(state.cell).some((c) => c.getBoundingClientRect().bottom > bottom)) cards[state.cell]?.scrollIntoView({ block: 'start' });
 }
 
 function drawCell() {
@@ -96,7 +112,7 @@ function drawCell() {
   const d = cell.decision;
   replace($('cell'),
     typed && el('p', { class: typed.same ? '' : 'differs' }, typed.same ? 'You typed the same.' : `You typed otherwise: ${typed.text}`),
-    flagsView(state.row.cells.filter((c) => c === cell || c.state === 'open'), state.flags),
+    !many(state.row) && flags(),
     el('h3', {}, 'As read'), fieldsView(cell, state.row),
     workingView(cell.working),
     d && el('p', {}, `${d.decision} by ${d.checker}, ${d.decided_at}${d.reason ? `: ${d.reason}` : ''}${d.note ? ` (${d.note})` : ''}`));
@@ -149,7 +165,7 @@ async function decide(cells, decision, more = {}) {
     await load(state.row.key);
     return false;
   }
-  say(`${decision}: ${cells.map((c) => printed({ ...c.working.record, ...more.amended })).join('; ')}`);
+  say(`${decision}: ${cells.length > 4 ? `${cells.length} cells` : cells.map((c) => printed({ ...c.working.record, ...more.amended })).join('; ')}`);
   await advance(cells, decision);
   return true;
 }
@@ -336,7 +352,7 @@ setInterval(async () => {
   const { version } = await get('version').catch(() => ({}));
   if (version && version !== state.version) await load(state.row?.key).catch(fail);
 }, 1500);
-addEventListener('resize', () => { leaf.again()?.catch(fail); if (state.row && !state.form) drawChoices(); });
+addEventListener('resize', () => { showCard(); leaf.again()?.catch(fail); if (state.row && !state.form) drawChoices(); });
 for (const id of ['under', 'view']) $(id).addEventListener('scroll', () => { if (state.row && state.shownAt) drawChoices(); });
 
 load().catch(fail);

@@ -5,6 +5,10 @@ import { FIELDS, OWN, STATES, inWords, printed, spread, who } from './words.js';
 
 // What may hold for all cells of a row, and so is looked at once.
 const SHARED = ['statistic', 'given_as', 'level', 'n', 'n2', 'unit', 'time', 'subgroup', 'adjusted'];
+// MANY cells of one row stand below one another; what to look at then stands
+// before them, where it is seen first.
+const MANY = 6;
+export const many = (row) => row.cells.length > MANY;
 const CONTEXT = FIELDS.filter(([f]) => !OWN.has(f));
 
 const source = (w, field) => (w.record.places ?? []).find((p) => p.field === field);
@@ -29,7 +33,7 @@ export function shared(cells) {
   return SHARED.filter((f) => new Set(cells.map((c) => inWords(f, c.working.record))).size === 1);
 }
 
-export function rowView(row, current, choose, hidden) {
+export function rowView(row, current, choose, hidden, flags) {
   const where = [row.paper_name, row.page && `page ${row.page}`, row.table ?? row.section].filter(Boolean).join(' · ');
   const first = row.cells[0].working, common = shared(row.cells), all = common.filter((f) => inWords(f, first.record) !== '' || f === 'n');
   const outcome = first.record.outcome ?? first.record.heading ?? 'Result in the text';
@@ -42,7 +46,8 @@ export function rowView(row, current, choose, hidden) {
       const from = new Set(row.cells.map((c) => fromWords(c.working, f, value)));
       return [FIELDS.find(([g]) => g === f)[1], value, from.size === 1 ? [...from][0] : ''];
     }))],
-    el('ol', { class: 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
+    many(row) && flags,
+    el('ol', { class: many(row) ? 'cells many' : 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
   ];
 }
 
