@@ -301,6 +301,9 @@ func (p *parser) sampleSize(i int) int {
 	for p.kind(k) == TokEquals || p.kind(k) == TokColon || p.kind(k) == TokApprox {
 		k++
 	}
+	if k == link && i > 0 && p.kind(i-1) == TokOpen && p.kind(k) == TokPeriod && p.kind(k+1) == TokNumber {
+		k, link = k+1, k+1 // "(n. 42)"
+	}
 	n, end, ok := p.signed(k)
 	if !ok || !whole(n.Value) || n.Percent || k == link && p.toks[k].Kind != TokNumber {
 		return i
