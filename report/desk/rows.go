@@ -179,7 +179,7 @@ func (d *Desk) rows(*http.Request) (any, error) {
 func title(row ledger.Row) string {
 	rec := row.Current().Working.Record
 	parts := []string{rec.Paper}
-	for _, s := range []*string{rec.Table, rec.Outcome} {
+	for _, s := range []*string{rec.Table, rec.Outcome, rec.Subgroup, rec.Time} {
 		if s != nil {
 			parts = append(parts, *s)
 		}

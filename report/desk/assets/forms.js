@@ -83,12 +83,14 @@ export function typeForm(cell, onsave, onfocus) {
 
 export function askReason(title) {
   return ask(title, (finish) => {
-    const text = el('input', { 'aria-label': 'in words', placeholder: 'in words; needed for "other"' });
+    const text = el('input', { 'aria-label': 'in words', placeholder: 'other, in words, then Enter' });
     const pick = (reason) => {
       if (reason === 'other' && !text.value.trim()) { text.focus(); return; }
       finish({ reason, note: text.value.trim() });
     };
     const list = el('div', { class: 'list' }, REASONS.map((r, i) => el('button', { type: 'button', onclick: () => pick(r) }, el('kbd', {}, String(i + 1)), ' ', r)));
+    // Words alone are a reason of their own kind.
+    text.addEventListener('keydown', (e) => { if (e.key === 'Enter') { e.preventDefault(); pick('other'); } });
     list.addEventListener('keydown', (e) => { if (REASONS[Number(e.key) - 1]) { e.preventDefault(); pick(REASONS[Number(e.key) - 1]); } });
     return [list, text];
   });
@@ -118,6 +120,15 @@ export function find(rows) {
     };
     input.addEventListener('input', draw);
     input.addEventListener('keydown', (e) => { if (e.key === 'Enter') { e.preventDefault(); list.querySelector('button')?.click(); } });
+    const walk = (e) => {
+      const by = { ArrowDown: 1, ArrowUp: -1 }[e.key];
+      if (!by) return;
+      e.preventDefault();
+      const stops = [input, ...list.querySelectorAll('button')];
+      stops[Math.min(Math.max(stops.indexOf(document.activeElement) + by, 0), stops.length - 1)].focus();
+    };
+    input.addEventListener('keydown', walk);
+    list.addEventListener('keydown', walk);
     draw();
     return [input, list];
   });
@@ -142,11 +153,13 @@ export function addForm(place) {
     const form = el('div', {}, el('label', {}, 'as printed', text),
       input('outcome', 'outcome'), input('arm', 'arm'), input('time', 'time'), input('n', 'n', place.n ?? ''), input('page', 'page', place.page ?? ''),
       el('label', {}, 'where it stands', el('select', { name: 'source' }, SOURCES.map((s) => el('option', {}, s)))), input('note', 'note'), preview, problem,
-      el('button', { type: 'button', onclick: () => {
-        const values = Object.fromEntries([...form.querySelectorAll('[name]')].map((i) => [i.name, i.value.trim()]));
-        if (!values.text) { text.focus(); return; }
-        finish({ ...values, box: place.box ?? null });
-      } }, 'Add it as confirmed by you'));
+      el('button', { type: 'button', onclick: () => add() }, 'Add it as confirmed by you ', el('kbd', {}, 'Enter')));
+    const add = () => {
+      const values = Object.fromEntries([...form.querySelectorAll('[name]')].map((i) => [i.name, i.value.trim()]));
+      if (!values.text) { text.focus(); return; }
+      finish({ ...values, box: place.box ?? null });
+    };
+    form.addEventListener('keydown', (e) => { if (e.key === 'Enter' && e.target.matches('input')) { e.preventDefault(); add(); } });
     return form;
   });
 }

@@ -283,6 +283,7 @@ async function addByHand() {
   const page = leaf.shown?.page ?? '';
   const open = async (place) => {
     const answer = await addForm({ page, ...place });
+    say('');
     if (!answer) return;
     const { id } = await post('add', { paper, ...answer });
     await load();
