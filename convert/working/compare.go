@@ -3,6 +3,7 @@ package working
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"halfspan/convert"
 	"halfspan/extract/result"
@@ -59,11 +60,15 @@ func compareMates(it, m *item) {
 		impliedN(it, m)
 	}
 	switch {
+	case it.res.GivenAs == result.CI && it.res.Level == 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SE:
+		if levels := levelsFitting(it, convert.Range{Low: it.margin.Low / m.val.High(), High: it.margin.High / m.val.Low()}); levels != "" {
+			it.note("SE %s beside it fits an interval of %s", m.res.GivenValue, levels)
+		}
 	case it.res.GivenAs == result.CI && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SE:
-		settleTorZ(it, convert.Range{Low: m.val.Low(), High: m.val.High()}, "SE "+m.res.GivenValue)
+		settleTorZ(it, m, convert.Range{Low: m.val.Low(), High: m.val.High()}, "SE "+m.res.GivenValue)
 	case it.res.GivenAs == result.CI && it.res.Level > 0 && it.lopside == nil && it.margin.High > 0 && m.res.GivenAs == result.SD && it.res.N > 1 && isMean(it):
 		root := math.Sqrt(float64(it.res.N))
-		settleTorZ(it, convert.Range{Low: m.val.Low() / root, High: m.val.High() / root}, "SD "+m.res.GivenValue)
+		settleTorZ(it, m, convert.Range{Low: m.val.Low() / root, High: m.val.High() / root}, "SD "+m.res.GivenValue)
 	case it.res.GivenAs == result.SE && m.res.GivenAs == result.SD && it.val != nil && it.val.Low() > 0 && it.res.N > 1 && isMean(it):
 		n, err := convert.NFromSDAndSE(*m.val, *it.val)
 		if err == nil && !n.Meets(convert.Range{Low: float64(it.res.N), High: float64(it.res.N)}) {
@@ -123,7 +128,7 @@ func isMean(it *item) bool {
 
 // settleTorZ compares margin/SE with t and with z. Where only z fits, the SD is
 // the one by z; where neither fits, the two spreads disagree.
-func settleTorZ(it *item, se convert.Range, printed string) {
+func settleTorZ(it, m *item, se convert.Range, printed string) {
 	z, err := convert.TwoSided(it.res.Level, convert.Normal)
 	if err != nil {
 		return
@@ -142,8 +147,32 @@ func settleTorZ(it *item, se convert.Range, printed string) {
 	case byZ && !byT:
 		it.settled(true, printed)
 	case !byT && !byZ && (it.res.N > 1 || factor.High < z):
-		it.raise("mates-disagree", fmt.Sprintf("the interval and %s would need a factor from %s to %s; t is %s, z is %s", printed, short(factor.Low), short(factor.High), short(t), short(z)))
+		detail := fmt.Sprintf("the interval and %s would need a factor from %s to %s; t is %s, z is %s", printed, short(factor.Low), short(factor.High), short(t), short(z))
+		if levels := levelsFitting(it, factor); levels != "" {
+			detail += "; an interval of " + levels + " would fit"
+		}
+		it.raise("mates-disagree", detail)
+		m.raise("mates-disagree", detail)
 	}
+}
+
+// levelsFitting names the usual levels whose t or z lies within the factor that an
+// interval and the SE beside it need.
+func levelsFitting(it *item, factor convert.Range) string {
+	var fit []string
+	for _, level := range usualLevels {
+		dfs := []float64{convert.Normal}
+		if it.res.N > 1 && isMean(it) {
+			dfs = append(dfs, float64(it.res.N-1))
+		}
+		for _, df := range dfs {
+			if q, err := convert.TwoSided(level, df); err == nil && factor.Holds(q) && level != it.res.Level {
+				fit = append(fit, short(level)+"%")
+				break
+			}
+		}
+	}
+	return strings.Join(fit, " or ")
 }
 
 // settled records that a spread printed beside shows how the interval was made.

@@ -56,6 +56,11 @@ func TestTogether(t *testing.T) {
 			[]string{`made with t`, `"method":"sd-from-ci"`}, []string{`"t-or-z"`}},
 		{"an SE that fits neither", []result.Result{mean("12.40", "11.20", "13.60", 10, 1), spread(result.SE, "12.40", "0.90", "syrup", 10, 0)},
 			[]string{`mates-disagree`}, nil},
+		// 1.20/0.71 = 1.69: t(42) at 90% is 1.68.
+		{"an SE that fits another level", []result.Result{mean("12.40", "11.20", "13.60", 42, 1), spread(result.SE, "12.40", "0.713", "syrup", 42, 0)},
+			[]string{`mates-disagree`, "an interval of 90% would fit"}, nil},
+		{"an SE beside an interval without a level", []result.Result{func() result.Result { r := mean("12.40", "11.20", "13.60", 42, 1); r.Level = 0; return r }(), spread(result.SE, "12.40", "0.594", "syrup", 42, 0)},
+			[]string{"SE 0.594 beside it fits an interval of 95%"}, []string{"90% or"}},
 		{"SD and SE say what n is", []result.Result{spread(result.SE, "12.4", "1.39", "syrup", 0, 1), spread(result.SD, "12.4", "8.6", "syrup", 0, 0)},
 			[]string{"belong to n from 38 to 39", `"use":"withheld"`}, nil},
 		{"SD and interval say what n is", []result.Result{mean("32.1", "30.0", "34.2", 0, 1), spread(result.SD, "32.1", "5.09", "syrup", 0, 0)},
