@@ -255,7 +255,7 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 	if len(distinctArms(all)) > 1 || at > 0 && contrast.MatchString(p.s[previous:u.start]) {
 		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
 	}
-	return all[0], all[0].start < u.start
+	return all[0], all[0].start < u.start || inGroup.MatchString(p.s[u.end:all[0].start])
 }
 
 // justBehind gives the arm named right behind a result: "12.4 kg in the syrup group",

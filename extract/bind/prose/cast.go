@@ -34,6 +34,8 @@ type cast struct {
 	index map[string]int   // the arms by their key
 	names map[string]alias // by their words
 	first map[string][]string
+
+	totals []size // of all arms together, in the tables' columns of totals
 }
 
 // learn collects the arms and their sizes from the results of the tables, from

@@ -3,6 +3,7 @@ package prose
 import (
 	"strings"
 
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -21,6 +22,10 @@ func (f *finder) fromTable(t *result.Result, name string, n int, field string) {
 	if name == "" || n == 0 && !ofGroups(t) {
 		return
 	}
+	if allOfThem.MatchString(name) && n > 3 && t.Subgroup == "" {
+		f.cast.totals = append(f.cast.totals, sizeIn(t, n, field))
+		return
+	}
 	a := f.arm(name, most)
 	if a == nil {
 		return
@@ -31,6 +36,13 @@ func (f *finder) fromTable(t *result.Result, name string, n int, field string) {
 	if n <= 3 || t.Evidence.Quoted {
 		return
 	}
+	a.sizes = append(a.sizes, sizeIn(t, n, field))
+}
+
+// allOfThem names all arms together.
+var allOfThem = pattern.MustCompile(`(?i)^(?:total|overall|all|whole|entire)(?:\s+(?:sample|group|patients|participants|subjects|colonies|population|cohort))?\b[^\p{L}]*$`)
+
+func sizeIn(t *result.Result, n int, field string) size {
 	s := size{n: n, from: "in " + t.Table, table: t.Table, baseline: t.Evidence.Baseline || startTime.MatchString(t.Time),
 		sub: t.Subgroup != "", outcome: t.Outcome}
 	for _, src := range t.Sources {
@@ -38,7 +50,7 @@ func (f *finder) fromTable(t *result.Result, name string, n int, field string) {
 			s.text, s.place = src.Text, src.Place
 		}
 	}
-	a.sizes = append(a.sizes, s)
+	return s
 }
 
 // ofGroups reports that a table's arms are groups for sure although no size is

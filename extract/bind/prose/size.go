@@ -157,7 +157,9 @@ func (p *para) wholeSample(r *result.Result, c *cand) {
 			return
 		case p.says(c.est.Start, groupWord) || p.says(c.est.Start, contrast) || len(p.mentions(from, to)) > 0:
 			return
-		case p.says(c.est.Start, counted) || !sampleOf.MatchString(p.s[from:c.est.Start]) || !ageLike.MatchString(p.s[from:c.est.Start]):
+		case p.says(c.est.Start, counted):
+			return
+		case !ageLike.MatchString(p.s[from:c.est.Start]), !sampleOf.MatchString(p.s[from:c.est.Start]) && !startPart.MatchString(p.block.Section):
 			return
 		}
 	} else if p.says(c.est.Start, counted) {
@@ -167,13 +169,18 @@ func (p *para) wholeSample(r *result.Result, c *cand) {
 		r.N, r.NFrom, r.NKind = n.N, result.NElsewhere, result.NUnclear
 		r.Raise("n-elsewhere", "the sample size is that of all who took part, not stated beside the result")
 		r.Sources = append(r.Sources, result.Source{Field: "n", Place: n.Place, Text: n.Text, From: "the text's count of those who took part"})
+	} else if s, ok := p.f.cast.together(); ok && !p.f.back.Census.Within {
+		p.elsewhere(r, "n", &r.N, s)
 	}
 }
 
 // methodsPart are headings of parts, of an abstract too, that report no results.
 var methodsPart = pattern.MustCompile(`(?i)\b(?:methods?|design|interventions?|exposure|procedures?|background|setting)\b`)
 
-var ageLike = pattern.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline)\b`)
+// startPart are headings of parts that describe the sample at the start.
+var startPart = pattern.MustCompile(`(?i)\b(?:baseline|demographics?|sample|participant|patient|subject) (?:data|characteristics|description)\b|^(?:[0-9.]+\s*)?(?:participants?|subjects|sample|patients)\b|\bcharacteristics (?:of|at)\b`)
+
+var ageLike = pattern.MustCompile(`(?i)\b(?:age|aged|BMI|body mass index|baseline|duration of (?:the )?(?:symptoms|disease|illness|diabetes|pain|disorder|condition)|at (?:inclusion|enrol\w+|entry|study entry))\b`)
 
 // elsewhere fills an n that is stated away from the result.
 func (p *para) elsewhere(r *result.Result, field string, n *int, s size) {

@@ -1,6 +1,7 @@
 package prose
 
 import (
+	"slices"
 	"strings"
 
 	"halfspan/extract/grammar"
@@ -59,13 +60,23 @@ func (a *arm) sizeOf(q asked) (size, bool) {
 	}
 	for _, list := range [][]size{
 		pick(rows, func(s *size) bool { return alike(s.outcome, q.outcome) && (s.baseline || !q.baseline) }),
-		rows, agreeing(heads, text), largest(rows), largest(append(one(heads), one(text)...)),
+		rows, agreeing(heads, text), largest(usual(rows)), largest(append(one(heads), one(text)...)),
 	} {
 		if s, ok := agreed(list); ok {
 			return s, true
 		}
 	}
 	return size{}, false
+}
+
+// usual are the sizes that at least a quarter of the list has: others are of
+// parts of an arm, or of more than one.
+func usual(list []size) []size {
+	count := map[int]int{}
+	for i := range list {
+		count[list[i].n]++
+	}
+	return pick(list, func(s *size) bool { return 4*count[s.n] >= len(list) })
 }
 
 // agreeing is one of two lists where they do not contradict each other.
@@ -212,4 +223,45 @@ func holds(a, b []string) bool {
 		}
 	}
 	return true
+}
+
+// together is the size of all arms at the start: the tables' totals, else the sum
+// of the arms of one table of the start, where every such table gives the same.
+func (c *cast) together() (size, bool) {
+	if len(c.totals) > 0 {
+		if first := pick(c.totals, func(s *size) bool { return s.baseline }); len(first) > 0 {
+			return agreed(first)
+		}
+		return agreed(c.totals)
+	}
+	sums := map[string]size{}
+	parts := map[string][]int{}
+	var order []string
+	for i := range c.arms {
+		here := map[string][]size{}
+		for _, s := range c.arms[i].sizes {
+			if s.table == "" || !s.baseline || s.sub {
+				continue
+			}
+			if here[s.table] == nil && parts[s.table] == nil {
+				order = append(order, s.table)
+			}
+			here[s.table] = append(here[s.table], s)
+		}
+		for _, table := range order {
+			if s, ok := agreed(usual(here[table])); ok {
+				s.n += sums[table].n
+				s.from = "in " + table + ", as the sum of its arms"
+				parts[table] = append(parts[table], s.n-sums[table].n)
+				sums[table] = s
+			}
+		}
+	}
+	var all []size
+	for _, table := range order {
+		if n := parts[table]; len(n) > 1 && 2*slices.Max(n) != sums[table].n {
+			all = append(all, sums[table])
+		}
+	}
+	return agreed(all)
 }
