@@ -192,7 +192,7 @@ func TestSources(t *testing.T) {
 	}
 	r := found[0]
 	want := map[string]string{"estimate": "1.2", "lower": "−1.9", "upper": "−0.5", "given_as": "95% CI", "level": "95", "n": "n = 42",
-		"unit": "kg", "p": "p = 0.003", "arm": "syrup group", "time": "at week 6"}
+		"unit": "kg", "p": "p = 0.003", "arm": "syrup group", "time": "week 6"}
 	for field, text := range want {
 		ok := false
 		for _, s := range r.Sources {
