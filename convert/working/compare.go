@@ -217,12 +217,29 @@ func compareSpreads(a, b *item) {
 	if a.val.Value > b.val.Value {
 		small, large = b, a
 	}
+	if varyAlike(small, large) {
+		return
+	}
 	detail := fmt.Sprintf("%s beside %s in one row differ by about √n", small.res.GivenValue, large.res.GivenValue)
 	if kind == result.SD {
 		small.raise("se-as-sd", detail)
 		return
 	}
 	large.raise("sd-as-se", detail) // holdBacks takes the SD back
+}
+
+// varyAlike reports two arms whose means differ so much that their spreads may differ
+// only because both vary by a like share of the mean, as counts and concentrations do.
+func varyAlike(small, large *item) bool {
+	if small.est == nil || large.est == nil || small.est.Value <= 0 || large.est.Value <= 0 {
+		return false
+	}
+	cvSmall, cvLarge := small.val.Value/small.est.Value, large.val.Value/large.est.Value
+	if cvSmall >= cvLarge {
+		return true
+	}
+	ratio, err := convert.SEAsSD(cvSmall, small.res.N, cvLarge, large.res.N)
+	return err != nil || ratio <= 3
 }
 
 // testedLevel compares the interval of a difference with its p value.

@@ -187,6 +187,8 @@ func TestTogether(t *testing.T) {
 			change.Statistic, change.Adjusted = result.MeanChange, "unclear"
 			return []result.Result{change, difference}
 		}(), []string{`"use":"withheld"`, "adjusted-unclear"}, nil},
+		{"a small mean has a small SD", []result.Result{spread(result.SD, "0.18", "0.56", "syrup", 74), spread(result.SD, "1.62", "4.60", "water", 69)}, nil, []string{"se-as-sd"}},
+		{"a small SD of the same mean", []result.Result{spread(result.SD, "1.58", "0.56", "syrup", 74), spread(result.SD, "1.62", "4.60", "water", 69)}, []string{"se-as-sd"}, nil},
 		{"an SE that must be an SD", []result.Result{spread(result.SE, "0.36", "0.40", "syrup", 178)},
 			[]string{`sd-as-se`, `"use":"withheld"`, `"sd":null`}, nil},
 	}
