@@ -44,12 +44,15 @@ func TestPagesAreTurnedUpright(t *testing.T) {
 		};
 		for (const leaf of leafs) for (const runs of [0, 90, 180, 270]) {
 			const label = text('Colony mass', -200, -140, runs), numbers = [text('11.8', 0, 20, runs), text('(2.1)', 24, 44, runs)];
-			const s = new Sheet(leaf, uprightTurn(leaf, numbers, label));
+			const s = new Sheet(leaf, uprightTurn(leaf, numbers, [], label));
 			const [l, e] = [s.box(label.box), s.box(numbers[0].box)];
 			if (e.x1 - e.x < e.y1 - e.y) faults.push('print running by ' + runs + ' stays sideways on a page rotated by ' + leaf.rotate);
 			if ((leaf.rotate + runs) % 180 === 90 && l.x > e.x) faults.push('print running by ' + runs + ' is upside down on a page rotated by ' + leaf.rotate);
 		}
-		if (uprightTurn(leafs[0], [text('5', 0, 4, 90)], null) !== 0) faults.push('one digit says nothing of how the print runs');
+		// Numbers too short to tell: the label does.
+		const label = text('Colony mass', -200, -140, 270);
+		if (uprightTurn(leafs[0], [text('16', 0, 8, 270), text('38', 60, 68, 270)], [label], label) !== 270) faults.push('a row of short numbers stays sideways');
+		if (uprightTurn(leafs[0], [text('5', 0, 4, 90)]) !== 0) faults.push('one digit says nothing of how the print runs');
 		return faults;`) {
 		t.Error(f)
 	}

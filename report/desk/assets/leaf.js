@@ -78,12 +78,13 @@ export class Leaf {
   }
 
   #sheet(leaf, page) {
-    const { paper, working } = this.now;
-    const here = (working.record.places ?? []).filter((p) => p.page === page && p.box);
-    const own = here.filter((p) => OWN.has(p.field));
+    const { paper, working, mates } = this.now;
+    const here = (w) => (w.record.places ?? []).filter((p) => p.page === page && p.box);
+    const own = (w) => here(w).filter((p) => OWN.has(p.field));
+    const others = here(working).filter((p) => !OWN.has(p.field));
     const byHand = this.turns.get(`${paper} ${page}`);
-    const before = own.length ? here.find((p) => p.field === 'outcome') : null;
-    return new Sheet(leaf, byHand ?? uprightTurn(leaf, own.length ? own : here, before));
+    const before = own(working).length ? others.find((p) => p.field === 'outcome') : null;
+    return new Sheet(leaf, byHand ?? uprightTurn(leaf, [working, ...mates].flatMap(own), others, before));
   }
 
   #page(leaf, page) {

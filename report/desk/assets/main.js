@@ -81,7 +81,7 @@ function draw() {
 // flags lists what to look at in the cells that a key may confirm now.
 function flags() {
   if (state.mode === 'settle' || hidden(cellNow())) return null;
-  return flagsView(state.row.cells.filter((c) => c === cellNow() || isOpen(c)), state.flags);
+  return flagsView(state.row.cells.filter((c) => c === cellNow() || isOpen(c)), cellNow(), state.flags);
 }
 
 // showCard scrolls to the cell under check, with those after it below; the first

@@ -1,7 +1,7 @@
 // Draws the row under check: what its cells share, the cells, and the cell in
 // focus with its fields, its working and its flags.
 import { el } from './dom.js';
-import { FIELDS, OWN, STATES, inWords, printed, spread, who } from './words.js';
+import { FIELDS, OWN, STATES, inWords, minus, printed, spread, who } from './words.js';
 
 // What may hold for all cells of a row, and so is looked at once.
 const SHARED = ['statistic', 'given_as', 'level', 'n', 'n2', 'unit', 'time', 'subgroup', 'adjusted'];
@@ -36,7 +36,7 @@ export function shared(cells) {
 export function rowView(row, current, choose, hidden, flags) {
   const where = [row.paper_name, row.page && `page ${row.page}`, row.table ?? row.section].filter(Boolean).join(' · ');
   const first = row.cells[0].working, common = shared(row.cells), all = common.filter((f) => inWords(f, first.record) !== '' || f === 'n');
-  const outcome = first.record.outcome ?? first.record.heading ?? 'Result in the text';
+  const outcome = outcomesOf(row.cells);
   const when = ['subgroup', 'time'].filter((f) => common.includes(f) && first.record[f] && !outcome.includes(first.record[f])).map((f) => first.record[f]);
   return [
     el('p', { class: 'where' }, where),
@@ -47,16 +47,36 @@ export function rowView(row, current, choose, hidden, flags) {
       return [FIELDS.find(([g]) => g === f)[1], value, from.size === 1 ? [...from][0] : ''];
     }))],
     many(row) && flags,
-    el('ol', { class: many(row) ? 'cells many' : 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden)))),
+    el('ol', { class: many(row) ? 'cells many' : 'cells', 'aria-label': 'Cells of this row' }, row.cells.map((cell, i) => el('li', {}, cellCard(cell, i === current, () => choose(i), hidden, nameOf(cell, row.cells))))),
   ];
 }
 
-function cellCard(cell, current, choose, hidden) {
+// outcomesOf names what a row is about: what its cells' outcomes begin with, where
+// its columns are outcomes.
+function outcomesOf(cells) {
+  const all = cells.map((c) => c.working.record.outcome ?? '');
+  if (!all[0] && cells.length === 1) return cells[0].working.record.heading ?? 'Result in the text';
+  const words = all.map((o) => o.split(' '));
+  let n = 0;
+  while (n < words[0].length && words.every((w) => w[n] === words[0][n])) n++;
+  return words[0].slice(0, n).join(' ').replace(/[\s,;:·–-]+$/, '') || (new Set(all).size > 1 ? 'Several outcomes' : 'Outcome not read');
+}
+
+// nameOf tells a cell from the others of its row.
+function nameOf(cell, cells) {
+  const r = cell.working.record, name = who(r);
+  if (!r.outcome || cells.every((c) => c.working.record.outcome === r.outcome)) return name;
+  const common = outcomesOf(cells);
+  const own = r.outcome.startsWith(common) ? r.outcome.slice(common.length).replace(/^[\s,;:·–-]+/, '') : r.outcome;
+  return [own, name].filter(Boolean).join(' · ');
+}
+
+function cellCard(cell, current, choose, hidden, name) {
   const r = cell.working.record;
   const veil = hidden && cell.state === 'open';
   const more = [r.use !== 'printed' && spread(r), r.n && `n ${r.n}${r.n2 ? ` and ${r.n2}` : ''}`].filter(Boolean).join(', ');
   return el('button', { type: 'button', 'data-id': r.id, 'aria-current': current ? 'true' : 'false', onclick: choose },
-    el('span', { class: 'who' }, who(r)),
+    el('span', { class: 'who' }, name),
     el('span', { class: 'print' }, veil ? 'see the page' : [printed(r), r.unit && r.unit !== '%' && el('span', { class: 'unit' }, ` ${r.unit}`)]),
     el('span', { class: 'sd' }, veil ? '' : more),
     el('span', { class: 'state' }, el('b', {}, STATES[cell.state] ?? cell.state), ` · reading ${r.reading}`));
@@ -97,21 +117,32 @@ function notes(w) {
 }
 
 // flagsView lists what to look at in the whole row, since one key confirms it:
-// each flag once, with the cells that have it where not all do.
-export function flagsView(cells, meanings) {
+// each flag once, with the cells that have it where not all do, and with the
+// particulars of the current one.
+export function flagsView(cells, current, meanings) {
   const flags = new Map();
   for (const cell of cells) for (const f of cell.working.flags ?? []) {
     if (!flags.has(f.name)) flags.set(f.name, []);
-    flags.get(f.name).push({ detail: f.detail ?? '', name: cell.working.record.estimate });
+    flags.get(f.name).push({ cell, detail: f.detail ?? '' });
   }
   if (!flags.size) return null;
   return [el('h3', {}, 'To look at'), el('ul', { class: 'flags' }, [...flags].map(([name, raised]) => {
     const { meaning, todo } = meanings[name] ?? { meaning: name };
-    const details = new Set(raised.map((f) => particular(meaning, f.detail)));
-    const all = raised.length === cells.length && details.size === 1;
-    const said = all ? [...details][0] : raised.map((f) => [f.name, particular(meaning, f.detail)].filter(Boolean).join(': ')).join('; ');
+    const said = whose(raised.map((f) => ({ ...f, detail: particular(meaning, f.detail) })), cells.length, current);
     return el('li', {}, meaning, said && ` (${said})`, todo && el('span', { class: 'todo' }, ` → ${todo}`));
   }))];
+}
+
+// whose says which of all cells a flag concerns, by their estimates, and its
+// particulars: all where there are few, else those of the current cell.
+function whose(raised, all, current) {
+  const name = (f) => minus(f.cell.working.record.estimate);
+  const details = new Set(raised.map((f) => f.detail));
+  if (details.size === 1) return [raised.length < all && raised.map(name).join('; '), [...details][0]].filter(Boolean).join(': ');
+  const full = (f) => [name(f), f.detail].filter(Boolean).join(': ');
+  if (raised.length <= 2) return raised.map(full).join('; ');
+  const here = raised.find((f) => f.cell === current) ?? raised[0];
+  return `${full(here)}; also ${raised.filter((f) => f !== here).map(name).join('; ')}`;
 }
 
 // particular is what a flag's detail adds to its meaning: nothing where it says

@@ -43,11 +43,12 @@ export class Sheet {
 
 // uprightTurn gives the turn that makes a result read level which is printed
 // sideways on the page, as wide tables are; 0 for one that reads level already.
-// numbers are the result's own places, before is a place that stands before them
-// in reading order, such as the row's label.
-export function uprightTurn(leaf, numbers, before) {
-  const long = numbers.filter((p) => p.text.length >= 3);
-  if (!long.length) return 0;
+// numbers are the places of the row's numbers, the result's own first; others are
+// its label and headings, which tell where the numbers are too short to; before is
+// a place that stands before the numbers in reading order, the row's label.
+export function uprightTurn(leaf, numbers, others = [], before = null) {
+  const long = [numbers, others].map((list) => list.filter((p) => p.text.length >= 3)).find((list) => list.length);
+  if (!long) return 0;
   const tall = long.filter(({ box: [x0, y0, x1, y1] }) => y1 - y0 > x1 - x0);
   const upwards = 2 * tall.length > long.length; // along y of the unrotated page
   if (upwards === (leaf.rotate % 180 !== 0)) return 0;
@@ -57,7 +58,7 @@ export function uprightTurn(leaf, numbers, before) {
   // Which way the line runs: from the label to the numbers, from the estimate to
   // its spread. Numbers below one another say nothing.
   let runs = 0;
-  const order = [before, ...long].filter(Boolean);
+  const order = [before, ...numbers].filter(Boolean);
   for (let i = 1; i < order.length; i++) {
     const step = middle(order[i]) - middle(order[i - 1]);
     if (Math.abs(step) > 0.6 * length(order[i])) runs += Math.sign(step);

@@ -44,7 +44,7 @@ export function inWords(field, r) {
   }
 }
 
-const minus = (v) => String(v ?? '').replace(/^-/, '−');
+export const minus = (v) => String(v ?? '').replace(/^-/, '−');
 
 // printed writes a record's result as the paper prints it.
 export function printed(r) {
