@@ -9,7 +9,7 @@ import (
 
 var (
 	inOrder = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
-	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|and|compared (?:with|to)|,|;|to)\s*\(?$`)
+	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|,?\s*and|&|compared (?:with|to)|,|;|to)\s*\(?$`)
 	// linked is what may stand between a result and its arm's name behind it.
 	linked  = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
 	inGroup = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under|at)\s+(?:the\s+)?$`)

@@ -274,27 +274,39 @@ func (p *para) fromList(c *cand, from int) (grammar.Span, bool) {
 		return grammar.Span{}, false
 	}
 	units, at := p.unitsOf(c, from, to)
-	if at < 0 || len(units) < 2 || !p.joined(units) {
+	if at < 0 {
 		return grammar.Span{}, false
 	}
-	if _, ok := p.byOrder(units, at, p.mentions(from, to)); ok {
+	first, last := at, at+1
+	for first > 0 && p.joined(units[first-1:first+1]) {
+		first--
+	}
+	for last < len(units) && p.joined(units[last-1:last+1]) {
+		last++
+	}
+	if first > 0 {
+		from = units[first-1].end
+	}
+	run := units[first:last]
+	if _, ok := p.byOrder(run, at-first, p.mentions(p.sentence(c.est.Start))); ok || len(run) < 2 {
 		return grammar.Span{}, false
 	}
-	verbs := listVerb.FindAllStringIndex(p.s[from:units[0].start], -1)
+	verbs := listVerb.FindAllStringIndex(p.s[from:run[0].start], -1)
 	if len(verbs) == 0 {
 		return grammar.Span{}, false
 	}
 	a, b := p.trimWords(from, from+verbs[len(verbs)-1][0])
 	marks := listMarks.FindAllStringIndex(p.s[a:b], -1)
-	if len(marks) != len(units)-1 {
+	spare := len(marks) - (len(run) - 1) // marks before the list
+	if spare < 0 {
 		return grammar.Span{}, false
 	}
 	x, y := a, b
-	if at > 0 {
-		x = a + marks[at-1][1]
+	if k := spare + at - first - 1; k >= 0 {
+		x = a + marks[k][1]
 	}
-	if at < len(marks) {
-		y = a + marks[at][0]
+	if k := spare + at - first; k < len(marks) {
+		y = a + marks[k][0]
 	}
 	return p.noun(x, y)
 }
