@@ -39,6 +39,7 @@ func Flags() []FlagInfo {
 		{"n-kind-unclear", None, "whether n counts those analysed in this row is not said", "look for missing values; fewer analysed means a larger SE for the same SD"},
 		{"n-randomised", None, "n counts those randomised; fewer may have been analysed", "look for the number analysed in the flow of the study"},
 		{"n-total", AsksLook, "the n may be that of several arms together", "look for the n of this arm; the SD is withheld"},
+		{"n-from-counts", AsksLook, "n is the denominator that the column prints with its counts", "look for missing values: this row may have fewer"},
 		{"n-conflict", MakesIt, "two places give different n", "decide which one counts for this row"},
 		{"small-n", None, "n is below 5", "an SD from so few values is hardly known"},
 		// What the spread is.

@@ -95,6 +95,9 @@ func (b *binder) setN(r *result.Result, s size, f *frame, x *context) {
 	if s.from == result.NElsewhere {
 		r.Raise(FlagNElsewhere, "read from "+s.words)
 	}
+	if s.counts {
+		r.Raise(FlagNCounts, s.words)
+	}
 	if s.total && x.contrast {
 		r.Raise(FlagNTotal, "the n may be that of both arms together")
 	}

@@ -18,6 +18,7 @@ const (
 	FlagNElsewhere     = "n-elsewhere"         // the n was read in another table or the text, by the arm's name
 	FlagNKind          = "n-kind-unclear"      // a heading's n at baseline serves a later time point
 	FlagNConflict      = "n-conflict"          // two places give different n's
+	FlagNCounts        = "n-from-counts"       // the n is the denominator of the counts in its column
 	FlagNTotal         = "n-total"             // the n may be the total of several arms
 	FlagOutside        = "estimate-outside"    // the estimate lies outside its bounds
 	FlagReversed       = "bounds-reversed"     // the lower bound is printed after the upper

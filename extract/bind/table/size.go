@@ -19,6 +19,7 @@ type size struct {
 	place  paper.Place
 	shared bool // from one column of n's for all arms of the row
 	total  bool // it may be the total of several arms
+	counts bool // it is the denominator of counts
 }
 
 // number reads an n as printed.

@@ -125,7 +125,7 @@ func (f *frame) shareSize(e *estimate, x *context) (size, bool) {
 	if seen < 2 || top < 5 {
 		return size{}, false
 	}
-	return size{n: top, from: result.NHeading, words: "denominators of " + f.columnName(e.col), text: clean(at.Text.S), place: at.Text.At(0)}, true
+	return size{n: top, from: result.NHeading, words: "denominators of " + f.columnName(e.col), text: clean(at.Text.S), place: at.Text.At(0), counts: true}, true
 }
 
 var shareOf = pattern.MustCompile(`(?:^|[^0-9.,/])([0-9]{1,5})\s*/\s*([0-9]{1,5})(?:$|[^0-9.,/])`)
