@@ -253,6 +253,21 @@ func TestNoKeyDecidesWhatWasNotLookedAt(t *testing.T) {
 	}
 }
 
+func TestADecisionIsNotTakenForOneElsewhere(t *testing.T) {
+	b := tab{t, browser(t)}
+	r := start(t, Options{Book: newBook(t, t.TempDir(), "AB"), Papers: fakePapers{}, ReadTyped: readTyped})
+	b.open(r.address)
+	// The list comes late, so that the watch for changes elsewhere runs in between.
+	value[bool](b, `(() => { const f = window.fetch; window.late = 0;
+		window.fetch = (p, o) => String(p).startsWith('/api/rows') ? new Promise((ok) => setTimeout(() => { window.late++; ok(f(p, o)); }, 2500)) : f(p, o); return true; })()`)
+	b.press("Enter")
+	b.until("the next row", `document.querySelector('#row h2').textContent === 'frames of brood'`)
+	b.run("wait", chromedp.Sleep(3*time.Second))
+	if got := b.text("#row h2"); got != "frames of brood" || value[int](b, `window.late`) != 1 {
+		t.Errorf("after the decision the row is %q and the list was read %d times", got, value[int](b, `window.late`))
+	}
+}
+
 func TestPickingAndAdding(t *testing.T) {
 	b := tab{t, browser(t)}
 	book := newBook(t, t.TempDir(), "AB")

@@ -6,8 +6,8 @@ import (
 	"sync"
 )
 
-// pictureBytes bounds the pictures kept in memory.
-const pictureBytes = 96 << 20
+// pictureBytes bounds the pictures kept in memory: some hundred pages.
+const pictureBytes = 48 << 20
 
 type pictureKey struct {
 	sha   string

@@ -347,11 +347,13 @@ addEventListener('keydown', (e) => {
 });
 document.addEventListener('click', (e) => { const name = e.target.closest?.('[data-do]')?.dataset.do; if (name) run(name); });
 
-// A decision taken elsewhere (another tab, the terminal) shows up here.
+// A decision taken elsewhere (another tab, the terminal) shows up here. While
+// something is being done here it waits: what changed may be that.
+const quiet = () => !busy && !document.hidden && !state.form && !$('dialog').open && !document.activeElement?.matches('input, textarea, select');
 setInterval(async () => {
-  if (document.hidden || state.form || $('dialog').open || document.activeElement?.matches('input, textarea, select')) return;
+  if (!quiet()) return;
   const { version } = await get('version').catch(() => ({}));
-  if (version && version !== state.version) await load(state.row?.key).catch(fail);
+  if (version && version !== state.version && quiet()) after(() => load(state.row?.key));
 }, 1500);
 addEventListener('resize', () => { showCard(); leaf.again()?.catch(fail); if (state.row && !state.form) drawChoices(); });
 for (const id of ['under', 'view']) $(id).addEventListener('scroll', () => { if (state.row && state.shownAt) drawChoices(); });
