@@ -9,7 +9,7 @@ import (
 
 var (
 	inOrder = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
-	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|,?\s*and|&|compared (?:with|to)|,|;|to)\s*\(?$`)
+	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|,?\s*and|&|compared (?:with|to)|,|;)\s*\(?$`)
 	// linked is what may stand between a result and its arm's name behind it.
 	linked  = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
 	inGroup = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under|at)\s+(?:the\s+)?$`)
@@ -66,7 +66,7 @@ func distinctArms(all []mention) []mention {
 }
 
 // unit is one estimate of a sentence with all its spreads.
-type unit struct{ start, end int }
+type unit struct{ start, end, number int } // number: where the estimate itself ends
 
 // unitsOf gives the estimates of a sentence in order, and which of them is the
 // candidate's.
@@ -85,14 +85,16 @@ func (p *para) unitsOf(c *cand, from, to int) (list []unit, at int) {
 		if n := len(list); n > 0 && (list[n-1].start == o.est.Start || o.quartile && o.est.Start < list[n-1].end) {
 			list[n-1].end = max(list[n-1].end, end)
 		} else {
-			list = append(list, unit{o.est.Start, end})
+			list = append(list, unit{o.est.Start, end, o.est.End})
 		}
 		if o.est.Start == c.est.Start || o.item == c.item {
 			at = len(list) - 1
 		}
 	}
 	for i := 1; i < len(list); i++ {
-		list[i-1].end = min(list[i-1].end, list[i].start)
+		if list[i-1].end > list[i].start { // its interval stands behind the next estimate
+			list[i-1].end = min(list[i-1].number, list[i].start)
+		}
 	}
 	return list, at
 }
@@ -153,32 +155,54 @@ func within(all []mention, a, b int) []mention {
 }
 
 // byOrder pairs the results of a sentence with its arms where there are as many
-// of either and all arms stand before all results or behind them: "lower with
-// syrup than with water (12.4 ± 1.3 vs 11.1 ± 1.2)", "12.4 ± 1.3 and 11.1 ± 1.2
-// with syrup and water, respectively".
+// of either: results that follow one another with the arms named behind them or
+// before them, "12.4 ± 1.3 and 11.1 ± 1.2 with syrup and water, respectively",
+// "lower with syrup than with water (12.4 ± 1.3 vs 11.1 ± 1.2)"; later pairs of a
+// sentence take the arms in the order in which it named them.
 func (p *para) byOrder(units []unit, at int, all []mention) (mention, bool) {
-	if len(units) < 2 || !p.says(units[at].start, inOrder) && !p.joined(units) {
+	first, last := p.runOf(units, at)
+	if last-first < 2 && p.says(units[at].start, inOrder) {
+		first, last = 0, len(units)
+	}
+	if last-first < 2 {
 		return mention{}, false
 	}
-	first, last := units[0].start, units[len(units)-1].end
-	var before, behind []mention
+	var near, behind, earlier []mention
 	for _, m := range all {
 		switch {
-		case m.end <= first:
-			before = append(before, m)
-		case m.start >= last:
-			behind = append(behind, m)
-		default:
+		case first > 0 && m.end <= units[first-1].end || m.end <= units[first].start && first > 0 && m.start < units[first-1].end:
+			earlier = append(earlier, m)
+		case m.end <= units[first].start:
+			near = append(near, m)
+		case m.start < units[last-1].end:
 			return mention{}, false
+		case last == len(units) || m.start < units[last].start:
+			behind = append(behind, m)
 		}
 	}
 	// Those behind the results are nearer to them than what the sentence began with.
-	for _, list := range [][]mention{behind, before} {
-		if d := distinctArms(list); len(d) == len(units) {
-			return d[at], true
+	for _, list := range [][]mention{behind, near} {
+		if d := distinctArms(list); len(d) == last-first {
+			return d[at-first], true
 		}
 	}
+	if d := distinctArms(earlier); len(near) == 0 && len(behind) == 0 && len(d) == last-first {
+		return d[at-first], true
+	}
 	return mention{}, false
+}
+
+// runOf gives the results [first, last) that follow one another with the given
+// one among them.
+func (p *para) runOf(units []unit, at int) (first, last int) {
+	first, last = at, at+1
+	for first > 0 && p.joined(units[first-1:first+1]) {
+		first--
+	}
+	for last < len(units) && p.joined(units[last-1:last+1]) {
+		last++
+	}
+	return first, last
 }
 
 // joined reports that the results follow one another with only a joining word

@@ -17,7 +17,7 @@ var (
 		`average|mean|median|means|medians|adjusted|unadjusted|respectively|significant|significantly|statistically|slightly|higher|lower|greater|smaller|largest|larger|level of|levels of|value of|values of|terms of|` +
 		`associated with|associated to|related to|described as|accompanied by|experienced by|identified with|found|observed|noted|seen|increas(?:e|es|ing|ed)|decreas(?:e|es|ing|ed)|reduc(?:e|tion|tions|ed)|improv(?:e|ement|ements|ed)|difference|differences|changes?|declines?|rise|fall|drop in|` +
 		`primary|secondary|outcome measure|outcome measures|outcome|outcomes|end ?points?|evidence of|trend|effect on|effects on|amounts? of|similar|comparable|patients|participants|subjects|women|men)\s+`)
-	trailWords = pattern.MustCompile(`(?i)(?:^|\s+)(?:of|by|to|from|approximately|about|on|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|averages?|significantly|statistically|only|also|=|:|OR|HR|RR|M|MD|AOR|CI|score of|until|as|not|no|between|among|respectively|compared)$`)
+	trailWords = pattern.MustCompile(`(?i)(?:^|\s+)(?:of|by|to|from|approximately|about|on|an?|the|at|in|for|with|and|or|than|vs|versus|mean|median|average|averages?|significantly|statistically|only|also|=|:|OR|M|MD|AOR|CI|score of|until|as|not|no|between|among|respectively|compared)$`)
 	// saysNothing are the words that are no outcome, alone or together.
 	saysNothing = map[string]bool{}
 	comparing   = pattern.MustCompile(`(?i)^(?:compared|versus|vs|than|relative to|as opposed)\b`)
@@ -33,7 +33,7 @@ func init() {
 		based principle showing shows both all overall total patients participants subjects women men children people individuals whole sample least square squares ls least-squares received given those who that which what
 		statistic statistics statistical statistically absolute mm cm kg g mg ml min h s days day weeks week months month gm times points point percentage percent units unit b β beta interaction evidence increments
 		associated according about around approximately only even still again first second third also main coefficient slope intercept however furthermore moreover only main described reached reaching value values current previous
-		favour favor receiving given taking randomized randomised assigned allocated male males female females experienced reported described seen noted found antagonistic greatest pronounced`) {
+		favour favor kcals gm pre post receiving given taking randomized randomised assigned allocated male males female females experienced reported described seen noted found antagonistic greatest pronounced`) {
 		saysNothing[w] = true
 	}
 }
@@ -50,7 +50,7 @@ func (p *para) setOutcome(r *result.Result, c *cand) {
 		p.inherit(r, &p.cands[k])
 		return
 	}
-	if at, ok := p.fromList(c, from); ok {
+	if at, ok := p.fromList(r, c, from); ok {
 		p.outcomeAt(r, at)
 		return
 	}
@@ -58,11 +58,11 @@ func (p *para) setOutcome(r *result.Result, c *cand) {
 		p.inherit(r, &p.cands[k])
 		return
 	}
-	if at, ok := p.nounBefore(max(from, min(previous, c.est.Start)), c.est.Start); ok {
+	if at, ok := p.nounBefore(r, max(from, min(previous, c.est.Start)), c.est.Start); ok {
 		p.outcomeAt(r, at)
 		return
 	}
-	if at, ok := p.nounBehind(c); ok {
+	if at, ok := p.nounBehind(r, c); ok {
 		p.outcomeAt(r, at)
 		return
 	}
@@ -91,18 +91,18 @@ func (p *para) goesOn(r *result.Result, from int) {
 // marks and verbs, without words of statistics and joining words at its ends and
 // without the arms and times that stand there. What only says how something was
 // ("was higher with syrup", "fell in the winter") names nothing.
-func (p *para) nounBefore(from, to int) (grammar.Span, bool) {
+func (p *para) nounBefore(r *result.Result, from, to int) (grammar.Span, bool) {
 	end := to
 	for _, m := range reversed(parting.FindAllStringIndex(p.s[from:to], -1)) {
 		a, b := from+m[0], from+m[1]
 		if piece := p.s[b:end]; !intransitive.MatchString(p.s[a:b]) || !adverbial.MatchString(piece) && (!linkedTo.MatchString(piece) || linkedChange.MatchString(piece)) {
-			if at, ok := p.noun(b, end); ok {
+			if at, ok := p.noun(r, b, end); ok {
 				return p.wholeList(from, at), true
 			}
 		}
 		end = a
 	}
-	return p.noun(from, end)
+	return p.noun(r, from, end)
 }
 
 var (
@@ -150,7 +150,7 @@ func reversed(list [][]int) [][]int {
 
 // noun is what a piece names: without what stands at its ends; false where
 // nothing is left.
-func (p *para) noun(a, b int) (grammar.Span, bool) {
+func (p *para) noun(r *result.Result, a, b int) (grammar.Span, bool) {
 	const most = 90
 	a, b = p.trimWords(a, b)
 	for {
@@ -169,7 +169,7 @@ func (p *para) noun(a, b int) (grammar.Span, bool) {
 		}
 		a += cut + 1
 	}
-	if b-a < 2 || strings.ContainsAny(p.s[a:b], "±<=") || comparing.MatchString(p.s[a:b]) || p.holdsSpread(a, b) || !p.namesSomething(a, b) {
+	if b-a < 2 || strings.ContainsAny(p.s[a:b], "±<=") || comparing.MatchString(p.s[a:b]) || p.holdsSpread(a, b) || !p.namesSomething(r, a, b) {
 		return grammar.Span{}, false
 	}
 	return grammar.Span{Start: a, End: b}, true
@@ -226,28 +226,41 @@ func (p *para) trimTimes(a, b int) (int, int) {
 
 // namesSomething reports that a word of a piece is neither an arm, nor a time, nor
 // one that says nothing of what was measured.
-func (p *para) namesSomething(a, b int) bool {
-	arms := p.mentions(p.sentence(a))
+func (p *para) namesSomething(r *result.Result, a, b int) bool {
+	arms, times := p.mentions(p.sentence(a)), p.matches(a, timeWords)
 	for i := p.token(a); i < len(p.r.Tokens) && p.r.Tokens[i].Start < b; i++ {
 		t := p.r.Tokens[i]
-		if t.Kind != grammar.TokWord || saysNothing[t.Value] || functionWords[t.Value] || weakName[t.Value] || len(t.Value) < 2 {
+		if t.Kind != grammar.TokWord || saysNothing[t.Value] && !(ratioName[t.Value] && r.Statistic != result.Ratio) || functionWords[t.Value] || weakName[t.Value] || len(t.Value) < 2 {
 			continue
 		}
-		inArm := false
-		for _, m := range arms {
-			inArm = inArm || m.start <= t.Start && t.End <= m.end
+		if unitWords[t.Value] && !countWords[t.Value] {
+			continue
 		}
-		if !inArm {
+		known := false
+		for _, m := range arms {
+			known = known || m.start <= t.Start && t.End <= m.end
+		}
+		for _, m := range times {
+			known = known || m[0] <= t.Start && t.End <= m[1] && !(m[0] == a && m[1] == b) // "median follow-up"
+		}
+		if !known {
 			return true
 		}
 	}
 	return false
 }
 
+// ratioName are names of ratios that name something else where there is none: HR
+// is a heart rate.
+var ratioName = map[string]bool{"hr": true, "rr": true}
+
+// countWords are units that are themselves what is counted.
+var countWords = map[string]bool{"colonies": true, "visits": true, "sessions": true, "cells": true, "points": true, "beats": true, "bpm": true}
+
 var countedNoun = pattern.MustCompile(`^[)\]]?\s+((?:[\p{L}-]+ ){0,3}?[\p{L}-]{3,})\s*(?:[,;.)(]|\b(?:in|per|for|from|at|was|were|and|on|of|to|with|the|during)\b)`)
 
 // nounBehind is what is counted: "a mean of 3.5 (4.0) visits per colony".
-func (p *para) nounBehind(c *cand) (grammar.Span, bool) {
+func (p *para) nounBehind(r *result.Result, c *cand) (grammar.Span, bool) {
 	_, to := p.sentence(c.est.Start)
 	units, at := p.unitsOf(c, c.est.Start, to)
 	if at < 0 {
@@ -257,7 +270,7 @@ func (p *para) nounBehind(c *cand) (grammar.Span, bool) {
 	if m == nil || p.block.Zone == paper.Methods || functionWords[firstWord(p.s[units[at].end+m[2]:])] {
 		return grammar.Span{}, false
 	}
-	return p.noun(units[at].end+m[2], units[at].end+m[3])
+	return p.noun(r, units[at].end+m[2], units[at].end+m[3])
 }
 
 func firstWord(s string) string {
@@ -268,7 +281,7 @@ func firstWord(s string) string {
 // fromList shares out a list of names among as many results that follow one
 // another: "mass, protein and flight time were 12.4 ± 1.3, 8.1 ± 1.0 and 24 ± 3,
 // respectively".
-func (p *para) fromList(c *cand, from int) (grammar.Span, bool) {
+func (p *para) fromList(r *result.Result, c *cand, from int) (grammar.Span, bool) {
 	_, to := p.sentence(c.est.Start)
 	if !p.says(c.est.Start, inOrder) {
 		return grammar.Span{}, false
@@ -277,13 +290,7 @@ func (p *para) fromList(c *cand, from int) (grammar.Span, bool) {
 	if at < 0 {
 		return grammar.Span{}, false
 	}
-	first, last := at, at+1
-	for first > 0 && p.joined(units[first-1:first+1]) {
-		first--
-	}
-	for last < len(units) && p.joined(units[last-1:last+1]) {
-		last++
-	}
+	first, last := p.runOf(units, at)
 	if first > 0 {
 		from = units[first-1].end
 	}
@@ -308,7 +315,7 @@ func (p *para) fromList(c *cand, from int) (grammar.Span, bool) {
 	if k := spare + at - first; k < len(marks) {
 		y = a + marks[k][0]
 	}
-	return p.noun(x, y)
+	return p.noun(r, x, y)
 }
 
 var listVerb = pattern.MustCompile(`(?i)\b(?:was|were|averaged|rose|fell|increased|decreased)\b`)

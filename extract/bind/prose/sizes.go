@@ -60,7 +60,7 @@ func (a *arm) sizeOf(q asked) (size, bool) {
 	}
 	for _, list := range [][]size{
 		pick(rows, func(s *size) bool { return alike(s.outcome, q.outcome) && (s.baseline || !q.baseline) }),
-		rows, agreeing(heads, text), largest(usual(rows)), largest(append(one(heads), one(text)...)),
+		rows, printedSize(heads, text), largest(usual(rows)),
 	} {
 		if s, ok := agreed(list); ok {
 			return s, true
@@ -79,25 +79,18 @@ func usual(list []size) []size {
 	return pick(list, func(s *size) bool { return 4*count[s.n] >= len(list) })
 }
 
-// agreeing is one of two lists where they do not contradict each other.
-func agreeing(a, b []size) []size {
-	x, okX := agreed(a)
-	y, okY := agreed(b)
+// printedSize is the size that headings and text give an arm: the one they share, or
+// the larger of two; none where the text gives several and not the heading's.
+func printedSize(heads, text []size) []size {
+	x, okX := agreed(heads)
+	y, okY := agreed(text)
 	switch {
-	case okX && okY && x.n != y.n:
-		return nil
-	case okX:
-		return a
-	case len(a) == 0:
-		return b
-	}
-	return nil
-}
-
-// one is the size that a list agrees on, alone.
-func one(list []size) []size {
-	if s, ok := agreed(list); ok {
-		return []size{s}
+	case okX && okY:
+		return largest([]size{x, y})
+	case okX && (len(text) == 0 || len(pick(text, func(s *size) bool { return s.n == x.n })) > 0):
+		return []size{x}
+	case okY && len(heads) == 0:
+		return []size{y}
 	}
 	return nil
 }
@@ -110,7 +103,7 @@ func largest(list []size) []size {
 			out = []size{s}
 		}
 	}
-	if len(out) > 0 && len(list) > 1 {
+	if _, all := agreed(list); !all && len(out) > 0 {
 		out[0].from += ", the largest that is printed for the arm"
 	}
 	return out
