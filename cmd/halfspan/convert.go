@@ -87,7 +87,7 @@ const lead = "This is the result as it was typed in for a look at its spread: "
 // typed makes a paper of one paragraph from a typed text; offsets count in the
 // text as typed.
 func typed(text string) *paper.Document {
-	run := paper.TextRun{S: lead + text, Runs: []paper.Run{{Start: len(lead), End: len(lead) + len(text)}}}
+	run := paper.TextRun{S: lead + text, Runs: []paper.Run{{Start: len(lead), End: len(lead) + len(text), Place: paper.Place{Line: 1}}}}
 	return &paper.Document{Path: "typed", Format: paper.Text, Blocks: []paper.Block{
 		{Kind: paper.Paragraph, Zone: paper.Results, Section: "Results", Text: run}}}
 }

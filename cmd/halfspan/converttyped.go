@@ -164,6 +164,9 @@ func bareSpread(text string) []result.Result {
 		}
 	}
 	bounds := r.Lower != "" && r.Upper != ""
+	if !bounds && slices.ContainsFunc(cell.Terms, func(it grammar.Item) bool { return it.Level != "" }) {
+		return nil // "12.4 (95% CI 11.2)": an interval of which one bound is not there
+	}
 	if r.GivenValue == "" && !bounds {
 		return nil
 	}
@@ -189,11 +192,40 @@ func bareSpread(text string) []result.Result {
 	return []result.Result{r}
 }
 
+// variation is a coefficient of variation in percent.
+var variation = regexp.MustCompile(`(?i)\b(?:g?CV|coefficient of variation)\s*[=:]?\s*(\d+(?:\.\d+)?)\s*%`)
+
+// onlyCV works out a geometric mean that has a coefficient of variation in place of an
+// interval.
+func onlyCV(text string, statistic result.Statistic) (j working.Joint, ok bool, err error) {
+	m := variation.FindStringSubmatchIndex(text)
+	if m == nil || statistic != result.GeometricMean {
+		return working.Joint{}, false, nil
+	}
+	cv, failed := convert.ReadPrinted(text[m[2]:m[3]])
+	if failed != nil {
+		return working.Joint{}, false, nil
+	}
+	for _, it := range grammar.Read(grammar.Text{S: text}).Items {
+		if it.Kind != grammar.KindNumber || it.Start == m[2] {
+			continue
+		}
+		if gm, failed := convert.ReadPrinted(it.Value.Value); failed == nil {
+			j, err = working.GeometricFromCV(gm, cv)
+			return j, true, err
+		}
+	}
+	return working.Joint{}, false, nil
+}
+
 // onlyP works out a ratio, or a difference of two means, that has a p value and no
 // interval; ok is false where the text is no such result.
 func onlyP(text string, opt convertOptions) (j working.Joint, ok bool, err error) {
 	called := spoken(text)
 	statistic := result.Statistic(called.Statistic)
+	if j, ok, err := onlyCV(text, statistic); ok {
+		return j, true, err
+	}
 	if opt.statistic != "" {
 		statistic = result.Statistic(opt.statistic)
 	}

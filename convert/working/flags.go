@@ -85,6 +85,7 @@ func Flags() []FlagInfo {
 		{"bootstrap-interval", None, "a bootstrap interval", "t and z do not apply: the SD is withheld"},
 		{"bayesian-interval", None, "a credible interval", "t and z do not apply: the SD is withheld"},
 		{"simultaneous-interval", None, "a simultaneous interval (Bonferroni, Tukey)", "wider than t for one mean: the SD is withheld"},
+		{"other-interval", None, "an interval of single values: prediction, tolerance or reference interval, limits of agreement", "it says nothing of the mean's SE: the SD is withheld"},
 		{"back-transformed", None, "a back-transformed mean", "its interval belongs to another scale: the SD is withheld"},
 		{"log-scale", None, "analysed on the log scale", "its interval belongs to that scale: the SD is withheld"},
 		// The values.

@@ -138,6 +138,7 @@ func raisedByWorking() map[string][]result.Result {
 		"bayesian-interval":         design("bayesian"),
 		"simultaneous-interval":     design("simultaneous"),
 		"one-sided":                 design("one-sided"),
+		"other-interval":            one(ci("12.4", "8.2", "16.6", func(r *result.Result) { r.Heading = "Mean (95% prediction interval)" })),
 		"back-transformed":          design("back-transformed"),
 		"log-scale":                 design("log-scale"),
 		"skewed":                    one(sd("1.2", "1.9", "syrup", 20)),
@@ -178,7 +179,7 @@ func unstatedWith(est, value, arm string) result.Result {
 // program's own test shows invented print for each (cmd/halfspan).
 var byReading = []string{"n-kind-unclear", "n-conflict", "spread-from-methods", "spread-from-rows", "count-or-spread", "level-assumed", "level-elsewhere",
 	"open-bound", "bound-not-a-number", "row-shape-odd", "in-methods", "misprint", "readers-differ", "sign-differs", "ocr", "arm-unclear", "time-unclear", "unknown-sign",
-	"conventions-differ", "interval-unnamed", "scale-differs", "power-of-ten", "from-the-table"}
+	"conventions-differ", "interval-unnamed", "scale-differs", "power-of-ten", "from-the-table", "n-from-counts"}
 
 // Every flag of the table that the working raises is raised by invented results.
 func TestEveryFlagOfTheWorkingCanBeRaised(t *testing.T) {

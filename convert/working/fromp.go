@@ -116,3 +116,49 @@ func (j *Joint) againstP(a, b Arm, d convert.Printed, printed string) error {
 	}
 	return nil
 }
+
+// GeometricFromCV works out mean and SD behind a geometric mean and its coefficient of
+// variation in percent, in both meanings of it.
+func GeometricFromCV(gm, percent convert.Printed) (Joint, error) {
+	var j Joint
+	if gm.Value <= 0 || percent.Low() <= 0 {
+		return Joint{}, fmt.Errorf("a geometric mean and its coefficient of variation are above 0")
+	}
+	for _, way := range []struct {
+		name, formula string
+		of            func(cv float64) (float64, error)
+	}{
+		{"if CV = √(exp(s²) − 1), as usual", "√ln(1 + CV²)", convert.LogSDFromGeometricCV},
+		{"if CV = exp(s) − 1, the geometric SD less 1", "ln(1 + CV)", func(cv float64) (float64, error) { return convert.LogSDFromGSD(1 + cv) }},
+	} {
+		s, err := way.of(percent.Value / 100)
+		if err != nil {
+			return Joint{}, err
+		}
+		m, err := convert.LogNormalToRaw(gm.Value, s)
+		if err != nil {
+			return Joint{}, err
+		}
+		var span convert.Range
+		for _, end := range []struct {
+			cv   float64
+			into *float64
+		}{{percent.Low(), &span.Low}, {percent.High(), &span.High}} {
+			log, err := way.of(end.cv / 100)
+			if err != nil {
+				return Joint{}, err
+			}
+			raw, err := convert.LogNormalToRaw(gm.Value, log)
+			if err != nil {
+				return Joint{}, err
+			}
+			*end.into = raw.SD
+		}
+		j.step("SD of the logarithms s = %s = %s, %s", way.formula, short(s), way.name)
+		j.step("mean = GM·exp(s²/2) = %s; SD = mean·√(exp(s²) − 1) = %s", short(m.Mean), short(m.SD))
+		j.add("mean", m.Mean, way.name)
+		j.addRange("SD", m.SD, span, way.name)
+	}
+	j.Trail.Assumptions = append(j.Trail.Assumptions, "lognormal law; no zeros, no detection limit")
+	return j, nil
+}

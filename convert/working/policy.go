@@ -2,6 +2,7 @@ package working
 
 import (
 	"fmt"
+	"regexp"
 	"slices"
 	"strings"
 
@@ -20,6 +21,7 @@ type rule struct {
 func policy() []rule {
 	return []rule{
 		{unreadable, withholdUnreadable},
+		{both(printedAs(result.SD), isStatistic(result.GeometricMean, result.Ratio)), geometricSD},
 		{printedAs(result.SD), takeSD},
 		{printedAs(result.Unstated), weighReadings},
 		{isStatistic(result.Median), proposeFromMedian},
@@ -44,6 +46,10 @@ func applyPolicy(it *item) {
 }
 
 func always(*item) bool { return true }
+
+func both(f, g func(*item) bool) func(*item) bool {
+	return func(it *item) bool { return f(it) && g(it) }
+}
 
 func not(f func(*item) bool) func(*item) bool {
 	return func(it *item) bool { return !f(it) }
@@ -114,6 +120,10 @@ func obstacles() []obstacle {
 		{"bootstrap-interval", "a bootstrap interval: t and z do not apply", design("bootstrap")},
 		{"bayesian-interval", "a credible interval: t and z do not apply", design("bayesian")},
 		{"simultaneous-interval", "a simultaneous interval: wider than t for one mean", design("simultaneous")},
+		{"other-interval", "an interval of single values, not of the mean", func(it *item) (string, bool) {
+			words := otherInterval.FindString(it.res.Heading + " | " + it.res.Snippet)
+			return words, it.res.GivenAs == result.CI && words != ""
+		}},
 		{"one-sided", "a one-sided limit: half its distance is not a margin", design("one-sided")},
 		{"back-transformed", "a back-transformed mean: its interval belongs to another scale", design("back-transformed")},
 		{"log-scale", "analysed on the log scale: its interval belongs to that scale", design("log-scale")},
@@ -142,6 +152,10 @@ func obstacles() []obstacle {
 		}},
 	}
 }
+
+// otherInterval are intervals that hold single values and are much wider than that
+// of a mean.
+var otherInterval = regexp.MustCompile(`(?i)\b(?:prediction|tolerance|reference) (?:intervals?|limits?)\b|\blimits of agreement\b`)
 
 // plainBaseline reports a baseline mean whose own heading and footnote say nothing
 // of a model: what the caption says of adjustment concerns the values after it.

@@ -200,6 +200,29 @@ func ownScaleLog(it *item) {
 	}
 }
 
+// geometricSD shows what a number called SD beside a geometric mean or a ratio may be:
+// a factor, or the SD of the logarithms. It is not an SD of the outcome.
+func geometricSD(it *item) {
+	it.withhold(fmt.Sprintf("the SD beside a %s is a factor or belongs to the logarithms: it is not the SD of the outcome", it.res.Statistic))
+	if it.val == nil || it.est == nil || it.res.Statistic != result.GeometricMean || it.est.Value <= 0 {
+		return
+	}
+	it.offerLogSD("if it is a geometric SD, a factor", it.val.Value, convert.LogSDFromGSD)
+	it.offerLogSD("if it is the SD of natural logarithms", it.val.Value, func(s float64) (float64, error) { return s, nil })
+}
+
+func (it *item) offerLogSD(name string, v float64, of func(float64) (float64, error)) {
+	s, err := of(v)
+	if err != nil || s <= 0 {
+		return
+	}
+	m, err := convert.LogNormalToRaw(it.est.Value, s)
+	if err != nil {
+		return
+	}
+	it.offer(Alternative{Name: name, Mean: number(m.Mean), SD: number(m.SD), Note: fmt.Sprintf("SD of the logarithms %s, lognormal law", short(s))})
+}
+
 // ownScaleProportion gives the SE of a proportion or rate on the raw scale where
 // the interval is symmetric there.
 func ownScaleProportion(it *item) {

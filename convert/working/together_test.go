@@ -173,6 +173,18 @@ func TestTogether(t *testing.T) {
 			return r
 		}()},
 			[]string{"as a 95% interval", "SE by z"}, nil},
+		{"a prediction interval", []result.Result{func() result.Result {
+			r := mean("12.4", "8.2", "16.6", 42)
+			r.Snippet = "12.4 (95% prediction interval 8.2 to 16.6)"
+			return r
+		}()},
+			[]string{`"use":"withheld"`, "single values"}, nil},
+		{"a geometric SD", []result.Result{func() result.Result {
+			r := spread(result.SD, "10.02", "1.7686", "syrup", 30)
+			r.Statistic = result.GeometricMean
+			return r
+		}(),
+		}, []string{`"sd":null`, "if it is a geometric SD, a factor", `"mean":11.78`, "if it is the SD of natural logarithms"}, nil},
 		{"a geometric mean", []result.Result{{Statistic: result.GeometricMean, GivenAs: result.CI, Estimate: "10.0", Lower: "8.1", Upper: "12.4", Level: 95, N: 30, Table: "Table 2"}},
 			[]string{"lognormal law", "SD of the logarithms 0.5702", `"scale":"log"`}, nil},
 		{"a table that tells adjusted from plain", func() []result.Result {
