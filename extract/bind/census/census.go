@@ -47,7 +47,7 @@ func Of(doc *paper.Document) *Census {
 			continue
 		}
 		s := b.Text.S
-		c.Within = c.Within || b.Zone != paper.Results && within.MatchString(s)
+		c.Within = c.Within || within.MatchString(doc.Title) || b.Zone != paper.Results && within.MatchString(s)
 		for start := 0; start < len(s); {
 			end := start + sentenceEnd(s[start:])
 			if end-start <= sentenceMost {
@@ -73,6 +73,9 @@ var (
 	counted = pattern.MustCompile(`(?i)(?:^|[^\w.,–-])((?:[0-9]{1,3}(?:,[0-9]{3})+|[0-9]{1,6}|` + Words + `))\s+(?:(?:[a-z][a-z-]*|\([^()]{0,40}\)|,)\s+){0,4}?` + Subjects + `\b(?:\s*\([^()]{0,60}\))?`)
 	nEach   = pattern.MustCompile(`(?i)\bn\s*=\s*([0-9]{1,6})\s*(?:` + Subjects + `\s*)?(?:,\s*)?(?:(?:for|in|per|from)\s+)?(?:each|every|per)\s+(?:\w+\s+){0,2}?(?:groups?|arms?|treatments?|conditions?)\b`)
 	groupOf = pattern.MustCompile(`(?i)\b(?:two|three|four|five|six|both|all|each|equal)\b[^.;]{0,50}?\b(?:groups?|arms?)\s+(?:of|with|reached[^.;]{0,30}? of|consisted of|comprised|included|contained|had)\s+([0-9]{1,5}|` + Words + `)\s+(?:\w+\s+)?` + Subjects + `\b`)
+	inEach  = pattern.MustCompile(`(?i)\b([0-9]{1,5}|` + Words + `)\s+(?:` + Subjects + `\s+)?(?:(?:in|for|to|from)\s+(?:each|every)|per)\s+(?:of\s+the\s+)?(?:\w+\s+){0,2}?(?:groups?|arms?)\b`)
+	groupsN = pattern.MustCompile(`(?i)\b(?:two|three|four|five|six|seven|eight|nine|ten|[2-9]|1[0-9])\s+(?:\w+\s+){0,2}?groups?\s*\(\s*n\s*=\s*([0-9]{1,5})\s*(?:each)?\s*\)`)
+	named   = pattern.MustCompile(`(?i)\b(?:enrolled|recruited|randomi[sz]ed|included|eligible)\b`)
 	equal   = pattern.MustCompile(`(?i)\b(?:divided|allocated|assigned|randomi[sz]ed|distributed|split|separated|classified)\b[^.;]{0,60}?\b(two|three|four|five|six|seven|eight|2|3|4|5|6|7|8)\s+(?:\w+\s+)?equal(?:ly sized)?\s+(?:\w+\s+)?groups\b|\bequally\b[^.;]{0,30}?\binto\s+(two|three|four|five|six|seven|eight|2|3|4|5|6|7|8)\s+(?:\w+\s+){0,2}groups\b`)
 
 	planned  = pattern.MustCompile(`(?i)\bpower\b|\bsample size\b|\brequired?\b|\bneeded\b|\bplanned\b|\bcalculat|\bdetect\b|\bwould\b|\bestimated that\b|\baimed? to\b|\btarget\b|\bscreened\b|\bapproached\b|\binvited\b|\bassessed for eligib|\bresponded\b|\bpilot\b|\bprevious(?:ly)? (?:stud|trial|report)|\bet al\b|\bin (?:this|these|their) stud(?:y|ies) of\b`)
@@ -125,7 +128,9 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 			continue
 		}
 		if done && !strings.Contains(before, ".") && (finished.MatchString(clause(after)) || finished.MatchString(clauseBefore(before))) && !ofBefore.MatchString(before) {
-			k.Kind = Finished
+			if !named.MatchString(k.Text) { // "the 25 enrolled colonies" are those enrolled
+				k.Kind = Finished
+			}
 		} else if !began && !done {
 			continue
 		}
@@ -141,7 +146,7 @@ func (c *Census) groups(b *paper.Block, from int, s string) (taken [][]int) {
 		taken = append(taken, []int{start, end})
 		c.Counts = append(c.Counts, Count{N: n, Each: true, Text: strings.TrimSpace(s[start:end]), Place: b.Text.Between(from+start, from+end)})
 	}
-	for _, p := range []*pattern.Pattern{nEach, groupOf} {
+	for _, p := range []*pattern.Pattern{nEach, groupOf, inEach, groupsN} {
 		for _, m := range p.FindAllStringSubmatchIndex(s, -1) {
 			if n, ok := Number(s[m[2]:m[3]]); ok && n >= 2 {
 				each(n, m[0], m[1])

@@ -139,10 +139,12 @@ func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool
 	switch {
 	case !named && !f.describesSubjects():
 		// A table about the feed or the room has other numbers of its own.
+	case named && x.arm != "" && f.aboutArms(x.arm):
+		if n, ok = c.Each(); !ok && b.sameSubjects(f) {
+			n, ok = c.Whole(!atBaseline(x))
+		}
 	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
-	case x.arm != "" && f.aboutArms(x.arm):
-		n, ok = c.Each()
 	}
 	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place}, ok
 }

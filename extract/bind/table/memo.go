@@ -5,6 +5,7 @@ import "halfspan/extract/paper"
 // memo keeps what a frame was asked before. Parts depend on what is known of
 // the arms, so they are forgotten whenever that changes.
 type memo struct {
+	long    map[string][]string // what an arm's abbreviation stands for
 	parts   map[partKey]part
 	roles   map[spot]role
 	rows    map[int]role
@@ -20,7 +21,7 @@ type partKey struct {
 }
 
 func newMemo() memo {
-	return memo{parts: map[partKey]part{}, roles: map[spot]role{}, rows: map[int]role{}, paths: map[spot][]label{}, spreads: map[int]bool{}, arms: map[spot]string{}, labels: map[*paper.Cell]label{}}
+	return memo{long: map[string][]string{}, parts: map[partKey]part{}, roles: map[spot]role{}, rows: map[int]role{}, paths: map[spot][]label{}, spreads: map[int]bool{}, arms: map[spot]string{}, labels: map[*paper.Cell]label{}}
 }
 
 // forgetParts is called when what is known of the arms has changed.

@@ -1,6 +1,7 @@
 package table
 
 import (
+	"regexp"
 	"strings"
 
 	"halfspan/extract/bind/census"
@@ -84,7 +85,11 @@ func (f *frame) declaredSize(e *estimate, x *context) (size, bool) {
 		}
 		return 0, false
 	}
-	for _, nt := range f.notes.general() {
+	used := f.usedMarks()
+	for _, nt := range f.notes.list {
+		if nt.mark != "" && used[nt.mark] {
+			continue
+		}
 		if n, ok := read(nt.run.S, true); ok {
 			return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(0)}, true
 		}
@@ -213,8 +218,8 @@ func (b *binder) toldSize(f *frame, x *context) (size, bool) {
 	later := !atBaseline(x)
 	var first, last toldN
 	for _, s := range b.told {
-		n, ok := f.told(s.text, x.arm)
-		if !ok || !f.othersTold(s.text, x.arm) {
+		n, ok := b.toldOf(f, s.text, x.arm)
+		if !ok || !b.othersTold(f, s.text, x.arm) {
 			continue
 		}
 		at := &first
@@ -247,10 +252,17 @@ func (t *toldN) add(n int, s toldSentence) {
 	t.differ = t.differ || t.n != n
 }
 
-// told reads the n that a sentence gives an arm by its name, by the part of its
-// name before a colon, or by the words that tell it from the other arms.
-func (f *frame) told(s, arm string) (int, bool) {
-	for _, name := range []string{arm, cutAt(arm, ":"), f.distinct(arm)} {
+// toldOf reads the n that a sentence gives an arm by its name, by the part of its
+// name before a colon, by the words that tell it from the other arms, or by what
+// its abbreviation stands for.
+func (b *binder) toldOf(f *frame, s, arm string) (int, bool) {
+	names := []string{arm, cutAt(arm, ":"), f.distinct(arm)}
+	for _, w := range words(f.distinct(arm)) {
+		if len(w) > 3 {
+			names = append(names, w)
+		}
+	}
+	for _, name := range append(names, b.longNames(f, arm)...) {
 		if name == "" {
 			continue
 		}
@@ -262,14 +274,55 @@ func (f *frame) told(s, arm string) (int, bool) {
 }
 
 // othersTold reports that the sentence gives another arm of the table an n, too.
-func (f *frame) othersTold(s, arm string) bool {
+func (b *binder) othersTold(f *frame, s, arm string) bool {
 	for _, o := range f.armNames() {
 		if armWords(o) == armWords(arm) {
 			continue
 		}
-		if _, ok := f.told(s, o); ok {
+		if _, ok := b.toldOf(f, s, o); ok {
 			return true
 		}
 	}
 	return false
+}
+
+var shortName = pattern.MustCompile(`^[A-Z][A-Za-z0-9]{0,5}$`)
+
+// longNames gives what an arm's abbreviation stands for: by the notes and caption
+// of its table, "SG: syrup group", or by the text, "syrup group (SG)".
+func (b *binder) longNames(f *frame, arm string) []string {
+	if !shortName.MatchString(arm) || strings.ToLower(arm[1:]) == arm[1:] && len(arm) > 3 {
+		return nil
+	}
+	if got, ok := f.memo.long[arm]; ok {
+		return got
+	}
+	var out []string
+	defined := regexp.MustCompile(`\b` + arm + `\s*[:=,–-]\s*([A-Za-z][^;.,:()=]{2,50})`)
+	runs := []string{f.tab.Caption.S}
+	for _, n := range f.notes.list {
+		runs = append(runs, n.run.S)
+	}
+	for _, s := range runs {
+		if m := defined.FindStringSubmatch(s); m != nil {
+			out = append(out, strings.TrimSpace(m[1]))
+		}
+	}
+	inText := regexp.MustCompile(`((?:[A-Za-z+-]+\s+){1,4})\(` + arm + `\b`)
+	for i := range b.doc.Blocks {
+		if bl := &b.doc.Blocks[i]; bl.Kind == paper.Paragraph && strings.Contains(bl.Text.S, "("+arm) {
+			if m := inText.FindStringSubmatch(bl.Text.S); m != nil {
+				ws := strings.Fields(m[1])
+				for k := max(0, len(ws)-2); k < len(ws); k++ {
+					out = append(out, strings.Join(ws[k:], " "))
+				}
+				break
+			}
+		}
+	}
+	for i, name := range out {
+		out[i] = strings.TrimSpace(strings.NewReplacer(" groups", "", " group", "", " arm", "").Replace(name))
+	}
+	f.memo.long[arm] = out
+	return out
 }
