@@ -11,8 +11,14 @@ var (
 	inOrder = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
 	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|,?\s*and|&|compared (?:with|to)|,|;)\s*\(?$`)
 	// linked is what may stand between a result and its arm's name behind it.
-	linked  = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
-	inGroup = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under|at)\s+(?:the\s+)?$`)
+	linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+	// longUnit is a unit that has digits: "mL/min/1.73 m2".
+	longUnit = pattern.MustCompile(`^\s*[\p{L}µμ%][^\s,;()]*/[^\s,;()]*[0-9²³][^\s,;()]*(?:\s?m[2²](?:/[\p{L}]+)?)?`)
+	// atOnceArm is what may stand between an arm's name and its result.
+	atOnceArm = pattern.MustCompile(`^\s?[,:=(–-]?\s*[(]?$`)
+	ofAll     = pattern.MustCompile(`(?i)^[)\]]?\s*(?:overall|in total|in all|altogether)\b`)
+	ofOthers  = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under)\s+(?:the|those|all)\b`)
+	inGroup   = pattern.MustCompile(`(?i)\b(?:in|for|with|among|on|under|at)\s+(?:the\s+)?$`)
 	// inBracket is the same for a name in brackets: "12.4 ± 1.3 kg (syrup group)".
 	inBracket = pattern.MustCompile(`^[^0-9;.,()]{0,14}\((?:the )?$`)
 	// toNext joins the two values of one arm: "from 12.4 ± 1.3 to 13.1 ± 1.2".
@@ -81,6 +87,9 @@ func (p *para) unitsOf(c *cand, from, to int) (list []unit, at int) {
 		end := max(it.End, o.est.End)
 		if b := it.Bracket; b > 0 && p.r.Brackets[b-1].Start >= o.est.End {
 			end = max(end, p.r.Brackets[b-1].End) // the spread's own bracket
+		}
+		if m := longUnit.FindStringIndex(p.s[end:to]); m != nil {
+			end += m[1]
 		}
 		if n := len(list); n > 0 && (list[n-1].start == o.est.Start || o.quartile && o.est.Start < list[n-1].end) {
 			list[n-1].end = max(list[n-1].end, end)
@@ -251,6 +260,14 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 			return m, true // "12.4 ± 1.3 kg in the syrup group (range 10 to 15)"
 		}
 	}
+	if ofAll.MatchString(p.s[u.end:]) {
+		return mention{}, false // "(12.9 ± 1.4 overall)"
+	}
+	for _, m := range all {
+		if m.end <= u.start && atOnceArm.MatchString(p.s[m.end:u.start]) && !(previous > from && p.claimed(m, previous)) {
+			return m, true // "(syrup, 12.4 ± 1.3; water, 11.1 ± 1.2)"
+		}
+	}
 	if m, ok := p.justBehind(u, all); ok {
 		return m, true
 	}
@@ -279,7 +296,14 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 	if len(distinctArms(all)) > 1 || at > 0 && contrast.MatchString(p.s[previous:u.start]) {
 		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
 	}
-	return all[0], all[0].start < u.start || inGroup.MatchString(p.s[u.end:all[0].start])
+	if all[0].start < u.start {
+		return all[0], true
+	}
+	next := all[0].start
+	if at+1 < len(units) {
+		next = min(next, units[at+1].start)
+	}
+	return all[0], inGroup.MatchString(p.s[u.end:all[0].start]) && (at+1 == len(units) || !ofOthers.MatchString(p.s[u.end:next]))
 }
 
 // justBehind gives the arm named right behind a result: "12.4 kg in the syrup group",

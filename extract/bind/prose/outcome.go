@@ -2,7 +2,9 @@ package prose
 
 import (
 	"strings"
+	"unicode/utf8"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
@@ -13,7 +15,7 @@ var (
 	// parting are the marks and verbs that part the pieces of a clause.
 	parting = pattern.MustCompile(`(?i)[,;:()\[\]]|\b(?:was|were|is|are|be|been|rose|fell|had|has|have|show(?:ed|s)|shown|did|does|do|can|could|would|will|may|might|must|differed|remained|averaged|reached|` +
 		`increas(?:ed|es)|decreas(?:ed|es)|improved|declined|dropped|reduc(?:ed|es)|chang(?:ed|es)|reveal(?:ed|s)|demonstrat(?:ed|es)|indicat(?:ed|es)|suggest(?:ed|s)|resulted|led|gave|gained|lost|peaked|ranged|we|there|means?|medians?|averages?|that|which|who|while|whereas|but|although|when)\b`)
-	leadWords = pattern.MustCompile(`(?i)^(?:within|among|during|regarding|concerning|less|more|fewer|worse|better|(?:±|\+/-)\s*(?:SD|SEM?|standard deviation|standard error)|kg|mg|min|the|a|an|and|or|but|in|of|for|on|with|by|to|from|than|at|as|not|no|there|also|both|then|however|similarly|moreover|furthermore|i\.e|we|it|this|these|those|their|its|our|` +
+	leadWords = pattern.MustCompile(`(?i)^(?:within|among|during|regarding|concerning|less|more|fewer|worse|better|large|small|marked|strong|alike|equal|(?:±|\+/-)\s*(?:SD|SEM?|standard deviation|standard error)|kg|mg|min|the|a|an|and|or|but|in|of|for|on|with|by|to|from|than|at|as|not|no|there|also|both|then|however|similarly|moreover|furthermore|i\.e|we|it|this|these|those|their|its|our|` +
 		`average|mean|median|means|medians|adjusted|unadjusted|respectively|significant|significantly|statistically|slightly|higher|lower|greater|smaller|largest|larger|level of|levels of|value of|values of|terms of|` +
 		`associated with|associated to|related to|described as|accompanied by|experienced by|identified with|found|observed|noted|seen|increas(?:e|es|ing|ed)|decreas(?:e|es|ing|ed)|reduc(?:e|tion|tions|ed)|improv(?:e|ement|ements|ed)|difference|differences|changes?|declines?|rise|fall|drop in|` +
 		`primary|secondary|outcome measure|outcome measures|outcome|outcomes|end ?points?|evidence of|trend|effect on|effects on|amounts? of|similar|comparable|patients|participants|subjects|women|men)\s+`)
@@ -33,7 +35,7 @@ func init() {
 		based principle showing shows both all overall total patients participants subjects women men children people individuals whole sample least square squares ls least-squares received given those who that which what
 		statistic statistics statistical statistically absolute mm cm kg g mg ml min h s days day weeks week months month gm times points point percentage percent units unit b β beta interaction evidence increments
 		associated according about around approximately only even still again first second third also main coefficient slope intercept however furthermore moreover only main described reached reaching value values current previous
-		favour favor kcals gm pre post receiving given taking randomized randomised assigned allocated male males female females experienced reported described seen noted found antagonistic greatest pronounced`) {
+		favour favor large small marked strong two three four five include includes included addition contrast general kcals gm pre post receiving given taking randomized randomised assigned allocated male males female females experienced reported described seen noted found antagonistic greatest pronounced`) {
 		saysNothing[w] = true
 	}
 }
@@ -51,6 +53,14 @@ func (p *para) setOutcome(r *result.Result, c *cand) {
 		return
 	}
 	if at, ok := p.fromList(r, c, from); ok {
+		p.outcomeAt(r, at)
+		return
+	}
+	if at, ok := p.forWhat(r, c); ok {
+		p.outcomeAt(r, at)
+		return
+	}
+	if at, ok := p.nounBehind(r, c); ok && ofNumber.MatchString(p.s[from:c.est.Start]) {
 		p.outcomeAt(r, at)
 		return
 	}
@@ -92,17 +102,25 @@ func (p *para) goesOn(r *result.Result, from int) {
 // without the arms and times that stand there. What only says how something was
 // ("was higher with syrup", "fell in the winter") names nothing.
 func (p *para) nounBefore(r *result.Result, from, to int) (grammar.Span, bool) {
-	end := to
-	for _, m := range reversed(parting.FindAllStringIndex(p.s[from:to], -1)) {
-		a, b := from+m[0], from+m[1]
-		if piece := p.s[b:end]; !intransitive.MatchString(p.s[a:b]) || !adverbial.MatchString(piece) && (!linkedTo.MatchString(piece) || linkedChange.MatchString(piece)) {
-			if at, ok := p.noun(r, b, end); ok {
-				return p.wholeList(from, at), true
+	marks := reversed(parting.FindAllStringIndex(p.s[from:to], -1))
+	for _, how := range []bool{false, true} { // at last what says how: "the groups fell in flight time"
+		end := to
+		for _, m := range marks {
+			a, b := from+m[0], from+m[1]
+			piece := p.s[b:end]
+			says := intransitive.MatchString(p.s[a:b]) && (adverbial.MatchString(piece) || linkedTo.MatchString(piece) && !linkedChange.MatchString(piece))
+			if (!says || how && inWhat.MatchString(piece)) && !p.shut(b, to) {
+				if at, ok := p.noun(r, b, end); ok {
+					return p.wholeList(from, at), true
+				}
 			}
+			end = a
 		}
-		end = a
+		if at, ok := p.noun(r, from, end); ok {
+			return at, true
+		}
 	}
-	return p.noun(r, from, end)
+	return grammar.Span{}, false
 }
 
 var (
@@ -111,6 +129,7 @@ var (
 	// reduction in loss" too.
 	linkedTo     = pattern.MustCompile(`(?i)^[^,;()]{0,20}\b(?:associated|related|correlated|linked) (?:with|to)\b`)
 	linkedChange = pattern.MustCompile(`(?i)^[^,;()]{0,20}\b(?:associated|related|correlated|linked) (?:with|to)\s+(?:an?\s+|the\s+)?(?:\w+ly\s+)?(?:significant\s+|large\s+|small\s+)?(?:increas|decreas|reduc|higher|lower|greater|improve|change|risk|more|less|fewer)`)
+	inWhat       = pattern.MustCompile(`(?i)^\s*(?:\w+ly\s+)?in\s`)
 	// adverbial is how a piece begins that says how, where or when.
 	adverbial = pattern.MustCompile(`(?i)^\s*(?:(?:also|not|no|only|significantly|statistically|slightly|then|further|more|less|most|least|similarly|much|all|both)\s+)*` +
 		`(?:(?:in|at|during|after|before|with|by|from|to|on|for|among|under|over|until|between|within|than|vs|versus|compared)\b|` +
@@ -169,6 +188,9 @@ func (p *para) noun(r *result.Result, a, b int) (grammar.Span, bool) {
 		}
 		a += cut + 1
 	}
+	if s := p.s[a:b]; subjectsOnly.MatchString(s) || longUnit.FindString(s) == s {
+		return grammar.Span{}, false
+	}
 	if b-a < 2 || strings.ContainsAny(p.s[a:b], "±<=") || comparing.MatchString(p.s[a:b]) || p.holdsSpread(a, b) || !p.namesSomething(r, a, b) {
 		return grammar.Span{}, false
 	}
@@ -215,7 +237,7 @@ func (p *para) trimTimes(a, b int) (int, int) {
 	for _, m := range p.matches(a, timeWords) {
 		switch {
 		case m[0] < a || m[1] > b || m[0] == a && m[1] == b:
-		case m[1] == b:
+		case m[1] == b && !strings.HasSuffix(strings.TrimRight(p.s[a:m[0]], " "), " of"): // "duration of follow-up"
 			b = m[0]
 		case m[0] == a:
 			a = m[1]
@@ -230,7 +252,7 @@ func (p *para) namesSomething(r *result.Result, a, b int) bool {
 	arms, times := p.mentions(p.sentence(a)), p.matches(a, timeWords)
 	for i := p.token(a); i < len(p.r.Tokens) && p.r.Tokens[i].Start < b; i++ {
 		t := p.r.Tokens[i]
-		if t.Kind != grammar.TokWord || saysNothing[t.Value] && !(ratioName[t.Value] && r.Statistic != result.Ratio) || functionWords[t.Value] || weakName[t.Value] || len(t.Value) < 2 {
+		if t.Kind != grammar.TokWord || saysNothing[t.Value] && !(ratioName[t.Value] && r.Statistic != result.Ratio) || functionWords[t.Value] || weakName[t.Value] || utf8.RuneCountInString(t.Value) < 2 {
 			continue
 		}
 		if unitWords[t.Value] && !countWords[t.Value] {
@@ -250,14 +272,20 @@ func (p *para) namesSomething(r *result.Result, a, b int) bool {
 	return false
 }
 
+// subjectsOnly is a count of subjects and nothing else.
+var subjectsOnly = pattern.MustCompile(`(?i)^(?:[0-9,]+|` + census.Words + `)\s+(?:\w+\s+)?` + census.Subjects + `$`)
+
 // ratioName are names of ratios that name something else where there is none: HR
 // is a heart rate.
 var ratioName = map[string]bool{"hr": true, "rr": true}
 
+// ofNumber is what stands before a number of things: "a mean of 3.5 visits".
+var ofNumber = pattern.MustCompile(`(?i)\b(?:mean|median|average|total)s?\s*(?:\([^()]*\)\s*)?of\s*$`)
+
 // countWords are units that are themselves what is counted.
 var countWords = map[string]bool{"colonies": true, "visits": true, "sessions": true, "cells": true, "points": true, "beats": true, "bpm": true}
 
-var countedNoun = pattern.MustCompile(`^[)\]]?\s+((?:[\p{L}-]+ ){0,3}?[\p{L}-]{3,})\s*(?:[,;.)(]|\b(?:in|per|for|from|at|was|were|and|on|of|to|with|the|during)\b)`)
+var countedNoun = pattern.MustCompile(`^[)\]]?\s+((?:[\p{L}-]+ ){0,3}?[\p{L}-]{3,}(?:\s+per\s+[\p{L}-]+)?)\s*(?:[,;.)(]|\b(?:in|per|for|from|at|was|were|and|on|of|to|with|the|during)\b)`)
 
 // nounBehind is what is counted: "a mean of 3.5 (4.0) visits per colony".
 func (p *para) nounBehind(r *result.Result, c *cand) (grammar.Span, bool) {
@@ -271,6 +299,31 @@ func (p *para) nounBehind(r *result.Result, c *cand) (grammar.Span, bool) {
 		return grammar.Span{}, false
 	}
 	return p.noun(r, units[at].end+m[2], units[at].end+m[3])
+}
+
+var forBehind = pattern.MustCompile(`(?i)^[)\]]?\s*(?:[\p{L}/%]+\s+)?for\s+([^,;.()0-9]{3,70}?)\s*(?:[,;.()]|\band\b|$)`)
+
+// forWhat reads "12.4 ± 1.3 for mass and 8.1 ± 1.0 for protein", where at least
+// two results of the sentence are told apart so.
+func (p *para) forWhat(r *result.Result, c *cand) (grammar.Span, bool) {
+	from, to := p.sentence(c.est.Start)
+	units, at := p.unitsOf(c, from, to)
+	alike := 0
+	var mine []int
+	for i, u := range units {
+		m := forBehind.FindStringSubmatchIndex(p.s[u.end:to])
+		if m == nil {
+			continue
+		}
+		alike++
+		if i == at {
+			mine = []int{u.end + m[2], u.end + m[3]}
+		}
+	}
+	if alike < 2 || mine == nil {
+		return grammar.Span{}, false
+	}
+	return p.noun(r, mine[0], mine[1])
 }
 
 func firstWord(s string) string {
