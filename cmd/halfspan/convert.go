@@ -117,6 +117,9 @@ func understand(text string, opt convertOptions) ([]working.Working, error) {
 	assumed := opt.takeAsMeans(results)
 	saySizes(results, text)
 	found := working.Work(facts, results)
+	for i := range found {
+		besideChange(&found[i], text)
+	}
 	for _, i := range assumed {
 		found[i].Trail.Assumptions = append(found[i].Trail.Assumptions, "the estimate is a mean, which the text does not say: --statistic says what it is")
 	}

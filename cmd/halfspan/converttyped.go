@@ -1,6 +1,7 @@
 package main
 
 import (
+	"fmt"
 	"math"
 	"regexp"
 	"slices"
@@ -123,6 +124,42 @@ func sayKind(r *result.Result, text string) {
 			r.Statistic, r.Measure = result.RiskDifference, it.Measure
 		}
 	}
+}
+
+// relativeChange are words that make a percentage a change relative to something.
+var relativeChange = regexp.MustCompile(`(?i)%\s*(?:\([^)]*\)\s*)?(lower|less|fewer|reduction|decrease|decline|higher|more|greater|increase)\b`)
+
+// besideChange shows what a percentage such as "32% lower (95% CI 12% to 47%)" is as a
+// ratio to the comparator.
+func besideChange(w *working.Working, text string) {
+	m := relativeChange.FindStringSubmatch(text)
+	r := w.Record
+	if m == nil || r.Statistic == nil || *r.Statistic != string(result.Proportion) || r.Estimate == nil || r.Lower == nil || r.Upper == nil || r.Level == nil {
+		return
+	}
+	sign := 1.0
+	switch strings.ToLower(m[1]) {
+	case "lower", "less", "fewer", "reduction", "decrease", "decline":
+		sign = -1
+	}
+	var ratios [3]float64
+	for i, printed := range []*string{r.Estimate, r.Lower, r.Upper} {
+		p, err := convert.ReadPrinted(*printed)
+		if err != nil {
+			return
+		}
+		if ratios[i], err = convert.RatioFromPercentChange(sign * p.Value); err != nil {
+			return
+		}
+	}
+	low, high := min(ratios[1], ratios[2]), max(ratios[1], ratios[2])
+	se, err := convert.LogSEFromInterval(low, high, *r.Level, convert.Normal)
+	if err != nil {
+		return
+	}
+	number := working.Number(se)
+	w.Trail.Alternatives = append(w.Trail.Alternatives, working.Alternative{Name: "as a ratio to the comparator", SE: &number,
+		Note: fmt.Sprintf("%.4g (%.4g to %.4g); SE of the logarithm, by z", ratios[0], low, high)})
 }
 
 // bareSpread reads "12.4 (1.3)", "12.4 (11.2 to 13.6)", "OR 1.8 (1.1 to 2.9)": an

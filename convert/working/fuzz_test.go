@@ -43,7 +43,13 @@ func FuzzWork(f *testing.F) {
 		r.Evidence = result.Evidence{ScaleLow: low, ScaleHigh: extra, Integer: n%2 == 0, Tests: []string{"t test"}, RowP: p}
 		other := r
 		other.GivenAs, other.Arm, other.GivenValue, other.Mates = result.SE, "water", high, []int{0}
-		for _, w := range Work(Facts{Path: "hives.txt", SHA256: "00"}, []result.Result{r, other, r}) {
+		all := Work(Facts{Path: "hives.txt", SHA256: "00"}, []result.Result{r, other, r})
+		for _, changed := range []map[string]string{{"n": "7", "arm": extra}, {"given_as": "sd", "given_value": "1.30"}, {"n": "", "level": "90", "adjusted": "no"}} {
+			if _, w, err := Amend(r, all[0], changed, ""); err == nil {
+				all = append(all, w)
+			}
+		}
+		for _, w := range all {
 			if _, err := json.Marshal(w); err != nil {
 				t.Fatalf("%+v: %v", r, err)
 			}
