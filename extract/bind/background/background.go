@@ -44,7 +44,7 @@ var designs = []struct {
 	means string
 }{
 	{pattern.MustCompile(`(?i)\bcluster[- ]+(?:level )?randomi[sz]|\bclusters were (?:randomi|allocated|assigned)|\brandomi[sz]ed clusters?\b|\bcluster (?:trial|design)`), "clustered"},
-	{pattern.MustCompile(`(?i)\bcross-?over (?:trial|study|design|fashion|manner|randomi)|\brandomi[sz]ed,? (?:[a-z-]+,? )*cross-?over\b`), "crossover"},
+	{pattern.MustCompile(`(?i)\bcross-?over(?:,| )[^.;]{0,40}?\b(?:trial|study|design|fashion|manner|randomi)|\brandomi[sz]ed,? (?:[a-z-]+,? )*cross-?over\b`), "crossover"},
 }
 
 // Of reads a paper's background.

@@ -88,7 +88,7 @@ var (
 	partWord = pattern.MustCompile(`(?i)(?:\bother|\banother|\bfurther|\badditional|\bremaining|\bonly|\bexcept|\bleast|\bmost|\bthan|\babout|\bevery|\bnext|\bfirst|\bof which|\bof whom|\bgroup of|\bboth|\bwhom|[0-9]%?\)?,? and|\band|\bor)\s+$`)
 	joined   = pattern.MustCompile(`(?i)\s(?:of|in|to|at|among|for|with|by|from|and|or|mo|months?|weeks?|wk|days?|years?|hours?|h|min|mg|ml|g|kg|percent|the|were|was|had|per|group|groups|arm|arms|than|out)\s`)
 	share    = pattern.MustCompile(`^[^()]{0,3}\([^()]*%|\([^()]*%[^()]*\)\s*$|^\s+[\w ]{0,30}\(\s*[0-9.·]+\s*%`)
-	within   = pattern.MustCompile(`(?i)\bcross-?over (?:trial|study|design|fashion|manner|randomi)|\brandomi[sz]ed,? (?:[a-z-]+,? )*cross-?over\b|\bwithin[- ](?:subjects?|participants?) (?:design|study|crossover|comparison)|\b(?:his|her|their|its) own controls?\b|\b(?:single|one)[- ](?:arm|group) (?:study|trial|design|pilot|pre)|\bcounter-?balanced\b`)
+	within   = pattern.MustCompile(`(?i)\bcross-?over(?:,| )[^.;]{0,40}?\b(?:trial|study|design|fashion|manner|randomi)|\brandomi[sz]ed,? (?:[a-z-]+,? )*cross-?over\b|\bwithin[- ](?:subjects?|participants?) (?:design|study|crossover|comparison)|\b(?:his|her|their|its) own controls?\b|\b(?:single|one)[- ](?:arm|group) (?:study|trial|design|pilot|pre)|\bcounter-?balanced\b`)
 	armAfter = pattern.MustCompile(`(?i)^[^.;]{0,60}?\b(?:group|arm|controls?|placebo|condition)\b`)
 )
 

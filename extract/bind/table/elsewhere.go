@@ -27,6 +27,9 @@ func (b *binder) findArmSizes() {
 		for c := f.stub; c < f.tab.Cols; c++ {
 			n, l, ok := f.headingN(f.tab.Rows, c)
 			if !ok {
+				n, l, ok = f.firstN(c)
+			}
+			if !ok {
 				continue
 			}
 			name := armWords(f.armOfColumn(f.head, c))
@@ -41,6 +44,32 @@ func (b *binder) findArmSizes() {
 			b.arms = append(b.arms, armSize{name: name, n: n, table: i, l: l})
 		}
 	}
+}
+
+// ofSample is the caption of a table about the sample as a whole.
+var ofSample = pattern.MustCompile(`(?i)\b(?:baseline|characteristics?|demographics?|descriptive)\b`)
+
+// firstN reads the row of n's that opens a table of the sample with arms in its
+// columns.
+func (f *frame) firstN(c int) (int, label, bool) {
+	if !f.colArms || f.armOfColumn(f.head, c) == "" || !ofSample.MatchString(f.tab.Caption.S) {
+		return 0, label{}, false
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		switch ln := &f.lines[r]; {
+		case ln.kind == lineNone:
+		case ln.kind != lineData || len(ln.groups) > 0 || f.rowRole(r).kind != roleN:
+			return 0, label{}, false
+		default:
+			s, ok := f.nCell(r, c)
+			cell := f.grid[r][c]
+			if !ok || cell == nil {
+				return 0, label{}, false
+			}
+			return s.n, f.label(cell), true
+		}
+	}
+	return 0, label{}, false
 }
 
 // size gives a result its n: from its own table, else by the arm's name from
@@ -141,7 +170,7 @@ func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool
 		// A table about the feed or the room has other numbers of its own.
 	case named && x.arm != "" && f.aboutArms(x.arm):
 		if n, ok = c.Each(); !ok && b.sameSubjects(f) {
-			n, ok = c.Whole(!atBaseline(x))
+			n, ok = c.Whole(x.time != "" && !atBaseline(x) || x.time == "" && !ofSample.MatchString(f.tab.Caption.S))
 		}
 	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
@@ -258,7 +287,7 @@ func (b *binder) otherSize(i int, arm string) (size, bool) {
 	if b.otherN(a) {
 		return size{}, false
 	}
-	return sizeOfLabel(a.n, a.l, result.NElsewhere, "heading in "+tableName(b.frames[a.table])), true
+	return sizeOfLabel(a.n, a.l, result.NElsewhere, "heading or row of n in "+tableName(b.frames[a.table])), true
 }
 
 // otherN reports that further down in its table the arm is headed with another

@@ -157,7 +157,7 @@ func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
-var nMention = pattern.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:` + census.Subjects + `|for|in|as)\b`)
+var nMention = pattern.MustCompile(`(?i)(?:\bn\s*[=:]\s*(\d[\d,]*))|[(\[]\s*(\d[\d,]*)\s*[)\]]|\b(\d[\d,]*)\s+(?:` + census.Subjects + `|for|in|as|with)\b`)
 
 var (
 	nOfNext  = pattern.MustCompile(`\bn\s*[=:]\s*(\d[\d,]*)\s+(?:for|in)\s+(?:the )?$`)
@@ -214,7 +214,7 @@ func nForArm(s, arm string, others []string) (int, bool) {
 // countsNobody reports a bare "3 for" whose number belongs to words before it.
 func countsNobody(before string, m []int, start int) bool {
 	said := before[m[0]:m[1]]
-	if !strings.HasSuffix(said, " for") && !strings.HasSuffix(said, " in") && !strings.HasSuffix(said, " as") {
+	if !strings.HasSuffix(said, " for") && !strings.HasSuffix(said, " in") && !strings.HasSuffix(said, " as") && !strings.HasSuffix(said, " with") {
 		return false
 	}
 	return m[0] == 0 && start > 0 || noCount.MatchString(before[:m[0]])
