@@ -253,6 +253,29 @@ func TestNoKeyDecidesWhatWasNotLookedAt(t *testing.T) {
 	}
 }
 
+func TestZoomingWhileThePageIsDrawn(t *testing.T) {
+	b := tab{t, browser(t)}
+	slow := slowPapers{delay: 1500 * time.Millisecond}
+	r := start(t, Options{Book: newBook(t, t.TempDir(), "AB"), Papers: slow, ReadTyped: readTyped})
+	b.open(r.address)
+	b.strike("Enter")
+	b.until("not before the page is there", said+`.startsWith('Not confirmed')`)
+	b.strike("+", "t", "Enter")
+	b.press("Enter") // waits until it may
+	b.until("confirmed", said+`.startsWith('confirmed')`)
+}
+
+// slowPapers take their time to draw a page.
+type slowPapers struct {
+	fakePapers
+	delay time.Duration
+}
+
+func (s slowPapers) Picture(ctx context.Context, p Paper, page, width int) ([]byte, error) {
+	time.Sleep(s.delay)
+	return s.fakePapers.Picture(ctx, p, page, width)
+}
+
 func TestADecisionIsNotTakenForOneElsewhere(t *testing.T) {
 	b := tab{t, browser(t)}
 	r := start(t, Options{Book: newBook(t, t.TempDir(), "AB"), Papers: fakePapers{}, ReadTyped: readTyped})

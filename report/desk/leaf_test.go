@@ -2,6 +2,7 @@ package desk
 
 import (
 	"context"
+	"errors"
 	"path/filepath"
 	"strings"
 	"testing"
@@ -187,13 +188,31 @@ func TestPapersWithoutPages(t *testing.T) {
 	}
 	b.press("v")
 	b.until("the methods", said+`.startsWith('spread was read here') && document.querySelector('.passage mark.src').textContent.startsWith('Values are')`)
-	b.strike("Enter")
-	b.until("the numbers are not in view now", said+`.startsWith('No open cell')`)
+	for _, key := range []string{"Enter", "c"} {
+		b.strike(key)
+		b.until("the numbers are not in view now", said+`.startsWith('Not confirmed: its numbers')`)
+		value[bool](b, `(() => { document.getElementById('said').textContent = ''; document.activeElement.blur(); return true; })()`)
+	}
 	b.strike("v")
 	b.until("back", said+`.startsWith('Back')`)
 	b.press("Enter")
 	b.until("both cells", said+`.startsWith('That was the last')`)
 	if all, err := book.Decisions().All(0); err != nil || len(all) != 2 {
 		t.Errorf("%d decisions (%v), want two", len(all), err)
+	}
+}
+
+func TestAPaperThatCannotBeShown(t *testing.T) {
+	b := tab{t, browser(t)}
+	book := newBook(t, t.TempDir(), "AB")
+	b.open(start(t, Options{Book: book, Papers: fakePapers{fail: errors.New("colonies.pdf has changed since it was scanned")}, ReadTyped: readTyped}).address)
+	b.until("said where the page would be", `document.getElementById('view').innerText.includes('has changed since')`)
+	b.press("Enter")
+	b.until("nothing is confirmed unseen", said+`.startsWith('Not confirmed: its numbers')`)
+	b.press("X")
+	b.until("asked why", `document.getElementById('dialog').open`)
+	b.strike("Escape")
+	if all, err := book.Decisions().All(0); err != nil || len(all) != 0 {
+		t.Errorf("%d decisions (%v) without a page", len(all), err)
 	}
 }

@@ -23,6 +23,7 @@ export class Leaf {
     this.turns = new Map(); // of pages turned by hand
     this.ready = new Set(); // addresses of pictures that were drawn
     this.soon = ''; // pixels, of the picture that was asked for first last time
+    this.onseen = null;
     this.onpick = null;
     this.onarea = null;
     this.#drag();
@@ -30,18 +31,25 @@ export class Leaf {
 
   // show shows where a working was read; with place, the page of one of its
   // sources, which may be another; blind, the numbers only, for one who is to find
-  // the rest alone. It ends when it can be seen, or cannot be drawn, and says
-  // whether it is still what is wanted.
+  // the rest alone. onseen is called when it can be seen or cannot be drawn.
   async show(paper, working, mates, { place = null, blind = false } = {}) {
     const turn = (this.last ?? 0) + 1;
     this.last = turn;
     const page = place?.page ?? working.record.page;
     const leaf = page ? await this.#leaf(paper, page) : null;
-    if (this.last !== turn) return false; // moved on meanwhile
+    if (this.last !== turn) return; // moved on meanwhile
     this.now = { paper, working, mates, place, blind };
     if (leaf?.of) await this.#page(leaf, page);
     else await this.#passage(place);
-    return this.last === turn;
+    if (this.last === turn) this.onseen?.();
+  }
+
+  // none says why nothing can be shown.
+  none(why) {
+    this.shown = null;
+    replace(this.view, el('p', { class: 'passage' }, why));
+    $('page-number').textContent = '';
+    replace($('legend'));
   }
 
   again() { if (this.now) return this.show(this.now.paper, this.now.working, this.now.mates, this.now); }
@@ -222,23 +230,29 @@ export class Leaf {
   // or scrolled out of view.
   away() {
     const places = (this.now?.working.record.places ?? []).filter((p) => !OWN.has(p.field));
-    if (!this.shown?.page) return places.filter((p) => p.byte_offset !== null && !this.inPassage?.has(p.byte_offset));
+    if (!this.shown) return [];
+    if (!this.shown.page) return places.filter((p) => p.byte_offset !== null && !this.inPassage?.has(p.byte_offset));
     return places.filter((p) => p.box && !this.#inView(p));
   }
 
   #inView(p) {
     const { node, scale, sheet, page } = this.shown, v = this.view;
     if (p.page !== page) return false;
-    const b = sheet.box(p.box), left = node.offsetLeft - v.scrollLeft, top = node.offsetTop - v.scrollTop;
+    const box = sheet.box(p.box), inside = (x, end) => Math.min(Math.max(x, 0), end); // of the page, whatever the file says
+    const b = { x: inside(box.x, sheet.w), x1: inside(box.x1, sheet.w), y: inside(box.y, sheet.h), y1: inside(box.y1, sheet.h) };
+    const left = node.offsetLeft - v.scrollLeft, top = node.offsetTop - v.scrollTop;
     return left + b.x * scale >= 0 && top + b.y * scale >= 0 && left + b.x1 * scale <= v.clientWidth && top + b.y1 * scale <= v.clientHeight;
   }
 
   // sees says whether the numbers of a working are in view. What has no place, as
   // what was typed by hand, cannot be looked for.
   sees(working) {
+    if (!this.shown) return false;
     const own = (working.record.places ?? []).filter((p) => OWN.has(p.field));
-    if (!this.shown?.page) return own.every((p) => p.byte_offset === null || this.inPassage?.has(p.byte_offset));
-    return own.every((p) => !p.box || this.#inView(p));
+    if (!this.shown.page) return own.every((p) => p.byte_offset === null || this.inPassage?.has(p.byte_offset));
+    if (this.shown.page !== working.record.page) return own.every((p) => !p.box);
+    // A number that the paper carries over to the next page cannot be in view too.
+    return own.every((p) => !p.box || p.page !== this.shown.page || this.#inView(p));
   }
 
   // elsewhere shows, one after the other, the places that the result was read

@@ -68,12 +68,7 @@ function draw() {
   showCard();
   state.shownAt = null;
   $('choices').setAttribute('aria-busy', 'true');
-  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working), { blind: hidden(cell) }).catch((e) => { fail(e); return true; }).then((seen) => {
-    if (!seen) return;
-    state.shownAt = performance.now();
-    drawChoices(); // how many cells are in view is known only now
-    setTimeout(() => { if (looked()) $('choices').setAttribute('aria-busy', 'false'); }, GLANCE + 1);
-  });
+  leaf.show(state.row.paper, cell.working, state.row.cells.filter((c) => c !== cell).map((c) => c.working), { blind: hidden(cell) }).catch((e) => { leaf.none(e.message); leaf.onseen(); fail(e); });
   const ahead = visible().slice(state.at + 1, state.at + 4).filter((row) => row.page && (row.page !== state.row.page || row.paper !== state.row.paper));
   for (const key of new Set(ahead.map((row) => `${row.paper} ${row.page}`))) leaf.prepare(...key.split(' '));
 }
@@ -170,15 +165,17 @@ async function decide(cells, decision, more = {}) {
   return true;
 }
 
-// onScreen are the cells of the row whose cards can be seen whole right now, and
-// their numbers on the page.
-function onScreen() {
+// cardsInView are the cells of the row whose cards can be seen whole right now.
+function cardsInView() {
   const side = $('under').getBoundingClientRect();
   return state.row.cells.filter((c) => {
     const card = $('row').querySelector(`[data-id="${c.working.record.id}"]`)?.getBoundingClientRect();
-    return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1 && leaf.sees(c.working);
+    return card && card.top >= side.top - 1 && card.bottom <= side.bottom + 1;
   });
 }
+
+// onScreen are those of them whose numbers on the page can be seen too.
+const onScreen = () => cardsInView().filter((c) => leaf.sees(c.working));
 
 // toConfirm are the open cells that Enter confirms: those on the screen, but a
 // doubtful one only when it is stepped into.
@@ -191,24 +188,33 @@ function toConfirm(held = []) {
   });
 }
 
+leaf.onseen = () => {
+  state.shownAt ??= performance.now();
+  drawChoices(); // how many cells are in view is known only now
+  setTimeout(() => { if (looked()) $('choices').setAttribute('aria-busy', 'false'); }, GLANCE + 1);
+};
+
 const TOO_SOON = 'Not confirmed: this has only just appeared. Look at it, then press again.';
+
+const OUT_OF_VIEW = 'Not confirmed: its numbers on the page or its card are out of view.';
 
 const act = {
   'confirm-row': () => {
     if (!looked()) { say(TOO_SOON); return; }
     const held = [], go = toConfirm(held);
-    if (!go.length) { say(cellNow().state === 'open' ? 'No open cell of this row is in view.' : `This row is decided: go on with ↓, to the next open one with o, or take it back with u.`); return; }
+    if (!go.length) { say(cellNow().state === 'open' ? OUT_OF_VIEW : 'This row is decided: go on with ↓, to the next open one with o, or take it back with u.'); return; }
     return decide(go, 'confirmed').then((done) => { if (done && held.length) say(`${go.length} confirmed. ${held.length} doubtful left: each is decided by itself.`); });
   },
   confirm: () => {
     if (!looked()) { say(TOO_SOON); return; }
     if (!isOpen(cellNow())) { say('This cell is decided already: take it back with u first.'); return; }
+    if (!onScreen().includes(cellNow())) { say(OUT_OF_VIEW); return; }
     return decide([cellNow()], 'confirmed');
   },
   amend: () => { state.form = 'amend'; drawCell(); },
   drop: async () => { const a = await askReason('Drop this cell: why?'); if (a) await decide([cellNow()], 'dropped', a); },
   'drop-row': async () => {
-    const cells = onScreen().filter(isOpen);
+    const cells = cardsInView().filter(isOpen);
     if (!cells.length) { say('No open cell of this row is in view.'); return; }
     const a = await askReason(cells.length > 1 ? `Drop these ${cells.length} cells: why?` : 'Drop this cell: why?');
     if (a) await decide(cells, 'dropped', a);
