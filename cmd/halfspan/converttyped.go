@@ -3,7 +3,6 @@ package main
 import (
 	"fmt"
 	"math"
-	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -12,6 +11,7 @@ import (
 	"halfspan/convert/working"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -33,9 +33,9 @@ func loneSize(text string) int {
 }
 
 // bothSizes are the ways to type the n of two arms.
-var bothSizes = []*regexp.Regexp{
-	regexp.MustCompile(`(?i)\bn\s*[=:]?\s*(\d{1,9})\s*(?:and|vs?\.?|versus|against|,|;|/|\+)\s*(?:n\s*=\s*)?(\d{1,9})\b`),
-	regexp.MustCompile(`(?i)\bn\s*[1₁]\s*=\s*(\d{1,9})\D{1,12}\bn\s*[2₂]\s*=\s*(\d{1,9})\b`),
+var bothSizes = []*pattern.Pattern{
+	pattern.MustCompile(`(?i)\bn\s*[=:]?\s*(\d{1,9})\s*(?:and|vs?\.?|versus|against|,|;|/|\+)\s*(?:n\s*=\s*)?(\d{1,9})\b`),
+	pattern.MustCompile(`(?i)\bn\s*[1₁]\s*=\s*(\d{1,9})\D{1,12}\bn\s*[2₂]\s*=\s*(\d{1,9})\b`),
 }
 
 // pairOfSizes reads the n of two arms from a typed text.
@@ -83,7 +83,7 @@ func saySizes(results []result.Result, text string) {
 }
 
 // fraction is a count of a whole.
-var fraction = regexp.MustCompile(`(\d{1,9})\s*(?:/|of|out of)\s*(\d{1,9})\b`)
+var fraction = pattern.MustCompile(`(\d{1,9})\s*(?:/|of|out of)\s*(\d{1,9})\b`)
 
 // wholeOf gives n where the text says "x of n" and that is the percentage printed.
 func wholeOf(percentage, text string) int {
@@ -127,7 +127,7 @@ func sayKind(r *result.Result, text string) {
 }
 
 // relativeChange are words that make a percentage a change relative to something.
-var relativeChange = regexp.MustCompile(`(?i)%\s*(?:\([^)]*\)\s*)?(lower|less|fewer|reduction|decrease|decline|higher|more|greater|increase)\b`)
+var relativeChange = pattern.MustCompile(`(?i)%\s*(?:\([^)]*\)\s*)?(lower|less|fewer|reduction|decrease|decline|higher|more|greater|increase)\b`)
 
 // besideChange shows what a percentage such as "32% lower (95% CI 12% to 47%)" is as a
 // ratio to the comparator.
@@ -230,7 +230,7 @@ func bareSpread(text string) []result.Result {
 }
 
 // variation is a coefficient of variation in percent.
-var variation = regexp.MustCompile(`(?i)\b(?:g?CV|coefficient of variation)\s*[=:]?\s*(\d+(?:\.\d+)?)\s*%`)
+var variation = pattern.MustCompile(`(?i)\b(?:g?CV|coefficient of variation)\s*[=:]?\s*(\d+(?:\.\d+)?)\s*%`)
 
 // onlyCV works out a geometric mean that has a coefficient of variation in place of an
 // interval.
