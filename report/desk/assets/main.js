@@ -21,14 +21,24 @@ const visible = () => state.rows.filter((r) => state.aside || !r.aside);
 const cellNow = () => state.row?.cells[state.cell];
 const hidden = (cell) => state.mode === 'type-first' && cell.type_first && !state.typed.has(cell.working.record.id);
 
+// list reads the rows anew. Of several answers under way the last one counts.
+let asked = 0, answered = 0;
 async function list() {
-  const data = await get('rows');
-  state.rows = data.rows;
-  state.version = data.version;
-  state.flags = data.flags;
-  const c = data.counts;
-  $('progress').textContent = `${c.decided} of ${c.all} decided · ${c.doubtful} doubtful open`;
-  $('aside-count').textContent = String(c.aside);
+  const turn = ++asked;
+  try {
+    const data = await get('rows');
+    if (turn !== asked) return;
+    state.rows = data.rows;
+    state.version = data.version;
+    state.flags = data.flags;
+    const at = visible().findIndex((r) => r.key === state.row?.key);
+    if (at >= 0) state.at = at;
+    const c = data.counts;
+    $('progress').textContent = `${c.decided} of ${c.all} decided · ${c.doubtful} doubtful open`;
+    $('aside-count').textContent = String(c.aside);
+  } finally {
+    answered = Math.max(answered, turn);
+  }
 }
 
 async function load(keep) {
@@ -130,7 +140,7 @@ function fail(error) {
 const isOpen = (cell) => cell.state === 'open';
 
 // advance goes on after a decision: to the next open cell of the row, else to the
-// next row that has one. The list is read again meanwhile, not first.
+// next row that has one. The list is read again when that is shown.
 async function advance(decided, newState) {
   const ids = new Set(decided.map((c) => c.working.record.id));
   for (const r of state.rows) for (const c of r.cells) if (ids.has(c.id)) c.state = newState;
@@ -142,9 +152,9 @@ async function advance(decided, newState) {
   }
   const stay = at < 0;
   if (stay) at = state.at;
-  const [row] = await Promise.all([get('row', { key: rows[at].key }), list()]);
-  take(at, row, stay ? decided[0].working.record.id : undefined);
+  take(at, await get('row', { key: rows[at].key }), stay ? decided[0].working.record.id : undefined);
   if (stay) say('That was the last open row.');
+  list().catch(fail);
 }
 
 async function decide(cells, decision, more = {}) {
@@ -355,7 +365,7 @@ document.addEventListener('click', (e) => { const name = e.target.closest?.('[da
 
 // A decision taken elsewhere (another tab, the terminal) shows up here. While
 // something is being done here it waits: what changed may be that.
-const quiet = () => !busy && !document.hidden && !state.form && !$('dialog').open && !document.activeElement?.matches('input, textarea, select');
+const quiet = () => !busy && asked === answered && !document.hidden && !state.form && !$('dialog').open && !document.activeElement?.matches('input, textarea, select');
 setInterval(async () => {
   if (!quiet()) return;
   const { version } = await get('version').catch(() => ({}));
