@@ -11,7 +11,7 @@ var (
 	inOrder = pattern.MustCompile(`(?i)\brespectively\b|\bresp\.`)
 	joining = pattern.MustCompile(`(?i)^[)\]%]?\s*(?:[\p{L}/%²]+\s*)?[)\]]?\s*(?:vs\.?|versus|,?\s*and|&|compared (?:with|to)|,|;)\s*\(?$`)
 	// linked is what may stand between a result and its arm's name behind it.
-	linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
+	linked = pattern.MustCompile(`(?i)^[^0-9;.]{0,25}?\b(?:in|for|with|among|on|under|at|after)\b(?:\s+(?:the|those|patients|participants|women|subjects|on|receiving|given|taking|assigned|to|\w+'s))*\s*$`)
 	// longUnit is a unit that has digits: "mL/min/1.73 m2".
 	longUnit = pattern.MustCompile(`^\s*[\p{L}µμ%][^\s,;()]*/[^\s,;()]*[0-9²³][^\s,;()]*(?:\s?m[2²](?:/[\p{L}]+)?)?`)
 	// atOnceArm is what may stand between an arm's name and its result.

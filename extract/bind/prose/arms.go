@@ -28,6 +28,10 @@ func (p *para) setArms(r *result.Result, c *cand) {
 		return
 	}
 	if between(r) {
+		if m, ok := p.oneEach(c, all, from, to); ok {
+			p.setArm(r, "arm", m)
+			return
+		}
 		if a, b, ok := p.twoArms(c, all, from); ok {
 			p.setArm(r, "arm", a)
 			p.setArm(r, "arm2", b)
@@ -37,6 +41,29 @@ func (p *para) setArms(r *result.Result, c *cand) {
 	if m, ok := p.armOf(c, all, from, to); ok {
 		p.setArm(r, "arm", m)
 	}
+}
+
+// oneEach gives the arm of a comparison that the sentence lists for one arm after
+// the other: "1.2 kg and 0.9 kg less than the controls with syrup and pollen,
+// respectively"; and of one whose contrast is in its name, "a water-corrected mass
+// of 1.2 kg with syrup".
+func (p *para) oneEach(c *cand, all []mention, from, to int) (mention, bool) {
+	units, at := p.unitsOf(c, from, to)
+	if at < 0 || len(units) < 2 {
+		return mention{}, false
+	}
+	for _, m := range all {
+		if against.MatchString(p.s[from:m.start]) {
+			return mention{}, false // "higher with syrup than with water by 1.2 and 0.9 kg, respectively"
+		}
+	}
+	if p.says(c.est.Start, inOrder) {
+		return p.byOrder(units, at, all)
+	}
+	if doubled.MatchString(p.s[from:units[0].start]) {
+		return p.justBehind(units[at], all)
+	}
+	return mention{}, false
 }
 
 func (p *para) setArm(r *result.Result, field string, m mention) {

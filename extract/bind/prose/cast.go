@@ -35,6 +35,8 @@ type cast struct {
 	names map[string]alias // by their words
 	first map[string][]string
 
+	doses map[string]int // how often a dose was named as a group
+
 	totals []size // of all arms together, in the tables' columns of totals
 }
 
@@ -42,6 +44,7 @@ type cast struct {
 // running text and from the column headings of tables.
 func (f *finder) learn(tables []result.Result) {
 	f.cast.index, f.cast.names, f.cast.first = map[string]int{}, map[string]alias{}, map[string][]string{}
+	f.cast.doses = map[string]int{}
 	f.enlist(tables)
 	for i := range f.doc.Blocks {
 		b := &f.doc.Blocks[i]
@@ -83,6 +86,9 @@ func (f *finder) learnText(b *paper.Block) {
 	}
 	for _, m := range groupCount.FindAllStringSubmatchIndex(s, -1) {
 		f.countOf(b, m)
+	}
+	for _, m := range doseGroup.FindAllStringSubmatch(s, -1) {
+		f.dose(strings.ReplaceAll(m[1], ",", ""), strings.ToLower(m[2]), m[1]+" "+m[2])
 	}
 	for _, m := range abbreviated.FindAllStringSubmatchIndex(s, -1) {
 		f.abbreviate(nameBefore(s[:m[3]]), s[m[4]:m[5]])
@@ -208,6 +214,24 @@ func (c *cast) rename(key []string, arm int) {
 		return
 	}
 	c.call(key, arm)
+}
+
+// dose adds the arm of "the 400-mg group"; one that is named only once is
+// none.
+func (f *finder) dose(number, unit, name string) {
+	k := number + " " + unit
+	if a, known := f.cast.names[k]; known {
+		f.cast.arms[a.arm].seen++
+		return
+	}
+	const often = 2
+	if f.cast.doses[k]++; f.cast.doses[k] < often {
+		return
+	}
+	i := len(f.cast.arms)
+	f.cast.index[k] = i
+	f.cast.arms = append(f.cast.arms, arm{name: name, key: []string{number, unit}, seen: often, group: true})
+	f.cast.call([]string{number, unit}, i)
 }
 
 // lost are the words of sentences that count who left.

@@ -7,11 +7,18 @@ import (
 	"halfspan/extract/pattern"
 )
 
+// doseOf is a dose, and the units it may have.
+const (
+	doseUnits = `mg/kg|mg|g|µg|μg|ug|ng|ml|iu`
+	doseOf    = `([0-9]+(?:,[0-9]{3})*(?:\.[0-9]+)?)[- \x{a0}](` + doseUnits + `)`
+)
+
 // intoGroup is what joins a count to the name of its group.
 const intoGroup = `(?:(?:were|was)\s+)?(?:(?:randomly\s+)?(?:assigned|allocated|randomi[sz]ed)\s+)?(?:in|to|into)\s+`
 
 var (
 	groupCount  = pattern.MustCompile(`(?i)(?:^|[^\w.,–/-])([0-9]{1,5}|` + census.Words + `)\s+(?:` + census.Subjects + `\s+)?` + intoGroup + `(?:the\s+)?((?:[\p{L}0-9][\p{L}0-9+/-]*\s+){1,4}?)(?:group|arm)\b`)
+	doseGroup   = pattern.MustCompile(`(?i)\b` + doseOf + `(?:(?:,| and| or| vs\.?| versus) ` + `[0-9][0-9,.]*[- \x{a0}](?:` + doseUnits + `))*(?:[- ](?:[\p{L}-]+))?[- ](?:group|arm|dose|infusion)s?\b`)
 	groupNamed  = pattern.MustCompile(`([\p{L}][\p{L}0-9+/-]*(?: [\p{L}0-9][\p{L}0-9+/-]*){0,3}) (?:group|arm)s?\b`)
 	abbreviated = pattern.MustCompile(`([\p{L}0-9])(?: group| arm)? ?\(([A-Z][A-Za-z]{0,6}[0-9+-]{0,2})(?:[-– ](?:group|arm))?\)`)
 	stopName    = map[string]bool{}

@@ -255,7 +255,7 @@ func (p *para) namesSomething(r *result.Result, a, b int) bool {
 		if t.Kind != grammar.TokWord || saysNothing[t.Value] && !(ratioName[t.Value] && r.Statistic != result.Ratio) || functionWords[t.Value] || weakName[t.Value] || utf8.RuneCountInString(t.Value) < 2 {
 			continue
 		}
-		if unitWords[t.Value] && !countWords[t.Value] {
+		if printed := p.s[t.Start:t.End]; unitWords[t.Value] && !countWords[t.Value] && !(ratioName[t.Value] && printed == strings.ToUpper(printed)) {
 			continue
 		}
 		known := false
