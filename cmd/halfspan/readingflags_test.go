@@ -50,6 +50,7 @@ func raisedByReading() map[string]string {
 		"scale-differs":       invented("", "Acceptance was 62% (95% CI 0.51 to 0.73) in the colonies of the station.", ""),
 		"power-of-ten":        invented("Data are mean ± SD.", "The spores in the bees of the hive were 2.1 × 10⁵ ± 0.4 × 10⁵ at the end.", ""),
 		"n-conflict":          invented("", "", "Table 1. Colonies, mean (SD)\n\nOutcome\tBaseline\tBaseline\tWeek 6\tWeek 6\tDifference (95% CI)\n\tSyrup (n = 42)\tWater (n = 40)\tSyrup (n = 38)\tWater (n = 36)\t\nColony mass, kg\t12.4 (1.3)\t12.1 (1.2)\t14.1 (1.5)\t13.0 (1.4)\t1.1 (0.4 to 1.8)\nProtein, mg/mL\t8.1 (1.0)\t7.7 (0.9)\t8.4 (1.1)\t7.6 (1.0)\t0.8 (0.3 to 1.3)"),
+		"n-from-counts":       invented("", "", "Table 1. Colonies at the start, mean (SD) or share\n\nOutcome\tSyrup\tWater\nColony mass, kg\t12.4 (1.3)\t12.1 (1.2)\nSwarmed before\t43% [23/53]\t33% [16/49]\nTwo queens\t13% [7/53]\t10% [5/49]"),
 		"n-total":             invented("", "", "Table 1. Colonies at week 6, mean (SD)\n\nOutcome\tn\tSyrup\tWater\nColony mass, kg\t82\t12.4 (1.3)\t12.1 (1.2)\nFlight time, min\t80\t24.6 (3.1)\t22.8 (3.4)"),
 		"outcome-unclear":     invented("", "", "Table 1. Mass of the colonies in kg, mean (SD)\n\n\tSyrup (n = 42)\tWater (n = 40)\nBaseline\t12.4 (1.3)\t12.1 (1.2)\nWeek 6\t14.1 (1.5)\t13.0 (1.4)"),
 		"row-shape-odd":       invented("", "", "Table 1. Colonies at week 6\n\nOutcome\tSyrup (n = 42)\t\nColony mass, kg, mean (95% CI)\t12.4\t11.2 to 13.6\nFlight time, min, mean (95% CI)\t24.6\t22.1 to 27.1"),

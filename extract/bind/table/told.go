@@ -1,7 +1,6 @@
 package table
 
 import (
-	"regexp"
 	"strings"
 
 	"halfspan/extract/bind/census"
@@ -298,7 +297,7 @@ func (b *binder) longNames(f *frame, arm string) []string {
 		return got
 	}
 	var out []string
-	defined := regexp.MustCompile(`\b` + arm + `\s*[:=,–-]\s*([A-Za-z][^;.,:()=]{2,50})`)
+	defined := pattern.MustCompile(`\b` + arm + `\s*[:=,–-]\s*([A-Za-z][^;.,:()=]{2,50})`)
 	runs := []string{f.tab.Caption.S}
 	for _, n := range f.notes.list {
 		runs = append(runs, n.run.S)
@@ -308,7 +307,7 @@ func (b *binder) longNames(f *frame, arm string) []string {
 			out = append(out, strings.TrimSpace(m[1]))
 		}
 	}
-	inText := regexp.MustCompile(`((?:[A-Za-z+-]+\s+){1,4})\(` + arm + `\b`)
+	inText := pattern.MustCompile(`((?:[A-Za-z+-]+\s+){1,4})\(` + arm + `\b`)
 	for i := range b.doc.Blocks {
 		if bl := &b.doc.Blocks[i]; bl.Kind == paper.Paragraph && strings.Contains(bl.Text.S, "("+arm) {
 			if m := inText.FindStringSubmatch(bl.Text.S); m != nil {
