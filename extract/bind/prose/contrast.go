@@ -17,7 +17,7 @@ var (
 	linkedWith = pattern.MustCompile(`(?i)\b(?:associated|correlated)\b`)
 	beats      = pattern.MustCompile(`(?i)^\s*(?:bpm|beats)\b|^[^;]{0,40}?\bbpm\b`)
 	// moreish are words of comparison right behind a value with its spread, or behind
-	// the next values of its list: "14.5 ± 5.4 and 17.2 ± 4.9 higher".
+	// the next values of its list: "8.3 ± 2.1 and 9.6 ± 2.4 higher".
 	moreish = pattern.MustCompile(`(?i)^%?(?:\s*(?:,|and|,\s*and)\s*[−-]?[0-9.]+\s*%?\s*±\s*[0-9.]+\s*%?)*[^).;,]{0,45}\b(?:higher|lower|greater|less|more|longer|shorter|larger|smaller)\b`)
 )
 

@@ -99,7 +99,7 @@ func (p *para) misfit(c *cand, n grammar.Number) float64 {
 		w += 9
 		switch {
 		case p.gap(c, n) && n.Percent && c.lower.Percent && p.r.Items[c.item].Bracket > 0:
-			w = 1 // "6.4% (95% CI 77.2% to 95.5%)": a slip, kept as printed
+			w = 1 // "7.8% (95% CI 68.4% to 87.2%)": a slip, kept as printed
 		case p.gap(c, n):
 			w -= 6
 		}

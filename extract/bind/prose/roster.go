@@ -64,8 +64,8 @@ func ofGroups(t *result.Result) bool {
 }
 
 // shorten lets the arms of tables be named as sentences do: "syrup" for "Syrup
-// 400 mg once daily", "the 5-mg group" for "Syrup, 5 mg", "the twice-daily group"
-// for "Twice-daily syrup". A short name holds what tells the arm from the others.
+// 250 mg at noon", "the 5-mg group" for "Syrup, 5 mg", "the evening group"
+// for "Evening syrup". A short name holds what tells the arm from the others.
 func (f *finder) shorten() {
 	c := &f.cast
 	holders := map[string]int{} // arms of tables by the words of their names

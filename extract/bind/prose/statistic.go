@@ -242,7 +242,7 @@ func (p *para) settleSpread(c *cand, n named, before, behind string) named {
 		if n.measure != "" {
 			return n
 		}
-		n.statistic = result.Mean // "a ratio of 0.72 ± 0.08" of the values of one group
+		n.statistic = result.Mean // "a ratio of 0.31 ± 0.05" of the values of one group
 	case result.Median:
 		if !p.resultBetween(n.at.End, c.est.Start) {
 			return n

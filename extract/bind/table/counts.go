@@ -25,7 +25,7 @@ const (
 // them where n stands in the heading, and hardly ever for a mean and its SD).
 func (f *frame) countEvidence(e *estimate, sp *spread) countGrade {
 	if sp.shape == shapeInterval && sp.lower.Value != "" && !strings.ContainsAny(sp.lower.Value+sp.upper.Value, ".") && sp.item.Sep == "," && f.percentWithCount(e) {
-		return countSure // a thousands comma: 39.4 (10,369)
+		return countSure // a thousands comma: 41.7 (12,508)
 	}
 	if sp.shape != shapeBracket || sp.cell != e.cell {
 		return countNever
