@@ -11,7 +11,7 @@ import (
 var analysisName = pattern.MustCompile(`(?i)^(?:the )?(?:(?:adjusted|unadjusted|main|primary) )?(?:` +
 	`(?:(?:modified )?intent(?:ion)?[- ]to[- ]treat|m?ITT|per[- ]protocol|as[- ]treated|on[- ]treatment|sensitivity|complete[- ]cases?|completers?'?|available[- ]cases?|observed[- ]cases?)(?: (?:analys[ei]s|population|set|sample|cohort|only))?` +
 	`|(?:main|primary|secondary|post[- ]hoc|exploratory|full|safety|evaluable|efficacy|(?:m?ITT|PP)) (?:analys[ei]s(?: set)?|population|set|sample))` +
-	`\s*(?:\d{1,2})?\s*(?:[(\[:].*)?$`)
+	`(?: (?:with|without|using|by|based on)\b.*)?\s*(?:\d{1,2})?\s*(?:[(\[:].*)?$`)
 
 // analysisBlock reports a group label over a block of rows that names their
 // analysis, where each analysis has one block: then the blocks are the outermost

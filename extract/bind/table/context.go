@@ -278,7 +278,7 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		case p.kind == partEmpty:
 		default:
 			switch {
-			case own && f.partOfScale(e.row, p.name):
+			case own && (f.partOfScale(e.row, p.name) || f.modelCols || f.isArm(fold(x.arm)) && f.category(e)):
 			case own && f.subgroupLike(p.name):
 				if n := len(ln.groups); n > 0 && len(ln.labels) == 1 {
 					for _, g := range f.lines[ln.groups[n-1]].labels {

@@ -166,7 +166,9 @@ func (f *frame) contrastArms(e *estimate, x *context) {
 		return
 	}
 	if x.arm == "" {
-		x.arm = f.armOfColumn(e.row, e.col)
+		if x.arm = f.armOfColumn(e.row, e.col); x.arm != "" {
+			x.armFrom = f.columnName(e.col)
+		}
 	}
 	ln := &f.lines[e.row]
 	for _, l := range append(append([]label{}, ln.labels...), f.path(e.row, e.col)...) {

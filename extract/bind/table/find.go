@@ -299,6 +299,7 @@ func printed(n grammar.Number) string {
 func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *context, rd *reading) {
 	r.Arm, r.Arm2, r.Time, r.Subgroup = x.arm, x.arm2, x.time, x.subgroup
 	r.Outcome, r.Unit, r.Heading = x.outcome, x.unit, x.heading
+	r.Arm, r.Arm2 = f.sameName(r.Arm), f.sameName(r.Arm2)
 	if power := e.value.Power; power != "" {
 		r.Unit = strings.TrimSpace("×" + power + " " + r.Unit)
 		r.Raise("power-of-ten", "the digits are printed with the factor ×"+power+", which stands in the unit")

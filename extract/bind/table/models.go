@@ -179,3 +179,32 @@ func (f *frame) measuredHead() bool {
 	}
 	return false
 }
+
+// category reports a row that is one level of a predictor: its estimate compares
+// it with the reference row of its group. It is no subgroup.
+func (f *frame) category(e *estimate) bool {
+	ln := &f.lines[e.row]
+	if len(ln.groups) == 0 || len(ln.labels) != 1 {
+		return false
+	}
+	switch f.columnStatistic(e) {
+	case "ratio", "coefficient", "risk difference", "mean difference":
+		return f.referenceRow(e) >= 0
+	}
+	return false
+}
+
+// sameName gives the name of an arm as the table prints it first: "Group (1)",
+// "Group(1)" and "group 1" are one.
+func (f *frame) sameName(arm string) string {
+	if arm == "" {
+		return ""
+	}
+	key := strings.Join(words(arm), " ")
+	for _, a := range f.armNames() {
+		if strings.Join(words(a), " ") == key {
+			return a
+		}
+	}
+	return arm
+}

@@ -132,7 +132,7 @@ func (f *frame) deepLabels(r int, own, above []label) (labels, byCol []label) {
 }
 
 // overLabels is a heading over the labels of the rows.
-var overLabels = pattern.MustCompile(`(?i)^(?:outcomes?|variables?|characteristics?|parameters?|items?|factors?|measures?)(?: variables?| measures?)?:?$`)
+var overLabels = pattern.MustCompile(`(?i)^(?:outcomes?|variables?|characteristics?|parameters?|items?|factors?|measures?|interventions?|treatments?|groups?|arms?)(?: variables?| measures?)?:?$`)
 
 // unitAlone is the second line of a label that holds only its unit: "(mg/mL)".
 var unitAlone = pattern.MustCompile(`^[(\[][^()\[\]]{1,20}[)\]]$`)
@@ -314,8 +314,20 @@ func (f *frame) kindOf(r int, own []label) lineKind {
 		return lineGroup
 	case headings+ns == filled && (filled >= 2 || f.tab.Cols-f.stub <= 2) && f.realHeading(r, own):
 		return lineHead
+	case headings == 1 && filled == 1 && len(own) == 1 && f.armsBelow(r, own[0]):
+		return lineHead
 	}
 	return lineData
+}
+
+// armsBelow reports a row "Intervention | Syrup" whose one name stands over all
+// data columns of the headings in the next row.
+func (f *frame) armsBelow(r int, own label) bool {
+	cell := f.grid[r][f.stub]
+	if cell == nil || cell.Row != r || cell.ColSpan < 2 || !onlyArmWord.MatchString(own.text) || r+1 >= f.tab.Rows {
+		return false
+	}
+	return f.kindOf(r+1, f.ownLabels(r+1)) == lineHead
 }
 
 // bareP reports a cell that can be a p value: one number of at most 1.
