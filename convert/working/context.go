@@ -18,9 +18,11 @@ func compareContexts(items []*item) {
 		if it.res.Table != "" {
 			continue
 		}
-		it.raise("in-running-text", "read from a sentence")
+		if !it.res.HasFlag("from-the-table") {
+			it.raise("in-running-text", "read from a sentence alone")
+		}
 		if it.res.N == 0 {
-			it.raise("n-missing", "no sample size is printed for this result")
+			it.sizeMissing()
 			it.raise("sentence-without-n", "the sentence gives no n and no arm whose n is known")
 		}
 		if it.res.Arm == "" {
@@ -86,11 +88,11 @@ func sizesMissing(table []*item) {
 	}
 	for _, it := range table {
 		switch {
-		case it.res.N > 0:
+		case it.res.N > 0 || it.has("n-at-baseline"):
 		case have:
 			it.raise("n-missing-here", "other results of this table have an n")
 		default:
-			it.raise("n-missing", "no sample size is printed for this result")
+			it.sizeMissing()
 		}
 	}
 }

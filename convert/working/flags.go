@@ -39,6 +39,7 @@ func Flags() []FlagInfo {
 		{"n-kind-unclear", None, "whether n counts those analysed in this row is not said", "look for missing values; fewer analysed means a larger SE for the same SD"},
 		{"n-randomised", None, "n counts those randomised; fewer may have been analysed", "look for the number analysed in the flow of the study"},
 		{"n-total", AsksLook, "the n may be that of several arms together", "look for the n of this arm; the SD is withheld"},
+		{"n-at-baseline", None, "the paper says that the n of the headings are those at baseline, and prints none for this time", "look for those analysed at this time in the text; without n an interval gives the SE only"},
 		{"n-from-counts", AsksLook, "n is the denominator that the column prints with its counts", "look for missing values: this row may have fewer"},
 		{"n-conflict", MakesIt, "two places give different n", "decide which one counts for this row"},
 		{"small-n", None, "n is below 5", "an SD from so few values is hardly known"},
@@ -99,8 +100,8 @@ func Flags() []FlagInfo {
 		{"decimal-slip", AsksLook, "one bound lies ten times as far from the estimate as the other or has another number of decimals", "look at the page: a lost decimal point"},
 		// What it is about.
 		{"described-alike", AsksLook, "two results of one table, or of the text, are described by the same words and differ", "look what tells them apart: arm, time, subgroup or outcome"},
-		{"in-running-text", AsksLook, "read from a sentence: arm, time, outcome and n are less sure than in a table", "read the sentence"},
-		{"from-the-table", None, "a table prints the same numbers, and what the sentence does not say was taken from there", "check that both are the same result"},
+		{"in-running-text", MakesIt, "read from a sentence alone: arm, time, outcome and n are less sure than in a table", "read the sentence"},
+		{"from-the-table", AsksLook, "read from a sentence; a table prints the same numbers, and what the sentence does not say was taken from there", "check that both are the same result"},
 		{"arm-not-named", MakesIt, "read from a sentence that names no arm", "read the sentence: which arm, or all together"},
 		{"sentence-without-n", MakesIt, "read from a sentence that gives no n, nor an arm whose n is known", "read the sentence: what it is about is often read wrongly"},
 		{"arm-unclear", None, "the arms of a comparison are not named where the result stands", "check the arm"},

@@ -38,6 +38,14 @@ func (it *item) raise(name, detail string) {
 	it.w.Flags = append(it.w.Flags, result.Flag{Name: name, Detail: detail})
 }
 
+// sizeMissing flags a result without n, unless the paper itself says why it has
+// none (n-at-baseline).
+func (it *item) sizeMissing() {
+	if !it.has("n-at-baseline") {
+		it.raise("n-missing", "no sample size is printed for this result")
+	}
+}
+
 func (it *item) has(name string) bool {
 	for _, f := range it.w.Flags {
 		if f.Name == name {

@@ -56,7 +56,7 @@ func takeSD(it *item) {
 		it.step("SE = SD/√n = %s/√%d = %s", it.res.GivenValue, n, short(se))
 	}
 	if it.res.N == 0 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 	}
 }
 
@@ -82,7 +82,7 @@ func meanFromSE(it *item) {
 	reason := blocked(it)
 	n := it.res.N
 	if n == 0 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 	}
 	switch {
 	case reason != "":
@@ -131,7 +131,7 @@ func meanFromInterval(it *item) {
 	reason := blocked(it)
 	n, level := it.res.N, it.res.Level
 	if n == 0 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 	}
 	if level == 0 {
 		it.raise("level-missing", "the level of the interval is not printed")

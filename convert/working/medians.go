@@ -18,7 +18,7 @@ func proposeFromMedian(it *item) {
 	}
 	n := it.res.N
 	if n == 0 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 		it.withhold("a median, and n is not printed: the published methods need it")
 		return
 	}

@@ -32,7 +32,7 @@ func weighReadings(it *item) {
 	}
 	n := it.res.N
 	if n < 2 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 		it.offer(Alternative{Name: readingNames[convert.AsSD], SD: number(it.val.Value), Low: down(math.Max(it.val.Low(), 0)), High: up(it.val.High()),
 			Note: "the other readings need n"})
 		return
@@ -67,7 +67,7 @@ func weighReadings(it *item) {
 func (it *item) weighBounds() {
 	n := it.res.N
 	if n < 3 {
-		it.raise("n-missing", "no sample size is printed for this result")
+		it.sizeMissing()
 		if z, err := convert.TwoSided(readingLevel, convert.Normal); err == nil && it.lopside == nil && it.halfWidth() > 0 && it.est != nil {
 			it.offer(Alternative{Name: "as a 95% interval", Mean: number(it.est.Value), SE: number(it.halfWidth() / z), Note: "SE by z; the other readings need n"})
 		}

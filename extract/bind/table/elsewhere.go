@@ -84,7 +84,8 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 	}
 	s, ok := f.nearSize(e, x)
 	if ok && s.from == result.NHeading && f.baselineN(b) && !atBaseline(x) {
-		return // the paper says that these are the numbers at baseline
+		r.Raise(FlagNBaseline, "the n of the heading is that at baseline: "+s.text)
+		return
 	}
 	if ok && s.shared && f.colArms {
 		// One column of n's beside several arms: of all of them together, unless

@@ -19,6 +19,7 @@ const (
 	FlagNKind          = "n-kind-unclear"      // a heading's n at baseline serves a later time point
 	FlagNConflict      = "n-conflict"          // two places give different n's
 	FlagNCounts        = "n-from-counts"       // the n is the denominator of the counts in its column
+	FlagNBaseline      = "n-at-baseline"       // the headings' n are those at baseline, the paper says
 	FlagNTotal         = "n-total"             // the n may be the total of several arms
 	FlagOutside        = "estimate-outside"    // the estimate lies outside its bounds
 	FlagReversed       = "bounds-reversed"     // the lower bound is printed after the upper
