@@ -178,6 +178,30 @@ func initials(short, long string) bool {
 	return len(a) > 0 && len(b) > 0 && len(a[0]) <= 4 && a[0][0] == b[0][0]
 }
 
+// narrower reports that name a has all words of name b and another one that the
+// sentence prints: "without pollen" where "pollen" was read.
+func narrower(a, b, sentence string) bool {
+	have, printed := map[string]bool{}, map[string]bool{}
+	for _, w := range words(a) {
+		have[w] = true
+	}
+	for _, w := range words(sentence) {
+		printed[w] = true
+	}
+	for _, w := range words(b) {
+		if !have[w] && !loose[w] {
+			return false
+		}
+		delete(have, w)
+	}
+	for w := range have {
+		if printed[w] && !loose[w] {
+			return true
+		}
+	}
+	return false
+}
+
 // takeFrom fills the fields that r lacks from its twin in a table.
 func takeFrom(r, t *result.Result) {
 	var took []string
@@ -199,11 +223,11 @@ func takeFrom(r, t *result.Result) {
 		took = append(took, "n2")
 		copySource(r, t, "n2")
 	}
-	if r.Arm != "" && t.Arm != "" && !shares(r.Arm, t.Arm) && !initials(r.Arm, t.Arm) && !between(r) {
+	if r.Arm != "" && t.Arm != "" && !between(r) && (!shares(r.Arm, t.Arm) && !initials(r.Arm, t.Arm) || narrower(t.Arm, r.Arm, r.Snippet)) {
 		drop(r, "arm") // the sentence names both: the table says which
 		r.Arm = ""
 	}
-	if r.Outcome != "" && t.Outcome != "" && !shares(r.Outcome, t.Outcome) && shares(r.Snippet, t.Outcome) {
+	if _, digits := numbersOf(r, 1); r.Outcome != "" && t.Outcome != "" && !shares(r.Outcome, t.Outcome) && (shares(r.Snippet, t.Outcome) || digits >= sureDigits) {
 		drop(r, "outcome")
 		r.Outcome = ""
 	}
@@ -220,9 +244,10 @@ func takeFrom(r, t *result.Result) {
 		took = append(took, "what the spread is")
 		copySource(r, t, "given_as")
 	}
-	if len(took) > 0 {
-		r.Raise("from-the-table", fmt.Sprintf("%s prints the same numbers; taken from there: %s", t.Table, strings.Join(took, ", ")))
+	if len(took) == 0 {
+		took = []string{"nothing, the sentence says it all"}
 	}
+	r.Raise("from-the-table", fmt.Sprintf("%s prints the same numbers; taken from there: %s", t.Table, strings.Join(took, ", ")))
 }
 
 // copySource gives r the table's source of a field, saying where it stands.

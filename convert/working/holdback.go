@@ -42,9 +42,12 @@ func (it *item) generalKind() bool {
 	return false
 }
 
-// doubtful reports that a flag makes the reading doubtful.
+// doubtful reports that a flag makes the reading doubtful, besides that it stands
+// in running text, as all do that are asked.
 func (it *item) doubtful() bool {
-	return rate(it, effectOf(Flags())) == Doubtful
+	effects := effectOf(Flags())
+	effects["in-running-text"] = AsksLook
+	return rate(it, effects) == Doubtful
 }
 
 // holdBackGuesses withholds the SD where a cause says so. What it would have been
