@@ -95,6 +95,9 @@ var (
 // sentence takes the counts of one sentence of a block.
 func (c *Census) sentence(b *paper.Block, from, to int) {
 	s := b.Text.S[from:to]
+	if !speaksOfSubjects(s) && !strings.Contains(s, "group") {
+		return
+	}
 	left := leaving.MatchString(s)
 	if left && (b.Zone == paper.Results || b.Zone == paper.Methods || b.Zone == paper.Abstract) && counted.MatchString(s) && !planned.MatchString(s) {
 		c.lost = true

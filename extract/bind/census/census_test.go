@@ -1,6 +1,7 @@
 package census
 
 import (
+	"regexp"
 	"testing"
 
 	"halfspan/extract/paper"
@@ -68,6 +69,17 @@ func TestNumber(t *testing.T) {
 	for s, want := range map[string]int{"18": 18, "1,204": 1204, "Eighteen": 18, "forty-two": 42, "Forty two": 42, "two hundred and five": 205, "nine hundred": 900, "0": 0, "many": 0, "": 0} {
 		if got, ok := Number(s); got != want || ok != (want > 0) {
 			t.Errorf("Number(%q) = %d, %v, want %d", s, got, ok, want)
+		}
+	}
+}
+
+func TestSpeaksOfSubjects(t *testing.T) {
+	for s, want := range map[string]bool{"Eighteen COLONIES were fed.": true, "one colony": true, "The honey was weighed.": false, "": false, "beeswax": false, "a very longwordthatisnoneofthesubjects bees": true} {
+		if got := speaksOfSubjects(s); got != want {
+			t.Errorf("speaksOfSubjects(%q) = %v", s, got)
+		}
+		if re := regexp.MustCompile(`(?i)\b` + Subjects + `\b`); re.MatchString(s) != want {
+			t.Errorf("the pattern differs for %q", s)
 		}
 	}
 }

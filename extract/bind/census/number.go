@@ -38,3 +38,42 @@ func Number(s string) (int, bool) {
 	}
 	return total, total > 0
 }
+
+// subjectWords are the words that Subjects matches.
+var subjectWords = func() map[string]bool {
+	out := map[string]bool{}
+	for _, w := range strings.Split(strings.TrimSuffix(strings.TrimPrefix(Subjects, "(?:"), ")"), "|") {
+		if one, plural := strings.CutSuffix(w, "s?"); plural {
+			out[one], out[one+"s"] = true, true
+		} else {
+			out[w] = true
+		}
+	}
+	return out
+}()
+
+// speaksOfSubjects reports a word for what a study counts; it is far cheaper than
+// the patterns that need one.
+func speaksOfSubjects(s string) bool {
+	const longest = 20
+	var word [longest]byte
+	n := 0
+	for i := 0; i <= len(s); i++ {
+		c := byte(' ')
+		if i < len(s) {
+			c = s[i] | 0x20 // a letter in lower case
+		}
+		if c >= 'a' && c <= 'z' {
+			if n < longest {
+				word[n] = c
+			}
+			n++
+			continue
+		}
+		if n > 1 && n <= longest && subjectWords[string(word[:n])] {
+			return true
+		}
+		n = 0
+	}
+	return false
+}

@@ -197,7 +197,7 @@ func (b *binder) findTold() {
 		}
 		for _, sp := range segments(bl.Text.S) {
 			s := clean(bl.Text.S[sp.Start:sp.End])
-			if len(s) > 600 || planWord.MatchString(s) || leftWord.MatchString(s) || len(nMention.FindAllStringIndex(fold(s), 3)) < 2 {
+			if len(s) > 600 || !strings.ContainsAny(s, "0123456789") || len(nMention.FindAllStringIndex(fold(s), 3)) < 2 || planWord.MatchString(s) || leftWord.MatchString(s) {
 				continue
 			}
 			b.told = append(b.told, toldSentence{text: s, place: bl.Text.Between(sp.Start, sp.End), last: flowWord.MatchString(s)})
