@@ -98,19 +98,25 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 	if !speaksOfSubjects(s) && !strings.Contains(s, "group") {
 		return
 	}
-	left := leaving.MatchString(s)
-	if left && (b.Zone == paper.Results || b.Zone == paper.Methods || b.Zone == paper.Abstract) && counted.MatchString(s) && !planned.MatchString(s) {
-		c.lost = true
-	}
-	if planned.MatchString(s) {
+	counts := counted.FindAllStringSubmatchIndex(s, -1)
+	grouped := strings.Contains(s, "group") || strings.Contains(s, "arm") || strings.Contains(s, "treatment") || strings.Contains(s, "condition")
+	if len(counts) == 0 && !grouped || planned.MatchString(s) {
 		return
 	}
-	taken := c.groups(b, from, s)
+	var taken [][]int
+	if grouped {
+		taken = c.groups(b, from, s)
+	}
+	if len(counts) == 0 {
+		return
+	}
+	left := leaving.MatchString(s)
+	c.lost = c.lost || left
 	done, began := finished.MatchString(s), enrolled.MatchString(s)
 	if !done && !began {
 		return
 	}
-	for _, m := range counted.FindAllStringSubmatchIndex(s, -1) {
+	for _, m := range counts {
 		n, ok := Number(s[m[2]:m[3]])
 		if !ok || n < fewest || inside(taken, m[2]) || joined.MatchString(s[m[3]:m[1]]) {
 			continue
