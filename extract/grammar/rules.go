@@ -261,7 +261,7 @@ func (p *parser) plusMinus(i int, of Number, start int) int {
 	}
 	n, end, ok := p.signed(k)
 	if !ok || n.Value == "" || n.Value[0] == '-' || it.Spread != "" && p.toPlusMinus(end) > 0 {
-		return i // "mean ± SD 32.7 ± 4.3": the first ± only announces
+		return i // "mean ± SD 24.6 ± 3.8": the first ± only announces
 	}
 	it.Of.give(n.Power, n.PowerAt) // "2.1 ± 0.4 × 10^5"
 	it.Value, it.Span = n, Span{start, n.End}

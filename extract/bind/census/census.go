@@ -125,7 +125,7 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 		before, after := s[:m[2]], s[m[1]:]
 		switch {
 		case share.MatchString(s[m[3]:m[1]]) || share.MatchString(after):
-			continue // "62 women (58%)": part of the sample
+			continue // "24 drones (57%)": part of the sample
 		case eachWord.MatchString(after):
 			k.Each = true
 		case partWord.MatchString(before) && !ofBefore.MatchString(before):

@@ -102,8 +102,8 @@ func (p *para) byConvention(k int, c *cand) bool {
 }
 
 // repeats settles what an unexplained ± means where the same paper prints the
-// same two numbers elsewhere with a word for the spread: "56 ± 6" in the results
-// is the abstract's "56 (SD 6)".
+// same two numbers elsewhere with a word for the spread: "34 ± 5" in the results
+// is the abstract's "34 (SD 5)".
 func (f *finder) repeats() {
 	type pair struct{ estimate, value string }
 	explained := map[pair]result.Source{}

@@ -287,7 +287,7 @@ var countWords = map[string]bool{"colonies": true, "visits": true, "sessions": t
 
 var countedNoun = pattern.MustCompile(`^[)\]]?\s+((?:[\p{L}-]+ ){0,3}?[\p{L}-]{3,}(?:\s+per\s+[\p{L}-]+)?)\s*(?:[,;.)(]|\b(?:in|per|for|from|at|was|were|and|on|of|to|with|the|during)\b)`)
 
-// nounBehind is what is counted: "a mean of 3.5 (4.0) visits per colony".
+// nounBehind is what is counted: "a mean of 4.2 (1.7) visits per colony".
 func (p *para) nounBehind(r *result.Result, c *cand) (grammar.Span, bool) {
 	_, to := p.sentence(c.est.Start)
 	units, at := p.unitsOf(c, c.est.Start, to)

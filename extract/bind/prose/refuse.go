@@ -59,10 +59,10 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 		return true // "0 ± 3°" is a class, "10 ± 5 min after" a window
 	}
 	if p.block.Zone == paper.Methods && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(c.est.End) && p.timeBehind(it.End) {
-		return true // "every 12 hours ± 15 minutes"
+		return true // "every 6 hours ± 10 minutes"
 	}
 	if p.block.Zone == paper.Methods && it.Bracket == 0 && p.bracketEnd(it.End) && whole(c.est.Value) && whole(it.Value.Value) && p.timeBehind(it.End+1) && !p.says(it.Start, central) {
-		return true // "at 365 (±60) days"
+		return true // "at 28 (±4) days"
 	}
 	j := p.token(it.End)
 	if j < len(p.r.Tokens) && degree(p.r.Tokens[j]) && (p.block.Zone == paper.Methods || p.says(it.Start, climate) && !p.says(it.Start, ofBody)) {
@@ -72,7 +72,7 @@ func (p *para) refusedPlusMinus(k int, c *cand) bool {
 		return true
 	}
 	if i > 0 && p.r.Tokens[i-1].Value == "every" && whole(c.est.Value) && whole(it.Value.Value) {
-		return true // "every 90 (±30) days"
+		return true // "every 14 (±3) days"
 	}
 	return p.planned(it.Start)
 }
@@ -149,7 +149,7 @@ func (p *para) refusedBracket(c *cand) bool {
 		return true
 	}
 	if i := p.token(c.value.End); i < len(p.r.Tokens) && p.r.Tokens[i].Kind == grammar.TokWord && !unitWords[p.r.Tokens[i].Value] && p.r.Tokens[i].Start < c.value.End+3 {
-		return true // "80 colonies (40 per arm)"
+		return true // "72 colonies (36 per arm)"
 	}
 	return e == v && whole(c.est.Value)
 }

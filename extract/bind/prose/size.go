@@ -98,7 +98,7 @@ func (p *para) alone(b int) bool {
 
 var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|intervention|respectively|both|each)\b`)
 
-// countedIn reads "the 61 included subjects", "Forty-two colonies" where it is
+// countedIn reads "the 47 included subjects", "Forty-two colonies" where it is
 // the only count before the result.
 func (p *para) countedIn(from, to int) (size, bool) {
 	var found [][]int

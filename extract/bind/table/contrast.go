@@ -51,7 +51,7 @@ var comparingWords = map[string]bool{"least": true, "square": true, "squares": t
 	"effects": true, "between": true, "group": true, "groups": true, "comparison": true, "comparisons": true, "arm": true, "arms": true, "treatments": true, "by": true, "at": true}
 
 // saysNothing reports that a group label of comparisons names no outcome:
-// "Estimated treatment differences at study end (least square means)".
+// "Treatment differences by week 8 (least square means)".
 func saysNothing(name string) bool {
 	for _, w := range words(timeMark.ReplaceAllString(name, " ")) {
 		if low := strings.ToLower(w); !statFiller[low] && !timeFiller[low] && !comparingWords[low] {

@@ -181,7 +181,7 @@ func (f *frame) rowEvidence(r int) countGrade {
 	return countOpen
 }
 
-// sharesOf reports percentages with their counts, "75.9 (22)": every b is whole
+// sharesOf reports percentages with their counts, "61.8 (21)": every b is whole
 // and every a is its share of the column's n to the last digit printed.
 func sharesOf(cells []pairCell) bool {
 	some := false
