@@ -112,7 +112,7 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 		s, ok = b.toldSize(f, x)
 	}
 	if !ok {
-		s, ok = b.countedSize(r, f, x)
+		s, ok = b.countedSize(r, f, e, x)
 	}
 	if ok {
 		b.setN(r, s, f, x)
@@ -158,7 +158,7 @@ func atBaseline(x *context) bool {
 // countedSize falls back on what the text counts: all subjects for a result that
 // is about all of them or, where the same subjects stand under every condition,
 // about any; else the number in each group, where the text gives one for all.
-func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool) {
+func (b *binder) countedSize(r *result.Result, f *frame, e *estimate, x *context) (size, bool) {
 	if x.contrast || x.subgroup != "" || !aboutSubjects(r.Statistic) {
 		return size{}, false
 	}
@@ -167,6 +167,9 @@ func (b *binder) countedSize(r *result.Result, f *frame, x *context) (size, bool
 	var n census.Count
 	var ok bool
 	switch {
+	case !named && len(f.lines[e.row].groups)+len(f.lines[e.row].labels) > 1 && f.onlyTermsOver(e):
+		// Under a heading that says nothing but mean and SD, the rows of a group are
+		// its categories.
 	case !named && !f.describesSubjects():
 		// A table about the feed or the room has other numbers of its own.
 	case named && x.arm != "" && f.aboutArms(x.arm):
@@ -195,6 +198,16 @@ func (f *frame) describesSubjects() bool {
 		}
 	}
 	return false
+}
+
+// onlyTermsOver reports that the headings over an estimate name statistics alone.
+func (f *frame) onlyTermsOver(e *estimate) bool {
+	for _, l := range f.path(e.row, e.col) {
+		if !f.lex.phrase(l.text).onlyTerms {
+			return false
+		}
+	}
+	return true
 }
 
 // aboutSubjects reports a statistic of subjects, which their number belongs to.
