@@ -88,7 +88,7 @@ func (p *para) unitsOf(c *cand, from, to int) (list []unit, at int) {
 		if b := it.Bracket; b > 0 && p.r.Brackets[b-1].Start >= o.est.End {
 			end = max(end, p.r.Brackets[b-1].End) // the spread's own bracket
 		}
-		if m := longUnit.FindStringIndex(p.s[end:to]); m != nil {
+		if m := longUnit.FindStringIndex(p.stretch(end, to)); m != nil {
 			end += m[1]
 		}
 		if n := len(list); n > 0 && (list[n-1].start == o.est.Start || o.quartile && o.est.Start < list[n-1].end) {
@@ -236,10 +236,10 @@ func (p *para) alternate(units []unit, at int, all []mention) (mention, bool) {
 			two = append(two, m)
 		}
 	}
-	if len(two) != 2 || len(two) != len(all) || !contrast.MatchString(p.s[two[0].end:two[1].start]) {
+	if len(two) != 2 || len(two) != len(all) || !contrast.MatchString(p.stretch(two[0].end, two[1].start)) {
 		return mention{}, false
 	}
-	if at > 0 && contrast.MatchString(p.s[units[at-1].end:units[at].start]) {
+	if at > 0 && contrast.MatchString(p.stretch(units[at-1].end, units[at].start)) {
 		return two[1], true
 	}
 	return two[0], true
@@ -256,15 +256,15 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 		previous = max(previous, min(units[at-1].end, u.start))
 	}
 	for _, m := range all {
-		if m.start > u.start && m.end < u.end && inGroup.MatchString(p.s[u.start:m.start]) {
+		if m.start > u.start && m.end < u.end && inGroup.MatchString(p.stretch(u.start, m.start)) {
 			return m, true // "12.4 ± 1.3 kg in the syrup group (range 10 to 15)"
 		}
 	}
-	if ofAll.MatchString(p.s[u.end:]) {
+	if ofAll.MatchString(p.s[min(u.end, len(p.s)):]) {
 		return mention{}, false // "(12.9 ± 1.4 overall)"
 	}
 	for _, m := range all {
-		if m.end <= u.start && atOnceArm.MatchString(p.s[m.end:u.start]) && !(previous > from && p.claimed(m, previous)) {
+		if m.end <= u.start && atOnceArm.MatchString(p.stretch(m.end, u.start)) && !(previous > from && p.claimed(m, previous)) {
 			return m, true // "(syrup, 12.4 ± 1.3; water, 11.1 ± 1.2)"
 		}
 	}
@@ -283,17 +283,17 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 	if ok {
 		return best, true
 	}
-	if at+1 < len(units) && u.end <= units[at+1].start && toNext.MatchString(p.s[u.end:units[at+1].start]) {
+	if at+1 < len(units) && u.end <= units[at+1].start && toNext.MatchString(p.stretch(u.end, units[at+1].start)) {
 		if m, ok := p.justBehind(units[at+1], all); ok {
 			return m, true
 		}
 	}
-	if at > 0 && !contrast.MatchString(p.s[previous:u.start]) {
+	if at > 0 && !contrast.MatchString(p.stretch(previous, u.start)) {
 		if m, ok := p.nearest(units, at-1, all, from); ok && m.end <= units[at-1].start {
 			return m, true
 		}
 	}
-	if len(distinctArms(all)) > 1 || at > 0 && contrast.MatchString(p.s[previous:u.start]) {
+	if len(distinctArms(all)) > 1 || at > 0 && contrast.MatchString(p.stretch(previous, u.start)) {
 		return mention{}, false // "12.4 with syrup vs 11.1": the other arm's
 	}
 	if all[0].start < u.start {
@@ -303,7 +303,7 @@ func (p *para) nearest(units []unit, at int, all []mention, from int) (mention, 
 	if at+1 < len(units) {
 		next = min(next, units[at+1].start)
 	}
-	return all[0], inGroup.MatchString(p.s[u.end:all[0].start]) && (at+1 == len(units) || !ofOthers.MatchString(p.s[u.end:next]))
+	return all[0], inGroup.MatchString(p.stretch(u.end, all[0].start)) && (at+1 == len(units) || !ofOthers.MatchString(p.stretch(u.end, next)))
 }
 
 // justBehind gives the arm named right behind a result: "12.4 kg in the syrup group",
@@ -313,7 +313,7 @@ func (p *para) justBehind(u unit, all []mention) (mention, bool) {
 		if m.start < u.end || m.start-u.end >= 60 {
 			continue
 		}
-		if gap := p.s[u.end:m.start]; linked.MatchString(gap) && !contrast.MatchString(gap) && !strings.Contains(gap, " and ") || inBracket.MatchString(gap) && !p.valueBehind(m) {
+		if gap := p.stretch(u.end, m.start); linked.MatchString(gap) && !contrast.MatchString(gap) && !strings.Contains(gap, " and ") || inBracket.MatchString(gap) && !p.valueBehind(m) {
 			return m, true
 		}
 	}
@@ -335,9 +335,12 @@ func (p *para) claimed(m mention, end int) bool {
 	if m.start < end || m.start-end >= 60 {
 		return false
 	}
-	gap := strings.TrimLeft(p.s[end:m.start], ")]")
+	gap := strings.TrimLeft(p.stretch(end, m.start), ")]")
 	return linked.MatchString(gap) && !contrast.MatchString(gap) || inBracket.MatchString(gap) && !p.valueBehind(m)
 }
+
+// stretch is the text between two bytes; none where they stand the other way round.
+func (p *para) stretch(a, b int) string { return p.s[min(a, b):b] }
 
 // shut reports that byte a stands in a bracket that is closed before byte b.
 func (p *para) shut(a, b int) bool {

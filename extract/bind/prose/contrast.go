@@ -38,7 +38,7 @@ func (p *para) contrasted(c *cand, n named, from, at, to int) (result.Statistic,
 		end = p.r.Brackets[b-1].End
 	}
 	switch {
-	case points.MatchString(p.s[c.est.End:to]):
+	case points.MatchString(p.stretch(c.est.End, to)):
 		return result.RiskDifference, true
 	case doubled.MatchString(clause):
 		return result.MeanDifference, true

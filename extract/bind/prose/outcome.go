@@ -294,7 +294,7 @@ func (p *para) nounBehind(r *result.Result, c *cand) (grammar.Span, bool) {
 	if at < 0 {
 		return grammar.Span{}, false
 	}
-	m := countedNoun.FindStringSubmatchIndex(p.s[units[at].end:to])
+	m := countedNoun.FindStringSubmatchIndex(p.stretch(units[at].end, to))
 	if m == nil || p.block.Zone == paper.Methods || functionWords[firstWord(p.s[units[at].end+m[2]:])] {
 		return grammar.Span{}, false
 	}
@@ -311,7 +311,7 @@ func (p *para) forWhat(r *result.Result, c *cand) (grammar.Span, bool) {
 	alike := 0
 	var mine []int
 	for i, u := range units {
-		m := forBehind.FindStringSubmatchIndex(p.s[u.end:to])
+		m := forBehind.FindStringSubmatchIndex(p.stretch(u.end, to))
 		if m == nil {
 			continue
 		}
@@ -351,7 +351,7 @@ func (p *para) fromList(r *result.Result, c *cand, from int) (grammar.Span, bool
 	if _, ok := p.byOrder(run, at-first, p.mentions(p.sentence(c.est.Start))); ok || len(run) < 2 {
 		return grammar.Span{}, false
 	}
-	verbs := listVerb.FindAllStringIndex(p.s[from:run[0].start], -1)
+	verbs := listVerb.FindAllStringIndex(p.stretch(from, run[0].start), -1)
 	if len(verbs) == 0 {
 		return grammar.Span{}, false
 	}

@@ -63,7 +63,7 @@ func (p *para) setTime(r *result.Result, c *cand) {
 		return
 	}
 	if first {
-		at := strings.LastIndex(strings.ToLower(p.s[from:c.est.Start]), "from") + from
+		at := from + fromHere.FindStringIndex(p.s[from:c.est.Start])[0]
 		r.Time = "baseline"
 		p.source(r, "time", grammar.Span{Start: at, End: at + len("from")})
 	}
@@ -75,7 +75,7 @@ func (p *para) startOfPair(c *cand, from, to int) bool {
 		return false
 	}
 	units, at := p.unitsOf(c, from, to)
-	return at >= 0 && at+1 < len(units) && toNext.MatchString(p.s[units[at].end:units[at+1].start])
+	return at >= 0 && at+1 < len(units) && toNext.MatchString(p.stretch(units[at].end, units[at+1].start))
 }
 
 func (p *para) setTimeAt(r *result.Result, a, b int) {
