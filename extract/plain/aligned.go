@@ -278,15 +278,15 @@ func joinWrapped(rows [][]rowCell) [][]rowCell {
 		if n := len(out); n > 0 && i > 1 {
 			above := out[n-1]
 			switch {
-			case labelOnly(above) && row[0].label == "" && hasValues(row):
+			case labelOnly(above, len(above)) && row[0].label == "" && hasValues(row):
 				row[0] = above[0]
 				out[n-1] = row
 				continue
-			case labelOnly(above) && hasValues(row) && goesOn(above[0].label, row[0].label):
+			case labelOnly(above, len(above)) && hasValues(row) && goesOn(above[0].label, row[0].label):
 				row[0] = joinLabels(above[0], row[0])
 				out[n-1] = row
 				continue
-			case hasValues(above) && labelOnly(row) && closes(row[0].label):
+			case hasValues(above) && labelOnly(row, len(row)) && closes(row[0].label):
 				above[0] = joinLabels(above[0], row[0])
 				continue
 			}

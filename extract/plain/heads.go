@@ -15,6 +15,12 @@ func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
 	for i := range rows {
 		spots[i] = make([]spot, len(rows[i]))
 	}
+	if n := len(rows) - 1; n > 0 && len(rows[n-1]) >= cols && len(rows[n]) < cols && (rows[n][0].kind == empty || len(rows[n]) == 1) && states(rows[n]) {
+		placeHeads(spots[:n], rows[:n], cols, body)
+		if placeStatements(spots[n], rows[n], cols, body) {
+			return
+		}
+	}
 	best := searchHeads(rows, cols, body, len(rows) == 1)
 	if best == nil {
 		best = searchHeads(rows, cols, body, true)
@@ -69,8 +75,8 @@ func leftAlign(spots [][]spot, rows [][]rowCell, cols int) {
 const (
 	maxHeadRows = 4
 	maxHeadCols = 40      // wider tables are not printed; their headings stand as they come
-	mostWays    = 48      // ways kept for a stretch of columns
-	headFuel    = 150_000 // steps of the search for one table
+	mostWays    = 96      // ways kept for a stretch of columns
+	headFuel    = 400_000 // steps of the search for one table
 )
 
 // headIndex counts the cells used in each heading row.
@@ -110,6 +116,14 @@ type headCell struct {
 	kind     kind
 	label    string // bare: for comparing
 	p, group bool   // names a p value; speaks of groups or times
+	limits   bool   // names an interval
+	shape    string // the label without its numbers
+	size     bool   // gives a sample size only
+	sized    bool   // gives a sample size
+	pair     bool   // compares two groups
+	total    bool   // names all groups together
+	single   bool   // names one statistic
+	says     bool   // says what the values below are, or gives a sample size
 	suits    []int  // for each column
 }
 
@@ -118,7 +132,12 @@ func known(rows [][]rowCell, cols int, body []profile) [][]headCell {
 	out := make([][]headCell, len(rows))
 	for i, row := range rows {
 		for _, c := range row {
-			h := headCell{kind: c.kind, label: bare.ReplaceAllString(strings.ToLower(c.label), ""), p: pWord.MatchString(c.label), group: groupWord.MatchString(c.label), suits: make([]int, cols)}
+			h := headCell{
+				kind: c.kind, label: bare.ReplaceAllString(strings.ToLower(c.label), ""), shape: digits.ReplaceAllString(c.label, "#"),
+				p: pWord.MatchString(c.label), group: groupWord.MatchString(c.label), limits: intervalWord.MatchString(c.label),
+				size: sizeWord.MatchString(c.label), sized: hasSize.MatchString(c.label), total: totalWord.MatchString(c.label),
+				pair: pairWord.MatchString(c.label), single: singleWord.MatchString(c.label), says: statement.MatchString(c.label), suits: make([]int, cols),
+			}
 			for k := range h.suits {
 				h.suits[k] = suits(c.label, &body[k])
 			}
@@ -163,17 +182,20 @@ func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
 		}
 		for width := 1; from+width <= last; width++ {
 			for height := 1; level+height <= len(s.rows); height++ {
-				if level+height == len(s.rows) && width > 1 && !s.wide && level > 0 {
+				if level+height == len(s.rows) && width > 1 && !s.wide && level > 0 && !s.overStub(level, cell, from, width) {
 					continue
 				}
 				if s.steps++; s.steps > headFuel {
 					return nil
 				}
 				score := s.score(level, cell, from, width, height)
+				if under := level + height; width == 1 && under < len(s.rows) && int(after[under]) < len(s.rows[under]) && s.rows[under][after[under]].size {
+					score += 15 // a heading with its sample size below
+				}
 				for _, below := range s.tile(level+height, from, from+width, after) {
 					group := 0
 					if width > 1 && level+height < len(s.rows) {
-						group = s.groupScore(level+height, width, used, below.used)
+						group = s.groupScore(&s.rows[level][cell], level+height, from, width, used, below.used)
 					}
 					for _, rest := range s.tile(level, from+width, to, below.used) {
 						s.steps++
@@ -229,14 +251,19 @@ func (s *headSearch) score(level, cell, from, width, height int) int {
 			score += min(c.suits[k], 40)
 		}
 		score -= 100 // a heading over several columns without headings of their own
-		if from == 0 && s.body[width-1].mostly(textual) && s.body[0].mostly(textual) {
+		if s.overStub(level, cell, from, width) || from == 0 && s.body[width-1].mostly(textual) && (s.body[0].mostly(textual) || s.body[0].usual() == empty) {
 			score += 100 // but a stub of two columns is often named once
 		}
+		if width == 2 && c.limits && s.body[from].bare() && s.body[from+1].bare() {
+			score += 130 // the two ends of an interval have a column each
+		}
+	case width > 1 && s.overStub(level, cell, from, width):
+		score = 30
 	case width == 1 && c.kind == empty:
 		score = 10
 	case width == 1:
-		if c.p {
-			score = c.suits[from] / 2
+		if c.p || c.single {
+			score = max(c.suits[from], 0) / 2
 		}
 	default:
 		score = s.wideScore(level, c, from, width)
@@ -245,127 +272,12 @@ func (s *headSearch) score(level, cell, from, width, height int) int {
 		score += reachesDown(from, s.cols)
 	}
 	if height > 1 && !lowest {
-		score -= 10 + 20*(width-1)
-	}
-	return score
-}
-
-// groupWord is what a heading over several columns often says: whom they are
-// about, or when.
-var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|treatments?|weeks?|months?|days?|years?|baseline|follow-?up|visit)\b`)
-
-// wideScore says how well a heading suits being over several columns that have
-// headings of their own.
-func (s *headSearch) wideScore(level int, c *headCell, from, width int) int {
-	score := -20 * width * width / s.cols // groups are about as wide as one another
-	switch {
-	case c.kind == empty:
-		score -= 150
-	case c.p:
-		score -= 80
-	default:
-		score += c.suitsAll(from, width)
-		if c.group {
-			score += 20
+		score -= 10
+		if width > 1 {
+			score -= 80
 		}
 	}
-	if level > 0 {
-		score -= 40
-	}
-	if s.body[from].mostly(textual) && !s.body[from+width-1].mostly(textual) {
-		score -= 60 // the stub is not grouped with values
-	}
 	return score
-}
-
-// reachesDown favours headings over several rows at the edges: the stub's and
-// the p value's.
-func reachesDown(col, cols int) int {
-	switch col {
-	case 0:
-		return 30
-	case cols - 1:
-		return 20
-	}
-	return 0
-}
-
-// groupScore looks at the headings below a wide one: those of the next row and
-// those of the last row, whichever tell more. before and after are the cells
-// used in each row without and with the group's.
-func (s *headSearch) groupScore(level, width int, before, after headIndex) int {
-	score := s.likeOthers(level, before, after)
-	if last := len(s.rows) - 1; last > level && int(after[last]-before[last]) == width {
-		score = max(score, s.likeOthers(last, before, after))
-	}
-	return score
-}
-
-// likeOthers says how well the cells of one row make a group: that another
-// group has the same is good, the same word twice within is bad.
-func (s *headSearch) likeOthers(level int, before, after headIndex) int {
-	row := s.rows[level]
-	first, n := int(before[level]), int(after[level])-int(before[level])
-	if n < 2 {
-		return 0
-	}
-	score := 0
-	distinct := map[string]bool{}
-	for _, c := range row[first : first+n] {
-		distinct[c.label] = true
-	}
-	if len(distinct) > 1 {
-		score += neighbour(row, first, n)
-	}
-	if len(distinct) > 1 && len(distinct) < n {
-		score -= 80
-	}
-	for k, c := range row[first : first+n] {
-		if c.p {
-			if k == n-1 {
-				score += 30 // a p value closes its group
-			} else {
-				score -= 30
-			}
-		}
-	}
-	if row[first].kind == empty {
-		score -= 60 // a group does not begin with a nameless column
-	}
-	return score
-}
-
-// neighbour looks for the same n headings next to those from first on, at most
-// two headings of single columns between.
-func neighbour(row []headCell, first, n int) int {
-	for gap, score := range []int{100, 90, 60} {
-		for _, other := range []int{first - n - gap, first + n + gap} {
-			if other >= 0 && sameLabels(row, other, first, n) {
-				return score
-			}
-		}
-	}
-	return 0
-}
-
-func sameLabels(row []headCell, a, b, n int) bool {
-	if max(a, b)+n > len(row) {
-		return false
-	}
-	for k := 0; k < n; k++ {
-		if !sameLabel(row[a+k].label, row[b+k].label) {
-			return false
-		}
-	}
-	return true
-}
-
-// sameLabel compares two bare headings but for a mark at the end.
-func sameLabel(a, b string) bool {
-	if len(a) > len(b) {
-		a, b = b, a
-	}
-	return a == b || len(a) > 2 && len(b)-len(a) <= 2 && strings.HasPrefix(b, a)
 }
 
 var bare = pattern.MustCompile(`[^\pL\pN]+`)
@@ -396,6 +308,9 @@ func suits(label string, p *profile) int {
 		return -30
 	}
 	label = trailingMark.ReplaceAllString(label, "")
+	if sizeWord.MatchString(label) && p.mostly(pvalue) {
+		return -60 // nobody counts in a column of p values
+	}
 	for _, h := range headWords {
 		if !h.word.MatchString(label) {
 			continue
@@ -420,6 +335,20 @@ func (c *headCell) suitsAll(from, width int) int {
 	}
 	return max(total/width, 0)
 }
+
+var (
+	// totalWord is the heading of all groups together.
+	totalWord = pattern.MustCompile(`(?i)^(?:total|all|overall|combined)\b`)
+	// singleWord is the heading of one statistic in a column of its own.
+	singleWord = pattern.MustCompile(`(?i)^\W*(?:SDs?|SEM?|s\.d\.|s\.e\.m?\.|n|t|F|df|z|B|β|Wald)\W*$`)
+	pairWord   = pattern.MustCompile(`(?i)\b(?:versus|vs)\b`)
+)
+
+// sizeWord is a heading that only gives a sample size.
+var sizeWord = pattern.MustCompile(`^\(?[nN]\s*=\s*[\d, ]+\)?$`)
+
+// hasSize is a heading with a sample size.
+var hasSize = pattern.MustCompile(`\b[nN]\s*=\s*\d`)
 
 // trailingMark is a footnote mark behind a heading.
 var trailingMark = pattern.MustCompile(`[\s\x{00A0}]*(?:[*†‡§¶#]+|[\s\x{00A0}][a-e])$`)

@@ -44,6 +44,7 @@ var kindForms = []struct {
 	{pattern.MustCompile(`^` + number + marks + `[([]\s*` + number + sep + number + `\s*[)\]]`), estimate},
 	{pattern.MustCompile(`^[([]?\s*` + number + sep + number + `\s*[)\]]?` + marks + `$`), interval},
 	{pattern.MustCompile(`^` + number + marks + `[([]`), bracket},
+	{pattern.MustCompile(`^\d[\d,]*\s?/\s?\d[\d,]*\s*(?:[([].*)?$`), bracket}, // 12/40 (30%)
 	{pattern.MustCompile(`^` + number + `%` + marks + `$|^[0-9.·]+\s*%` + marks + `$`), percent},
 	{pattern.MustCompile(`^[([]?\s*[<>]?\s*[-−–+‐]?\s*\d+\s*[)\]]?` + marks + `$`), whole},
 	{pattern.MustCompile(`^[([]?\s*` + number + `\s*[)\]]?` + marks + `$`), decimal},
@@ -137,4 +138,40 @@ func (p *profile) mostly(ks ...kind) bool {
 		}
 	}
 	return n > 0 && 2*hit >= n
+}
+
+// words reports whether a column holds words more than anything else, empty
+// cells aside.
+func (p *profile) words() bool {
+	values := 0
+	for k, count := range p {
+		if kind(k) != empty && kind(k) != textual && kind(k) != wild {
+			values += count
+		}
+	}
+	return p[textual] > 0 && p[textual] >= values
+}
+
+// bare reports whether a column holds mostly single numbers.
+func (p *profile) bare() bool { return p.mostly(whole, decimal, pvalue) }
+
+// usual is the kind that most of a column's filled cells are of, near kinds
+// taken together; empty where it holds nothing.
+func (p *profile) usual() kind {
+	best, count := empty, 0
+	for k, n := range p {
+		if kind(k) == empty || kind(k) == wild {
+			continue
+		}
+		if n > count {
+			best, count = kind(k), n
+		}
+	}
+	switch best {
+	case whole:
+		return decimal
+	case percent:
+		return bracket
+	}
+	return best
 }

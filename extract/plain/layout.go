@@ -1,5 +1,7 @@
 package plain
 
+import "halfspan/extract/pattern"
+
 // Rows of text say which cells follow one another, not which columns they
 // cover: a cell that spans columns is written once, a cell that spans rows is
 // missing in the rows below. layOut finds the spans that make all rows as wide
@@ -23,12 +25,17 @@ func layOut(rows [][]rowCell, head int) layoutOf {
 		head = headings(rows, lay.cols)
 	}
 	lay.head = head
-	body := profiles(rows[head:], lay.cols)
-	first := bodyPlacer{cols: lay.cols, body: body}
+	body, full := profiles(rows[head:], lay.cols)
+	first := newBodyPlacer(&lay, rows, body)
 	for i := head; i < len(rows); i++ {
 		lay.rows[i] = first.row(rows[i])
 	}
-	body = lay.profiles(rows)
+	placed := lay.profiles(rows)
+	for c := range body {
+		if full < 2 || body[c].usual() == empty {
+			body[c] = placed[c]
+		}
+	}
 	// What the short rows hold is known only once they are placed; it may move
 	// the headings, and these the rows: twice is enough in practice.
 	for range 2 {
@@ -55,14 +62,10 @@ func asTold(rows [][]rowCell) layoutOf {
 
 // place finds the spots of all cells by what the columns hold.
 func (lay *layoutOf) place(rows [][]rowCell, body []profile) {
-	var groups []spot // heading cells over several columns, as units that body cells may span too
 	if lay.head > 0 {
 		placeHeads(lay.rows[:lay.head], rows[:lay.head], lay.cols, body)
 	}
-	if lay.head > 1 {
-		groups = lay.rows[0]
-	}
-	place := bodyPlacer{cols: lay.cols, body: body, groups: groups}
+	place := newBodyPlacer(lay, rows, body)
 	for i := lay.head; i < len(rows); i++ {
 		lay.rows[i] = place.row(rows[i])
 	}
@@ -72,7 +75,7 @@ func (lay *layoutOf) place(rows [][]rowCell, body []profile) {
 func (lay *layoutOf) profiles(rows [][]rowCell) []profile {
 	body := make([]profile, lay.cols)
 	for i := lay.head; i < len(rows); i++ {
-		if labelOnly(rows[i]) {
+		if labelOnly(rows[i], lay.cols) {
 			continue
 		}
 		for k, s := range lay.rows[i] {
@@ -110,23 +113,24 @@ func columns(rows [][]rowCell) int {
 	return filled
 }
 
-// profiles collects what the full rows hold in each column.
-func profiles(rows [][]rowCell, cols int) []profile {
-	body := make([]profile, cols)
+// profiles collects what the full rows hold in each column, and counts them.
+func profiles(rows [][]rowCell, cols int) (body []profile, full int) {
+	body = make([]profile, cols)
 	for _, row := range rows {
-		if len(row) != cols || labelOnly(row) {
+		if len(row) != cols || labelOnly(row, cols) {
 			continue
 		}
+		full++
 		for k, c := range row {
 			body[k].add(c.kind)
 		}
 	}
-	return body
+	return body, full
 }
 
 // labelOnly reports whether a row holds one text alone: the heading of the rows
 // below it. The text may stand in the second cell, where the first is covered.
-func labelOnly(row []rowCell) bool {
+func labelOnly(row []rowCell, cols int) bool {
 	at := -1
 	for i, c := range row {
 		if c.kind == empty {
@@ -137,7 +141,7 @@ func labelOnly(row []rowCell) bool {
 		}
 		at = i
 	}
-	return at == 0 || at == 1 && row[at].kind == textual && len(row) > 2
+	return at == 0 || at == 1 && row[at].kind == textual && cols > 2
 }
 
 // labelRow places a row of one text: what the row is short of, the text spans.
@@ -191,9 +195,15 @@ func headings(rows [][]rowCell, cols int) int {
 	n := 1
 	for ; n < len(rows) && n < most; n++ {
 		row := rows[n]
+		if statementRow(row) || yearRow(row, len(rows[n-1]) < cols) {
+			continue
+		}
 		data, telling := dataRow(row)
 		full, stub := len(row) >= cols, row[0].kind != empty
-		if labelOnly(row) || data && (telling || stub && full) || full && stub && named {
+		if !stub && !full && len(rows[n-1]) < cols && !measured(row) {
+			continue // the middle of three rows of headings
+		}
+		if labelOnly(row, cols) || data && (telling || stub && full) || full && stub && named || data && countWord.MatchString(row[0].label) {
 			break
 		}
 		named = named || full && stub
@@ -202,6 +212,73 @@ func headings(rows [][]rowCell, cols int) int {
 		return 1
 	}
 	return n
+}
+
+var (
+	// countWord is the stub of a row of sample sizes.
+	countWord = pattern.MustCompile(`(?i)^(?:n|no\.?|number)$`)
+	// statement is a cell below a heading that gives the heading's sample size
+	// or says what the values are.
+	statement = pattern.MustCompile(`(?i)^\(?(?:n\s*=\s*[\d, ]+|(?:n|no\.?|number|mean|median|%|±|\+/-|or|SDs?|SEM?|s\.d\.|s\.e\.m?\.|IQR|range|(?:95\s*%\s*)?CI|[\s(),;/[\]])+)\)?[\s*†‡§¶#a-f]{0,2}$`)
+)
+
+// statementRow reports whether every cell of a row is a statement about the
+// headings above; the stub may have its name there if the others are sample
+// sizes.
+func statementRow(row []rowCell) bool {
+	found, named := false, false
+	for k, c := range row {
+		switch {
+		case c.kind == empty:
+		case k == 0 && len(row) > 1:
+			named = true
+		case !statement.MatchString(c.label) || named && !sizeWord.MatchString(c.label):
+			return false
+		default:
+			found = true
+		}
+	}
+	return found
+}
+
+// states reports whether a cell of a row says what the values are.
+func states(row []rowCell) bool {
+	for _, c := range row {
+		if c.kind != empty && statement.MatchString(c.label) && !sizeWord.MatchString(c.label) {
+			return true
+		}
+	}
+	return false
+}
+
+var (
+	aYear   = pattern.MustCompile(`^(?:19|20)\d\d$`)
+	aChange = pattern.MustCompile(`(?i)^(?:Δ|change|difference|p)\W*$`)
+)
+
+// yearRow reports whether a row names years, and changes between them, below
+// headings that are over several columns each.
+func yearRow(row []rowCell, below bool) bool {
+	years := 0
+	for _, c := range row[1:] {
+		switch {
+		case aYear.MatchString(c.label):
+			years++
+		case c.kind != empty && !aChange.MatchString(c.label):
+			return false
+		}
+	}
+	return below && years > 1
+}
+
+// measured reports whether a row holds values that no heading has.
+func measured(row []rowCell) bool {
+	for _, c := range row {
+		if c.kind == spread || c.kind == estimate || c.kind == bracket || c.kind == interval {
+			return true
+		}
+	}
+	return false
 }
 
 // allNamed reports whether every column but the first has a heading in the row.
@@ -215,189 +292,4 @@ func allNamed(row []rowCell, cols int) bool {
 		}
 	}
 	return true
-}
-
-// bodyPlacer places the rows below the headings, top to bottom.
-type bodyPlacer struct {
-	cols   int
-	body   []profile
-	groups []spot
-	above  []*spot // the cell that covers each column in the row before
-	filled []bool  // whether that cell has text
-	kinds  []kind  // and of what kind it is
-}
-
-func (p *bodyPlacer) row(row []rowCell) []spot {
-	spots := make([]spot, len(row))
-	switch {
-	case labelOnly(row):
-		spots = labelRow(row, p.cols)
-	case len(row) >= p.cols:
-		for k := range row {
-			if k < p.cols {
-				spots[k] = spot{k, 1, 1}
-			}
-		}
-	case p.underEstimates(row, spots):
-	default:
-		p.short(row, spots)
-	}
-	p.below(row, spots)
-	return spots
-}
-
-// underEstimates places a row of intervals alone below the estimates of the row
-// above: "58 | 93.1 | 2.16" over "(83.6 – 98.1) | (1.87 – 2.50)". Columns that
-// hold nothing but whole numbers are counts, which have no interval.
-func (p *bodyPlacer) underEstimates(row []rowCell, spots []spot) bool {
-	for _, c := range row {
-		if c.kind != interval {
-			return false
-		}
-	}
-	var under []int
-	for c := 1; p.above != nil && c < p.cols; c++ {
-		if p.above[c] == nil || p.above[c].width != 1 {
-			continue
-		}
-		body := &p.body[c]
-		if k := p.kinds[c]; (k == whole || k == decimal || k == percent || k == pvalue) && body[decimal]+body[percent]+body[pvalue] > 0 {
-			under = append(under, c)
-		}
-	}
-	if len(row) == 0 || len(under) != len(row) {
-		return false
-	}
-	for k, c := range under {
-		spots[k] = spot{c, 1, 1}
-	}
-	return true
-}
-
-// below lets the cells of the row above reach down over the columns that this
-// row leaves free, and keeps what covers each column now.
-func (p *bodyPlacer) below(row []rowCell, spots []spot) {
-	above, filled, ofKind := make([]*spot, p.cols), make([]bool, p.cols), make([]kind, p.cols)
-	complement := true // values stand where the row above has none
-	for k := range spots {
-		for c := spots[k].col; c < spots[k].col+spots[k].width; c++ {
-			above[c], filled[c], ofKind[c] = &spots[k], row[k].kind != empty, row[k].kind
-			if row[k].kind.numeric() && p.above != nil && p.filled[c] {
-				complement = false
-			}
-		}
-	}
-	if p.above != nil && !labelOnly(row) && len(row) > 1 {
-		for c := 0; c < p.cols; c++ {
-			up := p.above[c]
-			if above[c] != nil || up == nil || !p.filled[c] || c > up.col || !complement && plainValue[p.kinds[c]] {
-				continue
-			}
-			free := true
-			for k := c; k < c+up.width; k++ {
-				free = free && above[k] == nil
-			}
-			if !free {
-				continue
-			}
-			up.height++
-			for k := c; k < c+up.width; k++ {
-				above[k], filled[k], ofKind[k] = up, true, p.kinds[c]
-			}
-		}
-	}
-	p.above, p.filled, p.kinds = above, filled, ofKind
-}
-
-// plainValue marks values that are about their own row only. A p value, a
-// comparison or a text may be about several.
-var plainValue = map[kind]bool{whole: true, decimal: true, bracket: true, spread: true, percent: true}
-
-// Costs, in hundredths of a full likeness.
-const (
-	costEdgeLeft  = 20  // columns at the left are covered from above: a stub over several rows
-	costEdgeRight = 30  // at the right: a p value for several rows
-	costInner     = 150 // in between
-	costNoAbove   = 150 // nothing there to reach down
-	scoreWide     = 60  // a cell over all columns of one heading
-)
-
-// short places a row with fewer cells than columns: the columns it leaves out
-// are covered from above, or its cells span the columns of a wide heading.
-func (p *bodyPlacer) short(row []rowCell, spots []spot) {
-	type state struct {
-		score int
-		from  int // width of the cell that ends here; 0: the column is left out
-		ok    bool
-	}
-	n, cols := len(row), p.cols
-	at := make([][]state, cols+1) // at[c][k]: k cells fill the columns before c
-	for c := range at {
-		at[c] = make([]state, n+1)
-	}
-	at[0][0].ok = true
-	reach := func(c, k, score, from int) {
-		s := &at[c][k]
-		if !s.ok || score > s.score {
-			*s = state{score, from, true}
-		}
-	}
-	for c := 0; c < cols; c++ {
-		for k := 0; k <= n && k <= c; k++ {
-			s := at[c][k]
-			if !s.ok {
-				continue
-			}
-			reach(c+1, k, s.score-p.gapCost(c, k, n, c > 0 && s.from == 0), 0)
-			if k == n {
-				continue
-			}
-			reach(c+1, k+1, s.score+p.body[c].fit(row[k].kind, c == 0), 1)
-			if w := p.groupAt(c); w > 1 && row[k].kind != textual {
-				reach(c+w, k+1, s.score+scoreWide, w)
-			}
-		}
-	}
-	for c, k := cols, n; c > 0; {
-		w := at[c][k].from
-		if w == 0 {
-			c--
-			continue
-		}
-		k--
-		c -= w
-		spots[k] = spot{c, w, 1}
-	}
-}
-
-// gapCost is the price of leaving column c out after k of n cells.
-func (p *bodyPlacer) gapCost(c, k, n int, goesOn bool) int {
-	cost := 0
-	if p.above == nil || p.above[c] == nil || !p.filled[c] {
-		cost += costNoAbove
-		if k == n {
-			// a row cut off after its last filled cell is nothing unusual
-			cost = costEdgeRight / 3
-		}
-	}
-	switch {
-	case goesOn:
-	case k == 0:
-		cost += costEdgeLeft
-	case k == n:
-		cost += costEdgeRight
-	default:
-		cost += costInner
-	}
-	return cost
-}
-
-// groupAt is the width of the heading that begins at column c.
-func (p *bodyPlacer) groupAt(c int) int {
-	for _, g := range p.groups {
-		if g.col == c && g.height == 1 {
-			return g.width
-		}
-	}
-	return 1
 }

@@ -142,7 +142,7 @@ func (r *reader) rowCell(start, end int) rowCell {
 	indent := tidy.LeadingWidth(s) + 2*strings.Count(s[:len(s)-len(trimmed)], " ")
 	start = end - len(trimmed)
 	label := strings.TrimRightFunc(trimmed, source.Blank)
-	return rowCell{start: start, end: start + len(label), indent: indent, kind: kindOf(label), label: label}
+	return rowCell{start: start, end: start + len(label), indent: indent, kind: kindOf(label), label: strings.TrimSpace(specialSpace.Replace(label))}
 }
 
 // isAbbreviation tells an entry of a list of abbreviations from a table row.
