@@ -147,7 +147,10 @@ func (f *frame) columnContext(e *estimate, x *context) {
 				continue
 			}
 			name := p.name
-			if len(times) > 0 && p.kind == partOther && !hasLetter(name) {
+			if strings.HasPrefix(l.text, "%") && !strings.HasPrefix(name, "%") {
+				name = "% " + name // the share above a limit: "% ≥ 8"
+			}
+			if len(times) > 0 && p.kind == partOther && !hasLetter(name) && !strings.HasPrefix(name, "%") {
 				times[len(times)-1] += " " + name // "Hours after treatment" over 24, 48, 72
 				continue
 			}
@@ -216,7 +219,7 @@ func (f *frame) columnContext(e *estimate, x *context) {
 func (f *frame) measured(names []string) []string {
 	var out []string
 	for _, n := range names {
-		if f.lex.unit(n) != "" && !doseName.MatchString(n) || strings.HasPrefix(n, "%") {
+		if f.lex.unit(n) != "" && !doseName.MatchString(n) && !f.subgroupLike(n) || strings.HasPrefix(n, "%") {
 			out = append(out, n)
 		}
 	}
@@ -244,6 +247,8 @@ func (f *frame) rowContext(e *estimate, x *context) {
 		switch {
 		case analysisName.MatchString(p.name):
 			subs = append(subs, p.name)
+		case own && f.conditionRow(l):
+			subs = append(subs, f.rawName(l))
 		case p.kind == partTime:
 			if own {
 				x.time = joinPath([]string{x.time, f.changeUnder(e.row)}, ", ")
@@ -299,6 +304,9 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			t := f.lex.rowTime(p.name)
 			if t == "" {
 				t = f.phaseInBracket(p.name)
+			}
+			if strings.Contains(fold(t), "baseline") && f.predicts(e) {
+				t = "" // when a predictor was measured is not when the outcome was
 			}
 			if t != "" && x.time == "" {
 				x.time, x.timeAt, x.timeFrom = t, l, "row label"

@@ -121,3 +121,27 @@ func (f *frame) rawName(l label) string {
 	}
 	return f.lex.name(l.text)
 }
+
+// conditionRow reports a row label that says with or without what, where another
+// label of the rows says the opposite.
+func (f *frame) conditionRow(l label) bool {
+	if !condition.MatchString(f.rawName(l)) {
+		return false
+	}
+	if f.conditionLabels == nil {
+		f.conditionLabels = []label{}
+		for r := f.head; r < f.tab.Rows; r++ {
+			if ln := &f.lines[r]; ln.kind == lineData && len(ln.labels) > 0 {
+				if o := ln.labels[len(ln.labels)-1]; condition.MatchString(f.rawName(o)) {
+					f.conditionLabels = append(f.conditionLabels, o)
+				}
+			}
+		}
+	}
+	for _, o := range f.conditionLabels {
+		if f.conditions([]label{l, o}) {
+			return true
+		}
+	}
+	return false
+}

@@ -36,6 +36,8 @@ type frame struct {
 	crossTime   map[int]bool       // heading rows of times over the same arms, whatever their words
 	crossSub    map[int]bool       // heading rows of conditions, with and without, below each outcome
 	armList     []string
+
+	conditionLabels []label // innermost row labels that say with or without something
 }
 
 // newFrame lays out a table; nil where it has no cells to read.

@@ -208,3 +208,12 @@ func (f *frame) sameName(arm string) string {
 	}
 	return arm
 }
+
+// predicts reports an estimate of a model, or a ratio of a table without arms: its
+// row names a predictor.
+func (f *frame) predicts(e *estimate) bool {
+	if f.modelCols {
+		return true
+	}
+	return !f.colArms && !f.armRows && f.columnStatistic(e) == "ratio"
+}

@@ -98,7 +98,7 @@ func timesIn(s string) []string {
 		}
 		low := fold(m)
 		if !hasDigit(low) {
-			switch low {
+			switch strings.TrimPrefix(low, "at ") {
 			case "baseline", "screening", "follow-up", "followup", "discharge", "admission", "study end", "at study end":
 			default:
 				if !strings.HasPrefix(low, "end of") && !strings.HasPrefix(low, "pre") && !strings.HasPrefix(low, "post") || len(low) < 6 {
