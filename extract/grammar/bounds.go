@@ -149,7 +149,7 @@ func (p *parser) bounds(i int, in where) (Item, int, bool) {
 		return it, i, false
 	}
 	if _, _, level := p.levelPhrase(k2); level {
-		return it, i, false // "4.0, 95% CI": the level is no bound
+		return it, i, false // "3.0, 95% CI": the level is no bound
 	}
 	upper, end, ok := p.bound(k2)
 	if !ok && sep == "-" && in == inBracket && p.kind(k2) == TokClose {
