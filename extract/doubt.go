@@ -1,6 +1,8 @@
 package extract
 
 import (
+	"sort"
+
 	"halfspan/extract/paper"
 	"halfspan/extract/result"
 )
@@ -15,7 +17,12 @@ var numeric = map[string]bool{
 // read from a picture, on the results that were read there.
 func raiseDoubts(doc *paper.Document, results []result.Result) {
 	byPage := map[int][]paper.Doubt{}
+	var byOffset []paper.Doubt // in the order of the file
 	for _, d := range doc.Doubts {
+		if d.To > d.From {
+			byOffset = append(byOffset, d)
+			continue
+		}
 		byPage[d.Page] = append(byPage[d.Page], d)
 	}
 	scanned := map[int]bool{}
@@ -32,6 +39,10 @@ func raiseDoubts(doc *paper.Document, results []result.Result) {
 				if d.Box.Overlaps(s.Place.Box) {
 					r.Raise(d.Kind, d.Text)
 				}
+			}
+			k := sort.Search(len(byOffset), func(k int) bool { return byOffset[k].To > s.Place.Offset })
+			if k < len(byOffset) && byOffset[k].From <= s.Place.Offset {
+				r.Raise(byOffset[k].Kind, byOffset[k].Text)
 			}
 			if scanned[s.Place.Page] {
 				r.Raise("ocr", "read from a picture of the page")

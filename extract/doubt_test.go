@@ -33,3 +33,21 @@ func TestDoubtsReachTheResultsReadThere(t *testing.T) {
 		}
 	}
 }
+
+// In a text file a doubt stands by its bytes.
+func TestDoubtsByOffset(t *testing.T) {
+	at := func(offset int) result.Result {
+		return result.Result{Sources: []result.Source{{Field: "estimate", Place: paper.Place{Line: 3, Offset: offset}}}}
+	}
+	doc := &paper.Document{Doubts: []paper.Doubt{
+		{From: 40, To: 50, Kind: "columns-unclear", Text: "two ways"},
+		{From: 60, To: 70, Kind: "columns-unclear", Text: "two ways"},
+	}}
+	for offset, want := range map[int]bool{39: false, 40: true, 49: true, 50: false, 65: true, 70: false} {
+		results := []result.Result{at(offset)}
+		raiseDoubts(doc, results)
+		if got := results[0].HasFlag("columns-unclear"); got != want {
+			t.Errorf("offset %d: flag %v, want %v", offset, got, want)
+		}
+	}
+}

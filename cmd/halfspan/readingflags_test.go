@@ -54,6 +54,7 @@ func raisedByReading() map[string]string {
 		"n-at-baseline":       invented("", "", "Table 1. Colonies, mean (SD)\n\nOutcome\tSyrup (n = 42)\tWater (n = 40)\nColony mass, kg\nBaseline\t12.4 (1.3)\t12.1 (1.2)\nWeek 6\t14.1 (1.5)\t13.0 (1.4)\nWeek 12\t15.2 (1.6)\t13.4 (1.5)\nNote: the n for each arm is at baseline."),
 		"n-total":             invented("", "", "Table 1. Colonies at week 6, mean (SD)\n\nOutcome\tn\tSyrup\tWater\nColony mass, kg\t82\t12.4 (1.3)\t12.1 (1.2)\nFlight time, min\t80\t24.6 (3.1)\t22.8 (3.4)"),
 		"outcome-unclear":     invented("", "", "Table 1. Mass of the colonies in kg, mean (SD)\n\n\tSyrup (n = 42)\tWater (n = 40)\nBaseline\t12.4 (1.3)\t12.1 (1.2)\nWeek 6\t14.1 (1.5)\t13.0 (1.4)"),
+		"columns-unclear":     invented("", "", "Table 1. Mass of the colonies in kg, mean (SD)\n\nStation\tWinter\tSummer\n\tSyrup\tWater\tPollen\nElm\t12.4 (1.3)\t12.1 (1.2)\t14.1 (1.5)\nOak\t13.4 (1.4)\t11.1 (1.1)\t13.0 (1.4)"),
 		"row-shape-odd":       invented("", "", "Table 1. Colonies at week 6\n\nOutcome\tSyrup (n = 42)\t\nColony mass, kg, mean (95% CI)\t12.4\t11.2 to 13.6\nFlight time, min, mean (95% CI)\t24.6\t22.1 to 27.1"),
 		"quoted":              "Discussion\n\nIn an earlier study the mean mass of the colonies was 12.4 kg (95% CI 11.2 to 13.6) with syrup in the winter [12].\n",
 	}

@@ -113,6 +113,7 @@ func Flags() []FlagInfo {
 		{"outcome-abbreviated", AsksLook, "the outcome is only an abbreviation", "look up what it stands for"},
 		{"outcome-stacked", AsksLook, "the outcome's row group has a unit of its own: the row above may be another outcome", "check which row the values belong to"},
 		{"outcome-unclear", AsksLook, "no row label or heading says what was measured, or a part of the label seems lost", "check the outcome"},
+		{"columns-unclear", AsksLook, "read from text, which does not say over which columns a heading reaches; here it can be read in two ways", "check arm, time and n against the printed table"},
 		{"row-shape-odd", AsksLook, "the spread stands in another cell and was joined to its estimate by position", "check that the two belong together"},
 		{"quoted", AsksLook, "seems to quote another study, or to repeat", "take it from where it was first reported"},
 		{"sign-differs", AsksLook, "the sign was read in two ways", "look at the page"},

@@ -44,7 +44,9 @@ type Problem struct {
 type Doubt struct {
 	Page int    `json:"page"`
 	Box  Box    `json:"box"`
-	Kind string `json:"kind"` // "readers-differ", "repaired"
+	From int    `json:"from,omitempty"` // byte offsets in the file, [From, To), where the format has no boxes
+	To   int    `json:"to,omitempty"`
+	Kind string `json:"kind"` // "readers-differ", "repaired", "columns-unclear"
 	Text string `json:"text"` // both readings; what was repaired and why
 }
 

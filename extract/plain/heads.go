@@ -11,25 +11,93 @@ import (
 // which every heading stands over columns that hold what it names, headings
 // over several columns stand over like groups, and the last row has a cell for
 // every column that no heading above reaches down to.
-func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) {
+//
+// It gives the columns about whose headings the rows leave a doubt: there is
+// another way to read them that is nearly as good.
+func placeHeads(spots [][]spot, rows [][]rowCell, cols int, body []profile) (doubtful []bool) {
 	for i := range rows {
 		spots[i] = make([]spot, len(rows[i]))
 	}
 	if n := len(rows) - 1; n > 0 && len(rows[n-1]) >= cols && len(rows[n]) < cols && (rows[n][0].kind == empty || len(rows[n]) == 1) && states(rows[n]) {
-		placeHeads(spots[:n], rows[:n], cols, body)
+		doubtful = placeHeads(spots[:n], rows[:n], cols, body)
 		if placeStatements(spots[n], rows[n], cols, body) {
-			return
+			return doubtful
 		}
 	}
-	best := searchHeads(rows, cols, body, len(rows) == 1)
+	wide := len(rows) == 1
+	best := searchHeads(rows, cols, body, wide)
 	if best == nil {
-		best = searchHeads(rows, cols, body, true)
+		wide = true
+		best = searchHeads(rows, cols, body, wide)
 	}
 	if best == nil {
 		leftAlign(spots, rows, cols)
-		return
+		return everyColumn(rows, cols)
 	}
 	best.places.put(spots)
+	return rivals(best, rows, cols, body, wide)
+}
+
+// everyColumn is the doubt about headings that were not placed at all; none
+// where they leave no choice.
+func everyColumn(rows [][]rowCell, cols int) []bool {
+	all := make([]bool, cols)
+	for _, row := range rows {
+		for c := range all {
+			all[c] = all[c] || len(row) != cols
+		}
+	}
+	return all
+}
+
+// near is how much worse another reading may score and still leave a doubt.
+const nearScore = 25
+
+// rivals looks for another way to place the headings that is nearly as good as
+// the best, and tells the columns whose headings differ.
+func rivals(best *headWay, rows [][]rowCell, cols int, body []profile, wide bool) []bool {
+	const most = 6 // headings over several columns that are tried elsewhere
+	doubtful := make([]bool, cols)
+	s := headSearch{rows: known(rows, cols, body), cols: cols, body: body, wide: wide}
+	tried := 0
+	for p := best.places; p != nil && tried < most; p = p.rest {
+		if p.at.width == 1 || p.at.width == cols {
+			continue
+		}
+		tried++
+		s.not = p
+		other := s.best(rows)
+		if other == nil || other.score < best.score-nearScore {
+			continue
+		}
+		a, b := covers(best, rows, cols), covers(other, rows, cols)
+		for c := range doubtful {
+			doubtful[c] = doubtful[c] || a[c] != b[c]
+		}
+	}
+	return doubtful
+}
+
+// covers gives, for each column, the headings above it: bit k of entry r is
+// heading k of row r.
+func covers(w *headWay, rows [][]rowCell, cols int) [][maxHeadRows]uint64 {
+	spots := make([][]spot, len(rows))
+	for i := range rows {
+		spots[i] = make([]spot, len(rows[i]))
+	}
+	w.places.put(spots)
+	out := make([][maxHeadRows]uint64, cols)
+	for i := range spots {
+		for k, at := range spots[i] {
+			if rows[i][k].kind == empty {
+				continue
+			}
+			for c := at.col; c < at.col+at.width; c++ {
+				out[c][i] |= 1 << k
+			}
+		}
+	}
+	return out
 }
 
 // put writes the places into the spots.
@@ -47,10 +115,16 @@ func searchHeads(rows [][]rowCell, cols int, body []profile, wide bool) *headWay
 	if len(rows) > maxHeadRows || cols > maxHeadCols {
 		return nil
 	}
-	s := headSearch{rows: known(rows, cols, body), cols: cols, body: body, wide: wide, memo: map[headKey][]headWay{}}
+	s := headSearch{rows: known(rows, cols, body), cols: cols, body: body, wide: wide}
+	return s.best(rows)
+}
+
+// best gives the best complete way, nil if there is none.
+func (s *headSearch) best(rows [][]rowCell) *headWay {
+	s.memo, s.steps = map[headKey][]headWay{}, 0
 	var start headIndex
 	var best *headWay
-	for _, w := range s.tile(0, 0, cols, start) {
+	for _, w := range s.tile(0, 0, s.cols, start) {
 		if w.complete(rows) && (best == nil || w.score > best.score) {
 			best = &w
 		}
@@ -154,6 +228,7 @@ type headSearch struct {
 	wide  bool // cells of the last row may be over several columns
 	memo  map[headKey][]headWay
 	steps int
+	not   *placed // a place that is not to be used, to see what else there is
 }
 
 // tile gives the best way for each count of cells used to fill columns
@@ -183,6 +258,9 @@ func (s *headSearch) tile(level, from, to int, used headIndex) []headWay {
 		for width := 1; from+width <= last; width++ {
 			for height := 1; level+height <= len(s.rows); height++ {
 				if level+height == len(s.rows) && width > 1 && !s.wide && level > 0 && !s.overStub(level, cell, from, width) {
+					continue
+				}
+				if s.not != nil && s.not.row == level && s.not.cell == cell && s.not.at == (spot{from, width, height}) {
 					continue
 				}
 				if s.steps++; s.steps > headFuel {

@@ -12,9 +12,10 @@ type spot struct{ col, width, height int }
 
 // layoutOf is the grid found for a table.
 type layoutOf struct {
-	cols int
-	head int
-	rows [][]spot
+	cols  int
+	head  int
+	rows  [][]spot
+	doubt []bool // columns about whose headings the text leaves a doubt; nil: none
 }
 
 // layOut places the cells of all rows. head is the number of heading rows where
@@ -63,7 +64,7 @@ func asTold(rows [][]rowCell) layoutOf {
 // place finds the spots of all cells by what the columns hold.
 func (lay *layoutOf) place(rows [][]rowCell, body []profile) {
 	if lay.head > 0 {
-		placeHeads(lay.rows[:lay.head], rows[:lay.head], lay.cols, body)
+		lay.doubt = placeHeads(lay.rows[:lay.head], rows[:lay.head], lay.cols, body)
 	}
 	place := newBodyPlacer(lay, rows, body)
 	for i := lay.head; i < len(rows); i++ {

@@ -235,6 +235,10 @@ func (r *reader) splitPipes(l line) []rowCell {
 	return row
 }
 
+// columnsWhy is the doubt about what stands below headings whose columns the
+// text leaves open.
+const columnsWhy = "text does not say which columns a heading over several of them reaches over, and here it can be read in two ways"
+
 // table lays the rows of a region out as a grid.
 func (r *reader) table(g region) *paper.Table {
 	var lay layoutOf
@@ -255,6 +259,9 @@ func (r *reader) table(g region) *paper.Table {
 			for _, p := range c.more {
 				b.Space(p.start)
 				r.spaced(b, p.start, p.end)
+			}
+			if i >= lay.head && lay.doubt != nil && lay.doubt[at.col] && c.kind.numeric() {
+				r.doc.Doubts = append(r.doc.Doubts, paper.Doubt{From: r.src.Offset(c.start), To: r.src.Offset(c.end), Kind: "columns-unclear", Text: columnsWhy})
 			}
 			t.Cells = append(t.Cells, paper.Cell{Row: i, Col: at.col, RowSpan: at.height, ColSpan: at.width, Indent: c.indent, Head: i < lay.head, Text: b.Run()})
 		}
