@@ -42,15 +42,48 @@ func (r *reader) raiseMarks(t *paper.Table) {
 // against it: the mark-up had no space after the digit ("NO2at night").
 var runTogether = pattern.MustCompile(`\b\pL[\pL\d–-]*?(\d[\d–-]*(?:h|min)?)(?:at|in|of|and|to|for|with|on|by|from)\b`)
 
+// namedAlone is such a name by itself.
+var namedAlone = pattern.MustCompile(`\b\pL[\pL\d–-]*\d[\d–-]*(?:h|min)?[\s,;.)]`)
+
 // lower marks the digit in such names as lowered, if the file also prints the
-// name by itself.
+// name by itself, or one that differs in its digits alone.
 func (r *reader) lower(run *paper.TextRun) {
+	defer sortStyles(run)
+	r.lowerBetween(run)
 	for _, m := range runTogether.FindAllStringSubmatchIndex(run.S, -1) {
 		name := run.S[m[0]:m[3]]
-		if bytes.Contains(r.src.B, []byte(name+" ")) || bytes.Contains(r.src.B, []byte(name+",")) {
+		if bytes.Contains(r.src.B, []byte(name+" ")) || bytes.Contains(r.src.B, []byte(name+",")) || r.namesLike(name) {
 			run.Styles = append(run.Styles, paper.Style{Start: m[2], End: m[3], Kind: paper.Lowered})
 		}
 	}
+}
+
+// twoNames are two names of capitals printed against each other, the first with
+// a digit at its end ("NO2CLO4h").
+var twoNames = pattern.MustCompile(`\b(\p{Lu}{2,}(\d))(\p{Lu}{2,})\d?`)
+
+// lowerBetween marks the digit between two such names as lowered, if the file
+// prints each of them by itself.
+func (r *reader) lowerBetween(run *paper.TextRun) {
+	for _, m := range twoNames.FindAllStringSubmatchIndex(run.S, -1) {
+		first, second := run.S[m[2]:m[3]], run.S[m[6]:m[7]]
+		if bytes.Contains(r.src.B, []byte(first+" ")) && bytes.Contains(r.src.B, []byte(" "+second)) {
+			run.Styles = append(run.Styles, paper.Style{Start: m[4], End: m[5], Kind: paper.Lowered})
+		}
+	}
+}
+
+// namesLike reports whether the file prints a name by itself that differs from
+// this one in its digits alone, of which it has more than one number.
+func (r *reader) namesLike(name string) bool {
+	if r.shapes == nil {
+		r.shapes = map[string]bool{}
+		for _, m := range namedAlone.FindAllString(string(r.src.B), -1) {
+			r.shapes[withoutDigits(m[:len(m)-1])] = true
+		}
+	}
+	shape := withoutDigits(name)
+	return strings.Count(shape, "#") > 1 && r.shapes[shape]
 }
 
 func sortStyles(run *paper.TextRun) {

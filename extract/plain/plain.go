@@ -30,7 +30,8 @@ type reader struct {
 	prose    map[string]int  // how often each word stands in running text
 	front    int             // the first line after title, authors and addresses
 	sections sections
-	regions  map[int]region // tables by their first line, as looked for so far; no rows: none
+	shapes   map[string]bool // names that end in digits, without these; nil before they are asked for
+	regions  map[int]region  // tables by their first line, as looked for so far; no rows: none
 }
 
 // Read turns a text file into a Document. Blank lines part paragraphs; in a
