@@ -119,6 +119,7 @@ func (b *binder) table(i int, f *frame) []result.Result {
 			}
 		}
 	}
+	onlyLater(out)
 	pairMates(out)
 	return out
 }
