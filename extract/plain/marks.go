@@ -119,14 +119,30 @@ var (
 	namedByLetter = pattern.MustCompile(`(?i)(?:group|arm|type|model|class|grade|stage|hepatitis|vitamin|phase|category|part|panel|table|figure|level|study|or|and|versus|vs\.?)$`)
 )
 
+// endings are letters that make another form of a word: behind a word that
+// stands in tables alone they are no mark.
+const endings = "sdenry"
+
+// gluedInRows is like glued for a word that stands in table rows alone.
+func (r *reader) gluedInRows(word, mark string, times int) bool {
+	const shortest = 3
+	return len(word) >= shortest && !strings.Contains(endings, mark[:1]) &&
+		r.cells[strings.ToLower(word)] > 0 && r.prose[strings.ToLower(word+mark)] <= times
+}
+
 // letterMark gives the end of the mark of letters that begins at i of s, i if
 // these letters are none.
 func (r *reader) letterMark(s string, i int, has map[rune]bool, times int) int {
 	end := i + len(markList.FindString(s[i:]))
-	for _, c := range s[i:end] {
-		if unicode.IsLetter(c) && !has[c] {
+	for k, c := range s[i:end] {
+		if !unicode.IsLetter(c) || has[c] {
+			continue
+		}
+		if k == 0 {
 			return i
 		}
+		end = i + strings.LastIndexByte(s[i:i+k], ',') // "weighed, n (%)" with the mark a: n is none
+		break
 	}
 	next, _ := utf8.DecodeRuneInString(s[end:])
 	if end < len(s) && (unicode.IsLetter(next) || unicode.IsDigit(next) || strings.ContainsRune("-–'/", next)) {
@@ -138,7 +154,7 @@ func (r *reader) letterMark(s string, i int, has map[rune]bool, times int) int {
 		return i
 	case unicode.IsLetter(prev):
 		word := lastWord(s[:i])
-		if !r.glued(word+s[i:end], word, times) {
+		if !r.glued(word+s[i:end], word, times) && !r.gluedInRows(word, s[i:end], times) {
 			return i
 		}
 	case unicode.IsSpace(prev):

@@ -18,7 +18,7 @@ import (
 
 var (
 	// noteOpens begins nothing but a note, however long it is.
-	noteOpens = pattern.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbreviations?\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
+	noteOpens = pattern.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbr\pL{2,12}\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
 	// noteForms are forms inside a paragraph that only a note has.
 	noteForms = pattern.MustCompile(`^[\w%()*†‡ .-]{1,14}\s?=\s|^[A-Z][\w-]*[A-Z0-9]\s(?:denotes?|indicates?|stands for|\pL[^.;,]+,\s[A-Z]\w*\s\pL)|\bin (?:parenthes[ei]s|brackets)\b|\b(?:in|of) (?:the|this) table\b|\b(?:are|is|were|was) (?:expressed|presented|given|shown|reported|displayed) as (?:the )?(?:mean|median|n\b|number|percent)`)
 	noteStat  = pattern.MustCompile(`^(?i:(?:mean|median|n)s? ?(?:±|\(|\+))`)
@@ -265,15 +265,20 @@ func (r *reader) glued(whole, other string, times int) bool {
 	return r.prose[strings.ToLower(whole)] <= times && r.prose[strings.ToLower(other)] > 0
 }
 
-// countWords counts the words of the running text, in lower case.
+// countWords counts the words of the running text and those of table rows, in
+// lower case.
 func (r *reader) countWords() {
-	r.prose = map[string]int{}
+	r.prose, r.cells = map[string]int{}, map[string]int{}
 	for i, l := range r.lines {
-		if l.blank || r.tabbed(i) {
+		if l.blank {
 			continue
 		}
+		count := r.prose
+		if r.tabbed(i) {
+			count = r.cells
+		}
 		for _, w := range anyWord.FindAllString(r.text(l), -1) {
-			r.prose[strings.ToLower(w)]++
+			count[strings.ToLower(w)]++
 		}
 	}
 }

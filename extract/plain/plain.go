@@ -28,6 +28,7 @@ type reader struct {
 
 	hyphened map[string]bool // words printed with a hyphen inside a line
 	prose    map[string]int  // how often each word stands in running text
+	cells    map[string]int  // and in table rows
 	front    int             // the first line after title, authors and addresses
 	sections sections
 	shapes   map[string]bool // names that end in digits, without these; nil before they are asked for
