@@ -157,7 +157,7 @@ func pairsWithBlank(cells []rowCell) bool {
 }
 
 // underEstimates places a row of intervals alone below the estimates of the row
-// above: "219 | 99.5 | 4.34" over "(97.5 – 100) | (3.95 – 4.76)". Columns that
+// above: "58 | 93.1 | 2.16" over "(83.6 – 98.1) | (1.87 – 2.50)". Columns that
 // hold nothing but whole numbers are counts, which have no interval.
 func (p *bodyPlacer) underEstimates(row []rowCell, spots []spot) bool {
 	for _, c := range row {
