@@ -18,7 +18,7 @@ import (
 
 var (
 	// noteOpens begins nothing but a note, however long it is.
-	noteOpens = pattern.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values)\b|unless |except where|notes?[.:—–]|note that\b|abbr\pL{2,12}\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
+	noteOpens = pattern.MustCompile(`^(?i:all (?:values|data|numbers|figures|p[- ]values|tests|estimates|models)\b|bold(?:ed|face)? (?:values?|type|numbers?|figures?|print)\b|conversion factors?\b|continuous variables (?:are|were|\(presented)\b|parametric variables are\b|unless |except where|notes?[.:—–]|note that\b|abbr\pL{2,12}\b|(?:the )?(?:data|values?|results|figures)\s+(?:are|were|was|is|represent|given|shown|in parenthes[ei]s|in brackets|presented|expressed|reported|denote|indicate)\b|values,|numbers? (?:in|are)\b|n, number|(?:the )?table (?:shows|presents|gives|legend)|this table\b|(?:a |the )?(?:positive |negative )?differences? (?:is|are|was|were|=)|(?:there (?:was|were) )?no (?:statistically )?significant differences? (?:were found )?between (?:the )?(?:\pL+ )?groups\.?$|means? (?:in|within|with)\b|different (?:letters|superscripts)|(?:small|capital|lower-?case) letters|shown (?:as|by|are)|presented as|expressed as|missing data\b|valid sample|analys[ie]s of variance|ordered by|source\b)`)
 	// noteForms are forms inside a paragraph that only a note has.
 	noteForms = pattern.MustCompile(`^[\w%()*†‡ .-]{1,14}\s?=\s|^[A-Z][\w-]*[A-Z0-9]\s(?:denotes?|indicates?|stands for|\pL[^.;,]+,\s[A-Z]\w*\s\pL)|\bin (?:parenthes[ei]s|brackets)\b|\b(?:in|of) (?:the|this) table\b|\b(?:are|is|were|was) (?:expressed|presented|given|shown|reported|displayed) as (?:the )?(?:mean|median|n\b|number|percent)`)
 	noteStat  = pattern.MustCompile(`^(?i:(?:mean|median|n)s? ?(?:±|\(|\+))`)
@@ -29,7 +29,7 @@ var (
 	// abbreviated is the same without a sign between letters and words.
 	abbreviated = pattern.MustCompile(`^[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL[^.;]+;\s[A-Z][A-Za-z0-9-]*[A-Z0-9]\s\pL`)
 	// symbolMark is a mark that is no letter or digit.
-	symbolMark = pattern.MustCompile(`^(?:\*{1,4}|[†‡§¶#‖∥⁎∗^$¥€Δ∆△▲◊■●○•µ]{1,3})`)
+	symbolMark = pattern.MustCompile(`^(?:\*{1,4}|[†‡ǂ§¶#‖∥⁎∗^$¥€Δ∆△▲◊■●○•µ]{1,3})`)
 	plainMark  = pattern.MustCompile(`^(?:[a-z]|\d{1,2})[).]?`)
 )
 
