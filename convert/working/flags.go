@@ -40,6 +40,7 @@ func Flags() []FlagInfo {
 		{"n-randomised", None, "n counts those randomised; fewer may have been analysed", "look for the number analysed in the flow of the study"},
 		{"n-total", AsksLook, "the n may be that of several arms together", "look for the n of this arm; the SD is withheld"},
 		{"n-at-baseline", None, "the paper says that the n of the headings are those at baseline, and prints none for this time", "look for those analysed at this time in the text; without n an interval gives the SE only"},
+		{"n-from-text", AsksLook, "n is a count in the text of all who took part, or of each group, which is not tied to this table", "look whether these are the subjects of this row, and whether some are missing"},
 		{"n-from-counts", AsksLook, "n is the denominator that the column prints with its counts", "look for missing values: this row may have fewer"},
 		{"n-conflict", MakesIt, "two places give different n", "decide which one counts for this row"},
 		{"small-n", None, "n is below 5", "an SD from so few values is hardly known"},

@@ -179,7 +179,7 @@ func unstatedWith(est, value, arm string) result.Result {
 // program's own test shows invented print for each (cmd/halfspan).
 var byReading = []string{"n-kind-unclear", "n-conflict", "spread-from-methods", "spread-from-rows", "count-or-spread", "level-assumed", "level-elsewhere",
 	"open-bound", "bound-not-a-number", "row-shape-odd", "in-methods", "misprint", "readers-differ", "sign-differs", "ocr", "arm-unclear", "time-unclear", "unknown-sign",
-	"conventions-differ", "interval-unnamed", "scale-differs", "power-of-ten", "from-the-table", "n-from-counts", "n-at-baseline", "columns-unclear"}
+	"conventions-differ", "interval-unnamed", "scale-differs", "power-of-ten", "from-the-table", "n-from-counts", "n-at-baseline", "n-from-text", "columns-unclear"}
 
 // Every flag of the table that the working raises is raised by invented results.
 func TestEveryFlagOfTheWorkingCanBeRaised(t *testing.T) {

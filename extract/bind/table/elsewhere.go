@@ -125,6 +125,9 @@ func (b *binder) setN(r *result.Result, s size, f *frame, x *context) {
 	if s.from == result.NElsewhere {
 		r.Raise(FlagNElsewhere, "read from "+s.words)
 	}
+	if s.told {
+		r.Raise(FlagNTold, s.words)
+	}
 	if s.counts {
 		r.Raise(FlagNCounts, s.words)
 	}
@@ -162,6 +165,9 @@ func (b *binder) countedSize(r *result.Result, f *frame, e *estimate, x *context
 	if x.contrast || x.subgroup != "" || !aboutSubjects(r.Statistic) {
 		return size{}, false
 	}
+	if f.ofCategory(e, x) {
+		return size{}, false
+	}
 	c := b.back.Census
 	named := f.armsInColumns() || f.armRows || x.arm != "" && !totals[armWords(x.arm)]
 	var n census.Count
@@ -172,14 +178,14 @@ func (b *binder) countedSize(r *result.Result, f *frame, e *estimate, x *context
 		// its categories.
 	case !named && !f.describesSubjects():
 		// A table about the feed or the room has other numbers of its own.
-	case named && x.arm != "" && f.aboutArms(x.arm):
+	case named && x.arm != "" && f.aboutArms(x.arm) && (b.sameSubjects(f) || f.namesGroup() || f.describesSubjects()):
 		if n, ok = c.Each(); !ok && b.sameSubjects(f) {
 			n, ok = c.Whole(x.time != "" && !atBaseline(x) || x.time == "" && !ofSample.MatchString(f.tab.Caption.S))
 		}
 	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
 	}
-	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place}, ok
+	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place, told: true}, ok
 }
 
 var subjectWord = pattern.MustCompile(`(?i)\b(?:` + census.Subjects + `|demographic\w*|baseline|sample|cohort|age|sex|gender|bmi|body mass|weight|height)\b`)
@@ -195,6 +201,32 @@ func (f *frame) describesSubjects() bool {
 			if subjectWord.MatchString(l.text) {
 				return true
 			}
+		}
+	}
+	return false
+}
+
+// category is a label that names a part of the subjects and nothing else.
+var category = pattern.MustCompile(`(?i)^\W*(?:all groups,? )?(?:males?|females?|men|women|boys|girls|young(?:er)?|old(?:er)?|elderly|smokers?|non-?smokers?|ex-?smokers?|responders?|non-?responders?|low|high|moderate|medium|mild|severe)(?:\W.{0,16})?$`)
+
+// ofCategory reports that a label or heading of the estimate names a part of the
+// subjects, which the text's counts of all do not hold for.
+func (f *frame) ofCategory(e *estimate, x *context) bool {
+	for _, l := range append(append([]label{}, f.lines[e.row].labels...), f.path(e.row, e.col)...) {
+		if category.MatchString(l.text) {
+			return true
+		}
+	}
+	return category.MatchString(x.arm)
+}
+
+var groupWord = pattern.MustCompile(`(?i)\b(?:groups?|arms?|controls?|placebo|treat|treated|untreated|sham|vehicle)\b`)
+
+// namesGroup reports that one of the table's arms is called a group, or a control.
+func (f *frame) namesGroup() bool {
+	for _, a := range f.armNames() {
+		if groupWord.MatchString(a) {
+			return true
 		}
 	}
 	return false

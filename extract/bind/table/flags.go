@@ -20,6 +20,7 @@ const (
 	FlagNConflict      = "n-conflict"          // two places give different n's
 	FlagNCounts        = "n-from-counts"       // the n is the denominator of the counts in its column
 	FlagNBaseline      = "n-at-baseline"       // the headings' n are those at baseline, the paper says
+	FlagNTold          = "n-from-text"         // the n is a count of the text that is not tied to this table
 	FlagNTotal         = "n-total"             // the n may be the total of several arms
 	FlagOutside        = "estimate-outside"    // the estimate lies outside its bounds
 	FlagReversed       = "bounds-reversed"     // the lower bound is printed after the upper

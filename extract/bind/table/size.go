@@ -20,6 +20,7 @@ type size struct {
 	shared bool // from one column of n's for all arms of the row
 	total  bool // it may be the total of several arms
 	counts bool // it is the denominator of counts
+	told   bool // it is a count of the text that names neither this table nor this time
 }
 
 // number reads an n as printed.
@@ -159,7 +160,7 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	path := f.path(e.row, e.col)
 	var nCols []int
 	for c := f.stub; c < f.tab.Cols; c++ {
-		if f.columnRole(e.row, c).kind == roleN || f.analysedColumn(c) {
+		if (f.columnRole(e.row, c).kind == roleN || f.analysedColumn(c)) && !f.eventColumn(c) {
 			nCols = append(nCols, c)
 		}
 	}
@@ -204,6 +205,14 @@ func (f *frame) columnSize(e *estimate, x *context) (size, bool) {
 	}
 	return size{n: n, from: result.NBeside, words: f.columnName(pick) + " of the same row", text: clean(cell.Text.S), place: cell.Text.Between(vals[k].Start, vals[k].End), total: x.contrast,
 		shared: len(nCols) == 1 && best == 0 && len(f.armNames()) > 1}, true
+}
+
+// ofEvents is a heading over numbers of events, which are no sample sizes.
+var ofEvents = pattern.MustCompile(`(?i)^\W*(?:(?:no\.?|number|n) of )?(?:events?|deaths?|died|dead|cases|losses|ref(?:erence)?|failures|relapses)\b`)
+
+// eventColumn reports that a column counts events.
+func (f *frame) eventColumn(c int) bool {
+	return len(f.heads[c]) > 0 && ofEvents.MatchString(f.heads[c][len(f.heads[c])-1].text)
 }
 
 // analysedN is a heading over the numbers of those analysed in a row, with or

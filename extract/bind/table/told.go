@@ -55,6 +55,7 @@ func (f *frame) sexSize(e *estimate, x *context) (size, bool) {
 var (
 	perGroup  = pattern.MustCompile(`(?i)\b(?:per|each|every)\s+(?:\w+\s+){0,2}?(?:groups?|arms?|treatments?|feeds?|conditions?|doses?|cells?|values?)\b|\b(?:replicates?|independent (?:experiments?|samples?))\b`)
 	ofMean    = pattern.MustCompile(`(?i)\b(?:means?|averages?|medians?)\b|±|\bs\.?d\.?\b|\bs\.?e\.?m?\.?\b|\bstandard (?:deviation|error)`)
+	bracketN  = pattern.MustCompile(`(?i)[(\[][^()\[\]]*\bn\s*=\s*([0-9]{1,5})\b[^()\[\]]*[)\]]`)
 	samePhase = pattern.MustCompile(`(?i)\b(?:phase|period|session|condition|visit)s?\b`)
 )
 
@@ -93,7 +94,11 @@ func (f *frame) declaredSize(e *estimate, x *context) (size, bool) {
 			return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(0)}, true
 		}
 	}
-	if n, ok := read(f.tab.Caption.S, false); ok {
+	n, ok := read(f.tab.Caption.S, false)
+	if m := bracketN.FindStringSubmatch(f.tab.Caption.S); !ok && m != nil && ofMean.MatchString(m[0]) {
+		n, ok = census.Number(m[1]) // "(n = 6; mean ± SD)"
+	}
+	if ok {
 		return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(f.tab.Caption.S), 200), place: f.tab.Caption.At(0)}, true
 	}
 	return size{}, false
@@ -197,13 +202,23 @@ func (b *binder) findTold() {
 		}
 		for _, sp := range segments(bl.Text.S) {
 			s := clean(bl.Text.S[sp.Start:sp.End])
-			if len(s) > 600 || !strings.ContainsAny(s, "0123456789") || len(nMention.FindAllStringIndex(fold(s), 3)) < 2 || planWord.MatchString(s) || leftWord.MatchString(s) {
+			if len(s) > 600 || !counts(s) || planWord.MatchString(s) || leftWord.MatchString(s) {
 				continue
 			}
 			b.told = append(b.told, toldSentence{text: s, place: bl.Text.Between(sp.Start, sp.End), last: flowWord.MatchString(s)})
 		}
 	}
 }
+
+// counts reports two counts of subjects or sizes, or more, in a sentence.
+func counts(s string) bool {
+	if strings.ContainsAny(s, "0123456789") && len(nMention.FindAllStringIndex(fold(s), 2)) == 2 {
+		return true
+	}
+	return len(twoCounts.FindAllStringIndex(s, 2)) == 2
+}
+
+var twoCounts = pattern.MustCompile(`(?i)\b(?:[0-9]{1,5}|` + census.Words + `)\s+(?:[a-z-]+\s+){1,3}?` + census.Subjects + `\b`)
 
 var leftWord = pattern.MustCompile(`(?i)\b(?:drop(?:ped)?[- ]?outs?|withdr[ae]w\w*|lost to|excluded|discontinu\w+|died|deaths?|adverse|missing|declined|refused|events?|developed|experienced|failed)\b`)
 
@@ -234,7 +249,7 @@ func (b *binder) toldSize(f *frame, x *context) (size, bool) {
 	if pick.n == 0 || pick.differ || last.n > 0 && first.n > 0 && last.n > first.n {
 		return size{}, false
 	}
-	return size{n: pick.n, from: result.NElsewhere, words: "the text", text: shorten(pick.from.text, 200), place: pick.from.place}, true
+	return size{n: pick.n, from: result.NElsewhere, words: "the text", text: shorten(pick.from.text, 200), place: pick.from.place, told: true}, true
 }
 
 // toldN is the n that sentences give an arm.
@@ -268,9 +283,36 @@ func (b *binder) toldOf(f *frame, s, arm string) (int, bool) {
 		if n, ok := nForArm(s, name, f.otherArms(arm)); ok && n > 1 {
 			return n, true
 		}
+		if n, ok := numberBefore(s, name); ok {
+			return n, true
+		}
 	}
 	return 0, false
 }
+
+// numberBefore reads "six healthy colonies and 7 robbed colonies": the number is
+// followed by the arm's name and what is counted.
+func numberBefore(s, name string) (int, bool) {
+	low, stem := fold(s), strings.TrimSuffix(armWords(name), "s")
+	if len(stem) < 4 {
+		return 0, false
+	}
+	at := strings.Index(low, stem)
+	if at < 0 || at > 0 && letterAt(low, at-1) {
+		return 0, false
+	}
+	m := countEnd.FindStringSubmatch(low[max(0, at-40):at])
+	if m == nil || !countedThing.MatchString(low[at+len(stem):min(len(low), at+len(stem)+40)]) {
+		return 0, false
+	}
+	n, ok := census.Number(m[1])
+	return n, ok && n > 1
+}
+
+var (
+	countEnd     = pattern.MustCompile(`(?:^|[^\w.,-])([0-9]{1,5}|` + census.Words + `)\s+(?:[a-z-]+\s+)?$`)
+	countedThing = pattern.MustCompile(`^[a-z]*\s+(?:(?:and|or)\s+\S+\s+\S+\s+)?` + census.Subjects + `\b`)
+)
 
 // othersTold reports that the sentence gives another arm of the table an n, too.
 func (b *binder) othersTold(f *frame, s, arm string) bool {
