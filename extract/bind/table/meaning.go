@@ -85,7 +85,7 @@ func (f *frame) statements(e *estimate) []statement {
 	return out
 }
 
-// cellStatement is what the words inside a cell of values say: "Mean: 61 Range: 19–92".
+// cellStatement is what the words inside a cell of values say: "Mean: 23 Range: 8–44".
 func cellStatement(cell *paper.Cell, p phrase) (statement, bool) {
 	s := statement{rank: rankCell, text: clean(cell.Text.S), from: "the cell", place: cell.Text.Between(0, len(cell.Text.S))}
 	for _, q := range p.pairs {
