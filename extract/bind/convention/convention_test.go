@@ -35,6 +35,7 @@ func TestPlusMinus(t *testing.T) {
 		{"a value, no habit", []paper.Block{block(methods, paper.Paragraph, "The hives had a mean mass of 12.4 (SD 1.3) kg.")}, Prose, "", false, false},
 		{"a plan", []paper.Block{block(methods, paper.Paragraph, "A mean and SD of 12 kg and 3 kg were assumed for the sample size.")}, Prose, "", false, false},
 		{"a value of another study", []paper.Block{block(methods, paper.Paragraph, "In the literature, the mean ± SD mass of hives was 12.4 ± 1.3 kg.")}, Prose, "", false, false},
+		{"a value with a citation", []paper.Block{block(methods, paper.Paragraph, "[7], the mean ± SD mass of hives was 12.6 ± 1.4 kg.")}, Prose, "", false, false},
 		{"a formula", []paper.Block{block(methods, paper.Paragraph, "Effects were calculated as the difference in means divided by the standard deviation.")}, Prose, "", false, false},
 		{"references", []paper.Block{block(paper.References, paper.Paragraph, "Data are presented as mean ± SD.")}, Prose, "", false, false},
 		{"nothing", nil, Prose, "", false, false},

@@ -19,7 +19,7 @@ var (
 	inText    = pattern.MustCompile(`(?i)\b(?:in|throughout) the text\b`)
 	plan      = pattern.MustCompile(`(?i)\bsample size\b|\bpower\b|\bassum|\bdetect|\bexpected\b|\bprevious(?:ly)?\b|\bnorm(?:s|ative|ed)?\b`)
 	reckoning = pattern.MustCompile(`(?i)\bdivided by\b|\bratio of\b|\beffect sizes?\b|\bcohen|\bhedges|\bpooled\b|\bz[- ]?scores?\b|\bstandardi[sz]ed (?:mean|difference)|\bcoefficients? of variation\b|\b(?:half a|one|two|three|[0-9.]+) (?:sds?|standard deviations?)\b`) // an SD in a formula, not in print
-	others    = pattern.MustCompile(`(?i)\bliterature\b|\bet al\b|\b(?:earlier|other|another|prior) (?:stud|trial|work|report)|\bpilot\b`)
+	others    = pattern.MustCompile(`(?i)\bliterature\b|\bet al\b|\b(?:earlier|other|another|prior) (?:stud|trial|work|report)|\bpilot\b|\[[0-9]{1,3}(?:\s?[,–-]\s?[0-9]{1,3})*\]`)
 	meaningOf = pattern.MustCompile(`(?i)(?:±|\bplus[- ]minus\b|\bparenthes[ei]s|\bbrackets?|\berror bars?|\bbars|\bwhiskers)`)
 )
 
