@@ -72,9 +72,24 @@ func (f *frame) firstN(c int) (int, label, bool) {
 	return 0, label{}, false
 }
 
-// size gives a result its n: from its own table, else by the arm's name from
-// another table of the paper.
+// size gives a result its n. An agreement or a coefficient for which nothing nearer
+// gives one has that of the caption.
 func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context) {
+	b.ownSize(r, i, f, e, x)
+	if r.N > 0 || r.Statistic != result.Coefficient && r.Statistic != result.Other || x.subgroup != "" {
+		return
+	}
+	c := &f.tab.Caption
+	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
+		if n := number(p.ns[0].Value); n > 0 {
+			b.setN(r, size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, f, x)
+		}
+	}
+}
+
+// ownSize finds the n of a result in its own table, else by the arm's name in
+// another table of the paper or in the text.
+func (b *binder) ownSize(r *result.Result, i int, f *frame, e *estimate, x *context) {
 	if x.contrast && x.arm2 != "" {
 		b.contrastSize(r, i, f, e, x)
 		return
