@@ -144,6 +144,7 @@ var (
 	timeMark = pattern.MustCompile(`(?i)\b(?:` +
 		`(?:at |after |by |to |from |for |in |within |until |on )?(?:the )?(?:` + timeNumber + `(?:\s?(?:to|and)\s?` + timeNumber + `)?[\s-]?` + timeUnit + `\b(?: ?(?:\.|post|after|pre|before|follow-?up|later))*` +
 		`|(?:weeks?|wk|months?|mo|days?|years?|yr|hours?|hour|visit|session|cycle|period|phase|wave|quarter|trimester|time ?point|time|stage|round|occasion)\s?[-–−]?` + timeNumber + `(?:\s?(?:[-–—−]|to|and|through)\s?(?:(?:week|month|day|year|hour)s?\s?)?` + timeNumber + `)?\b(?: (?:weeks?|months?|days?|years?|hours?|min)\b)?` +
+		`|(?:at |after |by |before |in |during )?(?:the )?(?:\d{1,2}(?:st|nd|rd|th)|first|second|third|fourth|fifth|sixth|last)[\s-](?:cycle|visit|session|period|phase|trimester|round|wave|quarter|assessment|measurement)s?\b` +
 		`|[tv]\d{1,2}\b|d\d{1,3}\b|w\d{1,2}\b` +
 		`|baseline|screening|enrol?lment|randomi[sz]ation|admission|discharge|follow-?up|end ?point|endline|midline|study end|washout|run-in|` +
 		`pre-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy)|post-?(?:treatment|intervention|test|operative(?:ly)?|op|training|dose|exercise|surgery|neoadjuvant|induction|study|therapy|trial)|` +
