@@ -305,6 +305,11 @@ func (f *frame) rowContext(e *estimate, x *context) {
 			if t == "" {
 				t = f.phaseInBracket(p.name)
 			}
+			if t == "" && own {
+				if stem, phase, ok := f.phasedRow(p.name); ok {
+					t, outcome[len(outcome)-1] = phase, stem
+				}
+			}
 			if strings.Contains(fold(t), "baseline") && f.predicts(e) {
 				t = "" // when a predictor was measured is not when the outcome was
 			}

@@ -85,6 +85,26 @@ func rowTime(s string) string {
 	return ""
 }
 
+// phaseEnd is a label that ends with before or after: "Mass pre-test".
+var phaseEnd = pattern.MustCompile(`(?i)^(.*\pL.*?)[\s,]+\(?((?:pre|post)(?:[- ]?(?:test|treatment|intervention|training|operative(?:ly)?|op|exercise|surgery|feeding|therapy))?)\)?$`)
+
+// phasedRow splits a row's label into what was measured and when, where another
+// row says the same of the other time.
+func (f *frame) phasedRow(name string) (stem, phase string, ok bool) {
+	m := phaseEnd.FindStringSubmatch(name)
+	if m == nil {
+		return "", "", false
+	}
+	for r := f.head; r < f.tab.Rows; r++ {
+		for _, l := range f.lines[r].labels {
+			if o := phaseEnd.FindStringSubmatch(f.lex.name(l.text)); o != nil && fold(o[1]) == fold(m[1]) && fold(o[2]) != fold(m[2]) {
+				return m[1], m[2], true
+			}
+		}
+	}
+	return "", "", false
+}
+
 var recall = pattern.MustCompile(`(?:previous|last|past|prior|preceding|within|during the|per|in|first|every|over)\s*$`)
 
 func timesIn(s string) []string {
