@@ -99,7 +99,7 @@ func (g *grouper) item(it Item) {
 		g.start(Value{Estimate: it.Value, Of: it.Of}, it.Span)
 	case KindPlusMinus:
 		of := it.Of
-		if of.IsZero() || inside && len(g.cell.Values) > 0 {
+		if of.IsZero() {
 			g.attach(it)
 			return
 		}

@@ -249,6 +249,9 @@ func (p *parser) spreadWord(i int) int {
 //
 // "12.4 ± 1.3", "12.4 (±1.3)", "12.4 ± SD 1.3", "12.4 ± 1.3 (SEM)", "± 95% CI 2.1".
 func (p *parser) plusMinus(i int, of Number, start int) int {
+	if p.ofHours(i) {
+		return i // "4 h 34 min ± 1 h 13 min": neither number is the whole time
+	}
 	it := Item{Kind: KindPlusMinus, Of: of}
 	k := i + 1
 	if w, end, ok := p.levelPhrase(k); ok {
@@ -282,6 +285,18 @@ func (p *parser) plusMinus(i int, of Number, start int) int {
 	}
 	p.add(it)
 	return end
+}
+
+var hourWords = map[string]bool{"h": true, "hr": true, "hrs": true, "hour": true, "hours": true}
+
+// ofHours reports that the number before the ± at token i goes on with a time that
+// began with hours: "4 h 34 min".
+func (p *parser) ofHours(i int) bool {
+	k := i - 1
+	if p.kind(k) == TokWord {
+		k--
+	}
+	return p.kind(k) == TokNumber && hourWords[p.word(k-1)] && p.kind(k-2) == TokNumber
 }
 
 // sampleSize reads "n = 42", "N: 42", "n 42", "n1 = 42", "no. = 42".

@@ -51,7 +51,7 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && nPhrase.MatchString(l.text) && percentBracket.MatchString(l.text) {
 			continue // "Syrup n = 42 (%)": of the counts below
 		}
-		if f.partOf(l).kind == partTime && unitOfTime[f.lex.unit(l.text)] {
+		if l.cell != nil && l.cell.Col >= f.stub && f.partOf(l).kind == partTime && unitOfTime[f.lex.unit(l.text)] {
 			continue // "Time after feeding (min)" over the columns
 		}
 		if u := f.lex.unit(l.text); u != "" && !(u == "%" && f.countsBeside(l)) {
