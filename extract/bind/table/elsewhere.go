@@ -111,6 +111,9 @@ func (b *binder) ownSize(r *result.Result, i int, f *frame, e *estimate, x *cont
 			r.Raise(FlagNTotal, "one column of n's stands beside several arms")
 		}
 	}
+	if !ok && f.fewerInGroup(e) {
+		return // an arm's n of elsewhere would be that of the whole arm
+	}
 	if !ok {
 		s, ok = b.captionOfAll(f, x)
 	}

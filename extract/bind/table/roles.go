@@ -203,6 +203,9 @@ func roleNoneOf(r role) role { return role{label: r.label, pairs: r.pairs} }
 
 var nPhrase = pattern.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]+(?:\s*(?:/\s*\d+|patients|subjects|participants|women|men|children|colonies))?\s*[\)\]]?`)
 
+// manyN is a bracket with the n of several times: (Week 6, n = 47; Week 12, n = 41).
+var manyN = pattern.MustCompile(`(?i)[(\[][^()\[\]]*\bn\s*=\s*\d+[^()\[\]]*\bn\s*=\s*\d+[^()\[\]]*[)\]]`)
+
 // nBySex is a bracket with the n of each sex: (n = 9 M, 11 F).
 var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*\d*\s*(?:m|f|males?|females?|men|women)\s*[,;/&]\s*\d+\s*(?:m|f|males?|females?|men|women)\s*\)`)
 
@@ -227,7 +230,7 @@ var fixedMean = pattern.MustCompile(`(?i)^mean (?:arterial|blood|airway|corpuscu
 // stripTerms takes n = 42, statistics and levels out of a heading.
 func stripTerms(s string) string {
 	s = normalise(s)
-	s = nPhrase.ReplaceAllString(nBySex.ReplaceAllString(s, " "), " ")
+	s = nPhrase.ReplaceAllString(nBySex.ReplaceAllString(manyN.ReplaceAllString(s, " "), " "), " ")
 	h := grammar.ParsePhrase(grammar.Text{S: s})
 	b := []byte(s)
 	all := onlyTerms(s, h)

@@ -4,6 +4,7 @@ import (
 	"strconv"
 	"strings"
 
+	"halfspan/extract/bind/census"
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
@@ -444,10 +445,56 @@ func (f *frame) markSize(e *estimate, x *context) (size, bool) {
 	return size{}, false
 }
 
-// headSize reads the n in the column's headings.
+// headSize reads the n in the column's headings: the one for the row's own time
+// where a heading gives several, and none where the group of the row has fewer than
+// the heading says.
 func (f *frame) headSize(e *estimate, x *context) (size, bool) {
-	if n, l, ok := f.headingN(e.row, e.col); ok && !x.contrast {
-		return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+	n, l, ok := f.headingN(e.row, e.col)
+	if !ok || x.contrast {
+		return size{}, false
+	}
+	if ns := nByTime.FindAllStringSubmatch(l.raw, -1); len(ns) > 1 {
+		return f.timedSize(ns, e, x, l)
+	}
+	if f.fewerInGroup(e) {
+		return size{}, false
+	}
+	return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+}
+
+// fewerInGroup reports that the group of the row has fewer than the arm over the
+// column: "Flight (n = 23)" under arms of 54 and 51, of which each arm's part is not
+// printed.
+func (f *frame) fewerInGroup(e *estimate) bool {
+	n, _, ok := f.headingN(e.row, e.col)
+	if !ok || !f.armsInColumns() {
+		return false
+	}
+	for _, g := range f.lines[e.row].groups {
+		for _, own := range f.lines[g].labels {
+			if part, has := f.lex.lastN(own); has && part < n {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// nByTime is one of several sizes in a heading: "(Outcome, n = 45; Follow-up, n = 42)".
+var nByTime = pattern.MustCompile(`(?i)([\pL][\pL\d -]*?)\s*[,:]?\s*\bn\s*=\s*([0-9]{1,6})\b`)
+
+// timedSize picks the size that a heading gives for the time or label of the row.
+func (f *frame) timedSize(ns [][]string, e *estimate, x *context, l label) (size, bool) {
+	own := []string{x.time}
+	for _, r := range f.lines[e.row].labels {
+		own = append(own, r.text)
+	}
+	for _, m := range ns {
+		for _, o := range own {
+			if n, ok := census.Number(m[2]); ok && o != "" && fold(o) == fold(m[1]) {
+				return sizeOfLabel(n, l, result.NHeading, f.columnName(e.col)), true
+			}
+		}
 	}
 	return size{}, false
 }
