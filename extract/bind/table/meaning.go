@@ -6,6 +6,7 @@ import (
 
 	"halfspan/extract/grammar"
 	"halfspan/extract/paper"
+	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
 
@@ -81,9 +82,38 @@ func (f *frame) statements(e *estimate) []statement {
 			byLabel(f.heads[c][i], rankGroup, "heading of the row labels")
 		}
 	}
-	out = append(out, f.tableStatements()...)
+	for _, s := range f.tableStatements() {
+		out = append(out, f.excepted(e, s))
+	}
 	return out
 }
+
+// excepted keeps of "values are mean (SD) except for the gain, which is mean (SE)"
+// what holds for the estimate: the exception where a label or heading of it is named
+// there, the rule elsewhere.
+func (f *frame) excepted(e *estimate, s statement) statement {
+	cut := exceptFor.FindStringIndex(s.text)
+	if cut == nil || len(s.pairs) < 2 {
+		return s
+	}
+	named := false
+	for _, l := range append(append([]label{}, f.lines[e.row].labels...), f.path(e.row, e.col)...) {
+		w := fold(f.lex.name(l.text))
+		named = named || w != "" && wordIndex(fold(s.text[cut[1]:]), w) >= 0
+	}
+	var kept []pair
+	for _, q := range s.pairs {
+		if at := exceptFor.FindStringIndex(q.text); at != nil && (q.Start > at[0]) == named {
+			kept = append(kept, q)
+		}
+	}
+	if len(kept) > 0 {
+		s.pairs = kept
+	}
+	return s
+}
+
+var exceptFor = pattern.MustCompile(`(?i)\bexcept(?:ing)?(?: for| that| in)?\b`)
 
 // cellStatement is what the words inside a cell of values say: "Mean: 23 Range: 8–44".
 func cellStatement(cell *paper.Cell, p phrase) (statement, bool) {
