@@ -294,6 +294,31 @@ func (f *frame) findHeads() {
 	}
 }
 
+// goesOn reports that a span is marked one column short: a time stands below the
+// blank cell as one does below the span, and another span of the row begins with the
+// same sub-heading.
+func (f *frame) goesOn(r, c int, left *paper.Cell) bool {
+	sub := func(k int) string {
+		if cell := f.grid[r+1][k]; cell != nil {
+			return fold(cell.Text.S)
+		}
+		return ""
+	}
+	timed := false
+	for k := left.Col; k < min(left.Col+left.ColSpan, f.tab.Cols); k++ {
+		timed = timed || f.lex.isTime(sub(k))
+	}
+	if !timed || !f.lex.isTime(sub(c)) || sub(left.Col) == "" {
+		return false
+	}
+	for k := f.stub; k < f.tab.Cols; k++ {
+		if o := f.cellAt(r, k); o != nil && o != left && o.ColSpan > 1 && !isBlankText(o.Text.S) && sub(k) == sub(left.Col) {
+			return true
+		}
+	}
+	return false
+}
+
 // headCell gives the heading cell that stands over column c in row r. Where a
 // heading row has no spans marked but blank cells under which the next row goes
 // on, the heading to the left stands over them too.
@@ -314,7 +339,7 @@ func (f *frame) headCell(r, c int) *paper.Cell {
 		if alone && !f.standsAlone(r+1, k) {
 			return cell
 		}
-		if left.ColSpan > 1 && f.aloneInRow(r, left) {
+		if left.ColSpan > 1 && (f.aloneInRow(r, left) || f.goesOn(r, c, left)) {
 			return left
 		}
 		if left.ColSpan > 1 || left.RowSpan > 1 || f.soleHead(r, k) {
