@@ -14,12 +14,17 @@ type cellReading struct {
 	cell        grammar.Cell
 	phrase      phrase
 	headingLike bool
+	slashed     bool // it prints a slash for the decimal point
 }
 
 func readCell(c *paper.Cell) *cellReading {
 	in := textOf(&c.Text)
 	in.DecimalComma = in.DecimalComma || loneComma.MatchString(in.S)
-	rd := &cellReading{cell: grammar.ParseCell(in), phrase: parsePhrase(in)}
+	slashed := slashDecimals.MatchString(in.S)
+	if slashed {
+		in.S = strings.ReplaceAll(in.S, "/", ".")
+	}
+	rd := &cellReading{cell: grammar.ParseCell(in), phrase: parsePhrase(in), slashed: slashed}
 	rd.headingLike = (hasLetter(c.Text.S) || rd.phrase.terms > 0) && !rd.hasSpread() && !rd.cell.Missing
 	return rd
 }
@@ -27,6 +32,10 @@ func readCell(c *paper.Cell) *cellReading {
 // loneComma is a cell that prints one number with a comma and one or two digits:
 // 41,8 is no list, and no thousands have so few.
 var loneComma = pattern.MustCompile(`^\s*[-−–]?[0-9]{1,3},[0-9]{1,2}\s*%?\s*$`)
+
+// slashDecimals is a cell whose value and spread both have a slash where the decimal
+// point stands elsewhere: 12/43 ± 1/32.
+var slashDecimals = pattern.MustCompile(`^\s*[0-9]{1,4}/[0-9]{1,4}\s*±\s*[0-9]{1,4}/[0-9]{1,4}\s*$`)
 
 // hasSpread reports a value with something that may be a spread beside it.
 func (rd *cellReading) hasSpread() bool {

@@ -344,6 +344,9 @@ func (b *binder) fill(r *result.Result, f *frame, e *estimate, sp *spread, x *co
 	if e.value.Mended || first.Mended {
 		r.Raise(FlagMended, "printed with a slip; kept as printed")
 	}
+	if f.reads[e.cell].slashed {
+		r.Raise(FlagMended, "a slash stands for the decimal point: "+clean(e.cell.Text.S))
+	}
 }
 
 // firstDigit gives the place of the first digit of a number.
