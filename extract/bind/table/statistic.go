@@ -141,7 +141,7 @@ func usual(g result.GivenAs) result.Statistic {
 var (
 	sensitivityAnalysis = pattern.MustCompile(`(?i)\bsensitivity analys[ie]s\b`)
 
-	strictShare = pattern.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|%\s*[≥≤<>]|\bpatients with\b|\bpatients \(%\)`)
+	strictShare = pattern.MustCompile(`(?i)\bper ?cent of\b|\bproportion|\bprevalence|\bsensitivity|\bspecificity|\bpredictive value|\b(?:response|success|cure|event|mortality|failure|detection|infection|attack|relapse|recurrence|pregnancy|completion|retention|remission|survival) rates?\b|\bn ?\(%\)|^\s*%|%\s*(?:\|\s*)?[≥≤<>]|\bpatients with\b|\bpatients \(%\)`)
 )
 
 // refine turns a plain mean into a change, a difference or a proportion where
