@@ -64,7 +64,7 @@ func saysNothing(name string) bool {
 var betweenTwo = pattern.MustCompile(`(?i)\bdifferences?\b.*? between (.+?) and (.+)$`)
 
 // againstTime is a difference from an earlier time.
-var againstTime = pattern.MustCompile(`(?i)\bdifferences?\b.*?\b(?:compared (?:with|to)|vs\.?|versus|relative to|from|since) (?:the )?(?:baseline|pre-?(?:treatment|intervention|test|feeding)|(?:week|day|month|visit) \d+)(?: values?)?\b`)
+var againstTime = pattern.MustCompile(`(?i)\bdifferences?\b.*?\b(?:compared (?:with|to)|vs\.?|versus|relative to|from|since) (?:the )?(?:baseline|start|outset|entry|pre-?(?:treatment|intervention|test|feeding)|(?:week|day|month|visit) \d+)(?: values?)?\b`)
 
 // parseContrast takes the two arms from a heading of a difference.
 func (f *frame) parseContrast(l label, x *context) {

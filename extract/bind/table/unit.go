@@ -51,6 +51,9 @@ func (f *frame) unitOf(e *estimate, x *context) {
 		if i >= len(ls)-len(path) && f.colArms && !x.outcomeGuess && nPhrase.MatchString(l.text) && percentBracket.MatchString(l.text) {
 			continue // "Syrup n = 42 (%)": of the counts below
 		}
+		if l.cell != nil && l.cell.Col < f.stub && unitOfTime[f.lex.unit(l.text)] && f.lex.isTime(fold(l.text)) && !unitBracket.MatchString(l.text) {
+			continue // "36 months" labels a time, and measures nothing
+		}
 		if l.cell != nil && l.cell.Col >= f.stub && f.partOf(l).kind == partTime && unitOfTime[f.lex.unit(l.text)] {
 			continue // "Time after feeding (min)" over the columns
 		}
