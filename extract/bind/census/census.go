@@ -40,14 +40,14 @@ const sentenceMost = 700
 
 // Of reads the counts of a paper's abstract, methods and results.
 func Of(doc *paper.Document) *Census {
-	c := &Census{}
+	c := &Census{Within: within.MatchString(doc.Title)}
 	for i := range doc.Blocks {
 		b := &doc.Blocks[i]
 		if b.Kind != paper.Paragraph || b.Zone != paper.Abstract && b.Zone != paper.Methods && b.Zone != paper.Results {
 			continue
 		}
 		s := b.Text.S
-		c.Within = c.Within || within.MatchString(doc.Title) || b.Zone != paper.Results && within.MatchString(s)
+		c.Within = c.Within || b.Zone != paper.Results && within.MatchString(s)
 		for start := 0; start < len(s); {
 			end := start + sentenceEnd(s[start:])
 			if end-start <= sentenceMost {
@@ -140,8 +140,6 @@ func (c *Census) sentence(b *paper.Block, from, to int) {
 			if !named.MatchString(k.Text) { // "the 25 enrolled colonies" are those enrolled
 				k.Kind = Finished
 			}
-		} else if !began && !done {
-			continue
 		}
 		c.Counts = append(c.Counts, k)
 	}

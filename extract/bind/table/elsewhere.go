@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"halfspan/extract/bind/census"
+	"halfspan/extract/paper"
 	"halfspan/extract/pattern"
 	"halfspan/extract/result"
 )
@@ -79,12 +80,24 @@ func (b *binder) size(r *result.Result, i int, f *frame, e *estimate, x *context
 	if r.N > 0 || r.Statistic != result.Coefficient && r.Statistic != result.Other || x.subgroup != "" {
 		return
 	}
-	c := &f.tab.Caption
-	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
-		if n := number(p.ns[0].Value); n > 0 {
-			b.setN(r, size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, f, x)
-		}
+	if s, ok := f.captionN(); ok {
+		b.setN(r, s, f, x)
 	}
+}
+
+// captionN is the only n of the caption.
+func (f *frame) captionN() (size, bool) {
+	return onlySize(&f.tab.Caption, result.NCaption, "caption")
+}
+
+// onlySize is the n of a text that gives one and no other; words name the text.
+func onlySize(run *paper.TextRun, from, words string) (size, bool) {
+	p := parsePhrase(textOf(run))
+	if len(p.ns) != 1 {
+		return size{}, false
+	}
+	n := number(p.ns[0].Value)
+	return size{n: n, from: from, words: words, text: shorten(clean(run.S), 200), place: run.At(p.ns[0].Start)}, n > 0
 }
 
 // ownSize finds the n of a result in its own table, else by the arm's name in
@@ -114,23 +127,18 @@ func (b *binder) ownSize(r *result.Result, i int, f *frame, e *estimate, x *cont
 	if !ok && f.fewerInGroup(e) {
 		return // an arm's n of elsewhere would be that of the whole arm
 	}
-	if !ok {
-		s, ok = b.captionOfAll(f, x)
-	}
-	if !ok {
-		s, ok = f.ownGroupSize(e, x, r.Statistic)
-	}
-	if !ok {
-		s, ok = b.flowSize(i, f, x)
-	}
-	if !ok {
-		s, ok = b.otherSize(i, x.arm)
-	}
-	if !ok {
-		s, ok = b.toldSize(f, x)
-	}
-	if !ok {
-		s, ok = b.countedSize(r, f, e, x)
+	for _, find := range []func() (size, bool){
+		func() (size, bool) { return b.captionOfAll(f, x) },
+		func() (size, bool) { return f.ownGroupSize(e, x, r.Statistic) },
+		func() (size, bool) { return b.flowSize(i, f, x) },
+		func() (size, bool) { return b.otherSize(i, x.arm) },
+		func() (size, bool) { return b.toldSize(f, x) },
+		func() (size, bool) { return b.countedSize(r, f, e, x) },
+	} {
+		if ok {
+			break
+		}
+		s, ok = find()
 	}
 	if ok {
 		b.setN(r, s, f, x)
@@ -203,7 +211,10 @@ func (b *binder) countedSize(r *result.Result, f *frame, e *estimate, x *context
 	case !named || b.sameSubjects(f):
 		n, ok = c.Whole(!atBaseline(x))
 	}
-	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place, told: true}, ok
+	if !ok {
+		return size{}, false
+	}
+	return size{n: n.N, from: result.NElsewhere, words: "the text's count of those who took part", text: n.Text, place: n.Place, told: true}, true
 }
 
 var subjectWord = pattern.MustCompile(`(?i)\b(?:` + census.Subjects + `|demographic\w*|baseline|sample|cohort|age|sex|gender|bmi|body mass|weight|height)\b`)

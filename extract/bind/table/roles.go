@@ -207,7 +207,7 @@ var nPhrase = pattern.MustCompile(`(?i)[\(\[,;]?\s*\b(?:n|no\.?)\s*[=:]\s*[\d,.]
 var manyN = pattern.MustCompile(`(?i)[(\[][^()\[\]]*\bn\s*=\s*\d+[^()\[\]]*\bn\s*=\s*\d+[^()\[\]]*[)\]]`)
 
 // nBySex is a bracket with the n of each sex: (n = 9 M, 11 F).
-var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*\d*\s*(?:m|f|males?|females?|men|women)\s*[,;/&]\s*\d+\s*(?:m|f|males?|females?|men|women)\s*\)`)
+var nBySex = pattern.MustCompile(`(?i)\(\s*n\s*=\s*(\d*)\s*(m|f|males?|females?|men|women)\s*[,;/&]\s*(\d+)\s*(m|f|males?|females?|men|women)\s*\)`)
 
 // onlyTerms reports that nothing but terms stands in a heading.
 func onlyTerms(s string, h grammar.Heading) bool { return len(restWords(s, h)) == 0 }

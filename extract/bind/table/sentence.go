@@ -141,17 +141,12 @@ func (f *frame) loneSize(e *estimate, x *context) (size, bool) {
 			}
 		}
 	}
-	c := &f.tab.Caption
-	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
-		if n := number(p.ns[0].Value); n > 0 {
-			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, true
-		}
+	if s, ok := f.captionN(); ok {
+		return s, true
 	}
 	for _, nt := range f.notes.general() {
-		if p := parsePhrase(textOf(nt.run)); len(p.ns) == 1 {
-			if n := number(p.ns[0].Value); n > 0 {
-				return size{n: n, from: result.NElsewhere, words: nt.from, text: shorten(clean(nt.run.S), 200), place: nt.run.At(p.ns[0].Start)}, true
-			}
+		if s, ok := onlySize(nt.run, result.NElsewhere, nt.from); ok {
+			return s, true
 		}
 	}
 	return size{}, false

@@ -11,7 +11,6 @@ import (
 )
 
 var (
-	sexN   = pattern.MustCompile(`(?i)\(\s*n\s*=\s*(\d*)\s*(m|f|males?|females?|men|women)\s*[,;/&]\s*(\d+)\s*(m|f|males?|females?|men|women)\s*\)`)
 	maleIs = pattern.MustCompile(`(?i)^(?:m|males?|men|boys)\b`)
 	femIs  = pattern.MustCompile(`(?i)^(?:f|females?|women|girls)\b`)
 )
@@ -24,7 +23,7 @@ func (f *frame) sexSize(e *estimate, x *context) (size, bool) {
 	}
 	path := f.path(e.row, e.col)
 	for i := len(path) - 1; i >= 0; i-- {
-		m := sexN.FindStringSubmatch(path[i].raw)
+		m := nBySex.FindStringSubmatch(path[i].raw)
 		if m == nil {
 			continue
 		}
@@ -159,13 +158,7 @@ func (b *binder) captionOfAll(f *frame, x *context) (size, bool) {
 	if x.contrast || x.subgroup != "" || !b.sameSubjects(f) {
 		return size{}, false
 	}
-	c := &f.tab.Caption
-	if p := parsePhrase(textOf(c)); len(p.ns) == 1 {
-		if n := number(p.ns[0].Value); n > 0 {
-			return size{n: n, from: result.NCaption, words: "caption", text: shorten(clean(c.S), 200), place: c.At(p.ns[0].Start)}, true
-		}
-	}
-	return size{}, false
+	return f.captionN()
 }
 
 // ownGroupSize gives a ratio or coefficient the n of the heading over its column
