@@ -33,6 +33,7 @@ func (b *binder) contrastSize(r *result.Result, i int, f *frame, e *estimate, x 
 		}
 	}
 	if f.baselineN(b) && !atBaseline(x) {
+		r.Raise(FlagNBaseline, "the n of the arms are those at baseline")
 		return
 	}
 	if ok1 {
