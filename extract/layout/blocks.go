@@ -78,11 +78,11 @@ func (a *arranger) run(d *draft) paper.TextRun {
 	for i := range d.lines {
 		glyphs, bytes = glyphs+d.lines[i].glyphs, bytes+len(d.lines[i].text())+1
 	}
-	w.s, w.runs = make([]byte, 0, bytes), make([]paper.Run, 0, glyphs)
+	w.Grow(bytes, glyphs)
 	for i := range d.lines {
 		w.line(&d.lines[i], a.dict)
 	}
-	return w.run()
+	return w.Run()
 }
 
 // What the lines about a paper begin with or hold: dates, licence, addresses.

@@ -6,16 +6,10 @@ import (
 	"unicode/utf8"
 
 	"halfspan/extract/layout/words"
-	"halfspan/extract/paper"
 )
 
 // writer builds a TextRun line by line.
-type writer struct {
-	s      []byte
-	runs   []paper.Run
-	styles []paper.Style
-	open   [paper.Italic + 1]int // 1 + index in styles of a stretch that still grows
-}
+type writer struct{ words.Text }
 
 // line appends a printed line. dict decides whether a hyphen at the end of the
 // line before belongs to the word.
@@ -23,80 +17,20 @@ func (w *writer) line(l *line, dict map[string]bool) {
 	if len(l.words) == 0 {
 		return
 	}
-	if len(w.s) > 0 {
-		switch lineEnd(w.s, l.words[0].Text, dict) {
+	if len(w.S) > 0 {
+		switch lineEnd(w.S, l.words[0].Text, dict) {
 		case drop:
-			w.dropLast()
+			w.DropLast()
 		case space:
-			w.s = append(w.s, ' ')
+			w.S = append(w.S, ' ')
 		}
 	}
 	for i, word := range l.words {
 		if i > 0 && !word.Glued {
-			w.s = append(w.s, ' ')
+			w.S = append(w.S, ' ')
 		}
-		w.word(l, word)
+		w.Word(word, l.page, l.no)
 	}
-}
-
-func (w *writer) word(l *line, word *words.Word) {
-	for i := range word.Glyphs {
-		g := &word.Glyphs[i]
-		start := len(w.s)
-		w.s = append(w.s, g.Text...)
-		if len(w.s) == start {
-			continue
-		}
-		w.runs = append(w.runs, paper.Run{Start: start, End: len(w.s),
-			Place: paper.Place{Page: l.page, Line: l.no, Box: g.Box, Origin: g.Origin}})
-		w.style(paper.Raised, word.Shift == paper.Raised, start)
-		w.style(paper.Lowered, word.Shift == paper.Lowered, start)
-		w.style(paper.Bold, g.Bold, start)
-		w.style(paper.Italic, g.Italic, start)
-	}
-}
-
-// style notes that the bytes from start on are or are not printed in a style.
-// Bold and italic go on over a space; raised and lowered end with their word.
-func (w *writer) style(kind paper.StyleKind, on bool, start int) {
-	if !on {
-		w.open[kind] = 0
-		return
-	}
-	if k := w.open[kind] - 1; k >= 0 {
-		gap := start - w.styles[k].End
-		if gap == 0 || gap == 1 && (kind == paper.Bold || kind == paper.Italic) {
-			w.styles[k].End = len(w.s)
-			return
-		}
-	}
-	w.styles = append(w.styles, paper.Style{Start: start, End: len(w.s), Kind: kind})
-	w.open[kind] = len(w.styles)
-}
-
-// dropLast takes back the hyphen at the end.
-func (w *writer) dropLast() {
-	_, n := utf8.DecodeLastRune(w.s)
-	w.s = w.s[:len(w.s)-n]
-	if k := len(w.runs) - 1; k >= 0 && w.runs[k].End > len(w.s) {
-		w.runs[k].End = len(w.s)
-		if w.runs[k].Start >= w.runs[k].End {
-			w.runs = w.runs[:k]
-		}
-	}
-	for i := range w.styles {
-		w.styles[i].End = min(w.styles[i].End, len(w.s))
-	}
-}
-
-func (w *writer) run() paper.TextRun {
-	styles := w.styles[:0]
-	for _, s := range w.styles {
-		if s.Start < s.End {
-			styles = append(styles, s)
-		}
-	}
-	return paper.TextRun{S: string(w.s), Runs: w.runs, Styles: styles}
 }
 
 // What becomes of the end of a line when the next one is joined to it.

@@ -1,6 +1,10 @@
 package layout
 
-import "testing"
+import (
+	"testing"
+
+	"halfspan/extract/layout/words"
+)
 
 func TestLineEnd(t *testing.T) {
 	dict := map[string]bool{"confidence": true, "syrup": true, "fed": true, "follow-up": true, "without": true, "with": true, "out": true}
@@ -25,14 +29,14 @@ func TestLineEnd(t *testing.T) {
 		{"IL-", "6 rose", "IL-6 rose"},
 	}
 	for _, c := range cases {
-		w := writer{s: []byte(c.text)}
-		switch lineEnd(w.s, c.next, dict) {
+		w := writer{words.Text{S: []byte(c.text)}}
+		switch lineEnd(w.S, c.next, dict) {
 		case drop:
-			w.dropLast()
+			w.DropLast()
 		case space:
-			w.s = append(w.s, ' ')
+			w.S = append(w.S, ' ')
 		}
-		if got := string(w.s) + c.next; got != c.want {
+		if got := string(w.S) + c.next; got != c.want {
 			t.Errorf("%q + %q: got %q, want %q", c.text, c.next, got, c.want)
 		}
 	}

@@ -69,64 +69,27 @@ func (w *writer) notes(lines []line) []paper.FootNote {
 // text makes a TextRun of tokens by line: words joined by one space where they
 // are not glued, hyphenated line ends joined.
 func (w *writer) text(lines [][]int) paper.TextRun {
-	b := textBuilder{words: w.sheet.words}
+	b := textBuilder{dict: w.sheet.words}
 	for li, toks := range lines {
 		for k, i := range toks {
 			t := &w.sheet.toks[i]
 			switch {
-			case len(b.s) == 0:
+			case len(b.S) == 0:
 			case k == 0 && li > 0:
 				b.lineEnd(t.text)
 			case k > 0 && !t.glued:
-				b.s = append(b.s, ' ')
+				b.S = append(b.S, ' ')
 			}
-			b.word(t.w, w.pageOf(t), int(t.line)+1)
+			b.Word(t.w, w.pageOf(t), int(t.line)+1)
 		}
 	}
-	return b.run()
+	return b.Run()
 }
 
-// textBuilder grows a TextRun.
+// textBuilder grows a TextRun line by line.
 type textBuilder struct {
-	s      []byte
-	runs   []paper.Run
-	styles []paper.Style
-	open   [paper.Italic + 1]int // 1 + index of the style stretch that still grows
-	words  map[string]bool       // the paper's words, in lower case
-}
-
-func (b *textBuilder) word(word *words.Word, page, line int) {
-	for gi := range word.Glyphs {
-		g := &word.Glyphs[gi]
-		from := len(b.s)
-		b.s = append(b.s, g.Text...)
-		if len(b.s) == from {
-			continue
-		}
-		b.runs = append(b.runs, paper.Run{Start: from, End: len(b.s), Place: paper.Place{Page: page, Line: line, Box: g.Box, Origin: g.Origin}})
-		b.style(paper.Raised, word.Shift == paper.Raised, from)
-		b.style(paper.Lowered, word.Shift == paper.Lowered, from)
-		b.style(paper.Bold, g.Bold, from)
-		b.style(paper.Italic, g.Italic, from)
-	}
-}
-
-// style notes that the bytes from start on are or are not printed in a style;
-// bold and italic go on over a space.
-func (b *textBuilder) style(kind paper.StyleKind, on bool, start int) {
-	if !on {
-		b.open[kind] = 0
-		return
-	}
-	if k := b.open[kind] - 1; k >= 0 {
-		gap := start - b.styles[k].End
-		if gap == 0 || gap == 1 && (kind == paper.Bold || kind == paper.Italic) {
-			b.styles[k].End = len(b.s)
-			return
-		}
-	}
-	b.styles = append(b.styles, paper.Style{Start: start, End: len(b.s), Kind: kind})
-	b.open[kind] = len(b.styles)
+	words.Text
+	dict map[string]bool // the paper's words, in lower case
 }
 
 // lineEnd joins the text to its next line, which begins with the word next: by
@@ -134,24 +97,24 @@ func (b *textBuilder) style(kind paper.StyleKind, on bool, start int) {
 // between letters is kept where the paper prints its parts as words of their
 // own, and taken back where it prints the whole as one.
 func (b *textBuilder) lineEnd(next string) {
-	last, n := utf8.DecodeLastRune(b.s)
-	body := b.s[:len(b.s)-n]
+	last, n := utf8.DecodeLastRune(b.S)
+	body := b.S[:len(b.S)-n]
 	before, _ := utf8.DecodeLastRune(body)
 	first := firstRune(next)
 	dash := last >= '\u2012' && last <= '\u2014' || last == '\u2212'
 	hyphen := last == '-' || last == '\u2010' || last == '\u2011' || last == '\u00AD'
 	switch {
 	case len(body) == 0 || before == ' ' || !dash && !hyphen:
-		b.s = append(b.s, ' ')
+		b.S = append(b.S, ' ')
 	case last == '\u00AD':
-		b.dropLast(n)
+		b.DropLast()
 	case unicode.IsDigit(before) && unicode.IsDigit(first), before == '%':
 	case dash && unicode.IsLetter(before) && unicode.IsLetter(first):
 	case !hyphen || !unicode.IsLetter(before):
-		b.s = append(b.s, ' ')
+		b.S = append(b.S, ' ')
 	case !unicode.IsLower(first):
 	case b.oneWord(string(body), next):
-		b.dropLast(n)
+		b.DropLast()
 	}
 }
 
@@ -159,38 +122,15 @@ func (b *textBuilder) lineEnd(next string) {
 func (b *textBuilder) oneWord(body, next string) bool {
 	k := strings.LastIndexFunc(body, func(r rune) bool { return !unicode.IsLetter(r) })
 	head, tail := strings.ToLower(body[k+1:]), plainWord(next)
-	if b.words[head+tail] {
+	if b.dict[head+tail] {
 		return true
 	}
-	return !(b.words[head] && len(head) > 2 && b.words[tail] && len(tail) > 2)
+	return !(b.dict[head] && len(head) > 2 && b.dict[tail] && len(tail) > 2)
 }
 
 // plainWord is a word in lower case without what stands round its letters.
 func plainWord(s string) string {
 	return strings.ToLower(strings.TrimFunc(s, func(r rune) bool { return !unicode.IsLetter(r) }))
-}
-
-func (b *textBuilder) dropLast(n int) {
-	b.s = b.s[:len(b.s)-n]
-	if k := len(b.runs) - 1; k >= 0 && b.runs[k].End > len(b.s) {
-		b.runs[k].End = len(b.s)
-		if b.runs[k].Start >= b.runs[k].End {
-			b.runs = b.runs[:k]
-		}
-	}
-	for i := range b.styles {
-		b.styles[i].End = min(b.styles[i].End, len(b.s))
-	}
-}
-
-func (b *textBuilder) run() paper.TextRun {
-	kept := b.styles[:0]
-	for _, s := range b.styles {
-		if s.Start < s.End {
-			kept = append(kept, s)
-		}
-	}
-	return paper.TextRun{S: string(b.s), Runs: b.runs, Styles: kept}
 }
 
 // learn collects the words that the sheets print whole.
