@@ -42,24 +42,16 @@ func newLexicon() *lexicon {
 
 // phrase reads a heading without marks.
 func (x *lexicon) phrase(s string) *phrase {
-	p, ok := x.phrases[s]
-	if !ok {
-		v := parsePhrase(grammar.Text{S: s})
-		v.unname(x.never)
-		p = &v
-		x.phrases[s] = p
-	}
-	return p
+	return remembered(x.phrases, s, func() *phrase {
+		p := parsePhrase(grammar.Text{S: s})
+		p.unname(x.never)
+		return &p
+	})
 }
 
 // name is what a heading names: see nameOf.
 func (x *lexicon) name(s string) string {
-	n, ok := x.names[s]
-	if !ok {
-		n = x.keep(s)
-		x.names[s] = n
-	}
-	return n
+	return remembered(x.names, s, func() string { return x.keep(s) })
 }
 
 // keep is nameOf with the short forms that mean no statistic left in.
@@ -82,53 +74,28 @@ func (x *lexicon) keep(s string) string {
 
 // isTime reports that a folded heading names a time: see isTimeHeading.
 func (x *lexicon) isTime(low string) bool {
-	t, ok := x.times[low]
-	if !ok {
-		t = isTimeHeading(low)
-		x.times[low] = t
-	}
-	return t
+	return remembered(x.times, low, func() bool { return isTimeHeading(low) })
 }
 
 // unit is the unit in a label: see unitIn.
 func (x *lexicon) unit(s string) string {
-	u, ok := x.units[s]
-	if !ok {
-		u = unitIn(s)
-		x.units[s] = u
-	}
-	return u
+	return remembered(x.units, s, func() string { return unitIn(s) })
 }
 
 // compares reports that a heading announces a statistic between arms.
 func (x *lexicon) compares(s string) bool {
-	c, ok := x.compared[s]
-	if !ok {
-		c = comparesArms(x.phrase(s))
-		x.compared[s] = c
-	}
-	return c
+	return remembered(x.compared, s, func() bool { return comparesArms(x.phrase(s)) })
 }
 
 // noteStatements gives what a note declares: see noteStatements.
 func (x *lexicon) noteStatements(n note, rk rank) []statement {
 	key := noteKey{n.run, rk}
-	s, ok := x.marked[key]
-	if !ok {
-		s = noteStatements(n, rk)
-		x.marked[key] = s
-	}
-	return s
+	return remembered(x.marked, key, func() []statement { return noteStatements(n, rk) })
 }
 
 // timesIn lists the times named in a text: see timesIn.
 func (x *lexicon) timesIn(s string) []string {
-	t, ok := x.points[s]
-	if !ok {
-		t = timesIn(s)
-		x.points[s] = t
-	}
-	return t
+	return remembered(x.points, s, func() []string { return timesIn(s) })
 }
 
 // timeIn is the first time named in a text.
@@ -141,31 +108,16 @@ func (x *lexicon) timeIn(s string) string {
 
 // rowTime is the time point in a row label: see rowTime.
 func (x *lexicon) rowTime(s string) string {
-	t, ok := x.inRow[s]
-	if !ok {
-		t = rowTime(s)
-		x.inRow[s] = t
-	}
-	return t
+	return remembered(x.inRow, s, func() string { return rowTime(s) })
 }
 
 // change reports that a text speaks of a change.
 func (x *lexicon) change(s string) bool {
-	c, ok := x.changes[s]
-	if !ok {
-		c = changeMark.MatchString(fold(s))
-		x.changes[s] = c
-	}
-	return c
+	return remembered(x.changes, s, func() bool { return changeMark.MatchString(fold(s)) })
 }
 
 // has reports that the text holds a match of the pattern.
 func (x *lexicon) has(p *pattern.Pattern, s string) bool {
 	key := patternKey{p, s}
-	m, ok := x.found[key]
-	if !ok {
-		m = p.MatchString(s)
-		x.found[key] = m
-	}
-	return m
+	return remembered(x.found, key, func() bool { return p.MatchString(s) })
 }
