@@ -190,9 +190,6 @@ func (b *binder) findTold() {
 		if bl.Kind != paper.Paragraph || bl.Zone != paper.Results && bl.Zone != paper.Abstract && bl.Zone != paper.Methods {
 			continue
 		}
-		if !strings.ContainsAny(bl.Text.S, "0123456789") {
-			continue
-		}
 		for _, sp := range segments(bl.Text.S) {
 			s := clean(bl.Text.S[sp.Start:sp.End])
 			if len(s) > 600 || !counts(s) || planWord.MatchString(s) || leftWord.MatchString(s) {
